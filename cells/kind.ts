@@ -1,0 +1,98 @@
+// The contract between a kind of cell and the notebook around it.
+
+import type { Part } from "./parts/part.ts";
+
+/** What an option takes. Checking, completion and help are read from it. */
+export type OptionType =
+  | "series" | "number" | "integer" | "boolean" | "text" | "time" | "level" | "any"
+  /** A whole number of lags, or a list of lags. */
+  | "lags"
+  | "fit"
+  /** A fit, a rule or a ranked row of `compare`. */
+  | "forecaster"
+  /** `{from, to}` or a window cell's value. */
+  | "window"
+  | "list" | "object" | "rows"
+  | { readonly oneOf: readonly (string | number | boolean)[] }
+  | { readonly anyOf: readonly OptionType[] }
+  | { readonly listOf: OptionType };
+
+export interface Option {
+  readonly type: OptionType;
+  readonly sentence: string;
+  readonly required?: true;
+  readonly default?: unknown;
+  readonly min?: number;
+  readonly max?: number;
+  /** How the author's expression is taken. "value" (the default): evaluated. "name": the name of a cell, not its value
+   *  (`sweep.over`). "expression": not evaluated; `context.expression` gives its source (`sweep.measure`). */
+  readonly taken?: "value" | "name" | "expression";
+  /** Example text that completion inserts after the colon. */
+  readonly example?: string;
+}
+
+export type OptionTable = Readonly<Record<string, Option>>;
+
+/** What a running cell may ask of its surroundings. */
+export interface RunContext {
+  /** The cell's name; null where it has none. */
+  readonly name: string | null;
+  /** The setting a reader moved this control to; undefined when it stands where the text has it. */
+  readonly setting: unknown;
+  /** Source text of each given option's expression, for labels ("airline" of `models: [airline]`). */
+  readonly source: Readonly<Record<string, string>>;
+  /** Reads a file inside the notebook's folder. Rejects with a message for the reader. */
+  read(file: string): Promise<Uint8Array>;
+  /** Aborted when newer work has overtaken this. */
+  readonly signal: AbortSignal;
+  /** Says how far long work is; `total` may be unknown (0). */
+  progress(done: number, total: number, what?: string): void;
+  /** Lets newer messages in; rejects when this work has been overtaken. Call it between slices of a few milliseconds. */
+  breathe(): Promise<void>;
+  /** A remark shown with the cell (rows dropped, gaps found). */
+  note(text: string): void;
+  /** Runs a `script` cell's source, isolated; gives its exports. Rejects where code is not allowed. */
+  importCode(source: string, inputs: Readonly<Record<string, unknown>>): Promise<Readonly<Record<string, unknown>>>;
+  /** Evaluates an expression off to the side with one control at another value (`sweep`). */
+  recompute(control: string, value: unknown, expression: string): Promise<unknown>;
+  /** The named control's list of values worth trying, and its present one (`sweep`). */
+  control(name: string): { readonly kind: string; readonly values: readonly unknown[]; readonly at: unknown };
+}
+
+export interface ShowContext {
+  readonly name: string | null;
+  /** Pixels a figure may take across: thin long columns to it, extremes kept. */
+  readonly width: number;
+}
+
+/** A fault in one option, in words for the notebook's author. */
+export class OptionError extends Error {
+  readonly option: string | null;
+  constructor(option: string | null, message: string) { super(message); this.name = "OptionError"; this.option = option; }
+}
+
+export interface Kind<Options = never, Result = unknown> {
+  readonly name: string;
+  /** What it does, in one sentence. */
+  readonly sentence: string;
+  readonly options: OptionTable;
+  /** What stands in the body: options; any names with expressions ("values", "chart"); claims in quotes; ECMAScript. */
+  readonly body: "options" | "names" | "claims" | "code";
+  /** A control: must have a name; `keeps` are the options that a kept setting rewrites. */
+  readonly control?: { readonly keeps: readonly string[] };
+  /** Also a function with the options as an object. */
+  readonly callable?: true;
+  /** A first body for completion to insert. */
+  readonly example: string;
+  run(options: Options, context: RunContext): Result | Promise<Result>;
+  show(result: Result, context: ShowContext): readonly Part[];
+}
+
+/** A library function, as the language sees it. */
+export interface LibraryFunction {
+  readonly name: string;            // "acf", "rule.naive"
+  readonly signature: string;       // "acf(series, lags)"
+  readonly sentence: string;
+  readonly topic: string;
+  readonly call: (...given: readonly unknown[]) => unknown;
+}

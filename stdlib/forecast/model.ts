@@ -1,0 +1,62 @@
+// What a forecast is, and what can make one: the data types of this room.
+
+import type { Fit, Note } from "../arma/model.ts";
+import type { Series } from "../series/series.ts";
+
+/** A naive or smoothing rule of comparison, tied to a series, as plain data. Parameters that were estimated stand in `parameters`. */
+export interface Rule {
+  readonly rule: "naive" | "seasonalNaive" | "drift" | "average" | "smoothing" | "combine";
+  readonly label: string;
+  readonly series: Series;
+  readonly length?: number;
+  readonly trend?: "none" | "additive" | "multiplicative";
+  readonly season?: "none" | "additive" | "multiplicative";
+  readonly damped?: boolean;
+  readonly members?: readonly Forecaster[];
+  readonly parameters?: Readonly<Record<string, number>>;
+}
+
+export type Forecaster = Fit | Rule;
+
+/** Limits at one confidence level, each of the horizon's length, data units. */
+export interface Band { readonly level: number; readonly low: Float64Array; readonly high: Float64Array }
+
+export interface Total {
+  readonly from: string; readonly to: string;
+  readonly mean: number; readonly median: number; readonly se: number;
+  readonly bands: readonly { readonly level: number; readonly low: number; readonly high: number }[];
+  /** Periods of the span that were observed, not forecast. */
+  readonly observed: number;
+}
+
+export interface Forecast {
+  readonly label: string;
+  /** Name and unit of the series in data units. */
+  readonly name: string; readonly unit: string; readonly every: string | null;
+  /** Last observed period used: forecasts start one after. */
+  readonly origin: string;
+  readonly horizon: number;
+  readonly times: readonly string[];
+  /** Data units. */
+  readonly mean: Float64Array; readonly median: Float64Array;
+  /** Standard error on the scale before differencing (of the logs, say). */
+  readonly se: Float64Array;
+  readonly bands: readonly Band[];
+  readonly totals: readonly Total[];
+  /** The observed series in data units up to the origin, and what came after it where there are later data. */
+  readonly history: Series;
+  readonly heldOut: Series | null;
+  /** What was assumed, and what cannot be undone, in words. */
+  readonly notes: readonly Note[];
+}
+
+export interface ForecastOptions {
+  readonly horizon: number;
+  readonly levels?: readonly number[];
+  readonly regressors?: Readonly<Record<string, Series>>;
+  /** Spans to total, each `{from, to}` in times, or "year" for each calendar year touched, or an ISO 8601 year text. */
+  readonly totals?: string | readonly (string | { readonly from: string; readonly to: string })[];
+  /** How the bands are made; each says what it assumes in `notes`. */
+  readonly bands?: "plugIn" | "simulated" | "calibrated";
+  readonly seed?: number;
+}
