@@ -1,0 +1,12 @@
+import { defineConfig } from "vitest/config";
+
+/** Tests in a real Chromium and of the installed package: one file at a time, so that their clocks are their own. */
+export default defineConfig({
+  test: {
+    root: new URL("..", import.meta.url).pathname,
+    include: ["test/browser/**/*.test.ts"],
+    fileParallelism: false,
+    testTimeout: 60_000,
+    hookTimeout: 60_000,
+  },
+});
