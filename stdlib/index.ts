@@ -6,6 +6,12 @@
 // arma
 // forecast
 // diagnostics
+export { printedP, unavailable, type Test } from "./diagnostics/test.ts";
 // evaluation
 // decompose
 // distributions
+export { betaInc, erfc, gammaP, gammaQ, logGamma } from "./distributions/special.ts";
+export { normalCdf, normalDensity, normalQuantile, normalUpper } from "./distributions/normal.ts";
+export { chiSquareCdf, chiSquareQuantile, chiSquareUpper } from "./distributions/chiSquare.ts";
+export { tCdf, tQuantile, tUpper } from "./distributions/studentT.ts";
+export { fUpper } from "./distributions/fisherF.ts";

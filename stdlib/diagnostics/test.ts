@@ -1,0 +1,42 @@
+// The result of a hypothesis test: one plain shape for every test here.
+
+/** A test's outcome. Where the data cannot answer, `status` is "unavailable", `p` is NaN and `note` says why in words. */
+export interface Test {
+  /** The statistic under its published name, as a reader would cite it: "Ljung-Box Q". */
+  readonly name?: string;
+  readonly statistic: number;
+  /** p-value from the tail named by the alternative; NaN where the data cannot answer. */
+  readonly p: number;
+  /** "below": the true p is smaller than `p` (the published table ends there); "above": it is larger. */
+  readonly bound?: "below" | "above";
+  /** Degrees of freedom of a chi-square (or t) statistic; null where none are left. */
+  readonly df?: number | null;
+  /** Lags of the regression or sum, or the bandwidth of a long-run variance. */
+  readonly lags?: number;
+  /** How `lags` was chosen, in words. */
+  readonly lagRule?: string;
+  /** Critical values by significance level: "1%", "5%", "10%". */
+  readonly critical?: Readonly<Record<string, number>>;
+  /** Observations used. */
+  readonly n: number;
+  /** The null hypothesis in words: "a unit root: shocks never die out". */
+  readonly nullHypothesis: string;
+  readonly status?: "ok" | "unavailable";
+  readonly note?: string;
+  /** One sentence from the numbers, exact about what was and was not shown. */
+  readonly sentence?: string;
+}
+
+/** A test that the data cannot answer, with the reason in words. */
+export function unavailable(nullHypothesis: string, n: number, note: string, more: Partial<Test> = {}): Test {
+  return { ...more, statistic: NaN, p: NaN, n, nullHypothesis, status: "unavailable", note, sentence: `The data cannot answer: ${note}.` };
+}
+
+/** A p-value as it stands in a sentence: "p = 0.031", "p < 0.001", "p < 0.01" and "p > 0.10" where a table ends. */
+export function printedP(p: number, bound?: "below" | "above"): string {
+  if (Number.isNaN(p)) return "p not available";
+  if (bound === "below") return `p < ${p}`;
+  if (bound === "above") return `p > ${p.toFixed(2)}`;
+  if (p < 0.001) return "p < 0.001";
+  return `p = ${p < 0.1 ? p.toFixed(3) : p.toFixed(2)}`;
+}
