@@ -5,6 +5,7 @@
 // unitroot
 // arma
 // forecast
+export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
 // diagnostics
 export { printedP, unavailable, type Test } from "./diagnostics/test.ts";
 // evaluation
