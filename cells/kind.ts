@@ -96,3 +96,23 @@ export interface LibraryFunction {
   readonly topic: string;
   readonly call: (...given: readonly unknown[]) => unknown;
 }
+
+/** What `run` is given, by `body`:
+ *  - "options": the options after `checkOptions`: defaults filled in, null = left out.
+ *  - "names": every named expression's value (the table's own options checked).
+ *  - "claims": `Record<claim, ClaimOutcome>`, in the order of the text.
+ *  - "code": a `CodeBody`; the kind calls `context.importCode(source, inputs)`. */
+export interface ClaimOutcome { readonly holds: boolean | null; readonly message?: string }
+export interface CodeBody { readonly source: string; readonly inputs: Readonly<Record<string, unknown>> }
+
+
+/** All that the engine is told about the language: `cells/index.ts` exports one as `language`. */
+export interface Language {
+  readonly kinds: readonly Kind<never, unknown>[];
+  readonly library: readonly LibraryFunction[];
+  /** Names with a fixed value besides `NaN`, `Infinity` and `free` (which is the text "free"). */
+  readonly constants: Readonly<Record<string, unknown>>;
+  /** `checkOptions` of cells/check.ts. `given` holds what the author wrote, null = not given.
+   *  @throws OptionError */
+  check(kind: { readonly name: string; readonly body: Kind["body"]; readonly options: OptionTable }, given: Readonly<Record<string, unknown>>): Readonly<Record<string, unknown>>;
+}
