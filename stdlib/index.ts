@@ -1,6 +1,17 @@
 // The public list of the numbers, by topic. Other rooms import from here and from nowhere deeper.
 
 // series
+export { makeSeries, isSeries, valuesOf, timesMs, withValues, type Series } from "./series/series.ts";
+export { cut, slice } from "./series/cut.ts";
+export { applyStep, applySteps, original, stepOf, stepText, type Step, type AppliedStep } from "./series/steps.ts";
+export { timeAt, timesFrom, milliseconds, periodIndex, periodSpan, positionIn, periodOf, indexRange, daysIn } from "./series/calendar.ts";
+export { parsePeriod, formatPeriod, period, startMs, endMs, type Period, type PeriodUnit } from "./series/period.ts";
+export { civilFromDays, daysFromCivil, daysInMonth } from "./series/civil.ts";
+export { parseEvery, formatEvery, everyInWords, everyWords, defaultSeasonLength, periodsAYear } from "./series/every.ts";
+export { inferEvery } from "./series/inferEvery.ts";
+export { polynomialTrend } from "./series/detrend.ts";
+export { mean, variance, sd, first, last, at, between } from "./series/summary.ts";
+export { lagged, combine, offsetBetween } from "./series/align.ts";
 // correlogram
 // unitroot
 // arma
