@@ -15,8 +15,9 @@ export function autoregressiveFill(values: Float64Array, every: string | null): 
   const mean = sum / observed;
   const x = values.map((v) => (Number.isNaN(v) ? 0 : v - mean));
   if (gaps.length === 0) return values.slice();
+  if (observed < 4) return values.map((v) => (Number.isNaN(v) ? mean : v)); // too few for any autoregression
   const order = Math.min(Math.floor(observed / 4), Math.max(Math.round(10 * Math.log10(n)), (defaultSeasonLength(every) ?? 0) + 1));
-  for (let pass = 0; pass < 8 && order > 0; pass++) {
+  for (let pass = 0; pass < 8; pass++) {
     const change = solveGaps(x, gaps, burg(x, order));
     if (change < 1e-8) break;
   }

@@ -47,8 +47,8 @@ export function timeAt(start: string, every: string | null, k: number): string {
 export function timesFrom(start: string, every: string | null, n: number): string[] {
   const first = periodOf(start, every);
   const spacing = every === null ? null : parseEvery(every);
-  const times = new Array<string>(n);
-  for (let k = 0; k < n; k++) times[k] = formatPeriod(shifted(first, spacing, k));
+  const times: string[] = [];
+  for (let k = 0; k < n; k++) times.push(formatPeriod(shifted(first, spacing, k)));
   return times;
 }
 

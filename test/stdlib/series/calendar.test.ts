@@ -1,4 +1,4 @@
-import fc from "fast-check";
+import * as fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { daysIn, indexRange, milliseconds, periodIndex, periodSpan, timeAt, timesFrom } from "../../../stdlib/series/calendar.ts";
 import { civilFromDays, daysFromCivil, daysInMonth, isoWeek } from "../../../stdlib/series/civil.ts";

@@ -1,4 +1,4 @@
-import fc from "fast-check";
+import * as fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { combine, lagged } from "../../../stdlib/series/align.ts";
 import { cut, slice } from "../../../stdlib/series/cut.ts";
