@@ -13,12 +13,20 @@ export { polynomialTrend } from "./series/detrend.ts";
 export { mean, variance, sd, first, last, at, between } from "./series/summary.ts";
 export { lagged, combine, offsetBetween } from "./series/align.ts";
 // correlogram
+export { acf, ccf } from "./correlogram/acf.ts";
+export { autocovariance } from "./correlogram/autocovariance.ts";
+export { pacf, type PartialMethod } from "./correlogram/pacf.ts";
+export { bartlettBand, independentBand } from "./correlogram/bands.ts";
+export { correlogram, type Correlogram, type CorrelogramOptions } from "./correlogram/correlogram.ts";
+export { type Suggestion } from "./correlogram/suggestOrders.ts";
 // unitroot
 // arma
 // forecast
 export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
 // diagnostics
 export { printedP, unavailable, type Test } from "./diagnostics/test.ts";
+export { boxPierce, ljungBox, monti, portmanteauRows, type PortmanteauRow, type PortmanteauRows } from "./diagnostics/portmanteau.ts";
+export { freeArmaCoefficients, isFit, type Subject } from "./diagnostics/subject.ts";
 // evaluation
 // decompose
 // distributions
