@@ -1,0 +1,127 @@
+// Which expressions of the language answer which reference case.
+
+import type { Case, Check, Written } from "./referenceNotebook.ts";
+import { checksOf, modelCells, seriesCells, Unsupported, write } from "./referenceNotebook.ts";
+
+const trends: Readonly<Record<string, string>> = { n: "none", c: "constant", ct: "linear", ctt: "quadratic" };
+
+const list = (value: unknown): readonly number[] => (Array.isArray(value) ? (value as number[]) : [value as number]);
+
+/** The notebook of a case; throws `Unsupported` where the language has no word for what it asks. */
+export function notebookOf(item: Case): Written {
+  const writer = writers[item.what];
+  if (!writer) throw new Unsupported(`no notebook for "${item.what}"`);
+  return writer(item);
+}
+
+const ofSeries = (checks: (item: Case) => readonly Check[]) => (item: Case): Written => write(seriesCells(item.series as string, item.transform, "y"), checks(item));
+
+const ofResiduals = (checks: (item: Case, x: string) => readonly Check[]) => (item: Case): Written =>
+  item.inputs.model ? write(modelCells(item), checks(item, "m.residuals")) : write(seriesCells(item.series as string, item.transform, "y"), checks(item, "y"));
+
+function coefficients(item: Case): readonly Check[] {
+  const model = item.inputs.model;
+  const expected = item.expected.coef as Readonly<Record<string, number | readonly number[]>>;
+  const se = item.expected.se as Readonly<Record<string, number | readonly number[]>> | undefined;
+  if (!model) return [];
+  const places: Readonly<Record<string, (i: number) => string>> = {
+    ar: (i) => `m.phi[${model.arLags[i] - 1}]`,
+    ma: (i) => `m.theta[${model.maLags[i] - 1}]`,
+    sar: (i) => `m.seasonalPhi[${(model.seasonal?.arLags[i] ?? 1) - 1}]`,
+    sma: (i) => `m.seasonalTheta[${(model.seasonal?.maLags[i] ?? 1) - 1}]`,
+    constant: () => "m.mean",
+    beta: (i) => `m.beta.x${i + 1}`,
+  };
+  const tolerance = item.tolerance.fields?.coef ?? item.tolerance;
+  return Object.entries(expected).flatMap(([field, value]) => list(value).flatMap((v, i): Check[] => {
+    const error = se === undefined ? undefined : list(se[field])[i];
+    const within = tolerance.ofSe !== undefined ? (error === undefined ? 1e-3 * Math.max(1, Math.abs(v)) : tolerance.ofSe * error) : tolerance.abs ?? (tolerance.rel ?? 0) * Math.max(...list(value).map(Math.abs));
+    const at = places[field](i);
+    const own: Check = { expression: at, field: `coef.${field}`, expected: v, within };
+    if (error === undefined) return [own];
+    return [own, { expression: at.replace("m.", "m.se."), field: `se.${field}`, expected: error, within: (item.tolerance.fields?.se?.rel ?? 1e-2) * error }];
+  }));
+}
+
+function forecastChecks(item: Case): readonly Check[] {
+  const log = item.inputs.backTransform === "log";
+  const at = (path: string) => (i: number): string => `${path}[${i}]`;
+  return [
+    ...checksOf(item, log ? "median" : "point", at("f.median")),
+    ...checksOf(item, log ? "meanLognormal" : "point", at("f.mean")),
+    ...checksOf(item, "se", at("f.se")),
+    ...(log ? [] : [...checksOf(item, "lower80", at("f.bands[0].low")), ...checksOf(item, "upper80", at("f.bands[0].high")), ...checksOf(item, "lower95", at("f.bands[1].low")), ...checksOf(item, "upper95", at("f.bands[1].high"))]),
+    ...(log ? [...checksOf(item, "lower95Back", at("f.bands[1].low")), ...checksOf(item, "upper95Back", at("f.bands[1].high"))] : []),
+  ];
+}
+
+const testChecks = (item: Case, at: string): readonly Check[] => [
+  ...checksOf(item, "statistic", () => `${at}.statistic`),
+  ...checksOf(item, "pValue", () => `${at}.p`),
+  ...(["1%", "5%", "10%"] as const).flatMap((level) => checksOf(item, "criticalValues", () => `${at}.critical["${level}"]`, (item.expected.criticalValues as Record<string, number>)[level])),
+];
+
+const writers: Readonly<Record<string, (item: Case) => Written>> = {
+  acf: ofSeries((item) => {
+    if (item.inputs.demean === false) throw new Unsupported("autocorrelations about zero");
+    return checksOf(item, "acf", (i) => `acf(y, ${item.inputs.maxLag as number})[${i}]`);
+  }),
+  pacf: ofSeries((item) => checksOf(item, "pacf", (i) => `pacf(y, ${item.inputs.maxLag as number}, "levinson")[${i + 1}]`)),
+  pacfOls: ofSeries((item) => checksOf(item, "pacf", (i) => `pacf(y, ${item.inputs.maxLag as number}, "regression")[${i + 1}]`)),
+  ccf: (item) => {
+    const lags = item.expected.lags as readonly number[];
+    const value = item.expected.ccf as readonly number[];
+    // The reference's lag k is corr(x[t + k], y[t]); the language's ccf(a, b)[k] has a at t with b at t + k.
+    const tolerance = item.tolerance.abs ?? 0;
+    const checks = lags.map((lag, i): Check => ({ field: "ccf", expected: value[i], within: tolerance, expression: lag >= 0 ? `ccf(z, y, ${item.inputs.maxLag as number})[${lag}]` : `ccf(y, z, ${item.inputs.maxLag as number})[${-lag}]` }));
+    return write(`${seriesCells(item.series as string, item.transform, "y")}\n${seriesCells(item.inputs.with as string, item.inputs.withTransform as Case["transform"], "z")}`, checks);
+  },
+  portmanteau: ofSeries((item) => (["ljungBox", "boxPierce"] as const).flatMap((test) => (item.expected[test] as readonly Record<string, number | null>[]).flatMap((row, i) => {
+    const lag = (item.inputs.lags as readonly number[])[i];
+    const statistic = checksOf(item, test, () => `${test}(y, ${lag}).statistic`, row.statistic);
+    return item.inputs.modelDf === 0 ? [...statistic, ...checksOf(item, test, () => `${test}(y, ${lag}).p`, row.pValue)] : statistic;
+  }))),
+  adf: ofSeries((item) => {
+    const lags = item.inputs.autolag ? `lags: "${String(item.inputs.autolag).toLowerCase()}", maxLags: ${item.inputs.maxLag as number}` : `lags: ${item.inputs.lags as number}`;
+    const at = `adf(y, {trend: "${trends[item.inputs.regression as string]}", ${lags}})`;
+    return [...testChecks(item, at), ...checksOf(item, "lags", () => `${at}.lags`)];
+  }),
+  kpss: ofSeries((item) => testChecks(item, `kpss(y, {trend: "${trends[item.inputs.regression as string]}", bandwidth: ${item.inputs.lags as number}})`)),
+  pp: ofSeries((item) => {
+    const at = `phillipsPerron(y, {trend: "${trends[item.inputs.regression as string]}", bandwidth: ${item.inputs.lags as number}})`;
+    return [...checksOf(item, "zTau", () => `${at}.statistic`), ...checksOf(item, "pValueTau", () => `${at}.p`)];
+  }),
+  jarqueBera: ofResiduals((item, x) => [...checksOf(item, "statistic", () => `jarqueBera(${x}).statistic`), ...checksOf(item, "pValue", () => `jarqueBera(${x}).p`)]),
+  durbinWatson: ofResiduals((item, x) => checksOf(item, "statistic", () => `durbinWatson(${x})`)),
+  archLM: ofResiduals((item, x) => [...checksOf(item, "lm", () => `archLM(${x}, ${item.inputs.lags as number}).statistic`), ...checksOf(item, "lmPValue", () => `archLM(${x}, ${item.inputs.lags as number}).p`)]),
+  arimaLogLik: (item) => write(modelCells(item), [
+    ...checksOf(item, "logLik", () => "m.logLikelihood"),
+    ...checksOf(item, "nUsed", () => "m.n"),
+    ...checksOf(item, "stdInnovFirst", (i) => `m.residuals.values.filter(v => v === v)[${i}]`),
+  ]),
+  arimaML: (item) => write(modelCells(item), [
+    ...checksOf(item, "logLik", () => "m.logLikelihood"),
+    ...checksOf(item, "sigma2", () => "m.sigma2"),
+    ...checksOf(item, "k", () => "m.k"),
+    ...checksOf(item, "nUsed", () => "m.n"),
+    ...["aic", "aicc", "bic"].flatMap((field) => checksOf(item, field, () => `m.${field}`)),
+    ...coefficients(item),
+  ]),
+  forecast: (item) => {
+    if ((item.inputs.model?.regressors ?? []).length > 0) throw new Unsupported("future regressors by row");
+    const params = item.inputs.params ?? (item.expected.paramsUsed as Case["inputs"]["params"]);
+    const cells = `${modelCells(item, item.inputs.model, params)}\n\n\`\`\`forecast: f\nmodel: m\nhorizon: ${item.inputs.horizon as number}\nlevels: [0.8, 0.95]\n\`\`\`\n`;
+    return write(cells, forecastChecks(item));
+  },
+  dieboldMariano: (item) => {
+    const at = `dieboldMariano([${list(item.inputs.e1).join(", ")}], [${list(item.inputs.e2).join(", ")}], {horizon: ${item.inputs.h as number}, loss: "${item.inputs.power === 2 ? "squared" : "absolute"}"})`;
+    return write("", [...checksOf(item, "hln", () => `${at}.statistic`), ...checksOf(item, "pValueTwoSided", () => `${at}.p`)]);
+  },
+  accuracy: (item) => {
+    const given = (name: string): string => `[${list(item.inputs[name]).join(", ")}]`;
+    return write("", [
+      ...["mae", "rmse", "mape", "smape"].flatMap((measure) => checksOf(item, measure, () => `${measure}(${given("actual")}, ${given("forecast")})`)),
+      ...checksOf(item, "mase", () => `mase(${given("actual")}, ${given("forecast")}, ${given("training")}, ${item.inputs.period as number})`),
+    ]);
+  },
+};
