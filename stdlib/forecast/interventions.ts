@@ -1,8 +1,7 @@
 // Regressors that are known for every time: they extend into the forecast by themselves.
 
-import { indexRange, milliseconds, periodIndex, periodOf, timeAt } from "../series/calendar.ts";
-import { parseEvery } from "../series/every.ts";
-import { endMs, startMs } from "../series/period.ts";
+import { milliseconds, periodIndex, periodSpan } from "../series/calendar.ts";
+import { dayMs } from "../series/civil.ts";
 import { easterMs } from "./easter.ts";
 
 /** An intervention or calendar effect, as plain data; `interventionColumns` computes its columns. */
@@ -54,7 +53,6 @@ export interface Columns {
   readonly columns: readonly Float64Array[];
 }
 
-const dayMs = 86_400_000;
 const weekdays = ["Monday", "Tuesday", "Wednesday", "Thursday", "Friday", "Saturday"];
 
 /** Columns of an intervention over `n` periods from `start`, in levels. The value at a time never depends on where
@@ -64,25 +62,25 @@ const weekdays = ["Monday", "Tuesday", "Wednesday", "Thursday", "Friday", "Satur
  *  Trading days: Bell & Hillmer (1983), six contrasts; the length of the period is left to `perDay`.
  *  @example interventionColumns(levelShift("2024-02"), "shift", "2024-01", "P1M", 3).columns[0] // [0, 1, 1] */
 export function interventionColumns(intervention: Intervention, name: string, start: string, every: string | null, n: number): Columns {
-  const first = countOf(start, every);
+  const first = periodIndex(start, every);
   const byIndex = (value: (k: number) => number): Columns =>
     ({ names: [name], columns: [Float64Array.from({ length: n }, (_, t) => value(first + t))] });
   switch (intervention.intervention) {
     case "pulse": {
-      const [from, to] = span(intervention.at, every, start);
+      const [from, to] = span(intervention.at, every);
       return byIndex((k) => (k >= from && k <= to ? 1 : 0));
     }
     case "levelShift": {
-      const [from] = span(intervention.at, every, start);
+      const [from] = span(intervention.at, every);
       return byIndex((k) => (k >= from ? 1 : 0));
     }
     case "ramp": {
-      const [from] = span(intervention.from, every, start), [, to] = span(intervention.to, every, start);
+      const [from] = span(intervention.from, every), [, to] = span(intervention.to, every);
       if (to <= from) throw new RangeError(`ramp: it ends at ${intervention.to}, which is not after its start ${intervention.from}`);
       return byIndex((k) => Math.min(1, Math.max(0, (k - from) / (to - from))));
     }
     case "temporaryChange": {
-      const [from] = span(intervention.at, every, start);
+      const [from] = span(intervention.at, every);
       return byIndex((k) => (k >= from ? intervention.decay ** (k - from) : 0));
     }
     case "harmonics": return harmonicColumns(intervention, name, first, n);
@@ -91,21 +89,10 @@ export function interventionColumns(intervention: Intervention, name: string, st
   }
 }
 
-/** Number of a period on a count that does not depend on where a series starts: 0 holds the first instant of 2000. */
-function countOf(time: string, every: string | null): number {
-  return every === null ? periodOf(time, every).index : -periodIndex(time, every, "2000-01-01");
-}
-
 /** Numbers of the first and last period that a time text covers. */
-function span(time: string, every: string | null, grid: string): readonly [number, number] {
-  const sought = periodOf(time, every);
-  if (every === null) return [sought.index, sought.index];
-  // A stretch of the grid that certainly holds the time, two periods more at each end.
-  const { months, ms } = parseEvery(every), low = periodIndex(grid, every, time) - 2;
-  const n = Math.ceil((endMs(sought) - startMs(sought)) / (months > 0 ? months * 28 * dayMs : ms)) + 5;
-  const { from, to } = indexRange({ name: "", start: timeAt(grid, every, low), every, n }, time, time);
-  const offset = countOf(grid, every) + low;
-  return [offset + from, offset + to - 1];
+function span(time: string, every: string | null): readonly [number, number] {
+  const { from, to } = periodSpan(time, every);
+  return [from, to - 1];
 }
 
 /** Where each of n periods starts, and where the last one ends: n + 1 instants in UTC milliseconds. */

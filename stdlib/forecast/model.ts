@@ -2,6 +2,7 @@
 
 import type { Fit, Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
+import type { EstimatedSmoothing, SmoothingHold } from "./smoothing/estimateSmoothing.ts";
 
 /** A naive or smoothing rule of comparison, tied to a series, as plain data. Parameters that were estimated stand in `parameters`. */
 export interface Rule {
@@ -14,6 +15,12 @@ export interface Rule {
   readonly damped?: boolean;
   readonly members?: readonly Forecaster[];
   readonly parameters?: Readonly<Record<string, number>>;
+  /** How errors enter a smoothing rule; multiplicative where trend or season multiplies, unless asked otherwise. */
+  readonly error?: "additive" | "multiplicative";
+  /** Weights and starting states that were held, not estimated. */
+  readonly hold?: SmoothingHold;
+  /** The estimated smoothing model: weights, states before the first value and after the last. */
+  readonly smoothing?: EstimatedSmoothing;
 }
 
 export type Forecaster = Fit | Rule;

@@ -1,0 +1,184 @@
+// A forecast distribution in the units of the data: quantiles, means, paths, probabilities, scores.
+
+import { normalCdf, normalQuantile } from "../distributions/normal.ts";
+import { lognormalCrps, normalCrps, sampleCrps } from "../evaluation/scores.ts";
+import { diagonalRoots, factorOf, type Predictive } from "./predictive.ts";
+import { normals, seeded } from "./random.ts";
+import { isLinear, redoValue, undoCovariance, undoMean, undoPath, undoValue, type UndoStep } from "./undo.ts";
+
+export interface Outlook {
+  readonly horizon: number;
+  /** Data units. */
+  readonly mean: Float64Array; readonly median: Float64Array;
+  /** Standard deviations in data units. */
+  readonly sd: Float64Array;
+  /** Standard errors on the scale on which errors are normal (of the logs, say). */
+  readonly se: Float64Array;
+  /** The quantile of each period with probability p, in (0, 1). */
+  readonly quantile: (p: number) => Float64Array;
+  /** Probability that the value h periods ahead (0 is the first) lies above a value. */
+  readonly above: (h: number, value: number) => number;
+  /** Seeded sample paths; each has length horizon. */
+  readonly paths: (count: number, seed: number) => Float64Array[];
+  /** Exact covariance matrix in data units, flat by rows; null where it is only known by simulation. */
+  readonly covariance: () => Float64Array | null;
+  /** Whether values in data units are jointly normal. */
+  readonly normal: boolean;
+  /** Continuous ranked probability score of the forecast h periods ahead. */
+  readonly crps: (h: number, actual: number) => number;
+}
+
+/** Draws that stand for a distribution with no closed form: enough for a 95% limit to about 2% of its distance from the median. */
+const drawCount = 4000;
+
+/** Undoes the steps of a predictive distribution. Linear steps keep it normal; a log or Box-Cox is undone on quantiles
+ *  directly, and the mean by its own formula (log) or by quadrature; whatever couples periods after that, by seeded draws. */
+export function outlookOf(predictive: Predictive, steps: readonly UndoStep[], seed: number): Outlook {
+  const size = predictive.mean.length, split = steps.findIndex((s) => !isLinear(s)), cut = split < 0 ? steps.length : split;
+  const linear = steps.slice(0, cut), rest = steps.slice(cut);
+  const mean = linear.reduce((m, step) => undoMean(step, m), predictive.mean);
+  const covariance = once(() => linear.reduce((c, step) => undoCovariance(step, c, size), predictive.covariance()));
+  const se = linear.length === 0 ? predictive.se : linear.every((s) => s.undo === "affine")
+    ? predictive.se.map((s, h) => linear.reduce((v, step) => (step.undo === "affine" ? v * Math.abs(step.times[h]) : v), s)) : diagonalRoots(covariance(), size);
+  const { draw } = predictive;
+  const modelled: Predictive = { mean, covariance, se, ...(draw ? { draw: (normal) => undoPath(linear, draw(normal)) } : {}) };
+  if (draw || rest.some((s) => s.undo === "difference")) return drawnOutlook(modelled, rest, seed);
+  return normalOutlook(modelled, rest);
+}
+
+/** Quantiles in closed form: each period is a monotone function of a normal number. */
+function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlook {
+  const { mean: m, se } = predictive, horizon = m.length;
+  const turnsOver = rest.reduce((sign, s) => (s.undo === "affine" && s.times[0] < 0 ? -sign : sign), 1) < 0;
+  const quantile = (p: number): Float64Array => {
+    const z = normalQuantile(turnsOver ? 1 - p : p);
+    return m.map((v, h) => undoValue(rest, h, v + z * se[h]));
+  };
+  const moments = m.map((_, h) => h).reduce((all, h) => {
+    const { mean, sd } = momentsAt(rest, h, m[h], se[h]);
+    all.mean[h] = mean; all.sd[h] = sd;
+    return all;
+  }, { mean: new Float64Array(horizon), sd: new Float64Array(horizon) });
+  const factor = once(() => factorOf(predictive.covariance(), horizon));
+  const form = formOf(rest);
+  return {
+    horizon, mean: moments.mean, median: m.map((v, h) => undoValue(rest, h, v)), sd: moments.sd, se, quantile, normal: form === "normal",
+    above: (h, value) => {
+      const z = (redoValue(rest, h, value) - m[h]) / se[h];
+      return turnsOver ? normalCdf(z) : normalCdf(-z);
+    },
+    paths: (count, seed) => drawNormal(m, factor(), count, seed).map((path) => undoPath(rest, path)),
+    covariance: () => (form === "normal" ? predictive.covariance() : form === "lognormal" ? lognormalCovariance(predictive.covariance(), moments.mean, rest) : null),
+    crps: (h, actual) => {
+      if (form === "normal") return normalCrps(actual, m[h], se[h]);
+      if (form === "lognormal") { const { add, times } = tailOf(rest, h); return Math.abs(times) * lognormalCrps((actual - add) / times, m[h], se[h]); }
+      return crpsByQuantiles((z) => undoValue(rest, h, m[h] + z * se[h]), actual);
+    },
+  };
+}
+
+/** Distribution by equally likely paths. Point forecasts in closed form stay what they are where the rest is linear. */
+function drawnOutlook(predictive: Predictive, rest: readonly UndoStep[], seed: number): Outlook {
+  const horizon = predictive.mean.length, factor = once(() => factorOf(predictive.covariance(), horizon));
+  const paths = (count: number, from: number): Float64Array[] =>
+    (predictive.draw ? drawPairs(predictive.draw, count, from) : drawNormal(predictive.mean, factor(), count, from)).map((path) => undoPath(rest, path));
+  return sampleOutlook(paths(drawCount, seed), predictive.se, paths, rest.length === 0 ? predictive.mean : undefined);
+}
+
+/** Distribution that is known by sample paths in data units.
+ *  @param mean  where it is known better than by the sample's own */
+export function sampleOutlook(sample: readonly Float64Array[], se: Float64Array, paths: Outlook["paths"], mean?: Float64Array): Outlook {
+  const horizon = se.length;
+  const sorted = Array.from({ length: horizon }, (_, h) => Float64Array.from(sample, (path) => path[h]).sort());
+  const average = sorted.map((column) => column.reduce((a, b) => a + b, 0) / column.length);
+  const sd = Float64Array.from(sorted, (column, h) => Math.sqrt(column.reduce((sum, x) => sum + (x - average[h]) ** 2, 0) / (column.length - 1)));
+  const quantile = (p: number): Float64Array => Float64Array.from(sorted, (column) => quantileOf(column, p));
+  return {
+    horizon, mean: mean ?? Float64Array.from(average), median: quantile(0.5), sd, se, quantile, paths, normal: false, covariance: () => null,
+    above: (h, value) => 1 - countUpTo(sorted[h], value) / sorted[h].length,
+    crps: (h, actual) => sampleCrps(actual, sorted[h]),
+  };
+}
+
+/** Quantile of sorted values, straight lines between them (the usual definition with (n - 1) p). */
+export function quantileOf(sorted: Float64Array, p: number): number {
+  const at = p * (sorted.length - 1), low = Math.floor(at), share = at - low;
+  return share === 0 ? sorted[low] : sorted[low] * (1 - share) + sorted[low + 1] * share;
+}
+
+function countUpTo(sorted: Float64Array, value: number): number {
+  let low = 0, high = sorted.length;
+  while (low < high) { const middle = (low + high) >> 1; if (sorted[middle] <= value) low = middle + 1; else high = middle; }
+  return low;
+}
+
+/** "normal": nothing left to undo; "lognormal": an exp and then affine steps; "other": the rest. */
+function formOf(rest: readonly UndoStep[]): "normal" | "lognormal" | "other" {
+  if (rest.length === 0) return "normal";
+  return rest[0].undo === "exp" && rest.slice(1).every((s) => s.undo === "affine") ? "lognormal" : "other";
+}
+
+/** add + times x of the affine steps after the first one. */
+function tailOf(rest: readonly UndoStep[], h: number): { readonly add: number; readonly times: number } {
+  return rest.slice(1).reduce((t, s) => (s.undo === "affine" ? { add: s.add[h] + s.times[h] * t.add, times: s.times[h] * t.times } : t), { add: 0, times: 1 });
+}
+
+/** Mean and standard deviation in data units of a period that is a function of a normal number. */
+export function momentsAt(rest: readonly UndoStep[], h: number, m: number, se: number): { readonly mean: number; readonly sd: number } {
+  const form = formOf(rest);
+  if (form === "normal") return { mean: m, sd: se };
+  if (form === "lognormal") {
+    const { add, times } = tailOf(rest, h), middle = Math.exp(m + (se * se) / 2);
+    return { mean: add + times * middle, sd: Math.abs(times) * middle * Math.sqrt(Math.expm1(se * se)) };
+  }
+  // The trapezoid rule on a normal weight: errors fall faster than any power of the step.
+  let weight = 0, first = 0, second = 0;
+  const middle = undoValue(rest, h, m);
+  for (let i = -200; i <= 200; i++) {
+    const z = i * 0.0425, w = Math.exp(-0.5 * z * z), x = undoValue(rest, h, m + z * se) - middle;
+    weight += w; first += w * x; second += w * x * x;
+  }
+  const mean = first / weight;
+  return { mean: middle + mean, sd: Math.sqrt(Math.max(0, second / weight - mean * mean)) };
+}
+
+function lognormalCovariance(c: Float64Array, mean: Float64Array, rest: readonly UndoStep[]): Float64Array {
+  const size = mean.length, middle = mean.map((v, h) => v - tailOf(rest, h).add);
+  return Float64Array.from(c, (v, at) => middle[Math.floor(at / size)] * middle[at % size] * Math.expm1(v));
+}
+
+/** CRPS as twice the mean pinball loss over all quantiles, by the midpoint rule in the normal number. */
+function crpsByQuantiles(valueAt: (z: number) => number, actual: number): number {
+  let sum = 0, weight = 0;
+  for (let i = -160; i < 160; i++) {
+    const z = (i + 0.5) * 0.05, w = Math.exp(-0.5 * z * z), p = normalCdf(z), q = valueAt(z);
+    sum += w * (actual >= q ? p * (actual - q) : (1 - p) * (q - actual)); weight += w;
+  }
+  return (2 * sum) / weight;
+}
+
+/** Normal paths in pairs that mirror each other about the mean: means of linear things come out exact. */
+function drawNormal(mean: Float64Array, factor: Float64Array, count: number, seed: number): Float64Array[] {
+  const size = mean.length, e = new Float64Array(size);
+  return drawPairs((normal) => {
+    for (let i = 0; i < size; i++) e[i] = normal();
+    return mean.map((m, i) => { let sum = m; for (let k = 0; k <= i; k++) sum += factor[i * size + k] * e[k]; return sum; });
+  }, count, seed);
+}
+
+function drawPairs(draw: (normal: () => number) => Float64Array, count: number, seed: number): Float64Array[] {
+  const normal = normals(seeded(seed)), paths: Float64Array[] = [];
+  while (paths.length < count) {
+    const used: number[] = [];
+    paths.push(draw(() => { const e = normal(); used.push(e); return e; }));
+    if (paths.length === count) break;
+    let at = 0;
+    paths.push(draw(() => -used[at++]));
+  }
+  return paths;
+}
+
+export function once<T>(make: () => T): () => T {
+  let made: { readonly value: T } | null = null;
+  return () => (made ??= { value: make() }).value;
+}
