@@ -1,0 +1,71 @@
+// The one door to the bundler: makes of the source everything that is shipped, in the folder `.build`.
+//   engine, cells and stdlib  ->  a worker's text  ->  inside the page's text  ->  inside the frame's document
+//   the desk                  ->  desk.js, desk.css, desk.html
+//   the command               ->  lagbook.js, and pieces that it loads when they are needed
+
+import { build } from "esbuild";
+import type { BuildOptions } from "esbuild";
+import { chmod, copyFile, mkdir, readFile, readdir, rm, writeFile } from "node:fs/promises";
+import { join } from "node:path";
+import { pathToFileURL } from "node:url";
+import { frameDocument } from "./frame.ts";
+
+export interface Built { readonly file: string; readonly bytes: number }
+
+/** Builds all parts. @param top the project's folder */
+export async function bundle(top: string): Promise<readonly Built[]> {
+  const out = join(top, ".build");
+  await mkdir(out, { recursive: true });
+  const version = (JSON.parse(await readFile(join(top, "package.json"), "utf8")) as { version: string }).version;
+  const define = { LAGBOOK_VERSION: JSON.stringify(version) };
+  const from = (path: string): string => join(top, "runtime", path);
+  // The parts that nothing else waits for are made side by side with the three stages of the frame.
+  await Promise.all([
+    frame(from, define, out), desk(from, define, out), command(from, define, out), catalogue(from, define, out),
+    text(from("desk/shell.ts"), { define }).then((script) => writeFile(join(out, "shell.js"), script)),
+  ]);
+  const names = (await readdir(out)).filter((name) => /\.(js|html|css|json)$/.test(name)).sort();
+  return Promise.all(names.map(async (file) => ({ file, bytes: (await readFile(join(out, file))).length })));
+}
+
+async function frame(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
+  const engine = await text(from("host/engineWorker.ts"), { define: { ...define, requestAnimationFrame: "lagbookSoon" }, inject: [from("host/soon.ts")] });
+  const page = await text(from("page/entry.ts"), { define: { ...define, LAGBOOK_ENGINE: JSON.stringify(engine) } });
+  await writeFile(join(out, "frame.html"), frameDocument(page));
+}
+
+async function desk(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
+  await build({ ...browser, entryPoints: [from("desk/desk.ts")], outfile: join(out, "desk.js"), define });
+  await build({ ...browser, entryPoints: [from("desk/desk.css")], outfile: join(out, "desk.css"), loader: {} });
+  await copyFile(from("desk/desk.html"), join(out, "desk.html"));
+}
+
+async function command(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
+  // Pieces bear a hash of their content: those of an earlier build would stay for ever.
+  await rm(join(out, "pieces"), { recursive: true, force: true });
+  await build({
+    entryPoints: [from("host/lagbook.ts")], outdir: out, chunkNames: "pieces/[name]-[hash]", bundle: true, splitting: true, format: "esm", platform: "node", target: "node20",
+    minify: true, keepNames: false, legalComments: "none", loader: { ".css": "text" }, define: { ...define, LAGBOOK_BUNDLED: "true" }, logLevel: "warning",
+    // Packages written for `require` ask for Node's own modules by it.
+    banner: { js: "#!/usr/bin/env node\nimport { createRequire as lagbookRequire } from \"node:module\"; const require = lagbookRequire(import.meta.url);" },
+  });
+  await chmod(join(out, "lagbook.js"), 0o755);
+}
+
+async function catalogue(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
+  const made = join(out, "catalogue.mjs");
+  await build({ entryPoints: [from("host/catalogue.ts")], outfile: made, bundle: true, format: "esm", platform: "node", target: "node20", define, logLevel: "warning" });
+  const { catalogueText } = await import(`${pathToFileURL(made).href}?${Date.now()}`) as { catalogueText: () => string };
+  await writeFile(join(out, "catalogue.json"), catalogueText());
+  await rm(made);
+}
+
+const browser: BuildOptions = { bundle: true, minify: true, format: "iife", platform: "browser", target: "es2022", legalComments: "none", loader: { ".css": "text" }, logLevel: "warning" };
+
+/** The script of one entry, as text. */
+async function text(entry: string, more: BuildOptions): Promise<string> {
+  const result = await build({ ...browser, ...more, entryPoints: [entry], write: false });
+  const [file] = result.outputFiles ?? [];
+  if (!file) throw new Error(`nothing was built from ${entry}`);
+  return file.text;
+}
