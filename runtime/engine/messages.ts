@@ -56,6 +56,8 @@ export type ToEngine =
   | { readonly to: "file"; readonly file: string; readonly bytes: Uint8Array | null; readonly reason?: string }
   | { readonly to: "width"; readonly width: number }
   | { readonly to: "allowCode"; readonly allow: boolean }
+  /** Do not run this cell: it fails with "stopped by the reader" until its own text changes. Sent before the text to a fresh worker. */
+  | { readonly to: "hold"; readonly cell: string }
   | { readonly to: "ping"; readonly beat: number };
 
 export type FromEngine =

@@ -1,6 +1,24 @@
-// The page: starts the engine in a worker, keeps what it says, and draws it.
+// The page: starts the engine in a worker, keeps what it says, draws it once a frame, and speaks with the window around it.
 
-import type { ParentLink } from "./protocol.ts";
+import { listen } from "./actions.ts";
+import { charts as chartsOf } from "./charts.ts";
+import { chartKey } from "./cell.ts";
+import { drawing } from "./dom.ts";
+import { engineLink } from "./engineLink.ts";
+import { focusKeeper } from "./focus.ts";
+import { hear, pageState } from "./pageState.ts";
+import { pageActions } from "./pageActions.ts";
+import type { PageUi } from "./pageActions.ts";
+import { pageTrees, summary } from "./pageTrees.ts";
+import { controlOf, settings as settingsOf } from "./settings.ts";
+import { stripTree } from "./strip.ts";
+import { h } from "./tree.ts";
+import type { Tree } from "./tree.ts";
+import { watchdog } from "./watchdog.ts";
+import type { FromPage, ParentLink, ToPage } from "./protocol.ts";
+import { statesPost } from "./statesPost.ts";
+import type { FromEngine, ToEngine } from "../engine/messages.ts";
+import css from "./page.css";
 
 export interface PageOptions {
   /** The element that the page fills. What stands in it (the pre-rendered page) stays until the first answer is complete. */
@@ -11,6 +29,137 @@ export interface PageOptions {
   readonly parent: ParentLink | null;
 }
 
-export function startPage(options: PageOptions): void {
-  void options;
+export interface Page {
+  /** A message as from the window around the page. */
+  hear(message: ToPage): void;
+  /** Resolves when nothing waits to be drawn. */
+  drawn(): Promise<void>;
+}
+
+export function startPage({ root, workerSource, parent }: PageOptions): Page {
+  const post = (message: FromPage): void => parent?.post(message);
+  addStyle();
+  const still = root.firstElementChild;
+  const live = root.appendChild(Object.assign(document.createElement("div"), { className: still ? "live-page getting-ready" : "live-page" }));
+  const article = live.appendChild(Object.assign(document.createElement("article"), { className: "page" }));
+  const rest = live.appendChild(Object.assign(document.createElement("div"), { className: "rest" }));
+  const voice = live.appendChild(Object.assign(document.createElement("div"), { className: "unseen" }));
+  voice.setAttribute("aria-live", "polite"); voice.setAttribute("role", "status");
+
+  const state = pageState();
+  const ui: PageUi = { canEdit: false, stripOpen: !matchMedia("(max-width: 640px)").matches, tables: new Set(), faults: new Map(), broken: null };
+  const files = new Map<string, Extract<ToEngine, { to: "file" }>>();
+  const held = new Set<string>();
+  let text: Extract<ToPage, { to: "text" }> | null = null;
+  let allow: boolean | null = null;
+
+  const announce = (words: string): void => { voice.textContent = words; };
+  const charts = chartsOf(announce);
+  const trees = pageTrees();
+  const owner = { mounted: (key: string, element: Element) => charts.mounted(key, element as HTMLElement), unmounted: (key: string) => charts.unmounted(key) };
+  const drawArticle = drawing(article, owner); const drawRest = drawing(rest, owner);
+  const keepFocus = focusKeeper(root);
+  const states = statesPost(state, post);
+  const dog = watchdog(state, () => schedule());
+  const engine = engineLink(workerSource, {
+    hear: fromEngine, silent: (ms) => dog.silent(ms), answered: (running) => dog.answered(running),
+    broken: (message) => { ui.broken = message; schedule(); },
+  });
+  const settings = settingsOf((message) => engine.send(message));
+
+  function fromEngine(message: FromEngine): void {
+    if (message.from === "need") {
+      const known = files.get(message.file);
+      if (known) engine.send(known); else post({ page: "needFile", file: message.file });
+      return;
+    }
+    hear(state, message);
+    if (message.from === "cell") { settings.answered(message.cell); dog.reported(message.cell); }
+    if (message.from === "outline") { document.title = message.title; post({ page: "outline", version: message.version, title: message.title, problems: message.problems }); for (const id of held) if (!state.blocks.some((block) => block.block === "cell" && block.cell === id)) held.delete(id); }
+    if (message.from === "settled") { settings.settled(message.moved); post({ page: "settled", version: message.version, moved: message.moved }); sayLater(); }
+    states.note(message);
+    schedule();
+  }
+
+  let frame = 0;
+  let done: Promise<void> = Promise.resolve();
+  function schedule(): void { if (frame === 0) frame = requestAnimationFrame(draw); }
+  function draw(): void {
+    frame = 0;
+    keepFocus(() => {
+      drawArticle(trees.blocks(state, { canEdit: ui.canEdit, still: false, pending: settings.pending, fault: (name) => ui.faults.get(name) ?? null, asTable: (key) => ui.tables.has(key), canStop: (id) => dog.canStop(id) }));
+      const controls = [...state.cells.values()].flatMap((cell) => { const part = controlOf(cell); return part && cell.name !== null ? [{ name: cell.name, part, pending: settings.pending(cell.name), fault: ui.faults.get(cell.name) ?? null, from: cell.from }] : []; }).sort((a, b) => a.from - b.from);
+      drawRest([noticeTree(dog.notice(), ui.broken), stripTree(controls, ui.stripOpen, Object.keys(state.moved), ui.canEdit)].filter((tree) => tree !== null));
+    });
+    for (const cell of state.cells.values()) for (const [index, part] of (cell.show ?? []).entries()) if (part.part === "chart") charts.want(chartKey(cell.id, index), part);
+    done = charts.drawn();
+    if (state.settled && still?.isConnected) void done.then(() => { still.remove(); live.classList.remove("getting-ready"); });
+  }
+
+  let saying = 0;
+  function sayLater(): void { clearTimeout(saying); saying = window.setTimeout(() => announce(summary(state)), 800); }
+
+  function sayAllAgain(): void {
+    ui.broken = null; dog.fresh();
+    if (allow !== null) engine.send({ to: "allowCode", allow });
+    engine.send({ to: "width", width: figureWidth(article) });
+    for (const cell of held) engine.send({ to: "hold", cell });
+    for (const message of settings.again()) engine.send(message);
+    if (text) engine.send({ to: "text", version: text.version, text: text.text });
+  }
+
+  function fromParent(message: ToPage): void {
+    switch (message.to) {
+      case "text": text = message; engine.send({ to: "text", version: message.version, text: message.text }); break;
+      case "file": { const file: Extract<ToEngine, { to: "file" }> = { to: "file", file: message.file, bytes: message.bytes, ...(message.reason === undefined ? {} : { reason: message.reason }) }; files.set(message.file, file); engine.send(file); break; }
+      case "allowCode": allow = message.allow; engine.send({ to: "allowCode", allow }); break;
+      case "set": settings.set(message.name, message.value); break;
+      case "unset": settings.unset(message.name); break;
+      case "theme": if (message.theme === "auto") delete document.documentElement.dataset.theme; else document.documentElement.dataset.theme = message.theme; break;
+      case "reveal": actions.reveal(message.position); break;
+      case "canEdit": ui.canEdit = message.canEdit; root.classList.toggle("can-edit", message.canEdit); schedule(); break;
+      case "restart": engine.restart(); sayAllAgain(); break;
+    }
+  }
+
+  const actions = pageActions({
+    root, state, ui, settings, charts, post, schedule, announce, alone: parent === null,
+    stop(cell) { held.add(cell); engine.restart(); sayAllAgain(); schedule(); },
+    startAgain() { engine.restart(); sayAllAgain(); schedule(); },
+  });
+  listen(root, actions);
+  watchSize(article, (width) => engine.send({ to: "width", width }), live, (height) => post({ page: "height", height }));
+  engine.send({ to: "width", width: figureWidth(article) });
+  parent?.listen(fromParent);
+  post({ page: "ready" });
+  return { hear: fromParent, async drawn() { await new Promise((resolve) => requestAnimationFrame(resolve)); await done; } };
+}
+
+function addStyle(): void {
+  if (document.getElementById("page-style")) return;
+  const style = document.createElement("style");
+  style.id = "page-style"; style.textContent = css;
+  document.head.append(style);
+}
+
+function noticeTree(notice: { readonly words: string; readonly cell: string | null; readonly label: string } | null, broken: string | null): Tree | null {
+  if (broken !== null) return h("div", { class: "notice", role: "alert", key: "notice" }, h("p", {}, `The computing part of this page stopped: ${broken}`), h("button", { type: "button", "data-act": "start-again" }, "start it again"));
+  if (notice === null) return null;
+  return h("div", { class: "notice", role: "alert", key: "notice" }, h("p", {}, notice.words),
+    notice.cell === null ? h("button", { type: "button", "data-act": "start-again" }, "start it again") : h("button", { type: "button", "data-act": "stop", "data-cell": notice.cell }, `stop ${notice.label}`));
+}
+
+/** Pixels that a figure has across. */
+function figureWidth(article: HTMLElement): number { return Math.max(240, Math.min(760, Math.floor(article.clientWidth || 704))); }
+
+function watchSize(article: HTMLElement, width: (px: number) => void, all: HTMLElement, height: (px: number) => void): void {
+  let told = figureWidth(article); let toldHeight = 0; let timer = 0;
+  new ResizeObserver(() => {
+    const tall = Math.ceil(all.scrollHeight);
+    if (tall !== toldHeight) { toldHeight = tall; height(tall); }
+    const now = figureWidth(article);
+    if (Math.abs(now - told) < told / 10) return;
+    clearTimeout(timer);
+    timer = window.setTimeout(() => { told = now; width(now); }, 250);
+  }).observe(all);
 }

@@ -1,0 +1,103 @@
+// One cell: its name and state in the margin, what it shows, what is wrong with it, and its fields.
+
+import { controlTree } from "./controls.ts";
+import { chartDataTable, chartMenu, tableMenu } from "./menus.ts";
+import { fieldLink } from "./fieldLink.ts";
+import { printValue } from "./format.ts";
+import { claimsTree, equationTree, figuresTree, tableTree, textTree } from "./partTrees.ts";
+import { h } from "./tree.ts";
+import type { AttributeValue, Given, Tree } from "./tree.ts";
+import type { CellReport } from "../engine/messages.ts";
+import type { ChartPart, Part } from "../../cells/parts/part.ts";
+
+export interface CellContext {
+  readonly canEdit: boolean;
+  /** Printed once for a reader without JavaScript: no buttons, controls as words. */
+  readonly still: boolean;
+  readonly pending: (name: string) => unknown;
+  readonly fault: (name: string) => string | null;
+  /** Whether the chart's or table's data are shown as a table. */
+  readonly asTable: (key: string) => boolean;
+  /** Whether stopping this cell should be offered. */
+  readonly canStop: (id: string) => boolean;
+}
+
+/** The key by which a chart of a cell is known to whoever draws it. */
+export function chartKey(cell: string, index: number): string { return `${cell}/${index}`; }
+
+export function cellTree(cell: CellReport, key: string, context: CellContext): Tree {
+  const source = context.canEdit ? { "data-act": "source", "data-from": cell.from, "data-to": cell.to } : {};
+  const label = cell.name ?? cell.kind;
+  return h("section", { class: "cell", id: cell.name ? `cell-${cell.name}` : null, key, "data-block": cell.id, "data-state": cell.state, "data-kind": cell.kind, "aria-label": cell.name ? `${cell.kind} ${cell.name}` : cell.kind, "aria-busy": cell.state === "working" ? "true" : null },
+    h("div", { class: "cell-margin" },
+      context.canEdit ? h("button", { type: "button", class: "cell-name", ...source, "aria-label": `${label}: go to its source` }, label) : h("span", { class: "cell-name" }, label),
+      cell.name ? h("span", { class: "cell-kind" }, cell.kind) : null,
+      h("span", { class: "cell-state" }, h("span", { class: "shape", "aria-hidden": "true" }), cell.state)),
+    h("div", { class: "cell-body" },
+      faultTree(cell, context), progressTree(cell, context),
+      (cell.show ?? []).map((part, index) => partTree(part, index, cell, context, source)),
+      cell.notes.length > 0 ? h("ul", { class: "cell-notes" }, cell.notes.map((note) => h("li", {}, note))) : null,
+      fieldsTree(cell, context)));
+}
+
+function faultTree(cell: CellReport, context: CellContext): Given {
+  if (!cell.message) return null;
+  if (cell.state !== "failed" && cell.state !== "blocked") return h("p", { class: "cell-remark" }, cell.message);
+  const line = cell.at?.line ?? cell.line;
+  const place = cell.at ?? cell;
+  return h("div", { class: `cell-fault ${cell.state}` },
+    h("p", {}, h("span", { class: "fault-word" }, cell.state === "failed" ? "Failed" : "Blocked"), ` ${cell.message}`),
+    context.canEdit
+      ? h("button", { type: "button", class: "quiet", "data-act": "source", "data-from": place.from, "data-to": place.to }, `go to line ${line}`)
+      : h("span", { class: "fault-line" }, `line ${line} of the notebook`));
+}
+
+function progressTree(cell: CellReport, context: CellContext): Given {
+  if (cell.state !== "working") return null;
+  const { progress } = cell;
+  const stop = context.canStop(cell.id) ? h("button", { type: "button", class: "quiet stop", "data-act": "stop", "data-cell": cell.id }, "stop this cell") : null;
+  if (!progress) return stop ? h("p", { class: "cell-progress" }, "still at work ", stop) : null;
+  const count = progress.total > 0 ? `${printValue(progress.done)} of ${printValue(progress.total)}` : printValue(progress.done);
+  return h("p", { class: "cell-progress" },
+    h("progress", { max: progress.total > 0 ? progress.total : null, value: progress.total > 0 ? progress.done : null, "aria-label": `progress of ${cell.name ?? cell.kind}` }),
+    h("span", { class: "number" }, ` ${count}${progress.what ? ` ${progress.what}` : ""} `), stop);
+}
+
+function partTree(part: Part, index: number, cell: CellReport, context: CellContext, source: Readonly<Record<string, AttributeValue>>): Given {
+  const key = chartKey(cell.id, index);
+  switch (part.part) {
+    case "chart": return chartTree(part, key, context, source);
+    case "table": return h("div", { class: "outlet", ...source }, tableTree(part, context.still ? null : tableMenu(key)));
+    case "equation": return h("div", { class: "outlet", ...source }, equationTree(part));
+    case "text": return textTree(part);
+    case "claims": return claimsTree(part);
+    case "figures": return h("div", { class: "outlet", ...source }, figuresTree(part));
+    case "control": return context.still ? stillControl(part) : controlTree(part, { name: cell.name ?? cell.id, where: "place", canEdit: context.canEdit, pending: context.pending(cell.name ?? ""), fault: context.fault(cell.name ?? "") });
+  }
+}
+
+function chartTree(part: ChartPart, key: string, context: CellContext, source: Readonly<Record<string, AttributeValue>>): Tree {
+  const box = context.still
+    ? { class: "chart-box", own: key, role: "img", "aria-label": part.alt }
+    : { class: "chart-box", own: key, role: "application", "aria-roledescription": "chart", tabindex: 0, "aria-label": `${part.title}. ${part.alt} The arrow keys read its points.`, "data-chart": key, style: `min-height:${part.height}px` };
+  return h("figure", { class: "part part-chart", key: `chart ${key}` },
+    h("figcaption", {}, h("span", { class: "chart-title" }, part.title), context.still ? null : chartMenu(key, context.asTable(key))),
+    h("div", { class: "outlet", ...source }, h("div", box)),
+    h("p", { class: "chart-alt" }, part.alt),
+    context.asTable(key) ? chartDataTable(part) : null);
+}
+
+function stillControl(part: Extract<Part, { part: "control" }>): Tree {
+  const at = typeof part.at === "object" ? `${part.at.from} to ${part.at.to}` : typeof part.at === "boolean" ? (part.at ? "on" : "off") : printValue(part.at);
+  return h("p", { class: "control still" }, h("span", { class: "label" }, part.label), " ", h("strong", { class: "number" }, at));
+}
+
+function fieldsTree(cell: CellReport, context: CellContext): Given {
+  if (context.still || !cell.fields || cell.fields.length === 0 || cell.state === "failed" || cell.state === "blocked") return null;
+  return h("details", { class: "fields" },
+    h("summary", {}, "fields of this cell"),
+    h("ul", {}, cell.fields.map(({ expression, value }) => {
+      const link = fieldLink(expression, value);
+      return h("li", {}, h("code", {}, link), h("button", { type: "button", class: "quiet", "data-act": "copy", "data-text": link, "aria-label": `copy ${expression}` }, "copy"));
+    })));
+}

@@ -1,0 +1,27 @@
+// A chart printed as SVG without a browser: for the exported page's first sight and its print.
+
+import { parse, View } from "vega";
+import { rowsOf } from "./chartData.ts";
+import { compileChart } from "./chartSpec.ts";
+import { vegaExpression } from "./vegaExpression.ts";
+import type { ChartPart } from "../../cells/parts/part.ts";
+
+/** @param width in pixels
+ *  @returns SVG whose colours are the page's CSS variables; it scales down with its box */
+export async function chartStill(part: ChartPart, width: number): Promise<string> {
+  const compiled = compileChart(part);
+  const view = new View(parse(compiled.spec, undefined, { ast: true }), { renderer: "none", expr: vegaExpression as never });
+  for (const [name, columns] of Object.entries(part.data)) if (compiled.dataNames.has(name)) view.data(name, rowsOf(columns));
+  for (const [name, value] of Object.entries(part.params ?? {})) if (compiled.signalNames.has(name)) view.signal(name, value);
+  if (compiled.fits) view.width(width).height(part.height);
+  else for (const name of compiled.widthSignals) view.signal(name, "vconcat" in part.spec || compiled.widthSignals.length === 1 ? width - 60 : width / compiled.widthSignals.length - 60);
+  const svg = await view.toSVG();
+  view.finalize();
+  return svg.replace(/<svg [^>]*>/, (tag) => scaling(tag));
+}
+
+/** Width and height become the most that it takes. */
+function scaling(tag: string): string {
+  const width = /\bwidth="([\d.]+)"/.exec(tag)?.[1] ?? "600";
+  return tag.replace(/\bwidth="[\d.]+"/, "").replace(/\bheight="[\d.]+"/, "").replace("<svg ", `<svg aria-hidden="true" style="width:100%;max-width:${width}px;height:auto" `);
+}

@@ -1,0 +1,93 @@
+// All charts of the page: made when first seen, kept while their shape stays, redrawn only while in sight.
+
+import { chartCompiler, makeChart } from "./chart.ts";
+import type { Chart } from "./chart.ts";
+import { shapeOf } from "./chartSpec.ts";
+import type { Reading } from "./chartReading.ts";
+import { chartPointer } from "./chartPointer.ts";
+import type { ChartPart } from "../../cells/parts/part.ts";
+
+export interface Charts {
+  mounted(key: string, element: HTMLElement): void;
+  unmounted(key: string): void;
+  /** What a chart should show now; drawn at once if it is in sight. */
+  want(key: string, part: ChartPart): void;
+  part(key: string): ChartPart | null;
+  svg(key: string): Promise<string | null>;
+  /** Resolves when every chart in sight shows what it should. */
+  drawn(): Promise<void>;
+}
+
+interface Place {
+  readonly element: HTMLElement; part: ChartPart | null; seen: boolean;
+  chart: Chart | null; shape: string; shown: ChartPart | null; shownWidth: number;
+  /** Set while drawing; a newer wish waits for it, and only the newest is drawn. */
+  busy: Promise<void> | null;
+  readonly pointer: { forget(): void; leave(): void };
+}
+
+/** @param announce speaks to a screen reader */
+export function charts(announce: (words: string) => void): Charts {
+  const places = new Map<string, Place>();
+  const compiled = chartCompiler();
+  const byElement = new WeakMap<Element, Place>();
+  const near = new IntersectionObserver((entries) => {
+    for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.seen = entry.isIntersecting; void draw(place); } }
+  }, { rootMargin: "300px 0px" });
+  const sizes = new ResizeObserver((entries) => { for (const entry of entries) { const place = byElement.get(entry.target); if (place) void draw(place); } });
+
+  async function draw(place: Place): Promise<void> {
+    if (place.busy) return place.busy;
+    place.busy = redraw(place).finally(() => { place.busy = null; });
+    return place.busy;
+  }
+
+  async function redraw(place: Place): Promise<void> {
+    // At most a few rounds in one go: each takes the newest wish.
+    while (place.seen && place.part !== null && place.element.isConnected) {
+      const { part } = place;
+      const width = Math.floor(place.element.clientWidth);
+      if (width < 40 || (part === place.shown && width === place.shownWidth)) return;
+      try { await show(place, part, width); } catch (error) { fail(place, error); }
+      place.shown = part; place.shownWidth = width;
+      place.pointer.forget();
+    }
+  }
+
+  async function show(place: Place, part: ChartPart, width: number): Promise<void> {
+    const shape = shapeOf(part);
+    if (place.chart && place.shape === shape) { await place.chart.update(part, width); return; }
+    place.chart?.destroy();
+    place.chart = null;
+    place.chart = await makeChart(place.element, compiled(shape, part), part, width, () => undefined);
+    place.shape = shape;
+    place.element.querySelector("svg")?.setAttribute("aria-hidden", "true");
+  }
+
+  function fail(place: Place, error: unknown): void {
+    place.chart?.destroy(); place.chart = null; place.shape = "";
+    const words = document.createElement("p");
+    words.className = "chart-fault";
+    words.textContent = `This chart cannot be drawn: ${error instanceof Error ? error.message : String(error)}`;
+    place.element.replaceChildren(words);
+  }
+
+  return {
+    mounted(key, element) {
+      const place: Place = { element, part: null, seen: false, chart: null, shape: "", shown: null, shownWidth: 0, busy: null,
+        pointer: chartPointer(element, (): readonly Reading[] => places.get(key)?.chart?.readings() ?? [], announce) };
+      places.set(key, place); byElement.set(element, place);
+      near.observe(element); sizes.observe(element);
+    },
+    unmounted(key) {
+      const place = places.get(key);
+      if (!place) return;
+      near.unobserve(place.element); sizes.unobserve(place.element);
+      place.pointer.leave(); place.chart?.destroy(); places.delete(key);
+    },
+    want(key, part) { const place = places.get(key); if (place && place.part !== part) { place.part = part; void draw(place); } },
+    part: (key) => places.get(key)?.part ?? null,
+    async svg(key) { const place = places.get(key); if (!place) return null; await place.busy; return place.chart ? place.chart.svg() : null; },
+    async drawn() { await Promise.all([...places.values()].map((place) => place.busy)); },
+  };
+}

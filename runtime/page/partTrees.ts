@@ -1,0 +1,50 @@
+// Tables, figures, claims, equations and remarks as described elements.
+
+import { printValue } from "./format.ts";
+import { h } from "./tree.ts";
+import type { Given, Tree } from "./tree.ts";
+import { mathTree } from "./math.ts";
+import type { ClaimsPart, EquationPart, FiguresPart, TablePart, TextPart } from "../../cells/parts/part.ts";
+
+/** Rows drawn at most: a longer table is cut, says so, and its CSV has all. */
+export const mostRows = 300;
+
+export function tableTree(part: TablePart, menu: Given): Tree {
+  const right = part.columns.map((column, i) => (column.align ?? (part.rows.some((row) => typeof row[i] === "number") ? "right" : "left")) === "right");
+  const marked = new Map((part.marked ?? []).map(({ row, word }) => [row, word]));
+  const shown = part.rows.slice(0, mostRows);
+  return h("div", { class: "part part-table" },
+    h("div", { class: "table-box", tabindex: 0, role: "group", "aria-label": part.title ?? "table" },
+      h("table", { class: "figures-table" },
+        part.title ? h("caption", {}, part.title) : null,
+        h("thead", {}, h("tr", {}, part.columns.map((column, i) => h("th", { scope: "col", class: right[i] ? "to-right" : null }, column.title, column.unit ? h("span", { class: "unit" }, ` (${column.unit})`) : null)))),
+        h("tbody", {}, shown.map((row, r) => h("tr", { class: marked.has(r) ? "marked" : null }, row.map((value, i) =>
+          h("td", { class: right[i] ? "to-right number" : null }, printValue(value, part.columns[i]?.format), i === 0 && marked.has(r) ? h("span", { class: "mark-word" }, marked.get(r)) : null))))))),
+    part.rows.length > mostRows ? h("p", { class: "note" }, `${mostRows} of ${printValue(part.rows.length)} rows are shown; the data (CSV) have all.`) : null,
+    part.note ? h("p", { class: "note" }, part.note) : null,
+    menu);
+}
+
+export function figuresTree(part: FiguresPart): Tree {
+  return h("dl", { class: "part part-figures" }, part.figures.map(({ label, value, format, unit }) =>
+    h("div", {}, h("dt", {}, label), h("dd", { class: "number" }, printValue(value, format), unit ? h("span", { class: "unit" }, ` ${unit}`) : null))));
+}
+
+export function claimsTree(part: ClaimsPart): Tree {
+  const word = (holds: boolean | null): string => holds === null ? "undecided" : holds ? "holds" : "broken";
+  return h("ul", { class: "part part-claims" }, part.claims.map(({ claim, holds, message }) =>
+    h("li", { class: `claim ${word(holds)}` }, h("span", { class: "claim-state" }, h("span", { class: "shape", "aria-hidden": "true" }), word(holds)),
+      h("span", { class: "claim-words" }, claim, message ? h("span", { class: "claim-why" }, message) : null))));
+}
+
+export function equationTree(part: EquationPart): Tree {
+  const math = mathTree(part.tex, true);
+  return h("div", { class: "part part-equation" },
+    part.title ? h("p", { class: "part-title" }, part.title) : null,
+    h("div", { class: "equation", tabindex: 0, role: "group", "aria-label": part.title ?? "equation" }, math.tag === "math" ? { ...math, attributes: { ...math.attributes, "aria-label": part.text } } : h("code", {}, part.text)));
+}
+
+export function textTree(part: TextPart): Tree {
+  const tone = part.tone ?? "plain";
+  return h("p", { class: `part part-text tone-${tone}` }, tone === "caution" ? h("span", { class: "tone-word" }, "Caution. ") : null, part.text);
+}
