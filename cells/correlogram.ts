@@ -1,0 +1,59 @@
+// The kind that shows autocorrelations and partial autocorrelations on one lag axis, and what they suggest.
+
+import { correlogram as compute, theoreticalAcf, theoreticalPacf, type Correlogram, type Fit } from "../stdlib/index.ts";
+import { OptionError, type Kind, type OptionTable } from "./kind.ts";
+import { correlogramParts } from "./parts/correlogramParts.ts";
+import { needLevel, needVaryingSeries, plainly } from "./parts/needs.ts";
+import { scaleText } from "./parts/scale.ts";
+import { count } from "./parts/words.ts";
+
+export interface CorrelogramCell {
+  readonly series: unknown;
+  readonly lags?: number;
+  readonly level?: number;
+  readonly band?: "independent" | "bartlett";
+  readonly partial?: "levinson" | "regression" | "burg";
+  /** A fit whose own correlations are laid over the sample's. */
+  readonly model?: Fit;
+}
+
+/** A correlogram with what it is of, and a model's own correlations from lag 0 where a model was given. */
+export interface ShownCorrelogram extends Correlogram {
+  readonly of: string;
+  readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null;
+}
+
+export const correlogramOptions: OptionTable = {
+  series: { type: "series", required: true, sentence: "The series whose correlations with its own past are wanted; a fit's residuals are fit.residuals.", example: "steady" },
+  lags: { type: "integer", min: 1, sentence: "The largest lag; without this option, up to three seasons where the data allow, else ten times the decimal logarithm of their number." },
+  level: { type: "level", default: 0.95, sentence: "Confidence of the bands, a share between 0 and 1." },
+  band: { type: { oneOf: ["independent", "bartlett"] }, default: "independent", sentence: "The band of the autocorrelations: that of independent observations, or Bartlett's, which supposes a moving average of one order less than the lag." },
+  partial: { type: { oneOf: ["levinson", "regression", "burg"] }, default: "levinson", sentence: "How partial autocorrelations are computed: the Levinson recursion, regressions on the lags, or Burg's recursion." },
+  model: { type: "fit", sentence: "A fit whose own autocorrelations are laid over the sample's.", example: "airline" },
+};
+
+/** Correlations by lag with bands, portmanteau tests, and orders to begin with. */
+export const correlogram: Kind<CorrelogramCell, ShownCorrelogram> = {
+  name: "correlogram",
+  sentence: "Autocorrelations and partial autocorrelations with bands, portmanteau tests, and what they suggest.",
+  options: correlogramOptions,
+  body: "options",
+  callable: true,
+  example: "series: steady",
+  run: options => runCorrelogram(options),
+  show: result => correlogramParts(result),
+};
+
+export function runCorrelogram(options: CorrelogramCell): ShownCorrelogram {
+  const series = needVaryingSeries(options.series, 3, "a correlogram");
+  const lags = options.lags ?? undefined;
+  if (lags !== undefined && (!Number.isInteger(lags) || lags < 1 || lags >= series.n)) {
+    throw new OptionError("lags", `lags is ${lags}; with ${count(series.n, "value")} it can be a whole number from 1 to ${series.n - 1}`);
+  }
+  const result = plainly(() => compute({ series, lags, level: needLevel(options.level), band: options.band ?? "independent", partial: options.partial ?? "levinson" }));
+  return { ...result, of: scaleText(series), theory: options.model ? theoryOf(options.model, result.lags) : null };
+}
+
+function theoryOf(model: Fit, lags: number): NonNullable<ShownCorrelogram["theory"]> {
+  return { label: model.label, acf: theoreticalAcf(model, lags), pacf: theoreticalPacf(model, lags) };
+}

@@ -1,0 +1,67 @@
+// The kind that forecasts from the end of a model's window.
+
+import { forecast as makeForecast, type Forecast, type Forecaster, type ForecastOptions, type Series } from "../stdlib/index.ts";
+import { OptionError, type Kind, type OptionTable } from "./kind.ts";
+import { forecastParts } from "./parts/forecastParts.ts";
+import { plainly } from "./parts/needs.ts";
+
+export interface ForecastCell {
+  readonly model: unknown;
+  readonly horizon: number;
+  readonly levels?: readonly number[];
+  readonly regressors?: Readonly<Record<string, Series>>;
+  readonly totals?: ForecastOptions["totals"];
+  readonly bands?: ForecastOptions["bands"];
+  readonly seed?: number;
+}
+
+const longestHorizon = 5000;
+
+export const forecastOptions: OptionTable = {
+  model: { type: "forecaster", required: true, sentence: "What forecasts: a fit, a rule such as rule.naive(crossings), or a ranked row of a comparison such as contest.best.", example: "airline" },
+  horizon: { type: "integer", required: true, min: 1, max: longestHorizon, sentence: "How many periods ahead, from the end of the model's window.", example: "12" },
+  levels: { type: { listOf: "level" }, default: [0.5, 0.9], sentence: "Confidence of the bands, each a share between 0 and 1.", example: "[0.5, 0.9]" },
+  regressors: { type: "object", sentence: "Future values of the regressors that are series, by the names the fit uses; interventions extend by themselves.", example: "{price: priceAhead}" },
+  totals: { type: "any", sentence: "Spans to total: \"year\" for each calendar year touched, a year such as \"2025\", or a list of {from, to}.", example: "\"year\"" },
+  bands: { type: { oneOf: ["plugIn", "simulated", "calibrated"] }, default: "plugIn", sentence: "How the bands are made: from the model's formula, by simulation with uncertain parameters and resampled shocks, or from held-out errors." },
+  seed: { type: "integer", default: 1, min: 0, sentence: "Seed of the simulation, where the bands are simulated." },
+};
+
+/** Point forecasts, bands and totals in the units of the data. */
+export const forecast: Kind<ForecastCell, Forecast> = {
+  name: "forecast",
+  sentence: "Point forecasts, bands and totals in the units of the data, from the end of the model's window.",
+  options: forecastOptions,
+  body: "options",
+  callable: true,
+  example: "model: airline\nhorizon: 12",
+  run: options => runForecast(options),
+  show: result => forecastParts(result),
+};
+
+export function runForecast(options: ForecastCell): Forecast {
+  const model = needForecaster(options.model);
+  const { horizon } = options;
+  if (!Number.isInteger(horizon) || horizon < 1) throw new OptionError("horizon", `the horizon is a whole number of periods, 1 or more; found ${String(horizon)}`);
+  if (horizon > longestHorizon) throw new OptionError("horizon", `a horizon of ${horizon} periods is longer than ${longestHorizon}, the most that is forecast`);
+  const levels = options.levels ?? [0.5, 0.9];
+  for (const level of levels) {
+    if (!(level > 0 && level < 1)) throw new OptionError("levels", `each level is a share between 0 and 1, such as 0.9; found ${String(level)}${level > 1 && level < 100 ? `: for ${level}% write ${level / 100}` : ""}`);
+  }
+  const rest = Object.fromEntries(Object.entries(options).filter(([name, value]) => value !== null && value !== undefined && name !== "model"));
+  return plainly(() => makeForecast(model, { ...rest, horizon, levels }));
+}
+
+/** A fit or rule; a ranked row of a comparison stands for the model in it. */
+export function needForecaster(value: unknown, option = "model"): Forecaster {
+  if (typeof value === "object" && value !== null) {
+    if ("rule" in value || ("sigma2" in value && "residuals" in value)) return value as Forecaster;
+    for (const key of ["model", "fit"] as const) {
+      const inner = (value as Record<string, unknown>)[key];
+      if (typeof inner === "object" && inner !== null) return needForecaster(inner, option);
+    }
+    if ("best" in value) throw new OptionError(option, `${option} is a whole comparison; name one of its rows, such as .best`);
+    if ("values" in value && "times" in value) throw new OptionError(option, `${option} is a series; fit a model to it first, or use a rule such as rule.naive(…)`);
+  }
+  throw new OptionError(option, `${option} needs a fit, a rule or a ranked row of a comparison; found ${value === null || value === undefined ? "nothing" : typeof value === "object" ? "an object of another kind" : String(value)}`);
+}

@@ -1,0 +1,56 @@
+// What a correlogram shows: what stands out, both correlations on one lag axis, the portmanteau tests, the suggestion.
+
+import type { Correlogram } from "../../stdlib/index.ts";
+import { lagChart, type LagPanel } from "./lagChart.ts";
+import type { Part, TablePart, TextPart } from "./part.ts";
+import { percent, pText, someOf } from "./words.ts";
+
+type Shown = Correlogram & { readonly of: string; readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null };
+
+export function correlogramParts(result: Shown): readonly Part[] {
+  if (result.status === "unavailable") return [{ part: "text", tone: "caution", text: result.sentence }];
+  return [
+    { part: "text", text: result.sentence },
+    lagChart({
+      title: `Correlations of ${result.of} with its own past`, alt: altOf(result), season: result.seasonLength ?? 0,
+      panels: [panel("autocorrelation", result, "acf"), panel("partial autocorrelation", result, "pacf")],
+    }),
+    startText(result),
+    ...(result.theory === null ? [] : [{ part: "text" as const, tone: "note" as const, text: `The line is what ${result.theory.label} would give in a long series.` }]),
+    portmanteauTable(result),
+    ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
+  ];
+}
+
+/** Lag 0 is 1 by definition and would only flatten the picture: panels start at lag 1. */
+function panel(title: string, result: Shown, which: "acf" | "pacf"): LagPanel {
+  return {
+    title, from: 1, values: result[which].slice(1), band: result.band[which].slice(1),
+    ...(result.theory === null ? {} : { theory: result.theory[which].slice(1, result.lags + 1) }),
+  };
+}
+
+function altOf(result: Shown): string {
+  const say = (lags: readonly number[], what: string): string => lags.length === 0 ? `no ${what} is outside the ${percent(result.level)} band` : `the ${what}s at lag${lags.length > 1 ? "s" : ""} ${someOf(lags, 8)} are outside the ${percent(result.level)} band`.replace(/s at lag (\S+) are/, " at lag $1 is");
+  return `Lags 1 to ${result.lags}: ${say(result.outside.acf, "autocorrelation")}; ${say(result.outside.pacf, "partial autocorrelation")}.`;
+}
+
+/** The orders as options of a fit, ready to be typed. */
+function startText(result: Shown): TextPart {
+  const { ar, ma, season } = result.suggests;
+  if (ar + ma === 0 && season === null) return { part: "text", tone: "note", text: "Nothing here asks for AR or MA terms." };
+  const seasonal = season === null ? "" : `, season: {${[season.ar > 0 ? `ar: ${season.ar}` : "", season.ma > 0 ? `ma: ${season.ma}` : ""].filter(Boolean).join(", ")}}`;
+  return { part: "text", tone: "note", text: `A fit could begin with ar: ${ar}, ma: ${ma}${seasonal}. That is a suggestion from a rule of thumb: compare it with its neighbours before relying on it.` };
+}
+
+function portmanteauTable(result: Shown): TablePart {
+  return {
+    part: "table", title: "Lags taken together (Ljung and Box)",
+    columns: [{ title: "up to lag", align: "right", format: "d" }, { title: "statistic", align: "right", format: ",.2f" }, { title: "p", align: "right" }, { title: "reading" }],
+    rows: result.portmanteau.map(row => [
+      row.lag, row.statistic, row.df === null ? "none left" : pText(row.p).replace(/^p [=] /, "").replace(/^p /, ""),
+      row.df === null ? "no degrees of freedom left" : row.p < 1 - result.level ? "larger than chance would make them" : "no larger than chance would make them",
+    ]),
+    note: "The null hypothesis: no autocorrelation up to this lag.",
+  };
+}

@@ -1,0 +1,50 @@
+// Estimates with their intervals on one scale, against zero: one row an estimate, its figures beside it.
+
+import type { ChartPart } from "./part.ts";
+import { figure } from "./words.ts";
+
+export interface IntervalRow {
+  readonly label: string;
+  readonly value: number;
+  /** NaN where there is no interval (held, or not available). */
+  readonly low: number;
+  readonly high: number;
+  /** Said in place of the interval's limits where there is none ("held"). */
+  readonly remark?: string;
+}
+
+/** @param axis  title of the common scale, with its unit */
+export function intervalChart(title: string, alt: string, axis: string, rows: readonly IntervalRow[]): ChartPart {
+  const withInterval = rows.filter(row => Number.isFinite(row.low) && Number.isFinite(row.high));
+  return {
+    part: "chart", title, alt, height: 56 + 36 * rows.length,
+    spec: {
+      encoding: { y: { field: "label", type: "nominal", sort: null, axis: { title: null, ticks: false, domain: false, labelLimit: 160 } } },
+      layer: [
+        { data: { name: "rows" }, mark: { type: "rule", style: "guide" }, encoding: { x: { datum: 0, type: "quantitative" }, y: null } },
+        {
+          data: { name: "intervals" }, mark: { type: "rule", style: "mark", strokeWidth: 2 },
+          encoding: { x: { field: "low", type: "quantitative", title: axis, scale: { zero: true, nice: false, padding: 64 } }, x2: { field: "high" } },
+        },
+        {
+          data: { name: "rows" }, mark: { type: "point", style: "mark", filled: true, size: 70, opacity: 1 },
+          encoding: { x: { field: "value", type: "quantitative" } },
+        },
+        {
+          data: { name: "rows" }, mark: { type: "text", style: "label", dy: -11, baseline: "middle" },
+          encoding: { x: { field: "value", type: "quantitative" }, text: { field: "figures", type: "nominal" } },
+        },
+      ],
+    },
+    data: {
+      rows: { label: rows.map(row => row.label), value: rows.map(row => row.value), figures: rows.map(figuresOf) },
+      intervals: { label: withInterval.map(row => row.label), low: withInterval.map(row => row.low), high: withInterval.map(row => row.high) },
+    },
+  };
+}
+
+function figuresOf(row: IntervalRow): string {
+  if (row.remark !== undefined) return `${figure(row.value)} ${row.remark}`;
+  if (!Number.isFinite(row.low)) return figure(row.value);
+  return `${figure(row.value)} (${figure(row.low, 2)} to ${figure(row.high, 2)})`;
+}

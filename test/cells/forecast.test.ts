@@ -1,0 +1,77 @@
+import { describe, expect, test } from "vitest";
+import { forecast, needForecaster } from "../../cells/forecast.ts";
+import { checkOptions } from "../../cells/check.ts";
+import type { ChartPart, TablePart, TextPart } from "../../cells/parts/part.ts";
+import { cut, fit as estimate, rule } from "../../stdlib/index.ts";
+import { madeContext } from "./context.ts";
+import { drawnCharts } from "./drawn.ts";
+import { madeFit, madeForecast, madeSeries, stepped } from "./made.ts";
+
+const show = { name: "outlook", width: 640 };
+const texts = (parts: readonly { readonly part: string }[]): string => parts.filter((p): p is TextPart => p.part === "text").map(p => p.text).join(" ");
+
+describe("forecast shows", () => {
+  test("the first and the last period with units and the widest band in its sentence", () => {
+    const parts = forecast.show(madeForecast(), show);
+    expect((parts[0] as TextPart).text).toBe("From 2023-12, candidate forecasts crossings at 1,400 vehicles (90% band 1,288 to 1,526) in 2024-01, and 1,510 vehicles (90% band 1,389 to 1,646) in 2024-12. The median is quoted; the mean lies above it because the band is lopsided.");
+  });
+  test("totals and periods in tables, in the order of time", () => {
+    const tables = forecast.show(madeForecast(), show).filter((p): p is TablePart => p.part === "table");
+    expect(tables.map(t => t.title)).toEqual(["Totals over spans", "crossings by period"]);
+    expect(tables[0].rows[0]).toEqual(["2024-01 to 2024-12", 17460, 17628, 17000, 18000, 16500, 18600]);
+    expect(tables[1].rows).toHaveLength(12);
+    expect(tables[1].rows[0].slice(0, 3)).toEqual(["2024-01", 1400, 1414]);
+  });
+  test("what came after, counted against the band", () => {
+    const heldOut = { name: "crossings", unit: "vehicles", every: "P1M", start: "2024-01", n: 2, values: Float64Array.of(1410, 5000), times: ["2024-01", "2024-02"], steps: [] };
+    expect(texts(forecast.show(madeForecast({ heldOut }), show))).toContain("Of 2 later periods that are known, 1 fell inside the 90% band");
+  });
+  test("a picture that draws, at full precision behind it", async () => {
+    const parts = forecast.show(madeForecast(), show);
+    const [svg] = await drawnCharts(parts);
+    expect(svg).toContain("crossings (vehicles)");
+    const chart = parts.find((p): p is ChartPart => p.part === "chart")!;
+    expect(chart.full?.forecast.median).toHaveLength(12);
+    expect(Object.keys(chart.full?.forecast ?? {})).toContain("low 90%");
+  });
+  test("that the bands rest on the model and that a forecast is no advice", () => {
+    expect(texts(forecast.show(madeForecast(), show))).toMatch(/hold if the model does.*no advice/);
+  });
+});
+
+describe("forecast refuses", () => {
+  const run = (options: Record<string, unknown>) => () => forecast.run(checkOptions(forecast, options) as never, madeContext());
+  test("a series in place of a model", () => {
+    expect(() => needForecaster(madeSeries())).toThrow("model is a series; fit a model to it first, or use a rule");
+  });
+  test("a whole comparison, and takes one of its rows", () => {
+    const fit = madeFit();
+    expect(() => needForecaster({ models: [], best: { fit } })).toThrow("name one of its rows, such as .best");
+    expect(needForecaster({ label: "a", fit })).toBe(fit);
+  });
+  test("a horizon that is no whole number of periods", () => {
+    expect(run({ model: madeFit(), horizon: 0 })).toThrow(/horizon.*at least 1/);
+    expect(run({ model: madeFit(), horizon: 2.5 })).toThrow(/horizon.*whole number/);
+  });
+  test("a level in percent, and says what to write", () => {
+    expect(run({ model: madeFit(), horizon: 2, levels: [90] })).toThrow(/0\.9/);
+  });
+});
+
+describe("forecast runs", () => {
+  test("a fit of a logged and differenced series in the units of the data", async () => {
+    const series = stepped(cut(madeSeries(), { to: "2022-12" }), [{ step: "log" }, { step: "difference", lag: 1 }, { step: "difference", lag: 12 }]);
+    const model = estimate({ series, ma: 1, season: { ma: 1 } });
+    const result = await forecast.run(checkOptions(forecast, { model, horizon: 12, totals: "year" }) as never, madeContext());
+    expect(result.times[0]).toBe("2023-01");
+    expect(result.median[0]).toBeGreaterThan(800);
+    expect(result.median[0]).toBeLessThan(3000);
+    const parts = forecast.show(result, show);
+    await expect(drawnCharts(parts)).resolves.toHaveLength(1);
+    expect(texts(parts)).toContain("From 2022-12");
+  });
+  test("a rule", async () => {
+    const result = await forecast.run(checkOptions(forecast, { model: rule.naive(madeSeries()), horizon: 3 }) as never, madeContext());
+    expect(Array.from(result.median)).toEqual(Array.from({ length: 3 }, () => madeSeries().values[71]));
+  });
+});
