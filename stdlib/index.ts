@@ -4,7 +4,7 @@
 export { makeSeries, isSeries, valuesOf, timesMs, withValues, type Series } from "./series/series.ts";
 export { cut, slice } from "./series/cut.ts";
 export { applyStep, applySteps, original, stepOf, stepText, type Step, type AppliedStep } from "./series/steps.ts";
-export { timeAt, timesFrom, milliseconds, periodIndex, periodSpan, positionIn, periodOf, indexRange, daysIn } from "./series/calendar.ts";
+export { timeAt, timesFrom, milliseconds, periodIndex, periodSpan, positionIn, positionsOf, periodOf, indexRange, daysIn } from "./series/calendar.ts";
 export { parsePeriod, formatPeriod, period, startMs, endMs, type Period, type PeriodUnit } from "./series/period.ts";
 export { civilFromDays, daysFromCivil, daysInMonth } from "./series/civil.ts";
 export { parseEvery, formatEvery, everyInWords, everyWords, defaultSeasonLength, periodsAYear } from "./series/every.ts";
@@ -20,6 +20,13 @@ export { bartlettBand, independentBand } from "./correlogram/bands.ts";
 export { correlogram, type Correlogram, type CorrelogramOptions } from "./correlogram/correlogram.ts";
 export { type Suggestion } from "./correlogram/suggestOrders.ts";
 // unitroot
+export { adf, type AdfOptions } from "./unitroot/adf.ts";
+export { kpss, type KpssOptions } from "./unitroot/kpss.ts";
+export { phillipsPerron, type PhillipsPerronOptions } from "./unitroot/phillipsPerron.ts";
+export { dfGls, type DfGlsOptions } from "./unitroot/dfGls.ts";
+export { type Trend } from "./unitroot/mackinnon.ts";
+export { type LagChoice } from "./unitroot/dickeyFullerRegression.ts";
+export { type Bandwidth } from "./unitroot/longRunVariance.ts";
 // arma
 // forecast
 export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
