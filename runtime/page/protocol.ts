@@ -21,6 +21,8 @@ export type ToPage =
   | { readonly to: "reveal"; readonly position: number }
   /** Whether there is a text to edit: "keep this setting", "accept" and going to the source appear only then. */
   | { readonly to: "canEdit"; readonly canEdit: boolean }
+  /** Send the drawn page as HTML from now on, after each time that all has settled: an exported file prints it. */
+  | { readonly to: "sendStills" }
   /** Start the engine anew (after `script` cells were allowed, say). */
   | { readonly to: "restart" };
 
@@ -56,7 +58,9 @@ export type FromPage =
   | { readonly page: "openLink"; readonly href: string }
   /** The reader pressed one of the desk's keys (save, undo, …) while the page had the focus. */
   | { readonly page: "key"; readonly key: string; readonly ctrl: boolean; readonly meta: boolean; readonly shift: boolean; readonly alt: boolean }
-  | { readonly page: "scrolled"; readonly position: number };
+  | { readonly page: "scrolled"; readonly position: number }
+  /** The page as it stands now, as HTML, for the shell of an exported file to print: sent after it has been asked for (`sendStills`), whenever all has settled and been drawn. */
+  | { readonly page: "still"; readonly html: string };
 
 /** The window around the page, as the page sees it. */
 export interface ParentLink {
