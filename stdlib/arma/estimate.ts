@@ -1,0 +1,291 @@
+// The maximum of the likelihood over the ARMA coefficients: starts, search, and the choice among several maxima.
+
+import { divideInto, lagDot } from "./kernels.ts";
+import { gradientInto, makeWork, valueAt, type Data, type Work } from "./likelihood.ts";
+import { inverseRoots, reflected } from "./roots.ts";
+import { isStable } from "./region.ts";
+import { makeShape, type Product, type Shape } from "./shape.ts";
+import { hannanRissanen } from "./start.ts";
+import { quasiNewton, type Minimum, type Problem } from "../optimize/quasiNewton.ts";
+
+export interface Estimate {
+  /** phi, Phi, theta, Theta. */
+  readonly x: Float64Array;
+  /** Negative log-likelihood. */
+  readonly value: number;
+  readonly converged: boolean;
+  /** Likelihood passes over all starts. */
+  readonly passes: number;
+  /** Second-derivative matrix of the search, by free coefficient: rough. */
+  readonly hessian: Float64Array;
+  /** Positions of the free coefficients in x. */
+  readonly free: Int32Array;
+}
+
+export interface Search {
+  readonly shape: Shape;
+  readonly data: Data;
+  /** NaN where a coefficient is free. */
+  readonly held: Float64Array;
+  /** Series without gaps for starting regressions (gaps bridged), mean corrected. */
+  readonly bridged: Float64Array;
+  /** Coefficients to start from instead of a regression, when they are known to be near. */
+  readonly near?: Float64Array;
+  readonly work?: Work;
+  readonly evaluate?: Evaluate;
+}
+
+/** Value and gradient of another likelihood (of the filter, where there are many gaps). */
+export interface Evaluate {
+  value(x: Float64Array): number;
+  gradientInto(x: Float64Array, gradient: Float64Array): void;
+}
+
+/** Where the four factors' coefficients begin in x. */
+export interface Factor { readonly lags: Int32Array; readonly from: number; readonly sign: 1 | -1 }
+
+export function factors(shape: Shape): Factor[] {
+  const out: Factor[] = [];
+  let from = 0;
+  const add = (lags: Int32Array, sign: 1 | -1) => { out.push({ lags, from, sign }); from += lags.length; };
+  add(shape.ar.plain, 1); add(shape.ar.seasonal, 1); add(shape.ma.plain, -1); add(shape.ma.seasonal, -1);
+  return out;
+}
+
+/** Maximises the exact likelihood. Cost: a start by regression and usually 4 to 10 passes; more starts where several maxima are likely. */
+export function estimate(search: Search): Estimate {
+  const { shape, data, held } = search;
+  const work = search.work ?? makeWork(shape, data.n, data.columns.length);
+  const free = Int32Array.from([...held.keys()].filter(i => Number.isNaN(held[i])));
+  const evaluate = search.evaluate ?? {
+    value: (x: Float64Array) => valueAt(work, data, x),
+    gradientInto: (x: Float64Array, g: Float64Array) => gradientInto(work, data, x, g),
+  };
+  const problem = makeProblem(search, work, free, evaluate);
+  if (free.length === 0) {
+    const x = Float64Array.from(held);
+    return { x, value: evaluate.value(x), converged: true, passes: 1, hessian: new Float64Array(0), free };
+  }
+  let best: Minimum | null = null, passes = 0;
+  const run = (x: Float64Array) => {
+    const found = quasiNewton(problem, pick(inside(shape, withHeld(x, held), held), free), TOLERANCE);
+    passes += found.passes;
+    if (Number.isFinite(found.value) && (best === null || found.value < best.value - (found.converged || !best.converged ? 0 : 1e-6))) best = found;
+    return found;
+  };
+  if (search.near) run(search.near); else run(hannanRissanen(shape, search.bridged));
+  if (best === null) run(new Float64Array(shape.count));
+  if (!search.near && best !== null && suspicious(shape, full(best, free, held))) for (const x of otherStarts(search, full(best, free, held))) run(x);
+  if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
+  const found = best as Minimum;
+  return { x: full(found, free, held), value: found.value, converged: found.converged, passes, hessian: found.hessian, free };
+}
+
+/** Predicted gain in log-likelihood below which a search stops: far below the 1e-6 that anyone could notice. */
+const TOLERANCE = 1e-9;
+
+function withHeld(x: Float64Array, held: Float64Array): Float64Array {
+  return Float64Array.from(held, (v, i) => Number.isNaN(v) ? x[i] : v);
+}
+
+function pick(x: Float64Array, free: Int32Array): Float64Array { return Float64Array.from(free, i => x[i]); }
+
+function full(found: Minimum, free: Int32Array, held: Float64Array): Float64Array {
+  const x = Float64Array.from(held);
+  free.forEach((at, i) => { x[at] = found.x[i]; });
+  return x;
+}
+
+/** Held coefficients may make a start unstable: the free ones give way. */
+function inside(shape: Shape, x: Float64Array, held: Float64Array): Float64Array {
+  for (const f of factors(shape)) {
+    for (let tries = 0; tries < 60 && !isStable(f.lags, x.subarray(f.from, f.from + f.lags.length), f.sign, f.sign < 0); tries++) {
+      for (let i = 0; i < f.lags.length; i++) if (Number.isNaN(held[f.from + i])) x[f.from + i] *= 0.9;
+    }
+  }
+  return x;
+}
+
+function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Evaluate): Problem {
+  const { shape, held } = search;
+  const parts = factors(shape);
+  const x = Float64Array.from(held), gradient = new Float64Array(shape.count);
+  const dense = parts.map(f => f.lags.length > 0 && f.lags[f.lags.length - 1] / f.lags[0] === f.lags.length
+    && f.lags.every((_, i) => Number.isNaN(held[f.from + i])));
+  return {
+    size: free.length,
+    value(z) {
+      for (let i = 0; i < free.length; i++) x[free[i]] = z[i];
+      let mended = false;
+      for (let p = 0; p < parts.length; p++) {
+        const f = parts[p], c = x.subarray(f.from, f.from + f.lags.length);
+        if (isStable(f.lags, c, f.sign, f.sign < 0)) continue;
+        // Outside: the likelihood of a moving average is that of its reflection, so go on from there; a process that is not
+        // stationary has none, and the step is shortened.
+        if (f.sign > 0 || !dense[p]) return Infinity;
+        c.set(reflected(c));
+        if (!isStable(f.lags, c, f.sign, true)) return Infinity;
+        mended = true;
+      }
+      if (mended) for (let i = 0; i < free.length; i++) z[i] = x[free[i]];
+      return evaluate.value(x);
+    },
+    gradientInto(g) {
+      evaluate.gradientInto(x, gradient);
+      for (let i = 0; i < free.length; i++) g[i] = gradient[free[i]];
+    },
+    curvatureInto(h) { gaussNewtonInto(h, work, search.data, x, free); },
+  };
+}
+
+/** The information in the innovations' sensitivities de/dc, from lag sums of two filtered series over a capped stretch. */
+export function gaussNewtonInto(h: Float64Array, work: Work, data: Data, x: Float64Array, free: Int32Array): void {
+  const { shape } = work;
+  const n = Math.min(work.n, 3000);
+  const offset = work.n - n;
+  const fa = Float64Array.from(work.r.subarray(offset)), fe = Float64Array.from(work.er.subarray(offset));
+  divideInto(fa, n, shape.ma.lags, work.b);
+  divideInto(fe, n, shape.ma.lags, work.b);
+  const ar = shape.ar.lags, ma = shape.ma.lags, k = ar.length + ma.length;
+  const cache = new Map<number, number>();
+  const sum = (kind: number, lag: number) => {
+    const key = kind * 1e6 + lag + 5e5;
+    let v = cache.get(key);
+    if (v === undefined) {
+      v = kind === 0 ? lagDot(fa, fa, n, Math.abs(lag)) : kind === 1 ? lagDot(fe, fe, n, Math.abs(lag)) : lag >= 0 ? lagDot(fa, fe, n, lag) : lagDot(fe, fa, n, -lag);
+      cache.set(key, v);
+    }
+    return v;
+  };
+  const r = new Float64Array(k * k);
+  for (let i = 0; i < k; i++) {
+    for (let j = 0; j <= i; j++) {
+      const v = i < ar.length ? sum(0, ar[i] - ar[j]) : j >= ar.length ? sum(1, ma[i - ar.length] - ma[j - ar.length])
+        // de/da at lag ar_j is fa_{t - ar_j}, de/db at lag ma_i is fe_{t - ma_i}: sum fa_{t - ar_j} fe_{t - ma_i}.
+        : sum(2, ma[i - ar.length] - ar[j]);
+      r[i * k + j] = r[j * k + i] = v;
+    }
+  }
+  const scale = (work.n / n) / (data.sigma2 ?? work.sum / work.nEffective);
+  const jac = productJacobian(shape, x, free);
+  for (let a = 0; a < free.length; a++) {
+    for (let b = 0; b < free.length; b++) {
+      let v = 0;
+      for (let i = 0; i < k; i++) {
+        if (jac[i * free.length + a] === 0) continue;
+        for (let j = 0; j < k; j++) v += jac[i * free.length + a] * r[i * k + j] * jac[j * free.length + b];
+      }
+      h[a * free.length + b] = v * scale;
+    }
+  }
+}
+
+/** d(product coefficients, both sides) / d(free factor coefficients), rows = product lags of ar then ma. */
+export function productJacobian(shape: Shape, x: Float64Array, free: Int32Array): Float64Array {
+  const rows = shape.ar.lags.length + shape.ma.lags.length;
+  const out = new Float64Array(rows * free.length);
+  const side = (p: Product, from: number, base: number) => {
+    const plain = p.plain.length, seasonal = p.seasonal.length;
+    free.forEach((at, column) => {
+      const i = at - from;
+      if (i < 0 || i >= plain + seasonal) return;
+      const add = (row: number, v: number) => { out[(base + row) * free.length + column] += v; };
+      if (i < plain) {
+        add(p.atPlain[i], 1);
+        for (let j = 0; j < seasonal; j++) add(p.atCross[i * seasonal + j], p.cross * x[from + plain + j]);
+      } else {
+        const j = i - plain;
+        add(p.atSeasonal[j], 1);
+        for (let l = 0; l < plain; l++) add(p.atCross[l * seasonal + j], p.cross * x[from + l]);
+      }
+    });
+  };
+  side(shape.ar, 0, 0);
+  side(shape.ma, shape.ar.plain.length + shape.ar.seasonal.length, shape.ar.lags.length);
+  return out;
+}
+
+/** Several maxima are likely where the two sides nearly cancel, or where the found one lies near the edge of the region. */
+function suspicious(shape: Shape, x: Float64Array): boolean {
+  const parts = factors(shape);
+  const near = parts.map(f => edge(f, x));
+  if ((parts[0].lags.length > 0 && parts[2].lags.length > 0) || (parts[1].lags.length > 0 && parts[3].lags.length > 0)) {
+    return near.some(m => m < 1.02) || distance(shape, x) < 0.25 || x.length >= 5;
+  }
+  return near[2] < 1.02 || near[3] < 1.02;
+}
+
+/** Smallest modulus of a factor's roots, in its own step. */
+function edge(f: Factor, x: Float64Array): number {
+  if (f.lags.length === 0) return Infinity;
+  const z = inverseRoots(denseFactor(f, x));
+  let top = 0;
+  for (let i = 0; i < z.re.length; i++) top = Math.max(top, Math.hypot(z.re[i], z.im[i]));
+  return top > 0 ? 1 / top : Infinity;
+}
+
+/** Coefficients of a factor in 1 + c_1 B' + ..., B' its own step (a season for seasonal factors of full lag sets). */
+export function denseFactor(f: Factor, x: Float64Array): Float64Array {
+  const step = f.lags.length > 0 && f.lags.every(l => l % f.lags[0] === 0) ? f.lags[0] : 1;
+  const c = new Float64Array(f.lags.length > 0 ? f.lags[f.lags.length - 1] / step : 0);
+  f.lags.forEach((lag, i) => { c[lag / step - 1] = -f.sign * x[f.from + i]; });
+  return c;
+}
+
+/** Smallest distance between an inverse root of the autoregressive side and one of the moving-average side, by factor pairs. */
+export function distance(shape: Shape, x: Float64Array): number {
+  const parts = factors(shape);
+  let least = Infinity;
+  for (const [i, j] of [[0, 2], [1, 3]]) {
+    if (parts[i].lags.length === 0 || parts[j].lags.length === 0) continue;
+    const a = inverseRoots(denseFactor(parts[i], x)), b = inverseRoots(denseFactor(parts[j], x));
+    for (let s = 0; s < a.re.length; s++) for (let t = 0; t < b.re.length; t++) least = Math.min(least, Math.hypot(a.re[s] - b.re[t], a.im[s] - b.im[t]));
+  }
+  return least;
+}
+
+/** Other places to start from: nothing, the model one lag smaller, and both sides moved together to either end. */
+function otherStarts(search: Search, found: Float64Array): Float64Array[] {
+  const { shape, held } = search;
+  const out: Float64Array[] = [new Float64Array(shape.count)];
+  const smaller = oneLagSmaller(search);
+  if (smaller) out.push(smaller);
+  const parts = factors(shape);
+  if (found.length > 0 && parts[0].lags.length > 0 && parts[2].lags.length > 0) {
+    for (const c of [0.7, -0.7]) {
+      const x = new Float64Array(shape.count);
+      if (parts[0].lags[0] === 1) x[parts[0].from] = c;
+      if (parts[2].lags[0] === 1) x[parts[2].from] = -0.8 * c;
+      out.push(x);
+    }
+  }
+  if (parts[1].lags.length > 0 && parts[3].lags.length > 0) {
+    const x = new Float64Array(shape.count);
+    x[parts[1].from] = 0.8;
+    x[parts[3].from] = -0.5;
+    out.push(x);
+  }
+  return out.map(x => withHeld(x, held));
+}
+
+function oneLagSmaller(search: Search): Float64Array | null {
+  const { shape, data, held } = search;
+  const parts = factors(shape);
+  const drop = parts[2].lags.length >= parts[0].lags.length ? 2 : 0;
+  if (parts[drop].lags.length === 0 || search.evaluate || held.some(v => !Number.isNaN(v))) return null;
+  const lags = parts.map((f, i) => Array.from(f.lags).slice(0, f.lags.length - (i === drop ? 1 : 0)));
+  const season = shape.season;
+  const small = makeShape(lags[0], lags[1].map(l => l / season), lags[2], lags[3].map(l => l / season), season);
+  if (small.count === 0) return null;
+  const work = makeWork(small, data.n, data.columns.length);
+  const none = new Float64Array(small.count).fill(NaN);
+  const free = Int32Array.from(none.keys());
+  const evaluate: Evaluate = { value: x => valueAt(work, data, x), gradientInto: (x, g) => gradientInto(work, data, x, g) };
+  const start = hannanRissanen(small, search.bridged);
+  const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, work, free, evaluate), start, 1e-5);
+  if (!Number.isFinite(found.value)) return null;
+  const x = new Float64Array(shape.count);
+  let at = 0;
+  parts.forEach((f, i) => { for (let j = 0; j < lags[i].length; j++) x[f.from + j] = found.x[at++]; });
+  return x;
+}

@@ -1,0 +1,330 @@
+// Exact Gaussian likelihood of a multiplicative seasonal ARMA process, complete or with a few gaps, and its exact gradient.
+//
+// Legend: a0 = theta(B)^-1 phi(B) w from zero pre-sample values; u the pre-sample's part in the first g equations, covariance
+// Omega (presample.ts); V its response in the innovations, G = V'V (response.ts). Then w has the density of a0 ~ N(0, I + V Omega V'):
+//   sum of squares  S = e'e + u'Omega^-1 u at e = a0 - V u, u = K V'a0, K = (Omega^-1 + G)^-1 (Omega may be singular)
+//   determinant     |I + L'G L|, Omega = L L'
+// sigma2 is concentrated out, or held. Regression coefficients enter by generalised least squares inside. A missing value is a
+// column with a pulse whose coefficient is integrated out (flat): exactly the density of what was observed, and with
+// differences exactly that of the later levels given the first ones (diffuse start).
+// Reverse mode: dS = -2 sum lambda_t (da_i w_{t-i} + db_j e_{t-j}) - lambda' dOmega lambda, lambda = theta(F)^-1 e (first g entries),
+// d log det = tr(K dG) + tr((G^-1 + Omega)^-1 dOmega).
+// Sources: Newbold (1974); Ljung & Box (1979); Harvey & Phillips (1979) for the concentration.
+
+import { divideBackInto, divideInto, dot, lagDot, subtractLagsInto } from "./kernels.ts";
+import { makePresample, presampleBack, presampleInto, type Presample } from "./presample.ts";
+import { makeResponse, responseBack, responseInto, type Response } from "./response.ts";
+import { contractInto, expandInto, type Shape } from "./shape.ts";
+import { choleskyInto } from "../linear/cholesky.ts";
+
+/** What is fitted: w - X beta, the first `gaps` columns being pulses of missing values. */
+export interface Data {
+  readonly n: number;
+  readonly y: Float64Array;
+  readonly columns: readonly Float64Array[];
+  readonly gaps: number;
+  /** Innovation variance, or null when it is estimated. */
+  readonly sigma2: number | null;
+}
+
+/** Work arrays of one model shape and length; filled by `valueAt`, read by `gradientInto` and by who wants residuals. */
+export interface Work {
+  readonly shape: Shape; readonly n: number;
+  /** min(memory, n). */
+  readonly g: number;
+  readonly a: Float64Array; readonly b: Float64Array;
+  readonly aBar: Float64Array; readonly bBar: Float64Array;
+  readonly pre: Presample; readonly response: Response;
+  /** L, then D = I + L'GL and its factor, W = C^-1 L', K, scratch; g x g each. */
+  readonly l: Float64Array; readonly d: Float64Array; readonly wk: Float64Array; readonly k: Float64Array; readonly s1: Float64Array;
+  readonly omegaBar: Float64Array;
+  /** a0 and e of y, then of each column. */
+  readonly a0: Float64Array[]; readonly e: Float64Array[];
+  readonly u: Float64Array; readonly v: Float64Array;
+  /** Residual series, its innovations, lambda. */
+  readonly r: Float64Array; readonly er: Float64Array; readonly lambda: Float64Array; readonly delta: Float64Array;
+  readonly q: Float64Array; readonly qy: Float64Array; readonly chol: Float64Array;
+  readonly beta: Float64Array;
+  /** Sum of squares, log determinant (gaps included), effective n, and the negative log-likelihood at the last `valueAt`. */
+  sum: number; logDet: number; nEffective: number; f: number; sigma2: number;
+}
+
+export function makeWork(shape: Shape, n: number, columns: number): Work {
+  const g = Math.min(shape.memory, n);
+  const big = () => new Float64Array(n);
+  const square = () => new Float64Array(g * g);
+  return {
+    shape, n, g,
+    a: new Float64Array(shape.ar.lags.length), b: new Float64Array(shape.ma.lags.length),
+    aBar: new Float64Array(shape.ar.lags.length), bBar: new Float64Array(shape.ma.lags.length),
+    pre: makePresample(shape.ar.degree, shape.ma.degree), response: makeResponse(n, g),
+    l: square(), d: square(), wk: square(), k: square(), s1: square(), omegaBar: new Float64Array(shape.memory ** 2),
+    a0: Array.from({ length: columns + 1 }, big), e: Array.from({ length: columns + 1 }, big),
+    u: new Float64Array(g), v: new Float64Array(g), r: big(), er: big(), lambda: big(), delta: big(),
+    q: new Float64Array(columns * columns), qy: new Float64Array(columns), chol: new Float64Array(columns * columns),
+    beta: new Float64Array(columns), sum: 0, logDet: 0, nEffective: n, f: Infinity, sigma2: NaN,
+  };
+}
+
+/** Negative log-likelihood at coefficients x (phi, Phi, theta, Theta), beta and sigma2 at their maximisers.
+ *  Infinity where the autoregressive side is not stationary. The moving-average side must not be explosive (roots inside the
+ *  circle make the recursion grow: see filter.ts for those). Cost n * (lags) a column + g^3. */
+export function valueAt(work: Work, data: Data, x: Float64Array): number {
+  const { shape, n, g } = work;
+  work.f = Infinity;
+  expandInto(work.a, shape.ar, x, 0);
+  expandInto(work.b, shape.ma, x, shape.ar.plain.length + shape.ar.seasonal.length);
+  if (!presampleInto(work.pre, shape.ar, work.a, shape.ma, work.b)) return Infinity;
+  responseInto(work.response, shape.ma.lags, work.b);
+  const logDet = gainInto(work);
+  if (!Number.isFinite(logDet)) return Infinity;
+  innovationsInto(work, data.y, 0);
+  const m = data.columns.length;
+  for (let j = 0; j < m; j++) innovationsInto(work, data.columns[j], j + 1);
+  const gapDet = regress(work, data);
+  if (!Number.isFinite(gapDet)) return Infinity;
+  work.logDet = logDet + gapDet;
+  work.nEffective = n - data.gaps;
+  work.sum = Math.max(0, dot(work.er, work.er, n) + presampleSquares(work, g));
+  const free = data.sigma2 === null;
+  work.sigma2 = free ? work.sum / work.nEffective : data.sigma2!;
+  const ne = work.nEffective;
+  work.f = 0.5 * (ne * Math.log(2 * Math.PI * work.sigma2) + work.logDet + (free ? ne : work.sum / work.sigma2));
+  if (Number.isNaN(work.f)) work.f = Infinity;
+  return work.f;
+}
+
+/** K, W and the log determinant of I + V Omega V'. */
+function gainInto(work: Work): number {
+  const { g, l, d, wk, k, s1, pre } = work;
+  if (g === 0) return 0;
+  const gram = work.response.gram, omega = pre.omega, G = pre.g;
+  if (g === 1) {
+    const det = 1 + omega[0] * gram[0];
+    k[0] = omega[0] / det;
+    wk[0] = Math.sqrt(Math.max(0, k[0]));
+    return Math.log(det);
+  }
+  semiFactorInto(l, omega, g, G);
+  // s1 = G L (L lower), d = I + L' s1, by rows so that memory runs along.
+  for (let i = 0; i < g; i++) {
+    const row = i * g;
+    for (let j = 0; j < g; j++) s1[row + j] = 0;
+    for (let t = 0; t < g; t++) {
+      const x = gram[row + t];
+      if (x === 0) continue;
+      for (let j = 0; j <= t; j++) s1[row + j] += x * l[t * g + j];
+    }
+  }
+  for (let i = 0; i < g; i++) {
+    const row = i * g;
+    for (let j = 0; j <= i; j++) d[row + j] = 0;
+    for (let t = i; t < g; t++) {
+      const x = l[t * g + i];
+      if (x === 0) continue;
+      for (let j = 0; j <= i; j++) d[row + j] += x * s1[t * g + j];
+    }
+    d[row + i] += 1;
+  }
+  if (choleskyInto(d, g) >= 0) return NaN;
+  let logDet = 0;
+  for (let i = 0; i < g; i++) logDet += Math.log(d[i * g + i]);
+  // W = C^-1 L': row by row of the triangular solve.
+  for (let i = 0; i < g; i++) {
+    const row = i * g;
+    for (let j = 0; j < g; j++) wk[row + j] = j >= i ? l[j * g + i] : 0;
+    for (let t = 0; t < i; t++) {
+      const x = d[row + t];
+      if (x === 0) continue;
+      for (let j = 0; j < g; j++) wk[row + j] -= x * wk[t * g + j];
+    }
+    const inverse = 1 / d[row + i];
+    for (let j = 0; j < g; j++) wk[row + j] *= inverse;
+  }
+  return 2 * logDet;
+}
+
+/** Lower factor of the leading g x g block of a semidefinite matrix (upper triangle given): a vanishing pivot gives an empty column. */
+function semiFactorInto(l: Float64Array, omega: Float64Array, g: number, stride: number): void {
+  let top = 0;
+  for (let i = 0; i < g; i++) top = Math.max(top, omega[i * stride + i]);
+  const floor = 4e-16 * top * g;
+  for (let i = 0; i < g; i++) {
+    const row = i * g;
+    for (let j = 0; j <= i; j++) {
+      const other = j * g;
+      let sum = omega[j * stride + i];
+      for (let t = 0; t < j; t++) sum -= l[row + t] * l[other + t];
+      if (i === j) l[row + i] = sum > floor ? Math.sqrt(sum) : 0;
+      else l[row + j] = l[other + j] > 0 ? sum / l[other + j] : 0;
+    }
+  }
+}
+
+/** a0 and e of one series. */
+function innovationsInto(work: Work, x: Float64Array, index: number): void {
+  const { n, shape, a, b } = work;
+  const a0 = work.a0[index];
+  subtractLagsInto(a0, x, n, shape.ar.lags, a);
+  divideInto(a0, n, shape.ma.lags, b);
+  correctInto(work, work.e[index], a0);
+}
+
+/** e = a0 - V K V'a0: only the first values change where 1/theta dies out. */
+function correctInto(work: Work, e: Float64Array, a0: Float64Array): void {
+  const { n, g, u, v, delta, response, shape, b } = work;
+  for (let t = 0; t < n; t++) e[t] = a0[t];
+  if (g === 0) return;
+  const m = response.length;
+  const reach = Math.min(n, g + m);
+  for (let t = 0; t < reach; t++) delta[t] = a0[t];
+  divideBackInto(delta, reach, shape.ma.lags, b);
+  for (let i = 0; i < g; i++) v[i] = delta[i];
+  gainTimesInto(work, u, v);
+  for (let t = 0; t < reach; t++) delta[t] = t < g ? u[t] : 0;
+  divideInto(delta, reach, shape.ma.lags, b);
+  for (let t = 0; t < reach; t++) e[t] -= delta[t];
+}
+
+/** out = K x = W'(W x). */
+function gainTimesInto(work: Work, out: Float64Array, x: Float64Array): void {
+  const { g, wk } = work;
+  out.fill(0);
+  for (let i = 0; i < g; i++) {
+    const row = i * g;
+    let sum = 0;
+    for (let j = 0; j < g; j++) sum += wk[row + j] * x[j];
+    for (let j = 0; j < g; j++) out[j] += wk[row + j] * sum;
+  }
+}
+
+/** beta by generalised least squares; residual series and innovations; the log determinant of the gaps' information. */
+function regress(work: Work, data: Data): number {
+  const { n, a0, e, r, er, q, qy, chol, beta } = work;
+  const m = data.columns.length;
+  for (let t = 0; t < n; t++) { r[t] = data.y[t]; er[t] = e[0][t]; }
+  if (m === 0) return 0;
+  for (let i = 0; i < m; i++) {
+    for (let j = 0; j <= i; j++) q[i * m + j] = q[j * m + i] = dot(e[i + 1], a0[j + 1], n);
+    qy[i] = dot(e[i + 1], a0[0], n);
+  }
+  chol.set(q);
+  if (choleskyInto(chol, m) >= 0) return NaN;
+  let gapDet = 0;
+  for (let i = 0; i < data.gaps; i++) gapDet += 2 * Math.log(chol[i * m + i]);
+  for (let i = 0; i < m; i++) {
+    let sum = qy[i];
+    for (let t = 0; t < i; t++) sum -= chol[i * m + t] * beta[t];
+    beta[i] = sum / chol[i * m + i];
+  }
+  for (let i = m - 1; i >= 0; i--) {
+    let sum = beta[i];
+    for (let t = i + 1; t < m; t++) sum -= chol[t * m + i] * beta[t];
+    beta[i] = sum / chol[i * m + i];
+  }
+  for (let j = 0; j < m; j++) {
+    const c = beta[j], x = data.columns[j], ex = e[j + 1];
+    for (let t = 0; t < n; t++) { r[t] -= c * x[t]; er[t] -= c * ex[t]; }
+  }
+  return gapDet;
+}
+
+/** u'Omega^-1 u = u'V'e, and lambda on the way (whole: the gradient needs it). */
+function presampleSquares(work: Work, g: number): number {
+  const { n, lambda, er, shape, b, u } = work;
+  for (let t = 0; t < n; t++) lambda[t] = er[t];
+  divideBackInto(lambda, n, shape.ma.lags, b);
+  if (g === 0) return 0;
+  // u of the residual series = Omega (V'e), from the first entries of lambda.
+  const { omega, g: G } = work.pre;
+  let sum = 0;
+  for (let i = 0; i < g; i++) {
+    let ui = 0;
+    for (let j = 0; j < g; j++) ui += (j >= i ? omega[i * G + j] : omega[j * G + i]) * lambda[j];
+    u[i] = ui;
+    sum += ui * lambda[i];
+  }
+  return sum;
+}
+
+/** Gradient of the last value by the coefficients (phi, Phi, theta, Theta). Cost about that of a value. */
+export function gradientInto(work: Work, data: Data, x: Float64Array, gradient: Float64Array): void {
+  const { shape, g, aBar, bBar, omegaBar, k, s1, wk, response } = work;
+  aBar.fill(0); bBar.fill(0); omegaBar.fill(0); gradient.fill(0);
+  const G = work.pre.g;
+  if (g > 0) {
+    // K = W'W (halved: the derivative of half a log determinant), Z = W G, M = G - Z'Z.
+    const gram = response.gram;
+    for (let i = 0; i < g * g; i++) { k[i] = 0; s1[i] = 0; }
+    for (let i = 0; i < g; i++) {
+      const row = i * g;
+      for (let t = 0; t < g; t++) {
+        const w = wk[row + t];
+        if (w === 0) continue;
+        const half = 0.5 * w;
+        for (let j = 0; j <= t; j++) k[t * g + j] += half * wk[row + j];
+        for (let j = 0; j < g; j++) s1[row + j] += w * gram[t * g + j];
+      }
+    }
+    for (let i = 0; i < g; i++) for (let j = 0; j < i; j++) k[j * g + i] = k[i * g + j];
+    for (let i = 0; i < g; i++) {
+      for (let j = i; j < g; j++) omegaBar[i * G + j] = (i === j ? 0.5 : 1) * gram[i * g + j];
+    }
+    for (let t = 0; t < g; t++) {
+      const row = t * g;
+      for (let i = 0; i < g; i++) {
+        const z = s1[row + i];
+        if (z === 0) continue;
+        omegaBar[i * G + i] -= 0.5 * z * z;
+        for (let j = i + 1; j < g; j++) omegaBar[i * G + j] -= z * s1[row + j];
+      }
+    }
+    responseBack(response, k, shape.ma.lags, work.b, bBar);
+  }
+  const weight = data.sigma2 === null ? work.nEffective / (2 * work.sum) : 1 / (2 * work.sigma2);
+  addQuadratic(work, work.r, work.er, work.lambda, weight);
+  if (data.gaps > 0) addGaps(work, data);
+  presampleBack(work.pre, omegaBar, shape.ar, work.a, shape.ma, work.b, aBar, bBar);
+  contractInto(gradient, shape.ar, x, 0, aBar);
+  contractInto(gradient, shape.ma, x, shape.ar.plain.length + shape.ar.seasonal.length, bBar);
+
+}
+
+/** Adds weight * d(quadratic form of the series r), whose innovations and lambda are given. */
+function addQuadratic(work: Work, r: Float64Array, e: Float64Array, lambda: Float64Array, weight: number): void {
+  const { shape, n, g, aBar, bBar, omegaBar } = work;
+  const G = work.pre.g;
+  for (let i = 0; i < aBar.length; i++) aBar[i] -= 2 * weight * lagDot(lambda, r, n, shape.ar.lags[i]);
+  for (let j = 0; j < bBar.length; j++) bBar[j] -= 2 * weight * lagDot(lambda, e, n, shape.ma.lags[j]);
+  for (let i = 0; i < g; i++) {
+    const x = weight * lambda[i];
+    omegaBar[i * G + i] -= x * lambda[i];
+    for (let j = i + 1; j < g; j++) omegaBar[i * G + j] -= 2 * x * lambda[j];
+  }
+}
+
+/** Half the log determinant of the gaps' information C: tr(C^-1 dC) is a sum of quadratic forms of the columns of X C^(-T/2). */
+function addGaps(work: Work, data: Data): void {
+  const { n, shape, b, e, chol, delta } = work;
+  const m = data.columns.length;
+  const series = new Float64Array(n), innovations = new Float64Array(n);
+  const c = new Float64Array(data.gaps);
+  for (let j = 0; j < data.gaps; j++) {
+    // Column j of Lc^-T: solve Lc' c = unit_j.
+    c.fill(0);
+    c[j] = 1 / chol[j * m + j];
+    for (let i = j - 1; i >= 0; i--) {
+      let sum = 0;
+      for (let t = i + 1; t <= j; t++) sum -= chol[t * m + i] * c[t];
+      c[i] = sum / chol[i * m + i];
+    }
+    series.fill(0); innovations.fill(0);
+    for (let i = 0; i <= j; i++) {
+      const x = data.columns[i], ex = e[i + 1], ci = c[i];
+      for (let t = 0; t < n; t++) { series[t] += ci * x[t]; innovations[t] += ci * ex[t]; }
+    }
+    delta.set(innovations);
+    divideBackInto(delta, n, shape.ma.lags, b);
+    addQuadratic(work, series, innovations, delta, 0.5);
+  }
+}

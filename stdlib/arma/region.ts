@@ -1,0 +1,37 @@
+// Is a factor's polynomial stationary (or invertible), and if not, how to get back inside.
+
+import { stepDownInto } from "./presample.ts";
+
+/** Whether 1 - sum c_i B^lag_i has all roots outside the unit circle (on it too when `closed`). Lags ascending. */
+export function isStable(lags: ArrayLike<number>, c: ArrayLike<number>, sign: 1 | -1, closed = false): boolean {
+  const count = lags.length;
+  if (count === 0) return true;
+  let total = 0;
+  for (let i = 0; i < count; i++) total += Math.abs(c[i]);
+  if (total < 1) return true;
+  if (count === 1) return Math.abs(c[0]) < 1 || (closed && Math.abs(c[0]) <= 1);
+  // Common step: lags 12 and 24 are a polynomial of degree 2 in B^12.
+  let step = 0;
+  for (let i = 0; i < count; i++) step = gcd(step, lags[i]);
+  const p = lags[count - 1] / step;
+  const a = new Float64Array(p + 1);
+  for (let i = 0; i < count; i++) a[lags[i] / step] = sign * c[i];
+  // On the circle the step-down ends in a partial autocorrelation of exactly 1: a hair's shrinking decides "closed".
+  if (closed) { let r = 1; for (let i = 1; i <= p; i++) { r *= 1 - 1e-12; a[i] *= r; } }
+  return stepDownInto(new Float64Array(p * (p + 1) / 2), a, p);
+}
+
+function gcd(a: number, b: number): number { return b === 0 ? a : gcd(b, a % b); }
+
+/** Multiplies every root's modulus so that the polynomial becomes stable with a margin: c_i -> c_i r^lag_i. */
+export function shrinkInto(lags: ArrayLike<number>, c: Float64Array, sign: 1 | -1, margin = 0.98): void {
+  for (let tries = 0; tries < 60; tries++) {
+    if (isStable(lags, c, sign)) {
+      if (tries === 0) return;
+      for (let i = 0; i < lags.length; i++) c[i] *= margin ** (lags[i] / lags[0]);
+      return;
+    }
+    for (let i = 0; i < lags.length; i++) c[i] *= 0.95 ** (lags[i] / lags[0]);
+  }
+  c.fill(0);
+}

@@ -1,0 +1,37 @@
+import { describe, expect, it } from "vitest";
+import { estimate } from "../../../stdlib/arma/estimate.ts";
+import type { Data } from "../../../stdlib/arma/likelihood.ts";
+import { makeShape } from "../../../stdlib/arma/shape.ts";
+import { differenced, readCases, readValues, regressors, transformed } from "./cases.ts";
+
+describe("estimate", () => {
+  for (const c of readCases("arima_ml")) {
+    it(`${c.id} reaches the best known maximum`, () => {
+      const m = c.inputs.model, s = m.seasonal;
+      const shape = makeShape(m.arLags, s?.arLags ?? [], m.maLags, s?.maLags ?? [], s?.period ?? 1);
+      const levels = transformed(readValues(c.series!), c.transform);
+      const columns: Float64Array[] = [];
+      const filled = levels.map(v => Number.isNaN(v) ? 0 : v);
+      for (let t = 0; t < levels.length; t++) {
+        if (!Number.isNaN(levels[t])) continue;
+        const pulse = new Float64Array(levels.length);
+        pulse[t] = 1;
+        columns.push(differenced(pulse, m));
+        let a = t, b = t;
+        while (a >= 0 && Number.isNaN(levels[a])) a--;
+        while (b < levels.length && Number.isNaN(levels[b])) b++;
+        filled[t] = a < 0 ? levels[b] : b >= levels.length ? levels[a] : levels[a] + (levels[b] - levels[a]) * (t - a) / (b - a);
+      }
+      const gaps = columns.length;
+      const y = differenced(filled, m);
+      if (m.constant) columns.push(new Float64Array(y.length).fill(1));
+      for (const x of regressors(m, levels.length)) columns.push(differenced(x, m));
+      const data: Data = { n: y.length, y, columns, gaps, sigma2: null };
+      const mean = m.constant ? y.reduce((a, b) => a + b, 0) / y.length : 0;
+      const found = estimate({ shape, data, held: new Float64Array(shape.count).fill(NaN), bridged: y.map(v => v - mean) });
+      if (process.env.SHOW) console.log(c.id, found.passes, found.converged, -found.value - (c.expected.logLik as number), [...found.x].map(v => v.toFixed(4)).join(" "), JSON.stringify(c.expected.coef));
+      expect(-found.value).toBeGreaterThan((c.expected.logLik as number) - 1e-6);
+      expect(found.converged).toBe(true);
+    });
+  }
+});
