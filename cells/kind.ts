@@ -86,6 +86,8 @@ export interface Kind<Options = never, Result = unknown> {
   readonly example: string;
   run(options: Options, context: RunContext): Result | Promise<Result>;
   show(result: Result, context: ShowContext): readonly Part[];
+  /** What expressions see of a result, where `show` needs more than that: a slider's bare number. Left out: the result itself. */
+  value?(result: Result): unknown;
 }
 
 /** A library function, as the language sees it. */
@@ -104,7 +106,6 @@ export interface LibraryFunction {
  *  - "code": a `CodeBody`; the kind calls `context.importCode(source, inputs)`. */
 export interface ClaimOutcome { readonly holds: boolean | null; readonly message?: string }
 export interface CodeBody { readonly source: string; readonly inputs: Readonly<Record<string, unknown>> }
-
 
 /** All that the engine is told about the language: `cells/index.ts` exports one as `language`. */
 export interface Language {
