@@ -69,6 +69,14 @@ export function positionIn(series: Pick<Series, "start" | "every">, time: string
   return positionOf(first, parseEvery(series.every), startMs(sought));
 }
 
+/** Positions of many instants (UTC milliseconds) in a series, as `positionIn` gives them; for numbered series, of the numbers. */
+export function positionsOf(series: Pick<Series, "start" | "every">, ms: ArrayLike<number>): Int32Array {
+  const first = periodOf(series.start, series.every);
+  if (series.every === null) return Int32Array.from(ms, (v) => v - first.index);
+  const spacing = parseEvery(series.every);
+  return Int32Array.from(ms, (v) => positionOf(first, spacing, v));
+}
+
 /** Number of the period that contains a time's first instant, on a grid that is the same for every series of this spacing:
  *  neighbouring periods differ by 1. Months, quarters and years count from year 0, weeks from a Monday, the rest from 1970. */
 export function periodIndex(time: string, every: string | null): number {

@@ -1,13 +1,25 @@
-// A run context for tests of kinds: nothing outside answers unless the test says so.
+import { checkOptions } from "../../cells/check.ts";
+import type { Kind, RunContext } from "../../cells/kind.ts";
 
-import type { RunContext } from "../../cells/kind.ts";
-
-export function madeContext(changes: Partial<RunContext> = {}): RunContext & { readonly said: string[]; readonly steps: [number, number][] } {
-  const said: string[] = [], steps: [number, number][] = [];
-  const refuse = (what: string) => (): never => { throw new Error(`the test gave no ${what}`); };
+/** Surroundings of one run: files from memory, notes kept. */
+export function contextOf(given: Partial<RunContext> & { readonly files?: Readonly<Record<string, string | Uint8Array>> } = {}): RunContext & { readonly notes: string[] } {
+  const notes: string[] = [];
+  const { files = {}, ...rest } = given;
   return {
-    name: "made", setting: undefined, source: {}, signal: new AbortController().signal, said, steps,
-    read: refuse("file"), importCode: refuse("script"), recompute: refuse("recomputation"), control: refuse("control"),
-    progress: (done, total) => { steps.push([done, total]); }, breathe: async () => {}, note: text => { said.push(text); }, ...changes,
+    name: "cell", setting: undefined, source: {}, signal: new AbortController().signal, notes,
+    read: async (file) => {
+      if (!Object.hasOwn(files, file)) throw new Error(`there is no file ${file} in the notebook's folder`);
+      const content = files[file];
+      return typeof content === "string" ? new TextEncoder().encode(content) : content;
+    },
+    progress: () => undefined, breathe: async () => undefined, note: (text) => { notes.push(text); },
+    importCode: async () => ({}), recompute: async () => null,
+    control: () => { throw new Error("no control here"); },
+    ...rest,
   };
+}
+
+/** Checks the options as the engine does, and runs. */
+export async function runCell<O, R>(kind: Kind<O, R>, given: Readonly<Record<string, unknown>>, context: RunContext = contextOf()): Promise<R> {
+  return kind.run(checkOptions(kind, given) as O, context);
 }
