@@ -79,7 +79,7 @@ function inCell(text: string, position: number, fence: Fence): Context {
   }
   const before = text.slice(fence.bodyFrom, position);
   const heads = [...before.matchAll(/^([A-Za-z_$][\w$]*|"[^"\n]*")\s*:/gm)];
-  const last = heads.at(-1);
+  const last = heads.findLast((head) => !bracketOpen(before.slice(0, head.index)));
   if (!last) return { in: "expression", kind: fence.kind, option: null, expression: fence.bodyFrom };
   return { in: "expression", kind: fence.kind, option: last[1], expression: fence.bodyFrom + last.index + last[0].length };
 }

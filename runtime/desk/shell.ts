@@ -42,6 +42,7 @@ async function start(): Promise<void> {
 
   function greet(): void {
     post({ to: "canEdit", canEdit: false });
+    post({ to: "sendStills" });
     post({ to: "allowCode", allow: carried.allowCode });
     for (const { name, value } of carried.settings) post({ to: "set", name, value });
     post({ to: "text", version: 1, text: carried.text });

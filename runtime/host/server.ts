@@ -17,8 +17,6 @@ export interface Session {
   readonly events: EventStreams;
   readonly part: (name: BrowserPart) => Promise<string>;
   readonly framePolicy: string;
-  /** `script` cells may run from the start. */
-  readonly allowCode: boolean;
   /** The page read this file: it is followed from now on. */
   readonly wanted: (file: string) => void;
 }
@@ -92,7 +90,7 @@ async function frameDocument(session: Session): Promise<Response> {
 async function notebook(session: Session): Promise<Response> {
   const stored = await session.store.read();
   const path = session.store.path;
-  return json({ name: basename(path), path, text: stored.text, hash: stored.hash, allowCode: session.allowCode });
+  return json({ name: basename(path), path, text: stored.text, hash: stored.hash });
 }
 
 async function save(session: Session, request: Request): Promise<Response> {

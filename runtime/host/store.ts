@@ -1,7 +1,7 @@
 // The notebook's file: read whole, written whole, and never over a text that the writer has not seen.
 
 import { readFile, realpath, stat } from "node:fs/promises";
-import { writeWhole } from "./atomic.ts";
+import { writeWhole } from "./write.ts";
 import { hash } from "./hash.ts";
 import { CannotRun } from "./io.ts";
 

@@ -1,0 +1,15 @@
+// The command itself: `run` with a real process around it.
+
+import { run } from "./run.ts";
+
+const stop = new AbortController();
+// The first Ctrl-C lets the command end in order, the second ends it as usual.
+for (const signal of ["SIGINT", "SIGTERM"] as const) process.once(signal, () => stop.abort());
+// A reader that closes early ("| head") is no error.
+process.stdout.on("error", (error: NodeJS.ErrnoException) => { if (error.code !== "EPIPE") throw error; });
+
+process.exitCode = await run(process.argv.slice(2), {
+  out: (text) => { process.stdout.write(text); },
+  error: (text) => { process.stderr.write(text); },
+  cwd: process.cwd(), now: () => new Date(), stop: stop.signal,
+});
