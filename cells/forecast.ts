@@ -13,6 +13,9 @@ export interface ForecastCell {
   readonly totals?: ForecastOptions["totals"];
   readonly bands?: ForecastOptions["bands"];
   readonly seed?: number;
+  readonly threshold?: number | readonly number[];
+  readonly paths?: number;
+  readonly data?: Series;
 }
 
 const longestHorizon = 5000;
@@ -24,7 +27,10 @@ export const forecastOptions: OptionTable = {
   regressors: { type: "object", sentence: "Future values of the regressors that are series, by the names the fit uses; interventions extend by themselves.", example: "{price: priceAhead}" },
   totals: { type: "any", sentence: "Spans to total: \"year\" for each calendar year touched, a year such as \"2025\", or a list of {from, to}.", example: "\"year\"" },
   bands: { type: { oneOf: ["plugIn", "simulated", "calibrated"] }, default: "plugIn", sentence: "How the bands are made: from the model's formula, by simulation with uncertain parameters and resampled shocks, or from held-out errors." },
-  seed: { type: "integer", default: 1, min: 0, sentence: "Seed of the simulation, where the bands are simulated." },
+  threshold: { type: { anyOf: ["number", { listOf: "number" }] }, sentence: "A value, or several, in the units of the data; the probability of lying above it is given for each period and for the whole span.", example: "1500" },
+  paths: { type: "integer", default: 0, min: 0, max: 1000, sentence: "How many sample paths to draw and to give." },
+  seed: { type: "integer", default: 1, min: 0, sentence: "Seed of everything that is simulated: the same seed gives the same paths." },
+  data: { type: "series", sentence: "The whole loaded series, where the model saw only a part of it: what came after the origin is drawn as held out.", example: "crossings" },
 };
 
 /** Point forecasts, bands and totals in the units of the data. */

@@ -25,6 +25,10 @@ export function fanChart(forecast: Forecast, alt: string, shownPast: number): Ch
     middle: middleColumns(forecast, all),
     heldOut: heldOut === null ? { time: [], value: [] } : { time: milliseconds(heldOut.start, every, Math.min(heldOut.n, h)), value: heldOut.values.slice(0, h) },
   };
+  data.paths = {
+    path: forecast.paths.flatMap((path, i) => Array.from(path, () => String(i + 1))), time: forecast.paths.flatMap(() => Array.from(future)),
+    value: forecast.paths.flatMap(path => Array.from(path)),
+  };
   levels.forEach((level, i) => {
     const band = forecast.bands.find(one => one.level === level)!;
     data[`band${i + 1}`] = { time: future.slice(), low: band.low, high: band.high, level: Array.from(future, () => percent(level)) };
@@ -47,6 +51,7 @@ export function fanChart(forecast: Forecast, alt: string, shownPast: number): Ch
           data: { name: `band${i + 1}` }, mark: { type: "area", style: "band" },
           encoding: { x, y: { ...y, field: "low" }, y2: { field: "high" }, tooltip: bandTooltip(dated) },
         })),
+        { data: { name: "paths" }, mark: { type: "line", style: "guide", strokeWidth: 0.7, size: 0.7, opacity: 0.7 }, encoding: { x, y: { ...y, field: "value" }, detail: { field: "path", type: "nominal" } } },
         { data: { name: "history" }, mark: { type: "line", style: "sample" }, encoding: { x, y: { ...y, field: "value" } } },
         { data: { name: "middle" }, mark: { type: "line", style: "model" }, encoding: { x, y: { ...y, field: "value" } } },
         { data: { name: "heldOut" }, mark: { type: "line", style: "heldOut", point: false }, encoding: { x, y: { ...y, field: "value" } } },

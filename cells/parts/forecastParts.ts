@@ -16,6 +16,7 @@ export function forecastParts(forecast: Forecast): readonly Part[] {
     ...forecast.notes.filter(note => note.tone === "caution").map((note): TextPart => ({ part: "text", tone: "caution", text: note.text })),
     fanChart(forecast, sentence, past),
     ...(forecast.totals.length > 0 ? [totalsTable(forecast)] : []),
+    ...passingParts(forecast),
     periodsTable(forecast),
     ...forecast.notes.filter(note => note.tone !== "caution").map((note): TextPart => ({ part: "text", tone: "note", text: note.text })),
     { part: "text", tone: "note", text: "The bands hold if the model does: they do not cover a change in what drives the series. A forecast is a calculation from the past, and no advice." },
@@ -52,9 +53,30 @@ function heldOutSentence(forecast: Forecast, wide: Forecast["bands"][number] | n
   return ` Of ${known} later period${known === 1 ? "" : "s"} that ${known === 1 ? "is" : "are"} known, ${inside} fell inside the ${percent(wide.level)} band; the median missed by ${figure(error / known)} on average.`;
 }
 
+/** The chance of lying above each threshold, in a sentence and by period. */
+function passingParts(forecast: Forecast): readonly Part[] {
+  if (forecast.passing.length === 0) return [];
+  const unit = forecast.unit ? ` ${forecast.unit}` : "";
+  const sentences = forecast.passing.map(one => {
+    const top = one.above.indexOf(one.above.reduce((most, p) => Math.max(most, p), 0));
+    return `The probability that ${forecast.name} passes ${figure(one.threshold, 4)}${unit} in at least one of the ${forecast.horizon} periods is ${percent(one.ever)}; for a single period it is highest in ${forecast.times[Math.max(0, top)]}, ${percent(one.above[Math.max(0, top)])}.`;
+  });
+  const shown = Math.min(forecast.horizon, mostRows);
+  return [
+    { part: "text", text: sentences.join(" ") },
+    {
+      part: "table", title: "Probability of lying above",
+      columns: [{ title: "period" }, ...forecast.passing.map(one => ({ title: `${figure(one.threshold, 4)}${unit}`, align: "right" as const, format: ".1%" }))],
+      rows: Array.from({ length: shown }, (_, i) => [forecast.times[i], ...forecast.passing.map(one => one.above[i])]),
+    },
+  ];
+}
+
 function periodsTable(forecast: Forecast): TablePart {
   const shown = Math.min(forecast.horizon, mostRows);
   const bands = [...forecast.bands].sort((a, b) => a.level - b.level);
+  const growth = new Map(forecast.growth.map(one => [one.time, one.median]));
+  const grows = growth.size > 0;
   return {
     part: "table", title: `${forecast.name} by period`,
     columns: [
@@ -63,8 +85,12 @@ function periodsTable(forecast: Forecast): TablePart {
         { title: `${percent(band.level)} from`, align: "right" as const, format: pattern(forecast.median) },
         { title: "to", align: "right" as const, format: pattern(forecast.median) },
       ]),
+      ...(grows ? [{ title: "on the year before", align: "right" as const, format: "+.1%" }] : []),
     ],
-    rows: Array.from({ length: shown }, (_, i) => [forecast.times[i], forecast.median[i], forecast.mean[i], ...bands.flatMap(band => [band.low[i], band.high[i]])]),
+    rows: Array.from({ length: shown }, (_, i) => [
+      forecast.times[i], forecast.median[i], forecast.mean[i], ...bands.flatMap(band => [band.low[i], band.high[i]]),
+      ...(grows ? [growth.get(forecast.times[i]) ?? NaN] : []),
+    ]),
     ...(forecast.horizon > shown ? { note: `The first ${shown} of ${forecast.horizon} periods; all of them are in the chart's data.` } : {}),
   };
 }
@@ -73,16 +99,18 @@ function totalsTable(forecast: Forecast): TablePart {
   const levels = forecast.totals[0].bands.map(band => band.level);
   const format = pattern(forecast.totals.map(total => total.median));
   const part = forecast.totals.some(total => total.observed > 0);
+  const grows = forecast.totals.some(total => total.growth !== undefined);
   return {
     part: "table", title: "Totals over spans",
     columns: [
       { title: "span" }, { title: "median", align: "right", format, unit: forecast.unit }, { title: "mean", align: "right", format, unit: forecast.unit },
       ...levels.flatMap(level => [{ title: `${percent(level)} from`, align: "right" as const, format }, { title: "to", align: "right" as const, format }]),
+      ...(grows ? [{ title: "on the year before", align: "right" as const, format: "+.1%" }] : []),
       ...(part ? [{ title: "periods already observed", align: "right" as const, format: "d" }] : []),
     ],
     rows: forecast.totals.map(total => [
       total.from === total.to ? total.from : `${total.from} to ${total.to}`, total.median, total.mean,
-      ...total.bands.flatMap(band => [band.low, band.high]), ...(part ? [total.observed] : []),
+      ...total.bands.flatMap(band => [band.low, band.high]), ...(grows ? [total.growth?.median ?? NaN] : []), ...(part ? [total.observed] : []),
     ]),
     note: "The bands of a total take account of errors that run in the same direction: they are not the sum of the periods' bands.",
   };

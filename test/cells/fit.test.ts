@@ -4,7 +4,7 @@ import { fit } from "../../cells/fit.ts";
 import { coefficientsOf } from "../../cells/parts/fitParts.ts";
 import type { ChartPart, TablePart, TextPart } from "../../cells/parts/part.ts";
 import { makeSeries, pulse } from "../../stdlib/index.ts";
-import { madeContext } from "./context.ts";
+import { madeContext } from "./madeContext.ts";
 import { drawnCharts } from "./drawn.ts";
 import { madeFit, madeSeries, stepped } from "./made.ts";
 

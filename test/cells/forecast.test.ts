@@ -3,7 +3,7 @@ import { forecast, needForecaster } from "../../cells/forecast.ts";
 import { checkOptions } from "../../cells/check.ts";
 import type { ChartPart, TablePart, TextPart } from "../../cells/parts/part.ts";
 import { cut, fit as estimate, rule } from "../../stdlib/index.ts";
-import { madeContext } from "./context.ts";
+import { madeContext } from "./madeContext.ts";
 import { drawnCharts } from "./drawn.ts";
 import { madeFit, madeForecast, madeSeries, stepped } from "./made.ts";
 
@@ -33,6 +33,15 @@ describe("forecast shows", () => {
     const chart = parts.find((p): p is ChartPart => p.part === "chart")!;
     expect(chart.full?.forecast.median).toHaveLength(12);
     expect(Object.keys(chart.full?.forecast ?? {})).toContain("low 90%");
+  });
+  test("the chance of passing a threshold, growth on the year before, and sample paths", async () => {
+    const passing = [{ threshold: 1500, above: Float64Array.from({ length: 12 }, (_, i) => i / 20), ever: 0.7 }];
+    const made = madeForecast({ passing, growth: [{ time: "2024-01", median: 0.05, bands: [] }], paths: [madeForecast().median, madeForecast().mean] });
+    const parts = forecast.show(made, show);
+    expect(texts(parts)).toContain("The probability that crossings passes 1,500 vehicles in at least one of the 12 periods is 70%; for a single period it is highest in 2024-12, 55%.");
+    const tables = parts.filter((p): p is TablePart => p.part === "table");
+    expect(tables.at(-1)!.rows.map(row => row.at(-1)).slice(0, 2)).toEqual([0.05, NaN]);
+    await expect(drawnCharts(parts)).resolves.toHaveLength(1);
   });
   test("that the bands rest on the model and that a forecast is no advice", () => {
     expect(texts(forecast.show(madeForecast(), show))).toMatch(/hold if the model does.*no advice/);

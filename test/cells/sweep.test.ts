@@ -1,7 +1,7 @@
 import { describe, expect, test } from "vitest";
 import { sweep } from "../../cells/sweep.ts";
 import type { TextPart } from "../../cells/parts/part.ts";
-import { madeContext } from "./context.ts";
+import { madeContext } from "./madeContext.ts";
 import { drawnCharts } from "./drawn.ts";
 
 const show = { name: "hinge", width: 640 };
