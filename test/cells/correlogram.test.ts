@@ -1,0 +1,73 @@
+import { readFileSync } from "node:fs";
+import { describe, expect, test } from "vitest";
+import { checkOptions } from "../../cells/check.ts";
+import { correlogram } from "../../cells/correlogram.ts";
+import type { ChartPart, TablePart, TextPart } from "../../cells/parts/part.ts";
+import { makeSeries } from "../../stdlib/index.ts";
+import { drawnCharts } from "./drawn.ts";
+import { madeContext } from "./madeContext.ts";
+import { madeSeries, stepped } from "./made.ts";
+
+const show = { name: "signs", width: 640 };
+const texts = (parts: readonly { readonly part: string }[]): string => parts.filter((p): p is TextPart => p.part === "text").map(p => p.text).join(" ");
+const run = async (options: Record<string, unknown>) => correlogram.run(checkOptions(correlogram, options) as never, madeContext());
+const numbered = (values: readonly number[]) => makeSeries({ name: "short", values: Float64Array.from(values) });
+
+/** Annual flow of the Nile at Aswan (Cobb 1978), the second column of the file. */
+const nile = numbered(readFileSync(new URL("../reference/series/nile.csv", import.meta.url), "utf8").trim().split("\n").slice(1).map(line => Number(line.split(",").at(-1))));
+
+describe("correlogram", () => {
+  test("gives the autocorrelations of a known series by lag from 0", async () => {
+    // Reference case acf-nile-1: R stats::acf, numpy by formula.
+    const cases = JSON.parse(readFileSync(new URL("../reference/expected/acf.json", import.meta.url), "utf8")) as { id: string; expected: { acf: number[] } }[];
+    const expected = cases.find(one => one.id === "acf-nile-1")!.expected.acf;
+    const result = await run({ series: nile, lags: 20 });
+    expect(result.acf).toHaveLength(21);
+    expected.forEach((value, lag) => { expect(result.acf[lag]).toBeCloseTo(value, 9); });
+    expect(result.band.acf).toHaveLength(21);
+    expect(result.suggests).toHaveProperty("ar");
+  });
+  test("says what stands out before it draws both correlations on one lag axis", async () => {
+    const parts = correlogram.show(await run({ series: nile }), show);
+    expect(parts[0].part).toBe("text");
+    const chart = parts[1] as ChartPart;
+    expect(chart.alt).toMatch(/^Lags 1 to \d+: the autocorrelations at lags 1, 2, 3.* are outside the 95% band; the partial autocorrelations? at lags? 1.* outside the 95% band\.$/);
+    const [svg] = await drawnCharts(parts);
+    expect(svg).toContain("partial autocorrelation");
+    expect(svg).toContain("lag (periods)");
+  });
+  test("says how many lags fall outside by chance, and calls the orders a suggestion", async () => {
+    const said = texts(correlogram.show(await run({ series: nile, lags: 20 }), show));
+    expect(said).toContain("About 1 of 20 lags falls outside 95% limits by chance alone.");
+    expect(said).toMatch(/A fit could begin with ar: \d, ma: \d.*That is a suggestion from a rule of thumb/);
+  });
+  test("marks the seasonal lags of a monthly series", async () => {
+    const parts = correlogram.show(await run({ series: stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 1 }]) }), show);
+    expect((parts[1] as ChartPart).title).toBe("Correlations of the log of crossings, differenced at lag 1 with its own past");
+    expect((parts[1] as ChartPart).data.seasons.lag).toContain(12);
+  });
+  test("names the null hypothesis beside the portmanteau tests", async () => {
+    const table = correlogram.show(await run({ series: nile }), show).find((p): p is TablePart => p.part === "table")!;
+    expect(table.note).toContain("no autocorrelation up to this lag");
+    expect(table.rows[0].at(-1)).toBe("larger than chance would make them");
+  });
+  test("widens Bartlett's band with the lag", async () => {
+    const { band } = await run({ series: nile, band: "bartlett", lags: 10 });
+    expect(band.acf[10]).toBeGreaterThan(band.acf[1]);
+  });
+});
+
+describe("correlogram refuses, in words for its author,", () => {
+  test("a constant series", async () => {
+    await expect(run({ series: numbered([4, 4, 4, 4, 4]) })).rejects.toThrow("short is constant: each of its 5 values is 4");
+  });
+  test("more lags than values", async () => {
+    await expect(run({ series: numbered([1, 3, 2, 5]), lags: 50 })).rejects.toThrow("lags is 50; with 4 values it can be a whole number from 1 to 3");
+  });
+  test("a series of two values", async () => {
+    await expect(run({ series: numbered([1, 2]) })).rejects.toThrow("short has 2 observations; a correlogram needs at least 3");
+  });
+  test("a level in percent", async () => {
+    await expect(run({ series: nile, level: 95 })).rejects.toThrow(/0\.95/);
+  });
+});
