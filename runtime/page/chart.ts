@@ -57,14 +57,15 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
   await fitPanels();
   async function fitPanels(): Promise<void> {
     if (compiled.fits || compiled.widthSignals.length === 0 || drawnWidth === width) return;
-    // The room that axes take is known only after a drawing: two passes settle it.
-    for (let pass = 0; pass < 2; pass++) {
-      const svg = element.querySelector("svg");
-      const spare = width - Number(svg?.getAttribute("width") ?? width);
-      if (Math.abs(spare) < 2) break;
-      const stacked = compiled.widthSignals.length === 1 || "vconcat" in latest.spec;
-      const share = stacked ? spare : spare / compiled.widthSignals.length;
-      for (const name of compiled.widthSignals) view.signal(name, Math.max(60, (view.signal(name) as number) + share));
+    // The room that axes take is known only after a drawing: a few passes settle it.
+    for (let pass = 0; pass < 3; pass++) {
+      const taken = Number(element.querySelector("svg")?.getAttribute("width") ?? width);
+      if (Math.abs(width - taken) < 2) break;
+      for (const name of compiled.widthSignals) {
+        const now = view.signal(name) as number;
+        const across = compiled.widthSignals.length > 1 ? compiled.widthSignals.length : Math.max(1, Math.round(taken / (now + 50)));
+        view.signal(name, Math.max(60, now + (width - taken) / across));
+      }
       await view.runAsync();
     }
     drawnWidth = width;

@@ -4,7 +4,7 @@
 import { compile } from "vega-lite";
 import type { TopLevelSpec } from "vega-lite";
 import type { Spec } from "vega";
-import { chartConfig } from "./chartTheme.ts";
+import { chartConfig, timeLabels } from "./chartTheme.ts";
 import type { ChartPart } from "../../cells/parts/part.ts";
 
 export interface CompiledChart {
@@ -28,6 +28,7 @@ export function compileChart(part: ChartPart): CompiledChart {
   const spec = structuredClone(part.spec) as Loose;
   refuseOutside(spec);
   useUtc(spec);
+  overlay(spec);
   const several = ["hconcat", "vconcat", "concat", "facet", "repeat"].some((word) => word in spec) || facetted(spec);
   const names = Object.keys(part.data);
   if (!("data" in spec) && names.length > 0) spec.data = { name: names[0] };
@@ -39,7 +40,8 @@ export function compileChart(part: ChartPart): CompiledChart {
   const signals = (compiled.signals ?? []) as readonly { name: string; value?: unknown }[];
   return {
     spec: compiled, fits: !several,
-    widthSignals: several ? signals.filter(({ name, value }) => /(?:^|_|[a-z])[wW]idth$/.test(name) && typeof value === "number").map(({ name }) => name) : [],
+    // A stack's common width is the picture's own; other panels have signals.
+    widthSignals: several ? [...(typeof compiled.width === "number" ? ["width"] : []), ...signals.filter(({ name, value }) => /[wW]idth$/.test(name) && typeof value === "number").map(({ name }) => name)] : [],
     dataNames: new Set((compiled.data ?? []).map(({ name }) => name)), signalNames: new Set(signals.map(({ name }) => name)),
   };
 }
@@ -68,8 +70,23 @@ function useUtc(node: unknown): void {
   if (one.type === "temporal" && typeof one.field === "string") {
     if (typeof one.timeUnit === "string") { if (!one.timeUnit.startsWith("utc")) one.timeUnit = `utc${one.timeUnit}`; }
     else if (one.scale !== null && one.timeUnit === undefined) one.scale = { type: "utc", ...(one.scale as Loose | undefined) };
+    const axis = (one.axis ?? {}) as Loose;
+    if (one.axis !== null && one.timeUnit === undefined && axis.format === undefined && axis.labelExpr === undefined) one.axis = { ...axis, labelExpr: timeLabels };
   }
   Object.values(one).forEach(useUtc);
+}
+
+/** Points laid over a line wear the line's own style. */
+function overlay(node: unknown): void {
+  if (Array.isArray(node)) { node.forEach(overlay); return; }
+  if (typeof node !== "object" || node === null) return;
+  const one = node as Loose;
+  const mark = one.mark as Loose | undefined;
+  if (typeof mark === "object" && mark.point === true && typeof mark.style === "string") {
+    const { color, filled, shape } = ((chartConfig.style as Record<string, Loose>)[mark.style] ?? {}) as Loose;
+    mark.point = { color, filled: filled ?? true, shape };
+  }
+  Object.values(one).forEach(overlay);
 }
 
 /** A chart reads no address and runs no bound element. */

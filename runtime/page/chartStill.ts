@@ -14,11 +14,13 @@ export async function chartStill(part: ChartPart, width: number): Promise<string
   for (const [name, columns] of Object.entries(part.data)) if (compiled.dataNames.has(name)) view.data(name, rowsOf(columns));
   for (const [name, value] of Object.entries(part.params ?? {})) if (compiled.signalNames.has(name)) view.signal(name, value);
   if (compiled.fits) view.width(width).height(part.height);
-  else for (const name of compiled.widthSignals) view.signal(name, "vconcat" in part.spec || compiled.widthSignals.length === 1 ? width - 60 : width / compiled.widthSignals.length - 60);
+  else for (const name of compiled.widthSignals) view.signal(name, name === "width" ? width - 60 : Math.max(60, width / panelsAcross(part) - 60));
   const svg = await view.toSVG();
   view.finalize();
   return svg.replace(/<svg [^>]*>/, (tag) => scaling(tag));
 }
+
+function panelsAcross(part: ChartPart): number { const { hconcat } = part.spec as { hconcat?: readonly unknown[] }; return hconcat?.length ?? 2; }
 
 /** Width and height become the most that it takes. */
 function scaling(tag: string): string {

@@ -1,0 +1,49 @@
+// Serves the page with a made-up engine to real Chromium: shared by the browser tests of the page.
+
+import { build } from "esbuild";
+import { chromium } from "playwright-core";
+import type { Browser, Page } from "playwright-core";
+import { createHash } from "node:crypto";
+import { join } from "node:path";
+import { fakeText } from "./fakeNotebook.ts";
+
+const here = import.meta.dirname;
+const top = join(here, "../../..");
+
+/** A worker has no document: some packages bring another file for that ("worker" condition). */
+async function bundle(entry: string, define: Record<string, string> = {}, conditions: string[] = []): Promise<string> {
+  const made = await build({ entryPoints: [entry], bundle: true, write: false, format: "iife", target: "es2022", minify: true, loader: { ".css": "text" }, define, conditions, logLevel: "error" });
+  return made.outputFiles[0].text;
+}
+
+/** The desk's part is played by this outer document: it keeps every message from the page in `heard`. */
+export async function outerDocument(engineEntry = join(here, "fakeEngine.ts"), text = fakeText): Promise<string> {
+  const engine = await bundle(engineEntry, {}, ["worker"]);
+  const page = (await bundle(join(top, "runtime/page/entry.ts"), { LAGBOOK_ENGINE: JSON.stringify(engine) })).replaceAll("</script", "<\\/script");
+  const hash = createHash("sha256").update(page).digest("base64");
+  const policy = `default-src 'none'; script-src 'sha256-${hash}' blob:; worker-src blob:; style-src 'unsafe-inline'; img-src data: blob:; font-src data:; connect-src 'none'; form-action 'none'; base-uri 'none'; frame-src 'none'; object-src 'none'`;
+  const inner = `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width"><title>Page</title><meta http-equiv="Content-Security-Policy" content="${policy}"></head><body><main id="page"></main><script>${page}</script></body></html>`;
+  const script = `const frame = document.querySelector("iframe"); window.heard = []; const canEdit = !location.hash.includes("read");
+    addEventListener("message", (event) => { if (event.source !== frame.contentWindow) return; heard.push(event.data);
+      if (event.data.page === "ready") { say({ to: "canEdit", canEdit }); say({ to: "text", version: 1, text: ${JSON.stringify(text).replaceAll("</script", "<\\/script")} }); } });
+    window.say = (message) => frame.contentWindow.postMessage(message, "*");
+    frame.srcdoc = ${JSON.stringify(inner).replaceAll("</script", "<\\/script").replaceAll("<!--", "<\\!--")};`;
+  return `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width"><title>Outer</title><style>html,body,iframe{margin:0;padding:0;border:0;width:100%;height:100%;display:block}</style></head><body><iframe title="page" sandbox="allow-scripts"></iframe><script>${script}</script></body></html>`;
+}
+
+export interface Stand { readonly browser: Browser; open(options?: { width?: number; height?: number; dark?: boolean; read?: boolean }): Promise<Page>; close(): Promise<void> }
+
+export async function stand(engineEntry?: string, text?: string): Promise<Stand> {
+  const body = await outerDocument(engineEntry, text);
+  const browser = await chromium.launch({ executablePath: process.env.CHROMIUM ?? "/usr/bin/chromium", args: ["--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking", "--disable-component-update", "--disable-sync"] });
+  return {
+    browser,
+    async open({ width = 1280, height = 900, dark = false, read = false } = {}) {
+      const page = await browser.newPage({ viewport: { width, height }, colorScheme: dark ? "dark" : "light" });
+      await page.route("**/*", (route) => route.request().url().startsWith("http://page.test/") ? route.fulfill({ contentType: "text/html", body }) : route.abort());
+      await page.goto(`http://page.test/${read ? "#read" : ""}`);
+      return page;
+    },
+    async close() { await browser.close(); },
+  };
+}
