@@ -34,6 +34,24 @@ export interface Total {
   readonly bands: readonly { readonly level: number; readonly low: number; readonly high: number }[];
   /** Periods of the span that were observed, not forecast. */
   readonly observed: number;
+  /** Against the same span a year before, where all of that was observed: a share, 0.05 is 5% more. */
+  readonly growth?: Growth;
+}
+
+/** Growth on the year before, as a share: 0.05 is 5% more. */
+export interface Growth {
+  readonly time: string;
+  readonly median: number;
+  readonly bands: readonly { readonly level: number; readonly low: number; readonly high: number }[];
+}
+
+/** How likely the values lie above a threshold. */
+export interface Passing {
+  readonly threshold: number;
+  /** Probability for each period by itself. */
+  readonly above: Float64Array;
+  /** Probability that at least one period of the horizon does. */
+  readonly ever: number;
 }
 
 export interface Forecast {
@@ -50,6 +68,15 @@ export interface Forecast {
   readonly se: Float64Array;
   readonly bands: readonly Band[];
   readonly totals: readonly Total[];
+  /** Standard deviation of each period's forecast in data units. */
+  readonly sd: Float64Array;
+  /** By period, on the year before; empty where the spacing has no whole number of periods a year. */
+  readonly growth: readonly Growth[];
+  readonly passing: readonly Passing[];
+  /** Sample paths in data units, as many as were asked for. */
+  readonly paths: readonly Float64Array[];
+  /** What the forecast turns into far ahead, in a sentence. */
+  readonly shape: string;
   /** The observed series in data units up to the origin, and what came after it where there are later data. */
   readonly history: Series;
   readonly heldOut: Series | null;
@@ -64,6 +91,14 @@ export interface ForecastOptions {
   /** Spans to total, each `{from, to}` in times, or "year" for each calendar year touched, or an ISO 8601 year text. */
   readonly totals?: string | readonly (string | { readonly from: string; readonly to: string })[];
   /** How the bands are made; each says what it assumes in `notes`. */
-  readonly bands?: "plugIn" | "simulated" | "calibrated";
+  readonly bands?: BandsHow;
   readonly seed?: number;
+  /** One value or several, in data units, whose passing gets a probability. */
+  readonly threshold?: number | readonly number[];
+  /** How many sample paths to give (0). */
+  readonly paths?: number;
+  /** A longer version of the loaded series, in data units: what came after the origin is shown as held out. */
+  readonly data?: Series;
 }
+
+export type BandsHow = "plugIn" | "simulated" | "calibrated";

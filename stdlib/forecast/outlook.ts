@@ -72,7 +72,7 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
     crps: (h, actual) => {
       if (form === "normal") return normalCrps(actual, m[h], se[h]);
       if (form === "lognormal") { const { add, times } = tailOf(rest, h); return Math.abs(times) * lognormalCrps((actual - add) / times, m[h], se[h]); }
-      return crpsByQuantiles((z) => undoValue(rest, h, m[h] + z * se[h]), actual);
+      return crpsOfNormals((z) => undoValue(rest, h, m[h] + (turnsOver ? -z : z) * se[h]), actual);
     },
   };
 }
@@ -147,14 +147,30 @@ function lognormalCovariance(c: Float64Array, mean: Float64Array, rest: readonly
   return Float64Array.from(c, (v, at) => middle[Math.floor(at / size)] * middle[at % size] * Math.expm1(v));
 }
 
-/** CRPS as twice the mean pinball loss over all quantiles, by the midpoint rule in the normal number. */
-function crpsByQuantiles(valueAt: (z: number) => number, actual: number): number {
+/** CRPS as twice the mean pinball loss over all quantiles (Gneiting & Ranjan 2011), by the midpoint rule in the normal number.
+ *  @param valueAt  the quantile with probability normalCdf(z) */
+function crpsOfNormals(valueAt: (z: number) => number, actual: number, step = 0.05): number {
   let sum = 0, weight = 0;
-  for (let i = -160; i < 160; i++) {
-    const z = (i + 0.5) * 0.05, w = Math.exp(-0.5 * z * z), p = normalCdf(z), q = valueAt(z);
+  const half = Math.round(8 / step);
+  for (let i = -half; i < half; i++) {
+    const z = (i + 0.5) * step, w = Math.exp(-0.5 * z * z), p = normalCdf(z), q = valueAt(z);
     sum += w * (actual >= q ? p * (actual - q) : (1 - p) * (q - actual)); weight += w;
   }
   return (2 * sum) / weight;
+}
+
+/** The same from quantiles by probability, on a coarser grid: they may be dear. */
+export function crpsOfQuantiles(quantile: (p: number) => number, actual: number): number {
+  return crpsOfNormals((z) => quantile(normalCdf(z)), actual, 0.1);
+}
+
+/** The probability whose quantile is a value, by halving. */
+export function levelOf(quantile: (p: number) => number, value: number): number {
+  let low = 1e-9, high = 1 - 1e-9;
+  if (quantile(low) > value) return 0;
+  if (quantile(high) < value) return 1;
+  for (let i = 0; i < 50; i++) { const middle = (low + high) / 2; if (quantile(middle) < value) low = middle; else high = middle; }
+  return (low + high) / 2;
 }
 
 /** Normal paths in pairs that mirror each other about the mean: means of linear things come out exact. */

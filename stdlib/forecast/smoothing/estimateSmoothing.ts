@@ -46,7 +46,14 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
   let best: { at: Float64Array; value: number; converged: boolean } | null = null;
   for (const first of space.starts(near)) {
     const start = concentrated ? first : Float64Array.from([...first, ...space.stateStart()]);
-    const found = minimise(objective, start);
+    let found = minimise(objective, start);
+    // Where a weight has run to the end of its range the curvature learnt on the way misleads: forget it and go on.
+    for (let again = 0; again < 3; again++) {
+      const further = minimise(objective, found.at);
+      const gained = found.value - further.value;
+      found = further;
+      if (!(gained > 1e-6)) break;
+    }
     if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found;
   }
   if (best === null) throw new RangeError("smoothing: no weights were found with which every one-step forecast stays positive; try an additive season, or a log before it");

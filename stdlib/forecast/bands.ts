@@ -1,0 +1,27 @@
+// How the bands are made: by the model's formula, by simulation, or from errors at held-out origins. Each says what it assumes.
+
+import type { Note } from "../arma/model.ts";
+import type { Series } from "../series/series.ts";
+import { calibratedOutlook } from "./calibrated.ts";
+import { modelOutlook, type ModelOutlook } from "./modelOutlook.ts";
+import type { BandsHow, Forecaster } from "./model.ts";
+import { simulatedOutlook } from "./simulated.ts";
+
+export interface BandsOptions {
+  readonly how: BandsHow;
+  readonly regressors: Readonly<Record<string, Series>>;
+  readonly seed: number;
+  readonly levels: readonly number[];
+}
+
+/** A forecast distribution with bands of the asked kind, and notes on what they rest on. */
+export function bandedOutlook(model: Forecaster, horizon: number, { how, regressors, seed, levels }: BandsOptions): ModelOutlook {
+  if (how !== "plugIn" && how !== "simulated" && how !== "calibrated") throw new RangeError(`forecast: bands is ${JSON.stringify(how)}, expected "plugIn", "simulated" or "calibrated"`);
+  const plain = modelOutlook(model, horizon, regressors, seed);
+  const { outlook, assumption } = how === "plugIn" ? { outlook: plain.outlook, assumption: plugIn }
+    : how === "simulated" ? simulatedOutlook(model, horizon, regressors, seed, plain) : calibratedOutlook(model, horizon, regressors, seed, levels, plain);
+  return { ...plain, outlook, notes: [...plain.notes, assumption, conditional] };
+}
+
+const plugIn: Note = { code: "bands-plug-in", tone: "note", text: "Bands: from the model's formula. They take the estimated parameters as if they were known, and the shocks as normal with one variance; with short series they are somewhat too narrow." };
+const conditional: Note = { code: "bands-conditional", tone: "note", text: "Bands are conditional on the model: they hold if it keeps describing the series, and no band covers a break." };

@@ -1,0 +1,105 @@
+// The same model estimated again on series simulated from it: what else the parameters might have been.
+
+import { expandedPolynomials } from "../arma/expandedPolynomials.ts";
+import { fitAt } from "../arma/fitAt.ts";
+import type { Fit } from "../arma/model.ts";
+import { makeSeries, type Series } from "../series/series.ts";
+import { applySteps, stepOf } from "../series/steps.ts";
+import { positionIn } from "../series/calendar.ts";
+import { isSeries } from "../series/series.ts";
+import { interventionColumns } from "./interventions.ts";
+import { seeded } from "./random.ts";
+import { trailingDifferences } from "./reach.ts";
+
+/** Fits on `count` simulated series of the sample's length, which start from the observed first levels.
+ *  Sets that cannot be estimated, or do not converge, are counted and left out. */
+export function bootstrapFits(fit: Fit, count: number, seed: number): { readonly fits: readonly Fit[]; readonly failed: number } {
+  const random = seeded(seed), shocks = shocksOf(fit), fits: Fit[] = [];
+  let failed = 0;
+  for (let r = 0; r < count; r++) {
+    try {
+      const again = fitAt(fit, simulatedSeries(fit, shocks, random));
+      if (again.converged) fits.push(again);
+      else failed++;
+    } catch (error) {
+      if (!(error instanceof RangeError)) throw error;
+      failed++;
+    }
+  }
+  return { fits, failed };
+}
+
+/** Residuals to draw shocks from: centred, and enlarged for the parameters that were estimated from them. */
+export function shocksOf(fit: Fit): Float64Array {
+  const seen = fit.residuals.values.filter((e) => !Number.isNaN(e)), n = seen.length, mean = seen.reduce((a, b) => a + b, 0) / n;
+  const grown = Math.sqrt(n / Math.max(1, n - fit.k + 1));
+  return seen.map((e) => (e - mean) * grown);
+}
+
+/** Weights of past shocks in the levels (the scale before the differences): psi of theta / (phi times the differences). */
+export function psiOfLevels(fit: Fit, count: number): Float64Array {
+  const { phi, theta } = expandedPolynomials(fit), ar = times(phi, fit), psi = new Float64Array(count);
+  for (let k = 0; k < count; k++) {
+    let sum = k === 0 ? 1 : (theta[k - 1] ?? 0);
+    for (let i = 1; i <= Math.min(k, ar.length); i++) sum += ar[i - 1] * psi[k - i];
+    psi[k] = sum;
+  }
+  return psi;
+}
+
+/** Coefficients from lag 1 of the autoregression with the differences multiplied in. */
+function times(phi: Float64Array, fit: Fit): Float64Array {
+  let c = Float64Array.of(1, ...phi.map((v) => -v));
+  for (const lag of differenceLags(fit.series)) {
+    const next = new Float64Array(c.length + lag);
+    c.forEach((v, i) => { next[i] += v; next[i + lag] -= v; });
+    c = next;
+  }
+  return c.slice(1).map((v) => -v);
+}
+
+function differenceLags(series: Series): number[] {
+  return series.steps.slice(series.steps.length - trailingDifferences(series)).map((s) => (s.step === "difference" ? s.lag : 0));
+}
+
+/** A series from the model: shocks through the recursion, after a run-in, then summed from the observed first levels. */
+function simulatedSeries(fit: Fit, shocks: Float64Array, random: () => number): Series {
+  const count = trailingDifferences(fit.series), steps = fit.series.steps.slice(fit.series.steps.length - count);
+  const levels = steps.length > 0 ? steps[0].before : fit.series, regression = regressionOf(fit, levels);
+  const { phi, theta } = expandedPolynomials(fit), runIn = 50 + 5 * Math.max(phi.length, theta.length), n = levels.n;
+  const w = new Float64Array(runIn + n), e = Float64Array.from(w, () => shocks[Math.floor(random() * shocks.length)]);
+  for (let t = 0; t < w.length; t++) {
+    let sum = e[t];
+    for (let i = 0; i < Math.min(t, phi.length); i++) sum += phi[i] * w[t - 1 - i];
+    for (let j = 0; j < Math.min(t, theta.length); j++) sum += theta[j] * e[t - 1 - j];
+    w[t] = sum;
+  }
+  const delta = times(new Float64Array(0), fit), values = new Float64Array(n);
+  for (let t = 0; t < n; t++) {
+    if (t < delta.length) values[t] = Number.isNaN(levels.values[t]) ? 0 : levels.values[t] - regression[t];
+    else {
+      let sum = w[runIn + t] + fit.mean;
+      for (let i = 0; i < delta.length; i++) sum += delta[i] * values[t - 1 - i];
+      values[t] = sum;
+    }
+  }
+  // Missing where the sample is missing: gaps cost the simulated fits what they cost the real one.
+  const made = values.map((v, t) => (Number.isNaN(levels.values[t]) ? NaN : v + regression[t]));
+  return applySteps(makeSeries({ name: levels.name, unit: levels.unit, every: levels.every, start: levels.start, times: levels.times, values: made }), steps.map(stepOf));
+}
+
+/** The regression part at the times of the levels. */
+function regressionOf(fit: Fit, levels: Series): Float64Array {
+  const sum = new Float64Array(levels.n);
+  const add = (name: string, column: ArrayLike<number>): void => { for (let t = 0; t < levels.n; t++) sum[t] += (fit.beta[name] ?? 0) * column[t]; };
+  for (const [name, regressor] of Object.entries(fit.options.regressors ?? {})) {
+    if (isSeries(regressor)) {
+      const offset = positionIn(regressor, levels.start);
+      add(name, Float64Array.from({ length: levels.n }, (_, t) => regressor.values[t + offset] ?? 0).map((v) => (Number.isNaN(v) ? 0 : v)));
+    } else {
+      const { names, columns } = interventionColumns(regressor, name, levels.start, levels.every, levels.n);
+      names.forEach((column, j) => add(column, columns[j]));
+    }
+  }
+  return sum;
+}

@@ -1,0 +1,33 @@
+// Growth on the year before, by period.
+
+import type { Series } from "../series/series.ts";
+import type { Growth } from "./model.ts";
+import { quantileOf, type Outlook } from "./outlook.ts";
+import { wholeYearOf } from "./totals.ts";
+
+/** Growth of each period on the same one a year before, as a share. While the year before was observed its limits are those
+ *  of the forecast; after that both ends are forecasts, and the limits come from the paths.
+ *  Empty where a year has no fixed number of periods; periods whose year before is missing or not above 0 are left out. */
+export function growthOf(base: Series, outlook: Outlook, times: readonly string[], levels: readonly number[], paths: () => readonly Float64Array[]): Growth[] {
+  const lag = wholeYearOf(base.every);
+  if (lag === null) return [];
+  const quantiles = new Map<number, Float64Array>();
+  const at = (p: number, h: number): number => {
+    const known = quantiles.get(p) ?? outlook.quantile(p);
+    quantiles.set(p, known);
+    return known[h];
+  };
+  const rows: Growth[] = [];
+  for (let h = 0; h < outlook.horizon; h++) {
+    const t = base.n + h - lag, row = (q: (p: number) => number): Growth =>
+      ({ time: times[h], median: q(0.5), bands: levels.map((level) => ({ level, low: q((1 - level) / 2), high: q((1 + level) / 2) })) });
+    if (h < lag) {
+      const before = t >= 0 ? base.values[t] : NaN;
+      if (before > 0) rows.push(row((p) => at(p, h) / before - 1));
+      continue;
+    }
+    const ratios = Float64Array.from(paths(), (path) => (path[h - lag] > 0 ? path[h] / path[h - lag] - 1 : NaN)).sort();
+    if (!ratios.some((r) => Number.isNaN(r))) rows.push(row((p) => quantileOf(ratios, p)));
+  }
+  return rows;
+}

@@ -1,0 +1,59 @@
+// From a fit or rule to a forecast distribution in the units of the data.
+
+import type { Note } from "../arma/model.ts";
+import type { Series } from "../series/series.ts";
+import { crpsOfQuantiles, levelOf, outlookOf, type Outlook } from "./outlook.ts";
+import { fitPredictive } from "./fitPredictive.ts";
+import type { Forecaster } from "./model.ts";
+import { keptSteps } from "./reach.ts";
+import { rulePredictive } from "./rulePredictive.ts";
+import { isRule } from "./rules.ts";
+import { undoOf, type Undo } from "./undo.ts";
+
+export interface ModelOutlook {
+  readonly outlook: Outlook;
+  /** The series in data units (or aggregated ones) up to the origin. */
+  readonly base: Series;
+  readonly times: readonly string[];
+  readonly notes: readonly Note[];
+}
+
+/** Plug-in forecasts: the parameters count as known, the errors as normal.
+ *  @param regressors  future values, by the fit's names
+ *  @param seed        of the draws, where there is no closed form */
+export function modelOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>> = {}, seed = 1): ModelOutlook {
+  if (isRule(model) && model.rule === "combine") return combinedOutlook(model.members ?? [], horizon, regressors, seed);
+  const undo: Undo = undoOf(model.series, keptSteps(model), horizon);
+  const predictive = isRule(model) ? rulePredictive(model, horizon) : fitPredictive(model, horizon, undo.times, regressors);
+  return { outlook: outlookOf(predictive, undo.steps, seed), base: undo.base, times: undo.times, notes: undo.notes };
+}
+
+/** The mean of the members, point by point and limit by limit: as if their errors rose and fell together, which is the
+ *  cautious reading of forecasters who see the same data. */
+function combinedOutlook(members: readonly Forecaster[], horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): ModelOutlook {
+  const parts = members.map((member) => modelOutlook(member, horizon, regressors, seed)), [first] = parts;
+  const origins = new Set(parts.map((p) => p.base.times[p.base.n - 1]));
+  if (origins.size > 1) throw new RangeError(`rule.combine: the members end at different times (${[...origins].join(", ")}); cut them to one window`);
+  const outlooks = parts.map((p) => p.outlook), mean = (pick: (o: Outlook) => Float64Array): Float64Array => averaged(outlooks.map(pick));
+  const quantile = (p: number): Float64Array => mean((o) => o.quantile(p));
+  const paths = (count: number, from: number): Float64Array[] => {
+    // One seed for all: the members' shocks are then the same.
+    const each = outlooks.map((o) => o.paths(count, from));
+    return each[0].map((_, k) => averaged(each.map((e) => e[k])));
+  };
+  const outlook: Outlook = {
+    horizon, mean: mean((o) => o.mean), median: quantile(0.5), sd: mean((o) => o.sd), se: mean((o) => o.sd), quantile, paths, normal: false, covariance: () => null,
+    above: (h, value) => 1 - levelOf((p) => quantile(p)[h], value),
+    crps: (h, actual) => crpsOfQuantiles((p) => averageAt(outlooks, p, h), actual),
+  };
+  const notes: Note[] = [{ code: "combined", tone: "note", text: `A combination of ${members.length}: points and band limits are the means of the members', as if their errors rose and fell together.` }, ...parts.flatMap((p) => p.notes)];
+  return { outlook, base: first.base, times: first.times, notes };
+}
+
+function averageAt(outlooks: readonly Outlook[], p: number, h: number): number {
+  return outlooks.reduce((sum, o) => sum + o.quantile(p)[h], 0) / outlooks.length;
+}
+
+function averaged(parts: readonly Float64Array[]): Float64Array {
+  return Float64Array.from(parts[0], (_, h) => parts.reduce((sum, part) => sum + part[h], 0) / parts.length);
+}

@@ -1,0 +1,41 @@
+// The same model for another stretch of the data.
+
+import { filterWith } from "../arma/filterWith.ts";
+import { fitAt } from "../arma/fitAt.ts";
+import type { Series } from "../series/series.ts";
+import { applySteps, stepOf } from "../series/steps.ts";
+import type { Forecaster } from "./model.ts";
+import { between, reachOf } from "./reach.ts";
+import { isRule, ruleFor } from "./rules.ts";
+
+export type RefitHow = "refit" | "held";
+
+/** The same model for another series: parameters estimated again ("refit"), or kept at their values ("held").
+ *  @param series  on the modelled scale with the model's steps; or in data units, and the steps are applied to it */
+export function refit(model: Forecaster, series: Series, how: RefitHow = "refit"): Forecaster {
+  const own = model.series.steps;
+  const stepped = series.steps.length === 0 && own.length > 0 ? applySteps(series, own.map(stepOf)) : series;
+  if (!isRule(model)) return how === "held" ? filterWith(model, stepped) : fitAt(model, stepped);
+  if (model.rule !== "combine") return ruleFor(model, stepped, how);
+  const members = (model.members ?? []).map((member) => refit(member, series, how));
+  return { ...model, series: members[0].series, members };
+}
+
+export interface Stretch {
+  /** Numbers of the first and last period of the data, on the common grid; nothing outside is seen. */
+  readonly from: number; readonly to: number;
+  readonly how: RefitHow;
+  /** A longer version of the data than the model was made from. */
+  readonly data?: Series;
+}
+
+/** A model for a stretch of the data that `source` was made from.
+ *  @param parameters  where the search starts ("refit"), or what is kept ("held"): the model itself, or an earlier refit of it */
+export function refitBetween(source: Forecaster, { from, to, how, data }: Stretch, parameters: Forecaster = source): Forecaster {
+  if (isRule(source) && source.rule === "combine") {
+    const given = isRule(parameters) ? parameters.members : undefined;
+    const members = (source.members ?? []).map((member, i) => refitBetween(member, { from, to, how, data }, given?.[i] ?? member));
+    return { ...source, series: members[0].series, members };
+  }
+  return refit(parameters, between(reachOf(source, data), from, to), how);
+}
