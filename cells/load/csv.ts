@@ -18,11 +18,12 @@ export function parseRows(text: string, separator: Separator, file = "the file")
   const rows: Row[] = [];
   let line = 1, at = 0;
   const n = text.length;
+  const blank = separator === "\t" ? [" "] : [" ", "\t"];
   while (at < n) {
     const row: string[] = [];
     const startLine = line;
     for (;;) {
-      while (at < n && (text[at] === " " || (text[at] === "\t" && separator !== "\t"))) at++;
+      while (at < n && blank.includes(text[at])) at++;
       if (text[at] === '"') {
         let cell = "";
         at++;

@@ -32,8 +32,8 @@ export interface TimePlot {
 
 const mostHovered = 600;
 
-/** Lines in time. Labels stand at the ends of the lines when there is more than one; a gap breaks a line, and an observation
- *  between two gaps is drawn as a point. */
+/** Lines in time. Labels stand at the ends of the lines when there is more than one; a gap breaks a line; an observation
+ *  between two gaps, and the last one, are drawn as points. */
 export function timePlot(plot: TimePlot): ChartPart {
   const { lines, height = 200, limits = [], width } = plot;
   const dated = lines.every((line) => line.series.every !== null);
@@ -46,8 +46,10 @@ export function timePlot(plot: TimePlot): ChartPart {
     data["stretch"] = { from: Float64Array.of(plot.stretch.from), to: Float64Array.of(plot.stretch.to) };
     layers.push({ data: { name: "stretch" }, mark: { type: "rect", style: "guide", opacity: 0.25 }, encoding: { x: { ...x, field: "from" }, x2: { field: "to" } } });
   }
-  data["limits"] = { value: Float64Array.from(limits) };
-  layers.push({ data: { name: "limits" }, mark: { type: "rule", style: "limit" }, encoding: { y } });
+  if (limits.length > 0) {
+    data["limits"] = { value: Float64Array.from(limits) };
+    layers.push({ data: { name: "limits" }, mark: { type: "rule", style: "limit" }, encoding: { y } });
+  }
   lines.forEach((line, i) => {
     const name = `line${i + 1}`;
     const { columns, single, end } = lineColumns(line, width);
@@ -71,10 +73,8 @@ function lineColumns(line: Line, width: number): { readonly columns: Columns; re
   const { series, label } = line;
   const ms = timesMs(series);
   const kept = thin(series.values, width);
-  const singles = positionsOf(series, (t) => alone(series.values, t)).slice(0, width);
-  let last = series.n - 1;
-  while (last >= 0 && Number.isNaN(series.values[last])) last--;
-  const ends = last < 0 ? [] : [last];
+  const ends = lastObserved(series);
+  const singles = [...positionsOf(series, (t) => alone(series.values, t)).slice(0, width), ...ends];
   return {
     columns: { time: pickNumbers(ms, kept), value: pickNumbers(series.values, kept) },
     single: { time: pickNumbers(ms, singles), value: pickNumbers(series.values, singles) },
@@ -82,20 +82,27 @@ function lineColumns(line: Line, width: number): { readonly columns: Columns; re
   };
 }
 
-/** Points that answer the pointer; none where there are too many to tell apart. */
+/** Points that answer the pointer; only the last ones where there are too many to tell apart. */
 function hoverColumns(lines: readonly Line[], width: number): Columns {
   const all = lines.map((line) => {
     const kept = positionsOf(line.series, (t) => !Number.isNaN(line.series.values[t]));
     return { line, kept };
   });
   const count = all.reduce((sum, one) => sum + one.kept.length, 0);
-  const shown = count <= Math.min(mostHovered, width) ? all : [];
+  const shown = count <= Math.min(mostHovered, width) ? all : lines.map((line) => ({ line, kept: lastObserved(line.series) }));
   return {
     time: Float64Array.from(shown.flatMap(({ line, kept }) => { const ms = timesMs(line.series); return Array.from(kept, (t) => ms[t]); })),
     value: Float64Array.from(shown.flatMap(({ line, kept }) => pick(line.series.values, kept))),
     period: shown.flatMap(({ line, kept }) => pick(line.series.times, kept)),
     label: shown.flatMap(({ line, kept }) => Array.from(kept, () => line.label)),
   };
+}
+
+/** Position of the last observation; none where nothing is observed. */
+function lastObserved(series: Series): number[] {
+  let last = series.n - 1;
+  while (last >= 0 && Number.isNaN(series.values[last])) last--;
+  return last < 0 ? [] : [last];
 }
 
 function positionsOf(series: Series, wanted: (t: number) => boolean): number[] {

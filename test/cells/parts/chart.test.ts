@@ -11,7 +11,7 @@ describe("timePlot", () => {
     const { svg, warnings } = await draw(part);
     expect(warnings).toEqual([]);
     expect(svg).toContain("fitted");
-    expect([...part.data["line1Single"]["value"]]).toEqual([4]);
+    expect([...part.data["line1Single"]["value"]]).toEqual([4, 7]);
     expect(part.full?.["observed"]["time"][3]).toBe("2019-04");
   });
   it("has the same spec for other data, so that one view serves all settings", () => {

@@ -1,0 +1,31 @@
+// Named expressions.
+
+import { isSeries } from "../stdlib/index.ts";
+import type { Kind } from "./kind.ts";
+import { inWords } from "./parts/describe.ts";
+import type { Part } from "./parts/part.ts";
+import { seriesChart } from "./parts/seriesParts.ts";
+
+export type Named = Readonly<Record<string, unknown>>;
+
+const mostPictures = 3;
+
+export const values: Kind<Named, Named> = {
+  name: "values",
+  sentence: "Named expressions, read as cell.name.",
+  options: {},
+  body: "names",
+  example: "share: last(crossings) / mean(crossings)",
+  run: (given) => given,
+  show: (result, context) => {
+    const entries = Object.entries(result);
+    if (entries.length === 0) return [{ part: "text", tone: "note", text: "No names yet: write one a line, as in share: last(crossings) / mean(crossings)." }];
+    const rows = entries.map(([name, value]) => [name, plainCell(value)]);
+    const table: Part = { part: "table", columns: [{ title: "name" }, { title: "value", align: "right", format: ",.6~g" }], rows };
+    return [table, ...entries.map(([, value]) => value).filter(isSeries).slice(0, mostPictures).map((series) => seriesChart(series, context))];
+  },
+};
+
+function plainCell(value: unknown): number | string | boolean | null {
+  return typeof value === "number" || typeof value === "boolean" ? value : value === null || value === undefined ? null : inWords(value);
+}

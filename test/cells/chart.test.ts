@@ -1,0 +1,69 @@
+import { describe, expect, it } from "vitest";
+import { chart } from "../../cells/chart.ts";
+import { makeSeries } from "../../stdlib/index.ts";
+import { runCell } from "./context.ts";
+import { draw } from "./parts/draw.ts";
+
+const crossings = makeSeries({ name: "crossings", unit: "vehicles", every: "P1M", start: "2015-01", values: Float64Array.from({ length: 24 }, (_, t) => 100 + t) });
+const line = { mark: "line", encoding: { x: { field: "time" }, y: { field: "value" } } };
+const part = async (options: Record<string, unknown>) => {
+  const [one] = chart.show(await runCell(chart, options), { name: "c", width: 700 });
+  if (one.part !== "chart") throw new Error("no chart");
+  return one;
+};
+
+describe("chart", () => {
+  it("draws a series, its times in UTC, types read from the data", async () => {
+    const one = await part({ data: crossings, title: "Crossings", ...line });
+    expect(one.spec["encoding"]).toEqual({ x: { field: "time", type: "temporal", scale: { type: "utc" }, title: null }, y: { field: "value", type: "quantitative" } });
+    expect(one.data["rows"]["time"][0]).toBe(Date.UTC(2015, 0, 1));
+    expect([one.title, one.alt]).toEqual(["Crossings", "Crossings: 24 rows of time, period, value, series."]);
+    expect((await draw(one)).warnings).toEqual([]);
+  });
+  it("draws rows, with ISO 8601 texts as times, and several series", async () => {
+    const rows = await part({ data: [{ month: "2019-01", n: 3, kind: "car" }, { month: "2019-02", n: 4, kind: "van" }], mark: "bar", encoding: { x: { field: "month" }, y: { field: "n" }, shape: { field: "kind" } } });
+    expect(rows.data["rows"]["month"][1]).toBe(Date.UTC(2019, 1, 1));
+    expect((rows.spec["encoding"] as Record<string, { type: string }>)["shape"].type).toBe("nominal");
+    const two = await part({ data: { a: crossings, b: crossings }, ...line });
+    expect(two.data["rows"]["series"].length).toBe(48);
+    expect((await draw(two)).svg).toContain("<path");
+  });
+  it("takes layers with data of their own, and Vega-Lite's {values: …}", async () => {
+    const one = await part({ data: crossings, layer: [line, { data: { values: [{ y: 110 }] }, mark: "rule", encoding: { y: { field: "y" } } }] });
+    expect(Object.keys(one.data)).toEqual(["rows", "rows2"]);
+    expect((await draw(one)).warnings).toEqual([]);
+  });
+  it("takes transforms that are described by data", async () => {
+    const one = await part({ data: [{ a: 1 }, { a: 5 }], transform: [{ filter: { field: "a", gt: 2 } }, { aggregate: [{ op: "count", as: "n" }] }], mark: "bar", encoding: { y: { field: "n", type: "quantitative" } } });
+    expect((await draw(one)).warnings).toEqual([]);
+  });
+  it.each<[Record<string, unknown>, string]>([
+    [{ data: { url: "elsewhere.csv" }, ...line }, "load the file in a `load` cell"],
+    [{ data: crossings, layer: [{ data: { url: "x" }, mark: "line" }] }, "load the file in a `load` cell"],
+    [{ data: crossings, ...line, params: [{ name: "p", bind: { input: "range" } }] }, "`params[0].bind` is not taken"],
+    [{ data: crossings, mark: { type: "line", strokeWidth: { expr: "1+1" } }, encoding: {} }, "`mark.strokeWidth.expr` is not taken"],
+    [{ data: crossings, ...line, width: { signal: "1" } }, "`width.signal` is not taken"],
+    [{ data: crossings, ...line, transform: [{ calculate: "datum.value", as: "v" }] }, "`transform[0].calculate` is not taken"],
+    [{ data: crossings, ...line, transform: [{ filter: "datum.value > 1" }] }, "is code in a text"],
+    [{ data: crossings, ...line, transform: [{ filter: { and: ["datum.value > 1"] } }] }, "is code in a text"],
+    [{ data: crossings, ...line, transform: [{ filter: { not: { or: ["datum.value > 1"] } } }] }, "is code in a text"],
+    [{ data: crossings, mark: "line", encoding: { y: { field: "value", condition: { test: "true", value: 1 } } } }, "is code in a text"],
+    [{ data: crossings, mark: "line", encoding: { x: { field: "time", axis: { labelExpr: "datum.label" } } } }, "`encoding.x.axis.labelExpr` is not taken"],
+    [{ data: crossings, mark: "line", encoding: { href: { field: "period" } } }, "`encoding.href` is not taken"],
+    [{ data: crossings, mark: { type: "line", href: "elsewhere" }, encoding: {} }, "`mark.href` is not taken"],
+    [{ data: crossings, mark: { type: "image", url: "x" }, encoding: {} }, "reads pictures from elsewhere"],
+    [{ data: crossings, mark: "image", encoding: {} }, "which is no mark"],
+    [{ data: crossings, ...line, usermeta: { embedOptions: {} } }, "`usermeta` is not taken"],
+    [{ data: crossings, ...line, params: [{ name: "p", select: { type: "point", on: "click[event.altKey]" } }] }, "may name one event"],
+    [{ data: crossings, mark: "lines", encoding: {} }, '"lines", which is no mark'],
+    [{ data: crossings, mark: "line", encoding: { x: { field: "date" } } }, 'no field "date"; they have time, period, value, series'],
+    [{ data: crossings, mark: "line", encoding: { across: { field: "time" } } }, "`encoding.across` is no channel"],
+    [{ data: crossings, marks: "line" }, "no option `marks`"],
+    [{ data: crossings }, "needs a `mark`"],
+    [{ data: 3, mark: "line" }, "expected rows"],
+    [{ mark: "line" }, "`chart` needs `data`"],
+    [{ data: crossings, mark: "line", encoding: { y: { field: "value", sort: () => 1 } } }, "is a function"],
+  ])("refuses in words, case %#", async (options, message) => {
+    await expect(runCell(chart, options)).rejects.toThrow(message);
+  });
+});
