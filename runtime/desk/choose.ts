@@ -21,7 +21,7 @@ export function choose(dialog: HTMLDialogElement, regions: readonly Region[]): P
     foot.className = "choices-foot";
     foot.append(button("Decide later", () => { dialog.close(); resolve(null); }), use);
     dialog.replaceChildren(head, lead, ...conflicts.map((index, place) => drawn(regions[index], place, (choice) => picked(index, choice))), foot);
-    dialog.oncancel = () => resolve(null);
+    dialog.addEventListener("cancel", () => resolve(null), { once: true });
     dialog.showModal();
   });
 }

@@ -77,7 +77,7 @@ function inExpression(text: string, position: number, start: number, type: Optio
   const word = /(?:rule\.)?[A-Za-z_$][\w$]*$/.exec(before)?.[0] ?? "";
   const lead = before.slice(0, before.length - word.length);
   if (word === "" && !asked) return null;
-  if (/\.$/.test(lead)) return null;
+  if (lead.endsWith(".")) return null;
   const values = type === null ? [] : choices(type).map((value): Suggestion => ({ label: JSON.stringify(value), detail: "value", help: "", sort: "value", insert: JSON.stringify(value) }));
   const names = cells.map((cell): Suggestion => ({ label: cell.name, detail: cell.kind, help: `The ${cell.kind} cell “${cell.name}” (${cell.state}).`, sort: "cell", insert: cell.name }));
   const functions = catalogue.functions.map((entry): Suggestion => ({

@@ -37,6 +37,7 @@ async function frame(from: (path: string) => string, define: Record<string, stri
 async function desk(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
   await build({ ...browser, entryPoints: [from("desk/desk.ts")], outfile: join(out, "desk.js"), define });
   await build({ ...browser, entryPoints: [from("desk/desk.css")], outfile: join(out, "desk.css"), loader: {} });
+  await build({ ...browser, entryPoints: [from("page/page.css")], outfile: join(out, "page.css"), loader: {} });
   await copyFile(from("desk/desk.html"), join(out, "desk.html"));
 }
 

@@ -3,8 +3,8 @@
 import { run } from "./run.ts";
 
 const stop = new AbortController();
-// The first Ctrl-C lets the command end in order, the second ends it as usual.
-for (const signal of ["SIGINT", "SIGTERM"] as const) process.once(signal, () => stop.abort());
+// `open` ends in order on Ctrl-C. The others are at work without a pause: the signal itself ends them.
+if (process.argv[2] === "open") for (const signal of ["SIGINT", "SIGTERM"] as const) process.once(signal, () => stop.abort());
 // A reader that closes early ("| head") is no error.
 process.stdout.on("error", (error: NodeJS.ErrnoException) => { if (error.code !== "EPIPE") throw error; });
 

@@ -1,13 +1,13 @@
-import fc from "fast-check";
+import { array, assert, constantFrom, property } from "fast-check";
 import { describe, expect, it } from "vitest";
 import { editsBetween, mergeTexts, mergedText } from "../../../runtime/desk/merge.ts";
 import { applyEdits } from "../../../runtime/text/edits.ts";
 
-const text = fc.array(fc.constantFrom("a\n", "b\n", "c\r\n", "\n", "d"), { maxLength: 12 }).map((lines) => lines.join(""));
+const text = array(constantFrom("a\n", "b\n", "c\r\n", "\n", "d"), { maxLength: 12 }).map((lines) => lines.join(""));
 
 describe("merging", () => {
   it("gives the other's text where one writer changed nothing", () => {
-    fc.assert(fc.property(text, text, (base, other) => {
+    assert(property(text, text, (base, other) => {
       expect(mergedText(mergeTexts(base, other, base))).toBe(other);
       expect(mergedText(mergeTexts(base, base, other))).toBe(other);
       expect(mergedText(mergeTexts(base, other, other))).toBe(other);
@@ -21,7 +21,7 @@ describe("merging", () => {
   });
 
   it("finds edits that make one text of another, to the byte", () => {
-    fc.assert(fc.property(text, text, (from, to) => { expect(applyEdits(from, editsBetween(from, to))).toBe(to); }), { seed: 12 });
+    assert(property(text, text, (from, to) => { expect(applyEdits(from, editsBetween(from, to))).toBe(to); }), { seed: 12 });
   });
 
   it("changes only the lines that differ", () => {

@@ -34,7 +34,7 @@ describe("where a place is", () => {
     expect(contextAt(...marked("the [0.3](=acf(y)[1]) and |"))).toEqual({ in: "prose" });
     expect(contextAt(...marked(`${inCell("series: y")}|`))).toEqual({ in: "prose" });
     expect(contextAt(...marked("```js\nx|\n```"))).toEqual({ in: "prose" });
-    expect(contextAt(...marked("````fit: a\n```\nse|"))).toMatchObject({ in: "expression", kind: "fit" });
+    expect(contextAt(...marked("````fit: a\n```\nse|"))).toMatchObject({ in: "option", kind: "fit" });
   });
 });
 

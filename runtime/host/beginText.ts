@@ -1,0 +1,123 @@
+// The text of a first notebook: an analyst's usual argument about one series, section by section.
+
+export interface Recognised {
+  /** Name of the series in the notebook, an identifier. */
+  readonly name: string;
+  /** The data file, as the notebook names it. */
+  readonly file: string;
+  /** Column of the values, where the file has several. */
+  readonly column: string | null;
+  readonly otherColumns: readonly string[];
+  /** Columns of the times. */
+  readonly timeColumns: readonly string[];
+  readonly every: string | null;
+  readonly notes: readonly string[];
+}
+
+export interface Plan {
+  readonly logs: boolean;
+  /** Order of plain differences, 0 or 1. */
+  readonly difference: number;
+  readonly seasonalDifference: boolean;
+  /** Periods a season; 0 where there is none to model. */
+  readonly season: number;
+  readonly lags: number;
+  readonly horizon: number;
+  readonly origins: number;
+}
+
+export interface Orders { readonly ar: number; readonly ma: number; readonly seasonalAr: number; readonly seasonalMa: number }
+
+export interface Section { readonly id: string; readonly text: string; /** Sections without which this one makes no sense. */ readonly needs: readonly string[] }
+
+const every: Readonly<Record<string, readonly [one: string, many: string]>> = {
+  P1Y: ["year", "years"], P3M: ["quarter", "quarters"], P1M: ["month", "months"], P1W: ["week", "weeks"], P1D: ["day", "days"], PT1H: ["hour", "hours"],
+};
+
+/** A cell of the notebook. */
+function cell(head: string, ...options: readonly (string | null)[]): string {
+  return ["```" + head, ...options.filter((line) => line !== null), "```"].join("\n");
+}
+
+export function periodWords(spacing: string | null): readonly [one: string, many: string] { return every[spacing ?? ""] ?? ["period", "periods"]; }
+
+export function loadCell({ name, file, column }: Pick<Recognised, "name" | "file" | "column">): string {
+  return cell(`load: ${name}`, `file: ${JSON.stringify(file)}`, column === null ? null : `value: ${JSON.stringify(column)}`);
+}
+
+export function steadyCell(name: string, plan: Plan, window: string | null): string {
+  const steps = [plan.logs ? "log" : null, plan.difference > 0 ? "difference(1)" : null, plan.seasonalDifference ? `difference(${plan.season})` : null].filter((step) => step !== null);
+  return cell("transform: steady", `series: ${name}`, window === null ? null : `window: ${window}`, `steps: [${steps.join(", ")}]`);
+}
+
+export function ordersCell(plan: Plan): string {
+  return cell("compare: orders", "series: steady", "ar: 2", "ma: 2", plan.season > 0 ? `season: {length: ${plan.season}, ar: 1, ma: 1}` : null);
+}
+
+/** @param title  the notebook's heading */
+export function sections(title: string, data: Recognised, plan: Plan, orders: Orders): readonly Section[] {
+  const { name } = data, [one, many] = periodWords(data.every);
+  const season = plan.season > 0 ? `season: {length: ${plan.season}, ar: ${orders.seasonalAr}, ma: ${orders.seasonalMa}}` : null;
+  const rules = [["the value before", `rule.naive(${name})`], ...(plan.season > 0 ? [["one season before", `rule.seasonalNaive(${name}, ${plan.season})`]] : []), ["straight on", `rule.drift(${name})`]];
+  return [
+    { id: "data", needs: [], text: [
+      `# ${title}`, "", `This first notebook was written from \`${data.file}\`. Everything in it can be changed: the text is yours.`, "", "## The data", "",
+      loadCell(data), "", `${recognisedWords(data)} The series has [0](=${name}.n) ${many}, from [-](=${name}.start) to [-](=last(${name}.times)).${data.notes.length > 0 ? ` ${data.notes.map(sentence).join(" ")}` : ""}`, "",
+      cell("window: sample", `of: ${name}`, `label: "Sample"`), "", "Drag the ends of the window to leave early or late data out; all that follows uses the window.",
+    ].join("\n") },
+    { id: "steady", needs: ["data"], text: ["## To stationarity", "", stepsWords(plan, one), "", steadyCell(name, plan, "sample")].join("\n") },
+    { id: "tests", needs: ["steady"], text: [cell("stationarity: tests", "series: steady"), "",
+      "The augmented Dickey-Fuller test, whose null hypothesis is a unit root, gives [0.00](=tests.adf.statistic) (p [0.000](=tests.adf.p)); the KPSS test, whose null hypothesis is stationarity, gives [0.00](=tests.kpss.statistic) (p [0.00](=tests.kpss.p))."].join("\n") },
+    { id: "shape", needs: ["steady"], text: ["## Autocorrelations", "", cell("correlogram: shape", "series: steady", `lags: ${plan.lags}`), "",
+      "At lag 1 the autocorrelation is [0.00](=shape.acf[1]) and the partial autocorrelation [0.00](=shape.pacf[1]). About one lag in twenty stands outside its band by chance."].join("\n") },
+    { id: "orders", needs: ["steady"], text: ["## A model", "", ordersCell(plan), "",
+      "Of [0](=orders.models.length) combinations of orders, the corrected Akaike criterion puts [-](=orders.best.label) first. Differences below two are no reason to prefer one model to another."].join("\n") },
+    { id: "fit", needs: ["steady"], text: [cell("slider: p", "from: 0", `to: ${Math.max(4, orders.ar)}`, `at: ${orders.ar}`, `label: "Autoregressive order p"`), "", cell("slider: q", "from: 0", `to: ${Math.max(4, orders.ma)}`, `at: ${orders.ma}`, `label: "Moving-average order q"`), "",
+      cell("fit: model", "series: steady", "ar: p", "ma: q", season), "", "The model leaves a variance of [0.0000](=model.sigma2) one step ahead; its corrected Akaike criterion is [0.0](=model.aicc)."].join("\n") },
+    { id: "diagnostics", needs: ["fit"], text: [cell("diagnostics: leftover", "model: model", `lags: ${plan.lags}`), "",
+      `For the residuals the Ljung-Box test over [0](=leftover.ljungBox.lags) lags gives p = [0.00](=leftover.ljungBox.p).`].join("\n") },
+    { id: "contest", needs: ["fit"], text: ["## Against naive rules", "",
+      cell("compare: contest", `models: {"the model": model, ${rules.map(([label, rule]) => `${JSON.stringify(label)}: ${rule}`).join(", ")}}`, `origins: ${plan.origins}`, `horizon: ${plan.horizon}`), "",
+      `Each was made to forecast from ${plan.origins} held-out origins, with the data up to there and nothing else. The smallest mean absolute scaled error, [0.00](=contest.best.mase), is that of [-](=contest.best.label).`].join("\n") },
+    { id: "forecast", needs: ["fit"], text: ["## The forecast", "", cell("forecast: ahead", "model: model", `horizon: ${plan.horizon}`, "levels: [0.5, 0.9]"), "",
+      `For [-](=ahead.times[0]) the model expects [0.0](=ahead.mean[0]), and with 90% confidence between [0.0](=ahead.bands[1].low[0]) and [0.0](=ahead.bands[1].high[0]). The bands hold if the model does.`].join("\n") },
+  ];
+}
+
+/** Conclusions that may be guarded, each with the section that it needs. */
+export const conclusions: readonly { readonly claim: string; readonly condition: string; readonly needs: string }[] = [
+  { claim: "No unit root is left (ADF, 5%)", condition: "tests.adf.p < 0.05", needs: "tests" },
+  { claim: "Nothing speaks against stationarity (KPSS, 5%)", condition: "tests.kpss.p >= 0.05", needs: "tests" },
+  { claim: "The residuals are noise (Ljung-Box, 5%)", condition: "leftover.ljungBox.p > 0.05", needs: "diagnostics" },
+  { claim: "The model beats the naive rules", condition: `contest.best.label == "the model"`, needs: "contest" },
+];
+
+export function claimsSection(held: readonly { readonly claim: string; readonly condition: string }[], fallen: readonly string[]): string {
+  const parts = ["## What must hold", ""];
+  if (held.length > 0) parts.push(cell("claims:", ...held.map(({ claim, condition }) => `${JSON.stringify(claim)}: ${condition}`)), "");
+  if (fallen.length > 0) parts.push(`At present this does not hold, and so it is not claimed: ${fallen.map((claim) => lowered(claim)).join("; ")}.`, "");
+  if (held.length > 0) parts.push("Where one of these breaks when data are added, `lagbook verify` says so and ends with 1.");
+  return parts.join("\n");
+}
+
+function recognisedWords({ column, otherColumns, timeColumns, every: spacing, file }: Recognised): string {
+  const [one] = periodWords(spacing);
+  const values = column === null ? "the column of values" : `the column \`${column}\``;
+  const times = timeColumns.length === 0 ? "no column of times, so the rows are only numbered" : `times in ${timeColumns.map((name) => `\`${name}\``).join(" and ")}${spacing === null ? "" : `, one value a ${one}${spacing in every ? "" : ` (\`${spacing}\`)`}`}`;
+  const others = otherColumns.length === 0 ? "" : ` It also has ${otherColumns.map((name) => `\`${name}\``).join(", ")}: name one as \`value\` to use it instead.`;
+  return `In \`${file}\` there ${timeColumns.length === 0 ? "is" : "are"} ${times}; ${values} is the series.${others}`;
+}
+
+function stepsWords({ logs, difference, seasonalDifference, season }: Plan, one: string): string {
+  const parts: string[] = [];
+  if (logs) parts.push("The values swing in proportion to their level, so their logarithms are used.");
+  if (seasonalDifference) parts.push(`The season repeats after ${season} ${one === "period" ? "periods" : `${one}s`}: a difference against the same ${one} one season before takes it out.`);
+  if (difference > 0) parts.push(`The level wanders: a difference against the ${one} before takes that out.`);
+  if (parts.length === 0) parts.push("The series stands still as it is; no step is needed. Add steps here to try some.");
+  parts.push("Forecasts come back through these steps to the units of the data.");
+  return parts.join(" ");
+}
+
+function sentence(text: string): string { const whole = text.trim(); return /[.!?]$/.test(whole) ? whole : `${whole}.`; }
+
+function lowered(text: string): string { return text.charAt(0).toLowerCase() + text.slice(1); }

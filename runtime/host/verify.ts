@@ -1,0 +1,36 @@
+// `lagbook verify`: computes a notebook without a browser and says what does not stand.
+
+import { basename, dirname, resolve } from "node:path";
+import { acceptedText } from "./accept.ts";
+import type { Setting } from "./arguments.ts";
+import { compute } from "./headless.ts";
+import { CannotRun, exit } from "./io.ts";
+import type { Io } from "./io.ts";
+import { reportText } from "./report.ts";
+import { Store } from "./store.ts";
+
+export interface VerifyCommand { readonly file: string; readonly json: boolean; readonly accept: boolean; readonly settings: readonly Setting[]; readonly allowCode: boolean }
+
+export async function verify(command: VerifyCommand, io: Io): Promise<number> {
+  const path = resolve(io.cwd, command.file), store = new Store(path);
+  const stored = await store.read();
+  const task = { notebook: basename(path), folder: dirname(path), settings: command.settings, allowCode: command.allowCode };
+  let computed = await compute({ ...task, text: stored.text }), accepted = 0;
+  if (command.accept) {
+    const text = acceptedText(stored.text, computed.numbers);
+    accepted = computed.numbers.filter((number) => number.state === "moved").length;
+    if (text !== stored.text) {
+      const saved = await store.save(text, stored.hash);
+      if ("found" in saved) throw new CannotRun(`${command.file} was changed by another program while it was computed, so nothing was written into it. Run the command again.`);
+      computed = await compute({ ...task, text });
+    }
+  }
+  const { result } = computed;
+  io.out(command.json ? `${JSON.stringify(result, plainNumbers, 2)}\n` : reportText(command.file, result, command.accept ? accepted : null));
+  return result.ok ? exit.stands : exit.fails;
+}
+
+/** JSON has no NaN: an undecided value is null there, as `agrees` is. */
+function plainNumbers(_key: string, value: unknown): unknown {
+  return typeof value === "number" && !Number.isFinite(value) ? null : value;
+}
