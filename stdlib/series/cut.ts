@@ -18,7 +18,7 @@ export function slice(series: Series, from: number, to: number): Series {
   if (from < 0 || to > series.n || from > to) throw new RangeError(`slice: positions ${from} to ${to}, expected 0 to ${series.n}`);
   if (from === 0 && to === series.n) return series;
   const step = series.steps.at(-1);
-  if (step === undefined) return part(series, from, to);
+  if (step === undefined) return { ...part(series, from, to), ...(to < series.n ? { later: after(series, to) } : {}) };
   if (step.step === "aggregate") return applyStep(slice(step.before, ...coveredBy(series, step.before, from, to)), stepOf(step));
   // A difference lost `lost` values at the start; the other steps lose none.
   const lost = step.before.n - series.n;
@@ -34,7 +34,19 @@ function wholeStep(step: string): boolean {
 
 function part(series: Series, from: number, to: number): Series {
   const times = series.times.slice(from, to);
-  return { ...series, start: times[0] ?? series.start, n: to - from, values: series.values.slice(from, to), times };
+  const { later, ...own } = series;
+  return { ...own, start: times[0] ?? series.start, n: to - from, values: series.values.slice(from, to), times, ...(later === undefined ? {} : { later }) };
+}
+
+/** What a cut leaves behind the end, with what an earlier cut left there. */
+function after(series: Series, to: number): Series {
+  const { later, ...own } = series;
+  const rest = part(own, to, series.n);
+  if (later === undefined) return rest;
+  const values = new Float64Array(rest.n + later.n);
+  values.set(rest.values);
+  values.set(later.values, rest.n);
+  return { ...rest, n: values.length, values, times: [...rest.times, ...later.times] };
 }
 
 function coveredBy(series: Series, before: Series, from: number, to: number): [number, number] {

@@ -18,6 +18,9 @@ export interface Series {
   readonly times: readonly string[];
   /** The steps that led here, first one first; each remembers the series that it was given. */
   readonly steps: readonly AppliedStep[];
+  /** What was observed after the end, where a window cut it off: for showing beside a forecast, never for making one. Only on a
+   *  series without steps; a transformed one has it on the series that its first step was given. */
+  readonly later?: Series;
 }
 
 /** Makes a series. Spacing null (the default) numbers the values from `start` "1".
@@ -68,5 +71,6 @@ export function timesMs(series: Series): Float64Array {
 
 /** The same series with other values (and name, unit). Steps are dropped: they no longer tell how the values came about. */
 export function withValues(series: Series, values: Float64Array, changes: { readonly name?: string; readonly unit?: string } = {}): Series {
-  return { ...series, name: changes.name ?? series.name, unit: changes.unit ?? series.unit, n: values.length, values, times: series.times, steps: [] };
+  const { every, start, times } = series;
+  return { name: changes.name ?? series.name, unit: changes.unit ?? series.unit, every, start, n: values.length, values, times, steps: [] };
 }

@@ -113,7 +113,7 @@ function differenced(series: Series, lag: number): Series {
   const result = new Float64Array(n);
   for (let t = 0; t < n; t++) result[t] = values[t + lag] - values[t];
   const times = series.times.slice(lag);
-  return { ...series, start: times[0], n, values: result, times, steps: [] };
+  return { name: series.name, unit: series.unit, every: series.every, start: times[0], n, values: result, times, steps: [] };
 }
 
 function perDay(series: Series): Series {

@@ -108,6 +108,15 @@ describe("cut", () => {
     expect([...s.values]).toEqual([2, 3, 4]);
     expect([...s.steps[0].before.values]).toEqual([2, 4, 7, 11]);
   });
+  it("keeps what came later beside the data, not in them, through two cuts and any steps", () => {
+    const raw = monthly([1, 2, 4, 7, 11, 16]);
+    const once = cut(raw, { to: "2019-05" });
+    const twice = cut(applyStep(once, { step: "difference", lag: 1 }), { to: "2019-03" });
+    expect([...(original(twice).later?.values ?? [])]).toEqual([7, 11, 16]);
+    expect(original(twice).later?.start).toBe("2019-04");
+    expect("later" in twice).toBe(false);
+    expect(cut(raw, { from: "2019-02" }).later).toBeUndefined();
+  });
   it("changing later data changes nothing earlier", () => {
     fc.assert(fc.property(fc.array(fc.double({ min: 1, max: 100, noNaN: true }), { minLength: 40, maxLength: 60 }), (values) => {
       const steps: Step[] = [{ step: "detrend", degree: 2 }, { step: "difference", lag: 1 }];
