@@ -30,11 +30,20 @@ export { type Bandwidth } from "./unitroot/longRunVariance.ts";
 // arma
 // forecast
 export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
+export { rule, isRule, type SmoothingOptions } from "./forecast/rules.ts";
+export { exponentialSmoothing, type Smoothed, type SmoothingWeights } from "./forecast/smoothing/exponentialSmoothing.ts";
+export { innovationsFilter, innovationsPath, type Filtered, type SmoothingForm, type SmoothingState } from "./forecast/smoothing/innovations.ts";
+export { type Band, type BandsHow, type Forecast, type ForecastOptions, type Forecaster, type Growth, type Passing, type Rule, type Total } from "./forecast/model.ts";
 // diagnostics
 export { printedP, unavailable, type Test } from "./diagnostics/test.ts";
 export { boxPierce, ljungBox, monti, portmanteauRows, type PortmanteauRow, type PortmanteauRows } from "./diagnostics/portmanteau.ts";
 export { freeArmaCoefficients, isFit, type Subject } from "./diagnostics/subject.ts";
 // evaluation
+export { bias, mae, mape, mase, mpe, naiveScale, rmse, rmsse, smape } from "./evaluation/accuracy.ts";
+export { crps, intervalScore, pinball } from "./evaluation/scores.ts";
+export { dieboldMariano, type DieboldMariano, type Loss } from "./evaluation/dieboldMariano.ts";
+export { binomialRange } from "./evaluation/binomialRange.ts";
+export { modelConfidenceSet, type ConfidenceSet } from "./evaluation/modelConfidenceSet.ts";
 // decompose
 // distributions
 export { betaInc, erfc, gammaP, gammaQ, logGamma } from "./distributions/special.ts";

@@ -39,7 +39,7 @@ describe("smoothing with estimated weights", () => {
     const { alpha, beta, phi } = best.smoothing!.start;
     for (const [a, b, p] of [[0.02, 0, 0], [-0.02, 0, 0], [0, 0.02, 0], [0, -0.02, 0], [0, 0, -0.02]]) {
       // Within the region that is searched: alpha to 0.9999, beta from 0.0001 alpha, phi from 0.8 to 0.98.
-      const held = { alpha: Math.min(0.9999, alpha + a), beta: Math.max(1e-4 * alpha, beta + b), phi: Math.min(0.98, phi + p) };
+      const held = { alpha: Math.min(0.9999, alpha + a), beta: Math.max(1e-4 * alpha, beta + b), phi: Math.min(0.98, Math.max(0.8, phi + p)) };
       const other = rule.smoothing(series, { trend: "additive", damped: true, ...held });
       expect(other.parameters!.logLikelihood).toBeLessThanOrEqual(best.parameters!.logLikelihood + 1e-6);
     }
