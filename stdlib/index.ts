@@ -27,6 +27,9 @@ export { dfGls, type DfGlsOptions } from "./unitroot/dfGls.ts";
 export { type Trend } from "./unitroot/mackinnon.ts";
 export { type LagChoice } from "./unitroot/dickeyFullerRegression.ts";
 export { type Bandwidth } from "./unitroot/longRunVariance.ts";
+export { canovaHansen, type CanovaHansenOptions } from "./unitroot/canovaHansen.ts";
+export { differences, differencesSentence, type DifferenceRow } from "./unitroot/differences.ts";
+export { stationarity, type Stationarity, type StationarityOptions } from "./unitroot/stationarity.ts";
 // arma
 // forecast
 export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
@@ -38,6 +41,11 @@ export { type Band, type BandsHow, type Forecast, type ForecastOptions, type For
 export { printedP, unavailable, type Test } from "./diagnostics/test.ts";
 export { boxPierce, ljungBox, monti, portmanteauRows, type PortmanteauRow, type PortmanteauRows } from "./diagnostics/portmanteau.ts";
 export { freeArmaCoefficients, isFit, type Subject } from "./diagnostics/subject.ts";
+export { jarqueBera } from "./diagnostics/jarqueBera.ts";
+export { archLM, mcleodLi } from "./diagnostics/changingVariance.ts";
+export { durbinWatson } from "./diagnostics/durbinWatson.ts";
+export { cumulativePeriodogram, type CumulativePeriodogram } from "./diagnostics/cumulativePeriodogram.ts";
+export { cusum, largestBreak, type Cusum, type LargestBreak } from "./diagnostics/breaks.ts";
 // evaluation
 export { bias, mae, mape, mase, mpe, naiveScale, rmse, rmsse, smape } from "./evaluation/accuracy.ts";
 export { crps, intervalScore, pinball } from "./evaluation/scores.ts";
@@ -45,6 +53,8 @@ export { dieboldMariano, type DieboldMariano, type Loss } from "./evaluation/die
 export { binomialRange } from "./evaluation/binomialRange.ts";
 export { modelConfidenceSet, type ConfidenceSet } from "./evaluation/modelConfidenceSet.ts";
 // decompose
+export { stl, type Decomposition, type StlOptions } from "./decompose/stl.ts";
+export { seasonalStrength, type SeasonalStrength } from "./decompose/seasonalStrength.ts";
 // distributions
 export { betaInc, erfc, gammaP, gammaQ, logGamma } from "./distributions/special.ts";
 export { normalCdf, normalDensity, normalQuantile, normalUpper } from "./distributions/normal.ts";
