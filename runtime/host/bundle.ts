@@ -47,8 +47,8 @@ async function command(from: (path: string) => string, define: Record<string, st
   await build({
     entryPoints: [from("host/lagbook.ts")], outdir: out, chunkNames: "pieces/[name]-[hash]", bundle: true, splitting: true, format: "esm", platform: "node", target: "node20",
     minify: true, keepNames: false, legalComments: "none", loader: { ".css": "text" }, define: { ...define, LAGBOOK_BUNDLED: "true" }, logLevel: "warning",
-    // Packages written for `require` ask for Node's own modules by it.
-    banner: { js: "#!/usr/bin/env node\nimport { createRequire as lagbookRequire } from \"node:module\"; const require = lagbookRequire(import.meta.url);" },
+    // Packages written for `require` ask for Node's own modules by it, and for the name of their file.
+    banner: { js: "#!/usr/bin/env node\nimport { createRequire as lagbookRequire } from \"node:module\"; import { fileURLToPath as lagbookPath } from \"node:url\"; const require = lagbookRequire(import.meta.url), __filename = lagbookPath(import.meta.url);" },
   });
   await chmod(join(out, "lagbook.js"), 0o755);
 }
