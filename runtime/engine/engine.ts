@@ -53,6 +53,8 @@ export interface Engine {
   setAllowCode(allow: boolean): void;
   /** Stops a cell that is at work; it has failed until something that it reads changes. */
   stop(id: string): void;
+  /** A cell that was stopped by hand with its worker: it is not run until its own text changes. */
+  hold(id: string): void;
   /** Resolves when nothing is at work or waiting any more. */
   settle(): Promise<void>;
   notebook(): Notebook | null;
@@ -116,6 +118,7 @@ class NotebookEngine implements Engine {
   #numbers = new Map<string, PlannedNumber>();
   readonly #entries = new Map<string, Entry>();
   readonly #settings = new Map<string, unknown>();
+  readonly #held = new Set<string>();
   /** Ids whose present value is out of date. */
   readonly #outstanding = new Set<string>();
   readonly #dirty = new Set<string>();
@@ -149,6 +152,7 @@ class NotebookEngine implements Engine {
       // A report speaks of places; those of cells that stand as they did are in the outline.
       if (entry !== undefined && (entry.state !== "current" || this.#numbers.has(id))) this.#dirty.add(id);
       if (entry?.mark === each.mark) continue;
+      if (entry !== undefined) this.#held.delete(id);
       // The newest intention wins: an edit of a control's own text drops its moved setting.
       if (entry !== undefined && this.#settings.has(id)) this.#settings.delete(id);
       changed.push(id);
@@ -187,6 +191,11 @@ class NotebookEngine implements Engine {
 
   stop(id: string): void {
     this.#entries.get(id)?.stop?.abort();
+  }
+
+  hold(id: string): void {
+    this.#held.add(id);
+    this.#rerun([id]);
   }
 
   settle(): Promise<void> {
@@ -255,13 +264,14 @@ class NotebookEngine implements Engine {
     this.#outstanding.delete(id);
     this.#dirty.delete(id);
     this.#settings.delete(id);
+    this.#held.delete(id);
   }
 
   /** Asks for a new run of cells, on whatever they read. */
   #rerun(ids: readonly string[]): void {
     const known = ids.filter((id) => this.#entries.has(id));
     for (const id of known) { const entry = this.#entries.get(id); if (entry !== undefined) entry.run = {}; }
-    this.#redefine(known);
+    if (known.length > 0) this.#redefine(known);
   }
 
   #redefine(ids: readonly string[]): void {
@@ -326,6 +336,7 @@ class NotebookEngine implements Engine {
   async #runCell(entry: Entry, cell: PlannedCell, inputs: readonly Outcome[], signal: AbortSignal): Promise<Outcome> {
     const { definition } = cell;
     if (definition === null) return { ok: false, state: "failed", root: entry.id, message: "", at: null, notes: [] };
+    if (this.#held.has(entry.id)) return { ok: false, state: "failed", root: entry.id, message: "Stopped by hand. It runs again when its text is edited", at: null, notes: [] };
     entry.state = "working";
     entry.notes = [];
     entry.files = new Set();

@@ -17,7 +17,7 @@ export interface Surroundings {
 export type Compiled = (around: Surroundings) => unknown;
 
 /** Names bound by arrow functions: one frame a call. */
-interface Frame { readonly around: Surroundings; readonly slots: unknown[]; readonly up: Frame | null }
+interface Frame { readonly around: Surroundings; readonly slots: unknown[]; readonly up: Frame | null; readonly calls: { depth: number } }
 type Code = (frame: Frame) => unknown;
 /** Names in scope at a place, innermost last: where each stands at run time. */
 type Scope = readonly (readonly string[])[];
@@ -26,15 +26,11 @@ type Scope = readonly (readonly string[])[];
  *  @throws EvaluationError (from the closures) with places in the expression's source */
 export function compile(tree: Expression): Compiled {
   const code = codeOf(tree, []);
-  return (around) => {
-    try {
-      return code({ around, slots: [], up: null });
-    } catch (error) {
-      if (error instanceof RangeError && /call stack/i.test(error.message)) throw new EvaluationError("This expression calls itself without end", { from: tree.start, to: tree.end });
-      throw error;
-    }
-  };
+  return (around) => code({ around, slots: [], up: null, calls: { depth: 0 } });
 }
+
+/** Arrow functions may call one another this deep: well inside the stack, and deeper than any sensible expression. */
+const DEEPEST = 200;
 
 function codeOf(node: AnyNode, scope: Scope): Code {
   switch (node.type) {
@@ -219,9 +215,16 @@ function arrowCode(node: ArrowFunctionExpression, scope: Scope): Code {
   const body = codeOf(node.body as AnyNode, [...scope, names]);
   return (frame) => {
     const arrow = (...given: readonly unknown[]): unknown => {
-      const inner: Frame = { around: frame.around, slots: [], up: frame };
-      for (const bind of binders) bind(inner, given);
-      return body(inner);
+      const { around, calls } = frame;
+      if (calls.depth >= DEEPEST) throw new EvaluationError("This expression calls itself without end", { from: node.start, to: node.end });
+      const inner: Frame = { around, slots: [], up: frame, calls };
+      calls.depth += 1;
+      try {
+        for (const bind of binders) bind(inner, given);
+        return body(inner);
+      } finally {
+        calls.depth -= 1;
+      }
     };
     frame.around.callables.add(arrow);
     return arrow;
@@ -265,7 +268,6 @@ function placed<T>(node: AnyNode, work: () => T): T {
   } catch (error) {
     if (isSignal(error)) throw error;
     if (error instanceof EvaluationError) throw error.place === null ? new EvaluationError(error.message, { from: node.start, to: node.end }, error.cause) : error;
-    if (error instanceof RangeError && /call stack/i.test(error.message)) throw error;
     throw new EvaluationError(error instanceof Error ? error.message : String(error), { from: node.start, to: node.end }, error);
   }
 }

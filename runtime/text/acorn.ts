@@ -12,7 +12,7 @@ const VERSION = 2022;
 /** The tree of one whole expression, or what is wrong with it. Places are in `source`. */
 export function expressionTree(source: string): { readonly tree: Expression } | { readonly fault: SyntaxFault } {
   try {
-    const tree = parseExpressionAt(source, 0, { ecmaVersion: VERSION, sourceType: "script" });
+    const tree = parseExpressionAt(source, 0, { ecmaVersion: VERSION, sourceType: "script", preserveParens: true });
     const rest = restAfter(source, tree.end);
     return rest === null ? { tree } : { fault: { message: rest.message, at: rest.at } };
   } catch (error) {

@@ -34,8 +34,10 @@ export function parseExpression(source: string): ParsedExpression {
 
 /** The value of an expression that is nothing but a number, text, truth or null; undefined for anything else. */
 export function literalOf(source: string): number | string | boolean | null | undefined {
-  const { tree } = parseExpression(source);
-  if (tree === null) return undefined;
+  const parsed = parseExpression(source);
+  if (parsed.tree === null) return undefined;
+  let tree = parsed.tree;
+  while (tree.type === "ParenthesizedExpression") tree = tree.expression;
   if (tree.type === "Literal" && (tree.value === null || ["number", "string", "boolean"].includes(typeof tree.value))) return tree.value as number | string | boolean | null;
   if (tree.type === "UnaryExpression" && tree.operator === "-" && tree.argument.type === "Literal" && typeof tree.argument.value === "number") return -tree.argument.value;
   if (tree.type === "TemplateLiteral" && tree.expressions.length === 0) return tree.quasis[0].value.cooked ?? undefined;

@@ -1,0 +1,65 @@
+// Runs the code of a `script` cell in a worker of its own, out of reach of the network, the page, storage and the engine:
+// an endless loop there is ended with its worker, while the engine lives.
+
+import { Overtaken } from "./values.ts";
+
+/** Names of the language itself, and a few harmless helpers: all that a script finds besides what it reads from other cells. */
+const KEPT = ("Object Function Array Number parseFloat parseInt Infinity NaN undefined Boolean String Symbol Date Promise RegExp Error AggregateError EvalError RangeError ReferenceError SyntaxError TypeError URIError "
+  + "globalThis JSON Math Intl ArrayBuffer Uint8Array Int8Array Uint16Array Int16Array Uint32Array Int32Array Float32Array Float64Array Uint8ClampedArray BigUint64Array BigInt64Array DataView Map BigInt Set WeakMap WeakSet WeakRef "
+  + "Proxy Reflect decodeURI decodeURIComponent encodeURI encodeURIComponent escape unescape isFinite isNaN Iterator structuredClone console setTimeout clearTimeout queueMicrotask performance TextEncoder TextDecoder").split(" ");
+
+/** The worker's program. It keeps the one way out to itself, takes the rest away, and imports the script as a module. */
+const PROGRAM = `
+const post = self.postMessage.bind(self), urlOf = URL.createObjectURL.bind(URL), BlobOf = Blob;
+const kept = new Set(${JSON.stringify(KEPT)});
+function bare() {
+  for (let holder = globalThis; holder !== null && holder !== Object.prototype; holder = Object.getPrototypeOf(holder)) {
+    for (const key of Reflect.ownKeys(holder)) {
+      if (typeof key === "string" && kept.has(key)) continue;
+      if (!Reflect.deleteProperty(holder, key)) { try { Object.defineProperty(holder, key, { value: undefined }); } catch { /* not configurable: the policy of the page stands behind this */ } }
+    }
+  }
+  for (const made of [function () {}, function* () {}, async function () {}, async function* () {}]) Object.defineProperty(Object.getPrototypeOf(made), "constructor", { value: undefined });
+  delete globalThis.Function;
+}
+function plain(name, value) {
+  try { structuredClone(value); } catch { throw new Error("The export \`" + name + "\` is " + (typeof value === "function" ? "a function" : "not plain data") + ": only plain data (numbers, texts, lists, objects) can leave a script"); }
+  return value;
+}
+self.addEventListener("message", async ({ data: { source, inputs } }) => {
+  try {
+    const url = urlOf(new BlobOf([source], { type: "text/javascript" }));
+    bare();
+    for (const [name, value] of Object.entries(inputs)) Object.defineProperty(globalThis, name, { value, enumerable: true });
+    const module = await import(url);
+    const exports = {};
+    for (const name of Object.keys(module)) exports[name] = plain(name, module[name]);
+    post({ exports });
+  } catch (error) {
+    const line = /blob:\\S*?:(\\d+):\\d+/.exec(error?.stack ?? "");
+    post({ fault: (error instanceof Error ? error.message : String(error)) + (line === null ? "" : " (line " + line[1] + " of the script)") });
+  }
+}, { once: true });
+`;
+
+/** Runs a module's source with values bound to names; gives its exports. Both are copies.
+ *  @throws Error in the script's words; Overtaken when `signal` is aborted, whatever the script is doing */
+export function importIsolated(source: string, inputs: Readonly<Record<string, unknown>>, signal: AbortSignal): Promise<Readonly<Record<string, unknown>>> {
+  const address = URL.createObjectURL(new Blob([PROGRAM], { type: "text/javascript" }));
+  const worker = new Worker(address, { type: "module" });
+  const end = (): void => { worker.terminate(); URL.revokeObjectURL(address); };
+  return new Promise<Readonly<Record<string, unknown>>>((resolve, reject) => {
+    signal.addEventListener("abort", () => reject(new Overtaken("overtaken by newer work")), { once: true });
+    worker.addEventListener("error", (event) => { event.preventDefault(); reject(new Error(event.message === "" ? "The script could not be started" : event.message)); });
+    worker.addEventListener("message", (event: MessageEvent<{ readonly exports?: Readonly<Record<string, unknown>>; readonly fault?: string }>) => {
+      if (event.data.exports === undefined) reject(new Error(event.data.fault ?? "The script gave no answer"));
+      else resolve(event.data.exports);
+    });
+    try {
+      worker.postMessage({ source, inputs });
+    } catch {
+      const odd = Object.keys(inputs).find((name) => { try { structuredClone(inputs[name]); return false; } catch { return true; } });
+      reject(new Error(`\`${odd ?? "An input"}\` cannot be handed to a script: only plain data can`));
+    }
+  }).finally(end);
+}
