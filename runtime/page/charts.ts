@@ -19,7 +19,7 @@ export interface Charts {
 }
 
 interface Place {
-  readonly element: HTMLElement; part: ChartPart | null; seen: boolean;
+  readonly element: HTMLElement; part: ChartPart | null; seen: boolean; near: boolean; width: number; later: number;
   chart: Chart | null; shape: string; shown: ChartPart | null; shownWidth: number;
   /** Set while drawing; a newer wish waits for it, and only the newest is drawn. */
   busy: Promise<void> | null;
@@ -32,9 +32,13 @@ export function charts(announce: (words: string) => void): Charts {
   const compiled = chartCompiler();
   const byElement = new WeakMap<Element, Place>();
   const near = new IntersectionObserver((entries) => {
-    for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.seen = entry.isIntersecting; void draw(place); } }
-  }, { rootMargin: "300px 0px" });
-  const sizes = new ResizeObserver((entries) => { for (const entry of entries) { const place = byElement.get(entry.target); if (place) void draw(place); } });
+    for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.near = entry.isIntersecting; void draw(place); } }
+  }, { rootMargin: "400px 0px" });
+  const inView = new IntersectionObserver((entries) => {
+    for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.seen = entry.isIntersecting; if (place.seen) void draw(place); } }
+  });
+  // Widths are taken from here only: asking an element for its width in the middle of a drawing makes the browser lay the page out at once.
+  const sizes = new ResizeObserver((entries) => { for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.width = Math.floor(entry.contentRect.width); void draw(place); } } });
 
   async function draw(place: Place): Promise<void> {
     if (place.busy) return place.busy;
@@ -42,11 +46,16 @@ export function charts(announce: (words: string) => void): Charts {
     return place.busy;
   }
 
+  /** Charts just out of sight wait until the hand that moves a control rests. */
+  function drawLater(place: Place): void {
+    clearTimeout(place.later);
+    place.later = window.setTimeout(() => { void draw(place); }, 150);
+  }
+
   async function redraw(place: Place): Promise<void> {
     // At most a few rounds in one go: each takes the newest wish.
-    while (place.seen && place.part !== null && place.element.isConnected) {
-      const { part } = place;
-      const width = Math.floor(place.element.clientWidth);
+    while (place.near && place.part !== null && place.element.isConnected) {
+      const { part, width } = place;
       if (width < 40 || (part === place.shown && width === place.shownWidth)) return;
       try { await show(place, part, width); } catch (error) { fail(place, error); }
       place.shown = part; place.shownWidth = width;
@@ -74,18 +83,18 @@ export function charts(announce: (words: string) => void): Charts {
 
   return {
     mounted(key, element) {
-      const place: Place = { element, part: null, seen: false, chart: null, shape: "", shown: null, shownWidth: 0, busy: null,
+      const place: Place = { element, part: null, seen: false, near: false, width: 0, later: 0, chart: null, shape: "", shown: null, shownWidth: 0, busy: null,
         pointer: chartPointer(element, (): readonly Reading[] => places.get(key)?.chart?.readings() ?? [], announce) };
       places.set(key, place); byElement.set(element, place);
-      near.observe(element); sizes.observe(element);
+      near.observe(element); inView.observe(element); sizes.observe(element);
     },
     unmounted(key) {
       const place = places.get(key);
       if (!place) return;
-      near.unobserve(place.element); sizes.unobserve(place.element);
+      clearTimeout(place.later); near.unobserve(place.element); inView.unobserve(place.element); sizes.unobserve(place.element);
       place.pointer.leave(); place.chart?.destroy(); places.delete(key);
     },
-    want(key, part) { const place = places.get(key); if (place && place.part !== part) { place.part = part; void draw(place); } },
+    want(key, part) { const place = places.get(key); if (place && place.part !== part) { place.part = part; if (place.seen || place.chart === null) void draw(place); else drawLater(place); } },
     part: (key) => places.get(key)?.part ?? null,
     async svg(key) { const place = places.get(key); if (!place) return null; await place.busy; return place.chart ? place.chart.svg() : null; },
     async drawn() { await Promise.all([...places.values()].map((place) => place.busy)); },

@@ -78,14 +78,25 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
     if (message.from === "outline") { document.title = message.title; post({ page: "outline", version: message.version, title: message.title, problems: message.problems }); for (const id of held) if (!state.blocks.some((block) => block.block === "cell" && block.cell === id)) held.delete(id); }
     if (message.from === "settled") { settings.settled(message.moved); post({ page: "settled", version: message.version, moved: message.moved }); sayLater(); }
     states.note(message);
-    schedule();
+    if (message.from === "settled") drawSoon(); else schedule();
   }
 
   let frame = 0;
   let done: Promise<void> = Promise.resolve();
+  let drawnAt = 0;
   function schedule(): void { if (frame === 0) frame = requestAnimationFrame(draw); }
+  /** Everything that a move touched has come: drawn now rather than at the next frame, the work is done before that frame is due. */
+  function drawSoon(): void {
+    if (performance.now() - drawnAt < 6) { schedule(); return; }
+    cancelAnimationFrame(frame);
+    draw();
+  }
+  /** A moved control is shown moved with the engine's answer, which mostly comes within a frame; by itself only if that takes longer. */
+  let waiting = 0;
+  function scheduleMoved(): void { if (waiting === 0) waiting = window.setTimeout(() => { waiting = 0; schedule(); }, 30); }
   function draw(): void {
-    frame = 0;
+    frame = 0; drawnAt = performance.now();
+    clearTimeout(waiting); waiting = 0;
     keepFocus(() => {
       drawArticle(trees.blocks(state, { canEdit: ui.canEdit, still: false, pending: settings.pending, fault: (name) => ui.faults.get(name) ?? null, asTable: (key) => ui.tables.has(key), canStop: (id) => dog.canStop(id) }));
       const controls = [...state.cells.values()].flatMap((cell) => { const part = controlOf(cell); return part && cell.name !== null ? [{ name: cell.name, part, pending: settings.pending(cell.name), fault: ui.faults.get(cell.name) ?? null, from: cell.from }] : []; }).sort((a, b) => a.from - b.from);
@@ -123,7 +134,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   }
 
   const actions = pageActions({
-    root, state, ui, settings, charts, post, schedule, announce, alone: parent === null,
+    root, state, ui, settings, charts, post, schedule, scheduleMoved, announce, alone: parent === null,
     stop(cell) { held.add(cell); engine.restart(); sayAllAgain(); schedule(); },
     startAgain() { engine.restart(); sayAllAgain(); schedule(); },
   });

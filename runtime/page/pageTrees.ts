@@ -19,9 +19,13 @@ interface Kept { readonly inputs: readonly unknown[]; readonly tree: Tree }
 
 export function pageTrees(): PageTrees {
   let kept = new Map<string, Kept>();
+  let shared: Shared | null = null;
+  let sharedFor: unknown = null;
   return {
     blocks(state, context) {
-      const shared = sharedContext(state);
+      // A new outline is a new list: only then can definitions, notes and anchors differ.
+      if (shared === null || sharedFor !== state.blocks) { shared = sharedContext(state); sharedFor = state.blocks; }
+      const common = shared;
       const next = new Map<string, Kept>();
       /** The tree as it was, when all that it was made from is the same. */
       const keep = (key: string, inputs: readonly unknown[], make: () => Tree): Tree => {
@@ -46,14 +50,14 @@ export function pageTrees(): PageTrees {
         const node = state.nodes.get(block.key);
         if (!node || node.type === "definition") continue;
         const numbers = block.numbers.map((i) => state.numbers.get(i)).filter((number) => number !== undefined);
-        const own: ProseContext = { ...shared, numbers, canAccept, canEdit: context.canEdit };
+        const own: ProseContext = { ...common, numbers, canAccept, canEdit: context.canEdit };
         if (node.type === "footnoteDefinition") {
-          const mark = shared.footnotes.get(node.identifier);
+          const mark = common.footnotes.get(node.identifier);
           if (mark !== undefined) notes[mark - 1] = keep(`note ${mark}`, [node, ...numbers, canAccept, context.canEdit], () => noteTree(node, mark, own));
           continue;
         }
-        trees.push(keep(`prose ${block.key}`, [node, shared.signature, ...numbers, canAccept, context.canEdit], () => h("div", { class: `prose prose-${node.type}`, key: `prose ${block.key}`, "data-block": block.key }, prose(node, own))));
-        if (!titled && node.type === "heading") { titled = true; const list = contentsTree(shared.anchors); if (list) trees.push(keep("contents", [JSON.stringify(list)], () => list)); }
+        trees.push(keep(`prose ${block.key}`, [node, common.signature, ...numbers, canAccept, context.canEdit], () => h("div", { class: `prose prose-${node.type}`, key: `prose ${block.key}`, "data-block": block.key }, prose(node, own))));
+        if (!titled && node.type === "heading") { titled = true; const list = contentsTree(common.anchors); if (list) trees.push(keep("contents", [JSON.stringify(list)], () => list)); }
       }
       const ends = notes.filter((note) => note !== undefined);
       if (ends.length > 0) trees.push(h("section", { class: "notes", key: "notes", "aria-label": "Notes" }, h("ol", {}, ends)));

@@ -12,7 +12,7 @@ interface Any {
   readonly type: string; readonly children?: readonly Any[]; readonly value?: string; readonly url?: string; readonly title?: string | null;
   readonly alt?: string | null; readonly depth?: number; readonly ordered?: boolean | null; readonly start?: number | null; readonly spread?: boolean | null;
   readonly checked?: boolean | null; readonly lang?: string | null; readonly identifier?: string; readonly label?: string | null;
-  readonly align?: readonly ("left" | "right" | "center" | null)[] | null; readonly referenceType?: string;
+  readonly align?: readonly ("left" | "right" | "center" | null)[] | null; readonly position?: { readonly start: { readonly offset?: number }; readonly end: { readonly offset?: number } };
 }
 
 export interface ProseContext {
@@ -51,7 +51,7 @@ class Prose {
   private one(node: Any): Child | readonly Child[] | null {
     switch (node.type) {
       case "text": return node.value ?? "";
-      case "paragraph": return h("p", {}, this.all(node));
+      case "paragraph": return this.paragraph(node);
       case "heading": return this.heading(node);
       case "emphasis": return h("em", {}, this.all(node));
       case "strong": return h("strong", {}, this.all(node));
@@ -63,7 +63,7 @@ class Prose {
       case "list": return h(node.ordered ? "ol" : "ul", { start: node.ordered && node.start !== 1 ? node.start : null }, (node.children ?? []).map((item) => this.item(item, node.spread === true)));
       case "code": return h("pre", { tabindex: 0 }, h("code", {}, node.value));
       case "html": return h("code", { class: "raw", title: "HTML is shown as text" }, node.value);
-      case "math": return h("div", { class: "math-block", tabindex: 0, role: "group", "aria-label": "formula" }, mathTree(node.value ?? "", true));
+      case "math": return this.display(node);
       case "inlineMath": return mathTree(node.value ?? "", false);
       case "link": return this.link(node, node.url ?? "", node.title);
       case "linkReference": return this.reference(node);
@@ -74,6 +74,17 @@ class Prose {
       case "definition": case "footnoteDefinition": return null;
       default: return node.children ? node.children.flatMap((child) => this.show(child)) : node.value ?? null;
     }
+  }
+
+  /** `$$…$$` written on one line, alone in its paragraph, is set as display too. */
+  private paragraph(node: Any): Tree {
+    const [only, ...others] = node.children ?? [];
+    if (others.length === 0 && only?.type === "inlineMath" && marksAround(only) >= 4) return this.display(only);
+    return h("p", {}, this.all(node));
+  }
+
+  private display(node: Any): Tree {
+    return h("div", { class: "math-block", tabindex: 0, role: "group", "aria-label": "formula" }, mathTree(node.value ?? "", true));
   }
 
   private heading(node: Any): Tree {
@@ -119,6 +130,12 @@ class Prose {
     return h("div", { class: "table-box", tabindex: 0, role: "group", "aria-label": "table" },
       h("table", {}, h("thead", {}, h("tr", {}, (head?.children ?? []).map(cell("th")))), h("tbody", {}, rows.map((row) => h("tr", {}, (row.children ?? []).map(cell("td")))))));
   }
+}
+
+/** Characters of a node's source beyond its value. */
+function marksAround(node: Any): number {
+  const from = node.position?.start.offset; const to = node.position?.end.offset;
+  return from === undefined || to === undefined ? 0 : to - from - (node.value ?? "").length;
 }
 
 /** Only http, https, mailto and places of this page are links. */

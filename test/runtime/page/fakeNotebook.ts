@@ -115,9 +115,14 @@ export function fakeNotebook(points = n): FakeNotebook {
   const settings = new Map<string, unknown>();
   const order = (): number => settings.get("maOrder") as number ?? 1;
 
+  let known: { text: string; tree: ReturnType<typeof fromMarkdown> } | null = null;
+  const parsed = (): ReturnType<typeof fromMarkdown> => {
+    if (known?.text !== text) known = { text, tree: fromMarkdown(text, { extensions: [gfm(), math()], mdastExtensions: [gfmFromMarkdown(), mathFromMarkdown()] }) };
+    return known.tree;
+  };
   const cellsOf = (): CellReport[] => {
     const found: CellReport[] = [];
-    for (const node of fromMarkdown(text).children) {
+    for (const node of parsed().children) {
       if (node.type !== "code" || !node.lang?.endsWith(":")) continue;
       const kind = node.lang.slice(0, -1); const name = node.meta ?? null;
       const failed = name === "broken"; const blocked = name === "later";
@@ -182,7 +187,7 @@ export function fakeNotebook(points = n): FakeNotebook {
   });
 
   const speak = (): FromEngine[] => {
-    const tree = fromMarkdown(text, { extensions: [gfm(), math()], mdastExtensions: [gfmFromMarkdown(), mathFromMarkdown()] });
+    const tree = parsed();
     let count = 0; const cells = cellsOf(); let c = 0;
     const blocks: BlockReport[] = tree.children.map((node) => {
       const from = node.position?.start.offset ?? 0; const to = node.position?.end.offset ?? 0;
@@ -200,7 +205,7 @@ export function fakeNotebook(points = n): FakeNotebook {
       if (message.to === "text") { version = message.version; text = message.text; return speak(); }
       if (message.to === "set") settings.set(message.name, message.value);
       else if (message.to === "unset") { if (!settings.delete(message.name)) return []; } else return [];
-      return speak().filter((said) => said.from !== "outline" && !(said.from === "cell" && (said.cell.kind === "load" || said.cell.state === "failed")));
+      return speak().filter((said) => said.from !== "outline" && !(said.from === "cell" && (["load", "compare"].includes(said.cell.kind) || said.cell.state !== "current" || (["choice", "switch", "window", "slider"].includes(said.cell.kind) && said.cell.name !== message.name))));
     },
     looping: () => cellsOf().filter((cell) => cell.name === "airline").map((cell) => ({ from: "cell", cell: { ...cell, state: "working", show: null } })),
   };

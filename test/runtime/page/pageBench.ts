@@ -12,7 +12,7 @@ const top = join(here, "../../..");
 
 /** A worker has no document: some packages bring another file for that ("worker" condition). */
 async function bundle(entry: string, define: Record<string, string> = {}, conditions: string[] = []): Promise<string> {
-  const made = await build({ entryPoints: [entry], bundle: true, write: false, format: "iife", target: "es2022", minify: true, loader: { ".css": "text" }, define, conditions, logLevel: "error" });
+  const made = await build({ entryPoints: [entry], bundle: true, write: false, format: "iife", target: "es2022", minify: process.env.PLAIN !== "1", loader: { ".css": "text" }, define, conditions, logLevel: "error" });
   return made.outputFiles[0].text;
 }
 
