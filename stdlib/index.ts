@@ -31,8 +31,23 @@ export { canovaHansen, type CanovaHansenOptions } from "./unitroot/canovaHansen.
 export { differences, differencesSentence, type DifferenceRow } from "./unitroot/differences.ts";
 export { stationarity, type Stationarity, type StationarityOptions } from "./unitroot/stationarity.ts";
 // arma
+export { fit, type FitHow } from "./arma/fit.ts";
+export { fitAt } from "./arma/fitAt.ts";
+export { filterWith } from "./arma/filterWith.ts";
+export { modelName } from "./arma/modelName.ts";
+export { criteria as fitCriteria } from "./arma/report.ts";
+export { predict, type Prediction } from "./arma/predict.ts";
+export { interpolate, type Interpolation } from "./arma/interpolate.ts";
+export { simulate } from "./arma/simulate.ts";
+export { roots } from "./arma/roots.ts";
+export { expandedPolynomials, type ArmaModel } from "./arma/coefficients.ts";
+export { halfLife, impulseResponse, longRun, modelRoots, piWeights, psi, theoreticalAcf, theoreticalAutocovariance, theoreticalPacf, theoreticalSpectrum } from "./arma/theory.ts";
+export { autoregressionByLeastSquares, burg, yuleWalker, type AutoregressionFit } from "./arma/autoregression.ts";
+export { type Fit, type FitOptions, type Held, type Hold, type Lags, type Method, type Note, type Regressor, type Root, type Season, type StandardErrors } from "./arma/model.ts";
 // forecast
 export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
+export { forecast, scenarios } from "./forecast/forecast.ts";
+export { refit, type RefitHow } from "./forecast/refit.ts";
 export { rule, isRule, type SmoothingOptions } from "./forecast/rules.ts";
 export { exponentialSmoothing, type Smoothed, type SmoothingWeights } from "./forecast/smoothing/exponentialSmoothing.ts";
 export { innovationsFilter, innovationsPath, type Filtered, type SmoothingForm, type SmoothingState } from "./forecast/smoothing/innovations.ts";
@@ -50,6 +65,10 @@ export { cusum, largestBreak, type Cusum, type LargestBreak } from "./diagnostic
 export { bias, mae, mape, mase, mpe, naiveScale, rmse, rmsse, smape } from "./evaluation/accuracy.ts";
 export { crps, intervalScore, pinball } from "./evaluation/scores.ts";
 export { dieboldMariano, type DieboldMariano, type Loss } from "./evaluation/dieboldMariano.ts";
+export { gridOfOrders, rankFits, type Grid, type GridFailure, type GridOptions, type GridRow, type Tried } from "./evaluation/gridOfOrders.ts";
+export { rollingOrigins, type Against, type CompareOptions, type Evaluation, type OriginForecast, type RankBy, type RankedModel } from "./evaluation/rollingOrigins.ts";
+export { type Hooks, type Labelled, type RollingOptions } from "./evaluation/rolling.ts";
+export { type Coverage, type Score } from "./evaluation/scoreTable.ts";
 export { binomialRange } from "./evaluation/binomialRange.ts";
 export { modelConfidenceSet, type ConfidenceSet } from "./evaluation/modelConfidenceSet.ts";
 // decompose

@@ -112,6 +112,8 @@ function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Eva
   const x = Float64Array.from(held), gradient = new Float64Array(shape.count);
   const dense = parts.map(f => f.lags.length > 0 && f.lags[f.lags.length - 1] / f.lags[0] === f.lags.length
     && f.lags.every((_, i) => Number.isNaN(held[f.from + i])));
+  // A moving average held outside the region is the author's wish (the likelihood is then the filter's).
+  const whole = parts.map(f => f.sign < 0 && f.lags.every((_, i) => !Number.isNaN(held[f.from + i])));
   return {
     size: free.length,
     value(z) {
@@ -119,7 +121,7 @@ function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Eva
       let mended = false;
       for (let p = 0; p < parts.length; p++) {
         const f = parts[p], c = x.subarray(f.from, f.from + f.lags.length);
-        if (isStable(f.lags, c, f.sign, f.sign < 0)) continue;
+        if (whole[p] || isStable(f.lags, c, f.sign, f.sign < 0)) continue;
         // Outside: the likelihood of a moving average is that of its reflection, so go on from there; a process that is not
         // stationary has none, and the step is shortened.
         if (f.sign > 0 || !dense[p]) return Infinity;

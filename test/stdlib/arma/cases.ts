@@ -3,6 +3,9 @@
 import { readFileSync } from "node:fs";
 import { fileURLToPath } from "node:url";
 import { expect } from "vitest";
+import type { FitOptions, Hold } from "../../../stdlib/arma/model.ts";
+import { makeSeries } from "../../../stdlib/series/series.ts";
+import { applyStep } from "../../../stdlib/series/steps.ts";
 
 const root = fileURLToPath(new URL("../../reference/", import.meta.url));
 
@@ -94,4 +97,41 @@ function compare(id: string, name: string, actual: number, expected: number | nu
   const bound = t.ofSe !== undefined && se !== undefined ? t.ofSe * se : t.abs ?? (t.rel ?? 0) * top;
   const gap = t.oneSided && name.startsWith("logLik") ? Math.max(0, expected - actual) : t.oneSided && name.startsWith("sigma2") ? Math.max(0, actual - expected) : Math.abs(actual - expected);
   expect(gap, `${id} ${name}: ${actual}, expected ${expected} within ${bound}`).toBeLessThanOrEqual(bound);
+}
+
+/** A case as an analyst would ask for it: a series with its difference steps, regressors in levels, options. */
+export function caseOptions(c: Case): FitOptions {
+  const m = c.inputs.model, s = m.seasonal;
+  let series = makeSeries({ name: c.series ?? "x", values: transformed(readValues(c.series!), c.transform) });
+  for (let i = 0; i < m.d; i++) series = applyStep(series, { step: "difference", lag: 1 });
+  for (let i = 0; i < (s?.D ?? 0); i++) series = applyStep(series, { step: "difference", lag: s!.period });
+  const n = transformed(readValues(c.series!), c.transform).length;
+  const future = (c.inputs.horizon ?? 0) as number;
+  const made = regressors(m, n + future);
+  return {
+    series, ar: m.arLags, ma: m.maLags, mean: m.constant,
+    ...(s ? { season: { length: s.period, ar: s.arLags, ma: s.maLags } } : {}),
+    ...(made.length > 0 ? { regressors: Object.fromEntries(made.map((x, j) => [`x${j}`, makeSeries({ name: `x${j}`, values: x })])) } : {}),
+  };
+}
+
+/** Holds everything at the case's parameters. */
+export function caseHold(c: Case): Hold {
+  const m = c.inputs.model, p = c.inputs.params!;
+  const dense = (lags: number[], values: number[] = []) => { const out: (number | "free")[] = []; lags.forEach((l, i) => { while (out.length < l) out.push("free"); out[l - 1] = values[i]; }); return out; };
+  return {
+    phi: dense(m.arLags, p.ar), theta: dense(m.maLags, p.ma), seasonalPhi: dense(m.seasonal?.arLags ?? [], p.sar), seasonalTheta: dense(m.seasonal?.maLags ?? [], p.sma),
+    ...(m.constant ? { mean: p.constant } : {}), ...(p.beta ? { beta: Object.fromEntries(p.beta.map((b, j) => [`x${j}`, b])) } : {}),
+    ...(p.sigma2 !== undefined ? { sigma2: p.sigma2 } : {}),
+  };
+}
+
+/** A fit's coefficients in the form of the cases' `coef`. */
+export function caseCoefficients(c: Case, of: { phi: Float64Array; theta: Float64Array; seasonalPhi: Float64Array; seasonalTheta: Float64Array; mean: number; beta: Readonly<Record<string, number>> }): Record<string, unknown> {
+  const m = c.inputs.model;
+  return {
+    ar: m.arLags.map(l => of.phi[l - 1]), ma: m.maLags.map(l => of.theta[l - 1]),
+    sar: m.seasonal?.arLags.map(l => of.seasonalPhi[l - 1]), sma: m.seasonal?.maLags.map(l => of.seasonalTheta[l - 1]),
+    constant: of.mean, beta: Object.values(of.beta),
+  };
 }

@@ -1,0 +1,87 @@
+// The likelihood by the filter, for series with many gaps: the same value as likelihood.ts, gradient by differences.
+
+import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
+import type { Evaluate } from "./estimate.ts";
+import { filterLevels } from "./filter.ts";
+import { levelModel } from "./levelModel.ts";
+import type { Work } from "./likelihood.ts";
+import { differencedBy } from "./prepare.ts";
+import { bridge, type Numbers } from "./numbers.ts";
+import { expandInto } from "./shape.ts";
+
+/** Fills the same fields of `work` as `valueAt` does, as far as the search and the report read them. */
+export function filterEvaluate(numbers: Numbers, work: Work): Evaluate {
+  const { prepared, levels, levelColumns, n, data } = numbers;
+  const { shape, delta } = prepared;
+  const m = levelColumns.length;
+  const at = (x: Float64Array): number => {
+    work.f = Infinity;
+    const model = levelModel(shape, x, delta);
+    if (model === null) return Infinity;
+    expandInto(work.a, shape.ar, x, 0);
+    expandInto(work.b, shape.ma, x, shape.ar.plain.length + shape.ar.seasonal.length);
+    const filtered = filterLevels(model, [levels, ...levelColumns]);
+    const q = new Float64Array(m * m), beta = new Float64Array(m);
+    let squares = 0;
+    const length = levels.length;
+    for (let t = 0; t < length; t++) {
+      const f = filtered.f[t];
+      if (Number.isNaN(f)) continue;
+      for (let i = 0; i < m; i++) {
+        const vi = filtered.v[i + 1][t] / f;
+        for (let j = 0; j <= i; j++) q[i * m + j] += vi * filtered.v[j + 1][t];
+        beta[i] += vi * filtered.v[0][t];
+      }
+    }
+    for (let i = 0; i < m; i++) for (let j = 0; j < i; j++) q[j * m + i] = q[i * m + j];
+    work.q.set(q);
+    work.chol.set(q);
+    if (choleskyInto(work.chol, m) >= 0) return Infinity;
+    choleskySolveInto(work.chol, m, beta);
+    work.beta.set(beta);
+    work.er.fill(0);
+    for (let t = delta.length; t < length; t++) {
+      const f = filtered.f[t];
+      if (Number.isNaN(f)) continue;
+      let v = filtered.v[0][t];
+      for (let j = 0; j < m; j++) v -= beta[j] * filtered.v[j + 1][t];
+      squares += v * v / f;
+      work.er[t - delta.length] = v / Math.sqrt(f);
+    }
+    const free = data.sigma2 === null;
+    work.sum = squares;
+    work.nEffective = filtered.count;
+    work.logDet = filtered.logDet;
+    work.sigma2 = free ? squares / filtered.count : data.sigma2!;
+    work.f = 0.5 * (filtered.count * Math.log(2 * Math.PI * work.sigma2) + filtered.logDet + (free ? filtered.count : squares / work.sigma2));
+    if (Number.isNaN(work.f)) work.f = Infinity;
+    return work.f;
+  };
+  void n;
+  return {
+    value(x) {
+      const f = at(x);
+      if (Number.isFinite(f)) {
+        const r = bridge(levels.map((v, t) => { let sum = v; for (let j = 0; j < m; j++) sum -= work.beta[j] * levelColumns[j][t]; return sum; }));
+        work.r.set(differencedBy(delta, r));
+      }
+      return f;
+    },
+    gradientInto(x, gradient) {
+      const point = Float64Array.from(x);
+      for (let i = 0; i < x.length; i++) {
+        let h = 1e-5;
+        for (; h > 1e-9; h /= 10) {
+          point[i] = x[i] + h;
+          const up = at(point);
+          point[i] = x[i] - h;
+          const down = at(point);
+          gradient[i] = (up - down) / (2 * h);
+          if (Number.isFinite(gradient[i])) break;
+        }
+        point[i] = x[i];
+      }
+      this.value(x);
+    },
+  };
+}

@@ -1,0 +1,120 @@
+// Estimation of an ARMA-type model: what an analyst asks for, and what comes back.
+
+import type { Series } from "../series/series.ts";
+import { conditionalEstimate } from "./conditional.ts";
+import { autoregression } from "./autoregression.ts";
+import { estimate, factors, type Estimate, type Evaluate } from "./estimate.ts";
+import { filterEvaluate } from "./filterEvaluate.ts";
+import { BOUNDARY, flags, moduli } from "./flags.ts";
+import { informationAt } from "./information.ts";
+import { gradientInto, makeWork, valueAt, type Work } from "./likelihood.ts";
+import type { Fit, FitOptions, Note } from "./model.ts";
+import { modelName } from "./modelName.ts";
+import { numbersOf, parameterCount, type Numbers } from "./numbers.ts";
+import { prepare, type Prepared } from "./prepare.ts";
+import { isStable } from "./region.ts";
+import { assemble, type Solution } from "./report.ts";
+
+export interface FitHow {
+  /** False leaves standard errors out (NaN): for grids and rolling refits, where nobody reads them. */
+  readonly standardErrors?: boolean;
+  /** Coefficients phi, Phi, theta, Theta to start from. */
+  readonly near?: Float64Array;
+}
+
+/** Fits phi(B) Phi(B^s) (w - mean) = theta(B) Theta(B^s) e to a series, w its values (after its steps), less the regressors.
+ *  The steps `difference` that end the series' steps are known to the model: regressors are differenced alike, and with
+ *  missing values the likelihood is that of the levels with a diffuse start, so that one gap costs one observation.
+ *  @throws RangeError in words when the data cannot answer or the request does not fit together
+ *  Method "exact": Gaussian maximum likelihood (Newbold 1974; Ljung & Box 1979; Harvey & Phillips 1979), several starts.
+ *  Cost: a few passes over the data, each n times the number of non-zero lags plus g^3, g the longest lag.
+ *  @example fit({ series: flow, ar: 1 }).phi[0] */
+export function fit(options: FitOptions, how: FitHow = {}): Fit {
+  const prepared = prepare(options);
+  const method = options.method ?? "exact";
+  const explosive = heldOutside(prepared);
+  const numbers = numbersOf(prepared, explosive);
+  const work = makeWork(prepared.shape, numbers.data.n, numbers.data.columns.length);
+  // The filter takes what the recursion cannot: many gaps, and moving averages held with roots inside the unit circle.
+  const filter = explosive || (numbers.gaps.length > 0 && numbers.data.gaps === 0);
+  const evaluate: Evaluate = filter ? filterEvaluate(numbers, work) : {
+    value: x => valueAt(work, numbers.data, x),
+    gradientInto: (x, g) => gradientInto(work, numbers.data, x, g),
+  };
+  if (method === "exact") {
+    const found = estimate({ shape: prepared.shape, data: numbers.data, held: prepared.held, bridged: numbers.bridged, near: how.near, work, evaluate: filter ? evaluate : undefined });
+    if (!Number.isFinite(found.value)) throw new RangeError(failure(prepared));
+    return finish(numbers, work, found, evaluate, how);
+  }
+  const solution = method === "conditional" ? conditionalEstimate(numbers) : autoregression(numbers, method);
+  const value = evaluate.value(solution.x);
+  const free = Int32Array.from([...prepared.held.keys()].filter(i => Number.isNaN(prepared.held[i])));
+  return assemble({ ...solution, numbers, work, free, stationary: Number.isFinite(value), method, notes: solution.notes });
+}
+
+function failure(p: Prepared): string {
+  const heldAr = p.held.some((v, i) => !Number.isNaN(v) && i < p.shape.ar.plain.length + p.shape.ar.seasonal.length);
+  return heldAr
+    ? "fit: the coefficients held on the autoregressive side are not stationary (a root lies on or inside the unit circle), so the model has no likelihood; hold smaller values, or difference the series"
+    : "fit: no stationary model of these orders could be evaluated for this series; try fewer lags, or difference it";
+}
+
+/** A moving-average factor wholly held at values with roots inside the unit circle: legal, with a likelihood of its own. */
+function heldOutside(p: Prepared): boolean {
+  return factors(p.shape).some(f => {
+    const c = p.held.subarray(f.from, f.from + f.lags.length);
+    return f.sign < 0 && f.lags.length > 0 && !c.some(Number.isNaN) && !isStable(f.lags, c, f.sign, true);
+  });
+}
+
+function finish(numbers: Numbers, work: Work, found: Estimate, evaluate: Evaluate, how: FitHow): Fit {
+  const { prepared } = numbers;
+  const notes: Note[] = [];
+  const { x, free } = found;
+  let edge = false;
+  for (const part of factors(prepared.shape)) {
+    const estimated = [...part.lags.keys()].some(i => Number.isNaN(prepared.held[part.from + i]));
+    if (estimated && moduli(part, x) < BOUNDARY) edge = true;
+  }
+  evaluate.value(x);
+  let information = null;
+  if (how.standardErrors !== false && !edge) {
+    information = informationAt(work, numbers.data, x, free, evaluate, found.hessian);
+    if (information.covariance === null) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: the information matrix is singular at the estimates, so some combination of the parameters is not determined by the data. Take fewer lags or regressors." });
+  } else if (how.standardErrors !== false) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: a root lies on the unit circle, the edge of the region, where the usual normal approximation does not hold." });
+  const solution: Solution = {
+    x, numbers, work, free, information, converged: found.converged, method: "exact", stationary: true, notes,
+    beta: work.beta.slice(numbers.data.gaps), logLikelihood: -found.value,
+  };
+  const result = assemble(solution);
+  return { ...result, notes: [...result.notes, ...flagsOf(result, solution)] };
+}
+
+function flagsOf(result: Fit, s: Solution): Note[] {
+  const { prepared } = s.numbers;
+  const names = s.numbers.kept.map(j => j < 0 ? "the mean" : prepared.names[j]);
+  const all = [...[...s.free].map(i => coefficientName(prepared, i)), ...names];
+  const covariance = s.information?.covariance ?? null;
+  let correlation: Float64Array | null = null;
+  if (covariance !== null) {
+    const m = all.length, k = s.free.length;
+    correlation = new Float64Array(m * m);
+    // Among regressors the basis is orthogonal by construction; their own correlations are read from report.ts if wanted.
+    for (let i = 0; i < m; i++) for (let j = 0; j < m; j++) if (i < k && j < k) correlation[i * m + j] = covariance[i * m + j] / Math.sqrt(covariance[i * m + i] * covariance[j * m + j]);
+  }
+  return flags({
+    prepared, x: s.x, converged: result.converged, n: result.n, k: parameterCount(prepared) - s.numbers.aliased.length, correlation, names: all,
+    aliased: s.numbers.aliased.map(j => j < 0 ? "mean" : prepared.names[j]), gaps: s.numbers.gaps.length, sigma2: result.sigma2, variance: s.numbers.unit ** 2,
+  });
+}
+
+/** "phi 1", "seasonal theta 2". */
+export function coefficientName(p: Prepared, at: number): string {
+  const words = ["phi", "seasonal phi", "theta", "seasonal theta"];
+  const parts = factors(p.shape);
+  const which = parts.findIndex(f => at < f.from + f.lags.length);
+  const lag = parts[which].lags[at - parts[which].from];
+  return `${words[which]} ${which % 2 === 1 ? lag / p.shape.season : lag}`;
+}
+
+export { modelName, type Series };

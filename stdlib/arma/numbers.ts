@@ -1,0 +1,210 @@
+// The estimation problem of a fit in numbers: scaled, centred, gaps as pulses, regressors as an orthogonal basis.
+
+import { leastSquares } from "../linear/leastSquares.ts";
+import { differencedBy, type Prepared } from "./prepare.ts";
+import type { Data } from "./likelihood.ts";
+
+export interface Numbers {
+  readonly prepared: Prepared;
+  /** Positions in the levels: first and one past the last observed. */
+  readonly from: number; readonly to: number;
+  /** Positions of missing levels in between. */
+  readonly gaps: readonly number[];
+  /** Observed levels less those used up by the differences. */
+  readonly n: number;
+  /** What the likelihood sees: divided by `unit`, least-squares fit removed. */
+  readonly data: Data;
+  /** The same with gaps bridged, for starting regressions. */
+  readonly bridged: Float64Array;
+  readonly unit: number;
+  /** Free columns in the order mean (-1), regressors by position; aliased ones left out. */
+  readonly kept: readonly number[];
+  readonly aliased: readonly number[];
+  /** Least-squares coefficients of the kept columns, and the basis: kept columns times `basis` are the data's columns. */
+  readonly ols: Float64Array;
+  readonly basis: Float64Array;
+  /** Levels between from and to less held parts, gaps NaN, in `unit`, and the kept columns in levels (mean: integrated). */
+  readonly levels: Float64Array;
+  readonly levelColumns: readonly Float64Array[];
+}
+
+/** Above this many gaps the filter is used: the pulses cost the square of their number. */
+export const MANY_GAPS = 40;
+
+/** @param filtered  the likelihood will be the filter's: no pulses
+ *  @throws RangeError where the data cannot answer, saying what is missing */
+export function numbersOf(prepared: Prepared, filtered = false): Numbers {
+  const { levels, delta, lost, shape } = prepared;
+  const name = levels.name || "the series";
+  const observed: number[] = [];
+  levels.values.forEach((v, t) => {
+    if (Number.isNaN(v)) return;
+    if (!Number.isFinite(v)) throw new RangeError(`fit: ${name} is ${v} at ${levels.times[t]}; only finite numbers and gaps can be modelled`);
+    observed.push(t);
+  });
+  if (observed.length === 0) throw new RangeError(`fit: every value of ${name} is missing${levels.n > 0 ? ` from ${levels.times[0]} to ${levels.times[levels.n - 1]}` : ""}; there is nothing to estimate from`);
+  const from = observed[0], to = observed[observed.length - 1] + 1, length = to - from;
+  const n = observed.length - lost;
+  const k = parameterCount(prepared);
+  if (n < 1 || length <= lost) throw new RangeError(`fit: ${name} has ${observed.length} observation${observed.length === 1 ? "" : "s"}, and the differences use up ${lost}; give a longer sample or difference less`);
+  if (k > 0 && n <= k) throw new RangeError(`fit: the model has ${k} parameters to estimate (variance counted) and ${name} leaves ${n} observation${n === 1 ? "" : "s"}${lost > 0 ? " after differencing" : ""}; more observations than parameters are needed. Take fewer lags${prepared.names.length > 0 ? " or regressors" : ""}, or a longer sample`);
+  if (shape.memory >= length && shape.count > 0) throw new RangeError(`fit: the longest lag of the model is ${shape.memory}, and ${name} has only ${length - lost} periods${lost > 0 ? " after differencing" : ""}; take shorter lags or a longer sample`);
+  const gaps: number[] = [];
+  for (let t = from; t < to; t++) if (Number.isNaN(levels.values[t])) gaps.push(t - from);
+  const raw = levels.values.slice(from, to);
+  const columnsAll = levelColumns(prepared, from, to);
+  subtractHeld(prepared, raw, columnsAll);
+  const bridgedLevels = bridge(raw);
+  const w = differencedBy(delta, bridgedLevels);
+  const clean = cleanRows(raw, delta);
+  refuseConstant(w, clean, prepared, name, levels.values.subarray(from, to));
+  const free = freeColumns(prepared);
+  const differenced = free.map(j => j < 0 ? new Float64Array(w.length).fill(1) : differencedBy(delta, columnsAll[j]));
+  const { ols, kept, aliased, rss } = firstRegression(w, differenced, clean, free);
+  const rows = Math.max(1, clean.length);
+  let total = 0;
+  for (const t of clean) total += w[t] ** 2;
+  if (kept.length > 0 && clean.length > kept.length && rss <= 1e-24 * total) throw new RangeError(`fit: ${prepared.names.length > 0 ? "the regressors explain" : "a constant explains"} ${name} exactly${lost > 0 ? " after differencing" : ""}; there is no randomness left to model`);
+  const unit = Math.sqrt(rss / rows) || 1;
+  const basis = orthogonalBasis(kept.map(i => differenced[i]), clean);
+  const columns = combined(kept.map(i => differenced[i]), basis);
+  const y = w.map((v, t) => { let sum = v; kept.forEach((i, c) => { sum -= ols[c] * differenced[i][t]; }); return sum / unit; });
+  const pulses = !filtered && gaps.length <= MANY_GAPS ? gaps.map(t => pulse(t, length, delta)) : [];
+  const data: Data = { n: y.length, y, columns: [...pulses, ...columns], gaps: pulses.length, sigma2: Number.isNaN(prepared.heldSigma2) ? null : prepared.heldSigma2 / unit ** 2 };
+  const meanLevels = integrated(delta, length);
+  const keptLevels = kept.map(i => free[i] < 0 ? meanLevels : columnsAll[free[i]]);
+  const scaled = raw.map((v, t) => { let sum = v; keptLevels.forEach((x, c) => { sum -= ols[c] * x[t]; }); return sum / unit; });
+  return {
+    prepared, from, to, gaps, n, data, bridged: y, unit, kept: kept.map(i => free[i]), aliased: aliased.map(i => free[i]), ols, basis,
+    levels: scaled, levelColumns: combined(keptLevels, basis),
+  };
+}
+
+/** Free parameters, the variance counted; aliased columns still counted. */
+export function parameterCount(p: Prepared): number {
+  return p.held.filter(Number.isNaN).length + freeColumns(p).length + (Number.isNaN(p.heldSigma2) ? 1 : 0);
+}
+
+function freeColumns(p: Prepared): number[] {
+  const out: number[] = [];
+  if (p.hasMean && Number.isNaN(p.heldMean)) out.push(-1);
+  p.heldBeta.forEach((v, j) => { if (Number.isNaN(v)) out.push(j); });
+  return out;
+}
+
+/** Regressors over from..to; a value that is missing where the series is too counts as 0 (the gap's pulse absorbs it). */
+function levelColumns(p: Prepared, from: number, to: number): Float64Array[] {
+  return p.columns.map(x => x.slice(from, to).map(v => Number.isNaN(v) ? 0 : v));
+}
+
+function subtractHeld(p: Prepared, levels: Float64Array, columns: readonly Float64Array[]): void {
+  p.heldBeta.forEach((beta, j) => { if (!Number.isNaN(beta)) for (let t = 0; t < levels.length; t++) levels[t] -= beta * columns[j][t]; });
+  if (p.hasMean && !Number.isNaN(p.heldMean)) {
+    const mean = integrated(p.delta, levels.length);
+    for (let t = 0; t < levels.length; t++) levels[t] -= p.heldMean * mean[t];
+  }
+}
+
+/** Levels whose differences are 1 throughout, and which start with zeros. */
+export function integrated(delta: Float64Array, length: number): Float64Array {
+  const z = new Float64Array(length);
+  for (let t = delta.length; t < length; t++) {
+    let sum = 1;
+    for (let i = 1; i <= delta.length; i++) if (delta[i - 1] !== 0) sum += delta[i - 1] * z[t - i];
+    z[t] = sum;
+  }
+  return z;
+}
+
+/** Straight lines across the gaps. */
+export function bridge(x: Float64Array): Float64Array {
+  const out = Float64Array.from(x);
+  for (let t = 0; t < out.length; t++) {
+    if (!Number.isNaN(out[t])) continue;
+    let end = t;
+    while (end < out.length && Number.isNaN(out[end])) end++;
+    const before = t > 0 ? out[t - 1] : end < out.length ? out[end] : 0, after = end < out.length ? out[end] : before;
+    for (let i = t; i < end; i++) out[i] = before + (after - before) * (i - t + 1) / (end - t + 1);
+    t = end;
+  }
+  return out;
+}
+
+/** Rows of the differences that no gap touches. */
+function cleanRows(raw: Float64Array, delta: Float64Array): number[] {
+  const w = differencedBy(delta, raw);
+  const rows: number[] = [];
+  w.forEach((v, t) => { if (!Number.isNaN(v)) rows.push(t); });
+  return rows;
+}
+
+function refuseConstant(w: Float64Array, clean: readonly number[], p: Prepared, name: string, levels: Float64Array): void {
+  if (clean.length === 0 || p.held.every(v => !Number.isNaN(v)) && !Number.isNaN(p.heldSigma2)) return;
+  let low = Infinity, high = -Infinity, size = 0;
+  for (const t of clean) { low = Math.min(low, w[t]); high = Math.max(high, w[t]); }
+  for (const v of levels) if (!Number.isNaN(v)) size = Math.max(size, Math.abs(v));
+  if (high - low > 4e-15 * size * (1 + p.lost)) return;
+  throw new RangeError(p.lost > 0
+    ? `fit: after differencing, ${name} is ${short((low + high) / 2)} throughout: the levels follow a fixed pattern exactly, and there is no variation left to model`
+    : `fit: ${name} is ${short(low)} throughout: a constant series has no variation to model`);
+}
+
+function short(v: number): string { return String(Number(v.toPrecision(6))); }
+
+function firstRegression(w: Float64Array, columns: readonly Float64Array[], clean: readonly number[], free: readonly number[]): { ols: Float64Array; kept: number[]; aliased: number[]; rss: number } {
+  const cols = columns.length;
+  let rss = 0;
+  if (cols === 0) {
+    if (clean.length > 0) for (const t of clean) rss += w[t] ** 2; else for (const v of w) rss += v * v;
+    return { ols: new Float64Array(0), kept: [], aliased: [], rss };
+  }
+  const rows = clean.length > cols ? clean : [...w.keys()];
+  const x = new Float64Array(rows.length * cols), y = Float64Array.from(rows, t => w[t]);
+  rows.forEach((t, i) => { for (let j = 0; j < cols; j++) x[i * cols + j] = columns[j][t]; });
+  const fit = leastSquares(x, y, rows.length, cols, 1e-9);
+  const kept = free.map((_, i) => i).filter(i => !fit.aliased.includes(i));
+  return { ols: Float64Array.from(kept, i => fit.beta[i]), kept, aliased: [...fit.aliased], rss: fit.rss };
+}
+
+/** Gram-Schmidt, twice for digits, over the clean rows: an upper triangular matrix, flat by rows. */
+function orthogonalBasis(columns: readonly Float64Array[], clean: readonly number[]): Float64Array {
+  const m = columns.length;
+  const basis = new Float64Array(m * m);
+  const q: Float64Array[] = [];
+  const rows = clean.length > m ? clean : columns.length > 0 ? [...columns[0].keys()] : [];
+  const product = (a: Float64Array, b: Float64Array) => { let sum = 0; for (const t of rows) sum += a[t] * b[t]; return sum; };
+  for (let j = 0; j < m; j++) {
+    const c = Float64Array.from(columns[j]);
+    const t = new Float64Array(m);
+    t[j] = 1;
+    for (let round = 0; round < 2; round++) {
+      for (let i = 0; i < j; i++) {
+        const share = product(q[i], c) / product(q[i], q[i]);
+        for (let s = 0; s < c.length; s++) c[s] -= share * q[i][s];
+        for (let s = 0; s <= i; s++) t[s] -= share * basis[s * m + i];
+      }
+    }
+    const size = Math.sqrt(product(c, c) / Math.max(1, rows.length)) || 1;
+    q.push(c.map(v => v / size));
+    for (let s = 0; s <= j; s++) basis[s * m + j] = t[s] / size;
+  }
+  return basis;
+}
+
+function combined(columns: readonly Float64Array[], basis: Float64Array): Float64Array[] {
+  const m = columns.length;
+  return columns.map((x, j) => {
+    const out = new Float64Array(x.length);
+    for (let i = 0; i <= j; i++) { const c = basis[i * m + j]; if (c !== 0) for (let t = 0; t < out.length; t++) out[t] += c * columns[i][t]; }
+    return out;
+  });
+}
+
+/** A level's unit pulse after the differences. */
+export function pulse(at: number, length: number, delta: Float64Array): Float64Array {
+  const lost = delta.length;
+  const out = new Float64Array(length - lost);
+  if (at >= lost) out[at - lost] = 1;
+  for (let i = 1; i <= lost; i++) if (delta[i - 1] !== 0 && at + i >= lost && at + i < length) out[at + i - lost] -= delta[i - 1];
+  return out;
+}

@@ -1,0 +1,148 @@
+// From the search's numbers to the Fit an analyst reads: units back, names, criteria, residuals, roots.
+
+import { makeSeries } from "../series/series.ts";
+import { denseFactor, factors } from "./estimate.ts";
+import { filterLevels } from "./filter.ts";
+import type { Information } from "./information.ts";
+import { levelModel } from "./levelModel.ts";
+import type { Work } from "./likelihood.ts";
+import type { Fit, Method, Note, Root, StandardErrors } from "./model.ts";
+import { modelName } from "./modelName.ts";
+import { parameterCount, type Numbers } from "./numbers.ts";
+import { roots } from "./roots.ts";
+
+export interface Solution {
+  readonly numbers: Numbers;
+  readonly work: Work;
+  /** phi, Phi, theta, Theta. */
+  readonly x: Float64Array;
+  readonly free: Int32Array;
+  /** Coefficients of the data's columns after the gaps (basis, scaled). */
+  readonly beta: Float64Array;
+  /** In the scaled unit; left out: from the work at x. */
+  readonly sigma2?: number;
+  /** Of the scaled series; left out: the exact one at x and sigma2. */
+  readonly logLikelihood?: number;
+  readonly information: Information | null;
+  readonly converged: boolean;
+  readonly stationary: boolean;
+  readonly method: Method;
+  readonly notes: readonly Note[];
+}
+
+export function assemble(s: Solution): Fit {
+  const { numbers, work } = s;
+  const { prepared, unit, n } = numbers;
+  const p = prepared;
+  const regression = regressionPart(s);
+  const sigma2Used = s.sigma2 ?? work.sigma2;
+  const sigma2 = sigma2Used * unit ** 2;
+  const value = s.logLikelihood ?? (s.stationary ? -0.5 * (n * Math.log(2 * Math.PI * sigma2Used) + work.logDet + work.sum / sigma2Used) : NaN);
+  const logLikelihood = value - n * Math.log(unit);
+  const k = parameterCount(p) - numbers.aliased.length;
+  const phi = dense(s, 0), seasonalPhi = dense(s, 1), theta = dense(s, 2), seasonalTheta = dense(s, 3);
+  const mean = regression.mean;
+  const errors = (covariance: Float64Array | null) => standardErrors(s, covariance, unit);
+  return {
+    label: p.options.label ?? modelName(p.options), phi, theta, seasonalPhi, seasonalTheta, seasonLength: p.seasonLength,
+    mean, constant: mean * (1 - total(phi)) * (1 - total(seasonalPhi)), beta: regression.beta,
+    se: errors(s.information?.covariance ?? null), seRobust: errors(s.information?.robust ?? null),
+    sigma2, logLikelihood, ...criteria(logLikelihood, k, n), k, n,
+    residuals: residualSeries(s), roots: { ar: factorRoots(s, 0, 1), ma: factorRoots(s, 2, 3) },
+    converged: s.converged, notes: s.notes, method: s.method, series: p.series, options: p.options,
+  };
+}
+
+/** AIC = -2 l + 2 k, AICc with k counting the variance, BIC with n after differencing. */
+export function criteria(logLikelihood: number, k: number, n: number): { aic: number; aicc: number; bic: number } {
+  const aic = -2 * logLikelihood + 2 * k;
+  return { aic, aicc: n > k + 1 ? aic + 2 * k * (k + 1) / (n - k - 1) : NaN, bic: -2 * logLikelihood + k * Math.log(n) };
+}
+
+function total(c: Float64Array): number { let sum = 0; for (const v of c) sum += v; return sum; }
+
+/** Coefficients of one factor, dense by its own lags. */
+function dense(s: Solution, which: number): Float64Array {
+  const f = factors(s.numbers.prepared.shape)[which];
+  const step = which % 2 === 1 ? s.numbers.prepared.shape.season : 1;
+  const out = new Float64Array(f.lags.length > 0 ? f.lags[f.lags.length - 1] / step : 0);
+  f.lags.forEach((lag, i) => { out[lag / step - 1] = s.x[f.from + i]; });
+  return out;
+}
+
+function factorRoots(s: Solution, plain: number, seasonal: number): Root[] {
+  const parts = factors(s.numbers.prepared.shape);
+  const found = [plain, seasonal].flatMap(i => {
+    const f = parts[i];
+    if (f.lags.length === 0) return [];
+    const c = denseFactor(f, s.x);
+    const step = f.lags.every(l => l % f.lags[0] === 0) ? f.lags[0] : 1;
+    const full = new Float64Array(c.length * step);
+    c.forEach((v, k) => { full[(k + 1) * step - 1] = v; });
+    return roots(full);
+  });
+  return found.sort((a, b) => a.modulus - b.modulus || b.im - a.im);
+}
+
+/** Coefficients of the kept columns in the data's units: least squares plus basis times what the likelihood added. */
+function regressionPart(s: Solution): { mean: number; beta: Record<string, number> } {
+  const { numbers, beta: b } = s;
+  const { prepared: p, ols, basis, unit, kept } = numbers;
+  const m = kept.length;
+  const scaled = new Float64Array(m);
+  for (let i = 0; i < m; i++) {
+    let sum = 0;
+    for (let j = i; j < m; j++) sum += basis[i * m + j] * b[j];
+    scaled[i] = sum;
+  }
+  const beta: Record<string, number> = {};
+  p.names.forEach((name, j) => { beta[name] = Number.isNaN(p.heldBeta[j]) ? 0 : p.heldBeta[j]; });
+  let mean = p.hasMean && !Number.isNaN(p.heldMean) ? p.heldMean : 0;
+  kept.forEach((j, i) => {
+    const v = ols[i] + unit * scaled[i];
+    if (j < 0) mean = v; else beta[p.names[j]] = v;
+  });
+  return { mean, beta };
+}
+
+function standardErrors(s: Solution, covariance: Float64Array | null, unit: number): StandardErrors {
+  const { numbers, free, information } = s;
+  const { prepared: p, basis, kept } = numbers;
+  const k = free.length, m = kept.length, size = information?.size ?? 0;
+  const root = (v: number) => v > 0 && Number.isFinite(v) ? Math.sqrt(v) : NaN;
+  const byCoefficient = new Float64Array(s.x.length).fill(NaN);
+  if (covariance !== null) free.forEach((at, i) => { byCoefficient[at] = root(covariance[i * size + i]); });
+  const parts = factors(p.shape);
+  const shaped = (which: number) => {
+    const f = parts[which], step = which % 2 === 1 ? p.shape.season : 1;
+    const out = new Float64Array(f.lags.length > 0 ? f.lags[f.lags.length - 1] / step : 0).fill(NaN);
+    f.lags.forEach((lag, i) => { out[lag / step - 1] = byCoefficient[f.from + i]; });
+    return out;
+  };
+  const beta: Record<string, number> = {};
+  for (const name of p.names) beta[name] = NaN;
+  let mean = NaN;
+  kept.forEach((j, i) => {
+    if (covariance === null) return;
+    let variance = 0;
+    for (let a = i; a < m; a++) for (let b = i; b < m; b++) variance += basis[i * m + a] * covariance[(k + a) * size + k + b] * basis[i * m + b];
+    const se = unit * root(variance);
+    if (j < 0) mean = se; else beta[p.names[j]] = se;
+  });
+  return { phi: shaped(0), seasonalPhi: shaped(1), theta: shaped(2), seasonalTheta: shaped(3), mean, beta };
+}
+
+/** One-step errors over the root of their relative variance, at the times of the fitted series. */
+function residualSeries(s: Solution): Fit["residuals"] {
+  const { numbers } = s;
+  const { prepared: p, from, levels, levelColumns, unit } = numbers;
+  const values = new Float64Array(p.series.n).fill(NaN);
+  const model = s.stationary ? levelModel(p.shape, s.x, p.delta) : null;
+  const beta = s.beta;
+  const series = levels.map((v, t) => { let sum = v; for (let j = 0; j < beta.length; j++) sum -= beta[j] * levelColumns[j][t]; return sum; });
+  if (model !== null) {
+    const { v, f } = filterLevels(model, [series]);
+    for (let t = p.lost; t < series.length; t++) values[from + t - p.lost] = v[0][t] / Math.sqrt(f[t]) * unit;
+  }
+  return makeSeries({ name: "residuals", unit: p.series.unit, every: p.series.every, start: p.series.start, times: p.series.times, values });
+}
