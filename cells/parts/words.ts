@@ -22,8 +22,8 @@ export function decimals(value: number, count: number): string {
 /** "p = 0.031", "p < 0.01" where the table ends. */
 export function pText(p: number, bound?: "below" | "above"): string {
   if (Number.isNaN(p)) return "no p-value";
-  if (bound === "below") return `p < ${figure(p, 2)}`;
-  if (bound === "above") return `p > ${figure(p, 2)}`;
+  if (bound === "below") return `p < ${Number(p.toPrecision(3))}`;
+  if (bound === "above") return `p > ${p.toFixed(2)}`;
   if (p < 0.001) return "p < 0.001";
   return `p = ${p < 0.1 ? figure(p, 2) : decimals(p, 2)}`;
 }

@@ -1,0 +1,95 @@
+// What the stationarity tests show: what they say together, each null hypothesis in words, the statistics on one line,
+// and what differencing would change.
+
+import { timesMs, type Series, type Stationarity, type Test } from "../../stdlib/index.ts";
+import { panelChart } from "./panelChart.ts";
+import type { Part, TablePart, TextPart } from "./part.ts";
+import { ratioChart, type RatioRow } from "./ratioChart.ts";
+import { percent, pText } from "./words.ts";
+
+type Shown = Stationarity & { readonly of: string; readonly axis: string; readonly series: Series; readonly level: number };
+
+/** Pictures of differences beyond these are in the table only. */
+const mostPanels = 6;
+
+interface NamedTest { readonly name: string; readonly test: Test }
+
+export function stationarityParts(result: Shown, width: number): readonly Part[] {
+  const tests = testsOf(result);
+  return [
+    { part: "text", text: result.together },
+    ratioPart(tests),
+    testTable(tests, result.level),
+    ...differenceParts(result, width),
+    ...strengthText(result),
+    ...notesOf(result, tests),
+  ];
+}
+
+function strengthText(result: Shown): readonly TextPart[] {
+  return result.strength === null ? [] : [{ part: "text", text: result.strength.sentence }];
+}
+
+function testsOf(result: Shown): readonly NamedTest[] {
+  const named: readonly (readonly [string, Test | null | undefined])[] = [
+    ["augmented Dickey-Fuller", result.adf], ["Phillips-Perron", result.phillipsPerron], ["DF-GLS", result.dfGls], ["KPSS", result.kpss], ["Canova-Hansen (season)", result.seasonal],
+  ];
+  return named.flatMap(([name, test]) => test === null || test === undefined ? [] : [{ name, test }]);
+}
+
+function ratioPart(tests: readonly NamedTest[]): Part {
+  const rows: RatioRow[] = tests.flatMap(({ name, test }) => test.status === "unavailable" || test.critical === undefined ? [] : [{ label: name, statistic: test.statistic, critical: test.critical }]);
+  const beyond = rows.filter(row => row.statistic / row.critical["5%"] > 1).map(row => row.label);
+  return ratioChart("Each statistic against its own critical values", `Right of 1 a test rejects its null hypothesis at 5%: ${beyond.length === 0 ? "none does" : `${beyond.join(", ")} ${beyond.length === 1 ? "does" : "do"}`}.`, rows);
+}
+
+function testTable(tests: readonly NamedTest[], level: number): TablePart {
+  return {
+    part: "table", title: "Test by test",
+    columns: [{ title: "test" }, { title: "null hypothesis" }, { title: "statistic", align: "right", format: ".3f" }, { title: "p", align: "right" }, { title: "lags, and how chosen" }, { title: `reading at ${percent(level)}` }],
+    rows: tests.map(({ name, test }) => [
+      name, test.nullHypothesis, test.statistic, test.status === "unavailable" ? "–" : pText(test.p, test.bound).replace(/^p (= )?/, ""),
+      test.lags === undefined ? "" : `${test.lags}${test.lagRule ? ` (${test.lagRule})` : ""}`, reading(test, level),
+    ]),
+    note: "The first three take a unit root as given until the data speak against it; KPSS takes stationarity as given. A null hypothesis that is not rejected is not thereby shown to be true.",
+  };
+}
+
+function reading(test: Test, level: number): string {
+  if (test.status === "unavailable" || Number.isNaN(test.p)) return `cannot be said: ${test.note ?? "no p-value"}`;
+  return test.p < 1 - level ? "rejected" : "not rejected";
+}
+
+function notesOf(result: Shown, tests: readonly NamedTest[]): readonly TextPart[] {
+  const own = tests.filter(({ test }) => test.note !== undefined && test.status !== "unavailable").map(({ name, test }) => `${name}: ${test.note}.`);
+  return [...result.notes, ...own.filter(text => !result.notes.some(note => text.endsWith(note)))].map(text => ({ part: "text", tone: "note", text }));
+}
+
+/** Differences tried side by side: the picture, the figures, and which shows the sign of one too many. */
+function differenceParts(result: Shown, width: number): readonly Part[] {
+  const rows = result.differences;
+  if (rows.length === 0) return [];
+  const least = rows.reduce((best, row, i) => row.variance < rows[best].variance ? i : best, 0);
+  const ms = timesMs(result.series);
+  return [
+    { part: "text", text: result.differencesSentence },
+    panelChart({
+      title: "Differences side by side", alt: result.differencesSentence, dated: result.series.every !== null, width,
+      panels: rows.slice(0, mostPanels).map(row => ({ title: row.lags.length === 0 ? `${result.axis}, undifferenced` : `differenced at lag${row.lags.length > 1 ? "s" : ""} ${row.label}`, time: ms.slice(ms.length - row.values.length), value: row.values })),
+    }),
+    {
+      part: "table", title: "What differencing would change",
+      columns: [
+        { title: "differences at lags" }, { title: "variance", align: "right", format: ",.3~r" }, { title: "autocorrelation at lag 1", align: "right", format: ".2f" },
+        { title: "ADF, a unit root", align: "right" }, { title: "KPSS, stationary", align: "right" }, { title: "one too many?" },
+      ],
+      rows: rows.map(row => [row.label, row.variance, row.lag1, testText(row.adf), testText(row.kpss), row.overDifferenced ?? "no sign"]),
+      marked: [{ row: least, word: "least variance" }],
+      note: "p-values of the tests of each differenced series; the column names the null hypothesis.",
+    },
+  ];
+}
+
+function testText(test: Test): string {
+  return test.status === "unavailable" ? "–" : pText(test.p, test.bound);
+}

@@ -1,0 +1,80 @@
+import { readFileSync } from "node:fs";
+import { describe, expect, test } from "vitest";
+import { checkOptions } from "../../cells/check.ts";
+import { stationarity } from "../../cells/stationarity.ts";
+import type { ChartPart, Part, TablePart, TextPart } from "../../cells/parts/part.ts";
+import { makeSeries } from "../../stdlib/index.ts";
+import { drawnCharts } from "./drawn.ts";
+import { madeContext } from "./madeContext.ts";
+import { madeSeries, stepped } from "./made.ts";
+
+const show = { name: "roots", width: 640 };
+const texts = (parts: readonly Part[]): string => parts.filter((p): p is TextPart => p.part === "text").map(p => p.text).join(" ");
+const run = async (options: Record<string, unknown>) => stationarity.run(checkOptions(stationarity, options) as never, madeContext());
+const numbered = (values: readonly number[]) => makeSeries({ name: "short", values: Float64Array.from(values) });
+const column = (file: string) => readFileSync(new URL(`../reference/series/${file}.csv`, import.meta.url), "utf8").trim().split("\n").slice(1).map(line => Number(line.split(",").at(-1)));
+
+interface Case { id: string; series: string; transform: unknown[]; what: string; inputs: Record<string, unknown>; expected: Record<string, never> }
+const cases = JSON.parse(readFileSync(new URL("../reference/expected/unitroot.json", import.meta.url), "utf8")) as Case[];
+
+describe("stationarity", () => {
+  test("gives the augmented Dickey-Fuller statistics of the Nile at the reference's own lags", async () => {
+    const nile = numbered(column("nile"));
+    const wanted = cases.filter(one => one.series === "nile" && one.transform.length === 0);
+    const adfs = wanted.filter(one => one.what === "adf" && typeof one.inputs.lags === "number");
+    expect(adfs.length).toBeGreaterThan(0);
+    for (const one of adfs) {
+      const trend = ({ n: "none", c: "constant", ct: "linear", ctt: "quadratic" } as Record<string, string>)[String(one.inputs.trend ?? one.inputs.regression)];
+      const { adf } = await run({ series: nile, lags: one.inputs.lags, ...(trend === undefined ? {} : { trend }) });
+      expect(adf.statistic).toBeCloseTo(one.expected.statistic, 8);
+    }
+  });
+  test("names each null hypothesis, the lags and how they were chosen", async () => {
+    const parts = stationarity.show(await run({ series: numbered(column("nile")) }), show);
+    const table = parts.find((p): p is TablePart => p.part === "table")!;
+    expect(table.rows.map(row => row[0])).toEqual(["augmented Dickey-Fuller", "Phillips-Perron", "DF-GLS", "KPSS"]);
+    expect(table.rows[0][1]).toBe("a unit root: shocks never die out");
+    expect(table.rows[3][1]).toBe("stationary around a constant");
+    expect(table.rows[0][4]).toMatch(/^\d+ \(least AIC among 0 to \d+, on one sample\)$/);
+    expect(parts[0].part).toBe("text");
+  });
+  test("prints a bound where the table of KPSS ends", async () => {
+    const walk = numbered(column("sim_rw"));
+    const parts = stationarity.show(await run({ series: walk }), show);
+    const table = parts.find((p): p is TablePart => p.part === "table")!;
+    expect(table.rows[3][3]).toBe("< 0.01");
+    expect(texts(parts)).toMatch(/KPSS rejects stationarity/);
+  });
+  test("draws the statistics on one line against their critical values, and the differences side by side", async () => {
+    const series = stepped(madeSeries(), [{ step: "log" }]);
+    const result = await run({ series });
+    const parts = stationarity.show(result, show);
+    const charts = parts.filter((p): p is ChartPart => p.part === "chart");
+    expect(charts.map(p => p.title)).toEqual(["Each statistic against its own critical values", "Differences side by side"]);
+    expect(charts[0].alt).toMatch(/^Right of 1 a test rejects its null hypothesis at 5%: /);
+    const svgs = await drawnCharts(parts);
+    expect(svgs[1]).toContain("differenced at lags 1 and 12");
+    expect(result.seasonal).not.toBeNull();
+    expect(texts(parts)).toContain(result.together);
+  });
+  test("shows no number where a test could not be run", async () => {
+    const parts = stationarity.show(await run({ series: numbered([1, 3, 2, 5, 4, 6, 3]) }), show);
+    expect(JSON.stringify(parts.filter(p => p.part === "text"))).not.toMatch(/NaN|undefined/);
+    await drawnCharts(parts);
+  });
+});
+
+describe("stationarity refuses, in words for its author,", () => {
+  test("a constant series", async () => {
+    await expect(run({ series: numbered(Array.from({ length: 30 }, () => 2)) })).rejects.toThrow("short is constant");
+  });
+  test("a series that is too short", async () => {
+    await expect(run({ series: numbered([1, 2, 3]) })).rejects.toThrow("short has 3 observations; a unit-root test needs at least 6");
+  });
+  test("more lags than the data can carry", async () => {
+    await expect(run({ series: madeSeries(), lags: 50 })).rejects.toThrow(/lags is 50: with 72 values the regression would have more lags than data/);
+  });
+  test("a trend that is none of the four", async () => {
+    await expect(run({ series: madeSeries(), trend: "cubic" })).rejects.toThrow(/trend.*"quadratic"/);
+  });
+});
