@@ -1,6 +1,6 @@
 // The same model estimated again on series simulated from it: what else the parameters might have been.
 
-import { expandedPolynomials } from "../arma/expandedPolynomials.ts";
+import { expandedPolynomials } from "../arma/coefficients.ts";
 import { fitAt } from "../arma/fitAt.ts";
 import type { Fit } from "../arma/model.ts";
 import { makeSeries, type Series } from "../series/series.ts";

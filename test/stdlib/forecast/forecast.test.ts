@@ -12,9 +12,9 @@ interface Model { arLags: number[]; d: number; maLags: number[]; constant: boole
 interface Inputs { model: Model; horizon: number; backTransform?: "log"; params?: { ar?: number[]; ma?: number[]; sar?: number[]; sma?: number[]; constant?: number; beta?: number[]; sigma2: number } }
 type Out = Readonly<Record<string, number[]>>;
 
-const dense = (lags: readonly number[], values: readonly number[] | undefined, by = 1): Held[] => {
-  const out: Held[] = new Array<Held>(Math.max(0, ...lags) / by).fill(0);
-  lags.forEach((lag, i) => { out[lag / by - 1] = values?.[i] ?? "free"; });
+const dense = (lags: readonly number[], values: readonly number[] | undefined): Held[] => {
+  const out: Held[] = new Array<Held>(Math.max(0, ...lags)).fill(0);
+  lags.forEach((lag, i) => { out[lag - 1] = values?.[i] ?? "free"; });
   return out;
 };
 
@@ -28,9 +28,9 @@ function question(c: Case<Inputs, Out>): FitOptions {
   model.regressors?.forEach((r, i) => { regressors[`x${i}`] = regressor(r, values.length, c.inputs.horizon); });
   return {
     series, ar: model.arLags, ma: model.maLags, mean: model.constant, regressors,
-    ...(s ? { season: { length: period, ar: s.arLags.map((l) => l / period), ma: s.maLags.map((l) => l / period) } } : {}),
+    ...(s ? { season: { length: period, ar: s.arLags, ma: s.maLags } } : {}),
     ...(params ? { hold: {
-      phi: dense(model.arLags, params.ar), theta: dense(model.maLags, params.ma), seasonalPhi: dense(s?.arLags ?? [], params.sar, period), seasonalTheta: dense(s?.maLags ?? [], params.sma, period),
+      phi: dense(model.arLags, params.ar), theta: dense(model.maLags, params.ma), seasonalPhi: dense(s?.arLags ?? [], params.sar), seasonalTheta: dense(s?.maLags ?? [], params.sma),
       sigma2: params.sigma2, ...(params.constant === undefined || !model.constant ? {} : { mean: params.constant }), beta: Object.fromEntries((params.beta ?? []).map((b, i) => [`x${i}`, b])),
     } } : {}),
   };
