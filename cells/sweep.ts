@@ -49,7 +49,7 @@ export const sweep: Kind<SweepCell, Sweep> = {
 
 export async function runSweep(options: SweepCell, context: RunContext): Promise<Sweep> {
   const { over } = options;
-  const expression = context.source.measure;
+  const expression = context.source.measure ?? (typeof options.measure === "string" ? options.measure : undefined);
   if (expression === undefined || expression.trim() === "") throw new OptionError("measure", "measure needs an expression to compute for each value, such as airline.aicc");
   const control = context.control(over);
   const values = options.values ?? control.values;

@@ -33,7 +33,7 @@ export function fitParts(fit: Fit): readonly Part[] {
       part: "figures", figures: [
         { label: "log-likelihood", value: fit.logLikelihood, format: ",.2f" },
         { label: "AICc", value: fit.aicc, format: ",.2f" }, { label: "AIC", value: fit.aic, format: ",.2f" }, { label: "BIC", value: fit.bic, format: ",.2f" },
-        { label: "typical one-step error", value: Math.sqrt(fit.sigma2), format: ",.4~g" },
+        { label: "typical one-step error", value: Math.sqrt(fit.sigma2), format: ",.4~r" },
         { label: "free parameters", value: fit.k, format: "d" }, { label: "observations", value: fit.n, format: ",d" },
       ],
     },
@@ -128,10 +128,10 @@ function coefficientTable(coefficients: readonly Coefficient[]): TablePart {
   return {
     part: "table", title: "What was estimated, and how closely",
     columns: [
-      { title: "coefficient" }, { title: "value", align: "right", format: ",.4~g" },
-      { title: "from", align: "right", format: ",.3~g" }, { title: "to", align: "right", format: ",.3~g" },
-      { title: "give or take", align: "right", format: ",.3~g" },
-      ...(robust ? [{ title: "the same, robust", align: "right" as const, format: ",.3~g" }] : []),
+      { title: "coefficient" }, { title: "value", align: "right", format: ",.4~r" },
+      { title: "from", align: "right", format: ",.3~r" }, { title: "to", align: "right", format: ",.3~r" },
+      { title: "give or take", align: "right", format: ",.3~r" },
+      ...(robust ? [{ title: "the same, robust", align: "right" as const, format: ",.3~r" }] : []),
       { title: "reading" },
     ],
     rows: coefficients.map(c => {

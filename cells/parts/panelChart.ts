@@ -28,7 +28,7 @@ export function panelChart(given: { readonly title: string; readonly alt: string
     const top = i * (1 + gap) * share;
     const y = {
       field: "value", type: "quantitative", title: null, scale: { range: [{ expr: `height * ${top + share}` }, { expr: `height * ${top}` }], zero: false, nice: true },
-      axis: { orient: "left", tickCount: 2, grid: false, minExtent: 40 },
+      axis: { orient: "left", tickCount: 3, grid: false, minExtent: 40 },
     };
     return {
       layer: [

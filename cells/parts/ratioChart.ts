@@ -15,7 +15,7 @@ export function ratioChart(title: string, alt: string, rows: readonly RatioRow[]
   const usable = rows.filter(row => Number.isFinite(row.critical["5%"]) && Number.isFinite(row.statistic));
   const ratio = (row: RatioRow, value: number): number => value / row.critical["5%"];
   const ticks = usable.flatMap(row => ["10%", "5%", "1%"].filter(level => Number.isFinite(row.critical[level])).map(level => ({ label: row.label, at: ratio(row, row.critical[level]), level })));
-  const y = { field: "label", type: "nominal", sort: null, axis: { title: null, ticks: false, domain: false, labelLimit: 150 } };
+  const y = { field: "label", type: "nominal", sort: null, axis: { title: null, ticks: false, domain: false, labelLimit: 170 } };
   const x = (field: string): Record<string, unknown> => ({ field, type: "quantitative", title: "statistic ÷ its 5% critical value", scale: { zero: true, nice: false, padding: 34 }, axis: { grid: false } });
   return {
     part: "chart", title, alt, height: 60 + 40 * usable.length,

@@ -81,7 +81,7 @@ function tableOf(sweep: Swept): TablePart {
   return {
     part: "table", title: `Recomputed for each value of ${sweep.over}`,
     columns: [
-      { title: sweep.over }, ...sweep.measures.map(measure => ({ title: measure, align: "right" as const, format: ",.5~g" })),
+      { title: sweep.over }, ...sweep.measures.map(measure => ({ title: measure, align: "right" as const, format: ",.5~r" })),
       ...(remarks ? [{ title: "remark" }] : []),
     ],
     rows: sweep.rows.map(row => [

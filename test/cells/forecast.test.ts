@@ -1,5 +1,6 @@
 import { describe, expect, test } from "vitest";
-import { forecast, needForecaster } from "../../cells/forecast.ts";
+import { forecast } from "../../cells/forecast.ts";
+import { needForecaster } from "../../cells/parts/forecaster.ts";
 import { checkOptions } from "../../cells/check.ts";
 import type { ChartPart, TablePart, TextPart } from "../../cells/parts/part.ts";
 import { cut, fit as estimate, rule } from "../../stdlib/index.ts";

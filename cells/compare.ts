@@ -1,0 +1,174 @@
+// The kind that ranks models: a grid of orders by a criterion, or fits and rules by their errors at held-out origins.
+
+import { gridOfOrders, rankFits, rollingOrigins, type Fit, type Forecaster, type Grid, type Lags, type Regressor, type Series } from "../stdlib/index.ts";
+import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
+import { compareParts, type Comparison } from "./parts/compareParts.ts";
+import { labelledModels } from "./parts/labelledModels.ts";
+import { asOptionError, highestLag, needVaryingSeries } from "./parts/needs.ts";
+import { usualHorizon, usualOrigins } from "./parts/origins.ts";
+
+type Tried = number | readonly Lags[];
+interface SeasonTried { readonly length?: number; readonly ar?: Tried; readonly ma?: Tried }
+
+export interface CompareCell {
+  readonly series?: unknown;
+  readonly ar?: Tried;
+  readonly ma?: Tried;
+  readonly season?: number | SeasonTried | readonly (SeasonTried | null | 0)[];
+  readonly mean?: boolean;
+  readonly regressors?: Readonly<Record<string, Regressor>>;
+  readonly models?: unknown;
+  readonly rank?: string;
+  readonly origins?: number;
+  readonly horizon?: number;
+  readonly training?: "expanding" | "sliding";
+  readonly refit?: boolean | number;
+  readonly window?: { readonly from?: string; readonly to?: string };
+  readonly levels?: readonly number[];
+  readonly loss?: "absolute" | "squared";
+  readonly data?: Series;
+}
+
+const criteria = ["aic", "aicc", "bic"] as const;
+const errors = ["mase", "mae", "rmse", "rmsse", "mape", "smape", "crps", "pinball"] as const;
+type Criterion = (typeof criteria)[number];
+type ErrorMeasure = (typeof errors)[number];
+
+/** Models of a grid that go on to held-out origins, where it is ranked by errors. */
+const mostFromGrid = 12;
+
+export const compareOptions: OptionTable = {
+  series: { type: "series", sentence: "For a grid of orders: the series that every order is fitted to.", example: "steady" },
+  ar: { type: "any", default: 0, sentence: "For a grid: a number n tries 0 to n autoregressive lags; a list tries each of its items.", example: "2" },
+  ma: { type: "any", default: 0, sentence: "For a grid: a number n tries 0 to n moving-average lags; a list tries each of its items.", example: "2" },
+  season: { type: "any", sentence: "For a grid: seasonal orders as {length, ar, ma}, each tried like ar and ma; a number n tries 0 to n of both; a list tries each of its items.", example: "{ar: 1, ma: 1}" },
+  mean: { type: "boolean", sentence: "For a grid: whether the models have a mean; as in fit unless given." },
+  regressors: { type: "object", sentence: "For a grid: regressors by name, as in fit." },
+  models: { type: "any", sentence: "Fits and rules to compare, as {label: model} or a list; all of one loaded series.", example: "[airline, rule.naive(crossings)]" },
+  rank: { type: { oneOf: [...criteria, ...errors] }, sentence: "What ranks: an information criterion (aicc unless given, for a grid) or an error at held-out origins (mase unless given, for models)." },
+  origins: { type: "integer", min: 1, max: 2000, sentence: "How many last origins to forecast from, one period apart; a quarter of the data, at most 36, unless given." },
+  horizon: { type: "integer", min: 1, max: 1000, sentence: "How many periods ahead of each origin; a season, at most 12, unless given." },
+  training: { type: { oneOf: ["expanding", "sliding"] }, default: "expanding", sentence: "What a model sees at an origin: all data up to it, or as many periods as the first origin had." },
+  refit: { type: { anyOf: ["boolean", "integer"] }, default: true, min: 1, sentence: "Whether to estimate again at every origin; a number estimates again at every so many." },
+  window: { type: "window", sentence: "Bounds of the data that are used, both ends included." },
+  levels: { type: { listOf: "level" }, default: [0.5, 0.9], sentence: "Confidence of the bands whose coverage is counted." },
+  loss: { type: { oneOf: ["absolute", "squared"] }, default: "absolute", sentence: "Loss of the tests between two models." },
+  data: { type: "series", sentence: "The whole loaded series, where the models were made from a part of it: origins are then taken from its end." },
+};
+
+/** Ranks models, and says when the best is no better than a naive rule. */
+export const compare: Kind<CompareCell, Comparison> = {
+  name: "compare",
+  sentence: "Ranks models: a grid of orders by a criterion, or fits and rules by their errors at held-out origins.",
+  options: compareOptions,
+  body: "options",
+  callable: true,
+  example: "models: [airline, rule.seasonalNaive(crossings)]\norigins: 24\nhorizon: 12",
+  run: (options, context) => runCompare(options, context),
+  show: result => compareParts(result),
+};
+
+export async function runCompare(options: CompareCell, context: RunContext): Promise<Comparison> {
+  const given = Object.fromEntries(Object.entries(options).filter(([, value]) => value !== null && value !== undefined)) as CompareCell;
+  try {
+    if (given.models !== undefined) return await compareModels(given, context);
+    if (given.series !== undefined) return await compareOrders(given, context);
+  } catch (error) {
+    throw asOptionError(error);
+  }
+  throw new OptionError(null, "compare needs either `models` (fits and rules) or `series` with orders to try, such as ar: 2 and ma: 2");
+}
+
+async function compareModels(options: CompareCell, context: RunContext): Promise<Comparison> {
+  if (options.series !== undefined) throw new OptionError("series", "compare takes either `models` or a grid over `series`, not both; leave one of them out");
+  const models = labelledModels(options.models, context.source.models);
+  const { rank = "mase" } = options;
+  if (isCriterion(rank)) {
+    const rule = models.find(({ model }) => "rule" in model);
+    if (rule !== undefined) throw new OptionError("rank", `${rule.label} is a rule and has no likelihood, so ${rank} cannot rank it; rank by an error at held-out origins, such as mase`);
+    return asCriterion(rankFits(Object.fromEntries(models.map(({ label, model }) => [label, model as Fit])), rank));
+  }
+  return evaluated(models, rank as ErrorMeasure, options, context);
+}
+
+async function compareOrders(options: CompareCell, context: RunContext): Promise<Comparison> {
+  const series = needVaryingSeries(options.series, 8, "a grid of orders");
+  checkTried(options.ar, "ar");
+  checkTried(options.ma, "ma");
+  const { rank = "aicc" } = options;
+  const grid = await gridOf(options, series, isCriterion(rank) ? rank : "aicc", context);
+  if (isCriterion(rank)) return asCriterion(grid);
+  if (grid.best === null) throw new OptionError(null, `none of ${grid.asked} orders could be estimated; the first said: ${grid.failures[0]?.reason ?? "nothing"}`);
+  const kept = grid.models.slice(0, mostFromGrid);
+  if (grid.models.length > kept.length) context.note(`The ${kept.length} orders of smallest AICc went on to the held-out origins, of ${grid.models.length} that could be estimated. The criterion saw the held-out data when it chose them.`);
+  return evaluated(kept.map(row => ({ label: row.label, model: row.fit })), rank as ErrorMeasure, options, context);
+}
+
+/** A list of seasons is several grids, ranked together. */
+async function gridOf(options: CompareCell, series: Series, rank: Criterion, context: RunContext): Promise<Grid> {
+  const { ar, ma, mean, regressors, window } = options;
+  const common = { series, ar, ma, rank, ...(mean === undefined ? {} : { mean }), ...(regressors === undefined ? {} : { regressors }), ...(window === undefined ? {} : { window }) };
+  const seasons = seasonsOf(options.season);
+  const grids: Grid[] = [];
+  for (const season of seasons) {
+    grids.push(await gridOfOrders({ ...common, ...(season === null ? {} : { season }) }, {
+      progress: (done, total, what) => { context.progress(grids.length * total + done, seasons.length * total, what); }, breathe: () => context.breathe(),
+    }));
+  }
+  return grids.length === 1 ? grids[0] : merged(grids, rank);
+}
+
+function merged(grids: readonly Grid[], rank: Criterion): Grid {
+  const failures = grids.flatMap(grid => grid.failures);
+  const fits = new Map(grids.flatMap(grid => grid.models).map(row => [row.label, row.fit]));
+  const asked = grids.reduce((sum, grid) => sum + grid.asked, 0);
+  if (fits.size === 0) return { ...grids[0], failures, asked, tried: asked, sentence: `None of ${asked} orders could be estimated.` };
+  const all = rankFits(Object.fromEntries(fits), rank);
+  return { ...all, failures, asked, tried: asked, notes: [...all.notes, ...(failures.length > 0 ? [`${failures.length} of ${asked} orders could not be estimated; the reasons are listed.`] : [])] };
+}
+
+function seasonsOf(season: CompareCell["season"]): readonly (SeasonTried | null)[] {
+  if (season === undefined) return [null];
+  if (typeof season === "number") {
+    if (!Number.isInteger(season) || season < 0) throw new OptionError("season", `season is ${season}; a number n tries 0 to n seasonal lags, and an object such as {ar: 1, ma: 1} tries each`);
+    return [{ ar: season, ma: season }];
+  }
+  if (Array.isArray(season)) {
+    if (season.length === 0) throw new OptionError("season", "season is an empty list; give at least one item, such as {ma: 1}");
+    return (season as readonly (SeasonTried | null | 0)[]).map(item => {
+      if (item === null || item === 0) return null;
+      if (typeof item !== "object") throw new OptionError("season", `each item of season is an object such as {ma: 1}, or 0 for none; found ${String(item)}`);
+      // An item is what a fit takes: one order, not orders from 0 up.
+      return { ...item, ar: [(item.ar ?? 0) as Lags], ma: [(item.ma ?? 0) as Lags] };
+    });
+  }
+  return [season as SeasonTried];
+}
+
+async function evaluated(models: readonly { readonly label: string; readonly model: Forecaster }[], rank: ErrorMeasure, options: CompareCell, context: RunContext): Promise<Comparison> {
+  const { training, refit, window, levels, loss, data } = options;
+  const first = models[0].model.series;
+  const whole = data ?? first.steps[0]?.before ?? first;
+  const horizon = options.horizon ?? usualHorizon(whole.every, whole.n);
+  const origins = options.origins ?? usualOrigins(whole.n, horizon);
+  const result = await rollingOrigins(models, {
+    origins, horizon, rank, ...(training === undefined ? {} : { training }), ...(refit === undefined ? {} : { refit }), ...(window === undefined ? {} : { window }),
+    ...(levels === undefined ? {} : { levels }), ...(loss === undefined ? {} : { loss }), ...(data === undefined ? {} : { data }),
+  }, { progress: (done, total, what) => { context.progress(done, total, what); }, breathe: () => context.breathe() });
+  return { ...result, how: "origins", every: whole.every };
+}
+
+function asCriterion(grid: Grid): Comparison {
+  return { ...grid, how: "criterion", scores: [], against: [] };
+}
+
+function isCriterion(rank: string): rank is Criterion {
+  return (criteria as readonly string[]).includes(rank);
+}
+
+function checkTried(tried: Tried | undefined, option: string): void {
+  if (tried === undefined) return;
+  if (typeof tried === "number") { highestLag(tried, option); return; }
+  if (!Array.isArray(tried)) throw new OptionError(option, `${option} takes a number n, to try 0 to n, or a list of orders to try; found ${String(tried)}`);
+  for (const item of tried as readonly Lags[]) highestLag(item, option);
+}

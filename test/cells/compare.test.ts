@@ -1,0 +1,132 @@
+import { describe, expect, test } from "vitest";
+import { checkOptions } from "../../cells/check.ts";
+import { compare } from "../../cells/compare.ts";
+import type { ChartPart, Part, TablePart, TextPart } from "../../cells/parts/part.ts";
+import { cut, fit as estimate, makeSeries, rule } from "../../stdlib/index.ts";
+import { drawnCharts } from "./drawn.ts";
+import { madeContext } from "./madeContext.ts";
+import { madeSeries, stepped } from "./made.ts";
+
+const show = { name: "contest", width: 640 };
+const texts = (parts: readonly Part[]): string => parts.filter((p): p is TextPart => p.part === "text").map(p => p.text).join(" ");
+const tables = (parts: readonly Part[]): readonly TablePart[] => parts.filter((p): p is TablePart => p.part === "table");
+const run = async (options: Record<string, unknown>, source: Record<string, string> = {}, changes = {}) => {
+  const context = madeContext({ source, ...changes });
+  return { result: await compare.run(checkOptions(compare, options) as never, context), context };
+};
+const steady = stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 12 }]);
+const numbered = (values: readonly number[]) => makeSeries({ name: "short", values: Float64Array.from(values) });
+
+describe("compare over a grid of orders", () => {
+  test("fits every order, ranks by AICc, and reports progress by count", async () => {
+    const { result, context } = await run({ series: steady, ar: 1, ma: 2 });
+    expect(result.how).toBe("criterion");
+    if (result.how !== "criterion") return;
+    expect(result.tried).toBe(6);
+    expect(context.steps.at(-1)).toEqual([6, 6]);
+    const values = result.models.map(row => row.aicc);
+    expect(values).toEqual([...values].sort((a, b) => a - b));
+    expect(result.best?.label).toBe(result.models[0].label);
+    expect(result.models.reduce((sum, row) => sum + row.weight, 0)).toBeCloseTo(1, 12);
+    expect(result.scores).toEqual([]);
+  });
+  test("draws the order surface with a tile a pair, and names its ties", async () => {
+    const { result } = await run({ series: steady, ar: 1, ma: 2 });
+    const parts = compare.show(result, show);
+    const chart = parts.find((p): p is ChartPart => p.part === "chart")!;
+    expect(chart.title).toContain("Order surface");
+    expect(chart.data.tiles.column).toHaveLength(6);
+    expect(chart.alt).toMatch(/^The smallest is at AR \d and MA \d; /);
+    const [svg] = await drawnCharts(parts);
+    expect(svg).toContain("best");
+    expect(tables(parts)[0].marked).toEqual([{ row: 0, word: "best" }]);
+    expect(texts(parts)).toContain("6 models were tried");
+  });
+  test("ranks by BIC where asked", async () => {
+    const { result } = await run({ series: steady, ar: 1, ma: 1, rank: "bic" });
+    if (result.how !== "criterion") throw new Error("expected a grid");
+    const values = result.models.map(row => row.bic);
+    expect(values).toEqual([...values].sort((a, b) => a - b));
+  });
+  test("takes a list of seasons as they stand, and ranks them together", async () => {
+    const { result } = await run({ series: steady, ma: 1, season: [0, { ma: 1 }] });
+    if (result.how !== "criterion") throw new Error("expected a grid");
+    expect(result.asked).toBe(4);
+    expect(result.models).toHaveLength(4);
+  });
+  test("draws a second surface where seasonal orders vary", async () => {
+    const { result } = await run({ series: steady, ar: 1, ma: 0, season: { ar: 0, ma: 1 } });
+    const parts = compare.show(result, show);
+    expect(parts.filter((p): p is ChartPart => p.part === "chart").map(p => p.title)).toEqual([
+      "Order surface: how far AICc stands behind the best, each tile with its best seasonal orders",
+      "Seasonal orders: how far AICc stands behind the best, each tile with its best plain orders",
+    ]);
+    await expect(drawnCharts(parts)).resolves.toHaveLength(2);
+  });
+  test("goes on to held-out origins when an error ranks it", async () => {
+    const { result, context } = await run({ series: steady, ma: 1, rank: "mae", origins: 6, horizon: 2 });
+    expect(result.how).toBe("origins");
+    expect(context.steps.at(-1)?.[0]).toBe(context.steps.at(-1)?.[1]);
+  });
+});
+
+describe("compare of models", () => {
+  const early = estimate({ series: steady, ma: 1, label: "later named" });
+  const crossings = madeSeries();
+  test("labels the models by the names in the author's list", async () => {
+    const { result } = await run({ models: [early, rule.seasonalNaive(crossings, 12)], origins: 8, horizon: 3 }, { models: "[airline, rule.seasonalNaive(crossings, 12)]" });
+    expect(result.models.map(model => model.label)).toContain("airline");
+    expect(result.best?.label).toBe(result.models[0].label);
+  });
+  test("gives a score row a model and horizon, and one for all", async () => {
+    const { result } = await run({ models: { airline: early, naive: rule.naive(crossings) }, origins: 8, horizon: 3 });
+    const own = result.scores.filter(score => (score as { label: string }).label === "airline").map(score => (score as { horizon: unknown }).horizon);
+    expect(own).toEqual([1, 2, 3, "all"]);
+    expect(result.scores[0]).toHaveProperty("mase");
+    expect(result.against[0]).toMatchObject({ horizon: expect.anything(), statistic: expect.any(Number), p: expect.any(Number) });
+  });
+  test("says of a rule that is worse than the naive one that it does not beat naive", async () => {
+    const { result } = await run({ models: { mean: rule.average(crossings), seasonal: rule.seasonalNaive(crossings, 12) }, origins: 12, horizon: 2 });
+    const parts = compare.show(result, show);
+    expect(texts(parts)).toContain("mean does not beat naive.");
+  });
+  test("draws errors by horizon and the paths from each origin", async () => {
+    const { result } = await run({ models: { airline: early, seasonal: rule.seasonalNaive(crossings, 12) }, origins: 12, horizon: 6 });
+    const parts = compare.show(result, show);
+    const svgs = await drawnCharts(parts);
+    expect(svgs).toHaveLength(2);
+    expect(svgs[0]).toContain("periods ahead");
+    expect(tables(parts).map(t => t.title)).toEqual(["Errors over 12 origins, 1 to 6 periods ahead", "How often the bands held what happened", "Model against model, over all horizons"]);
+  });
+  test("ranks fits by a criterion where asked", async () => {
+    const { result } = await run({ models: { one: early, two: estimate({ series: steady, ar: 1 }) }, rank: "aic" });
+    expect(result.how).toBe("criterion");
+  });
+  test("stops when newer work overtakes it", async () => {
+    await expect(run({ models: [early], origins: 6, horizon: 1 }, {}, { breathe: async () => { throw new Error("overtaken"); } })).rejects.toThrow("overtaken");
+  });
+});
+
+describe("compare refuses, in words for its author,", () => {
+  test("neither models nor a series", async () => {
+    await expect(run({})).rejects.toThrow("compare needs either `models`");
+  });
+  test("a criterion for a rule, which has no likelihood", async () => {
+    await expect(run({ models: [rule.naive(madeSeries())], rank: "aicc" })).rejects.toThrow("is a rule and has no likelihood");
+  });
+  test("fits after different differences, and says why", async () => {
+    const other = stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 1 }]);
+    await expect(run({ models: { a: estimate({ series: steady, ma: 1 }), b: estimate({ series: other, ma: 1 }) }, rank: "aicc" })).rejects.toThrow(/likelihoods are of different data/);
+  });
+  test("more origins than the data have", async () => {
+    await expect(run({ models: [rule.naive(madeSeries())], origins: 100, horizon: 3 })).rejects.toThrow(/100 origins/);
+  });
+  test("a constant series, a short one, and orders that are no numbers", async () => {
+    await expect(run({ series: numbered(Array.from({ length: 20 }, () => 3)), ar: 1 })).rejects.toThrow("is constant");
+    await expect(run({ series: numbered([1, 2, 3]), ar: 1 })).rejects.toThrow("needs at least 8");
+    await expect(run({ series: steady, ar: "2" })).rejects.toThrow("ar takes a number n, to try 0 to n");
+  });
+  test("models of two series", async () => {
+    await expect(run({ models: [rule.naive(madeSeries()), rule.naive(cut({ ...madeSeries(), values: madeSeries().values.map(x => x + 1) }, {}))], origins: 4, horizon: 1 })).rejects.toThrow(/not of one series/);
+  });
+});
