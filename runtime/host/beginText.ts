@@ -62,7 +62,7 @@ export function sections(title: string, data: Recognised, plan: Plan, orders: Or
   return [
     { id: "data", needs: [], text: [
       `# ${title}`, "", `This first notebook was written from \`${data.file}\`. Everything in it can be changed: the text is yours.`, "", "## The data", "",
-      loadCell(data), "", `${recognisedWords(data)} The series has [0](=${name}.n) ${many}, from [-](=${name}.start) to [-](=last(${name}.times)).${data.notes.length > 0 ? ` ${data.notes.map(sentence).join(" ")}` : ""}`, "",
+      loadCell(data), "", `${recognisedWords(data)} The series has [0](=${name}.n) ${many}, from [-](=${name}.start) to [-](=${name}.times[${name}.n - 1]).${data.notes.length > 0 ? ` ${data.notes.map(sentence).join(" ")}` : ""}`, "",
       cell("window: sample", `of: ${name}`, `label: "Sample"`), "", "Drag the ends of the window to leave early or late data out; all that follows uses the window.",
     ].join("\n") },
     { id: "steady", needs: ["data"], text: ["## To stationarity", "", stepsWords(plan, one), "", steadyCell(name, plan, "sample")].join("\n") },
@@ -89,7 +89,7 @@ export const conclusions: readonly { readonly claim: string; readonly condition:
   { claim: "No unit root is left (ADF, 5%)", condition: "tests.adf.p < 0.05", needs: "tests" },
   { claim: "Nothing speaks against stationarity (KPSS, 5%)", condition: "tests.kpss.p >= 0.05", needs: "tests" },
   { claim: "The residuals are noise (Ljung-Box, 5%)", condition: "leftover.ljungBox.p > 0.05", needs: "diagnostics" },
-  { claim: "The model beats the naive rules", condition: `contest.best.label == "the model"`, needs: "contest" },
+  { claim: "The model beats the naive rules", condition: `contest.best.label === "the model"`, needs: "contest" },
 ];
 
 export function claimsSection(held: readonly { readonly claim: string; readonly condition: string }[], fallen: readonly string[]): string {

@@ -29,7 +29,7 @@ export async function bundle(top: string): Promise<readonly Built[]> {
 }
 
 async function frame(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
-  const engine = await text(from("host/engineWorker.ts"), { define: { ...define, requestAnimationFrame: "lagbookSoon" }, inject: [from("host/soon.ts")] });
+  const engine = await text(from("host/engineWorker.ts"), { define: { ...define, requestAnimationFrame: "lagbookSoon" }, inject: [from("host/soon.ts")], conditions: ["worker"] });
   const page = await text(from("page/entry.ts"), { define: { ...define, LAGBOOK_ENGINE: JSON.stringify(engine) } });
   await writeFile(join(out, "frame.html"), frameDocument(page));
 }
