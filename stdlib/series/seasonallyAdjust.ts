@@ -1,5 +1,7 @@
 // The seasonal part of a series, for `seasonallyAdjust`: what is subtracted, and what a forecast gets back.
 
+import { stl } from "../decompose/stl.ts";
+import { autoregressiveFill } from "./autoregressiveFill.ts";
 import { defaultSeasonLength } from "./every.ts";
 import type { Series } from "./series.ts";
 
@@ -13,21 +15,12 @@ export function seasonLengthOf(series: Series, length: number | undefined): numb
   return found;
 }
 
-/** Seasonal figures by position in the season: means of the differences from a centred moving average of one season, made to
- *  add up to 0 (the classical decomposition, e.g. Kendall and Stuart 1966, chapter 46). */
-export function seasonRemoved(series: Series, given: number | undefined): Float64Array {
-  const length = seasonLengthOf(series, given);
-  const { values, n } = series;
-  const sums = new Float64Array(length), counts = new Float64Array(length);
-  const half = Math.floor(length / 2);
-  for (let t = half; t < n - half; t++) {
-    let average = 0;
-    for (let j = -half; j <= half; j++) average += values[t + j] * (length % 2 === 0 && Math.abs(j) === half ? 0.5 : 1);
-    const difference = values[t] - average / length;
-    if (!Number.isNaN(difference)) { sums[t % length] += difference; counts[t % length] += 1; }
-  }
-  const figure = sums.map((s, j) => s / counts[j]);
-  const level = figure.reduce((a, b) => a + b, 0) / length;
-  if (Number.isNaN(level)) throw new RangeError(`seasonallyAdjust(${length}): too many missing values to see the season; fill them first, as in fill("linear")`);
-  return Float64Array.from({ length: n }, (_, t) => figure[t % length] - level);
+/** The seasonal part of a series at each of its periods, by STL with a seasonal window of 13 seasons, so that the pattern may
+ *  drift slowly. Gaps are bridged by an autoregression while it is estimated. */
+export function seasonRemoved(series: Series, length: number): Float64Array {
+  const gaps = series.values.some(Number.isNaN);
+  const values = gaps ? autoregressiveFill(series.values, series.every) : series.values;
+  const { status, note, seasonal } = stl(values, { length, seasonalWindow: 13 });
+  if (status !== "ok") throw new RangeError(`seasonallyAdjust(${length}): ${note ?? "the season cannot be estimated"}`);
+  return seasonal;
 }

@@ -4,7 +4,7 @@ import { aggregated } from "./aggregate.ts";
 import { daysIn } from "./calendar.ts";
 import { trendRemoved } from "./detrend.ts";
 import { filled } from "./fill.ts";
-import { seasonRemoved } from "./seasonallyAdjust.ts";
+import { seasonLengthOf, seasonRemoved } from "./seasonallyAdjust.ts";
 import { withValues, type Series } from "./series.ts";
 
 /** A step as an author writes it. Plain data. */
@@ -44,8 +44,9 @@ export function applyStep(series: Series, step: Step): Series {
       return remember(withValues(series, series.values.map((v, t) => v - removed[t])), step, series, removed);
     }
     case "seasonallyAdjust": {
-      const removed = seasonRemoved(series, step.length);
-      return remember(withValues(series, series.values.map((v, t) => v - removed[t])), step, series, removed);
+      const length = seasonLengthOf(series, step.length), removed = seasonRemoved(series, length);
+      // The length is written down, so that whoever puts the season back need not find it again.
+      return remember(withValues(series, series.values.map((v, t) => v - removed[t])), { step: "seasonallyAdjust", length }, series, removed);
     }
     case "fill": return remember(withValues(series, filled(series, step.how)), step, series);
     case "aggregate": return remember(aggregated(series, step.to, step.how), step, series);

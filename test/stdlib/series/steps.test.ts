@@ -1,5 +1,6 @@
 import * as fc from "fast-check";
 import { describe, expect, it } from "vitest";
+import { stl } from "../../../stdlib/decompose/stl.ts";
 import { combine, lagged } from "../../../stdlib/series/align.ts";
 import { cut, slice } from "../../../stdlib/series/cut.ts";
 import { polynomialTrend } from "../../../stdlib/series/detrend.ts";
@@ -47,9 +48,17 @@ describe("steps", () => {
     const trend = polynomialTrend(Float64Array.from({ length: 40 }, (_, t) => f(t)), 5);
     expect(trend(45) / f(45)).toBeCloseTo(1, 9);
   });
-  it("seasonallyAdjust removes a fixed season", () => {
-    const s = applyStep(monthly(Array.from({ length: 48 }, (_, t) => 10 + t + [5, -5, 0, 3, -3, 0, 1, -1, 2, -2, 4, -4][t % 12])), { step: "seasonallyAdjust", length: 12 });
-    s.values.forEach((v, t) => { expect(v).toBeCloseTo(10 + t, 9); });
+  it("seasonallyAdjust takes STL's seasonal part away, gaps or not, and remembers its length", () => {
+    const figure = [5, -5, 0, 3, -3, 0, 1, -1, 2, -2, 4, -4];
+    const values = Array.from({ length: 96 }, (_, t) => 10 + 0.1 * t + figure[t % 12]);
+    const raw = monthly(values), s = applyStep(raw, { step: "seasonallyAdjust" });
+    expect(stepText(s.steps[0])).toBe("seasonallyAdjust(12)");
+    expect([...(s.steps[0].removed ?? [])]).toEqual([...stl(raw, { length: 12, seasonalWindow: 13 }).seasonal]);
+    s.values.forEach((v, t) => { expect(v + (s.steps[0].removed?.[t] ?? NaN)).toBeCloseTo(values[t], 12); });
+    // What is left of the season is small beside the season itself (sd 3).
+    expect(sd(s.values.map((v, t) => v - 10 - 0.1 * t))).toBeLessThan(0.15);
+    const holed = applyStep(monthly(values.map((v, t) => (t === 50 ? NaN : v))), { step: "seasonallyAdjust" });
+    expect([holed.values[50], holed.steps[0].removed?.[50]].map((v) => Number.isNaN(v))).toEqual([true, false]);
   });
   it("fill works on a line, from before, and by an autoregression", () => {
     expect([...applyStep(monthly([NaN, 1, NaN, NaN, 4, NaN]), { step: "fill", how: "linear" }).values]).toEqual([1, 1, 2, 3, 4, 4]);

@@ -1,0 +1,39 @@
+// Functions of identification and diagnostic checking: correlations, tests, spectra.
+
+import {
+  acf, adf, archLM, boxPierce, canovaHansen, ccf, cumulativePeriodogram, cusum, defaultSeasonLength, dfGls, durbinWatson, estimateLambda, jarqueBera, kpss, largestBreak, ljungBox, mcleodLi, monti, pacf,
+  phillipsPerron, seasonalStrength, spectrum, stl,
+} from "../../stdlib/index.ts";
+import type { LibraryFunction } from "../kind.ts";
+import { define, number, numbers, optional, series, settings, subject, whole, word } from "./define.ts";
+
+const correlations = "correlations", unitRoots = "unit roots", checks = "diagnostics", season = "season and spectrum";
+
+export const identifyFunctions: readonly LibraryFunction[] = [
+  define(correlations, "acf", [numbers("series"), whole("lags")], "Autocorrelations from lag 0.", (x, lags) => acf(x, lags)),
+  define(correlations, "pacf", [numbers("series"), whole("lags"), optional(word("how", ["levinson", "regression", "burg"]))], "Partial autocorrelations from lag 0, by Levinson's recursion unless told otherwise.", (x, lags, how) => pacf(x, lags, how)),
+  define(correlations, "ccf", [numbers("x"), numbers("y"), whole("lags")], "Cross-correlations: index k is x at t with y at t + k.", (x, y, lags) => ccf(x, y, lags)),
+  define(unitRoots, "adf", [numbers("series"), optional(settings("options", ["trend", "lags", "maxLags"]))], "Augmented Dickey-Fuller test of a unit root.", (x, options) => adf(x, options as Parameters<typeof adf>[1])),
+  define(unitRoots, "kpss", [numbers("series"), optional(settings("options", ["trend", "bandwidth"]))], "KPSS test of stationarity.", (x, options) => kpss(x, options as Parameters<typeof kpss>[1])),
+  define(unitRoots, "phillipsPerron", [numbers("series"), optional(settings("options", ["trend", "bandwidth"]))], "Phillips-Perron test of a unit root.", (x, options) => phillipsPerron(x, options as Parameters<typeof phillipsPerron>[1])),
+  define(unitRoots, "dfGls", [numbers("series"), optional(settings("options", ["trend", "lags", "maxLags"]))], "Dickey-Fuller test after GLS detrending.", (x, options) => dfGls(x, options as Parameters<typeof dfGls>[1])),
+  define(unitRoots, "canovaHansen", [numbers("series"), optional(settings("options", ["length", "bandwidth", "difference"]))], "Canova-Hansen test of a stable season.", (x, options) => canovaHansen(x, options as Parameters<typeof canovaHansen>[1])),
+  define(checks, "ljungBox", [subject(), whole("lag", 1)], "Ljung-Box test up to a lag; of a fit, the degrees of freedom are reduced by its free coefficients.", (x, lag) => ljungBox(x, lag)),
+  define(checks, "boxPierce", [subject(), whole("lag", 1)], "Box-Pierce test up to a lag.", (x, lag) => boxPierce(x, lag)),
+  define(checks, "monti", [subject(), whole("lag", 1)], "Monti's test of the partial autocorrelations up to a lag.", (x, lag) => monti(x, lag)),
+  define(checks, "jarqueBera", [subject()], "Jarque-Bera test of normality.", (x) => jarqueBera(x)),
+  define(checks, "archLM", [subject(), optional(whole("lags", 1))], "Lagrange multiplier test of changing variance.", (x, lags) => archLM(x, lags)),
+  define(checks, "mcleodLi", [subject(), optional(whole("lags", 1))], "McLeod-Li test of changing variance.", (x, lags) => mcleodLi(x, lags)),
+  define(checks, "durbinWatson", [subject()], "Durbin-Watson statistic.", (x) => durbinWatson(x)),
+  define(checks, "cumulativePeriodogram", [subject(), optional(number("taper", { min: 0, max: 0.5, expected: "a share from 0 to 0.5" }))], "Bartlett's test of white noise by the cumulative periodogram.", (x, taper) => cumulativePeriodogram(x, taper)),
+  define(checks, "cusum", [subject()], "CUSUM test of a constant mean.", (x) => cusum(x)),
+  define(checks, "largestBreak", [subject(), optional(number("trim", { min: 0.01, max: 0.49, expected: "a share from 0.01 to 0.49" }))], "Largest-break test of a constant mean, with the break's date.", (x, trim) => largestBreak(x, trim)),
+  define(season, "spectrum", [numbers("series"), optional(settings("options", ["smooth", "taper"]))], "Periodogram, raw or smoothed.", (x, options) => spectrum(x, options as Parameters<typeof spectrum>[1])),
+  define(season, "estimateLambda", [series(), optional(word("how", ["guerrero", "likelihood"]))], "Box-Cox lambda by Guerrero's method or by likelihood.", (s, how) => estimateLambda(s, how)),
+  define(season, "stl", [series(), optional(settings("options", ["length", "seasonalWindow", "trendWindow", "lowPassWindow", "robust", "seasonalDegree"]))], "Season, trend and rest by loess.", (s, options) => stl(s, options as Parameters<typeof stl>[1])),
+  define(season, "seasonalStrength", [series(), optional(whole("length", 2))], "Strength of season and trend, each between 0 and 1; null where the data cannot say.", (s, length) => {
+    const periods = length ?? defaultSeasonLength(s.every);
+    if (periods === null) throw new RangeError("seasonalStrength: the spacing of the series names no season; give its length in periods, as in seasonalStrength(series, 12)");
+    return seasonalStrength(s, periods);
+  }),
+];

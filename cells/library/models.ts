@@ -1,0 +1,50 @@
+// Functions of models: theory, simulation, rules of comparison, interventions.
+
+import {
+  easterEffect, halfLife, harmonics, isFit, levelShift, piWeights, psi, pulse, ramp, rule, simulate, temporaryChange, theoreticalAcf, theoreticalPacf, tradingDays,
+  type Fit, type Forecaster,
+} from "../../stdlib/index.ts";
+import type { LibraryFunction } from "../kind.ts";
+import { define, fit, forecasterOf, number, optional, param, series, settings, time, whole, type Param } from "./define.ts";
+
+const theory = "models", rules = "rules", regressors = "regressors";
+
+/** A fit, or the coefficients of a model as {phi, theta, seasonalPhi, seasonalTheta, length}. */
+type Coefficients = Parameters<typeof theoreticalAcf>[0];
+
+export const modelFunctions: readonly LibraryFunction[] = [
+  define(theory, "psi", [model("fit"), whole("n")], "Weights of present and past shocks, psi[0] = 1, up to lag n.", (m, n) => psi(m, n)),
+  define(theory, "piWeights", [model("fit"), whole("n", 1)], "Weights of past values in the autoregressive form; [0] is lag 1.", (m, n) => piWeights(m, n)),
+  define(theory, "halfLife", [fit()], "Periods until half of a shock's effect is gone.", (m) => halfLife(m)),
+  define(theory, "theoreticalAcf", [model("model"), whole("lags")], "Autocorrelations that a model implies, from lag 0.", (m, lags) => theoreticalAcf(m, lags)),
+  define(theory, "theoreticalPacf", [model("model"), whole("lags")], "Partial autocorrelations that a model implies, from lag 0.", (m, lags) => theoreticalPacf(m, lags)),
+  define(theory, "simulate", [fit(), whole("n", 1, 10_000_000), optional(whole("seed"))], "A simulated series of n values from a fit; the same seed (1 unless given) gives the same values.", (m, n, seed = 1) => simulate(m, n, seed)),
+  define(rules, "rule.naive", [series()], "The last value, for ever.", (s) => rule.naive(s)),
+  define(rules, "rule.seasonalNaive", [series(), optional(whole("length", 2))], "The last season, again and again.", (s, length) => rule.seasonalNaive(s, length)),
+  define(rules, "rule.drift", [series()], "The last value and the mean step between first and last.", (s) => rule.drift(s)),
+  define(rules, "rule.average", [series()], "The mean of all values.", (s) => rule.average(s)),
+  define(rules, "rule.smoothing", [series(), optional(settings("options", ["trend", "season", "damped", "length", "error", "alpha", "beta", "gamma", "phi"]))], "Exponential smoothing: trend and season \"none\", \"additive\" or \"multiplicative\"; weights are estimated unless given.", (s, options = {}) => rule.smoothing(s, options as Parameters<typeof rule.smoothing>[1])),
+  define(rules, "rule.combine", [forecasters("models")], "The mean of several models' forecasts.", (models) => rule.combine(models)),
+  define(regressors, "pulse", [time("at")], "1 in one period, 0 elsewhere.", (at) => pulse(at)),
+  define(regressors, "levelShift", [time("at")], "0 before a period, 1 from it on.", (at) => levelShift(at)),
+  define(regressors, "temporaryChange", [time("at"), optional(number("decay"))], "1 in one period, dying away by a factor (0.7 unless given) each period after it.", (at, decay) => temporaryChange(at, decay)),
+  define(regressors, "ramp", [time("from"), time("to")], "0 up to a period, a straight line to 1 at another, 1 after it.", (from, to) => ramp(from, to)),
+  define(regressors, "harmonics", [number("length"), whole("count", 1)], "Pairs of sine and cosine whose periods are the length, half of it, a third and so on.", (length, count) => harmonics(length, count)),
+  define(regressors, "tradingDays", [], "How many of each weekday a period has, less its Sundays.", () => tradingDays()),
+  define(regressors, "easterEffect", [whole("days", 1, 60)], "Share, in each period, of the days before Easter Sunday.", (days) => easterEffect(days)),
+];
+
+function model(name: string): Param<Fit | Coefficients> {
+  return param(name, "a fit, or coefficients such as {phi: [0.5], theta: [0.3]}", (v): v is Fit | Coefficients => isFit(v) || (typeof v === "object" && v !== null && ["phi", "theta", "seasonalPhi", "seasonalTheta"].some((key) => key in v)));
+}
+
+function forecasters(name: string): Param<readonly Forecaster[]> {
+  return {
+    name, expected: "a list of fits and rules",
+    read: (value) => {
+      const list = Array.isArray(value) ? value : typeof value === "object" && value !== null && forecasterOf(value) === null ? Object.values(value) : null;
+      const models = list?.map((one: unknown) => forecasterOf(one)) ?? [null];
+      return models.length === 0 || models.includes(null) ? null : { value: models.map((one) => one?.value as Forecaster) };
+    },
+  };
+}
