@@ -1,4 +1,4 @@
-// Missing values inside the sample: their conditional mean and standard error given everything observed, before and after.
+// Missing values of the sample: their conditional mean and standard error given everything observed, before and after.
 
 import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
 import { knownOf } from "./known.ts";
@@ -17,15 +17,13 @@ export interface Interpolation {
 }
 
 /** Each missing value is the coefficient of a pulse (Ljung 1982): generalised least squares gives mean and covariance, at the
- *  fit's parameters. Values before the first and after the last observation are left to forecasting.
+ *  fit's parameters.
  *  Cost: gaps * n + gaps^2 n. */
 export function interpolate(fit: Fit): Interpolation {
-  const known = knownOf(fit);
+  const known = knownOf(fit, true);
   const { prepared, rest, part, from, x } = known;
   const { levels, delta, shape } = prepared;
-  let to = rest.length;
-  while (to > 0 && Number.isNaN(rest[to - 1])) to--;
-  const inside = rest.subarray(0, to);
+  const to = rest.length, inside = rest;
   const gaps: number[] = [];
   inside.forEach((v, t) => { if (Number.isNaN(v)) gaps.push(t); });
   const bridged = bridge(inside);

@@ -11,7 +11,7 @@ export interface Known {
   readonly prepared: Prepared;
   readonly model: LevelModel;
   readonly x: Float64Array;
-  /** First observed level. */
+  /** First observed level (or 0). */
   readonly from: number;
   /** Levels from there to the end of the series less regression and mean; NaN in gaps. */
   readonly rest: Float64Array;
@@ -19,14 +19,15 @@ export interface Known {
   readonly part: Float64Array;
 }
 
-/** @throws RangeError when the fit's autoregressive side is not stationary */
-export function knownOf(fit: Fit): Known {
+/** @param whole  from the first level on, observed or not
+ *  @throws RangeError when the fit's autoregressive side is not stationary */
+export function knownOf(fit: Fit, whole = false): Known {
   const prepared = prepare({ ...fit.options, series: fit.series, window: undefined, hold: undefined });
   const x = coefficientsOf(fit, prepared.shape);
   const model = levelModel(prepared.shape, x, prepared.delta);
   if (model === null) throw new RangeError(`${fit.label}: the autoregressive side is not stationary, so nothing can be predicted from it; difference the series, or use method: "exact"`);
   const { levels, columns, names } = prepared;
-  const from = Math.max(0, levels.values.findIndex(v => !Number.isNaN(v)));
+  const from = whole ? 0 : Math.max(0, levels.values.findIndex(v => !Number.isNaN(v)));
   const part = new Float64Array(levels.n - from);
   names.forEach((name, j) => { const beta = fit.beta[name] ?? 0; if (beta !== 0) for (let t = 0; t < part.length; t++) part[t] += beta * columns[j][from + t]; });
   if (fit.mean !== 0) { const z = integrated(prepared.delta, part.length); for (let t = 0; t < part.length; t++) part[t] += fit.mean * z[t]; }

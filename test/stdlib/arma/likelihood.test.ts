@@ -54,12 +54,14 @@ describe("gradient", () => {
       valueAt(work, data, x);
       gradientInto(work, data, x, gradient);
       for (let i = 0; i < x.length; i++) {
-        // Near the edge of the region the likelihood bends sharply: the step shrinks with the distance from it.
-        const h = 1e-4 * Math.max(1e-6, 1 - Math.abs(x[i]));
-        const at = (step: number) => valueAt(work, data, x.map((v, j) => j === i ? v + step * h : v));
-        const slope = (8 * (at(1) - at(-1)) - (at(2) - at(-2))) / (12 * h);
-        if (!Number.isFinite(slope)) continue;
-        expect(Math.abs(slope - gradient[i]) / (Math.abs(slope) + Math.abs(gradient[i]) + 1), `coefficient ${i}: ${gradient[i]} against ${slope}`).toBeLessThan(2e-5);
+        // No one step suits all: near the edge of the region the likelihood bends sharply, elsewhere rounding wants a long one.
+        let best = Infinity;
+        for (const h of [1e-3, 1e-4, 1e-5, 1e-7, 1e-9]) {
+          const at = (step: number) => valueAt(work, data, x.map((v, j) => j === i ? v + step * h : v));
+          const slope = (8 * (at(1) - at(-1)) - (at(2) - at(-2))) / (12 * h);
+          if (Number.isFinite(slope)) best = Math.min(best, Math.abs(slope - gradient[i]) / (Math.abs(slope) + Math.abs(gradient[i]) + 1));
+        }
+        expect(best, `coefficient ${i}`).toBeLessThan(2e-6);
       }
     });
   }
