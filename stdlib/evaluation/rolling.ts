@@ -106,9 +106,10 @@ export async function rollModel({ label, model }: Labelled, frame: RollingFrame,
     if (hooks.stopped?.()) break;
     try {
       const from = training === "sliding" ? start + k : start, to = first + at[k];
-      const how = parameters === null || k % every === 0 ? "refit" : "held";
+      // The first search starts from nothing: the model's own values know all the data.
+      const how = parameters === null ? "fresh" : k % every === 0 ? "refit" : "held";
       const here = refitBetween(model, { from, to, how, data }, parameters ?? model);
-      if (how === "refit") parameters = here;
+      if (how !== "held") parameters = here;
       writeForecasts(rolled, k, here, frame, seed);
     } catch (error) {
       // A model that cannot be estimated on a short stretch is an outcome of the comparison; a fault of ours is not.

@@ -103,11 +103,13 @@ export function summarise(given: readonly Labelled[], rolled: readonly Rolled[],
   const losses = even.map((r) => lossesOf(r, frame, loss)), means = losses.map((l) => meanOverHorizon(l, common, horizon));
   const bestNaive = naiveAt.reduce<number>((a, b) => (a < 0 || overall[b][rank] < overall[a][rank] ? b : a), -1);
   const set = modelConfidenceSet(asked.map((i) => means[i]), { block: Math.max(horizon, Math.round(Math.cbrt(common))), seed: options.seed ?? 1 });
-  const sorted = asked.map((i, k) => ({ i, k })).sort((a, b) => order(overall[a.i][rank]) - order(overall[b.i][rank]));
+  // A model without a forecast somewhere was spared what the others had to forecast: it ranks behind them.
+  const whole = Math.max(...asked.map((i) => overall[i].n)), key = (i: number): number => (overall[i].n < whole ? 1e300 : order(overall[i][rank]));
+  const sorted = asked.map((i, k) => ({ i, k })).sort((a, b) => key(a.i) - key(b.i) || order(overall[a.i][rank]) - order(overall[b.i][rank]));
   const test = (i: number, j: number): ReturnType<typeof againstAll> => againstAll(even[i].label, even[j].label, means[i], means[j], horizon, common);
   const ranked = sorted.map(({ i, k }): RankedModel => {
     const model = given.find((g) => g.label === even[i].label)?.model ?? given[0].model, score = overall[i];
-    const before = sorted.filter((s) => overall[s.i][rank] < score[rank] - 1e-12 * Math.abs(score[rank])).length;
+    const mine = key(i), before = sorted.filter((s) => key(s.i) < mine - 1e-12 * Math.abs(mine)).length;
     const { beatsNaive, sentence } = naiveVerdict(score, bestNaive, overall, rank, bestNaive >= 0 && bestNaive !== i ? test(i, bestNaive) : null);
     return { ...score, rank: before + 1, model, ...(isRule(model) ? {} : { fit: model }), setP: set.models[k].p, inSet: set.models[k].inside, beatsNaive, sentence };
   });

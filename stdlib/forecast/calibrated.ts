@@ -38,7 +38,7 @@ function inWords(ratio: number): string {
 /** Standardised errors by horizon: the normal number whose probability the forecast gave to the actual value. */
 function heldOutMisses(model: Forecaster, base: Series, horizon: number, count: number, regressors: Readonly<Record<string, Series>>, seed: number): Float64Array[] {
   const from = firstIndex(base), end = lastIndex(base), columns = Array.from({ length: horizon }, () => new Float64Array(count).fill(NaN));
-  const first = refitBetween(model, { from, to: end - horizon - count + 1, how: "refit" });
+  const first = refitBetween(model, { from, to: end - horizon - count + 1, how: "fresh" });
   for (let k = 0; k < count; k++) {
     const origin = end - horizon - count + 1 + k, held = k === 0 ? first : refitBetween(model, { from, to: origin, how: "held" }, first);
     const { outlook } = modelOutlook(held, horizon, regressors, seed);

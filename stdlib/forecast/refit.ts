@@ -1,6 +1,7 @@
 // The same model for another stretch of the data.
 
 import { filterWith } from "../arma/filterWith.ts";
+import { fit } from "../arma/fit.ts";
 import { fitAt } from "../arma/fitAt.ts";
 import type { Series } from "../series/series.ts";
 import { applySteps, stepOf } from "../series/steps.ts";
@@ -8,14 +9,18 @@ import type { Forecaster } from "./model.ts";
 import { between, reachOf } from "./reach.ts";
 import { isRule, ruleFor } from "./rules.ts";
 
-export type RefitHow = "refit" | "held";
+/** "fresh": estimated with nothing carried over; "refit": estimated again, the search starting from the model's own values; "held": those values kept. */
+export type RefitHow = "fresh" | "refit" | "held";
 
-/** The same model for another series: parameters estimated again ("refit"), or kept at their values ("held").
+/** The same model for another series.
  *  @param series  on the modelled scale with the model's steps; or in data units, and the steps are applied to it */
 export function refit(model: Forecaster, series: Series, how: RefitHow = "refit"): Forecaster {
   const own = model.series.steps;
   const stepped = series.steps.length === 0 && own.length > 0 ? applySteps(series, own.map(stepOf)) : series;
-  if (!isRule(model)) return how === "held" ? filterWith(model, stepped) : fitAt(model, stepped);
+  if (!isRule(model)) {
+    if (how === "fresh") return { ...fit({ ...model.options, series: stepped, window: undefined }, { standardErrors: false }), label: model.label };
+    return how === "held" ? filterWith(model, stepped) : fitAt(model, stepped);
+  }
   if (model.rule !== "combine") return ruleFor(model, stepped, how);
   const members = (model.members ?? []).map((member) => refit(member, series, how));
   return { ...model, series: members[0].series, members };

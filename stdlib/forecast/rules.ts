@@ -49,7 +49,7 @@ export const rule = {
 export const isRule = (model: Forecaster): model is Rule => "rule" in model;
 
 /** The same rule for another series of the same kind, its weights estimated again, or held at what they are. */
-export function ruleFor(model: Rule, series: Series, how: "refit" | "held"): Rule {
+export function ruleFor(model: Rule, series: Series, how: "fresh" | "refit" | "held"): Rule {
   switch (model.rule) {
     case "naive": return rule.naive(series);
     case "seasonalNaive": return { ...rule.seasonalNaive(series, model.length), label: model.label };

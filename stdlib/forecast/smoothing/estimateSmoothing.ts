@@ -1,6 +1,6 @@
 // Exponential smoothing with its weights and starting states estimated by maximum likelihood.
 
-import { innovationsFilter, type Filtered, type SmoothingForm, type SmoothingState } from "./innovations.ts";
+import { innovationsFilter, minusTwiceLogLikelihood, type Filtered, type SmoothingForm, type SmoothingState } from "./innovations.ts";
 import { minimise } from "./minimise.ts";
 import { bestStates, openingStates, type States0 } from "./startingStates.ts";
 
@@ -41,7 +41,7 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
   const statesOf = (weights: Weights, x: Float64Array): States0 => concentrated ? bestStates(scaled, form, weights) : space.states(x, opening);
   const objective = (x: Float64Array): number => {
     const weights = space.weights(x), states = statesOf(weights, x);
-    return -2 * innovationsFilter(scaled, form, { ...weights, ...states }).logLikelihood;
+    return minusTwiceLogLikelihood(scaled, form, { ...weights, ...states });
   };
   let best: { at: Float64Array; value: number; converged: boolean } | null = null;
   for (const first of space.starts(near)) {
@@ -52,7 +52,7 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
       const further = minimise(objective, found.at);
       const gained = found.value - further.value;
       found = further;
-      if (!(gained > 1e-6)) break;
+      if (!(gained > 1e-5)) break;
     }
     if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found;
   }

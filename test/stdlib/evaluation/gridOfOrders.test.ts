@@ -1,0 +1,46 @@
+import { describe, expect, it } from "vitest";
+import { fit } from "../../../stdlib/arma/fit.ts";
+import { gridOfOrders, rankFits } from "../../../stdlib/evaluation/gridOfOrders.ts";
+import { makeSeries } from "../../../stdlib/series/series.ts";
+import { applySteps } from "../../../stdlib/series/steps.ts";
+import { referenceSeries } from "../forecast/reference.ts";
+
+const lake = makeSeries({ name: "level", values: referenceSeries("lakehuron").values });
+
+describe("gridOfOrders", () => {
+  it("ranks all orders of a grid, with weights that add up to 1 and ties within 2", async () => {
+    const grid = await gridOfOrders({ series: lake, ar: 2, ma: 2 });
+    expect(grid.models.length).toBe(9);
+    expect(grid.models.reduce((sum, m) => sum + m.weight, 0)).toBeCloseTo(1, 12);
+    expect(grid.models.every((m, i) => i === 0 || m.aicc >= grid.models[i - 1].aicc)).toBe(true);
+    expect(grid.models.filter((m) => m.tied).every((m) => m.difference <= 2)).toBe(true);
+    // R 4.2.2: arima(LakeHuron, c(1, 0, 1)) and c(2, 0, 0): AIC 214.490521 and 215.266445.
+    const aic = (ar: number, ma: number) => grid.models.find((m) => m.ar === ar && m.ma === ma)!.aic;
+    expect(aic(1, 1)).toBeCloseTo(214.490521, 3);
+    expect(aic(2, 0)).toBeCloseTo(215.266445, 3);
+    expect(grid.best?.label).toBe(grid.models[0].fit.label);
+    expect(grid.sentence).toContain("smallest AICc");
+  });
+  it("a list tries just its items, subset lags too", async () => {
+    const grid = await gridOfOrders({ series: lake, ar: [1, [1, 3]], ma: [0], rank: "bic" });
+    expect(grid.models.map((m) => JSON.stringify(m.ar)).sort()).toEqual(["1", "[1,3]"]);
+  });
+  it("lists orders that cannot be estimated with the reason, and keeps what is done when stopped", async () => {
+    const short = makeSeries({ name: "s", values: [1, 3, 2, 5, 4, 6, 5, 8] });
+    const grid = await gridOfOrders({ series: short, ar: [1, 7] });
+    expect(grid.failures.length).toBe(1);
+    expect(grid.failures[0].reason.length).toBeGreaterThan(10);
+    let done = 0;
+    const part = await gridOfOrders({ series: lake, ar: 3 }, { progress: (n) => { done = n; }, stopped: () => done >= 2 });
+    expect(part).toMatchObject({ complete: false, tried: 2, asked: 4 });
+  });
+});
+
+describe("rankFits", () => {
+  it("refuses to rank across different differencing, and says why", () => {
+    const a = fit({ series: lake, ar: 1 }), b = fit({ series: applySteps(lake, [{ step: "difference", lag: 1 }]), ma: 1 });
+    expect(() => rankFits({ a, b })).toThrow(/likelihoods are of different data/);
+    expect(() => rankFits({ a, c: fit({ series: lake, ar: 1, window: { from: "5" } }) })).toThrow(/same observations only/);
+    expect(rankFits({ a, d: fit({ series: lake, ar: 2 }) }).models.length).toBe(2);
+  });
+});
