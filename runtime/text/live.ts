@@ -11,6 +11,7 @@ interface Form {
   readonly bound: "<" | ">" | "";
   readonly boundGap: string;
   readonly sign: string;
+  readonly currency: string;
   readonly grouping: string;
   readonly decimals: number;
   readonly exponent: { readonly letter: string; readonly value: number } | null;
@@ -79,7 +80,7 @@ function formOf(saved: string): Form | null {
   const scale = (exponent?.value ?? 0) - (percent === "" ? 0 : 2);
   const digits = `${grouping === "" ? whole : whole.replaceAll(grouping, "")}${fraction}`;
   return {
-    before: before + (sign === "" ? currency : ""), after, bound: bound as Form["bound"], boundGap, sign: sign + (sign === "" ? "" : currency), grouping, decimals, exponent, percent,
+    before, after, bound: bound as Form["bound"], boundGap, sign, currency, grouping, decimals, exponent, percent,
     states: (sign === "-" || sign === "\u2212" ? -1 : 1) * Number(`${digits}e${scale}`), half: 0.5 * Number(`1e${scale - decimals}`),
   };
 }
@@ -91,13 +92,12 @@ function inForm(form: Form, value: number): string {
 
 function digitsIn(form: Form, value: number): string {
   const shown = form.percent === "" ? value : value * 100;
-  const currency = form.sign.replace(/^[+\-\u2212]/, "");
   let digits = form.exponent === null ? Math.abs(shown).toFixed(form.decimals) : Math.abs(shown).toExponential(form.decimals).replace("e", form.exponent.letter).replace("+", "");
   if (form.grouping !== "") digits = digits.replace(/\d+/, (whole) => whole.replace(/\B(?=(\d{3})+$)/g, form.grouping));
   // Minus zero is printed as zero.
   const negative = shown < 0 && /[1-9]/.test(digits.split(/[eE]/)[0]);
-  const minus = form.sign.startsWith("\u2212") ? "\u2212" : "-";
-  return `${negative ? minus : form.sign.startsWith("+") ? "+" : ""}${currency}${digits}`;
+  const minus = form.sign === "\u2212" ? "\u2212" : "-";
+  return `${negative ? minus : form.sign === "+" ? "+" : ""}${form.currency}${digits}`;
 }
 
 /** Where the saved text has no form of a number: four significant digits. */

@@ -11,7 +11,7 @@ export interface FoundNumbers { readonly numbers: readonly Omit<LiveNumber, "ind
 /** The live numbers of one top-level block, and what is wrong with any. Cost O(length of the block). */
 export function liveNumbersOf(text: string, block: RootContent): FoundNumbers {
   const place = placeOf(block);
-  if (place === null || block.type === "code" || text.indexOf("](", place.from) < 0) return { numbers: [], problems: [] };
+  if (place === null || block.type === "code") return { numbers: [], problems: [] };
   const source = text.slice(place.from, place.to);
   if (!/\][(:]/.test(source) || !source.includes("=")) return { numbers: [], problems: [] };
   const numbers: Omit<LiveNumber, "index" | "line" | "column">[] = [];

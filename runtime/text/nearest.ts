@@ -3,18 +3,26 @@
 import { distance } from "fastest-levenshtein";
 
 /** The closest of `names` to what was written, where it is close enough to be worth suggesting; else null.
- *  Close enough: at most a third of the letters differ (at least one, two from five letters on); letter case does not count. */
+ *  Close enough: one letter of a name of three or four, two of five to eight, a third of a longer one; two letters swapped count as one, letter case does not count. */
 export function nearest(written: string, names: Iterable<string>): string | null {
-  const limit = written.length >= 5 ? Math.max(2, Math.floor(written.length / 3)) : 1;
+  const limit = written.length < 3 ? 0 : written.length < 5 ? 1 : Math.max(2, Math.floor(written.length / 3));
   const low = written.toLowerCase();
   let best: string | null = null;
   let bestDistance = limit + 1;
   for (const name of names) {
     if (Math.abs(name.length - written.length) > limit) continue;
-    const far = distance(low, name.toLowerCase());
+    const other = name.toLowerCase();
+    const apart = distance(low, other);
+    const far = apart === 2 && swapped(low, other) ? 1 : apart;
     if (far < bestDistance) { best = name; bestDistance = far; }
   }
   return best;
+}
+
+function swapped(a: string, b: string): boolean {
+  let at = 0;
+  while (at < a.length && a[at] === b[at]) at += 1;
+  return a.length === b.length && a[at] === b[at + 1] && a[at + 1] === b[at] && a.slice(at + 2) === b.slice(at + 2);
 }
 
 /** `: did you mean \`x\`?`, or nothing. */

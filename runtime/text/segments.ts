@@ -2,7 +2,7 @@
 
 /** Starts of the segments, the first 0. Each segment but the first begins in column 0 after a blank line, outside any fence or HTML block,
  *  and not with what could go on with a list: there CommonMark has closed every container. Where that cannot be told line by line
- *  (an indented fence may belong to a list item), the text is one segment. Cost O(length). */
+ *  (an indented fence may belong to a list item, one behind a marker may be left open), the text is one segment. Cost O(length). */
 export function segmentStarts(text: string): number[] {
   const starts = [0];
   let blank = false;
@@ -14,14 +14,17 @@ export function segmentStarts(text: string): number[] {
       blank = false;
       continue;
     }
-    if (/^\s*$/.test(line)) { blank = true; continue; }
-    if (/^(?:[ \t]{1,3}(?:`{3}|~{3}|\$\$|<)|\uFEFF)/.test(line)) return [0];
+    if (/^[ \t]*$/.test(line)) { blank = true; continue; }
+    if (UNCERTAIN.test(line)) return [0];
     if (blank && from > 0 && !/^(?:[ \t]|[-*+](?:\s|$)|\d{1,9}[.)](?:\s|$))/.test(line)) starts.push(from);
     until = opened(line);
     blank = false;
   }
   return starts;
 }
+
+/** A fence or HTML block behind white space, or behind the mark of a list, quotation or footnote. */
+const UNCERTAIN = /^(?:\uFEFF|[ \t]{1,3}(?:`{3}|~{3}|\$\$|<)|(?:(?:>|[-*+]|\d{1,9}[.)]|\[\^[^\]\s]+\]:)[ \t]*)+(?:`{3}|~{3}|\$\$|<))/;
 
 /** What closes the block that a line in column 0 opens, where blank lines do not; null for any other. */
 function opened(line: string): RegExp | null {
