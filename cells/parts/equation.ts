@@ -14,7 +14,7 @@ export function backshiftEquation(fit: Fit): EquationPart {
   ].filter(isGiven);
   const differences = differenceLags(fit.series.steps).map(lag => differenceFactor(lag));
   const inner = noise(fit, differences);
-  const level = fit.mean === 0 ? inner : bracket(join([inner, signed(-fit.mean)]));
+  const level = fit.mean === 0 ? inner : bracket(join([differences.length === 0 ? unbracketed(inner) : inner, signed(-fit.mean)]));
   const right = [
     polynomial(fit.theta, 1, 1), polynomial(fit.seasonalTheta, fit.seasonLength, 1), symbol("\\varepsilon_t", "e[t]"),
   ].filter(isGiven);
@@ -102,6 +102,8 @@ function join(terms: readonly Both[]): Both {
 }
 
 function bracket(part: Both): Both { return symbol(`\\bigl(${part.tex}\\bigr)`, `(${part.text})`); }
+/** A sum that stands in a bracket of its own loses it inside another. */
+function unbracketed(part: Both): Both { return symbol(part.tex.replace(/^\\bigl\(([\s\S]*)\\bigr\)$/, "$1"), part.text.replace(/^\(([\s\S]*)\)$/, "$1")); }
 function product(parts: readonly Both[]): Both { return symbol(parts.map(p => p.tex).join("\\,"), parts.map(p => p.text).join(" ")); }
 
 /** (1 - 0.43 B - 0.20 B^2), or null when there is no coefficient. `sign` is -1 for autoregressive factors. */

@@ -19,7 +19,7 @@ export function forecastParts(forecast: Forecast): readonly Part[] {
     ...passingParts(forecast),
     periodsTable(forecast),
     ...forecast.notes.filter(note => note.tone !== "caution").map((note): TextPart => ({ part: "text", tone: "note", text: note.text })),
-    { part: "text", tone: "note", text: "The bands hold if the model does: they do not cover a change in what drives the series. A forecast is a calculation from the past, and no advice." },
+    { part: "text", tone: "note", text: "A forecast is a calculation from the past, and no advice." },
   ];
 }
 
@@ -59,7 +59,7 @@ function passingParts(forecast: Forecast): readonly Part[] {
   const unit = forecast.unit ? ` ${forecast.unit}` : "";
   const sentences = forecast.passing.map(one => {
     const top = one.above.indexOf(one.above.reduce((most, p) => Math.max(most, p), 0));
-    return `The probability that ${forecast.name} passes ${figure(one.threshold, 4)}${unit} in at least one of the ${forecast.horizon} periods is ${percent(one.ever)}; for a single period it is highest in ${forecast.times[Math.max(0, top)]}, ${percent(one.above[Math.max(0, top)])}.`;
+    return `The probability that ${forecast.name} passes ${figure(one.threshold, 4)}${unit} in at least one of the ${forecast.horizon} periods is ${chance(one.ever)}; for a single period it is highest in ${forecast.times[Math.max(0, top)]}, ${chance(one.above[Math.max(0, top)])}.`;
   });
   const shown = Math.min(forecast.horizon, mostRows);
   return [
@@ -70,6 +70,12 @@ function passingParts(forecast: Forecast): readonly Part[] {
       rows: Array.from({ length: shown }, (_, i) => [forecast.times[i], ...forecast.passing.map(one => one.above[i])]),
     },
   ];
+}
+
+/** A probability that is nearly certain is not called certain. */
+function chance(p: number): string {
+  if (p > 0.999) return "over 99.9%";
+  return p < 0.001 ? "under 0.1%" : percent(p);
 }
 
 function periodsTable(forecast: Forecast): TablePart {

@@ -44,8 +44,8 @@ describe("forecast shows", () => {
     expect(tables.at(-1)!.rows.map(row => row.at(-1)).slice(0, 2)).toEqual([0.05, NaN]);
     await expect(drawnCharts(parts)).resolves.toHaveLength(1);
   });
-  test("that the bands rest on the model and that a forecast is no advice", () => {
-    expect(texts(forecast.show(madeForecast(), show))).toMatch(/hold if the model does.*no advice/);
+  test("the long-run shape, and that a forecast is no advice", () => {
+    expect(texts(forecast.show(madeForecast(), show))).toMatch(/follows a line with the last season on it\..*no advice/);
   });
 });
 
