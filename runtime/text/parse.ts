@@ -70,8 +70,10 @@ function startReading(text: string, shapes: readonly Shape[], before: Memory): R
 }
 
 function readBlock(node: RootContent, { at, found }: SegmentedTree["numbers"][number], reading: Reading): void {
-  const place = placeOf(node);
-  if (place === null) return;
+  const stands = placeOf(node);
+  if (stands === null) return;
+  // The Markdown parser lets an underlined heading begin with the definitions before it.
+  const place = { from: Math.max(stands.from, reading.blocks.at(-1)?.to ?? 0), to: stands.to };
   const fence = node.type === "code" ? fenceOf(reading.text, node) : null;
   if (fence !== null && isCell(fence, reading)) {
     reading.blocks.push({ block: "cell", ...place, cell: reading.cells.length });

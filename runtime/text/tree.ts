@@ -54,10 +54,13 @@ export function segmentedTree(text: string, before: SegmentMemory): SegmentedTre
   return { root: { type: "root", children, position: { start: { line: 1, column: 1, offset: 0 }, end: { ...lineAt(text.length), offset: text.length } } }, numbers, memory };
 }
 
-/** Labels defined elsewhere are defined again behind the segment while it is read, since CommonMark reads `[a]` as a reference only where `a` is defined. */
+/** Labels defined elsewhere are defined again before the segment while it is read, since CommonMark reads `[a]` as a reference only where `a` is defined.
+ *  Before, not behind: a fence left open at the end would take in what follows. */
 function readSegment(text: string, foreign: readonly string[]): Segment {
-  const stubs = foreign.map((label) => `\n\n[${label}]: ${label.startsWith("^") ? "x" : "<#>"}`).join("");
-  const nodes = markdownTree(text + stubs).children.filter((node) => (placeOf(node)?.from ?? 0) < text.length);
+  const stubs = foreign.length === 0 ? "" : `${foreign.map((label) => `[${label}]: ${label.startsWith("^") ? "x" : "<#>"}\n\n`).join("")}***\n\n`;
+  const lines = stubs.split("\n").length - 1;
+  const all = markdownTree(stubs + text).children;
+  const nodes = stubs === "" ? all : all.filter((node) => (placeOf(node)?.from ?? 0) >= stubs.length).map((node) => shifted(node, -stubs.length, -lines));
   const labels: string[] = [];
   for (const node of nodes) {
     walk(node, (each) => {
