@@ -46,7 +46,7 @@ function ratioPart(tests: readonly NamedTest[]): Part {
 function testTable(tests: readonly NamedTest[], level: number): TablePart {
   return {
     part: "table", title: "Test by test",
-    columns: [{ title: "test" }, { title: "null hypothesis" }, { title: "statistic", align: "right", format: ".3f" }, { title: "p", align: "right" }, { title: "lags, and how chosen" }, { title: `reading at ${percent(level)}` }],
+    columns: [{ title: "test" }, { title: "null hypothesis" }, { title: "statistic", align: "right", format: ".3f" }, { title: "p", align: "right" }, { title: "lags, and how chosen" }, { title: `reading at ${percent(1 - level)}` }],
     rows: tests.map(({ name, test }) => [
       name, test.nullHypothesis, test.statistic, test.status === "unavailable" ? "–" : pText(test.p, test.bound).replace(/^p (= )?/, ""),
       test.lags === undefined ? "" : `${test.lags}${test.lagRule ? ` (${test.lagRule})` : ""}`, reading(test, level),
