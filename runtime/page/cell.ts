@@ -28,7 +28,7 @@ export function chartKey(cell: string, index: number): string { return `${cell}/
 export function cellTree(cell: CellReport, key: string, context: CellContext): Tree {
   const source = context.canEdit ? { "data-act": "source", "data-from": cell.from, "data-to": cell.to } : {};
   const label = cell.name ?? cell.kind;
-  return h("section", { class: "cell", id: cell.name ? `cell-${cell.name}` : null, key, "data-block": cell.id, "data-state": cell.state, "data-kind": cell.kind, "aria-label": cell.name ? `${cell.kind} ${cell.name}` : cell.kind, "aria-busy": cell.state === "working" ? "true" : null },
+  return h("section", { class: "cell", id: cell.name ? `cell-${cell.name}` : null, key, "data-block": cell.id, "data-from": context.still ? cell.from : null, "data-state": cell.state, "data-kind": cell.kind, "aria-label": cell.name ? `${cell.kind} ${cell.name}` : cell.kind, "aria-busy": cell.state === "working" ? "true" : null },
     h("div", { class: "cell-margin" },
       context.canEdit ? h("button", { type: "button", class: "cell-name", ...source, "aria-label": `${label}: go to its source` }, label) : h("span", { class: "cell-name" }, label),
       cell.name ? h("span", { class: "cell-kind" }, cell.kind) : null,
@@ -83,7 +83,7 @@ function chartTree(part: ChartPart, key: string, context: CellContext, source: R
   return h("figure", { class: "part part-chart", key: `chart ${key}` },
     h("figcaption", {}, h("span", { class: "chart-title" }, part.title), context.still ? null : chartMenu(key, context.asTable(key))),
     h("div", { class: "outlet", ...source }, h("div", box)),
-    h("p", { class: "chart-alt" }, part.alt),
+    h("p", { class: "chart-alt", "aria-hidden": "true" }, part.alt),
     context.asTable(key) ? chartDataTable(part) : null);
 }
 

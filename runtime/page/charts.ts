@@ -14,6 +14,8 @@ export interface Charts {
   want(key: string, part: ChartPart): void;
   part(key: string): ChartPart | null;
   svg(key: string): Promise<string | null>;
+  /** Draws those out of sight too: the page is about to be printed. */
+  drawAll(): void;
   /** Resolves when every chart in sight shows what it should. */
   drawn(): Promise<void>;
 }
@@ -97,6 +99,7 @@ export function charts(announce: (words: string) => void): Charts {
     want(key, part) { const place = places.get(key); if (place && place.part !== part) { place.part = part; if (place.seen || place.chart === null) void draw(place); else drawLater(place); } },
     part: (key) => places.get(key)?.part ?? null,
     async svg(key) { const place = places.get(key); if (!place) return null; await place.busy; return place.chart ? place.chart.svg() : null; },
+    drawAll() { for (const place of places.values()) { place.near = true; void draw(place); } },
     async drawn() { await Promise.all([...places.values()].map((place) => place.busy)); },
   };
 }

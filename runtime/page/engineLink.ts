@@ -44,11 +44,11 @@ export function engineLink(source: string, ears: EngineEars): EngineLink {
     const now = performance.now();
     if (asked !== null) { ears.silent(now - asked); return; }
     asked = now; beat += 1;
-    worker.postMessage({ to: "ping", beat } satisfies ToEngine);
+    worker.postMessage({ to: "ping", beat } satisfies ToEngine, []);
   }, beatMs);
 
   return {
-    send(message) { worker.postMessage(message); },
+    send(message) { worker.postMessage(message, []); },
     restart() { worker.terminate(); start(); },
     close() { clearInterval(timer); worker.terminate(); URL.revokeObjectURL(address); },
   };

@@ -16,6 +16,8 @@ const attributes = new Set(["accent", "accentunder", "columnalign", "columnlines
 /** @returns a `math` element, or the source in a marked `code` with what is wrong with it. */
 export function mathTree(tex: string, display: boolean): Tree {
   try {
+    // Its public functions give markup or live nodes only; the tree between them is what can be checked.
+    // oxlint-disable-next-line no-underscore-dangle
     const built = temml.__renderToMathMLTree(tex, { displayMode: display, throwOnError: true, trust: false, maxExpand: 500, maxSize: [10, 100] }) as Built;
     const [tree] = convert(built);
     if (tree && typeof tree !== "string" && tree.tag === "math") return h("math", { ...tree.attributes, "aria-label": tex }, tree.children);

@@ -16,6 +16,7 @@ import { h } from "./tree.ts";
 import type { Tree } from "./tree.ts";
 import { watchdog } from "./watchdog.ts";
 import type { FromPage, ParentLink, ToPage } from "./protocol.ts";
+import { stillPost } from "./stillPost.ts";
 import { statesPost } from "./statesPost.ts";
 import type { FromEngine, ToEngine } from "../engine/messages.ts";
 import css from "./page.css";
@@ -60,6 +61,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   const drawArticle = drawing(article, owner); const drawRest = drawing(rest, owner);
   const keepFocus = focusKeeper(root);
   const states = statesPost(state, post);
+  const stills = stillPost(state, post);
   const dog = watchdog(state, () => schedule());
   const engine = engineLink(workerSource, {
     hear: fromEngine, silent: (ms) => dog.silent(ms), answered: (running) => dog.answered(running),
@@ -76,7 +78,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
     hear(state, message);
     if (message.from === "cell") { settings.answered(message.cell); dog.reported(message.cell); }
     if (message.from === "outline") { document.title = message.title; post({ page: "outline", version: message.version, title: message.title, problems: message.problems }); for (const id of held) if (!state.blocks.some((block) => block.block === "cell" && block.cell === id)) held.delete(id); }
-    if (message.from === "settled") { settings.settled(message.moved); post({ page: "settled", version: message.version, moved: message.moved }); sayLater(); }
+    if (message.from === "settled") { settings.settled(message.moved); post({ page: "settled", version: message.version, moved: message.moved }); sayLater(); stills.settled(); }
     states.note(message);
     if (message.from === "settled") drawSoon(); else schedule();
   }
@@ -129,6 +131,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
       case "theme": if (message.theme === "auto") delete document.documentElement.dataset.theme; else document.documentElement.dataset.theme = message.theme; break;
       case "reveal": actions.reveal(message.position); break;
       case "canEdit": ui.canEdit = message.canEdit; root.classList.toggle("can-edit", message.canEdit); schedule(); break;
+      case "sendStills": stills.ask(); break;
       case "restart": engine.restart(); sayAllAgain(); break;
     }
   }
@@ -140,6 +143,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   });
   listen(root, actions);
   watchSize(article, (width) => engine.send({ to: "width", width }), live, (height) => post({ page: "height", height }));
+  window.addEventListener("beforeprint", () => charts.drawAll());
   engine.send({ to: "width", width: figureWidth(article) });
   parent?.listen(fromParent);
   post({ page: "ready" });

@@ -56,7 +56,7 @@ export function pageTrees(): PageTrees {
           if (mark !== undefined) notes[mark - 1] = keep(`note ${mark}`, [node, ...numbers, canAccept, context.canEdit], () => noteTree(node, mark, own));
           continue;
         }
-        trees.push(keep(`prose ${block.key}`, [node, common.signature, ...numbers, canAccept, context.canEdit], () => h("div", { class: `prose prose-${node.type}`, key: `prose ${block.key}`, "data-block": block.key }, prose(node, own))));
+        trees.push(keep(`prose ${block.key}`, [node, common.signature, ...numbers, canAccept, context.canEdit], () => h("div", { class: `prose prose-${node.type}`, key: `prose ${block.key}`, "data-block": block.key, "data-from": context.still ? block.from : null }, prose(node, own))));
         if (!titled && node.type === "heading") { titled = true; const list = contentsTree(common.anchors); if (list) trees.push(keep("contents", [JSON.stringify(list)], () => list)); }
       }
       const ends = notes.filter((note) => note !== undefined);

@@ -4,7 +4,7 @@
 import { fakeNotebook } from "./fakeNotebook.ts";
 import type { FromEngine, ToEngine } from "../../../runtime/engine/messages.ts";
 
-const post = (message: FromEngine): void => { (self as unknown as Worker).postMessage(message); };
+const post = (message: FromEngine): void => { (self as unknown as Worker).postMessage(message, []); };
 const fake = fakeNotebook();
 
 self.addEventListener("message", (event: MessageEvent) => {
