@@ -7,7 +7,7 @@ import { decode } from "../../cells/load/decode.ts";
 import { numericColumns, timeColumns } from "../../cells/load/columns.ts";
 import { sheetOf } from "../../cells/load/sheet.ts";
 import { acceptedText } from "./accept.ts";
-import { claimsSection, conclusions, loadCell, ordersCell, periodWords, sections, steadyCell } from "./beginText.ts";
+import { anyForm, claimsSection, conclusions, fourDigits, loadCell, ordersCell, periodWords, sections, steadyCell } from "./beginText.ts";
 import type { Orders, Plan, Recognised, Section } from "./beginText.ts";
 import { NoFile, readInside } from "./folder.ts";
 import { compute } from "./headless.ts";
@@ -94,7 +94,8 @@ async function write(folder: string, heading: string, data: Recognised, plan: Pl
   const holds = await ask(folder, body, possible.map((conclusion) => conclusion.condition), null);
   const claims = possible.length === 0 ? [] : [claimsSection(possible.filter((_, i) => holds[i] === true), possible.filter((_, i) => holds[i] === false).map(({ claim }) => claim))];
   const text = `${[...body, ...claims].join("\n\n").trimEnd()}\n`;
-  return acceptedText(text, (await compute({ text, folder, settings: [], allowCode: false })).numbers);
+  const { numbers } = await compute({ text, folder, settings: [], allowCode: false });
+  return acceptedText(text, numbers, anyForm, fourDigits);
 }
 
 async function bestOrders(folder: string, data: Recognised, plan: Plan): Promise<Orders> {

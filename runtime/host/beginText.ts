@@ -34,6 +34,16 @@ const every: Readonly<Record<string, readonly [one: string, many: string]>> = {
   P1Y: ["year", "years"], P3M: ["quarter", "quarters"], P1M: ["month", "months"], P1W: ["week", "weeks"], P1D: ["day", "days"], PT1H: ["hour", "hours"],
 };
 
+/** Stands for a number whose digits are chosen when it is known. */
+export const anyForm = "#";
+
+/** Four significant digits at least, thousands grouped.
+ *  @example fourDigits(11294.13) // "11,294" */
+export function fourDigits(value: number): string {
+  const decimals = value === 0 || !Number.isFinite(value) ? 0 : Math.max(0, Math.min(8, 3 - Math.floor(Math.log10(Math.abs(value)))));
+  return value.toLocaleString("en-US", { minimumFractionDigits: decimals, maximumFractionDigits: decimals });
+}
+
 /** A cell of the notebook. */
 function cell(head: string, ...options: readonly (string | null)[]): string {
   return ["```" + head, ...options.filter((line) => line !== null), "```"].join("\n");
@@ -62,7 +72,7 @@ export function sections(title: string, data: Recognised, plan: Plan, orders: Or
   return [
     { id: "data", needs: [], text: [
       `# ${title}`, "", `This first notebook was written from \`${data.file}\`. Everything in it can be changed: the text is yours.`, "", "## The data", "",
-      loadCell(data), "", `${recognisedWords(data)} The series has [0](=${name}.n) ${many}, from [-](=${name}.start) to [-](=${name}.times[${name}.n - 1]).${data.notes.length > 0 ? ` ${data.notes.map(sentence).join(" ")}` : ""}`, "",
+      loadCell(data), "", `${recognisedWords(data)} The series has [0](=${name}.n) ${many}, from [-](=${name}.start) to [-](<=${name}.times[${name}.n - 1]>).${data.notes.length > 0 ? ` ${data.notes.map(sentence).join(" ")}` : ""}`, "",
       cell("window: sample", `of: ${name}`, `label: "Sample"`), "", "Drag the ends of the window to leave early or late data out; all that follows uses the window.",
     ].join("\n") },
     { id: "steady", needs: ["data"], text: ["## To stationarity", "", stepsWords(plan, one), "", steadyCell(name, plan, "sample")].join("\n") },
@@ -73,14 +83,14 @@ export function sections(title: string, data: Recognised, plan: Plan, orders: Or
     { id: "orders", needs: ["steady"], text: ["## A model", "", ordersCell(plan), "",
       "Of [0](=orders.models.length) combinations of orders, the corrected Akaike criterion puts [-](=orders.best.label) first. Differences below two are no reason to prefer one model to another."].join("\n") },
     { id: "fit", needs: ["steady"], text: [cell("slider: p", "from: 0", `to: ${Math.max(4, orders.ar)}`, `at: ${orders.ar}`, `label: "Autoregressive order p"`), "", cell("slider: q", "from: 0", `to: ${Math.max(4, orders.ma)}`, `at: ${orders.ma}`, `label: "Moving-average order q"`), "",
-      cell("fit: model", "series: steady", "ar: p", "ma: q", season), "", "The model leaves a variance of [0.0000](=model.sigma2) one step ahead; its corrected Akaike criterion is [0.0](=model.aicc)."].join("\n") },
+      cell("fit: model", "series: steady", "ar: p", "ma: q", season), "", "The model leaves a variance of [#](=model.sigma2) one step ahead; its corrected Akaike criterion is [0.0](=model.aicc)."].join("\n") },
     { id: "diagnostics", needs: ["fit"], text: [cell("diagnostics: leftover", "model: model", `lags: ${plan.lags}`), "",
       `For the residuals the Ljung-Box test over [0](=leftover.ljungBox.lags) lags gives p = [0.00](=leftover.ljungBox.p).`].join("\n") },
     { id: "contest", needs: ["fit"], text: ["## Against naive rules", "",
       cell("compare: contest", `models: {"the model": model, ${rules.map(([label, rule]) => `${JSON.stringify(label)}: ${rule}`).join(", ")}}`, `origins: ${plan.origins}`, `horizon: ${plan.horizon}`), "",
       `Each was made to forecast from ${plan.origins} held-out origins, with the data up to there and nothing else. The smallest mean absolute scaled error, [0.00](=contest.best.mase), is that of [-](=contest.best.label).`].join("\n") },
     { id: "forecast", needs: ["fit"], text: ["## The forecast", "", cell("forecast: ahead", "model: model", `horizon: ${plan.horizon}`, "levels: [0.5, 0.9]"), "",
-      `For [-](=ahead.times[0]) the model expects [0.0](=ahead.mean[0]), and with 90% confidence between [0.0](=ahead.bands[1].low[0]) and [0.0](=ahead.bands[1].high[0]). The bands hold if the model does.`].join("\n") },
+      `For [-](=ahead.times[0]) the model expects [#](=ahead.mean[0]), and with 90% confidence between [#](=ahead.bands[1].low[0]) and [#](=ahead.bands[1].high[0]). The bands hold if the model does.`].join("\n") },
   ];
 }
 
@@ -105,7 +115,7 @@ function recognisedWords({ column, otherColumns, timeColumns, every: spacing, fi
   const values = column === null ? "the column of values" : `the column \`${column}\``;
   const times = timeColumns.length === 0 ? "no column of times, so the rows are only numbered" : `times in ${timeColumns.map((name) => `\`${name}\``).join(" and ")}${spacing === null ? "" : `, one value a ${one}${spacing in every ? "" : ` (\`${spacing}\`)`}`}`;
   const others = otherColumns.length === 0 ? "" : ` It also has ${otherColumns.map((name) => `\`${name}\``).join(", ")}: name one as \`value\` to use it instead.`;
-  return `In \`${file}\` there ${timeColumns.length === 0 ? "is" : "are"} ${times}; ${values} is the series.${others}`;
+  return `\`${file}\` has ${times}; ${values} is the series.${others}`;
 }
 
 function stepsWords({ logs, difference, seasonalDifference, season }: Plan, one: string): string {

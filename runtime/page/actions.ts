@@ -41,7 +41,8 @@ export function listen(root: HTMLElement, actions: Actions): void {
     if (end !== null) { delete field.dataset.typing; actions.windowTyped(field.dataset.name ?? "", end, field.value); }
   });
   root.addEventListener("focusout", (event) => { const field = event.target as HTMLElement; if (field.dataset?.typing) delete field.dataset.typing; });
-  root.addEventListener("keydown", (event) => onKey(event, actions));
+  // On the whole document: after a button that was pressed has gone, the focus is on the body.
+  root.ownerDocument.addEventListener("keydown", (event) => onKey(event, actions));
   root.addEventListener("pointerdown", (event) => onGrip(event, actions));
 }
 

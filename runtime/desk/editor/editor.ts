@@ -89,7 +89,7 @@ function extensionsOf(options: EditorOptions) {
       { key: "Alt-Enter", run: (view) => { options.pointed(view.state.selection.main.head); return true; } },
       ...closeBracketsKeymap, ...completionKeymap, ...lintKeymap, ...searchKeymap, ...historyKeymap, ...defaultKeymap, indentWithTab,
     ]),
-    EditorView.contentAttributes.of({ "aria-label": "Text of the notebook", spellcheck: "true" }),
+    EditorView.contentAttributes.of({ "aria-label": "Text of the notebook", spellcheck: "true", tabindex: "0" }),
     EditorView.updateListener.of((update) => { if (update.docChanged) options.changed(); }),
     EditorView.domEventHandlers({
       click: (event, view) => {
