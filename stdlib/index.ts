@@ -61,6 +61,9 @@ export { archLM, mcleodLi } from "./diagnostics/changingVariance.ts";
 export { durbinWatson } from "./diagnostics/durbinWatson.ts";
 export { cumulativePeriodogram, type CumulativePeriodogram } from "./diagnostics/cumulativePeriodogram.ts";
 export { cusum, largestBreak, type Cusum, type LargestBreak } from "./diagnostics/breaks.ts";
+export { outliers, type Outlier, type OutlierOptions, type Outliers, type OutlierType } from "./diagnostics/outliers.ts";
+export { quantiles, type Quantiles } from "./diagnostics/qq.ts";
+export { diagnostics, type Diagnostics, type DiagnosticsOptions } from "./diagnostics/diagnostics.ts";
 // evaluation
 export { bias, mae, mape, mase, mpe, naiveScale, rmse, rmsse, smape } from "./evaluation/accuracy.ts";
 export { crps, intervalScore, pinball } from "./evaluation/scores.ts";

@@ -23,7 +23,7 @@ export function archLM(x: Subject, lags?: number): Test & { readonly f?: number;
   const rows: number[] = [];
   for (let t = q; t < squares.length; t++) if (observed(squares, t - q, t)) rows.push(t);
   const n = rows.length;
-  if (n < q + 3) return unavailable(steady, n, `${n} complete rows are too few for a regression on ${q} lags`, { name, lags: q });
+  if (n < 2 * q + 8) return unavailable(steady, n, `${n} complete rows are too few for a regression on ${q} lags`, { name, lags: q });
   const X = new Float64Array(n * (q + 1)), y = new Float64Array(n);
   rows.forEach((t, i) => {
     y[i] = squares[t];
