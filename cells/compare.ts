@@ -1,6 +1,6 @@
 // The kind that ranks models: a grid of orders by a criterion, or fits and rules by their errors at held-out origins.
 
-import { gridOfOrders, rankFits, rollingOrigins, type Fit, type Forecaster, type Grid, type Lags, type Regressor, type Series } from "../stdlib/index.ts";
+import { gridOfOrders, rankFits, rollingOrigins, type Fit, type Forecaster, type Grid, type GridOptions, type Lags, type Regressor, type Season, type Series } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { compareParts, type Comparison } from "./parts/compareParts.ts";
 import { labelledModels } from "./parts/labelledModels.ts";
@@ -8,13 +8,12 @@ import { asOptionError, highestLag, needVaryingSeries } from "./parts/needs.ts";
 import { usualHorizon, usualOrigins } from "./parts/origins.ts";
 
 type Tried = number | readonly Lags[];
-interface SeasonTried { readonly length?: number; readonly ar?: Tried; readonly ma?: Tried }
 
 export interface CompareCell {
   readonly series?: unknown;
   readonly ar?: Tried;
   readonly ma?: Tried;
-  readonly season?: number | SeasonTried | readonly (SeasonTried | null | 0)[];
+  readonly season?: number | Season | readonly (Season | null | 0)[];
   readonly mean?: boolean;
   readonly regressors?: Readonly<Record<string, Regressor>>;
   readonly models?: unknown;
@@ -41,7 +40,7 @@ export const compareOptions: OptionTable = {
   series: { type: "series", sentence: "For a grid of orders: the series that every order is fitted to.", example: "steady" },
   ar: { type: "any", default: 0, sentence: "For a grid: a number n tries 0 to n autoregressive lags; a list tries each of its items.", example: "2" },
   ma: { type: "any", default: 0, sentence: "For a grid: a number n tries 0 to n moving-average lags; a list tries each of its items.", example: "2" },
-  season: { type: "any", sentence: "For a grid: seasonal orders as {length, ar, ma}, each tried like ar and ma; a number n tries 0 to n of both; a list tries each of its items.", example: "{ar: 1, ma: 1}" },
+  season: { type: "any", sentence: "For a grid: the season of every model, as in fit; a number n tries 0 to n seasonal lags of both sorts; a list tries each of its items, 0 being none.", example: "[0, {ma: 1}]" },
   mean: { type: "boolean", sentence: "For a grid: whether the models have a mean; as in fit unless given." },
   regressors: { type: "object", sentence: "For a grid: regressors by name, as in fit." },
   models: { type: "any", sentence: "Fits and rules to compare, as {label: model} or a list; all of one loaded series.", example: "[airline, rule.naive(crossings)]" },
@@ -111,7 +110,7 @@ async function gridOf(options: CompareCell, series: Series, rank: Criterion, con
   const seasons = seasonsOf(options.season);
   const grids: Grid[] = [];
   for (const season of seasons) {
-    grids.push(await gridOfOrders({ ...common, ...(season === null ? {} : { season }) }, {
+    grids.push(await gridOfOrders({ ...common, ...(season === undefined ? {} : { season }) }, {
       progress: (done, total, what) => { context.progress(grids.length * total + done, seasons.length * total, what); }, breathe: () => context.breathe(),
     }));
   }
@@ -127,22 +126,25 @@ function merged(grids: readonly Grid[], rank: Criterion): Grid {
   return { ...all, failures, asked, tried: asked, notes: [...all.notes, ...(failures.length > 0 ? [`${failures.length} of ${asked} orders could not be estimated; the reasons are listed.`] : [])] };
 }
 
-function seasonsOf(season: CompareCell["season"]): readonly (SeasonTried | null)[] {
-  if (season === undefined) return [null];
+/** A number n is a grid of 0 to n seasonal lags of both sorts; anything else stands for the orders that a fit would read in it. */
+function seasonsOf(season: CompareCell["season"]): readonly GridOptions["season"][] {
+  if (season === undefined) return [undefined];
   if (typeof season === "number") {
-    if (!Number.isInteger(season) || season < 0) throw new OptionError("season", `season is ${season}; a number n tries 0 to n seasonal lags, and an object such as {ar: 1, ma: 1} tries each`);
+    if (!Number.isInteger(season) || season < 0) throw new OptionError("season", `season is ${season}; a number n tries 0 to n seasonal lags, and an object such as {ma: 1} is one season to try`);
     return [{ ar: season, ma: season }];
   }
-  if (Array.isArray(season)) {
-    if (season.length === 0) throw new OptionError("season", "season is an empty list; give at least one item, such as {ma: 1}");
-    return (season as readonly (SeasonTried | null | 0)[]).map(item => {
-      if (item === null || item === 0) return null;
-      if (typeof item !== "object") throw new OptionError("season", `each item of season is an object such as {ma: 1}, or 0 for none; found ${String(item)}`);
-      // An item is what a fit takes: one order, not orders from 0 up.
-      return { ...item, ar: [(item.ar ?? 0) as Lags], ma: [(item.ma ?? 0) as Lags] };
-    });
-  }
-  return [season as SeasonTried];
+  if (!Array.isArray(season)) return [oneSeason(season)];
+  if (season.length === 0) throw new OptionError("season", "season is an empty list; give at least one item, such as {ma: 1}");
+  return (season as readonly unknown[]).map(oneSeason);
+}
+
+function oneSeason(item: unknown): GridOptions["season"] {
+  if (item === null || item === 0) return undefined;
+  if (typeof item !== "object" || Array.isArray(item)) throw new OptionError("season", `a season to try is an object such as {ma: 1}, or 0 for none; found ${String(item)}`);
+  const { length, ar = 0, ma = 0 } = item as Season;
+  highestLag(ar, "season");
+  highestLag(ma, "season");
+  return { ...(length === undefined ? {} : { length }), ar: [ar], ma: [ma] };
 }
 
 async function evaluated(models: readonly { readonly label: string; readonly model: Forecaster }[], rank: ErrorMeasure, options: CompareCell, context: RunContext): Promise<Comparison> {

@@ -54,8 +54,13 @@ describe("compare over a grid of orders", () => {
     expect(result.asked).toBe(4);
     expect(result.models).toHaveLength(4);
   });
+  test("takes one season as a fit does: the same for every model", async () => {
+    const { result } = await run({ series: steady, ar: 1, season: { length: 12, ma: 1 } });
+    if (result.how !== "criterion") throw new Error("expected a grid");
+    expect(result.models.map(row => row.fit.options.season)).toEqual([{ length: 12, ar: 0, ma: 1 }, { length: 12, ar: 0, ma: 1 }]);
+  });
   test("draws a second surface where seasonal orders vary", async () => {
-    const { result } = await run({ series: steady, ar: 1, ma: 0, season: { ar: 0, ma: 1 } });
+    const { result } = await run({ series: steady, ar: 1, ma: 0, season: 1 });
     const parts = compare.show(result, show);
     expect(parts.filter((p): p is ChartPart => p.part === "chart").map(p => p.title)).toEqual([
       "Order surface: how far AICc stands behind the best, each tile with its best seasonal orders",
