@@ -10,6 +10,8 @@ export interface Param<T> {
   /** What to give, in words, for messages. */
   readonly expected: string;
   readonly read: (value: unknown) => { readonly value: T } | null;
+  /** What to do instead, where a common slip is recognised. */
+  readonly slip?: (value: unknown) => string | null;
 }
 
 type Values<P extends readonly Param<unknown>[]> = { readonly [K in keyof P]: P[K] extends Param<infer T> ? T : never };
@@ -42,7 +44,7 @@ function argument(name: string, signature: string, param: Param<unknown>, given:
   const read = param.read(given ?? undefined);
   if (read !== null) return read.value;
   const found = given === undefined || given === null ? "is not given" : `is ${describe(given)}`;
-  throw new RangeError(`${name}: ${param.name} ${found}; give ${param.expected}${hint(given)}, as in ${signature}`);
+  throw new RangeError(`${name}: ${param.name} ${found}; ${param.slip?.(given) ?? `give ${param.expected}${hint(given)}, as in ${signature}`}`);
 }
 
 /** A common slip, recognised. */
@@ -90,7 +92,7 @@ export function text(name: string, expected = "a text in quotes"): Param<string>
 
 /** A time; a number is refused, because dates are quoted. */
 export function time(name: string): Param<string> {
-  return text(name, "a quoted time such as \"2019-03\"");
+  return { ...text(name, "a quoted time such as \"2019-03\""), slip: (value) => (typeof value === "number" ? `quote the date, as in "${value}"` : null) };
 }
 
 export function series(name = "series"): Param<Series> {

@@ -38,7 +38,8 @@ export function numericColumns(sheet: Sheet, except: readonly number[]): readonl
 }
 
 function holdsTimes(sheet: Sheet, column: number): boolean {
-  const cells = sheet.rows.map((row) => cellOf(row, column)).filter((cell) => !sheet.missing.has(cell));
+  // The first thousand rows show what a column holds.
+  const cells = sheet.rows.slice(0, 1000).map((row) => cellOf(row, column)).filter((cell) => !sheet.missing.has(cell));
   if (cells.length === 0) return false;
   const whole = cells.filter((cell) => /^[+-]?\d+$/.test(cell)).length;
   if (whole >= 0.9 * cells.length) return countsTime(cells, sheet.columns[column], sheet.named);

@@ -7,11 +7,12 @@ export type Decimal = "." | ",";
 const minus = /^[-−–]/;
 const grouping = /[\s\u00a0\u202f'’_]/g;
 const pointNumber = /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?$/;
-const groupedBy = (sign: string): RegExp => new RegExp(String.raw`^[+-]?\d{1,3}(?:[${sign}]\d{3})+(?!\d)`);
-const commaGroups = groupedBy(","), pointGroups = groupedBy(".");
+const commaGroups = /^[+-]?\d{1,3}(?:,\d{3})+(?:\.\d*)?$/;
+const pointGroups = /^[+-]?\d{1,3}(?:\.\d{3})+(?:,\d*)?$/;
 
 /** A number of a cell; null where the text is none. Empty text is null too. */
 export function numberOf(cell: string, decimal: Decimal): number | null {
+  if (decimal === "." && pointNumber.test(cell)) return Number(cell); // nearly every cell of nearly every file
   let text = cell.replace(minus, "-");
   if (/[\s\u00a0\u202f'’_]/.test(text)) {
     if (!/^[+-]?\d{1,3}(?:[\s\u00a0\u202f'’_]\d{3})+(?:[.,]\d*)?$/.test(text)) return null;
@@ -31,9 +32,9 @@ export function decimalOf(cells: Iterable<string>, separator: Separator): { read
   let comma = 0, point = 0;
   let unsure: string | null = null;
   for (const cell of cells) {
+    if (!cell.includes(",") && !cell.includes(".")) continue;
     if (!/^[-+−–]?[\d\s\u00a0\u202f'’.,]+$/.test(cell) || !/\d/.test(cell)) continue;
     const commas = cell.split(",").length - 1, points = cell.split(".").length - 1;
-    if (commas === 0 && points === 0) continue;
     if (commas > 0 && points > 0) { if (cell.lastIndexOf(",") > cell.lastIndexOf(".")) comma++; else point++; continue; }
     if (commas > 1) { point++; continue; } // 1,234,567 is grouped by commas
     if (points > 1) continue; // 5.3.2019 is a date; 1.234.567 settles only with the rest of the file

@@ -34,7 +34,7 @@ function hint(cell: string, found: DayOrder | null, given: DayOrder | undefined)
 
 /** A plain count 0, 1, 2, …: whole numbers, not all of them with the four digits of years or the six or eight of dates. */
 function isCount(cells: readonly string[]): boolean {
-  return cells.every((cell) => /^[+-]?\d{1,9}$/.test(cell)) && !cells.every((cell) => /^[+-]?(\d{4}|\d{6}|\d{8})$/.test(cell));
+  return /^[+-]?\d{1,9}$/.test(cells[0]) && cells.every((cell) => /^[+-]?\d{1,9}$/.test(cell)) && !cells.every((cell) => /^[+-]?(\d{4}|\d{6}|\d{8})$/.test(cell));
 }
 
 function decidedOrder(sheet: Sheet, cells: readonly string[]): DayOrder | null {

@@ -49,10 +49,10 @@ export function cellOf(row: Row, column: number): string {
   return row.cells[column] ?? "";
 }
 
-/** Whether a column holds numbers: most of what is in it reads as one. */
+/** Whether a column holds numbers: most of what is in its first rows reads as one. */
 export function isNumeric(sheet: Sheet, column: number): boolean {
   let numbers = 0, others = 0;
-  for (const row of sheet.rows) {
+  for (const row of sheet.rows.slice(0, 5000)) {
     const cell = cellOf(row, column);
     if (sheet.missing.has(cell)) continue;
     if (numberOf(cell, sheet.decimal) === null) others++;

@@ -1,6 +1,6 @@
 // Aggregation to a longer period: sums, means or last values of whole periods.
 
-import { periodIndex, periodOf, shifted } from "./calendar.ts";
+import { gridIndex, periodOf, shifted } from "./calendar.ts";
 import { dayMs } from "./civil.ts";
 import { everyInWords, formatEvery, parseEvery } from "./every.ts";
 import { formatPeriod, period, startMs, type Period } from "./period.ts";
@@ -29,7 +29,7 @@ export function groupsOf(series: Series, every: string): readonly { readonly tim
   if (!isLonger(longer, own, first)) throw new RangeError(`aggregate: ${series.name || "the series"} comes every ${everyInWords(series.every)}, and ${JSON.stringify(every)} does not hold whole numbers of that; choose a longer period`);
   const lead = first.unit === "week" ? 3 * dayMs : 0; // an ISO week belongs to the period of its Thursday
   const groups: { time: string; from: number; end: number }[] = [];
-  const keyAt = (k: number): number => keyOf(startMs(shifted(first, own, k)) + lead, every);
+  const keyAt = (k: number): number => gridIndex(startMs(shifted(first, own, k)) + lead, longer);
   let from = 0;
   for (let t = 1; t <= series.n; t++) {
     if (t < series.n && keyAt(t) === keyAt(from)) continue;
@@ -47,14 +47,11 @@ function isLonger(longer: { months: number; ms: number }, own: { months: number;
   return own.months === 0 && longer.ms > own.ms && longer.ms % own.ms === 0 && first.unit !== "week";
 }
 
-function keyOf(ms: number, every: string): number {
-  return periodIndex(formatPeriod(period("time", ms, "Z", 1)), every);
-}
-
 /** The period of a spacing that contains an instant, in its usual form. */
 function namedPeriod(ms: number, every: string): Period {
-  const key = keyOf(ms, every);
-  const { months, ms: spacingMs } = parseEvery(every);
+  const spacing = parseEvery(every);
+  const key = gridIndex(ms, spacing);
+  const { months, ms: spacingMs } = spacing;
   if (months === 3) return period("quarter", key);
   if (months % 12 === 0 && months > 0) return period("year", key * (months / 12));
   if (months > 0) return period("month", key * months);

@@ -81,7 +81,7 @@ export function positionsOf(series: Pick<Series, "start" | "every">, ms: ArrayLi
  *  neighbouring periods differ by 1. Months, quarters and years count from year 0, weeks from a Monday, the rest from 1970. */
 export function periodIndex(time: string, every: string | null): number {
   const p = periodOf(time, every);
-  return every === null ? p.index : gridFloor(startMs(p), parseEvery(every));
+  return every === null ? p.index : gridIndex(startMs(p), parseEvery(every));
 }
 
 /** Numbers of the periods that a time text covers, half open, on the grid of `periodIndex`.
@@ -93,13 +93,14 @@ export function periodSpan(time: string, every: string | null): { readonly from:
   const spacing = parseEvery(every);
   const lead = spacing.ms === 7 * dayMs ? 3 * dayMs : 0; // a week belongs to the year of its Thursday
   const start = startMs(p), end = endMs(p);
-  const first = gridFloor(start, spacing);
-  const from = gridFloor(start - lead - 1, spacing) + 1;
-  const to = gridFloor(end - lead - 1, spacing) + 1;
+  const first = gridIndex(start, spacing);
+  const from = gridIndex(start - lead - 1, spacing) + 1;
+  const to = gridIndex(end - lead - 1, spacing) + 1;
   return to > from && (p.unit !== "day" || lead === 0) ? { from, to } : { from: first, to: first + 1 };
 }
 
-function gridFloor(ms: number, spacing: Spacing): number {
+/** Number of the period that contains an instant (UTC milliseconds), on the grid of `periodIndex`. */
+export function gridIndex(ms: number, spacing: Spacing): number {
   if (spacing.months > 0) {
     const { year, month } = civilFromDays(Math.floor(ms / dayMs));
     return Math.floor((year * 12 + month - 1) / spacing.months);
