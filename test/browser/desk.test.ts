@@ -223,7 +223,7 @@ describe("the desk", () => {
     await typeAfter(page, "The last line.", " Kept.");
     await served.stop();
     await page.waitForSelector("[data-notice=lost]", { timeout: 8000 });
-    expect(await page.evaluate(() => Object.keys(localStorage).filter((key) => key.startsWith("lagbook draft")).map((key) => localStorage.getItem(key)).join())).toContain("Kept.");
+    await expect.poll(() => page.evaluate(() => Object.keys(localStorage).filter((key) => key.startsWith("lagbook draft")).map((key) => localStorage.getItem(key)).join())).toContain("Kept.");
     served = await serve();
   });
 
