@@ -4,7 +4,8 @@ import { divideInto, lagDot } from "./kernels.ts";
 import { gradientInto, makeWork, valueAt, type Data, type Work } from "./likelihood.ts";
 import { inverseRoots, reflected } from "./roots.ts";
 import { isStable } from "./region.ts";
-import { makeShape, type Product, type Shape } from "./shape.ts";
+import type { Product, Shape } from "./shape.ts";
+import { otherStarts } from "./otherStarts.ts";
 import { hannanRissanen } from "./start.ts";
 import { quasiNewton, type Minimum, type Problem } from "../optimize/quasiNewton.ts";
 
@@ -33,6 +34,8 @@ export interface Search {
   readonly near?: Float64Array;
   readonly work?: Work;
   readonly evaluate?: Evaluate;
+  /** "one": the first start only. */
+  readonly starts?: "one";
 }
 
 /** Value and gradient of another likelihood (of the filter, where there are many gaps). */
@@ -62,27 +65,52 @@ export function estimate(search: Search): Estimate {
     gradientInto: (x: Float64Array, g: Float64Array) => gradientInto(work, data, x, g),
   };
   const problem = makeProblem(search, work, free, evaluate);
+  const maximise = (small: Shape): { x: Float64Array; innovations: Float64Array } | null => {
+    const own = makeWork(small, data.n, data.columns.length), none = new Float64Array(small.count).fill(NaN);
+    const plain: Evaluate = { value: x => valueAt(own, data, x), gradientInto: (x, g) => gradientInto(own, data, x, g) };
+    if (small.count === 0) return Number.isFinite(plain.value(none)) ? { x: none, innovations: own.er } : null;
+    const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, own, Int32Array.from(none.keys()), plain), hannanRissanen(small, search.bridged), 1e-3, 2 * SCOUT);
+    return Number.isFinite(plain.value(found.x)) ? { x: found.x, innovations: own.er } : null;
+  };
   if (free.length === 0) {
     const x = Float64Array.from(held);
     return { x, value: evaluate.value(x), converged: true, passes: 1, hessian: new Float64Array(0), free };
   }
   let best: Minimum | null = null, passes = 0;
-  const run = (x: Float64Array) => {
-    const found = quasiNewton(problem, pick(inside(shape, withHeld(x, held), held), free), TOLERANCE);
+  const run = (x: Float64Array, tolerance = TOLERANCE, rounds?: number): Minimum => {
+    const found = quasiNewton(problem, pick(inside(shape, withHeld(x, held), held), free), tolerance, rounds);
     passes += found.passes;
-    if (Number.isFinite(found.value) && (best === null || found.value < best.value - (found.converged || !best.converged ? 0 : 1e-6))) best = found;
     return found;
   };
-  if (search.near) run(search.near); else run(hannanRissanen(shape, search.bridged));
-  if (best === null) run(new Float64Array(shape.count));
-  if (!search.near && best !== null && suspicious(shape, full(best, free, held))) for (const x of otherStarts(search, full(best, free, held))) run(x);
+  const keep = (found: Minimum) => { if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found; };
+  keep(run(search.near ?? hannanRissanen(shape, search.bridged)));
+  if (best === null) keep(run(new Float64Array(shape.count)));
+  if (!search.near && search.starts !== "one" && best !== null && suspicious(shape, full(best, free, held))) {
+    for (const x of otherStarts(search, full(best, free, held), maximise)) {
+      // A few steps show whether a start leads anywhere new; only then is it followed to its end.
+      const first = run(x, 1e-3, SCOUT);
+      const rival = best as Minimum;
+      if (first.value < rival.value + 3 && apart(first, rival)) keep(run(full(first, free, held)));
+    }
+  }
   if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
   const found = best as Minimum;
-  return { x: full(found, free, held), value: found.value, converged: found.converged, passes, hessian: found.hessian, free };
+  return { x: invertible(shape, full(found, free, held), held), value: found.value, converged: found.converged, passes, hessian: found.hessian, free };
 }
 
 /** Predicted gain in log-likelihood below which a search stops: far below the 1e-6 that anyone could notice. */
 const TOLERANCE = 1e-9;
+
+/** Steps given to a start before it is compared with the best so far. */
+const SCOUT = 8;
+
+/** Whether two points are more than a hundredth of a standard error apart, by the search's own curvature. */
+function apart(a: Minimum, b: Minimum): boolean {
+  const k = a.x.length;
+  let sum = 0;
+  for (let i = 0; i < k; i++) for (let j = 0; j < k; j++) sum += (a.x[i] - b.x[i]) * b.hessian[i * k + j] * (a.x[j] - b.x[j]);
+  return !(Math.abs(sum) < 0.01);
+}
 
 function withHeld(x: Float64Array, held: Float64Array): Float64Array {
   return Float64Array.from(held, (v, i) => Number.isNaN(v) ? x[i] : v);
@@ -93,6 +121,16 @@ function pick(x: Float64Array, free: Int32Array): Float64Array { return Float64A
 function full(found: Minimum, free: Int32Array, held: Float64Array): Float64Array {
   const x = Float64Array.from(held);
   free.forEach((at, i) => { x[at] = found.x[i]; });
+  return x;
+}
+
+/** The moving-average side's reflection into the region, where the search ended a little outside. */
+function invertible(shape: Shape, x: Float64Array, held: Float64Array): Float64Array {
+  for (const f of factors(shape)) {
+    const c = x.subarray(f.from, f.from + f.lags.length);
+    if (f.sign > 0 || f.lags.length === 0 || f.lags.some((_, i) => !Number.isNaN(held[f.from + i])) || isStable(f.lags, c, f.sign, true)) continue;
+    c.set(reflected(c));
+  }
   return x;
 }
 
@@ -114,6 +152,9 @@ function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Eva
     && f.lags.every((_, i) => Number.isNaN(held[f.from + i])));
   // A moving average held outside the region is the author's wish (the likelihood is then the filter's).
   const whole = parts.map(f => f.sign < 0 && f.lags.every((_, i) => !Number.isNaN(held[f.from + i])));
+  // Across the circle the likelihood goes on smoothly (it is that of the reflection), and so may the search, a little: as far
+  // as the recursion's growth costs no digits. Turning back at the edge would cost it the curvature it has learnt.
+  const slack = parts.map((f, p) => f.sign < 0 && dense[p] ? Math.min(0.05, 4 * f.lags[0] / search.data.n) : 0);
   return {
     size: free.length,
     value(z) {
@@ -121,7 +162,7 @@ function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Eva
       let mended = false;
       for (let p = 0; p < parts.length; p++) {
         const f = parts[p], c = x.subarray(f.from, f.from + f.lags.length);
-        if (whole[p] || isStable(f.lags, c, f.sign, f.sign < 0)) continue;
+        if (whole[p] || isStable(f.lags, c, f.sign, f.sign < 0, slack[p])) continue;
         // Outside: the likelihood of a moving average is that of its reflection, so go on from there; a process that is not
         // stationary has none, and the step is shortened.
         if (f.sign > 0 || !dense[p]) return Infinity;
@@ -211,10 +252,9 @@ export function productJacobian(shape: Shape, x: Float64Array, free: Int32Array)
 function suspicious(shape: Shape, x: Float64Array): boolean {
   const parts = factors(shape);
   const near = parts.map(f => edge(f, x));
-  if ((parts[0].lags.length > 0 && parts[2].lags.length > 0) || (parts[1].lags.length > 0 && parts[3].lags.length > 0)) {
-    return near.some(m => m < 1.02) || distance(shape, x) < 0.25 || x.length >= 5;
-  }
-  return near[2] < 1.02 || near[3] < 1.02;
+  if (near[2] < 1.07 || near[3] < 1.03) return true;
+  const mixed = (parts[0].lags.length > 0 && parts[2].lags.length > 0) || (parts[1].lags.length > 0 && parts[3].lags.length > 0);
+  return mixed && (near[0] < 1.01 || near[1] < 1.01 || distance(shape, x) < 0.5);
 }
 
 /** Smallest modulus of a factor's roots, in its own step. */
@@ -244,50 +284,4 @@ export function distance(shape: Shape, x: Float64Array): number {
     for (let s = 0; s < a.re.length; s++) for (let t = 0; t < b.re.length; t++) least = Math.min(least, Math.hypot(a.re[s] - b.re[t], a.im[s] - b.im[t]));
   }
   return least;
-}
-
-/** Other places to start from: nothing, the model one lag smaller, and both sides moved together to either end. */
-function otherStarts(search: Search, found: Float64Array): Float64Array[] {
-  const { shape, held } = search;
-  const out: Float64Array[] = [new Float64Array(shape.count)];
-  const smaller = oneLagSmaller(search);
-  if (smaller) out.push(smaller);
-  const parts = factors(shape);
-  if (found.length > 0 && parts[0].lags.length > 0 && parts[2].lags.length > 0) {
-    for (const c of [0.7, -0.7]) {
-      const x = new Float64Array(shape.count);
-      if (parts[0].lags[0] === 1) x[parts[0].from] = c;
-      if (parts[2].lags[0] === 1) x[parts[2].from] = -0.8 * c;
-      out.push(x);
-    }
-  }
-  if (parts[1].lags.length > 0 && parts[3].lags.length > 0) {
-    const x = new Float64Array(shape.count);
-    x[parts[1].from] = 0.8;
-    x[parts[3].from] = -0.5;
-    out.push(x);
-  }
-  return out.map(x => withHeld(x, held));
-}
-
-function oneLagSmaller(search: Search): Float64Array | null {
-  const { shape, data, held } = search;
-  const parts = factors(shape);
-  const drop = parts[2].lags.length >= parts[0].lags.length ? 2 : 0;
-  if (parts[drop].lags.length === 0 || search.evaluate || held.some(v => !Number.isNaN(v))) return null;
-  const lags = parts.map((f, i) => Array.from(f.lags).slice(0, f.lags.length - (i === drop ? 1 : 0)));
-  const season = shape.season;
-  const small = makeShape(lags[0], lags[1].map(l => l / season), lags[2], lags[3].map(l => l / season), season);
-  if (small.count === 0) return null;
-  const work = makeWork(small, data.n, data.columns.length);
-  const none = new Float64Array(small.count).fill(NaN);
-  const free = Int32Array.from(none.keys());
-  const evaluate: Evaluate = { value: x => valueAt(work, data, x), gradientInto: (x, g) => gradientInto(work, data, x, g) };
-  const start = hannanRissanen(small, search.bridged);
-  const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, work, free, evaluate), start, 1e-5);
-  if (!Number.isFinite(found.value)) return null;
-  const x = new Float64Array(shape.count);
-  let at = 0;
-  parts.forEach((f, i) => { for (let j = 0; j < lags[i].length; j++) x[f.from + j] = found.x[at++]; });
-  return x;
 }

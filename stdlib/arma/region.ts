@@ -2,14 +2,15 @@
 
 import { stepDownInto } from "./presample.ts";
 
-/** Whether 1 - sum c_i B^lag_i has all roots outside the unit circle (on it too when `closed`). Lags ascending. */
-export function isStable(lags: ArrayLike<number>, c: ArrayLike<number>, sign: 1 | -1, closed = false): boolean {
+/** Whether 1 - sum c_i B^lag_i has all roots outside the unit circle (on it too when `closed`). Lags ascending.
+ *  @param slack  inverse roots up to 1 + slack (in the lags' common step) pass too */
+export function isStable(lags: ArrayLike<number>, c: ArrayLike<number>, sign: 1 | -1, closed = false, slack = 0): boolean {
   const count = lags.length;
   if (count === 0) return true;
   let total = 0;
   for (let i = 0; i < count; i++) total += Math.abs(c[i]);
   if (total < 1) return true;
-  if (count === 1) return Math.abs(c[0]) < 1 || (closed && Math.abs(c[0]) <= 1);
+  if (count === 1) return Math.abs(c[0]) < 1 || (closed && Math.abs(c[0]) <= 1 + slack);
   // Common step: lags 12 and 24 are a polynomial of degree 2 in B^12.
   let step = 0;
   for (let i = 0; i < count; i++) step = gcd(step, lags[i]);
@@ -17,7 +18,7 @@ export function isStable(lags: ArrayLike<number>, c: ArrayLike<number>, sign: 1 
   const a = new Float64Array(p + 1);
   for (let i = 0; i < count; i++) a[lags[i] / step] = sign * c[i];
   // On the circle the step-down ends in a partial autocorrelation of exactly 1: a hair's shrinking decides "closed".
-  if (closed) { let r = 1; for (let i = 1; i <= p; i++) { r *= 1 - 1e-12; a[i] *= r; } }
+  if (closed) { let r = 1; for (let i = 1; i <= p; i++) { r *= (1 - 1e-12) / (1 + slack); a[i] *= r; } }
   return stepDownInto(new Float64Array(p * (p + 1) / 2), a, p);
 }
 

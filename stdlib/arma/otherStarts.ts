@@ -1,0 +1,101 @@
+// Further places to start the search from, where the likelihood may have several maxima.
+
+import { factors, type Search } from "./estimate.ts";
+import { makeShape, type Shape } from "./shape.ts";
+
+/** The maximum of a smaller model, and its innovations. */
+export type Maximise = (shape: Shape) => { readonly x: Float64Array; readonly innovations: Float64Array } | null;
+
+/** Starts in the order phi, Phi, theta, Theta.
+ *  Further maxima of a mixed model sit where both sides share a nearly common factor, so the smaller model without it is
+ *  estimated and the innovations asked where a pair of factors would help most (a score test at each place of a grid). */
+export function otherStarts(search: Search, found: Float64Array, maximise: Maximise): Float64Array[] {
+  const { shape, held } = search;
+  const out: Float64Array[] = [];
+  const [ar, sar, ma, sma] = factors(shape);
+  const free = !held.some(v => !Number.isNaN(v)) && !search.evaluate;
+  const full = (lags: Int32Array) => lags.every((l, i) => l === i + 1);
+  if (ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags)) {
+    out.push(...pairs(search, 1, maximise));
+    if (ar.lags.length > 1 && ma.lags.length > 1) out.push(...pairs(search, 2, maximise));
+  } else if (ma.lags.length > 1 && free && full(ma.lags)) {
+    const small = maximise(reduced(shape, 0, 1));
+    if (small) out.push(padded(search, small.x, 0, 1, [], []));
+  } else out.push(new Float64Array(shape.count));
+  if (sar.lags.length > 0 && sma.lags.length > 0) {
+    for (const [a, b] of [[0.8, -0.5], [0, 0]]) {
+      const x = Float64Array.from(found);
+      x[sar.from] = a;
+      x[sma.from] = b;
+      out.push(x);
+    }
+  }
+  return out;
+}
+
+function reduced(shape: Shape, lessAr: number, lessMa: number): Shape {
+  const seasons = (lags: Int32Array) => Array.from(lags, l => l / shape.season);
+  const all = (count: number) => Array.from({ length: count }, (_, i) => i + 1);
+  return makeShape(all(shape.ar.plain.length - lessAr), seasons(shape.ar.seasonal), all(shape.ma.plain.length - lessMa), seasons(shape.ma.seasonal), shape.season);
+}
+
+/** Coefficients of the larger model from those of the smaller one, the plain factors multiplied by 1 + c_1 B + ... */
+function padded(search: Search, x: Float64Array, lessAr: number, lessMa: number, arFactor: readonly number[], maFactor: readonly number[]): Float64Array {
+  const { shape } = search;
+  const p = shape.ar.plain.length, P = shape.ar.seasonal.length, q = shape.ma.plain.length, Q = shape.ma.seasonal.length;
+  const out = new Float64Array(shape.count);
+  const phi = Array.from(x.subarray(0, p - lessAr), v => -v), theta = Array.from(x.subarray(p - lessAr + P, p - lessAr + P + q - lessMa));
+  times(phi, arFactor).forEach((v, i) => { out[i] = -v; });
+  for (let i = 0; i < P; i++) out[p + i] = x[p - lessAr + i];
+  times(theta, maFactor).forEach((v, i) => { out[p + P + i] = v; });
+  for (let i = 0; i < Q; i++) out[p + P + q + i] = x[p - lessAr + P + q - lessMa + i];
+  return out;
+}
+
+/** (1 + a_1 B + ...)(1 + b_1 B + ...), without the leading 1. */
+function times(a: readonly number[], b: readonly number[]): number[] {
+  const out = new Array<number>(a.length + b.length).fill(0);
+  a.forEach((v, i) => { out[i] += v; });
+  b.forEach((v, j) => { out[j] += v; });
+  a.forEach((v, i) => b.forEach((w, j) => { out[i + j + 1] += v * w; }));
+  return out;
+}
+
+interface Place { readonly factor: number[]; readonly shift: number[]; readonly gain: number; readonly at: readonly [number, number] }
+
+/** Starts with one (real) or two (complex) factors more on both sides than the smaller model. */
+function pairs(search: Search, order: 1 | 2, maximise: Maximise): Float64Array[] {
+  const small = maximise(reduced(search.shape, order, order));
+  if (small === null) return [];
+  const places: Place[] = [];
+  if (order === 1) for (const a of [-0.97, -0.9, -0.8, -0.65, -0.5, -0.3, -0.1, 0.1, 0.3, 0.5, 0.65, 0.8, 0.9, 0.97]) places.push(place(small.innovations, [-a], [a, 0]));
+  else for (const r of [0.7, 0.92]) for (let k = 1; k < 10; k++) places.push(place(small.innovations, [-2 * r * Math.cos(k * Math.PI / 10), r * r], [r * Math.cos(k * Math.PI / 10), r * Math.sin(k * Math.PI / 10)]));
+  places.sort((a, b) => b.gain - a.gain);
+  const chosen: Place[] = [];
+  for (const p of places) {
+    if (chosen.length === 3) break;
+    if (chosen.every(c => Math.hypot(c.at[0] - p.at[0], c.at[1] - p.at[1]) > 0.35)) chosen.push(p);
+  }
+  return chosen.map(p => {
+    // phi's factor differs from theta's by the shift that the score asks for, no more than keeps it inside.
+    const arFactor = p.factor.map((v, i) => v - clamp(p.shift[i], order === 1 ? 0.9 * (1 - Math.abs(v)) : 0.15));
+    return padded(search, small.x, order, order, arFactor, p.factor);
+  });
+}
+
+function clamp(v: number, bound: number): number { return Math.max(-bound, Math.min(bound, v)); }
+
+/** How much the sum of squares would fall with a pair of factors at this place: regression of e_t on the lags of factor^-1 e. */
+function place(e: Float64Array, factor: number[], at: readonly [number, number]): Place {
+  const [c1, c2 = 0] = factor;
+  let z1 = 0, z2 = 0, s11 = 0, s12 = 0, s22 = 0, b1 = 0, b2 = 0;
+  for (let t = 0; t < e.length; t++) {
+    s11 += z1 * z1; s12 += z1 * z2; s22 += z2 * z2; b1 += z1 * e[t]; b2 += z2 * e[t];
+    const z = e[t] - c1 * z1 - c2 * z2;
+    z2 = z1; z1 = z;
+  }
+  if (factor.length === 1) return { factor, shift: [b1 / s11], gain: b1 * b1 / s11, at };
+  const det = s11 * s22 - s12 * s12;
+  const d1 = (b1 * s22 - b2 * s12) / det, d2 = (b2 * s11 - b1 * s12) / det;
+  return { factor, shift: [d1, d2], gain: d1 * b1 + d2 * b2, at };
+}
