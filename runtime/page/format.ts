@@ -32,5 +32,5 @@ export function fieldText(value: number | string | boolean): string {
   if (!Number.isFinite(value)) return String(value);
   if (Number.isInteger(value)) return String(value);
   const digits = Math.max(0, 3 - Math.floor(Math.log10(Math.abs(value))));
-  return digits > 8 ? value.toPrecision(4) : value.toFixed(Math.min(digits, 4) || 1);
+  return digits > 5 ? value.toPrecision(4) : value.toFixed(Math.min(digits, 4) || 1);
 }

@@ -60,7 +60,7 @@ export function pageTrees(): PageTrees {
         if (!titled && node.type === "heading") { titled = true; const list = contentsTree(common.anchors); if (list) trees.push(keep("contents", [JSON.stringify(list)], () => list)); }
       }
       const ends = notes.filter((note) => note !== undefined);
-      if (ends.length > 0) trees.push(h("section", { class: "notes", key: "notes", "aria-label": "Notes" }, h("ol", {}, ends)));
+      if (ends.length > 0) trees.push(keep("notes", ends, () => h("section", { class: "notes", key: "notes", "aria-label": "Notes" }, h("ol", {}, ends))));
       kept = next;
       return trees;
     },

@@ -188,12 +188,12 @@ export function fakeNotebook(points = n): FakeNotebook {
 
   const speak = (): FromEngine[] => {
     const tree = parsed();
-    let count = 0; const cells = cellsOf(); let c = 0;
+    let count = 0; const cells = cellsOf(); let c = 0; const seen: string[] = [];
     const blocks: BlockReport[] = tree.children.map((node) => {
       const from = node.position?.start.offset ?? 0; const to = node.position?.end.offset ?? 0;
       if (node.type === "code" && node.lang?.endsWith(":")) return { block: "cell", key: `cell:${cells[c].id}`, from, to, cell: cells[c++].id };
       const own = links(node).map(() => count++);
-      return { block: "prose", key: `p${JSON.stringify(text.slice(from, to))}`, from, to, node, numbers: own };
+      return { block: "prose", key: `p${seen.push(text.slice(from, to)) && seen.filter((one) => one === text.slice(from, to)).length}${JSON.stringify(text.slice(from, to))}`, from, to, node, numbers: own };
     });
     return [{ from: "outline", version, title: "Vehicle crossings on the Skerry line", blocks, problems: [], definitions: tree.children.filter((node) => node.type === "footnoteDefinition" || node.type === "definition") },
       ...cells.map((cell) => ({ from: "cell" as const, cell })), ...numbersOf(blocks).map((number) => ({ from: "number" as const, number })), settled()];

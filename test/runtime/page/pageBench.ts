@@ -11,20 +11,31 @@ const here = import.meta.dirname;
 const top = join(here, "../../..");
 
 /** A worker has no document: some packages bring another file for that ("worker" condition). */
-async function bundle(entry: string, define: Record<string, string> = {}, conditions: string[] = []): Promise<string> {
-  const made = await build({ entryPoints: [entry], bundle: true, write: false, format: "iife", target: "es2022", minify: process.env.PLAIN !== "1", loader: { ".css": "text" }, define, conditions, logLevel: "error" });
+async function bundle(entry: string, define: Record<string, string> = {}, conditions: string[] = [], inject: string[] = []): Promise<string> {
+  const made = await build({ entryPoints: [entry], bundle: true, write: false, format: "iife", target: "es2022", minify: true, loader: { ".css": "text" }, define, conditions, inject, logLevel: "error" });
   return made.outputFiles[0].text;
 }
 
+export interface Served {
+  /** The worker's entry; the made-up engine by default. */
+  readonly engine?: string;
+  readonly inject?: string[];
+  readonly define?: Record<string, string>;
+  readonly text?: string;
+  /** Contents of files that the notebook may read. */
+  readonly files?: Readonly<Record<string, string>>;
+}
+
 /** The desk's part is played by this outer document: it keeps every message from the page in `heard`. */
-export async function outerDocument(engineEntry = join(here, "fakeEngine.ts"), text = fakeText): Promise<string> {
-  const engine = await bundle(engineEntry, {}, ["worker"]);
+export async function outerDocument({ engine: entry = join(here, "fakeEngine.ts"), inject = [], define = {}, text = fakeText, files = {} }: Served = {}): Promise<string> {
+  const engine = await bundle(entry, define, ["worker"], inject);
   const page = (await bundle(join(top, "runtime/page/entry.ts"), { LAGBOOK_ENGINE: JSON.stringify(engine) })).replaceAll("</script", "<\\/script");
   const hash = createHash("sha256").update(page).digest("base64");
   const policy = `default-src 'none'; script-src 'sha256-${hash}' blob:; worker-src blob:; style-src 'unsafe-inline'; img-src data: blob:; font-src data:; connect-src 'none'; form-action 'none'; base-uri 'none'; frame-src 'none'; object-src 'none'`;
   const inner = `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width"><title>Page</title><meta http-equiv="Content-Security-Policy" content="${policy}"></head><body><main id="page"></main><script>${page}</script></body></html>`;
-  const script = `const frame = document.querySelector("iframe"); window.heard = []; const canEdit = !location.hash.includes("read");
+  const script = `const frame = document.querySelector("iframe"); window.heard = []; const files = ${JSON.stringify(files).replaceAll("</script", "<\\/script")}; const canEdit = !location.hash.includes("read");
     addEventListener("message", (event) => { if (event.source !== frame.contentWindow) return; heard.push(event.data);
+      if (event.data.page === "needFile") { const found = files[event.data.file]; say({ to: "file", file: event.data.file, bytes: found === undefined ? null : new TextEncoder().encode(found) }); }
       if (event.data.page === "ready") { say({ to: "canEdit", canEdit }); say({ to: "text", version: 1, text: ${JSON.stringify(text).replaceAll("</script", "<\\/script")} }); } });
     window.say = (message) => frame.contentWindow.postMessage(message, "*");
     frame.srcdoc = ${JSON.stringify(inner).replaceAll("</script", "<\\/script").replaceAll("<!--", "<\\!--")};`;
@@ -33,8 +44,8 @@ export async function outerDocument(engineEntry = join(here, "fakeEngine.ts"), t
 
 export interface Stand { readonly browser: Browser; open(options?: { width?: number; height?: number; dark?: boolean; read?: boolean }): Promise<Page>; close(): Promise<void> }
 
-export async function stand(engineEntry?: string, text?: string): Promise<Stand> {
-  const body = await outerDocument(engineEntry, text);
+export async function stand(served: Served = {}): Promise<Stand> {
+  const body = await outerDocument(served);
   const browser = await chromium.launch({ executablePath: process.env.CHROMIUM ?? "/usr/bin/chromium", args: ["--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking", "--disable-component-update", "--disable-sync"] });
   return {
     browser,
