@@ -1,6 +1,6 @@
 // Measures of forecast accuracy and tests of it.
 
-import { bias, crps, dieboldMariano, intervalScore, mae, mape, mase, pinball, rmse, rmsse, smape } from "../../stdlib/index.ts";
+import { bias, binomialRange, crps, dieboldMariano, intervalScore, mae, mape, mase, pinball, rmse, rmsse, smape } from "../../stdlib/index.ts";
 import type { LibraryFunction } from "../kind.ts";
 import { define, figures, numbers, optional, settings, share, whole } from "./define.ts";
 
@@ -19,5 +19,6 @@ export const errorFunctions: readonly LibraryFunction[] = [
   define(topic, "pinball", [figures("actual"), figures("quantile"), share("level")], "Mean pinball loss of a quantile forecast; `level` is the quantile's probability.", (a, q, level) => pinball(a, q, level)),
   define(topic, "crps", [figures("actual"), figures("mean"), figures("se")], "Mean continuous ranked probability score of normal forecasts.", (a, m, se) => crps(a, m, se)),
   define(topic, "intervalScore", [figures("actual"), figures("low"), figures("high"), share("level")], "Mean interval score of bands of a level.", (a, low, high, level) => intervalScore(a, low, high, level)),
+  define(topic, "binomialRange", [whole("n", 1), share("p"), optional(share("level"))], "Share of n trials that chance alone gives an event of probability p, as {low, high}: for judging coverage.", (n, p, level) => binomialRange(n, p, level)),
   define(topic, "dieboldMariano", [numbers("errorsA"), numbers("errorsB"), optional(settings("options", ["horizon", "loss"]))], "Diebold-Mariano test of equal accuracy, as Harvey, Leybourne and Newbold correct it.", (a, b, options) => dieboldMariano(a, b, options as Parameters<typeof dieboldMariano>[2])),
 ];

@@ -1,11 +1,11 @@
 // Functions of identification and diagnostic checking: correlations, tests, spectra.
 
 import {
-  acf, adf, archLM, boxPierce, canovaHansen, ccf, cumulativePeriodogram, cusum, defaultSeasonLength, dfGls, durbinWatson, estimateLambda, jarqueBera, kpss, largestBreak, ljungBox, mcleodLi, monti, pacf,
-  phillipsPerron, seasonalStrength, spectrum, stl,
+  acf, adf, archLM, boxPierce, canovaHansen, ccf, cumulativePeriodogram, cusum, defaultSeasonLength, dfGls, durbinWatson, jarqueBera, kpss, largestBreak, ljungBox, mcleodLi, monti, outliers,
+  pacf, phillipsPerron, seasonalStrength, stl,
 } from "../../stdlib/index.ts";
 import type { LibraryFunction } from "../kind.ts";
-import { define, number, numbers, optional, series, settings, subject, whole, word } from "./define.ts";
+import { define, fit, number, numbers, optional, series, settings, subject, whole, word } from "./define.ts";
 
 const correlations = "correlations", unitRoots = "unit roots", checks = "diagnostics", season = "season and spectrum";
 
@@ -28,8 +28,7 @@ export const identifyFunctions: readonly LibraryFunction[] = [
   define(checks, "cumulativePeriodogram", [subject(), optional(number("taper", { min: 0, max: 0.5, expected: "a share from 0 to 0.5" }))], "Bartlett's test of white noise by the cumulative periodogram.", (x, taper) => cumulativePeriodogram(x, taper)),
   define(checks, "cusum", [subject()], "CUSUM test of a constant mean.", (x) => cusum(x)),
   define(checks, "largestBreak", [subject(), optional(number("trim", { min: 0.01, max: 0.49, expected: "a share from 0.01 to 0.49" }))], "Largest-break test of a constant mean, with the break's date.", (x, trim) => largestBreak(x, trim)),
-  define(season, "spectrum", [numbers("series"), optional(settings("options", ["smooth", "taper"]))], "Periodogram, raw or smoothed.", (x, options) => spectrum(x, options as Parameters<typeof spectrum>[1])),
-  define(season, "estimateLambda", [series(), optional(word("how", ["guerrero", "likelihood"]))], "Box-Cox lambda by Guerrero's method or by likelihood.", (s, how) => estimateLambda(s, how)),
+  define(checks, "outliers", [fit(), optional(settings("options", ["critical", "types", "decay", "most", "again"]))], "Outliers of a fit by type, each with the regressor to add (Chen and Liu 1993).", (m, options) => outliers(m, options as Parameters<typeof outliers>[1])),
   define(season, "stl", [series(), optional(settings("options", ["length", "seasonalWindow", "trendWindow", "lowPassWindow", "robust", "seasonalDegree"]))], "Season, trend and rest by loess.", (s, options) => stl(s, options as Parameters<typeof stl>[1])),
   define(season, "seasonalStrength", [series(), optional(whole("length", 2))], "Strength of season and trend, each between 0 and 1; null where the data cannot say.", (s, length) => {
     const periods = length ?? defaultSeasonLength(s.every);

@@ -1,11 +1,12 @@
 // Functions of models: theory, simulation, rules of comparison, interventions.
 
 import {
-  easterEffect, halfLife, harmonics, isFit, levelShift, piWeights, psi, pulse, ramp, rule, simulate, temporaryChange, theoreticalAcf, theoreticalPacf, tradingDays,
-  type Fit, type Forecaster,
+  easterEffect, halfLife, harmonics, impulseResponse, interpolate, isFit, levelShift, longRun, piWeights, psi, pulse, ramp, rule, simulate, temporaryChange, theoreticalAcf, theoreticalPacf,
+  theoreticalSpectrum, tradingDays,
+  valuesOf, type Fit, type Forecaster,
 } from "../../stdlib/index.ts";
 import type { LibraryFunction } from "../kind.ts";
-import { define, fit, forecasterOf, number, optional, param, series, settings, time, whole, type Param } from "./define.ts";
+import { define, fit, forecasterOf, number, numbers, optional, param, series, settings, time, whole, type Param } from "./define.ts";
 
 const theory = "models", rules = "rules", regressors = "regressors";
 
@@ -15,9 +16,13 @@ type Coefficients = Parameters<typeof theoreticalAcf>[0];
 export const modelFunctions: readonly LibraryFunction[] = [
   define(theory, "psi", [model("fit"), whole("n")], "Weights of present and past shocks, psi[0] = 1, up to lag n.", (m, n) => psi(m, n)),
   define(theory, "piWeights", [model("fit"), whole("n", 1)], "Weights of past values in the autoregressive form; [0] is lag 1.", (m, n) => piWeights(m, n)),
-  define(theory, "halfLife", [fit()], "Periods until half of a shock's effect is gone.", (m) => halfLife(m)),
+  define(theory, "impulseResponse", [fit(), whole("n")], "Effect of a shock of 1 on the levels, differences undone, from lag 0.", (m, n) => impulseResponse(m, n)),
+  define(theory, "longRun", [model("fit")], "Mean and variance that the modelled series settles at, as {mean, variance}.", (m) => longRun(m)),
+  define(theory, "halfLife", [model("fit")], "Periods until half of a shock's effect is gone.", (m) => halfLife(m)),
   define(theory, "theoreticalAcf", [model("model"), whole("lags")], "Autocorrelations that a model implies, from lag 0.", (m, lags) => theoreticalAcf(m, lags)),
   define(theory, "theoreticalPacf", [model("model"), whole("lags")], "Partial autocorrelations that a model implies, from lag 0.", (m, lags) => theoreticalPacf(m, lags)),
+  define(theory, "theoreticalSpectrum", [model("model"), numbers("frequencies")], "Spectral density that a model implies, at frequencies in radians a period, from 0 to pi.", (m, frequencies) => theoreticalSpectrum(m, valuesOf(frequencies))),
+  define(theory, "interpolate", [fit()], "Missing values of the fitted series under the model, with their standard errors.", (m) => interpolate(m)),
   define(theory, "simulate", [fit(), whole("n", 1, 10_000_000), optional(whole("seed"))], "A simulated series of n values from a fit; the same seed (1 unless given) gives the same values.", (m, n, seed = 1) => simulate(m, n, seed)),
   define(rules, "rule.naive", [series()], "The last value, for ever.", (s) => rule.naive(s)),
   define(rules, "rule.seasonalNaive", [series(), optional(whole("length", 2))], "The last season, again and again.", (s, length) => rule.seasonalNaive(s, length)),

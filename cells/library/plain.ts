@@ -1,10 +1,10 @@
 // Plain functions of numbers and lists.
 
-import { valuesOf } from "../../stdlib/index.ts";
+import { chiSquareUpper, normalCdf, normalQuantile, tUpper, valuesOf } from "../../stdlib/index.ts";
 import type { LibraryFunction } from "../kind.ts";
-import { define, number, numbers, optional, whole } from "./define.ts";
+import { define, number, numbers, optional, share, whole } from "./define.ts";
 
-const topic = "plain";
+const topic = "plain", distributions = "distributions";
 const mostItems = 1_000_000;
 
 export const plainFunctions: readonly LibraryFunction[] = [
@@ -19,6 +19,10 @@ export const plainFunctions: readonly LibraryFunction[] = [
     return Math.sqrt(x);
   }),
   define(topic, "exp", [number("x", { expected: "a number; of a list, use list.map(x => exp(x))" })], "Exponential, the inverse of log.", Math.exp),
+  define(distributions, "normalCdf", [number("x")], "Probability that a standard normal is at most x.", (x) => normalCdf(x)),
+  define(distributions, "normalQuantile", [share("p")], "Value that a standard normal stays below with probability p.", (p) => normalQuantile(p)),
+  define(distributions, "chiSquareUpper", [number("x"), number("df", { min: 0, expected: "a number above 0" })], "Probability that a chi-square exceeds x: the p-value of a statistic.", (x, df) => chiSquareUpper(x, df)),
+  define(distributions, "tUpper", [number("x"), number("df", { min: 0, expected: "a number above 0" })], "Probability that a Student's t exceeds x.", (x, df) => tUpper(x, df)),
 ];
 
 /** A function of one list or series, or of several numbers. Unlike the others it takes any count of arguments. */
