@@ -77,6 +77,10 @@ export { modelConfidenceSet, type ConfidenceSet } from "./evaluation/modelConfid
 // decompose
 export { stl, type Decomposition, type StlOptions } from "./decompose/stl.ts";
 export { seasonalStrength, type SeasonalStrength } from "./decompose/seasonalStrength.ts";
+export { decompose, subseries, type ClassicalDecomposition, type Subseries } from "./decompose/decompose.ts";
+export { estimateLambda, lambdaProfile, type LambdaOptions, type LambdaProfile } from "./decompose/lambda.ts";
+export { rangeMean, type RangeMean } from "./decompose/rangeMean.ts";
+export { spectrum, type Spectrum, type SpectrumOptions } from "./decompose/spectrum.ts";
 // distributions
 export { betaInc, erfc, gammaP, gammaQ, logGamma } from "./distributions/special.ts";
 export { normalCdf, normalDensity, normalQuantile, normalUpper } from "./distributions/normal.ts";

@@ -26,7 +26,7 @@ export function seasonalStrength(x: Series | ArrayLike<number>, length: number):
     return whole > 0 ? Math.max(0, 1 - noise / whole) : 0;
   };
   const s = share(seasonal), t = share(trend);
-  const word = s > 0.64 ? "strong: a seasonal difference is usual above 0.64" : s > 0.3 ? "moderate" : "weak";
+  const word = s > 0.64 ? "a strong season; above 64% a seasonal difference is usual" : s > 0.3 ? "a moderate season" : "a weak one";
   return { seasonal: s, trend: t, sentence: `The season explains ${(100 * s).toFixed(0)}% of what is left after the trend: ${word}.` };
 }
 

@@ -117,8 +117,8 @@ function summary(tests: Tests, found: Outliers, outside: readonly number[], lags
     const largest = outside.length === 0 ? "" : `; the largest is at lag ${outside.reduce((a, b) => (Math.abs(r[b]) > Math.abs(r[a]) ? b : a))}`;
     return { verdict: "autocorrelated", sentence: `The residuals are still autocorrelated over ${lags} lags (Ljung-Box ${printedP(lb.p)} on ${lb.df} df${largest}): the model leaves something to predict.${also}` };
   }
-  const single = outside.filter((k) => k <= lags), alone = single.length === 0 ? "" : ` (lag${single.length > 1 ? "s" : ""} ${joined(single.map(String))} ${single.length > 1 ? "are" : "is"} outside ${band.toFixed(2)} alone; about ${(alpha * lags).toFixed(1)} would be by chance)`;
-  return { verdict: signs.length === 0 ? "passes" : "other signs", sentence: `The residuals show no autocorrelation over ${lags} lags beyond chance (Ljung-Box ${printedP(lb.p)} on ${lb.df} df)${alone}; that does not show the model to be right.${also}` };
+  const single = outside.filter((k) => k <= lags), alone = single.length === 0 ? "" : `; ${single.length > 1 ? "by themselves lags" : "by itself lag"} ${joined(single.map(String))} ${single.length > 1 ? "are" : "is"} outside ${band.toFixed(2)}, where about ${(alpha * lags).toFixed(1)} would be by chance`;
+  return { verdict: signs.length === 0 ? "passes" : "other signs", sentence: `The residuals show no autocorrelation over ${lags} lags beyond chance (Ljung-Box ${printedP(lb.p)} on ${lb.df} df${alone}); that does not show the model to be right.${also}` };
 }
 
 function joined(list: readonly string[]): string {

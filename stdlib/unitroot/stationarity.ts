@@ -22,7 +22,7 @@ import { phillipsPerron } from "./phillipsPerron.ts";
 export interface StationarityOptions {
   readonly series: Series | ArrayLike<number>;
   readonly trend?: Trend;
-  /** Lagged differences of ADF and DF-GLS. */
+  /** Lagged differences of ADF and DF-GLS, or the criterion that chooses them; default AIC for the first, BIC for the second. */
   readonly lags?: LagChoice | null;
   /** Bandwidth of KPSS, Phillips-Perron and (where a number) the seasonal test. */
   readonly bandwidth?: Bandwidth | null;
@@ -52,7 +52,7 @@ export interface Stationarity {
  *  KPSS and DF-GLS know a constant and a straight trend only: for "none" they use a constant, for "quadratic" a straight trend, and say so.
  *  @throws RangeError for options out of range */
 export function stationarity(options: StationarityOptions): Stationarity {
-  const { series, trend = "constant", lags = "aic", bandwidth = "short", level = 0.95 } = options;
+  const { series, trend = "constant", lags = null, bandwidth = "short", level = 0.95 } = options;
   checkTrend("stationarity", trend);
   checkLevel("stationarity", level);
   const usual = isSeries(series) ? defaultSeasonLength(series.every) : null;
