@@ -2,6 +2,7 @@
 
 import { OptionError, type CodeBody, type Kind } from "./kind.ts";
 import { inWords } from "./parts/describe.ts";
+import { mixedFormat } from "./parts/format.ts";
 
 
 export const script: Kind<CodeBody, Readonly<Record<string, unknown>>> = {
@@ -18,6 +19,6 @@ export const script: Kind<CodeBody, Readonly<Record<string, unknown>>> = {
   show: (result) => {
     const rows = Object.entries(result).map(([name, value]) => [name, typeof value === "number" || typeof value === "boolean" ? value : inWords(value)]);
     if (rows.length === 0) return [{ part: "text", tone: "note", text: "This script exports nothing, so nothing can refer to it." }];
-    return [{ part: "table", columns: [{ title: "export" }, { title: "value", align: "right", format: ",.6~g" }], rows }];
+    return [{ part: "table", columns: [{ title: "export" }, { title: "value", align: "right", format: mixedFormat(rows.map(([, value]) => value)) }], rows }];
   },
 };

@@ -1,5 +1,6 @@
 // Rows as a table.
 
+import { isSeries } from "../stdlib/index.ts";
 import { OptionError, type Kind } from "./kind.ts";
 import type { TableColumn, TablePart } from "./parts/part.ts";
 import { cellOf, rowsOf, type Cell } from "./parts/rows.ts";
@@ -29,6 +30,10 @@ function tablePart(value: unknown, wanted: TableCell["columns"]): TablePart {
 }
 
 function allColumns(value: unknown): TablePart {
+  if (isSeries(value)) {
+    const title = value.unit === "" ? value.name || "value" : `${value.name || "value"} (${value.unit})`;
+    return built([{ title: value.every === null ? "number" : "period", cells: value.times }, { title, cells: Array.from(value.values) }], value.n);
+  }
   const { columns, n, times } = rowsOf(value);
   // Milliseconds are for charts; a reader has the period beside them.
   const names = Object.keys(columns).filter((name) => !(name in columns && times.includes(name) && "period" in columns) && !(name === "time" && "period" in columns));

@@ -2,8 +2,8 @@
 
 import { applyStep, cut, stepText, type Series, type Step } from "../stdlib/index.ts";
 import { OptionError, type Kind, type RunContext } from "./kind.ts";
-import { seriesChart, seriesSentence } from "./parts/seriesParts.ts";
-import { axisTitle, originalName } from "./parts/scale.ts";
+import { seriesChart } from "./parts/seriesParts.ts";
+import { originalName } from "./parts/scale.ts";
 import { stepFrom } from "./parts/stepFunctions.ts";
 import { capital, listOf } from "./parts/words.ts";
 
@@ -26,7 +26,7 @@ export const transform: Kind<TransformCell, Series> = {
   example: "series: crossings\nsteps: [log, difference(1)]",
   run: (options, context) => runTransform(options, context),
   show: (series, context) => [
-    { part: "text", text: `${capital(axisTitle(series))}${series.steps.length === 0 ? "" : `: ${originalName(series)} after ${listOf(series.steps.map(stepText))}`}. ${seriesSentence(series)}` },
+    { part: "text", text: `${capital(series.name || originalName(series))} is ${originalName(series)}${series.steps.length === 0 ? " as it is" : ` after ${listOf(series.steps.map(stepText))}`}.` },
     seriesChart(series, context),
     ...oneWay(series).map((text) => ({ part: "text" as const, tone: "note" as const, text })),
   ],

@@ -3,6 +3,7 @@
 import { isSeries } from "../stdlib/index.ts";
 import type { Kind } from "./kind.ts";
 import { inWords } from "./parts/describe.ts";
+import { mixedFormat } from "./parts/format.ts";
 import type { Part } from "./parts/part.ts";
 import { seriesChart } from "./parts/seriesParts.ts";
 
@@ -21,8 +22,9 @@ export const values: Kind<Named, Named> = {
     const entries = Object.entries(result);
     if (entries.length === 0) return [{ part: "text", tone: "note", text: "No names yet: write one a line, as in share: last(crossings) / mean(crossings)." }];
     const rows = entries.map(([name, value]) => [name, plainCell(value)]);
-    const table: Part = { part: "table", columns: [{ title: "name" }, { title: "value", align: "right", format: ",.6~g" }], rows };
-    return [table, ...entries.map(([, value]) => value).filter(isSeries).slice(0, mostPictures).map((series) => seriesChart(series, context))];
+    const table: Part = { part: "table", columns: [{ title: "name" }, { title: "value", align: "right", format: mixedFormat(rows.map(([, value]) => value)) }], rows };
+    const pictures = entries.flatMap(([name, value]) => (isSeries(value) ? [seriesChart(value.name === "" ? { ...value, name } : value, context)] : []));
+    return [table, ...pictures.slice(0, mostPictures)];
   },
 };
 

@@ -13,3 +13,9 @@ export function plain(value: number, digits = 4): string {
   const rest = (part ?? "").replace(/0+$/, "");
   return sign + whole.replace(/\B(?=(\d{3})+$)/g, ",") + (rest === "" ? "" : `.${rest}`);
 }
+
+/** d3-format pattern for a column of figures of mixed size: up to six digits, grouped; powers of ten only where some are tiny or huge. */
+export function mixedFormat(figures: readonly unknown[]): string {
+  const odd = figures.some((v) => typeof v === "number" && Number.isFinite(v) && v !== 0 && (Math.abs(v) < 1e-5 || Math.abs(v) >= 1e12));
+  return odd ? ",.6~g" : ",.6~r";
+}

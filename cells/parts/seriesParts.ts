@@ -50,7 +50,7 @@ function figuresOf(series: Series): readonly Part[] {
       { label: "span", value: `${series.start} to ${series.times[series.n - 1] ?? series.start}` },
       { label: "every", value: everyInWords(series.every) },
       { label: "missing", value: missing, format: ",d" },
-      { label: "mean", value: mean(series), format: ",.4~g", unit: series.unit },
+      { label: "mean", value: mean(series), format: ",.4~r", unit: series.unit },
     ],
   }];
 }
@@ -58,7 +58,7 @@ function figuresOf(series: Series): readonly Part[] {
 function rowsOf(all: readonly (readonly [string, Series])[]): Part {
   return {
     part: "table",
-    columns: [{ title: "series" }, { title: "span" }, { title: "every" }, { title: "periods", align: "right", format: ",d" }, { title: "missing", align: "right", format: ",d" }, { title: "mean", align: "right", format: ",.4~g" }, { title: "unit" }],
+    columns: [{ title: "series" }, { title: "span" }, { title: "every" }, { title: "periods", align: "right", format: ",d" }, { title: "missing", align: "right", format: ",d" }, { title: "mean", align: "right", format: ",.4~r" }, { title: "unit" }],
     rows: all.map(([name, s]) => [name, `${s.start} to ${s.times[s.n - 1] ?? s.start}`, everyInWords(s.every), s.n, s.values.reduce((sum, v) => sum + (Number.isNaN(v) ? 1 : 0), 0), mean(s), s.unit]),
   };
 }

@@ -174,8 +174,8 @@ function typedField(def: unknown, channel: string, rows: Rows | undefined, deriv
   if (typeof field["timeUnit"] === "string" && !field["timeUnit"].startsWith("utc")) result["timeUnit"] = `utc${field["timeUnit"]}`;
   if (isTime && positional && result["type"] === "temporal" && !("timeUnit" in field) && field["scale"] !== null) {
     result["scale"] = { type: "utc", ...(typeof field["scale"] === "object" ? field["scale"] : {}) };
-    if (!("title" in field) && field.field === "time") result["title"] = null;
   }
+  if (isTime && positional && !("title" in field) && field.field === "time") result["title"] = null;
   if (isTime && channel === "tooltip" && !("timeUnit" in field)) result["timeUnit"] = "utcyearmonthdate";
   return result;
 }

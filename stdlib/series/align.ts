@@ -12,6 +12,7 @@ export function lagged(series: Series, k: number): Series {
 }
 
 /** A function of two series, period by period, over the periods that both have. One of them may be a plain number.
+ *  The result has no name; its unit is that of both where they share one.
  *  @throws RangeError where the spacings differ or no period is shared */
 export function combine(a: Series | number, b: Series | number, f: (x: number, y: number) => number): Series {
   const call = (x: number, y: number): number => {
@@ -21,9 +22,9 @@ export function combine(a: Series | number, b: Series | number, f: (x: number, y
   };
   if (!isSeries(a)) {
     if (!isSeries(b)) throw new RangeError("combine: give at least one series");
-    return withValues(b, b.values.map((y) => call(a, y)), { unit: "" });
+    return withValues(b, b.values.map((y) => call(a, y)), { name: "", unit: "" });
   }
-  if (!isSeries(b)) return withValues(a, a.values.map((x) => call(x, b)), { unit: "" });
+  if (!isSeries(b)) return withValues(a, a.values.map((x) => call(x, b)), { name: "", unit: "" });
   const offset = offsetBetween(a, b);
   const from = Math.max(0, offset), to = Math.min(a.n, offset + b.n);
   if (to <= from) throw new RangeError(`combine: ${a.name || "the first series"} (${a.start} on) and ${b.name || "the second"} (${b.start} on) share no period`);

@@ -11,7 +11,8 @@ describe("table", () => {
   });
   it("shows a series by its periods, and columns side by side", async () => {
     const s = makeSeries({ name: "x", every: "P1M", start: "2019-01", values: [1, 2] });
-    expect((await runCell(table, { rows: s })).rows[1]).toEqual(["2019-02", 2, "x"]);
+    expect((await runCell(table, { rows: s })).rows).toEqual([["2019-01", 1], ["2019-02", 2]]);
+    expect((await runCell(table, { rows: s })).columns[1].title).toBe("x");
     expect((await runCell(table, { rows: { lag: [1, 2], r: Float64Array.of(0.5, 0.25) } })).rows).toEqual([[1, 0.5], [2, 0.25]]);
     expect((await runCell(table, { rows: [5, 6] })).rows).toEqual([[1, 5], [2, 6]]);
   });

@@ -20,7 +20,7 @@ describe("transform", () => {
     const [text, chart] = transform.show(s, { name: "steady", width: 700 });
     expect(text).toMatchObject({ part: "text" });
     if (text.part !== "text" || chart.part !== "chart") throw new Error("expected a text and a chart");
-    expect(text.text).toContain("crossings after log and difference(1)");
+    expect(text.text).toBe("Steady is crossings after log and difference(1).");
     expect((await draw(chart)).warnings).toEqual([]);
   });
   it("says what aggregating dropped", async () => {
