@@ -85,8 +85,9 @@ export function estimate(search: Search): Estimate {
   const keep = (found: Minimum) => { if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found; };
   keep(run(search.near ?? hannanRissanen(shape, search.bridged)));
   if (best === null) keep(run(new Float64Array(shape.count)));
-  if (!search.near && search.starts !== "one" && best !== null && suspicious(shape, full(best, free, held))) {
-    for (const x of otherStarts(search, full(best, free, held), maximise)) {
+  if (!search.near && search.starts !== "one" && best !== null) {
+    const at = full(best, free, held);
+    for (const x of otherStarts(search, at, suspicious(shape, at, data.n), maximise)) {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
       const rival = best as Minimum;
@@ -248,13 +249,26 @@ export function productJacobian(shape: Shape, x: Float64Array, free: Int32Array)
   return out;
 }
 
-/** Several maxima are likely where the two sides nearly cancel, or where the found one lies near the edge of the region. */
-function suspicious(shape: Shape, x: Float64Array): boolean {
+/** Several maxima are likely where a factor lies near the edge of the region, or where the two sides nearly cancel: where the
+ *  data hardly tell a pair of factors from none (a chi-square of n d^2 / (1 - b^2), d the inverse roots' distance). */
+function suspicious(shape: Shape, x: Float64Array, n: number): { plain: boolean; seasonal: boolean } {
   const parts = factors(shape);
   const near = parts.map(f => edge(f, x));
-  if (near[2] < 1.07 || near[3] < 1.03) return true;
-  const mixed = (parts[0].lags.length > 0 && parts[2].lags.length > 0) || (parts[1].lags.length > 0 && parts[3].lags.length > 0);
-  return mixed && (near[0] < 1.01 || near[1] < 1.01 || distance(shape, x) < 0.5);
+  const mixed = (i: number) => parts[i].lags.length > 0 && parts[i + 2].lags.length > 0;
+  return {
+    plain: near[2] < 1.07 || (mixed(0) && (near[0] < 1.01 || pairStatistic(parts[0], parts[2], x, n) < 16)),
+    seasonal: near[3] < 1.03 || (mixed(1) && (near[1] < 1.01 || pairStatistic(parts[1], parts[3], x, n) < 16)),
+  };
+}
+
+function pairStatistic(ar: Factor, ma: Factor, x: Float64Array, n: number): number {
+  const a = inverseRoots(denseFactor(ar, x)), b = inverseRoots(denseFactor(ma, x));
+  let least = Infinity;
+  for (let t = 0; t < b.re.length; t++) {
+    const room = Math.max(1e-3, 1 - b.re[t] ** 2 - b.im[t] ** 2);
+    for (let s = 0; s < a.re.length; s++) least = Math.min(least, n * ((a.re[s] - b.re[t]) ** 2 + (a.im[s] - b.im[t]) ** 2) / room);
+  }
+  return least;
 }
 
 /** Smallest modulus of a factor's roots, in its own step. */
@@ -272,16 +286,4 @@ export function denseFactor(f: Factor, x: Float64Array): Float64Array {
   const c = new Float64Array(f.lags.length > 0 ? f.lags[f.lags.length - 1] / step : 0);
   f.lags.forEach((lag, i) => { c[lag / step - 1] = -f.sign * x[f.from + i]; });
   return c;
-}
-
-/** Smallest distance between an inverse root of the autoregressive side and one of the moving-average side, by factor pairs. */
-export function distance(shape: Shape, x: Float64Array): number {
-  const parts = factors(shape);
-  let least = Infinity;
-  for (const [i, j] of [[0, 2], [1, 3]]) {
-    if (parts[i].lags.length === 0 || parts[j].lags.length === 0) continue;
-    const a = inverseRoots(denseFactor(parts[i], x)), b = inverseRoots(denseFactor(parts[j], x));
-    for (let s = 0; s < a.re.length; s++) for (let t = 0; t < b.re.length; t++) least = Math.min(least, Math.hypot(a.re[s] - b.re[t], a.im[s] - b.im[t]));
-  }
-  return least;
 }

@@ -76,12 +76,13 @@ function finish(numbers: Numbers, work: Work, found: Estimate, evaluate: Evaluat
     const estimated = [...part.lags.keys()].some(i => Number.isNaN(prepared.held[part.from + i]));
     if (estimated && moduli(part, x) < BOUNDARY) edge = true;
   }
-  evaluate.value(x);
   let information = null;
-  if (how.standardErrors !== false && !edge) {
+  if (how.standardErrors === false || edge) evaluate.value(x);
+  else {
     information = informationAt(work, numbers.data, x, free, evaluate, found.hessian);
     if (information.covariance === null) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: the information matrix is singular at the estimates, so some combination of the parameters is not determined by the data. Take fewer lags or regressors." });
-  } else if (how.standardErrors !== false) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: a root lies on the unit circle, the edge of the region, where the usual normal approximation does not hold." });
+  }
+  if (how.standardErrors !== false && edge) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: a root lies on the unit circle, the edge of the region, where the usual normal approximation does not hold." });
   const solution: Solution = {
     x, numbers, work, free, information, converged: found.converged, method: "exact", stationary: true, notes,
     beta: work.beta.slice(numbers.data.gaps), logLikelihood: -found.value,

@@ -120,3 +120,55 @@ export function lagDot(a: Float64Array, b: Float64Array, n: number, lag: number)
   for (; t < n; t++) s0 += a[t] * b[t - lag];
   return (s0 + s1) + (s2 + s3);
 }
+
+/** Both sides of a small model in one sweep: z_t = x_t - a1 x_{t-1} - a2 x_{t-2} - b1 z_{t-1} - b2 z_{t-2}. The recursion's
+ *  latency hides the autoregressive half. */
+export function smallForwardInto(z: Float64Array, x: Float64Array, n: number, a1: number, a2: number, b1: number, b2: number): void {
+  let x1 = 0, x2 = 0, z1 = 0, z2 = 0;
+  for (let t = 0; t < n; t++) {
+    const now = x[t];
+    const value = (now - a1 * x1 - a2 * x2 - b2 * z2) - b1 * z1;
+    z[t] = value;
+    x2 = x1; x1 = now; z2 = z1; z1 = value;
+  }
+}
+
+/** The transposed division by 1 + b1 B + b2 B^2 of e into `lambda`, and on the way the sums that the gradient needs:
+ *  out = sums of lambda_t r_{t-1}, lambda_t r_{t-2}, lambda_t e_{t-1}, lambda_t e_{t-2}. */
+export function smallBackwardInto(lambda: Float64Array, e: Float64Array, r: Float64Array, n: number, b1: number, b2: number, out: Float64Array): void {
+  let l1 = 0, l2 = 0, s1 = 0, s2 = 0, u1 = 0, u2 = 0;
+  let t = n - 1;
+  for (; t >= 2; t--) {
+    const value = (e[t] - b2 * l2) - b1 * l1;
+    lambda[t] = value;
+    s1 += value * r[t - 1]; s2 += value * r[t - 2]; u1 += value * e[t - 1]; u2 += value * e[t - 2];
+    l2 = l1; l1 = value;
+  }
+  for (; t >= 0; t--) {
+    const value = (e[t] - b2 * l2) - b1 * l1;
+    lambda[t] = value;
+    if (t === 1) { s1 += value * r[0]; u1 += value * e[0]; }
+    l2 = l1; l1 = value;
+  }
+  out[0] = s1; out[1] = s2; out[2] = u1; out[3] = u2;
+}
+
+/** e = e0 - c e1 and r = x - c d in one sweep; returns the sum of squares of e. */
+export function subtractColumn(e: Float64Array, e0: Float64Array, e1: Float64Array, r: Float64Array, x: Float64Array, d: Float64Array, c: number, n: number): number {
+  let s0 = 0, s1 = 0, t = 0;
+  for (; t + 1 < n; t += 2) {
+    const v = e0[t] - c * e1[t], w = e0[t + 1] - c * e1[t + 1];
+    e[t] = v; e[t + 1] = w;
+    s0 += v * v; s1 += w * w;
+    r[t] = x[t] - c * d[t]; r[t + 1] = x[t + 1] - c * d[t + 1];
+  }
+  for (; t < n; t++) { const v = e0[t] - c * e1[t]; e[t] = v; s0 += v * v; r[t] = x[t] - c * d[t]; }
+  return s0 + s1;
+}
+
+export function total(a: Float64Array, from: number, to: number): number {
+  let s0 = 0, s1 = 0, s2 = 0, s3 = 0, t = from;
+  for (; t + 3 < to; t += 4) { s0 += a[t]; s1 += a[t + 1]; s2 += a[t + 2]; s3 += a[t + 3]; }
+  for (; t < to; t++) s0 += a[t];
+  return (s0 + s1) + (s2 + s3);
+}

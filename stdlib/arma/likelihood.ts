@@ -11,11 +11,12 @@
 // d log det = tr(K dG) + tr((G^-1 + Omega)^-1 dOmega).
 // Sources: Newbold (1974); Ljung & Box (1979); Harvey & Phillips (1979) for the concentration.
 
-import { divideBackInto, divideInto, dot, lagDot, subtractLagsInto } from "./kernels.ts";
+import { divideBackInto, divideInto, dot, lagDot, smallBackwardInto, smallForwardInto, subtractColumn, subtractLagsInto, total } from "./kernels.ts";
 import { makePresample, presampleBack, presampleInto, type Presample } from "./presample.ts";
 import { makeResponse, responseBack, responseInto, type Response } from "./response.ts";
 import { contractInto, expandInto, type Shape } from "./shape.ts";
 import { choleskyInto } from "../linear/cholesky.ts";
+import { lowerSolveRowsInto, rowProductsInto, transposeInto } from "../linear/products.ts";
 
 /** What is fitted: w - X beta, the first `gaps` columns being pulses of missing values. */
 export interface Data {
@@ -23,6 +24,9 @@ export interface Data {
   readonly y: Float64Array;
   readonly columns: readonly Float64Array[];
   readonly gaps: number;
+  /** Whether the first column is the same number throughout (there are then no gaps): its innovations are constant after a
+   *  while, and cost next to nothing. */
+  readonly constant?: boolean;
   /** Innovation variance, or null when it is estimated. */
   readonly sigma2: number | null;
 }
@@ -45,6 +49,13 @@ export interface Work {
   readonly r: Float64Array; readonly er: Float64Array; readonly lambda: Float64Array; readonly delta: Float64Array;
   readonly q: Float64Array; readonly qy: Float64Array; readonly chol: Float64Array;
   readonly beta: Float64Array;
+  /** Dense lags 1..2 on both sides: the fused kernels serve. */
+  readonly small: boolean;
+  readonly sums: Float64Array;
+  /** From where the constant column's innovations no longer change. */
+  flat: number;
+  /** Whether lambda is complete, and `sums` with it. */
+  swept: boolean;
   /** Sum of squares, log determinant (gaps included), effective n, and the negative log-likelihood at the last `valueAt`. */
   sum: number; logDet: number; nEffective: number; f: number; sigma2: number;
 }
@@ -53,6 +64,7 @@ export function makeWork(shape: Shape, n: number, columns: number): Work {
   const g = Math.min(shape.memory, n);
   const big = () => new Float64Array(n);
   const square = () => new Float64Array(g * g);
+  const dense = (lags: Int32Array) => lags.length <= 2 && lags.every((l, i) => l === i + 1);
   return {
     shape, n, g,
     a: new Float64Array(shape.ar.lags.length), b: new Float64Array(shape.ma.lags.length),
@@ -62,7 +74,8 @@ export function makeWork(shape: Shape, n: number, columns: number): Work {
     a0: Array.from({ length: columns + 1 }, big), e: Array.from({ length: columns + 1 }, big),
     u: new Float64Array(g), v: new Float64Array(g), r: big(), er: big(), lambda: big(), delta: big(),
     q: new Float64Array(columns * columns), qy: new Float64Array(columns), chol: new Float64Array(columns * columns),
-    beta: new Float64Array(columns), sum: 0, logDet: 0, nEffective: n, f: Infinity, sigma2: NaN,
+    beta: new Float64Array(columns),
+    small: shape.ma.lags.length > 0 && dense(shape.ar.lags) && dense(shape.ma.lags), sums: new Float64Array(4), flat: 0, swept: false, sum: 0, logDet: 0, nEffective: n, f: Infinity, sigma2: NaN,
   };
 }
 
@@ -80,12 +93,13 @@ export function valueAt(work: Work, data: Data, x: Float64Array): number {
   if (!Number.isFinite(logDet)) return Infinity;
   innovationsInto(work, data.y, 0);
   const m = data.columns.length;
-  for (let j = 0; j < m; j++) innovationsInto(work, data.columns[j], j + 1);
+  for (let j = 0; j < m; j++) if (j > 0 || !data.constant) innovationsInto(work, data.columns[j], j + 1);
+  if (data.constant) constantInto(work, data.columns[0][0]);
   const gapDet = regress(work, data);
   if (!Number.isFinite(gapDet)) return Infinity;
   work.logDet = logDet + gapDet;
   work.nEffective = n - data.gaps;
-  work.sum = Math.max(0, dot(work.er, work.er, n) + presampleSquares(work, g));
+  work.sum = Math.max(0, work.sum + presampleSquares(work, g));
   const free = data.sigma2 === null;
   work.sigma2 = free ? work.sum / work.nEffective : data.sigma2!;
   const ne = work.nEffective;
@@ -106,41 +120,15 @@ function gainInto(work: Work): number {
     return Math.log(det);
   }
   semiFactorInto(l, omega, g, G);
-  // s1 = G L (L lower), d = I + L' s1, by rows so that memory runs along.
-  for (let i = 0; i < g; i++) {
-    const row = i * g;
-    for (let j = 0; j < g; j++) s1[row + j] = 0;
-    for (let t = 0; t < g; t++) {
-      const x = gram[row + t];
-      if (x === 0) continue;
-      for (let j = 0; j <= t; j++) s1[row + j] += x * l[t * g + j];
-    }
-  }
-  for (let i = 0; i < g; i++) {
-    const row = i * g;
-    for (let j = 0; j <= i; j++) d[row + j] = 0;
-    for (let t = i; t < g; t++) {
-      const x = l[t * g + i];
-      if (x === 0) continue;
-      for (let j = 0; j <= i; j++) d[row + j] += x * s1[t * g + j];
-    }
-    d[row + i] += 1;
-  }
+  transposeInto(wk, l, g);
+  // s1 = L'G, d = I + L'G L.
+  rowProductsInto(s1, wk, gram, g, false, true);
+  rowProductsInto(d, s1, wk, g, true, false);
+  for (let i = 0; i < g; i++) d[i * g + i] += 1;
   if (choleskyInto(d, g) >= 0) return NaN;
   let logDet = 0;
   for (let i = 0; i < g; i++) logDet += Math.log(d[i * g + i]);
-  // W = C^-1 L': row by row of the triangular solve.
-  for (let i = 0; i < g; i++) {
-    const row = i * g;
-    for (let j = 0; j < g; j++) wk[row + j] = j >= i ? l[j * g + i] : 0;
-    for (let t = 0; t < i; t++) {
-      const x = d[row + t];
-      if (x === 0) continue;
-      for (let j = 0; j < g; j++) wk[row + j] -= x * wk[t * g + j];
-    }
-    const inverse = 1 / d[row + i];
-    for (let j = 0; j < g; j++) wk[row + j] *= inverse;
-  }
+  lowerSolveRowsInto(wk, d, g);
   return 2 * logDet;
 }
 
@@ -151,6 +139,7 @@ function semiFactorInto(l: Float64Array, omega: Float64Array, g: number, stride:
   const floor = 4e-16 * top * g;
   for (let i = 0; i < g; i++) {
     const row = i * g;
+    for (let j = i + 1; j < g; j++) l[row + j] = 0;
     for (let j = 0; j <= i; j++) {
       const other = j * g;
       let sum = omega[j * stride + i];
@@ -165,15 +154,36 @@ function semiFactorInto(l: Float64Array, omega: Float64Array, g: number, stride:
 function innovationsInto(work: Work, x: Float64Array, index: number): void {
   const { n, shape, a, b } = work;
   const a0 = work.a0[index];
-  subtractLagsInto(a0, x, n, shape.ar.lags, a);
-  divideInto(a0, n, shape.ma.lags, b);
+  if (work.small) smallForwardInto(a0, x, n, a.length > 0 ? a[0] : 0, a.length > 1 ? a[1] : 0, b[0], b.length > 1 ? b[1] : 0);
+  else {
+    subtractLagsInto(a0, x, n, shape.ar.lags, a);
+    divideInto(a0, n, shape.ma.lags, b);
+  }
   correctInto(work, work.e[index], a0);
+}
+
+/** The same for a column that is c throughout. */
+function constantInto(work: Work, c: number): void {
+  const { n, shape, a, b } = work;
+  const a0 = work.a0[1];
+  const ar = shape.ar.lags, ma = shape.ma.lags, p = shape.ar.degree, q = shape.ma.degree;
+  let t = 0, same = 0, level = c;
+  for (; t < n && same <= q; t++) {
+    if (t <= p) { level = c; for (let i = 0; i < ar.length && ar[i] <= t; i++) level -= a[i] * c; }
+    let sum = level;
+    for (let j = 0; j < ma.length && ma[j] <= t; j++) sum -= b[j] * a0[t - ma[j]];
+    a0[t] = sum;
+    same = t > p && Math.abs(sum - a0[t - 1]) <= 1e-16 * Math.abs(sum) ? same + 1 : 0;
+  }
+  if (t < n) a0.fill(a0[t - 1], t, n);
+  correctInto(work, work.e[1], a0);
+  work.flat = Math.min(n, Math.max(t, work.g + work.response.length));
 }
 
 /** e = a0 - V K V'a0: only the first values change where 1/theta dies out. */
 function correctInto(work: Work, e: Float64Array, a0: Float64Array): void {
   const { n, g, u, v, delta, response, shape, b } = work;
-  for (let t = 0; t < n; t++) e[t] = a0[t];
+  e.set(a0);
   if (g === 0) return;
   const m = response.length;
   const reach = Math.min(n, g + m);
@@ -202,11 +212,15 @@ function gainTimesInto(work: Work, out: Float64Array, x: Float64Array): void {
 function regress(work: Work, data: Data): number {
   const { n, a0, e, r, er, q, qy, chol, beta } = work;
   const m = data.columns.length;
-  for (let t = 0; t < n; t++) { r[t] = data.y[t]; er[t] = e[0][t]; }
-  if (m === 0) return 0;
+  if (m === 0) { r.set(data.y); er.set(e[0]); work.sum = dot(er, er, n); return 0; }
   for (let i = 0; i < m; i++) {
-    for (let j = 0; j <= i; j++) q[i * m + j] = q[j * m + i] = dot(e[i + 1], a0[j + 1], n);
-    qy[i] = dot(e[i + 1], a0[0], n);
+    for (let j = 0; j <= i; j++) q[i * m + j] = q[j * m + i] = dot(e[i + 1], a0[j + 1], i === 0 && data.constant ? work.flat : n);
+    qy[i] = dot(e[i + 1], a0[0], i === 0 && data.constant ? work.flat : n);
+  }
+  if (data.constant && work.flat < n) {
+    const level = e[1][n - 1];
+    q[0] += (n - work.flat) * level * a0[1][n - 1];
+    qy[0] += level * total(a0[0], work.flat, n);
   }
   chol.set(q);
   if (choleskyInto(chol, m) >= 0) return NaN;
@@ -222,19 +236,20 @@ function regress(work: Work, data: Data): number {
     for (let t = i + 1; t < m; t++) sum -= chol[t * m + i] * beta[t];
     beta[i] = sum / chol[i * m + i];
   }
-  for (let j = 0; j < m; j++) {
-    const c = beta[j], x = data.columns[j], ex = e[j + 1];
-    for (let t = 0; t < n; t++) { r[t] -= c * x[t]; er[t] -= c * ex[t]; }
-  }
+  let squares = 0;
+  for (let j = 0; j < m; j++) squares = subtractColumn(er, j === 0 ? e[0] : er, e[j + 1], r, j === 0 ? data.y : r, data.columns[j], beta[j], n);
+  work.sum = squares;
   return gapDet;
 }
 
-/** u'Omega^-1 u = u'V'e, and lambda on the way (whole: the gradient needs it). */
+/** u'Omega^-1 u = u'V'e from the first entries of lambda: further on lambda is only swept for a gradient. */
 function presampleSquares(work: Work, g: number): number {
-  const { n, lambda, er, shape, b, u } = work;
-  for (let t = 0; t < n; t++) lambda[t] = er[t];
-  divideBackInto(lambda, n, shape.ma.lags, b);
+  const { n, lambda, er, shape, b, u, response } = work;
+  work.swept = false;
   if (g === 0) return 0;
+  const reach = Math.min(n, g + response.length);
+  for (let t = 0; t < reach; t++) lambda[t] = er[t];
+  divideBackInto(lambda, reach, shape.ma.lags, b);
   // u of the residual series = Omega (V'e), from the first entries of lambda.
   const { omega, g: G } = work.pre;
   let sum = 0;
@@ -249,40 +264,34 @@ function presampleSquares(work: Work, g: number): number {
 
 /** Gradient of the last value by the coefficients (phi, Phi, theta, Theta). Cost about that of a value. */
 export function gradientInto(work: Work, data: Data, x: Float64Array, gradient: Float64Array): void {
-  const { shape, g, aBar, bBar, omegaBar, k, s1, wk, response } = work;
+  const { shape, g, aBar, bBar, omegaBar, k, s1, wk, l, d, response } = work;
   aBar.fill(0); bBar.fill(0); omegaBar.fill(0); gradient.fill(0);
   const G = work.pre.g;
   if (g > 0) {
     // K = W'W (halved: the derivative of half a log determinant), Z = W G, M = G - Z'Z.
     const gram = response.gram;
-    for (let i = 0; i < g * g; i++) { k[i] = 0; s1[i] = 0; }
+    transposeInto(l, wk, g);
+    rowProductsInto(k, l, l, g, true, false);
+    rowProductsInto(s1, wk, gram, g, false, false);
+    transposeInto(l, s1, g);
+    rowProductsInto(d, l, l, g, true, false);
     for (let i = 0; i < g; i++) {
-      const row = i * g;
-      for (let t = 0; t < g; t++) {
-        const w = wk[row + t];
-        if (w === 0) continue;
-        const half = 0.5 * w;
-        for (let j = 0; j <= t; j++) k[t * g + j] += half * wk[row + j];
-        for (let j = 0; j < g; j++) s1[row + j] += w * gram[t * g + j];
+      for (let j = 0; j < i; j++) {
+        k[j * g + i] = k[i * g + j] *= 0.5;
+        omegaBar[j * G + i] = gram[i * g + j] - d[i * g + j];
       }
-    }
-    for (let i = 0; i < g; i++) for (let j = 0; j < i; j++) k[j * g + i] = k[i * g + j];
-    for (let i = 0; i < g; i++) {
-      for (let j = i; j < g; j++) omegaBar[i * G + j] = (i === j ? 0.5 : 1) * gram[i * g + j];
-    }
-    for (let t = 0; t < g; t++) {
-      const row = t * g;
-      for (let i = 0; i < g; i++) {
-        const z = s1[row + i];
-        if (z === 0) continue;
-        omegaBar[i * G + i] -= 0.5 * z * z;
-        for (let j = i + 1; j < g; j++) omegaBar[i * G + j] -= z * s1[row + j];
-      }
+      k[i * g + i] *= 0.5;
+      omegaBar[i * G + i] = 0.5 * (gram[i * g + i] - d[i * g + i]);
     }
     responseBack(response, k, shape.ma.lags, work.b, bBar);
   }
   const weight = data.sigma2 === null ? work.nEffective / (2 * work.sum) : 1 / (2 * work.sigma2);
-  addQuadratic(work, work.r, work.er, work.lambda, weight);
+  sweep(work);
+  if (work.small) {
+    for (let i = 0; i < aBar.length; i++) aBar[i] -= 2 * weight * work.sums[i];
+    for (let j = 0; j < bBar.length; j++) bBar[j] -= 2 * weight * work.sums[2 + j];
+  } else addLagSums(work, work.r, work.er, work.lambda, weight);
+  addOuter(work, work.lambda, weight);
   if (data.gaps > 0) addGaps(work, data);
   presampleBack(work.pre, omegaBar, shape.ar, work.a, shape.ma, work.b, aBar, bBar);
   contractInto(gradient, shape.ar, x, 0, aBar);
@@ -290,12 +299,26 @@ export function gradientInto(work: Work, data: Data, x: Float64Array, gradient: 
 
 }
 
-/** Adds weight * d(quadratic form of the series r), whose innovations and lambda are given. */
-function addQuadratic(work: Work, r: Float64Array, e: Float64Array, lambda: Float64Array, weight: number): void {
-  const { shape, n, g, aBar, bBar, omegaBar } = work;
-  const G = work.pre.g;
+/** lambda of the residual series, whole. */
+function sweep(work: Work): void {
+  if (work.swept) return;
+  const { n, lambda, er, r, shape, b } = work;
+  if (work.small) smallBackwardInto(lambda, er, r, n, b[0], b.length > 1 ? b[1] : 0, work.sums);
+  else { lambda.set(er); divideBackInto(lambda, n, shape.ma.lags, b); }
+  work.swept = true;
+}
+
+/** Adds weight * d(quadratic form of the series r), whose innovations and lambda are given: the lag sums of both sides. */
+function addLagSums(work: Work, r: Float64Array, e: Float64Array, lambda: Float64Array, weight: number): void {
+  const { shape, n, aBar, bBar } = work;
   for (let i = 0; i < aBar.length; i++) aBar[i] -= 2 * weight * lagDot(lambda, r, n, shape.ar.lags[i]);
   for (let j = 0; j < bBar.length; j++) bBar[j] -= 2 * weight * lagDot(lambda, e, n, shape.ma.lags[j]);
+}
+
+/** The same for what hangs on Omega. */
+function addOuter(work: Work, lambda: Float64Array, weight: number): void {
+  const { g, omegaBar } = work;
+  const G = work.pre.g;
   for (let i = 0; i < g; i++) {
     const x = weight * lambda[i];
     omegaBar[i * G + i] -= x * lambda[i];
@@ -325,6 +348,7 @@ function addGaps(work: Work, data: Data): void {
     }
     delta.set(innovations);
     divideBackInto(delta, n, shape.ma.lags, b);
-    addQuadratic(work, series, innovations, delta, 0.5);
+    addLagSums(work, series, innovations, delta, 0.5);
+    addOuter(work, delta, 0.5);
   }
 }

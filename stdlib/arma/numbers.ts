@@ -3,6 +3,7 @@
 import { leastSquares } from "../linear/leastSquares.ts";
 import { differencedBy, type Prepared } from "./prepare.ts";
 import type { Data } from "./likelihood.ts";
+import type { Series } from "../series/series.ts";
 
 export interface Numbers {
   readonly prepared: Prepared;
@@ -36,48 +37,64 @@ export const MANY_GAPS = 40;
 export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   const { levels, delta, lost, shape } = prepared;
   const name = levels.name || "the series";
-  const observed: number[] = [];
-  levels.values.forEach((v, t) => {
-    if (Number.isNaN(v)) return;
-    if (!Number.isFinite(v)) throw new RangeError(`fit: ${name} is ${v} at ${levels.times[t]}; only finite numbers and gaps can be modelled`);
-    observed.push(t);
-  });
-  if (observed.length === 0) throw new RangeError(`fit: every value of ${name} is missing${levels.n > 0 ? ` from ${levels.times[0]} to ${levels.times[levels.n - 1]}` : ""}; there is nothing to estimate from`);
-  const from = observed[0], to = observed[observed.length - 1] + 1, length = to - from;
-  const n = observed.length - lost;
+  const { from, to, observed } = extent(levels, name);
+  if (observed === 0) throw new RangeError(`fit: every value of ${name} is missing${levels.n > 0 ? ` from ${levels.times[0]} to ${levels.times[levels.n - 1]}` : ""}; there is nothing to estimate from`);
+  const length = to - from;
+  const n = observed - lost;
   const k = parameterCount(prepared);
-  if (n < 1 || length <= lost) throw new RangeError(`fit: ${name} has ${observed.length} observation${observed.length === 1 ? "" : "s"}, and the differences use up ${lost}; give a longer sample or difference less`);
+  if (n < 1 || length <= lost) throw new RangeError(`fit: ${name} has ${observed} observation${observed === 1 ? "" : "s"}, and the differences use up ${lost}; give a longer sample or difference less`);
   if (k > 0 && n <= k) throw new RangeError(`fit: the model has ${k} parameters to estimate (variance counted) and ${name} leaves ${n} observation${n === 1 ? "" : "s"}${lost > 0 ? " after differencing" : ""}; more observations than parameters are needed. Take fewer lags${prepared.names.length > 0 ? " or regressors" : ""}, or a longer sample`);
   if (shape.memory >= length && shape.count > 0) throw new RangeError(`fit: the longest lag of the model is ${shape.memory}, and ${name} has only ${length - lost} periods${lost > 0 ? " after differencing" : ""}; take shorter lags or a longer sample`);
   const gaps: number[] = [];
-  for (let t = from; t < to; t++) if (Number.isNaN(levels.values[t])) gaps.push(t - from);
+  if (observed < length) for (let t = from; t < to; t++) if (Number.isNaN(levels.values[t])) gaps.push(t - from);
   const raw = levels.values.slice(from, to);
   const columnsAll = levelColumns(prepared, from, to);
   subtractHeld(prepared, raw, columnsAll);
-  const bridgedLevels = bridge(raw);
-  const w = differencedBy(delta, bridgedLevels);
-  const clean = cleanRows(raw, delta);
+  const w = differencedBy(delta, gaps.length > 0 ? bridge(raw) : raw);
+  const clean = gaps.length > 0 ? cleanRows(raw, delta) : null;
   refuseConstant(w, clean, prepared, name, levels.values.subarray(from, to));
   const free = freeColumns(prepared);
   const differenced = free.map(j => j < 0 ? new Float64Array(w.length).fill(1) : differencedBy(delta, columnsAll[j]));
   const { ols, kept, aliased, rss } = firstRegression(w, differenced, clean, free);
-  const rows = Math.max(1, clean.length);
+  const rows = Math.max(1, clean === null ? w.length : clean.length);
   let total = 0;
-  for (const t of clean) total += w[t] ** 2;
-  if (kept.length > 0 && clean.length > kept.length && rss <= 1e-24 * total) throw new RangeError(`fit: ${prepared.names.length > 0 ? "the regressors explain" : "a constant explains"} ${name} exactly${lost > 0 ? " after differencing" : ""}; there is no randomness left to model`);
+  for (let i = 0; i < rows; i++) total += w[clean === null ? i : clean[i]] ** 2;
+  if (kept.length > 0 && rows > kept.length && rss <= 1e-24 * total) throw new RangeError(`fit: ${prepared.names.length > 0 ? "the regressors explain" : "a constant explains"} ${name} exactly${lost > 0 ? " after differencing" : ""}; there is no randomness left to model`);
   const unit = Math.sqrt(rss / rows) || 1;
   const basis = orthogonalBasis(kept.map(i => differenced[i]), clean);
   const columns = combined(kept.map(i => differenced[i]), basis);
-  const y = w.map((v, t) => { let sum = v; kept.forEach((i, c) => { sum -= ols[c] * differenced[i][t]; }); return sum / unit; });
+  const y = reduced(w, kept.map(i => differenced[i]), ols, unit);
   const pulses = !filtered && gaps.length <= MANY_GAPS ? gaps.map(t => pulse(t, length, delta)) : [];
-  const data: Data = { n: y.length, y, columns: [...pulses, ...columns], gaps: pulses.length, sigma2: Number.isNaN(prepared.heldSigma2) ? null : prepared.heldSigma2 / unit ** 2 };
+  const data: Data = { n: y.length, y, columns: [...pulses, ...columns], gaps: pulses.length, constant: kept.length > 0 && free[kept[0]] < 0 && pulses.length === 0, sigma2: Number.isNaN(prepared.heldSigma2) ? null : prepared.heldSigma2 / unit ** 2 };
   const meanLevels = integrated(delta, length);
   const keptLevels = kept.map(i => free[i] < 0 ? meanLevels : columnsAll[free[i]]);
-  const scaled = raw.map((v, t) => { let sum = v; keptLevels.forEach((x, c) => { sum -= ols[c] * x[t]; }); return sum / unit; });
   return {
     prepared, from, to, gaps, n, data, bridged: y, unit, kept: kept.map(i => free[i]), aliased: aliased.map(i => free[i]), ols, basis,
-    levels: scaled, levelColumns: combined(keptLevels, basis),
+    levels: reduced(raw, keptLevels, ols, unit), levelColumns: combined(keptLevels, basis),
   };
+}
+
+/** First and one past the last observed position, and how many are observed. */
+function extent(levels: Series, name: string): { from: number; to: number; observed: number } {
+  const { values } = levels;
+  let from = -1, to = 0, observed = 0;
+  for (let t = 0; t < values.length; t++) {
+    const v = values[t];
+    if (Number.isNaN(v)) continue;
+    if (!Number.isFinite(v)) throw new RangeError(`fit: ${name} is ${v} at ${levels.times[t]}; only finite numbers and gaps can be modelled`);
+    if (from < 0) from = t;
+    to = t + 1;
+    observed++;
+  }
+  return { from, to, observed };
+}
+
+/** (x - sum c_j column_j) / unit */
+function reduced(x: Float64Array, columns: readonly Float64Array[], c: Float64Array, unit: number): Float64Array {
+  const out = Float64Array.from(x), by = 1 / unit;
+  for (let j = 0; j < columns.length; j++) { const column = columns[j], cj = c[j]; for (let t = 0; t < out.length; t++) out[t] -= cj * column[t]; }
+  for (let t = 0; t < out.length; t++) out[t] *= by;
+  return out;
 }
 
 /** Free parameters, the variance counted; aliased columns still counted. */
@@ -108,6 +125,7 @@ function subtractHeld(p: Prepared, levels: Float64Array, columns: readonly Float
 /** Levels whose differences are 1 throughout, and which start with zeros. */
 export function integrated(delta: Float64Array, length: number): Float64Array {
   const z = new Float64Array(length);
+  if (delta.length === 0) return z.fill(1);
   for (let t = delta.length; t < length; t++) {
     let sum = 1;
     for (let i = 1; i <= delta.length; i++) if (delta[i - 1] !== 0) sum += delta[i - 1] * z[t - i];
@@ -138,11 +156,12 @@ function cleanRows(raw: Float64Array, delta: Float64Array): number[] {
   return rows;
 }
 
-function refuseConstant(w: Float64Array, clean: readonly number[], p: Prepared, name: string, levels: Float64Array): void {
-  if (clean.length === 0 || p.held.every(v => !Number.isNaN(v)) && !Number.isNaN(p.heldSigma2)) return;
+function refuseConstant(w: Float64Array, clean: readonly number[] | null, p: Prepared, name: string, levels: Float64Array): void {
+  const rows = clean === null ? w.length : clean.length;
+  if (rows === 0 || p.held.every(v => !Number.isNaN(v)) && !Number.isNaN(p.heldSigma2)) return;
   let low = Infinity, high = -Infinity, size = 0;
-  for (const t of clean) { low = Math.min(low, w[t]); high = Math.max(high, w[t]); }
-  for (const v of levels) if (!Number.isNaN(v)) size = Math.max(size, Math.abs(v));
+  for (let i = 0; i < rows; i++) { const v = w[clean === null ? i : clean[i]]; if (v < low) low = v; if (v > high) high = v; }
+  for (let t = 0; t < levels.length; t++) { const v = Math.abs(levels[t]); if (v > size) size = v; }
   if (high - low > 4e-15 * size * (1 + p.lost)) return;
   throw new RangeError(p.lost > 0
     ? `fit: after differencing, ${name} is ${short((low + high) / 2)} throughout: the levels follow a fixed pattern exactly, and there is no variation left to model`
@@ -151,14 +170,19 @@ function refuseConstant(w: Float64Array, clean: readonly number[], p: Prepared, 
 
 function short(v: number): string { return String(Number(v.toPrecision(6))); }
 
-function firstRegression(w: Float64Array, columns: readonly Float64Array[], clean: readonly number[], free: readonly number[]): { ols: Float64Array; kept: number[]; aliased: number[]; rss: number } {
+function firstRegression(w: Float64Array, columns: readonly Float64Array[], clean: readonly number[] | null, free: readonly number[]): { ols: Float64Array; kept: number[]; aliased: number[]; rss: number } {
   const cols = columns.length;
-  let rss = 0;
-  if (cols === 0) {
-    if (clean.length > 0) for (const t of clean) rss += w[t] ** 2; else for (const v of w) rss += v * v;
-    return { ols: new Float64Array(0), kept: [], aliased: [], rss };
+  if (cols === 0 || (cols === 1 && free[0] < 0)) {
+    // Nothing, or a mean alone: no regression needed.
+    const all = clean === null || clean.length === 0;
+    const count = all ? w.length : clean.length;
+    let sum = 0, rss = 0;
+    if (cols === 1) for (let i = 0; i < count; i++) sum += w[all ? i : clean[i]];
+    const mean = sum / count;
+    for (let i = 0; i < count; i++) rss += (w[all ? i : clean[i]] - mean) ** 2;
+    return { ols: new Float64Array(cols).fill(mean), kept: cols === 1 ? [0] : [], aliased: [], rss };
   }
-  const rows = clean.length > cols ? clean : [...w.keys()];
+  const rows = clean !== null && clean.length > cols ? clean : Array.from({ length: w.length }, (_, t) => t);
   const x = new Float64Array(rows.length * cols), y = Float64Array.from(rows, t => w[t]);
   rows.forEach((t, i) => { for (let j = 0; j < cols; j++) x[i * cols + j] = columns[j][t]; });
   const fit = leastSquares(x, y, rows.length, cols, 1e-9);
@@ -167,11 +191,12 @@ function firstRegression(w: Float64Array, columns: readonly Float64Array[], clea
 }
 
 /** Gram-Schmidt, twice for digits, over the clean rows: an upper triangular matrix, flat by rows. */
-function orthogonalBasis(columns: readonly Float64Array[], clean: readonly number[]): Float64Array {
+function orthogonalBasis(columns: readonly Float64Array[], clean: readonly number[] | null): Float64Array {
   const m = columns.length;
+  if (m === 1 && columns[0].every(v => v === 1)) return Float64Array.of(1);
   const basis = new Float64Array(m * m);
   const q: Float64Array[] = [];
-  const rows = clean.length > m ? clean : columns.length > 0 ? [...columns[0].keys()] : [];
+  const rows = clean !== null && clean.length > m ? clean : columns.length > 0 ? Array.from({ length: columns[0].length }, (_, t) => t) : [];
   const product = (a: Float64Array, b: Float64Array) => { let sum = 0; for (const t of rows) sum += a[t] * b[t]; return sum; };
   for (let j = 0; j < m; j++) {
     const c = Float64Array.from(columns[j]);

@@ -9,20 +9,21 @@ export type Maximise = (shape: Shape) => { readonly x: Float64Array; readonly in
 /** Starts in the order phi, Phi, theta, Theta.
  *  Further maxima of a mixed model sit where both sides share a nearly common factor, so the smaller model without it is
  *  estimated and the innovations asked where a pair of factors would help most (a score test at each place of a grid). */
-export function otherStarts(search: Search, found: Float64Array, maximise: Maximise): Float64Array[] {
+export function otherStarts(search: Search, found: Float64Array, where: { readonly plain: boolean; readonly seasonal: boolean }, maximise: Maximise): Float64Array[] {
   const { shape, held } = search;
   const out: Float64Array[] = [];
   const [ar, sar, ma, sma] = factors(shape);
   const free = !held.some(v => !Number.isNaN(v)) && !search.evaluate;
   const full = (lags: Int32Array) => lags.every((l, i) => l === i + 1);
-  if (ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags)) {
+  if (!where.plain) { /* nothing to doubt there */ }
+  else if (ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags)) {
     out.push(...pairs(search, 1, maximise));
     if (ar.lags.length > 1 && ma.lags.length > 1) out.push(...pairs(search, 2, maximise));
   } else if (ma.lags.length > 1 && free && full(ma.lags)) {
     const small = maximise(reduced(shape, 0, 1));
     if (small) out.push(padded(search, small.x, 0, 1, [], []));
   } else out.push(new Float64Array(shape.count));
-  if (sar.lags.length > 0 && sma.lags.length > 0) {
+  if (where.seasonal && sar.lags.length > 0 && sma.lags.length > 0) {
     for (const [a, b] of [[0.8, -0.5], [0, 0]]) {
       const x = Float64Array.from(found);
       x[sar.from] = a;

@@ -130,11 +130,10 @@ function aligned(regressor: Series, levels: Series, name: string): Float64Array 
 /** Differences of a level array; length n - lost. */
 export function differencedBy(delta: Float64Array, x: Float64Array): Float64Array {
   const lost = delta.length;
-  const lags: number[] = [];
-  for (let i = 0; i < lost; i++) if (delta[i] !== 0) lags.push(i + 1);
-  return Float64Array.from({ length: Math.max(0, x.length - lost) }, (_, i) => {
-    let sum = x[i + lost];
-    for (const lag of lags) sum -= delta[lag - 1] * x[i + lost - lag];
-    return sum;
-  });
+  const out = x.slice(lost);
+  for (let i = 1; i <= lost; i++) {
+    const c = delta[i - 1], from = lost - i;
+    if (c !== 0) for (let t = 0; t < out.length; t++) out[t] -= c * x[t + from];
+  }
+  return out;
 }

@@ -139,7 +139,8 @@ function residualSeries(s: Solution): Fit["residuals"] {
   const values = new Float64Array(p.series.n).fill(NaN);
   const model = s.stationary ? levelModel(p.shape, s.x, p.delta) : null;
   const beta = s.beta;
-  const series = levels.map((v, t) => { let sum = v; for (let j = 0; j < beta.length; j++) sum -= beta[j] * levelColumns[j][t]; return sum; });
+  const series = Float64Array.from(levels);
+  for (let j = 0; j < beta.length; j++) { const c = beta[j], x = levelColumns[j]; for (let t = 0; t < series.length; t++) series[t] -= c * x[t]; }
   if (model !== null) {
     const { v, f } = filterLevels(model, [series]);
     for (let t = p.lost; t < series.length; t++) values[from + t - p.lost] = v[0][t] / Math.sqrt(f[t]) * unit;

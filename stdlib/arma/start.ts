@@ -6,7 +6,7 @@ import type { Product, Shape } from "./shape.ts";
 import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
 
 /** At most this many of the last observations are used: a start need not be better than the first steps that follow. */
-const STRETCH = 3000;
+const STRETCH = 1200;
 
 /** Coefficients in the order phi, Phi, theta, Theta, inside the region.
  *  A long autoregression (Levinson) estimates the innovations; the second regression is on lags of both.
@@ -43,7 +43,7 @@ function take(x: Float64Array, from: number, p: Product, c: Float64Array, base: 
 }
 
 function longOrder(shape: Shape, n: number): number {
-  const wanted = Math.max(Math.ceil(10 * Math.log10(n + 1)), Math.ceil(1.5 * shape.memory), 2 * shape.ma.plain.length + 4);
+  const wanted = Math.max(Math.ceil(7 * Math.log10(n + 1)), Math.ceil(1.5 * shape.memory), 2 * shape.ma.plain.length + 4);
   return Math.min(wanted, Math.floor(n / 3));
 }
 

@@ -8,8 +8,13 @@ export function choleskyInto(a: Float64Array, size: number): number {
     const row = i * size;
     for (let j = 0; j <= i; j++) {
       const other = j * size;
-      let sum = a[row + j];
-      for (let k = 0; k < j; k++) sum -= a[row + k] * a[other + k];
+      let s0 = 0, s1 = 0, s2 = 0, s3 = 0, k = 0;
+      for (; k + 3 < j; k += 4) {
+        s0 += a[row + k] * a[other + k]; s1 += a[row + k + 1] * a[other + k + 1];
+        s2 += a[row + k + 2] * a[other + k + 2]; s3 += a[row + k + 3] * a[other + k + 3];
+      }
+      for (; k < j; k++) s0 += a[row + k] * a[other + k];
+      const sum = a[row + j] - ((s0 + s1) + (s2 + s3));
       if (i === j) {
         if (!(sum > 0)) return i;
         a[row + i] = Math.sqrt(sum);
