@@ -58,7 +58,7 @@ function fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string,
     return undoPath(undo.steps, mean.map((m, h) => { let sum = m; for (let k = 0; k <= h; k++) sum += psi[k] * e[h - k]; return sum; }));
   };
   const lost = boots.failed > 0 ? ` (${boots.failed} of ${parameterSets} sets could not be estimated and were left out)` : "";
-  return { maker, assumption: `Bands: from ${pathCount} simulated paths with ${sets.length} sets of parameters, estimated again on series simulated from the model${lost}, and shocks drawn from its residuals. They take in that the parameters are estimates and that shocks need not be normal; the orders count as known.` };
+  return { maker, assumption: `Bands: from ${pathCount} simulated paths with ${sets.length} sets of parameters, estimated again on series simulated from the model${lost}, and shocks drawn from its residuals${fit.phi.length + fit.seasonalPhi.length > 0 ? "; autoregressive coefficients are corrected for coming out too small in short samples" : ""}. They take in that the parameters are estimates and that shocks need not be normal; the orders count as known.` };
 }
 
 /** A path on the rule's own scale. */

@@ -13,7 +13,7 @@ interface Inputs { model: Model; horizon: number; backTransform?: "log"; params?
 type Out = Readonly<Record<string, number[]>>;
 
 const dense = (lags: readonly number[], values: readonly number[] | undefined): Held[] => {
-  const out: Held[] = new Array<Held>(Math.max(0, ...lags)).fill(0);
+  const out: Held[] = Array.from({ length: Math.max(0, ...lags) }, () => 0);
   lags.forEach((lag, i) => { out[lag - 1] = values?.[i] ?? "free"; });
   return out;
 };

@@ -7,7 +7,7 @@ const column = (...given: Parameters<typeof interventionColumns>) => [...interve
 describe("interventions by hand", () => {
   it("a pulse is 1 in its period, and in every period of a longer date", () => {
     expect(column(pulse("2024-02"), "x", "2024-01", "P1M", 4)).toEqual([0, 1, 0, 0]);
-    expect(column(pulse("2024"), "x", "2023-12", "P1M", 14)).toEqual([0, ...new Array<number>(12).fill(1), 0]);
+    expect(column(pulse("2024"), "x", "2023-12", "P1M", 14)).toEqual([0, ...Array.from({ length: 12 }, () => 1), 0]);
     expect(column(pulse("2024-02-11"), "x", "2024-01", "P1M", 3)).toEqual([0, 1, 0]);
     expect(column(pulse("2"), "x", "1", null, 3)).toEqual([0, 1, 0]);
     expect(column(pulse("2019-Q2"), "x", "2019-Q1", "P3M", 3)).toEqual([0, 1, 0]);
