@@ -1,13 +1,14 @@
 // Functions of identification and diagnostic checking: correlations, tests, spectra.
 
 import {
-  acf, adf, archLM, boxPierce, canovaHansen, ccf, cumulativePeriodogram, cusum, defaultSeasonLength, dfGls, durbinWatson, jarqueBera, kpss, largestBreak, ljungBox, mcleodLi, monti, outliers,
-  pacf, phillipsPerron, seasonalStrength, stl,
+  acf, adf, archLM, boxPierce, canovaHansen, ccf, cumulativePeriodogram, cusum, decompose, defaultSeasonLength, dfGls, durbinWatson, jarqueBera, kpss, lambdaProfile, largestBreak, ljungBox, mcleodLi, monti, outliers,
+  pacf, phillipsPerron, seasonalStrength, spectrum, stl, subseries, withValues, type Series,
 } from "../../stdlib/index.ts";
 import type { LibraryFunction } from "../kind.ts";
 import { define, fit, number, numbers, optional, series, settings, subject, whole, word } from "./define.ts";
 
 const correlations = "correlations", unitRoots = "unit roots", checks = "diagnostics", season = "season and spectrum";
+const lambdaSettings = ["length", "from", "to", "regression", "level"] as const;
 
 export const identifyFunctions: readonly LibraryFunction[] = [
   define(correlations, "acf", [numbers("series"), whole("lags")], "Autocorrelations from lag 0.", (x, lags) => acf(x, lags)),
@@ -29,10 +30,26 @@ export const identifyFunctions: readonly LibraryFunction[] = [
   define(checks, "cusum", [subject()], "CUSUM test of a constant mean.", (x) => cusum(x)),
   define(checks, "largestBreak", [subject(), optional(number("trim", { min: 0.01, max: 0.49, expected: "a share from 0.01 to 0.49" }))], "Largest-break test of a constant mean, with the break's date.", (x, trim) => largestBreak(x, trim)),
   define(checks, "outliers", [fit(), optional(settings("options", ["critical", "types", "decay", "most", "again"]))], "Outliers of a fit by type, each with the regressor to add (Chen and Liu 1993).", (m, options) => outliers(m, options as Parameters<typeof outliers>[1])),
-  define(season, "stl", [series(), optional(settings("options", ["length", "seasonalWindow", "trendWindow", "lowPassWindow", "robust", "seasonalDegree"]))], "Season, trend and rest by loess.", (s, options) => stl(s, options as Parameters<typeof stl>[1])),
+  define(season, "spectrum", [numbers("series"), optional(settings("options", ["smooth", "taper", "level"]))], "Periodogram and smoothed spectrum, by frequency in cycles a period.", (x, options) => spectrum(x, options as Parameters<typeof spectrum>[1])),
+  define(season, "estimateLambda", [numbers("series"), optional(word("how", ["guerrero", "likelihood"])), optional(settings("options", lambdaSettings))], "Box-Cox lambda, a number, by Guerrero's method or by likelihood.", (x, how, options) => {
+    const { lambda, note } = lambdaProfile(x, how, options as Parameters<typeof lambdaProfile>[2]);
+    if (Number.isNaN(lambda)) throw new RangeError(note ?? "the data name no lambda");
+    return lambda;
+  }),
+  define(season, "lambdaProfile", [numbers("series"), optional(word("how", ["guerrero", "likelihood"])), optional(settings("options", lambdaSettings))], "Box-Cox lambda with its profile and, by likelihood, its interval.", (x, how, options) => lambdaProfile(x, how, options as Parameters<typeof lambdaProfile>[2])),
+  define(season, "decompose", [series(), optional(settings("options", ["length", "kind"]))], "Classical decomposition: trend, seasonal and remainder as series; kind \"additive\" or \"multiplicative\".", (s, options) => asSeries(s, decompose(s, options as Parameters<typeof decompose>[1]))),
+  define(season, "subseries", [series(), optional(whole("length", 2))], "Values by position in the season, each with its mean.", (s, length) => subseries(s, length)),
+  define(season, "stl", [series(), optional(settings("options", ["length", "seasonalWindow", "trendWindow", "lowPassWindow", "robust", "seasonalDegree"]))], "Trend, seasonal and remainder as series, by loess (Cleveland and others 1990).", (s, options) => asSeries(s, stl(s, options as Parameters<typeof stl>[1]))),
   define(season, "seasonalStrength", [series(), optional(whole("length", 2))], "Strength of season and trend, each between 0 and 1; null where the data cannot say.", (s, length) => {
     const periods = length ?? defaultSeasonLength(s.every);
     if (periods === null) throw new RangeError("seasonalStrength: the spacing of the series names no season; give its length in periods, as in seasonalStrength(series, 12)");
     return seasonalStrength(s, periods);
   }),
 ];
+
+/** The parts of a decomposition as series, so that they can be drawn and combined. */
+function asSeries<T extends { readonly status: string; readonly trend: Float64Array; readonly seasonal: Float64Array; readonly remainder: Float64Array }>(given: Series, parts: T) {
+  if (parts.status !== "ok") return parts;
+  const part = (name: "trend" | "seasonal" | "remainder"): Series => withValues(given, parts[name], { name: `${name} of ${given.name || "the series"}` });
+  return { ...parts, trend: part("trend"), seasonal: part("seasonal"), remainder: part("remainder") };
+}

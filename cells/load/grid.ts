@@ -84,7 +84,7 @@ function inUsualForm(read: readonly Period[], every: string): { readonly periods
   const [name, periods] = atYearEnd ? ["years", index.map((m) => period("year", Math.floor(m / 12)))] as const
     : atQuarter ? ["quarters", index.map((m) => period("quarter", Math.floor(m / 3)))] as const
     : ["months", index.map((m) => period("month", m))] as const;
-  return { periods, note: `dates such as ${formatPeriod(read[0])} are read as ${name} (${formatPeriod(periods[0])})` };
+  return { periods, note: `Dates such as ${formatPeriod(read[0])} are read as ${name} (${formatPeriod(periods[0])})` };
 }
 
 function placed(starts: Float64Array, grid: { readonly start: string; readonly every: string }): Int32Array {

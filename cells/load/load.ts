@@ -111,7 +111,7 @@ function wantedColumns(sheet: Sheet, times: readonly number[], { value }: LoadCe
   if (value === undefined) {
     const numeric = numericColumns(sheet, times);
     if (numeric.length === 0) throw new OptionError("value", `${sheet.file} has no column of numbers${times.length > 0 ? ` beside the times in "${listOf(times.map((c) => sheet.columns[c]))}"` : ""}; its columns are ${someOf(sheet.columns.map((c) => `"${c}"`), 12)}`);
-    if (numeric.length > 1) context.note(`values are those of column "${sheet.columns[numeric[0]]}"; ${sheet.file} also has ${someOf(numeric.slice(1).map((c) => `"${sheet.columns[c]}"`))}, which \`value\` can name`);
+    if (numeric.length > 1) context.note(`Values are those of column "${sheet.columns[numeric[0]]}"; ${sheet.file} also has ${someOf(numeric.slice(1).map((c) => `"${sheet.columns[c]}"`))}, which \`value\` can name`);
     return [{ name: context.name ?? sheet.columns[numeric[0]], column: numeric[0] }];
   }
   if (typeof value === "string") return [{ name: context.name ?? value, column: columnNamed(sheet, value, "value") }];

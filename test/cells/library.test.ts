@@ -97,6 +97,17 @@ describe("what the functions give", () => {
     const acf = call("theoreticalAcf", { phi: [0.5] }, 3) as Float64Array;
     [1, 0.5, 0.25, 0.125].forEach((v, k) => { expect(acf[k]).toBeCloseTo(v, 12); });
   });
+  it("a decomposition is three series that add up to what was given", () => {
+    for (const name of ["stl", "decompose"]) {
+      const { trend, seasonal, remainder } = call(name, crossings) as Record<string, typeof crossings>;
+      expect(trend.name).toBe("trend of crossings");
+      crossings.values.forEach((v, t) => { if (!Number.isNaN(trend.values[t])) expect(trend.values[t] + seasonal.values[t] + remainder.values[t]).toBeCloseTo(v, 9); });
+    }
+  });
+  it("estimateLambda is a number, or says why there is none", () => {
+    expect(call("estimateLambda", crossings, "likelihood")).toBeTypeOf("number");
+    expect(() => call("estimateLambda", [1, 2, -3, 4, 5, 6, 7, 8, 9, 10])).toThrow(/^estimateLambda: /);
+  });
   it("errors, by hand", () => {
     expect(call("mae", [1, 2, 4], [1, 3, 2])).toBe(1);
     expect(call("mase", [3], [5], [1, 2, 3], 1)).toBe(2);
