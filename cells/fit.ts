@@ -41,7 +41,7 @@ export const fit: Kind<FitCell, Fit> = {
   callable: true,
   example: "series: steady\nar: 0\nma: 1\nseason: {ma: 1}",
   run: options => runFit(options),
-  show: result => fitParts(result),
+  show: (result, context) => fitParts(result, context.width),
 };
 
 /** Checks what an author may have slipped on, then estimates. */

@@ -1,11 +1,12 @@
 // What a fit shows: the equation with its numbers, the coefficients against zero, the roots, and what is doubtful.
 
-import { normalQuantile, type Fit } from "../../stdlib/index.ts";
+import { normalQuantile, slice, type Fit } from "../../stdlib/index.ts";
+import { timePlot, type Line } from "./chart.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { backshiftEquation, legend, writtenOutEquation } from "./equation.ts";
 import { intervalChart } from "./intervalChart.ts";
 import { rootsChart } from "./rootsChart.ts";
-import { differenceLags, scaleText } from "./scale.ts";
+import { axisTitle, differenceLags, scaleText } from "./scale.ts";
 import { capital, count, decimals, figure, listOf, percent } from "./words.ts";
 
 /** One coefficient of a model, as a reader meets it. */
@@ -18,7 +19,7 @@ export interface Coefficient {
 
 const level = 0.95;
 
-export function fitParts(fit: Fit): readonly Part[] {
+export function fitParts(fit: Fit, width: number): readonly Part[] {
   const coefficients = coefficientsOf(fit);
   return [
     { part: "text", text: openingSentence(fit) },
@@ -29,6 +30,7 @@ export function fitParts(fit: Fit): readonly Part[] {
     ...coefficientParts(coefficients),
     ...rootParts(fit),
     usedSentence(fit),
+    ...usedChart(fit, width),
     {
       part: "figures", figures: [
         { label: "log-likelihood", value: fit.logLikelihood, format: ",.2f" },
@@ -167,6 +169,20 @@ function rootsSentence(fit: Fit): string {
     say(fit.roots.ar, "autoregressive", "the model is stationary"),
     say(fit.roots.ma, "moving-average", "the shocks can be recovered from the data"),
   ].filter(text => text !== "").join(" ");
+}
+
+/** The window on the series it was cut from, where something was held out. */
+function usedChart(fit: Fit, width: number): readonly Part[] {
+  const given = fit.options.series, { series } = fit;
+  const first = given.times.indexOf(series.times[0]), last = given.times.indexOf(series.times[series.n - 1]);
+  if (first < 0 || last < 0 || (first === 0 && last === given.n - 1)) return [];
+  const lines: Line[] = [{ label: "used", series, style: "sample" }];
+  if (last < given.n - 1) lines.push({ label: "held out", series: slice(given, last + 1, given.n), style: "heldOut" });
+  if (first > 0) lines.push({ label: "before the window", series: slice(given, 0, first), style: "heldOut" });
+  return [timePlot({
+    title: "Observations used", alt: `Used are ${series.times[0]} to ${series.times[series.n - 1]} of ${given.times[0]} to ${given.times[given.n - 1]}.`,
+    axis: axisTitle(series), lines, width, height: 120,
+  })];
 }
 
 function usedSentence(fit: Fit): TextPart {

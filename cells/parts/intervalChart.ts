@@ -17,7 +17,7 @@ export interface IntervalRow {
 export function intervalChart(title: string, alt: string, axis: string, rows: readonly IntervalRow[]): ChartPart {
   const withInterval = rows.filter(row => Number.isFinite(row.low) && Number.isFinite(row.high));
   return {
-    part: "chart", title, alt, height: 56 + 36 * rows.length,
+    part: "chart", title, alt, height: 56 + 36 * roomFor(rows.length),
     spec: {
       encoding: { y: { field: "label", type: "nominal", sort: null, axis: { title: null, ticks: false, domain: false, labelLimit: 160 } } },
       layer: [
@@ -41,6 +41,11 @@ export function intervalChart(title: string, alt: string, axis: string, rows: re
       intervals: { label: withInterval.map(row => row.label), low: withInterval.map(row => row.low), high: withInterval.map(row => row.high) },
     },
   };
+}
+
+/** Room for a few rows more than there are: a picture that keeps its size is updated, not made anew, when a lag is added. */
+function roomFor(rows: number): number {
+  return rows <= 2 ? 2 : Math.ceil(rows / 2) * 2;
 }
 
 function figuresOf(row: IntervalRow): string {

@@ -43,7 +43,23 @@ export function lagChart(given: {
       ],
     },
     data,
+    full: { correlations: table(panels) },
   };
+}
+
+/** All panels as one table by lag. */
+function table(panels: readonly LagPanel[]): Columns {
+  const from = Math.min(...panels.map(panel => panel.from));
+  const end = Math.max(...panels.map(panel => panel.from + panel.values.length));
+  const lags = Array.from({ length: Math.max(0, end - from) }, (_, i) => from + i);
+  const at = (values: ArrayLike<number> | undefined, panel: LagPanel): number[] => lags.map(lag => values?.[lag - panel.from] ?? NaN);
+  return Object.fromEntries([
+    ["lag", lags],
+    ...panels.flatMap(panel => [
+      [panel.title, at(panel.values, panel)], ...(panel.band === undefined ? [] : [[`band of the ${panel.title}`, at(panel.band, panel)]]),
+      ...(panel.theory === undefined ? [] : [[`${panel.title} of the model`, at(panel.theory, panel)]]),
+    ]),
+  ]) as Columns;
 }
 
 function lagField(title: string): Record<string, unknown> {

@@ -11,11 +11,11 @@ const mostLines = 6;
 export function scoreChart(title: string, alt: string, measure: string, lines: readonly ScoreLine[], level: number | null): ChartPart {
   const drawn = lines.slice(0, mostLines);
   const points = drawn.flatMap(line => line.horizons.map((horizon, i) => ({ label: line.label, horizon, value: line.values[i] }))).filter(p => Number.isFinite(p.value));
-  const labels = drawn.map(line => line.label);
   const x = { field: "horizon", type: "quantitative", title: "periods ahead", scale: { nice: false, zero: false, padding: 14 }, axis: { grid: false, tickMinStep: 1, format: "d" } };
   const y = { field: "value", type: "quantitative", title: measure, scale: { zero: true } };
   const legend = { title: null, orient: "top", columns: 2, labelLimit: 240 };
-  const series = { field: "label", type: "nominal", scale: { domain: labels } };
+  // In the order of the data: labels in the specification would make a new picture of every renamed model.
+  const series = { field: "label", type: "nominal", sort: null };
   return {
     part: "chart", title, alt, height: 250,
     spec: {

@@ -83,6 +83,14 @@ describe("fit runs", () => {
     await expect(drawnCharts(parts)).resolves.not.toHaveLength(0);
     expect(texts(parts)).not.toMatch(/NaN|undefined/);
   });
+  test("a window, and draws what was held out beside what was used", async () => {
+    const result = await run({ series: madeSeries(), ar: 1, window: { from: "2018-06", to: "2022-12" } });
+    const parts = fit.show(result, show);
+    const used = parts.find((p): p is ChartPart => p.part === "chart" && p.title === "Observations used")!;
+    expect(used.alt).toBe("Used are 2018-06 to 2022-12 of 2018-01 to 2023-12.");
+    expect(texts(parts)).toContain("12 later periods are held out");
+    await expect(drawnCharts(parts)).resolves.toHaveLength(3);
+  });
   test("subset lags with a regressor and a mean", async () => {
     const result = await run({ series: madeSeries(), ar: [1, 12], regressors: { storm: pulse("2020-03") } });
     expect(coefficientsOf(result).map(c => c.label)).toEqual(["AR lag 1", "AR lag 12", "mean", "storm"]);
