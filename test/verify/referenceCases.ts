@@ -43,15 +43,21 @@ function coefficients(item: Case): readonly Check[] {
   }));
 }
 
+/** A forecast comes back in the units of the data: where the case stays in logarithms, its logarithm is compared. */
 function forecastChecks(item: Case): readonly Check[] {
-  const log = item.inputs.backTransform === "log";
   const at = (path: string) => (i: number): string => `${path}[${i}]`;
+  const se = checksOf(item, "se", at("f.se"));
+  if (item.inputs.backTransform === "log") {
+    return [...se, ...checksOf(item, "median", at("f.median")), ...checksOf(item, "meanLognormal", at("f.mean")), ...checksOf(item, "lower95Back", at("f.bands[1].low")), ...checksOf(item, "upper95Back", at("f.bands[1].high"))];
+  }
+  const inLogs = item.transform.includes("log");
+  const scale = (path: string) => (i: number): string => (inLogs ? `log(${path}[${i}])` : `${path}[${i}]`);
   return [
-    ...checksOf(item, log ? "median" : "point", at("f.median")),
-    ...checksOf(item, log ? "meanLognormal" : "point", at("f.mean")),
-    ...checksOf(item, "se", at("f.se")),
-    ...(log ? [] : [...checksOf(item, "lower80", at("f.bands[0].low")), ...checksOf(item, "upper80", at("f.bands[0].high")), ...checksOf(item, "lower95", at("f.bands[1].low")), ...checksOf(item, "upper95", at("f.bands[1].high"))]),
-    ...(log ? [...checksOf(item, "lower95Back", at("f.bands[1].low")), ...checksOf(item, "upper95Back", at("f.bands[1].high"))] : []),
+    ...se,
+    ...checksOf(item, "point", scale("f.median")),
+    ...(inLogs ? [] : checksOf(item, "point", scale("f.mean"))),
+    ...checksOf(item, "lower80", scale("f.bands[0].low")), ...checksOf(item, "upper80", scale("f.bands[0].high")),
+    ...checksOf(item, "lower95", scale("f.bands[1].low")), ...checksOf(item, "upper95", scale("f.bands[1].high")),
   ];
 }
 
@@ -76,11 +82,12 @@ const writers: Readonly<Record<string, (item: Case) => Written>> = {
     const checks = lags.map((lag, i): Check => ({ field: "ccf", expected: value[i], within: tolerance, expression: lag >= 0 ? `ccf(z, y, ${item.inputs.maxLag as number})[${lag}]` : `ccf(y, z, ${item.inputs.maxLag as number})[${-lag}]` }));
     return write(`${seriesCells(item.series as string, item.transform, "y")}\n${seriesCells(item.inputs.with as string, item.inputs.withTransform as Case["transform"], "z")}`, checks);
   },
-  portmanteau: ofSeries((item) => (["ljungBox", "boxPierce"] as const).flatMap((test) => (item.expected[test] as readonly Record<string, number | null>[]).flatMap((row, i) => {
-    const lag = (item.inputs.lags as readonly number[])[i];
-    const statistic = checksOf(item, test, () => `${test}(y, ${lag}).statistic`, row.statistic);
-    return item.inputs.modelDf === 0 ? [...statistic, ...checksOf(item, test, () => `${test}(y, ${lag}).p`, row.pValue)] : statistic;
-  }))),
+  portmanteau: ofSeries((item) => (["ljungBox", "boxPierce"] as const).flatMap((test) => {
+    const at = (path: string) => (i: number): string => `${test}(y, ${(item.inputs.lags as readonly number[])[i]}).${path}`;
+    const { statistic, pValue } = item.expected[test] as Readonly<Record<string, readonly (number | null)[]>>;
+    // With the coefficients of a model taken off the degrees of freedom the p-value is another: diagnostics of a fit show that one.
+    return [...checksOf(item, test, at("statistic"), statistic), ...(item.inputs.modelDf === 0 ? checksOf(item, test, at("p"), pValue) : [])];
+  })),
   adf: ofSeries((item) => {
     const lags = item.inputs.autolag ? `lags: "${String(item.inputs.autolag).toLowerCase()}", maxLags: ${item.inputs.maxLag as number}` : `lags: ${item.inputs.lags as number}`;
     const at = `adf(y, {trend: "${trends[item.inputs.regression as string]}", ${lags}})`;

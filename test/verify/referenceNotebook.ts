@@ -153,6 +153,7 @@ export function modelCells(item: Case, model: Model = item.inputs.model as Model
 export class Unsupported extends Error {}
 
 export function write(cells: string, checks: readonly Check[]): Written {
-  const numbers = checks.map((check) => `- [0](<=${check.expression}>)`).join("\n");
+  // CommonMark wants both signs escaped inside a destination in angle brackets.
+  const numbers = checks.map((check) => `- [0](<=${check.expression.replaceAll(/[<>]/g, "\\$&")}>)`).join("\n");
   return { text: `# Reference\n\n${cells}\n\n${numbers}\n`, checks };
 }
