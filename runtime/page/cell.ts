@@ -66,7 +66,8 @@ function progressTree(cell: CellReport, context: CellContext): Given {
 function partTree(part: Part, index: number, cell: CellReport, context: CellContext, source: Readonly<Record<string, AttributeValue>>): Given {
   const key = chartKey(cell.id, index);
   switch (part.part) {
-    case "chart": return chartTree(part, key, context, source);
+    // The sentence that states the finding is shown below its chart, unless the cell says it as a text anyway.
+    case "chart": return chartTree(part, key, context, source, !(cell.show ?? []).some((other) => other.part === "text" && other.text.includes(part.alt)));
     case "table": return h("div", { class: "outlet", ...source }, tableTree(part, context.still ? null : tableMenu(key)));
     case "equation": return h("div", { class: "outlet", ...source }, equationTree(part));
     case "text": return textTree(part);
@@ -76,14 +77,14 @@ function partTree(part: Part, index: number, cell: CellReport, context: CellCont
   }
 }
 
-function chartTree(part: ChartPart, key: string, context: CellContext, source: Readonly<Record<string, AttributeValue>>): Tree {
+function chartTree(part: ChartPart, key: string, context: CellContext, source: Readonly<Record<string, AttributeValue>>, says: boolean): Tree {
   const box = context.still
     ? { class: "chart-box", own: key, role: "img", "aria-label": part.alt }
     : { class: "chart-box", own: key, role: "application", "aria-roledescription": "chart", tabindex: 0, "aria-label": `${part.title}. ${part.alt} The arrow keys read its points.`, "data-chart": key, style: `min-height:${part.height}px` };
   return h("figure", { class: "part part-chart", key: `chart ${key}` },
     h("figcaption", {}, h("span", { class: "chart-title" }, part.title), context.still ? null : chartMenu(key, context.asTable(key))),
     h("div", { class: "outlet", ...source }, h("div", box)),
-    h("p", { class: "chart-alt", "aria-hidden": "true" }, part.alt),
+    says ? h("p", { class: "chart-alt", "aria-hidden": "true" }, part.alt) : null,
     context.asTable(key) ? chartDataTable(part) : null);
 }
 

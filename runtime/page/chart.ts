@@ -2,7 +2,7 @@
 
 import embed from "vega-embed";
 import type { EmbedOptions } from "vega-embed";
-import { changeset, truthy } from "vega";
+import { changeset, Error as onlyErrors, truthy } from "vega";
 import type { Loader } from "vega";
 import { rowsOf } from "./chartData.ts";
 import { compileChart } from "./chartSpec.ts";
@@ -46,7 +46,8 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
   let latest = part;
   const options: EmbedOptions = {
     mode: "vega", ast: true, expr: vegaExpression as unknown as NonNullable<EmbedOptions["expr"]>, actions: false, defaultStyle: false, renderer: "svg", hover: false,
-    loader: noLoader, tooltip: (_handler, event, _item, value) => say(event, value),
+    // An empty data set is no fault worth a warning: a forecast without held-out data has one.
+    logLevel: onlyErrors, loader: noLoader, tooltip: (_handler, event, _item, value) => say(event, value),
     // Data go in before the first drawing, so that nothing is drawn empty.
     patch: (spec) => ({ ...spec, data: (spec.data ?? []).map((set) => set.name in part.data ? { ...set, values: rowsOf(part.data[set.name]) } : set), signals: (spec.signals ?? []).map((signal) => part.params && signal.name in part.params ? { ...signal, value: part.params[signal.name] } : signal) }) as typeof spec,
     ...(compiled.fits ? { width, height: part.height } : {}),

@@ -1,6 +1,6 @@
 // A chart printed as SVG without a browser: for the exported page's first sight and its print.
 
-import { parse, View } from "vega";
+import { Error as onlyErrors, parse, View } from "vega";
 import { rowsOf } from "./chartData.ts";
 import { compileChart } from "./chartSpec.ts";
 import { vegaExpression } from "./vegaExpression.ts";
@@ -10,7 +10,7 @@ import type { ChartPart } from "../../cells/parts/part.ts";
  *  @returns SVG whose colours are the page's CSS variables; it scales down with its box */
 export async function chartStill(part: ChartPart, width: number): Promise<string> {
   const compiled = compileChart(part);
-  const view = new View(parse(compiled.spec, undefined, { ast: true }), { renderer: "none", expr: vegaExpression as never });
+  const view = new View(parse(compiled.spec, undefined, { ast: true }), { renderer: "none", logLevel: onlyErrors, expr: vegaExpression as never });
   for (const [name, columns] of Object.entries(part.data)) if (compiled.dataNames.has(name)) view.data(name, rowsOf(columns));
   for (const [name, value] of Object.entries(part.params ?? {})) if (compiled.signalNames.has(name)) view.signal(name, value);
   if (compiled.fits) view.width(width).height(part.height);
