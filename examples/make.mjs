@@ -28,7 +28,7 @@ const write = (name, header, rows) => writeFileSync(new URL(name, folder), [head
 
 /** Vehicles carried a month by a ferry line: steady growth, a summer peak, shocks that fade within a month or a year. */
 function ferry() {
-  const shock = normal(127);
+  const shock = normal(151);
   const months = 15 * 12;
   const warmUp = 60;
   const e = Array.from({ length: warmUp + months }, () => 0.034 * shock());
