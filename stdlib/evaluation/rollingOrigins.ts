@@ -2,6 +2,7 @@
 
 import { defaultSeasonLength } from "../series/every.ts";
 import { slice } from "../series/cut.ts";
+import { isSeries } from "../series/series.ts";
 import { isRule, rule } from "../forecast/rules.ts";
 import type { Fit } from "../arma/model.ts";
 import type { Forecaster } from "../forecast/model.ts";
@@ -120,7 +121,8 @@ export function summarise(given: readonly Labelled[], rolled: readonly Rolled[],
   return {
     models: ranked, best: ranked[0], rankedBy: rank, scores: asked.flatMap((i) => tables[i]), against, confidenceSet: set,
     naive: bestNaive >= 0 ? overall[bestNaive] : overall[0], origins: frame.origins.slice(0, common), horizon, unit: frame.base.unit, name: frame.base.name,
-    forecasts: asked.flatMap((i) => originForecasts(even[i], frame)), failures, complete, done, total, sentence: verdict.sentence, notes: verdict.notes,
+    forecasts: asked.flatMap((i) => originForecasts(even[i], frame)), failures, complete, done, total, sentence: verdict.sentence,
+    notes: given.some(({ model }) => !isRule(model) && Object.values(model.options.regressors ?? {}).some(isSeries)) ? [...verdict.notes, knownRegressors] : verdict.notes,
   };
 }
 
@@ -142,6 +144,8 @@ function seasonOf(models: readonly Labelled[], frame: RollingFrame): number {
   const length = own ?? defaultSeasonLength(frame.base.every) ?? 1;
   return frame.at[0] >= 2 * length ? length : 1;
 }
+
+const knownRegressors = "Where a model has a series as regressor, its later values were taken as they turned out: the errors leave out that in practice they must be forecast too.";
 
 const naiveLabel = "naive (added)", seasonalLabel = "seasonal naive (added)";
 

@@ -11,7 +11,7 @@ import { shapeOf } from "./shape.ts";
 import { totalsOf } from "./totals.ts";
 
 /** Sample paths behind the limits of totals and growth where those have no closed form. */
-const pathCount = 10_000;
+const pathCount = 4000;
 
 /** Forecasts from the end of a model's sample.
  *  `mean` and `median` differ after a log or Box-Cox: the median is the plain way back, the mean takes the spread into account.

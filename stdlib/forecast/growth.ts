@@ -6,7 +6,8 @@ import { quantileOf, type Outlook } from "./outlook.ts";
 import { wholeYearOf } from "./totals.ts";
 
 /** Growth of each period on the same one a year before, as a share. While the year before was observed its limits are those
- *  of the forecast; after that both ends are forecasts, and the limits come from the paths.
+ *  of the forecast; after that both ends are forecasts, and the limits come
+ *  from the ratio's own distribution (logs) or from the paths.
  *  Empty where a year has no fixed number of periods; periods whose year before is missing or not above 0 are left out. */
 export function growthOf(base: Series, outlook: Outlook, times: readonly string[], levels: readonly number[], paths: () => readonly Float64Array[]): Growth[] {
   const lag = wholeYearOf(base.every);
@@ -26,6 +27,8 @@ export function growthOf(base: Series, outlook: Outlook, times: readonly string[
       if (before > 0) rows.push(row((p) => at(p, h) / before - 1));
       continue;
     }
+    const { ratio } = outlook;
+    if (ratio) { rows.push(row((p) => ratio(h, h - lag, p) - 1)); continue; }
     const ratios = Float64Array.from(paths(), (path) => (path[h - lag] > 0 ? path[h] / path[h - lag] - 1 : NaN)).sort();
     if (!ratios.some((r) => Number.isNaN(r))) rows.push(row((p) => quantileOf(ratios, p)));
   }

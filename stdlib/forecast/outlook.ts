@@ -22,6 +22,8 @@ export interface Outlook {
   readonly paths: (count: number, seed: number) => Float64Array[];
   /** Exact covariance matrix in data units, flat by rows; null where it is only known by simulation. */
   readonly covariance: () => Float64Array | null;
+  /** Quantile with probability p of the ratio of two periods, later over earlier, where it has a closed form (logs). */
+  readonly ratio?: (later: number, earlier: number, p: number) => number;
   /** Whether values in data units are jointly normal. */
   readonly normal: boolean;
   /** Continuous ranked probability score of the forecast h periods ahead. */
@@ -69,6 +71,7 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
     },
     paths: (count, seed) => drawNormal(m, factor(), count, seed).map((path) => undoPath(rest, path)),
     covariance: () => (form === "normal" ? predictive.covariance() : form === "lognormal" ? lognormalCovariance(predictive.covariance(), moments.mean, rest) : null),
+    ...(form === "lognormal" && rest.slice(1).every((s) => s.undo === "affine" && s.add.every((a) => a === 0)) ? { ratio: ratioOf(predictive, rest) } : {}),
     crps: (h, actual) => {
       if (form === "normal") return normalCrps(actual, m[h], se[h]);
       if (form === "lognormal") { const { add, times } = tailOf(rest, h); return Math.abs(times) * lognormalCrps((actual - add) / times, m[h], se[h]); }
@@ -140,6 +143,15 @@ export function momentsAt(rest: readonly UndoStep[], h: number, m: number, se: n
   }
   const mean = first / weight;
   return { mean: middle + mean, sd: Math.sqrt(Math.max(0, second / weight - mean * mean)) };
+}
+
+/** The ratio of two lognormal values is lognormal: the difference of their logs is normal. */
+function ratioOf({ mean, covariance }: Predictive, rest: readonly UndoStep[]): NonNullable<Outlook["ratio"]> {
+  const c = once(covariance), size = mean.length;
+  return (later, earlier, p) => {
+    const variance = c()[later * size + later] + c()[earlier * size + earlier] - 2 * c()[later * size + earlier];
+    return (tailOf(rest, later).times / tailOf(rest, earlier).times) * Math.exp(mean[later] - mean[earlier] + normalQuantile(p) * Math.sqrt(Math.max(0, variance)));
+  };
 }
 
 function lognormalCovariance(c: Float64Array, mean: Float64Array, rest: readonly UndoStep[]): Float64Array {

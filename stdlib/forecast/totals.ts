@@ -77,8 +77,10 @@ function totalOf({ from, to, low, high }: Span, base: Series, outlook: Outlook, 
     return finish({ from, to, mean, median: mean, se, observed }, levels, at, before);
   }
   const sorted = sums(), average = sorted.reduce((a, b) => a + b, 0) / sorted.length;
-  const se = c ? Math.sqrt(variance) : Math.sqrt(sorted.reduce((sum, x) => sum + (x - average) ** 2, 0) / (sorted.length - 1));
-  return finish({ from, to, mean, median: quantileOf(sorted, 0.5), se, observed }, levels, (p) => quantileOf(sorted, p), before);
+  const spread = Math.sqrt(sorted.reduce((sum, x) => sum + (x - average) ** 2, 0) / (sorted.length - 1)), se = c ? Math.sqrt(variance) : spread;
+  // Where mean and standard error are known exactly the draws are moved and stretched to have them: only the shape is left to chance.
+  const at = (p: number): number => (c && spread > 0 ? mean + (quantileOf(sorted, p) - average) * (se / spread) : quantileOf(sorted, p));
+  return finish({ from, to, mean, median: at(0.5), se, observed }, levels, at, before);
 }
 
 function finish(total: Omit<Total, "bands" | "growth">, levels: readonly number[], at: (p: number) => number, before: number | null): Total {

@@ -124,3 +124,12 @@ describe("work that is stopped, and models that fail", () => {
     await expect(rollingOrigins({ a: rule.naive(s) }, { origins: 140, horizon: 12 })).rejects.toThrow("at most 127 origins");
   });
 });
+
+describe("regressors at rolling origins", () => {
+  it("come with their observed later values, which is said", async () => {
+    const s = airline(), price = makeSeries({ name: "price", every: "P1M", start: s.start, values: s.values.map((v, t) => Math.sin(t) + v / 1000) });
+    const found = await rollingOrigins({ m: fit({ series: applySteps(s, logDifferenced), ma: 1, season: { ma: 1 }, regressors: { price } }) }, { origins: 9, horizon: 2 });
+    expect(found.failures).toEqual([]);
+    expect(found.notes.some((n) => n.includes("as they turned out"))).toBe(true);
+  });
+});
