@@ -2,7 +2,8 @@
 
 import { OptionError, type Kind } from "./kind.ts";
 import type { ChartPart, Columns } from "./parts/part.ts";
-import { chartColumns, readView } from "./parts/vegaLite.ts";
+import { chartColumns, fieldsDrawn, panelsBelow, readView } from "./parts/vegaLite.ts";
+import { count, listOf } from "./parts/words.ts";
 
 export type ChartCell = Readonly<Record<string, unknown>>;
 interface View { readonly spec: Readonly<Record<string, unknown>>; readonly data: Readonly<Record<string, Columns>>; readonly title: string; readonly alt: string; readonly height: number }
@@ -11,7 +12,7 @@ export const chart: Kind<ChartCell, View> = {
   name: "chart",
   sentence: "A Vega-Lite view; each option is a top-level property of the specification.",
   options: {
-    data: { type: "any", required: true, sentence: "Rows (a list of objects), a series (fields time, period, value), several series, or a forecast (time, mean, median, low90, high90, …).", example: "crossings" },
+    data: { type: "any", sentence: "Rows (a list of objects), a series (fields time, period, value), several series, or a forecast (time, mean, median, low90, high90, …).", example: "crossings" },
     mark: { type: "any", sentence: "How rows are drawn: \"line\", \"point\", \"bar\", \"area\", … or an object with `type`.", example: "\"line\"" },
     encoding: { type: "object", sentence: "Which field stands on which channel; types are read from the data.", example: "{x: {field: \"time\"}, y: {field: \"value\"}}" },
     layer: { type: "list", sentence: "Views drawn over each other." },
@@ -26,8 +27,8 @@ export const chart: Kind<ChartCell, View> = {
     const { spec, data } = readView(given);
     const title = titleOf(given["title"]);
     const { title: _title, description: _description, ...drawn } = spec;
-    const alt = typeof given["description"] === "string" ? given["description"] : `${title === "" ? "A chart" : title}: ${rowsSentence(data)}`;
-    return { spec: drawn, data: Object.fromEntries(Object.entries(data).map(([name, rows]) => [name, chartColumns(rows)])), title, alt, height: heightOf(spec) };
+    const alt = typeof given["description"] === "string" ? given["description"] : `${title === "" ? "Chart" : title}: ${drawnSentence(spec, data)}`;
+    return { spec: drawn, data: Object.fromEntries(Object.entries(data).map(([name, rows]) => [name, chartColumns(rows)])), title, alt, height: heightOf(spec, panelsBelow(spec, data)) };
   },
   show: ({ spec, data, title, alt, height }) => [{ part: "chart", title, alt, spec, data, height } satisfies ChartPart],
 };
@@ -40,15 +41,16 @@ function titleOf(title: unknown): string {
   throw new OptionError("title", "`title` is a text in quotes");
 }
 
-function rowsSentence(data: Readonly<Record<string, { readonly n: number; readonly columns: Readonly<Record<string, unknown>> }>>): string {
-  const all = Object.values(data);
-  const fields = [...new Set(all.flatMap((rows) => Object.keys(rows.columns)))];
-  return `${all.map((rows) => `${rows.n} rows`).join(" and ")} of ${fields.join(", ")}.`;
+/** "value by time, from 180 rows." */
+function drawnSentence(spec: Readonly<Record<string, unknown>>, data: Readonly<Record<string, { readonly n: number }>>): string {
+  const { drawn, by } = fieldsDrawn(spec);
+  const rows = Object.values(data).reduce((sum, one) => sum + one.n, 0);
+  const what = drawn.length === 0 ? "" : `${listOf(drawn)}${by.length === 0 ? "" : ` by ${listOf(by)}`}, `;
+  return `${what}from ${count(rows, "row")}.`;
 }
 
-function heightOf(spec: Readonly<Record<string, unknown>>): number {
+function heightOf(spec: Readonly<Record<string, unknown>>, panels: number): number {
   const { height } = spec;
-  const own = typeof height === "number" ? height : 260;
-  const below = Array.isArray(spec["vconcat"]) ? spec["vconcat"].length : 1;
-  return below * (own + 50);
+  const own = typeof height === "number" ? height : panels > 1 ? 160 : 260;
+  return panels > 1 ? panels * (own + 20) + 45 : own + 50;
 }

@@ -78,11 +78,18 @@ function isNumbers(cells: readonly Cell[]): boolean {
   return cells.some((cell) => typeof cell === "number") && cells.every((cell) => typeof cell === "number" || cell === null);
 }
 
-/** Whole numbers plainly; otherwise as many decimals as give the middle value four digits, alike down the column. */
+/** Whole numbers plainly; otherwise as many decimals as give the middle value four digits, or fewer where none needs them. */
 function formatFor(cells: readonly Cell[]): string {
   const sizes = cells.filter((cell): cell is number => typeof cell === "number" && Number.isFinite(cell)).map(Math.abs);
   if (sizes.every(Number.isInteger)) return ",d";
   const middle = sizes.filter((v) => v > 0).sort((a, b) => a - b)[Math.floor(sizes.filter((v) => v > 0).length / 2)] ?? 1;
-  const decimals = Math.min(8, Math.max(0, 3 - Math.floor(Math.log10(middle))));
+  const needed = Math.max(...sizes.map(decimalsOf));
+  const decimals = Math.min(needed, 8, Math.max(0, 3 - Math.floor(Math.log10(middle))));
   return `,.${decimals}f`;
+}
+
+/** Decimals of a number as it is written in up to twelve digits. */
+function decimalsOf(value: number): number {
+  const [mantissa, exponent = "0"] = String(Number(value.toPrecision(12))).split("e");
+  return Math.max(0, (mantissa.split(".")[1] ?? "").length - Number(exponent));
 }

@@ -48,6 +48,7 @@ export function readView(options: Spec): { readonly spec: Spec; readonly data: R
     spec[name] = name === "data" ? { name: keep(value, data, "data") } : inside(value, name, name, data, name);
   }
   if (!["mark", "layer", "hconcat", "vconcat", "concat", "spec"].some((name) => name in spec)) throw new OptionError("mark", "`chart` needs a `mark`, such as mark: \"line\", or `layer`");
+  if (Object.keys(data).length === 0) throw new OptionError("data", "`chart` needs `data`: the name of a series, a forecast or rows, at the top or in each layer");
   const typed = typedView(spec, data, [spec["data"]]) as Spec;
   return { spec: sized(typed), data };
 }
@@ -61,12 +62,27 @@ function keep(value: unknown, data: Record<string, Rows>, option: string): strin
   const count = Object.keys(data).length;
   const name = count === 0 ? "rows" : `rows${count + 1}`;
   try {
-    data[name] = withTimes(rowsOf(plainData(value)));
+    const rows = withTimes(rowsOf(plainData(value)));
+    // Two layers of one series or forecast share its columns.
+    const same = Object.entries(data).find(([, one]) => one.n === rows.n && Object.keys(rows.columns).length > 0 && sameColumns(one, rows));
+    if (same !== undefined) return same[0];
+    data[name] = rows;
   } catch (error) {
     if (error instanceof RangeError) throw new OptionError(option, `\`data\`: ${error.message}`);
     throw error;
   }
   return name;
+}
+
+function sameColumns(a: Rows, b: Rows): boolean {
+  const names = Object.keys(a.columns);
+  return names.length === Object.keys(b.columns).length && names.every((name) => {
+    const x = a.columns[name], y = b.columns[name];
+    if (x === y) return true;
+    if (y === undefined || x.length !== y.length) return false;
+    for (let i = 0; i < x.length; i++) if (!Object.is(x[i], y[i])) return false;
+    return true;
+  });
 }
 
 /** `{values: rows}` is Vega-Lite's own way of giving rows. */
@@ -176,12 +192,45 @@ function typedField(def: unknown, channel: string, rows: Rows | undefined, deriv
     result["scale"] = { type: "utc", ...(typeof field["scale"] === "object" ? field["scale"] : {}) };
   }
   if (isTime && positional && !("title" in field) && field.field === "time") result["title"] = null;
+  // Groups stand in the order of the rows, which an author chose, not of the alphabet.
+  if (result["type"] === "nominal" && !("sort" in field)) {
+    if (positional) result["sort"] = null;
+    else if (["row", "column", "facet"].includes(channel)) result["sort"] = [...new Set(Array.from<unknown>(column))];
+  }
   if (isTime && channel === "tooltip" && !("timeUnit" in field)) result["timeUnit"] = "utcyearmonthdate";
   return result;
 }
 
-/** A single view or a layered one takes the width of the page; views beside each other keep their own. */
+/** A single view or a layered one takes the width of the page; panels start from a width that the page then fits. */
 function sized(spec: Spec): Spec {
-  const single = "mark" in spec || "layer" in spec;
-  return single ? { width: "container", height: 260, ...spec } : spec;
+  if (!("mark" in spec) && !("layer" in spec)) return spec;
+  const encoding = (spec["encoding"] ?? {}) as Spec;
+  if ("column" in encoding || "facet" in encoding) return { width: 180, height: 180, ...spec };
+  return "row" in encoding ? { width: 500, height: 120, ...spec } : { width: "container", height: 260, ...spec };
+}
+
+/** How many panels stand below each other. */
+export function panelsBelow(spec: Spec, data: Readonly<Record<string, Rows>>): number {
+  if (Array.isArray(spec["vconcat"])) return spec["vconcat"].length;
+  const row = ((spec["encoding"] ?? {}) as Spec)["row"] as Spec | undefined;
+  const column = data["rows"]?.columns[String(row?.["field"])];
+  return column === undefined ? 1 : Math.max(1, new Set(Array.from<unknown>(column)).size);
+}
+
+/** Which fields are drawn, and against what: "median, low90 and value by time". */
+export function fieldsDrawn(spec: unknown): { readonly drawn: readonly string[]; readonly by: readonly string[] } {
+  const drawn = new Set<string>(), by = new Set<string>();
+  const walk = (view: unknown): void => {
+    if (Array.isArray(view)) { view.forEach(walk); return; }
+    if (typeof view !== "object" || view === null) return;
+    for (const [name, inner] of Object.entries(view)) {
+      if (name !== "encoding") { if (name !== "config") walk(inner); continue; }
+      for (const [channel, def] of Object.entries(inner as Spec)) {
+        const field = typeof def === "object" && def !== null && "field" in def && typeof def.field === "string" ? def.field : null;
+        if (field !== null && channel !== "tooltip") (channel === "x" || channel === "row" || channel === "column" || channel === "facet" ? by : drawn).add(field);
+      }
+    }
+  };
+  walk(spec);
+  return { drawn: [...drawn], by: [...by] };
 }

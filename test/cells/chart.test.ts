@@ -17,7 +17,7 @@ describe("chart", () => {
     const one = await part({ data: crossings, title: "Crossings", ...line });
     expect(one.spec["encoding"]).toEqual({ x: { field: "time", type: "temporal", scale: { type: "utc" }, title: null }, y: { field: "value", type: "quantitative" } });
     expect(one.data["rows"]["time"][0]).toBe(Date.UTC(2015, 0, 1));
-    expect([one.title, one.alt]).toEqual(["Crossings", "Crossings: 24 rows of time, period, value, series."]);
+    expect([one.title, one.alt]).toEqual(["Crossings", "Crossings: value by time, from 24 rows."]);
     expect((await draw(one)).warnings).toEqual([]);
   });
   it("draws rows, with ISO 8601 texts as times, and several series", async () => {
@@ -32,6 +32,15 @@ describe("chart", () => {
     const one = await part({ data: crossings, layer: [line, { data: { values: [{ y: 110 }] }, mark: "rule", encoding: { y: { field: "y" } } }] });
     expect(Object.keys(one.data)).toEqual(["rows", "rows2"]);
     expect((await draw(one)).warnings).toEqual([]);
+  });
+  it("panels stand in the order of the rows, and layers of one series share its columns", async () => {
+    const rows = await part({ data: { trend: crossings, season: crossings }, mark: "line", encoding: { x: { field: "time" }, y: { field: "value" }, row: { field: "series" } } });
+    expect(rows.spec).toMatchObject({ width: 500, encoding: { row: { sort: ["trend", "season"] } } });
+    expect(rows.height).toBe(325);
+    const { svg, warnings } = await draw(rows);
+    expect(warnings).toEqual([]);
+    expect(svg.indexOf(">trend<")).toBeLessThan(svg.indexOf(">season<"));
+    expect(Object.keys((await part({ layer: [{ data: crossings, ...line }, { data: crossings, ...line }] })).data)).toEqual(["rows"]);
   });
   it("takes transforms that are described by data", async () => {
     const one = await part({ data: [{ a: 1 }, { a: 5 }], transform: [{ filter: { field: "a", gt: 2 } }, { aggregate: [{ op: "count", as: "n" }] }], mark: "bar", encoding: { y: { field: "n", type: "quantitative" } } });
@@ -62,6 +71,7 @@ describe("chart", () => {
     [{ data: crossings }, "needs a `mark`"],
     [{ data: 3, mark: "line" }, "expected rows"],
     [{ mark: "line" }, "`chart` needs `data`"],
+    [{ layer: [{ mark: "line" }] }, "`chart` needs `data`"],
     [{ data: crossings, mark: "line", encoding: { y: { field: "value", sort: () => 1 } } }, "is a function"],
   ])("refuses in words, case %#", async (options, message) => {
     await expect(runCell(chart, options)).rejects.toThrow(message);

@@ -9,6 +9,9 @@ describe("table", () => {
     expect(part.columns).toEqual([{ title: "label" }, { title: "n", align: "right", format: ",d" }, { title: "aicc", align: "right", format: ",.1f" }]);
     expect(part.rows).toEqual([["a", 3, -483.25], ["b", 12, NaN]]);
   });
+  it("gives no more decimals than the numbers have", async () => {
+    expect((await runCell(table, { rows: [{ a: 1, b: 0.1 + 0.2, c: 1e-7 }, { a: 2.5, b: 1, c: 2e-7 }] })).columns.map((c) => c.format)).toEqual([",.1f", ",.1f", ",.7f"]);
+  });
   it("shows a series by its periods, and columns side by side", async () => {
     const s = makeSeries({ name: "x", every: "P1M", start: "2019-01", values: [1, 2] });
     expect((await runCell(table, { rows: s })).rows).toEqual([["2019-01", 1], ["2019-02", 2]]);

@@ -11,8 +11,8 @@ export async function draw(part: ChartPart): Promise<{ readonly svg: string; rea
     const n = fields.length === 0 ? 0 : columns[fields[0]].length;
     return [name, Array.from({ length: n }, (_, i) => Object.fromEntries(fields.map((f) => [f, columns[f][i]])))];
   }));
-  const { width: _width, ...spec } = part.spec;
-  const { spec: compiled } = compile({ width: 700, ...spec, datasets } as unknown as TopLevelSpec, { logger: logger as never });
+  const { width, ...spec } = part.spec;
+  const { spec: compiled } = compile({ width: width === "container" || width === undefined ? 700 : width, ...spec, datasets } as unknown as TopLevelSpec, { logger: logger as never });
   const view = new View(parse(compiled), { renderer: "none", logLevel: Warn, logger: logger as never });
   return { svg: await view.toSVG(), warnings };
 }
