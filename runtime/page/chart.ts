@@ -67,7 +67,7 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
         const across = compiled.widthSignals.length > 1 ? compiled.widthSignals.length : Math.max(1, Math.round(taken / (now + 50)));
         view.signal(name, Math.max(60, now + (width - taken) / across));
       }
-      await view.runAsync();
+      await view.resize().runAsync(); // a grid of panels takes new room only when told to
     }
     drawnWidth = width;
   }
@@ -81,6 +81,7 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
       drawn = next.data;
       for (const [name, value] of Object.entries(next.params ?? {})) if (compiled.signalNames.has(name)) view.signal(name, value);
       if (compiled.fits && drawnWidth !== width) { view.width(width); drawnWidth = width; }
+      if (compiled.fits && view.height() !== next.height) view.height(next.height);
       await view.runAsync();
       await fitPanels();
     },
