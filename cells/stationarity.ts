@@ -1,6 +1,6 @@
 // The kind that sets unit-root and stationarity tests side by side.
 
-import { stationarity as compute, type Series, type Stationarity } from "../stdlib/index.ts";
+import { defaultSeasonLength, lambdaProfile, rangeMean, stationarity as compute, type LambdaProfile, type RangeMean, type Series, type Stationarity } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable } from "./kind.ts";
 import { needLevel, needVaryingSeries, plainly } from "./parts/needs.ts";
 import { axisTitle, scaleText } from "./parts/scale.ts";
@@ -19,6 +19,9 @@ export interface ShownStationarity extends Stationarity {
   readonly of: string;
   readonly axis: string;
   readonly series: Series;
+  /** Box-Cox lambda by two methods, and the blocks behind the picture; null where a log, a power or a difference came before. */
+  readonly lambda: { readonly guerrero: LambdaProfile; readonly likelihood: LambdaProfile } | null;
+  readonly rangeMean: RangeMean | null;
 }
 
 export const stationarityOptions: OptionTable = {
@@ -47,5 +50,16 @@ export function runStationarity(options: StationarityCell): ShownStationarity {
   const { trend = "constant", lags, bandwidth } = options;
   if (typeof lags === "number" && lags > series.n / 2) throw new OptionError("lags", `lags is ${lags}: with ${series.n} values the regression would have more lags than data to estimate them; ask for at most ${Math.floor(series.n / 4)}`);
   const result = plainly(() => compute({ series, trend, level, ...(lags === undefined || lags === null ? {} : { lags }), ...(bandwidth === undefined || bandwidth === null ? {} : { bandwidth }) }));
-  return { ...result, of: scaleText(series), axis: axisTitle(series), series };
+  return { ...result, of: scaleText(series), axis: axisTitle(series), series, ...spreadOf(series, trend) };
+}
+
+/** The question of a power comes before any difference: it is asked of a positive series on its own scale only. */
+function spreadOf(series: Series, trend: string): Pick<ShownStationarity, "lambda" | "rangeMean"> {
+  const changed = series.steps.some(step => step.step === "log" || step.step === "boxCox" || step.step === "difference" || step.step === "detrend");
+  if (changed || series.values.some(value => value <= 0)) return { lambda: null, rangeMean: null };
+  const season = defaultSeasonLength(series.every);
+  const enough = season === null || season < 2 ? series.n >= 16 : series.n >= 3 * season;
+  if (!enough) return { lambda: null, rangeMean: null };
+  const regression = season !== null && season > 1 ? "season" : trend === "constant" || trend === "none" ? "mean" : "trend";
+  return { lambda: { guerrero: lambdaProfile(series, "guerrero"), likelihood: lambdaProfile(series, "likelihood", { regression }) }, rangeMean: rangeMean(series) };
 }

@@ -1,13 +1,14 @@
 // What the stationarity tests show: what they say together, each null hypothesis in words, the statistics on one line,
 // and what differencing would change.
 
-import { timesMs, type Series, type Stationarity, type Test } from "../../stdlib/index.ts";
+import { timesMs, type LambdaProfile, type RangeMean, type Series, type Stationarity, type Test } from "../../stdlib/index.ts";
 import { panelChart } from "./panelChart.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { ratioChart, type RatioRow } from "./ratioChart.ts";
+import { spreadChart } from "./spreadChart.ts";
 import { percent, pText } from "./words.ts";
 
-type Shown = Stationarity & { readonly of: string; readonly axis: string; readonly series: Series; readonly level: number };
+type Shown = Stationarity & { readonly of: string; readonly axis: string; readonly series: Series; readonly lambda: { readonly guerrero: LambdaProfile; readonly likelihood: LambdaProfile } | null; readonly rangeMean: RangeMean | null };
 
 /** Pictures of differences beyond these are in the table only. */
 const mostPanels = 6;
@@ -22,12 +23,20 @@ export function stationarityParts(result: Shown, width: number): readonly Part[]
     testTable(tests, result.level),
     ...differenceParts(result, width),
     ...strengthText(result),
+    ...spreadParts(result),
     ...notesOf(result, tests),
   ];
 }
 
 function strengthText(result: Shown): readonly TextPart[] {
   return result.strength === null ? [] : [{ part: "text", text: result.strength.sentence }];
+}
+
+/** Whether the spread follows the level, and which power would even it out. */
+function spreadParts(result: Shown): readonly Part[] {
+  if (result.rangeMean === null || result.lambda === null || result.rangeMean.mean.length < 3) return [];
+  const said = [result.rangeMean.sentence, ...[result.lambda.guerrero, result.lambda.likelihood].filter(one => one.status === "ok").map(one => one.sentence)];
+  return [{ part: "text", text: said.join(" ") }, spreadChart(result.rangeMean, result.series.unit)];
 }
 
 function testsOf(result: Shown): readonly NamedTest[] {

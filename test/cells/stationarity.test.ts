@@ -57,6 +57,15 @@ describe("stationarity", () => {
     expect(result.seasonal).not.toBeNull();
     expect(texts(parts)).toContain(result.together);
   });
+  test("asks of a positive series on its own scale whether its spread follows its level", async () => {
+    const raw = await run({ series: madeSeries() });
+    const parts = stationarity.show(raw, show);
+    expect(parts.filter((p): p is ChartPart => p.part === "chart").map(p => p.title)).toContain("Spread against level, block by block");
+    expect(texts(parts)).toMatch(/Over 6 blocks the spread is .*lambda .*95% interval/);
+    await expect(drawnCharts(parts)).resolves.toHaveLength(3);
+    expect(raw.lambda?.guerrero.lambda).toBeGreaterThanOrEqual(-1);
+    expect((await run({ series: stepped(madeSeries(), [{ step: "log" }]) })).lambda).toBeNull();
+  });
   test("shows no number where a test could not be run", async () => {
     const parts = stationarity.show(await run({ series: numbered([1, 3, 2, 5, 4, 6, 3]) }), show);
     expect(JSON.stringify(parts.filter(p => p.part === "text"))).not.toMatch(/NaN|undefined/);
