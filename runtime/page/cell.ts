@@ -10,6 +10,9 @@ import type { AttributeValue, Given, Tree } from "./tree.ts";
 import type { CellReport } from "../engine/messages.ts";
 import type { ChartPart, Part } from "../../cells/parts/part.ts";
 
+/** Trees of parts by the part itself: a cell at work again shows what it showed, and need not be described anew. */
+export type PartTrees = WeakMap<Part, { readonly inputs: readonly unknown[]; readonly tree: Given }>;
+
 export interface CellContext {
   readonly canEdit: boolean;
   /** Printed once for a reader without JavaScript: no buttons, controls as words. */
@@ -25,7 +28,7 @@ export interface CellContext {
 /** The key by which a chart of a cell is known to whoever draws it. */
 export function chartKey(cell: string, index: number): string { return `${cell}/${index}`; }
 
-export function cellTree(cell: CellReport, key: string, context: CellContext): Tree {
+export function cellTree(cell: CellReport, key: string, context: CellContext, known: PartTrees = new WeakMap()): Tree {
   const source = context.canEdit ? { "data-act": "source", "data-from": cell.from, "data-to": cell.to } : {};
   const label = cell.name ?? cell.kind;
   return h("section", { class: "cell", id: cell.name ? `cell-${cell.name}` : null, key, "data-block": cell.id, "data-from": context.still ? cell.from : null, "data-state": cell.state, "data-kind": cell.kind, "aria-label": cell.name ? `${cell.kind} ${cell.name}` : cell.kind, "aria-busy": cell.state === "working" ? "true" : null },
@@ -35,7 +38,7 @@ export function cellTree(cell: CellReport, key: string, context: CellContext): T
       h("span", { class: "cell-state" }, h("span", { class: "shape", "aria-hidden": "true" }), cell.state)),
     h("div", { class: "cell-body" },
       faultTree(cell, context), progressTree(cell, context),
-      (cell.show ?? []).map((part, index) => partTree(part, index, cell, context, source)),
+      (cell.show ?? []).map((part, index) => keptPart(part, index, cell, context, source, known)),
       cell.notes.length > 0 ? h("ul", { class: "cell-notes" }, cell.notes.map((note) => h("li", {}, note))) : null,
       fieldsTree(cell, context)));
 }
@@ -61,6 +64,16 @@ function progressTree(cell: CellReport, context: CellContext): Given {
   return h("p", { class: "cell-progress" },
     h("progress", { max: progress.total > 0 ? progress.total : null, value: progress.total > 0 ? progress.done : null, "aria-label": `progress of ${cell.name ?? cell.kind}` }),
     h("span", { class: "number" }, ` ${count}${progress.what ? ` ${progress.what}` : ""} `), stop);
+}
+
+function keptPart(part: Part, index: number, cell: CellReport, context: CellContext, source: Readonly<Record<string, AttributeValue>>, known: PartTrees): Given {
+  const name = cell.name ?? "";
+  const inputs = [index, cell.id, cell.show, cell.from, cell.to, context.canEdit, context.still, context.pending(name), context.fault(name), context.asTable(chartKey(cell.id, index))];
+  const old = known.get(part);
+  if (old?.inputs.every((input, i) => input === inputs[i])) return old.tree;
+  const tree = partTree(part, index, cell, context, source);
+  known.set(part, { inputs, tree });
+  return tree;
 }
 
 function partTree(part: Part, index: number, cell: CellReport, context: CellContext, source: Readonly<Record<string, AttributeValue>>): Given {

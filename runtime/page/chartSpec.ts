@@ -18,8 +18,8 @@ export interface CompiledChart {
   readonly signalNames: ReadonlySet<string>;
 }
 
-/** Equal for charts that can share a compiled picture. */
-export function shapeOf(part: ChartPart): string { return JSON.stringify([part.spec, Object.keys(part.data), part.height]); }
+/** Equal for charts that can share a compiled picture. A single panel's height is set as it is drawn; those of several are part of the shape. */
+export function shapeOf(part: ChartPart): string { return JSON.stringify([part.spec, Object.keys(part.data), severalPanels(part.spec) ? part.height : 0]); }
 
 type Loose = Record<string, unknown>;
 
@@ -29,7 +29,7 @@ export function compileChart(part: ChartPart): CompiledChart {
   refuseOutside(spec);
   useUtc(spec);
   overlay(spec);
-  const several = ["hconcat", "vconcat", "concat", "facet", "repeat"].some((word) => word in spec) || facetted(spec);
+  const several = severalPanels(spec);
   const names = Object.keys(part.data);
   if (!("data" in spec) && names.length > 0) spec.data = { name: names[0] };
   if (!several) { spec.width ??= 600; if (spec.width === "container") spec.width = 600; spec.height ??= part.height; if (spec.height === "container") spec.height = part.height; spec.autosize = { type: "fit", contains: "padding" }; }
@@ -46,9 +46,9 @@ export function compileChart(part: ChartPart): CompiledChart {
   };
 }
 
-function facetted(spec: Loose): boolean {
+function severalPanels(spec: Readonly<Record<string, unknown>>): boolean {
   const encoding = (spec.encoding ?? {}) as Loose;
-  return "row" in encoding || "column" in encoding || "facet" in encoding;
+  return ["hconcat", "vconcat", "concat", "facet", "repeat"].some((word) => word in spec) || "row" in encoding || "column" in encoding || "facet" in encoding;
 }
 
 /** Panels of a stack share the height where they name none, and start from one width. */

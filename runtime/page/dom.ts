@@ -19,6 +19,16 @@ export function drawing(parent: Element, owner: Owner): (next: readonly Child[])
 
 function patchChildren(parent: Element, before: readonly Child[], after: readonly Child[], owner: Owner): void {
   if (before === after) return;
+  if (continues(before, after)) {
+    // Mostly the same children in the same order: no lists and tables are needed then.
+    let node = parent.firstChild;
+    for (let i = 0; i < after.length; i++) {
+      const next: ChildNode | null = node?.nextSibling ?? null;
+      if (node !== null && before[i] !== after[i]) patch(node, before[i], after[i], owner);
+      node = next;
+    }
+    return;
+  }
   const nodes = [...parent.childNodes];
   const matches = match(before, after);
   const used = new Set(matches);
@@ -33,6 +43,18 @@ function patchChildren(parent: Element, before: readonly Child[], after: readonl
     else place(parent, node, cursor);
     if (old < 0) enter(child, node, owner);
   });
+}
+
+/** Whether each child continues the one at its place. */
+function continues(before: readonly Child[], after: readonly Child[]): boolean {
+  if (before.length !== after.length) return false;
+  for (let i = 0; i < after.length; i++) {
+    const a = before[i]; const b = after[i];
+    if (a === b) continue;
+    if (typeof a === "string" || typeof b === "string") { if (typeof a !== typeof b) return false; continue; }
+    if (a.tag !== b.tag || a.key !== b.key || a.own !== b.own) return false;
+  }
+  return true;
 }
 
 /** For each new child the index of the old one that it continues, or -1. Keys first; unkeyed ones in order, by tag. */
@@ -90,7 +112,7 @@ function leave(child: Child, node: ChildNode, owner: Owner): void {
 }
 
 function patch(node: ChildNode, before: Child, after: Child, owner: Owner): void {
-  if (before === after) { return; }
+  if (before === after) return;
   if (typeof before === "string" || typeof after === "string") { if (before !== after) node.nodeValue = after as string; return; }
   const element = node as Element;
   if (after.own === null) patchChildren(element, before.children, after.children, owner);

@@ -1,7 +1,7 @@
 // The whole page as described elements, from what the engine said. The same in the browser and in Node.
 
 import { cellTree } from "./cell.ts";
-import type { CellContext } from "./cell.ts";
+import type { CellContext, PartTrees } from "./cell.ts";
 import { h } from "./tree.ts";
 import type { Tree } from "./tree.ts";
 import type { Node, PageState } from "./pageState.ts";
@@ -21,6 +21,7 @@ export function pageTrees(): PageTrees {
   let kept = new Map<string, Kept>();
   let shared: Shared | null = null;
   let sharedFor: unknown = null;
+  const parts: PartTrees = new WeakMap();
   return {
     blocks(state, context) {
       // A new outline is a new list: only then can definitions, notes and anchors differ.
@@ -44,7 +45,7 @@ export function pageTrees(): PageTrees {
           if (!cell) continue;
           const name = cell.name ?? "";
           const tables = (cell.show ?? []).map((_, i) => context.asTable(`${cell.id}/${i}`)).join();
-          trees.push(keep(`cell ${cell.id}`, [cell, context.canEdit, context.pending(name), context.fault(name), tables, context.canStop(cell.id)], () => cellTree(cell, `cell ${cell.id}`, context)));
+          trees.push(keep(`cell ${cell.id}`, [cell, context.canEdit, context.pending(name), context.fault(name), tables, context.canStop(cell.id)], () => cellTree(cell, `cell ${cell.id}`, context, parts)));
           continue;
         }
         const node = state.nodes.get(block.key);
