@@ -81,7 +81,7 @@ function extent(levels: Series, name: string): { from: number; to: number; obser
   for (let t = 0; t < values.length; t++) {
     const v = values[t];
     if (Number.isNaN(v)) continue;
-    if (!Number.isFinite(v)) throw new RangeError(`fit: ${name} is ${v} at ${levels.times[t]}; only finite numbers and gaps can be modelled`);
+    if (!Number.isFinite(v)) throw new RangeError(`fit: ${name} is not a finite number at ${levels.times[t]}; only finite numbers and gaps can be modelled`);
     if (from < 0) from = t;
     to = t + 1;
     observed++;
