@@ -28,13 +28,21 @@ export function timeColumns(sheet: Sheet, asked: string | readonly string[] | un
     const day = sheet.columns.findIndex((name) => /^day$/i.test(name));
     return day >= 0 && /^month$/i.test(sheet.columns[part]) ? [year, part, day] : [year, part];
   }
-  const found = sheet.columns.findIndex((_, column) => holdsTimes(sheet, column));
-  return found < 0 ? [] : [found];
+  const found = sheet.columns.findIndex((_, column) => holdsTimes(sheet, column) && !isCount(sheet, column));
+  const counted = found >= 0 ? found : sheet.columns.findIndex((_, column) => holdsTimes(sheet, column)); // dates go before a mere numbering
+  return counted < 0 ? [] : [counted];
 }
 
-/** Numeric columns other than some. */
+/** Numeric columns other than some, a numbering of the rows the last. */
 export function numericColumns(sheet: Sheet, except: readonly number[]): readonly number[] {
-  return sheet.columns.flatMap((_, column) => (!except.includes(column) && isNumeric(sheet, column) ? [column] : []));
+  const all = sheet.columns.flatMap((_, column) => (!except.includes(column) && isNumeric(sheet, column) ? [column] : []));
+  return [...all.filter((column) => !isCount(sheet, column)), ...all.filter((column) => isCount(sheet, column))];
+}
+
+/** Whether a column only numbers the rows: 0 or 1 and on by ones. */
+function isCount(sheet: Sheet, column: number): boolean {
+  const first = Number(cellOf(sheet.rows[0], column));
+  return (first === 0 || first === 1) && sheet.rows.length > 1 && sheet.rows.slice(0, 1000).every((row, i) => cellOf(row, column) === String(first + i));
 }
 
 function holdsTimes(sheet: Sheet, column: number): boolean {

@@ -11,6 +11,7 @@ import { readTimes } from "./readTimes.ts";
 import { readValues } from "./readValues.ts";
 import { sheetOf, usualMissing, type Sheet } from "./sheet.ts";
 import type { DayOrder } from "./times.ts";
+import { acrossTheYear } from "./wide.ts";
 
 export interface LoadCell {
   readonly file: string;
@@ -53,15 +54,16 @@ async function runLoad(options: LoadCell, context: RunContext): Promise<Loaded> 
   if (options.sheet !== undefined) throw new OptionError("sheet", `${file} is read as text, which has no sheets; leave \`sheet\` out, or save that sheet as CSV and name the new file`);
   const bytes = await fileBytes(file, context);
   const missing = typeof options.missing === "string" ? [options.missing] : options.missing;
-  const sheet = inWords("file", () => sheetOf(decode(bytes, file), file, missing));
+  const read = inWords("file", () => sheetOf(decode(bytes, file), file, missing));
+  const sheet = options.time === undefined && options.start === undefined && options.value === undefined ? acrossTheYear(read) ?? read : read;
   sheet.notes.forEach((text) => context.note(text));
   const times = options.start === undefined ? timeColumns(sheet, options.time) : [];
   const grid = gridFor(sheet, times, options);
   grid.notes.forEach((text) => context.note(text));
   const wanted = wantedColumns(sheet, times, options, context);
-  const read = wanted.map(({ name, column }) => oneSeries(sheet, grid, name, column, options.unit, context));
+  const found = wanted.map(({ name, column }) => oneSeries(sheet, grid, name, column, options.unit, context));
   const { value } = options;
-  return value === undefined || typeof value === "string" ? read[0] : Object.fromEntries(wanted.map(({ name }, i) => [name, read[i]]));
+  return value === undefined || typeof value === "string" ? found[0] : Object.fromEntries(wanted.map(({ name }, i) => [name, found[i]]));
 }
 
 async function fileBytes(file: string, context: RunContext): Promise<Uint8Array> {

@@ -12,7 +12,7 @@ const pointGroups = /^[+-]?\d{1,3}(?:\.\d{3})+(?:,\d*)?$/;
 
 /** A number of a cell; null where the text is none. Empty text is null too. */
 export function numberOf(cell: string, decimal: Decimal): number | null {
-  if (decimal === "." && pointNumber.test(cell)) return Number(cell); // nearly every cell of nearly every file
+  if (decimal === "." && pointNumber.test(cell)) return finite(cell); // nearly every cell of nearly every file
   let text = cell.replace(minus, "-");
   if (/[\s\u00a0\u202f'’_]/.test(text)) {
     if (!/^[+-]?\d{1,3}(?:[\s\u00a0\u202f'’_]\d{3})+(?:[.,]\d*)?$/.test(text)) return null;
@@ -23,7 +23,13 @@ export function numberOf(cell: string, decimal: Decimal): number | null {
     if (text.includes(".")) return null;
     text = text.replace(",", ".");
   } else if (commaGroups.test(text)) text = text.replaceAll(",", "");
-  return pointNumber.test(text) ? Number(text) : null;
+  return pointNumber.test(text) ? finite(text) : null;
+}
+
+/** A number too large for a double is none. */
+function finite(text: string): number | null {
+  const value = Number(text);
+  return Number.isFinite(value) ? value : null;
 }
 
 /** Which decimal sign a file uses, from all cells that could be numbers; and a cell that could be read either way where nothing

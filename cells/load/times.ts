@@ -27,6 +27,9 @@ export function timeOf(cell: string, order: DayOrder | null): Period | null {
   if ((m = /^(\d{4})[\s:]?-?[Qq]\s?([1-9])$/.exec(cell))) return parsePeriod(`${m[1]}-Q${m[2]}`);
   if ((m = /^[Qq]\s?([1-9])[-\s/]*(\d{4})$/.exec(cell))) return parsePeriod(`${m[2]}-Q${m[1]}`);
   if ((m = /^(\d{4})[\s:]?-?[Ww]\s?(\d{1,2})$/.exec(cell))) return parsePeriod(`${m[1]}-W${m[2].padStart(2, "0")}`);
+  if (/^\d{1,2}[-/.]\d{1,2}[-/.]\d{2}(?=$|\s)/.test(cell) || /^[A-Za-z]{3,9}[-\s/']+\d{2}$/.test(cell) && monthOfName(/^[A-Za-z]+/.exec(cell)?.[0] ?? "") !== null) {
+    throw new RangeError(`${cell} has a year of two digits; write all four`);
+  }
   return dateOf(cell, order) ?? namedMonth(cell);
 }
 
@@ -84,7 +87,7 @@ export function orderOf(cells: readonly string[]): DayOrder | "both" | "unsure" 
     any = true;
     if (!/^\d+\.\d+\./.test(cell)) dotted = false;
     if (Number(parts[0]) > 12) dayFirst = true;
-    if (Number(parts[1]) > 12) monthFirst = true;
+    else if (Number(parts[1]) > 12) monthFirst = true;
   }
   if (!any) return null;
   if (dayFirst && monthFirst) return "both";

@@ -42,7 +42,7 @@ describe("numberOf", () => {
   });
   it.each<[string, "." | ",", number | null]>([
     ["1,234.5", ".", 1234.5], ["1.234,5", ",", 1234.5], ["1 234", ".", 1234], ["1'234'567.5", ".", 1234567.5], ["−3", ".", -3], ["+3", ".", 3], [".5", ".", 0.5], ["5.", ".", 5], ["1e3", ".", 1000],
-    ["1,23", ".", null], ["1.5", ",", null], ["12 34", ".", null], ["", ".", null], ["-", ".", null], ["5%", ".", null], ["0x10", ".", null], ["Infinity", ".", null], ["1,2345", ".", null], ["1,234,56", ".", null],
+    ["1,23", ".", null], ["1.5", ",", null], ["12 34", ".", null], ["", ".", null], ["-", ".", null], ["5%", ".", null], ["0x10", ".", null], ["Infinity", ".", null], ["1e999", ".", null], ["1,2345", ".", null], ["1,234,56", ".", null],
   ])("%j with decimal %j is %j", (cell, decimal, value) => { expect(numberOf(cell, decimal)).toBe(value); });
   it("the decimal sign is decided by the cells that can only be read one way", () => {
     expect(decimalOf(["1,234", "2,5"], ";")).toEqual({ decimal: ",", unsure: null });
@@ -59,7 +59,7 @@ describe("timeOf", () => {
     ["2019-3", "2019-03"], ["03/2019", "2019-03"], ["2019 Q1", "2019-Q1"], ["2019q1", "2019-Q1"], ["Q1/2019", "2019-Q1"], ["2019:3", "2019-03"], ["2019W7", "2019-W07"], ["Sept. 2019", "2019-09"], ["2019-Mar", "2019-03"], ["March 5th, 2019", "2019-03-05"],
     ["2019/3/5", "2019-03-05"], ["2019-03-05 9:30", "2019-03-05T09:30"], ["2019-03-05 9:30 PM", "2019-03-05T21:30"], ["2019-03-05 12:00 am", "2019-03-05T00:00"], ["2019-03-05T09:30:00.000Z", "2019-03-05T09:30:00Z"],
   ])("%j is %s", (cell, text) => { const p = timeOf(cell, null); expect(p === null ? null : formatPeriod(p)).toBe(text); });
-  it.each(["2710.34", "12.3456", "abc", "may", "12345", "123456789", "3/5/19", "05/03/2019", "2019-03-05 noon"])("%j is none, without an order", (cell) => { expect(timeOf(cell, null)).toBeNull(); });
+  it.each(["2710.34", "12.3456", "abc", "may", "12345", "123456789", "05/03/2019", "2019-03-05 noon"])("%j is none, without an order", (cell) => { expect(timeOf(cell, null)).toBeNull(); });
   it("day and month follow the order", () => {
     expect(formatPeriod(timeOf("05/03/2019", "day-month")!)).toBe("2019-03-05");
     expect(formatPeriod(timeOf("05/03/2019 14:00", "month-day")!)).toBe("2019-05-03T14:00");

@@ -1,6 +1,8 @@
 import { readdirSync, readFileSync } from "node:fs";
 import { join } from "node:path";
+import * as fc from "fast-check";
 import { describe, expect, it } from "vitest";
+import { OptionError } from "../../../cells/kind.ts";
 import { load } from "../../../cells/load/load.ts";
 import { isSeries, type Series } from "../../../stdlib/index.ts";
 import { contextOf, runCell } from "../context.ts";
@@ -120,6 +122,17 @@ describe("load reads files as people write them", () => {
     expect(s.notes[0]).toContain("line 3 (2019-01) comes after a later time");
     expect(s.notes[1]).toContain("1 row of data.csv repeats a time");
   });
+  it("dates go before a numbering of the rows, as times and as values", async () => {
+    const s = await one("id,date,vehicles\n1,2019-01,10\n2,2019-02,20\n3,2019-03,15\n");
+    expect([s.start, ...s.values]).toEqual(["2019-01", 10, 20, 15]);
+  });
+  it("one row a year with a column a month is read across, to the last value there is", async () => {
+    const names = "Jan,Feb,Mar,Apr,May,Jun,Jul,Aug,Sep,Oct,Nov,Dec";
+    const s = await one(`Year,${names}\n2019,,2,3,4,5,6,7,8,9,10,11,12\n2020,13,14,,16,,,,,,,,\n`);
+    expect([s.start, s.every, s.n, s.values[0], s.values[14]]).toEqual(["2019-02", "P1M", 15, 2, 16]);
+    expect(s.notes[0]).toContain("read across its columns of months");
+    expect((await one("year,Q1,Q2,Q3,Q4\n2019,1,2,3,4\n2020,5,6,7,8\n")).times.at(-1)).toBe("2020-Q4");
+  });
   it("working days: absent weekends are told, with what to do", async () => {
     const rows = Array.from({ length: 20 }, (_, i) => { const d = new Date(Date.UTC(2019, 2, 4 + Math.floor(i / 5) * 7 + (i % 5))); return `${d.toISOString().slice(0, 10)},${i}`; });
     const s = await one(`day,v\n${rows.join("\n")}\n`);
@@ -156,6 +169,8 @@ describe("load says in words what is wrong, and where", () => {
     ["times of several forms", "month,v\n2019-01,1\n2019-02,2\n2019-Q3,3\n", {}, "line 4: 2019-Q3 is a quarter, where the rows before give a month"],
     ["dates that may be either", "d,v\n01/02/2019,1\n02/02/2019,2\n", {}, 'say order: "day-month" or order: "month-day"'],
     ["dates in both orders", "d,v\n13/02/2019,1\n02/13/2019,2\n", {}, "mixes orders of day and month"],
+    ["a year of two digits", "d,v\n3/5/19,1\n4/5/19,2\n", {}, "data.csv, line 2: 3/5/19 has a year of two digits; write all four"],
+    ["a month with a year of two digits", "m,v\nJan-19,1\nFeb-19,2\n", {}, "Jan-19 has a year of two digits"],
     ["uneven times", "d,v\n2019-01-01,1\n2019-01-06,2\n2019-01-08,3\n2019-01-31,4\n", {}, "are not evenly spaced"],
     ["a slip in a year", "m,v\n2019-01,1\n2019-02,2\n2091-03,3\n", {}, "after 2019-02 (line 3) comes 2091-03 (line 4)"],
     ["a column that is not there", "month,vehicles\n2019-01,1\n", { value: "Vehicles" }, 'has no column "Vehicles": did you mean "vehicles"?'],
@@ -175,6 +190,24 @@ describe("load says in words what is wrong, and where", () => {
     ["a number for a file", "", { file: 3 }, "`file` is the number 3"],
   ])("%s", async (_, text, options, message) => {
     expect(await said(text, options)).toContain(message);
+  });
+});
+
+describe("load on any text at all", () => {
+  it("gives series or a refusal in words, never another fault (seed 31)", async () => {
+    const piece = fc.constantFrom("2019-01", "2019-02", "2019-Q1", "2019", "1", "2", "-3.5", "1,5", "1.234,5", "NA", "", "x", "Jan", "Feb", "year", "month", "5/3/2019", "31/31/2019", '"', "a\"b", ";", "\t", "#", "−", "1e999", "0000", "-6000");
+    const line = fc.array(piece, { minLength: 1, maxLength: 4 });
+    await fc.assert(fc.asyncProperty(fc.array(line, { maxLength: 8 }), fc.constantFrom(",", ";", "\t"), async (lines, separator) => {
+      const text = lines.map((cells) => cells.join(separator)).join("\n");
+      try {
+        const s = await one(text);
+        expect(s.times.length).toBe(s.values.length);
+        expect(s.n).toBeGreaterThan(0);
+      } catch (error) {
+        expect(error).toBeInstanceOf(OptionError);
+        expect((error as Error).message.length).toBeGreaterThan(20);
+      }
+    }), { seed: 31, numRuns: 600 });
   });
 });
 
