@@ -1,4 +1,4 @@
-// Estimates with their intervals on one scale, against zero: one row an estimate, its figures beside it.
+// Estimates with their intervals on one scale, against zero: one row an estimate, its figures above it.
 
 import type { ChartPart } from "./part.ts";
 import { figure } from "./words.ts";
@@ -19,25 +19,26 @@ export function intervalChart(title: string, alt: string, axis: string, rows: re
   return {
     part: "chart", title, alt, height: 56 + 36 * roomFor(rows.length),
     spec: {
-      encoding: { y: { field: "label", type: "nominal", sort: null, axis: { title: null, ticks: false, domain: false, labelLimit: 160 } } },
+      encoding: { y: { field: "label", type: "nominal", sort: null, axis: null } },
       layer: [
         { data: { name: "rows" }, mark: { type: "rule", style: "guide" }, encoding: { x: { datum: 0, type: "quantitative" }, y: null } },
         {
-          data: { name: "intervals" }, mark: { type: "rule", style: "mark", strokeWidth: 2 },
-          encoding: { x: { field: "low", type: "quantitative", title: axis, scale: { zero: true, nice: false, padding: 64 } }, x2: { field: "high" } },
+          data: { name: "intervals" }, mark: { type: "rule", style: "mark", strokeWidth: 2, yOffset: 7 },
+          encoding: { x: { field: "low", type: "quantitative", title: axis, scale: { zero: true, nice: true } }, x2: { field: "high" } },
         },
         {
-          data: { name: "rows" }, mark: { type: "point", style: "mark", filled: true, size: 70, opacity: 1 },
+          data: { name: "rows" }, mark: { type: "point", style: "mark", filled: true, size: 70, opacity: 1, yOffset: 7 },
           encoding: { x: { field: "value", type: "quantitative" } },
         },
+        // What a row is and its figures stand on a line of their own, so that the scale has the whole width on a phone too.
         {
-          data: { name: "rows" }, mark: { type: "text", style: "label", dy: -11, baseline: "middle" },
-          encoding: { x: { field: "value", type: "quantitative" }, text: { field: "figures", type: "nominal" } },
+          data: { name: "rows" }, mark: { type: "text", style: "label", align: "left", baseline: "middle", dy: -9 },
+          encoding: { x: { value: 0 }, text: { field: "figures", type: "nominal" } },
         },
       ],
     },
     data: {
-      rows: { label: rows.map(row => row.label), value: rows.map(row => row.value), figures: rows.map(figuresOf) },
+      rows: { label: rows.map(row => row.label), value: rows.map(row => row.value), figures: rows.map(row => `${row.label}: ${figuresOf(row)}`) },
       intervals: { label: withInterval.map(row => row.label), low: withInterval.map(row => row.low), high: withInterval.map(row => row.high) },
     },
   };

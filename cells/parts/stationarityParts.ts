@@ -6,7 +6,7 @@ import { panelChart } from "./panelChart.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { ratioChart, type RatioRow } from "./ratioChart.ts";
 import { spreadChart } from "./spreadChart.ts";
-import { percent, pText } from "./words.ts";
+import { figure, percent, pText } from "./words.ts";
 
 type Shown = Stationarity & { readonly of: string; readonly axis: string; readonly series: Series; readonly lambda: { readonly guerrero: LambdaProfile; readonly likelihood: LambdaProfile } | null; readonly rangeMean: RangeMean | null };
 
@@ -41,7 +41,7 @@ function spreadParts(result: Shown): readonly Part[] {
 
 function testsOf(result: Shown): readonly NamedTest[] {
   const named: readonly (readonly [string, Test | null | undefined])[] = [
-    ["augmented Dickey-Fuller", result.adf], ["Phillips-Perron", result.phillipsPerron], ["DF-GLS", result.dfGls], ["KPSS", result.kpss], ["Canova-Hansen (season)", result.seasonal],
+    ["Dickey-Fuller (ADF)", result.adf], ["Phillips-Perron", result.phillipsPerron], ["DF-GLS", result.dfGls], ["KPSS", result.kpss], ["Canova-Hansen", result.seasonal],
   ];
   return named.flatMap(([name, test]) => test === null || test === undefined ? [] : [{ name, test }]);
 }
@@ -49,19 +49,24 @@ function testsOf(result: Shown): readonly NamedTest[] {
 function ratioPart(tests: readonly NamedTest[]): Part {
   const rows: RatioRow[] = tests.flatMap(({ name, test }) => test.status === "unavailable" || test.critical === undefined ? [] : [{ label: name, statistic: test.statistic, critical: test.critical }]);
   const beyond = rows.filter(row => row.statistic / row.critical["5%"] > 1).map(row => row.label);
-  return ratioChart("Each statistic against its own critical values", `Right of 1 a test rejects its null hypothesis at 5%: ${beyond.length === 0 ? "none does" : `${beyond.join(", ")} ${beyond.length === 1 ? "does" : "do"}`}.`, rows);
+  return ratioChart("Each statistic against its critical values at 10%, 5% and 1%", `Right of 1 a test rejects its null hypothesis at 5%: ${beyond.length === 0 ? "none does" : `${beyond.join(", ")} ${beyond.length === 1 ? "does" : "do"}`}.`, rows);
 }
 
 function testTable(tests: readonly NamedTest[], level: number): TablePart {
   return {
     part: "table", title: "Test by test",
-    columns: [{ title: "test" }, { title: "null hypothesis" }, { title: "statistic", align: "right", format: ".3f" }, { title: "p", align: "right" }, { title: "lags, and how chosen" }, { title: `reading at ${percent(1 - level)}` }],
+    columns: [{ title: "test" }, { title: "null hypothesis" }, { title: "statistic", align: "right", format: ".3f" }, { title: "p", align: "right" }, { title: "critical at 10%, 5%, 1%" }, { title: "lags, and how chosen" }, { title: `reading at ${percent(1 - level)}` }],
     rows: tests.map(({ name, test }) => [
       name, test.nullHypothesis, test.statistic, test.status === "unavailable" ? "–" : pText(test.p, test.bound).replace(/^p (= )?/, ""),
-      test.lags === undefined ? "" : `${test.lags}${test.lagRule ? ` (${test.lagRule})` : ""}`, reading(test, level),
+      criticalText(test), test.lags === undefined ? "" : `${test.lags}${test.lagRule ? ` (${test.lagRule})` : ""}`, reading(test, level),
     ]),
     note: "The first three take a unit root as given until the data speak against it; KPSS takes stationarity as given. A null hypothesis that is not rejected is not thereby shown to be true.",
   };
+}
+
+function criticalText(test: Test): string {
+  const values = ["10%", "5%", "1%"].map(level => test.critical?.[level]);
+  return values.every(value => value === undefined) ? "–" : values.map(value => value === undefined ? "–" : figure(value, 3)).join(", ");
 }
 
 function reading(test: Test, level: number): string {

@@ -32,10 +32,11 @@ describe("stationarity", () => {
   test("names each null hypothesis, the lags and how they were chosen", async () => {
     const parts = stationarity.show(await run({ series: numbered(column("nile")) }), show);
     const table = parts.find((p): p is TablePart => p.part === "table")!;
-    expect(table.rows.map(row => row[0])).toEqual(["augmented Dickey-Fuller", "Phillips-Perron", "DF-GLS", "KPSS"]);
+    expect(table.rows.map(row => row[0])).toEqual(["Dickey-Fuller (ADF)", "Phillips-Perron", "DF-GLS", "KPSS"]);
     expect(table.rows[0][1]).toBe("a unit root: shocks never die out");
     expect(table.rows[3][1]).toBe("stationary around a constant");
-    expect(table.rows[0][4]).toMatch(/^\d+ \(least AIC among 0 to \d+, on one sample\)$/);
+    expect(table.rows[0][4]).toMatch(/^−2\.58, −2\.89, −3\.50$/);
+    expect(table.rows[0][5]).toMatch(/^\d+ \(least AIC among 0 to \d+, on one sample\)$/);
     expect(parts[0].part).toBe("text");
   });
   test("prints a bound where the table of KPSS ends", async () => {
@@ -50,7 +51,7 @@ describe("stationarity", () => {
     const result = await run({ series });
     const parts = stationarity.show(result, show);
     const charts = parts.filter((p): p is ChartPart => p.part === "chart");
-    expect(charts.map(p => p.title)).toEqual(["Each statistic against its own critical values", "Differences side by side"]);
+    expect(charts.map(p => p.title)).toEqual(["Each statistic against its critical values at 10%, 5% and 1%", "Differences side by side"]);
     expect(charts[0].alt).toMatch(/^Right of 1 a test rejects its null hypothesis at 5%: /);
     const svgs = await drawnCharts(parts);
     expect(svgs[1]).toContain("differenced at lags 1 and 12");
