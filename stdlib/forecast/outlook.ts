@@ -187,11 +187,19 @@ export function levelOf(quantile: (p: number) => number, value: number): number 
 
 /** Normal paths in pairs that mirror each other about the mean: means of linear things come out exact. */
 function drawNormal(mean: Float64Array, factor: Float64Array, count: number, seed: number): Float64Array[] {
-  const size = mean.length, e = new Float64Array(size);
-  return drawPairs((normal) => {
+  const size = mean.length, normal = normals(seeded(seed)), e = new Float64Array(size), paths: Float64Array[] = [];
+  while (paths.length < count) {
     for (let i = 0; i < size; i++) e[i] = normal();
-    return mean.map((m, i) => { let sum = m; for (let k = 0; k <= i; k++) sum += factor[i * size + k] * e[k]; return sum; });
-  }, count, seed);
+    const above = new Float64Array(size), below = new Float64Array(size);
+    for (let i = 0; i < size; i++) {
+      let off = 0;
+      for (let k = 0; k <= i; k++) off += factor[i * size + k] * e[k];
+      above[i] = mean[i] + off; below[i] = mean[i] - off;
+    }
+    paths.push(above);
+    if (paths.length < count) paths.push(below);
+  }
+  return paths;
 }
 
 function drawPairs(draw: (normal: () => number) => Float64Array, count: number, seed: number): Float64Array[] {

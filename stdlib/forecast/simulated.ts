@@ -49,13 +49,18 @@ function fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string,
   const undo = undoOf(fit.series, keptSteps(fit), horizon), boots = bootstrapFits(fit, parameterSets, seed);
   const sets = boots.fits.map((boot) => {
     const here = refit(boot, fit.series, "held") as Fit;
-    return { mean: fitPredictive(here, horizon, undo.times, regressors).mean, psi: psiOfLevels(boot, horizon), scale: Math.sqrt(boot.sigma2 / fit.sigma2) };
+    return { mean: fitPredictive(here, horizon, undo.times, regressors).mean, psi: psiOfLevels(boot, horizon) };
   });
-  if (sets.length === 0) sets.push({ mean: fitPredictive(fit, horizon, undo.times, regressors).mean, psi: psiOfLevels(fit, horizon), scale: 1 });
+  if (sets.length === 0) sets.push({ mean: fitPredictive(fit, horizon, undo.times, regressors).mean, psi: psiOfLevels(fit, horizon) });
   const shocks = shocksOf(fit);
   const maker: PathMaker = (random) => {
-    const { mean, psi } = sets[Math.floor(random() * sets.length)], e = Float64Array.from({ length: horizon }, () => shocks[Math.floor(random() * shocks.length)]);
-    return undoPath(undo.steps, mean.map((m, h) => { let sum = m; for (let k = 0; k <= h; k++) sum += psi[k] * e[h - k]; return sum; }));
+    const { mean, psi } = sets[Math.floor(random() * sets.length)], e = new Float64Array(horizon), path = new Float64Array(horizon);
+    for (let h = 0; h < horizon; h++) {
+      e[h] = shocks[Math.floor(random() * shocks.length)];
+      path[h] = mean[h];
+      for (let k = 0; k <= h; k++) path[h] += psi[k] * e[h - k];
+    }
+    return undoPath(undo.steps, path);
   };
   const lost = boots.failed > 0 ? ` (${boots.failed} of ${parameterSets} sets could not be estimated and were left out)` : "";
   return { maker, assumption: `Bands: from ${pathCount} simulated paths with ${sets.length} sets of parameters, estimated again on series simulated from the model${lost}, and shocks drawn from its residuals${fit.phi.length + fit.seasonalPhi.length > 0 ? "; autoregressive coefficients are corrected for coming out too small in short samples" : ""}. They take in that the parameters are estimates and that shocks need not be normal; the orders count as known.` };

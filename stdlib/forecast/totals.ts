@@ -65,7 +65,11 @@ function totalOf({ from, to, low, high }: Span, base: Series, outlook: Outlook, 
   const past = sumOf(base, low, Math.min(high, origin), label);
   const begin = Math.max(0, low - origin - 1), end = high - origin, observed = Math.max(0, Math.min(high, origin) - low + 1);
   if (end <= 0) return { from, to, mean: past, median: past, se: 0, bands: levels.map((level) => ({ level, low: past, high: past })), observed };
-  const sums = (): Float64Array => Float64Array.from(paths(), (path) => { let sum = past; for (let h = begin; h < end; h++) sum += path[h]; return sum; }).sort();
+  const sums = (): Float64Array => {
+    const drawn = paths(), out = new Float64Array(drawn.length);
+    for (let i = 0; i < out.length; i++) { out[i] = past; for (let h = begin; h < end; h++) out[i] += drawn[i][h]; }
+    return out.sort();
+  };
   let mean = past;
   for (let h = begin; h < end; h++) mean += outlook.mean[h];
   const c = outlook.covariance();

@@ -100,7 +100,11 @@ export function undoPath(steps: readonly UndoStep[], path: Float64Array): Float6
   let x = path;
   for (const step of steps) {
     if (step.undo === "difference") x = summed(x, step.lag, step.tail);
-    else { const before = x; x = Float64Array.from(before, (v, h) => undoAt(step, h, v)); }
+    else {
+      const after = new Float64Array(x.length);
+      for (let h = 0; h < after.length; h++) after[h] = undoAt(step, h, x[h]);
+      x = after;
+    }
   }
   return x;
 }

@@ -32,10 +32,11 @@ const longestFreeSeason = 60;
 export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: boolean, hold: SmoothingHold = {}, near?: SmoothingHold): EstimatedSmoothing {
   const m = form.season === "none" ? 0 : form.length, observed = y.reduce((count, v) => count + (Number.isNaN(v) ? 0 : 1), 0);
   checkData(y, form, m, observed, hold);
-  // Scale-free: the search sees numbers near 1.
-  const unit = y.reduce((sum, v) => sum + (Number.isNaN(v) ? 0 : Math.abs(v)), 0) / observed || 1;
-  const scaled = y.map((v) => v / unit), space = new Space(form, m, damped, hold, unit);
   const additive = form.error === "additive" && form.trend !== "multiplicative" && form.season !== "multiplicative";
+  // Scale-free, and about 0 where only sums enter: the search sees numbers near 1 whatever the unit and level.
+  const total = (f: (v: number) => number): number => y.reduce((sum, v) => sum + (Number.isNaN(v) ? 0 : f(v)), 0);
+  const shift = additive && hold.level0 === undefined ? total((v) => v) / observed : 0, unit = total((v) => Math.abs(v - shift)) / observed || 1;
+  const scaled = y.map((v) => (v - shift) / unit), space = new Space(form, m, damped, hold, unit);
   const opening = openingStates(scaled, form);
   const concentrated = additive && !space.statesHeld && m <= longestFreeSeason;
   const statesOf = (weights: Weights, x: Float64Array): States0 => concentrated ? bestStates(scaled, form, weights) : space.states(x, opening);
@@ -58,7 +59,7 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
   }
   if (best === null) throw new RangeError("smoothing: no weights were found with which every one-step forecast stays positive; try an additive season, or a log before it");
   const weights = space.weights(best.at), states = statesOf(weights, best.at);
-  const start: SmoothingState = { ...weights, level: states.level * unit, trend: form.trend === "multiplicative" ? states.trend : states.trend * unit,
+  const start: SmoothingState = { ...weights, level: states.level * unit + shift, trend: form.trend === "multiplicative" ? states.trend : states.trend * unit,
     seasonal: form.season === "multiplicative" ? states.seasonal : states.seasonal.map((s) => s * unit) };
   const freeStates = space.statesHeld ? 0 : 1 + (form.trend === "none" ? 0 : 1) + Math.max(0, m - 1);
   return { form, start, filtered: innovationsFilter(y, form, start), k: space.freeWeights + freeStates + 1, converged: best.converged };

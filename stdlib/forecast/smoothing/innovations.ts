@@ -82,7 +82,8 @@ export function minusTwiceLogLikelihood(y: Float64Array, form: SmoothingForm, st
     if (byTrend && !(trend > 0 && level > 0)) return Infinity;
     if (m > 0) { seasonal[at] = s + gamma * (bySeason ? absolute / q : absolute); if (++at === m) at = 0; }
   }
-  const value = count * (Math.log((2 * Math.PI * sum) / count) + 1) + 2 * (logs + Math.log(product));
+  // A perfect fit (a constant series) has no largest likelihood: it is taken as one with errors too small to matter.
+  const value = count * (Math.log((2 * Math.PI * Math.max(sum, 1e-280)) / count) + 1) + 2 * (logs + Math.log(product));
   return Number.isFinite(value) ? value : Infinity;
 }
 

@@ -83,6 +83,11 @@ describe("rules by edge", () => {
   it("a constant series has bands of no width", () => {
     expect(forecast(rule.drift(numbered([5, 5, 5, 5])), { horizon: 3, levels: [0.9] }).bands[0].low).toEqual(Float64Array.of(5, 5, 5));
   });
+  it("smoothing takes a constant, and whole numbers of 1e15 on a line", () => {
+    expect(forecast(rule.smoothing(numbered(new Float64Array(30).fill(7)), { trend: "additive" }), { horizon: 2 }).mean).toEqual(Float64Array.of(7, 7));
+    const line = forecast(rule.smoothing(numbered(Float64Array.from({ length: 40 }, (_, t) => 1e15 + t)), { trend: "additive" }), { horizon: 2 });
+    expect(line.mean[1] - 1e15).toBeCloseTo(41, 0);
+  });
   it("a combination lies half-way between two members, limits and all", () => {
     const s = monthly("airline"), logged = applySteps(s, [{ step: "log" }]);
     const a = rule.drift(logged), b = rule.seasonalNaive(s), c = rule.combine([a, b]);
