@@ -1,6 +1,6 @@
 // The kind that reads a series, or several, from a file inside the notebook's folder.
 
-import { everyInWords, formatEvery, makeSeries, parseEvery, parsePeriod, type Series } from "../../stdlib/index.ts";
+import { formatEvery, makeSeries, parseEvery, parsePeriod, type Series } from "../../stdlib/index.ts";
 import { OptionError, type Kind, type RunContext } from "../kind.ts";
 import { seriesParts } from "../parts/seriesParts.ts";
 import { count, listOf, someOf } from "../parts/words.ts";
@@ -158,5 +158,5 @@ function weekends(series: Series, there: Uint8Array): string {
   const byWeekday = new Float64Array(7);
   there.forEach((v, t) => { byWeekday[t % 7] += v; });
   const silent = byWeekday.filter((v) => v === 0).length;
-  return silent === 0 || series.n < 21 ? "" : `; ${count(silent, "day")} of every week ${silent === 1 ? "has" : "have"} no row: start: "1" numbers the rows instead, if ${everyInWords("P1D")}s without one are no days of business`;
+  return silent === 0 || series.n < 21 ? "" : `. No row falls on ${count(silent, "day")} of the week: if those are no days of business, start: "1" numbers the rows instead`;
 }
