@@ -2,7 +2,7 @@
 
 import { milliseconds, type Evaluation } from "../../stdlib/index.ts";
 import { originsChart } from "./originsChart.ts";
-import type { Part, TablePart, TextPart } from "./part.ts";
+import type { Columns, Part, TablePart, TextPart } from "./part.ts";
 import { scoreChart } from "./scoreChart.ts";
 import { count, figure, listOf, percent, pText } from "./words.ts";
 
@@ -84,7 +84,21 @@ function horizonChart(result: Evaluation): Part {
   if (!result.models.some(model => model.label === result.naive.label) && naive.length > 0) {
     lines.push({ label: result.naive.label, horizons: naive.map(row => row.horizon as number), values: naive.map(row => row[rankedBy]) });
   }
-  return scoreChart(`${names[rankedBy]} by how far ahead`, horizonAlt(result, lines), measureTitle(result), lines, rankedBy === "mase" || rankedBy === "rmsse" ? 1 : null);
+  const chart = scoreChart(`${names[rankedBy]} by how far ahead`, horizonAlt(result, lines), measureTitle(result), lines, rankedBy === "mase" || rankedBy === "rmsse" ? 1 : null);
+  return { ...chart, full: { scores: allScores(result.scores) } };
+}
+
+/** Every score of every model and horizon, for whoever takes the data out. */
+function allScores(scores: Evaluation["scores"]): Columns {
+  const measures = ["n", "bias", "mae", "rmse", "mape", "smape", "mase", "rmsse", "pinball", "crps"] as const;
+  const levels = scores[0]?.coverage.map(row => row.level) ?? [];
+  return {
+    model: scores.map(score => score.label), horizon: scores.map(score => String(score.horizon)),
+    ...Object.fromEntries(measures.map(name => [name, scores.map(score => score[name])])),
+    ...Object.fromEntries(levels.flatMap((level, i) => [
+      [`interval score ${percent(level)}`, scores.map(score => score.intervalScore[i].score)], [`coverage ${percent(level)}`, scores.map(score => score.coverage[i].share)],
+    ])),
+  };
 }
 
 function horizonAlt(result: Evaluation, lines: readonly { readonly label: string; readonly values: readonly number[] }[]): string {
@@ -108,13 +122,27 @@ function pathsChart(result: Evaluation, every: string | null): Part {
   const actual = Array.from(times.entries()).map(([time, value]) => ({ at: ms(time), value })).sort((a, b) => a.at - b.at);
   const errors = own.map(one => ({ origin: one.origin, size: meanMiss(one) })).filter(one => Number.isFinite(one.size)).sort((a, b) => b.size - a.size);
   const worst = errors.length > 0 ? ` The largest misses were from ${errors[0].origin}, ${figure(errors[0].size)}${result.unit ? ` ${result.unit}` : ""} on average.` : "";
-  return originsChart({
+  const chart = originsChart({
     title: `Forecasts of ${result.best.label} from each origin, and what happened`,
     alt: `From ${result.origins[0]} to ${result.origins[result.origins.length - 1]}, ${count(own.length, "path")} of forecasts beside the observed values.${worst}`,
     axis: result.unit ? `${result.name} (${result.unit})` : result.name, dated: every !== null,
     actual: { time: actual.map(one => one.at), value: actual.map(one => one.value) },
     paths: own.map(one => ({ origin: one.origin, time: one.times.map(ms), value: one.median })),
   });
+  return { ...chart, full: { forecasts: allForecasts(result.forecasts) } };
+}
+
+/** Every forecast of every model beside what happened. */
+function allForecasts(forecasts: Evaluation["forecasts"]): Columns {
+  const rows = forecasts.flatMap(one => one.times.map((time, i) => ({ one, time, i })));
+  const levels = forecasts[0]?.bands.map(band => band.level) ?? [];
+  return {
+    model: rows.map(row => row.one.label), origin: rows.map(row => row.one.origin), time: rows.map(row => row.time),
+    actual: Float64Array.from(rows, row => row.one.actual[row.i]), mean: Float64Array.from(rows, row => row.one.mean[row.i]), median: Float64Array.from(rows, row => row.one.median[row.i]),
+    ...Object.fromEntries(levels.flatMap((level, k) => [
+      [`low ${percent(level)}`, Float64Array.from(rows, row => row.one.bands[k].low[row.i])], [`high ${percent(level)}`, Float64Array.from(rows, row => row.one.bands[k].high[row.i])],
+    ])),
+  };
 }
 
 function meanMiss(one: Evaluation["forecasts"][number]): number {

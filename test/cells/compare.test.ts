@@ -101,6 +101,11 @@ describe("compare of models", () => {
     const svgs = await drawnCharts(parts);
     expect(svgs).toHaveLength(2);
     expect(svgs[0]).toContain("periods ahead");
+    const [byHorizon, paths] = parts.filter((p): p is ChartPart => p.part === "chart");
+    expect(byHorizon.full?.scores.crps).toHaveLength(result.scores.length);
+    // Bit for bit what is in memory: both models, 12 origins, 6 periods each, and the naive rule that was added.
+    expect(paths.full?.forecasts.median).toHaveLength((result.how === "origins" ? result.forecasts.length : 0) * 6);
+    expect(Array.from(byHorizon.full?.scores.mase as readonly number[])).toEqual(result.scores.map(score => (score as { mase: number }).mase));
     expect(tables(parts).map(t => t.title)).toEqual(["Errors over 12 origins, 1 to 6 periods ahead", "How often the bands held what happened", "Model against model, over all horizons"]);
   });
   test("ranks fits by a criterion where asked", async () => {
