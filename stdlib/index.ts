@@ -68,9 +68,11 @@ export { diagnostics, type Diagnostics, type DiagnosticsOptions } from "./diagno
 export { bias, mae, mape, mase, mpe, naiveScale, rmse, rmsse, smape } from "./evaluation/accuracy.ts";
 export { crps, intervalScore, pinball } from "./evaluation/scores.ts";
 export { dieboldMariano, type DieboldMariano, type Loss } from "./evaluation/dieboldMariano.ts";
-export { gridOfOrders, rankFits, type Grid, type GridFailure, type GridOptions, type GridRow, type Tried } from "./evaluation/gridOfOrders.ts";
-export { rollingOrigins, type Against, type CompareOptions, type Evaluation, type OriginForecast, type RankBy, type RankedModel } from "./evaluation/rollingOrigins.ts";
-export { type Hooks, type Labelled, type RollingOptions } from "./evaluation/rolling.ts";
+export { gridOfOrders, rankFits, type GridOptions, type Tried } from "./evaluation/gridOfOrders.ts";
+export { stepwiseOrders, type PathStep, type Stepwise, type StepwiseOptions } from "./evaluation/stepwiseOrders.ts";
+export { type Criterion, type Grid, type GridFailure, type GridRow } from "./evaluation/rankedGrid.ts";
+export { rollingOrigins, summarise, type Against, type CompareOptions, type Evaluation, type OriginForecast, type RankBy, type RankedModel } from "./evaluation/rollingOrigins.ts";
+export { rollingFrame, rollModel, type Hooks, type Labelled, type Rolled, type RollingFrame, type RollingOptions } from "./evaluation/rolling.ts";
 export { type Coverage, type Score } from "./evaluation/scoreTable.ts";
 export { binomialRange } from "./evaluation/binomialRange.ts";
 export { modelConfidenceSet, type ConfidenceSet } from "./evaluation/modelConfidenceSet.ts";

@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import { gridOfOrders, rankFits } from "../../../stdlib/evaluation/gridOfOrders.ts";
+import { stepwiseOrders } from "../../../stdlib/evaluation/stepwiseOrders.ts";
 import { makeSeries } from "../../../stdlib/series/series.ts";
 import { applySteps } from "../../../stdlib/series/steps.ts";
 import { referenceSeries } from "../forecast/reference.ts";
@@ -42,5 +43,27 @@ describe("rankFits", () => {
     expect(() => rankFits({ a, b })).toThrow(/likelihoods are of different data/);
     expect(() => rankFits({ a, c: fit({ series: lake, ar: 1, window: { from: "5" } }) })).toThrow(/same observations only/);
     expect(rankFits({ a, d: fit({ series: lake, ar: 2 }) }).models.length).toBe(2);
+  });
+});
+
+describe("stepwiseOrders", () => {
+  it("finds the airline model among 324 orders in a few dozen fits, and keeps its path", async () => {
+    const { times, values } = referenceSeries("airline");
+    const series = applySteps(makeSeries({ name: "passengers", every: "P1M", start: times[0], values }), [{ step: "log" }, { step: "difference", lag: 1 }, { step: "difference", lag: 12 }]);
+    const found = await stepwiseOrders({ series, season: {} });
+    // The usual choice for this series: (0,1,1)(0,1,1)12, Box & Jenkins (1976), chapter 9.
+    expect(found.best).toMatchObject({ ar: 0, ma: 1, seasonalAr: 0, seasonalMa: 1 });
+    expect(found.tried).toBeLessThan(40);
+    expect(found.path.length).toBe(found.tried);
+    expect(found.path.filter((s) => s.moved).at(-1)!.value).toBe(found.best!.aicc);
+    expect(found.notes.at(-1)).toContain("of 324 orders");
+  });
+  it("stays within its bounds, without a season too, and keeps what is done when stopped", async () => {
+    const found = await stepwiseOrders({ series: lake, ar: 1, ma: 1 });
+    expect(found.models.every((m) => Number(m.ar) <= 1 && Number(m.ma) <= 1)).toBe(true);
+    expect(found.best).toMatchObject({ ar: 1, ma: 1 });
+    let done = 0;
+    const part = await stepwiseOrders({ series: lake }, { progress: (n) => { done = n; }, stopped: () => done >= 2 });
+    expect(part).toMatchObject({ complete: false, tried: 2 });
   });
 });
