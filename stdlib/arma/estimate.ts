@@ -4,7 +4,7 @@ import { divideInto, lagDot } from "./kernels.ts";
 import { gradientInto, makeWork, valueAt, type Data, type Work } from "./likelihood.ts";
 import { inverseRoots, reflected } from "./roots.ts";
 import { isStable } from "./region.ts";
-import type { Product, Shape } from "./shape.ts";
+import type { Factor, Product, Shape } from "./shape.ts";
 import { otherStarts } from "./otherStarts.ts";
 import { hannanRissanen } from "./start.ts";
 import { quasiNewton, type Minimum, type Problem } from "../optimize/quasiNewton.ts";
@@ -44,16 +44,8 @@ export interface Evaluate {
   gradientInto(x: Float64Array, gradient: Float64Array): void;
 }
 
-/** Where the four factors' coefficients begin in x. */
-export interface Factor { readonly lags: Int32Array; readonly from: number; readonly sign: 1 | -1 }
-
-export function factors(shape: Shape): Factor[] {
-  const out: Factor[] = [];
-  let from = 0;
-  const add = (lags: Int32Array, sign: 1 | -1) => { out.push({ lags, from, sign }); from += lags.length; };
-  add(shape.ar.plain, 1); add(shape.ar.seasonal, 1); add(shape.ma.plain, -1); add(shape.ma.seasonal, -1);
-  return out;
-}
+/** The four factors, in the order of the parameters. */
+export function factors(shape: Shape): readonly Factor[] { return shape.factors; }
 
 /** Maximises the exact likelihood. Cost: a start by regression and usually 4 to 10 passes; more starts where several maxima are likely. */
 export function estimate(search: Search): Estimate {
@@ -91,7 +83,7 @@ export function estimate(search: Search): Estimate {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
       const rival = best as Minimum;
-      if (first.value < rival.value + 3 && apart(first, rival)) keep(run(full(first, free, held)));
+      if (first.value < rival.value + 3 && apart(first, rival)) keep(run(full(first, free, held), TOLERANCE, LATER));
     }
   }
   if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
@@ -102,8 +94,11 @@ export function estimate(search: Search): Estimate {
 /** Predicted gain in log-likelihood below which a search stops: far below the 1e-6 that anyone could notice. */
 const TOLERANCE = 1e-9;
 
+/** Most steps for a later start that looked promising: on a ridge between maxima more would not be noticed. */
+const LATER = 60;
+
 /** Steps given to a start before it is compared with the best so far. */
-const SCOUT = 8;
+const SCOUT = 6;
 
 /** Whether two points are more than a hundredth of a standard error apart, by the search's own curvature. */
 function apart(a: Minimum, b: Minimum): boolean {

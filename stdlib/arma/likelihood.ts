@@ -166,18 +166,18 @@ function innovationsInto(work: Work, x: Float64Array, index: number): void {
 function constantInto(work: Work, c: number): void {
   const { n, shape, a, b } = work;
   const a0 = work.a0[1];
-  const ar = shape.ar.lags, ma = shape.ma.lags, p = shape.ar.degree, q = shape.ma.degree;
-  let t = 0, same = 0, level = c;
-  for (; t < n && same <= q; t++) {
-    if (t <= p) { level = c; for (let i = 0; i < ar.length && ar[i] <= t; i++) level -= a[i] * c; }
-    let sum = level;
-    for (let j = 0; j < ma.length && ma[j] <= t; j++) sum -= b[j] * a0[t - ma[j]];
-    a0[t] = sum;
-    same = t > p && Math.abs(sum - a0[t - 1]) <= 1e-16 * Math.abs(sum) ? same + 1 : 0;
+  const ar = shape.ar.lags, p = shape.ar.degree;
+  // After the longest autoregressive lag and the length of 1/theta nothing changes any more.
+  const reach = Math.min(n, p + work.response.length + 1);
+  let level = c;
+  for (let t = 0, i = 0; t < reach; t++) {
+    if (i < ar.length && ar[i] === t) level -= a[i++] * c;
+    a0[t] = level;
   }
-  if (t < n) a0.fill(a0[t - 1], t, n);
+  divideInto(a0, reach, shape.ma.lags, b);
+  if (reach < n) a0.fill(a0[reach - 1], reach, n);
   correctInto(work, work.e[1], a0);
-  work.flat = Math.min(n, Math.max(t, work.g + work.response.length));
+  work.flat = Math.min(n, Math.max(reach, work.g + work.response.length));
 }
 
 /** e = a0 - V K V'a0: only the first values change where 1/theta dies out. */

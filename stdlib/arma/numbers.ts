@@ -58,7 +58,7 @@ export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   const { ols, kept, aliased, rss } = firstRegression(w, differenced, clean, free);
   const rows = Math.max(1, clean === null ? w.length : clean.length);
   let total = 0;
-  for (let i = 0; i < rows; i++) total += w[clean === null ? i : clean[i]] ** 2;
+  if (kept.length > 0) for (let i = 0; i < rows; i++) { const v = w[clean === null ? i : clean[i]]; total += v * v; }
   if (kept.length > 0 && rows > kept.length && rss <= 1e-24 * total) throw new RangeError(`fit: ${prepared.names.length > 0 ? "the regressors explain" : "a constant explains"} ${name} exactly${lost > 0 ? " after differencing" : ""}; there is no randomness left to model`);
   const unit = Math.sqrt(rss / rows) || 1;
   const basis = orthogonalBasis(kept.map(i => differenced[i]), clean);
@@ -176,10 +176,11 @@ function firstRegression(w: Float64Array, columns: readonly Float64Array[], clea
     // Nothing, or a mean alone: no regression needed.
     const all = clean === null || clean.length === 0;
     const count = all ? w.length : clean.length;
+    const values = all ? w : Float64Array.from(clean, t => w[t]);
     let sum = 0, rss = 0;
-    if (cols === 1) for (let i = 0; i < count; i++) sum += w[all ? i : clean[i]];
+    if (cols === 1) for (let i = 0; i < count; i++) sum += values[i];
     const mean = sum / count;
-    for (let i = 0; i < count; i++) rss += (w[all ? i : clean[i]] - mean) ** 2;
+    for (let i = 0; i < count; i++) { const d = values[i] - mean; rss += d * d; }
     return { ols: new Float64Array(cols).fill(mean), kept: cols === 1 ? [0] : [], aliased: [], rss };
   }
   const rows = clean !== null && clean.length > cols ? clean : Array.from({ length: w.length }, (_, t) => t);
@@ -193,7 +194,7 @@ function firstRegression(w: Float64Array, columns: readonly Float64Array[], clea
 /** Gram-Schmidt, twice for digits, over the clean rows: an upper triangular matrix, flat by rows. */
 function orthogonalBasis(columns: readonly Float64Array[], clean: readonly number[] | null): Float64Array {
   const m = columns.length;
-  if (m === 1 && columns[0].every(v => v === 1)) return Float64Array.of(1);
+  if (m === 1 && columns[0][0] === 1 && columns[0].every(v => v === 1)) return Float64Array.of(1);
   const basis = new Float64Array(m * m);
   const q: Float64Array[] = [];
   const rows = clean !== null && clean.length > m ? clean : columns.length > 0 ? Array.from({ length: columns[0].length }, (_, t) => t) : [];
@@ -216,8 +217,9 @@ function orthogonalBasis(columns: readonly Float64Array[], clean: readonly numbe
   return basis;
 }
 
-function combined(columns: readonly Float64Array[], basis: Float64Array): Float64Array[] {
+function combined(columns: readonly Float64Array[], basis: Float64Array): readonly Float64Array[] {
   const m = columns.length;
+  if (m === 1 && basis[0] === 1) return columns;
   return columns.map((x, j) => {
     const out = new Float64Array(x.length);
     for (let i = 0; i <= j; i++) { const c = basis[i * m + j]; if (c !== 0) for (let t = 0; t < out.length; t++) out[t] += c * columns[i][t]; }

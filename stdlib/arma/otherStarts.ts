@@ -55,7 +55,7 @@ function padded(search: Search, x: Float64Array, lessAr: number, lessMa: number,
 
 /** (1 + a_1 B + ...)(1 + b_1 B + ...), without the leading 1. */
 function times(a: readonly number[], b: readonly number[]): number[] {
-  const out = new Array<number>(a.length + b.length).fill(0);
+  const out = Array.from({ length: a.length + b.length }, () => 0);
   a.forEach((v, i) => { out[i] += v; });
   b.forEach((v, j) => { out[j] += v; });
   a.forEach((v, i) => b.forEach((w, j) => { out[i + j + 1] += v * w; }));
@@ -72,9 +72,11 @@ function pairs(search: Search, order: 1 | 2, maximise: Maximise): Float64Array[]
   if (order === 1) for (const a of [-0.97, -0.9, -0.8, -0.65, -0.5, -0.3, -0.1, 0.1, 0.3, 0.5, 0.65, 0.8, 0.9, 0.97]) places.push(place(small.innovations, [-a], [a, 0]));
   else for (const r of [0.7, 0.92]) for (let k = 1; k < 10; k++) places.push(place(small.innovations, [-2 * r * Math.cos(k * Math.PI / 10), r * r], [r * Math.cos(k * Math.PI / 10), r * Math.sin(k * Math.PI / 10)]));
   places.sort((a, b) => b.gain - a.gain);
+  // Large models have many ridges and cost more a pass: fewer of them are walked.
+  const most = search.shape.count > 5 ? 1 : search.shape.count > 3 ? 2 : 3;
   const chosen: Place[] = [];
   for (const p of places) {
-    if (chosen.length === 3) break;
+    if (chosen.length === most) break;
     if (chosen.every(c => Math.hypot(c.at[0] - p.at[0], c.at[1] - p.at[1]) > 0.35)) chosen.push(p);
   }
   return chosen.map(p => {

@@ -18,6 +18,9 @@ export interface Product {
   readonly cross: 1 | -1;
 }
 
+/** One factor: its lags in periods, where its coefficients begin, and the sign in 1 - sign sum c_i B^lag_i. */
+export interface Factor { readonly lags: Int32Array; readonly from: number; readonly sign: 1 | -1 }
+
 /** Lag sets of a multiplicative seasonal model. Parameters stand in the order phi, Phi, theta, Theta. */
 export interface Shape {
   readonly season: number;
@@ -25,6 +28,8 @@ export interface Shape {
   readonly ma: Product;
   /** Number of coefficients: those of the four factors together. */
   readonly count: number;
+  /** phi, Phi, theta, Theta: where each begins in the parameters. */
+  readonly factors: readonly Factor[];
   /** Longest memory of the pre-sample: max of the two degrees. */
   readonly memory: number;
 }
@@ -33,8 +38,11 @@ export interface Shape {
 export function makeShape(arLags: readonly number[], seasonalArLags: readonly number[], maLags: readonly number[], seasonalMaLags: readonly number[], season: number): Shape {
   const ar = product(arLags, seasonalArLags.map(l => l * season), -1);
   const ma = product(maLags, seasonalMaLags.map(l => l * season), 1);
+  const factors: Factor[] = [];
+  let from = 0;
+  for (const [lags, sign] of [[ar.plain, 1], [ar.seasonal, 1], [ma.plain, -1], [ma.seasonal, -1]] as const) { factors.push({ lags, from, sign }); from += lags.length; }
   return {
-    season, ar, ma, memory: Math.max(ar.degree, ma.degree),
+    season, ar, ma, factors, memory: Math.max(ar.degree, ma.degree),
     count: arLags.length + seasonalArLags.length + maLags.length + seasonalMaLags.length,
   };
 }
