@@ -19,6 +19,8 @@ export { pacf, type PartialMethod } from "./correlogram/pacf.ts";
 export { bartlettBand, independentBand } from "./correlogram/bands.ts";
 export { correlogram, type Correlogram, type CorrelogramOptions } from "./correlogram/correlogram.ts";
 export { type Suggestion } from "./correlogram/suggestOrders.ts";
+export { extendedAcf, smallestCanonical, type OrderTable } from "./correlogram/extendedAcf.ts";
+export { prewhitenedCcf, type PrewhitenedCcf } from "./correlogram/prewhitenedCcf.ts";
 // unitroot
 export { adf, type AdfOptions } from "./unitroot/adf.ts";
 export { kpss, type KpssOptions } from "./unitroot/kpss.ts";
