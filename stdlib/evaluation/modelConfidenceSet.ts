@@ -19,7 +19,9 @@ export function modelConfidenceSet(losses: readonly ArrayLike<number>[], { level
   const count = losses.length, kept = completeOrigins(losses), n = kept.length;
   const none = (note: string): ConfidenceSet => ({ level, status: "unavailable", note, models: losses.map(() => ({ p: NaN, inside: true })) });
   if (count < 2) return none("one model alone has nothing to be compared with");
-  if (n < Math.max(10, 3 * block)) return none(`${n} origins are too few for a confidence set with blocks of ${block}: at least ${Math.max(10, 3 * block)} are needed`);
+  // Fewer than five stretches that do not overlap cannot tell how much mean losses vary.
+  const needed = Math.max(10, 5 * block);
+  if (n < needed) return none(`${n} origins are too few for a confidence set ${block > 1 ? `when errors overlap over ${block} of them` : "of models"}: at least ${needed} are needed`);
   const table = losses.map((loss) => Float64Array.from(kept, (t) => loss[t])), means = table.map(mean);
   const boot = bootMeans(table, block, replications, seeded(seed));
   const p = new Float64Array(count).fill(1);

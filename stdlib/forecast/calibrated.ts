@@ -71,7 +71,7 @@ function stretched(plain: Outlook, misses: readonly Float64Array[], ratio: reado
   };
   return {
     ...plain, quantile, paths, sd: plain.sd.map((s, h) => s * ratio[h]), se: plain.se.map((s, h) => s * ratio[h]), normal: false, covariance: () => null,
-    above: (h, value) => 1 - levelOf((p) => quantile(p)[h], value), crps: (h, actual) => crpsOfQuantiles((p) => quantile(p)[h], actual),
+    above: (h, value) => 1 - levelOf((p) => quantile(p)[h], value), crps: crpsOfQuantiles(quantile),
   };
 }
 

@@ -44,14 +44,10 @@ function combinedOutlook(members: readonly Forecaster[], horizon: number, regres
   const outlook: Outlook = {
     horizon, mean: mean((o) => o.mean), median: quantile(0.5), sd: mean((o) => o.sd), se: mean((o) => o.sd), quantile, paths, normal: false, covariance: () => null,
     above: (h, value) => 1 - levelOf((p) => quantile(p)[h], value),
-    crps: (h, actual) => crpsOfQuantiles((p) => averageAt(outlooks, p, h), actual),
+    crps: crpsOfQuantiles(quantile),
   };
   const notes: Note[] = [{ code: "combined", tone: "note", text: `A combination of ${members.length}: points and band limits are the means of the members', as if their errors rose and fell together.` }, ...parts.flatMap((p) => p.notes)];
   return { outlook, base: first.base, times: first.times, notes };
-}
-
-function averageAt(outlooks: readonly Outlook[], p: number, h: number): number {
-  return outlooks.reduce((sum, o) => sum + o.quantile(p)[h], 0) / outlooks.length;
 }
 
 function averaged(parts: readonly Float64Array[]): Float64Array {

@@ -161,19 +161,20 @@ function lognormalCovariance(c: Float64Array, mean: Float64Array, rest: readonly
 
 /** CRPS as twice the mean pinball loss over all quantiles (Gneiting & Ranjan 2011), by the midpoint rule in the normal number.
  *  @param valueAt  the quantile with probability normalCdf(z) */
-function crpsOfNormals(valueAt: (z: number) => number, actual: number, step = 0.05): number {
+function crpsOfNormals(valueAt: (z: number, index: number) => number, actual: number, step = 0.05): number {
   let sum = 0, weight = 0;
   const half = Math.round(8 / step);
   for (let i = -half; i < half; i++) {
-    const z = (i + 0.5) * step, w = Math.exp(-0.5 * z * z), p = normalCdf(z), q = valueAt(z);
+    const z = (i + 0.5) * step, w = Math.exp(-0.5 * z * z), p = normalCdf(z), q = valueAt(z, i + half);
     sum += w * (actual >= q ? p * (actual - q) : (1 - p) * (q - actual)); weight += w;
   }
   return (2 * sum) / weight;
 }
 
-/** The same from quantiles by probability, on a coarser grid: they may be dear. */
-export function crpsOfQuantiles(quantile: (p: number) => number, actual: number): number {
-  return crpsOfNormals((z) => quantile(normalCdf(z)), actual, 0.1);
+/** The same from quantiles by probability, on a coarser grid that is computed once for all periods: they may be dear. */
+export function crpsOfQuantiles(quantile: (p: number) => Float64Array): Outlook["crps"] {
+  const step = 0.1, half = Math.round(8 / step), grid = once(() => Array.from({ length: 2 * half }, (_, i) => quantile(normalCdf((i - half + 0.5) * step))));
+  return (h, actual) => crpsOfNormals((_, index) => grid()[index][h], actual, step);
 }
 
 /** The probability whose quantile is a value, by halving. */

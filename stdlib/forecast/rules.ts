@@ -59,7 +59,8 @@ export function ruleFor(model: Rule, series: Series, how: "fresh" | "refit" | "h
       const weights = model.smoothing?.start;
       // Held weights keep their values; where the sample starts elsewhere, its starting states are found anew.
       const hold = how === "held" && weights ? { ...model.hold, alpha: weights.alpha, beta: weights.beta, gamma: weights.gamma, phi: weights.phi } : (model.hold ?? {});
-      return { ...smoothingRule(series, { ...model, ...hold }, how === "refit" ? weights : undefined), hold: model.hold, label: model.label };
+      const near = how !== "refit" || !weights ? undefined : series.start === model.series.start ? weights : { alpha: weights.alpha, beta: weights.beta, gamma: weights.gamma, phi: weights.phi };
+      return { ...smoothingRule(series, { ...model, ...hold }, near), hold: model.hold, label: model.label };
     }
     case "combine": throw new RangeError("a combination is refitted member by member");
   }
@@ -78,7 +79,7 @@ function plain(name: Rule["rule"], label: string, series: Series): Rule {
   return { rule: name, label, series };
 }
 
-function smoothingRule(series: Series, options: SmoothingOptions, near?: SmoothingHold): Rule {
+function smoothingRule(series: Series, options: SmoothingOptions, near?: Parameters<typeof estimateSmoothing>[4]): Rule {
   const { trend = "none", season = "none", damped = false } = options;
   for (const [name, value, among] of [["trend", trend, ["none", "additive", "multiplicative"]], ["season", season, ["none", "additive", "multiplicative"]]] as const) {
     if (!(among as readonly string[]).includes(value)) throw new RangeError(`rule.smoothing: ${name} is ${JSON.stringify(value)}, expected ${among.map((a) => `"${a}"`).join(", ")}`);

@@ -26,10 +26,10 @@ const longestFreeSeason = 60;
 /** Maximum likelihood within the usual region: 0 < alpha < 1, 0 < beta < alpha, 0 < gamma < 1 - alpha, 0.8 <= phi <= 0.98.
  *  Starting states of an additive model are concentrated out; those of a multiplicative one are searched with the weights.
  *  @param damped  whether the trend dies away
- *  @param near    weights to start from (those of an earlier origin, say)
+ *  @param near    where to start from (the estimates of an earlier origin, say): weights, and starting states where the sample starts at the same time
  *  @throws RangeError in words where the series is too short, or not positive and something multiplies
  *  Source: Hyndman, Koehler, Ord & Snyder (2008), chapter 5. */
-export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: boolean, hold: SmoothingHold = {}, near?: SmoothingHold): EstimatedSmoothing {
+export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: boolean, hold: SmoothingHold = {}, near?: SmoothingHold & Partial<States0>): EstimatedSmoothing {
   const m = form.season === "none" ? 0 : form.length, observed = y.reduce((count, v) => count + (Number.isNaN(v) ? 0 : 1), 0);
   checkData(y, form, m, observed, hold);
   const additive = form.error === "additive" && form.trend !== "multiplicative" && form.season !== "multiplicative";
@@ -37,7 +37,7 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
   const total = (f: (v: number) => number): number => y.reduce((sum, v) => sum + (Number.isNaN(v) ? 0 : f(v)), 0);
   const shift = additive && hold.level0 === undefined ? total((v) => v) / observed : 0, unit = total((v) => Math.abs(v - shift)) / observed || 1;
   const scaled = y.map((v) => (v - shift) / unit), space = new Space(form, m, damped, hold, unit);
-  const opening = openingStates(scaled, form);
+  const opening = near?.level !== undefined && near.seasonal !== undefined ? nearStates(near as States0, form, shift, unit) : openingStates(scaled, form);
   const concentrated = additive && !space.statesHeld && m <= longestFreeSeason;
   const statesOf = (weights: Weights, x: Float64Array): States0 => concentrated ? bestStates(scaled, form, weights) : space.states(x, opening);
   const objective = (x: Float64Array): number => {
@@ -63,6 +63,10 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
     seasonal: form.season === "multiplicative" ? states.seasonal : states.seasonal.map((s) => s * unit) };
   const freeStates = space.statesHeld ? 0 : 1 + (form.trend === "none" ? 0 : 1) + Math.max(0, m - 1);
   return { form, start, filtered: innovationsFilter(y, form, start), k: space.freeWeights + freeStates + 1, converged: best.converged };
+}
+
+function nearStates({ level, trend, seasonal }: States0, form: SmoothingForm, shift: number, unit: number): States0 {
+  return { level: (level - shift) / unit, trend: form.trend === "multiplicative" ? trend : trend / unit, seasonal: form.season === "multiplicative" ? seasonal : seasonal.map((s) => s / unit) };
 }
 
 function checkData(y: Float64Array, form: SmoothingForm, m: number, observed: number, hold: SmoothingHold): void {
