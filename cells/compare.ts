@@ -1,6 +1,6 @@
 // The kind that ranks models: a grid of orders by a criterion, or fits and rules by their errors at held-out origins.
 
-import { gridOfOrders, rankFits, rollingOrigins, type Fit, type Forecaster, type Grid, type GridOptions, type Lags, type Regressor, type Season, type Series } from "../stdlib/index.ts";
+import { defaultSeasonLength, gridOfOrders, rankFits, rollingOrigins, stepwiseOrders, type Fit, type Forecaster, type Grid, type GridOptions, type Lags, type Regressor, type Season, type Series, type Stepwise } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { compareParts, type Comparison } from "./parts/compareParts.ts";
 import { labelledModels } from "./parts/labelledModels.ts";
@@ -14,6 +14,7 @@ export interface CompareCell {
   readonly ar?: Tried;
   readonly ma?: Tried;
   readonly season?: number | Season | readonly (Season | null | 0)[];
+  readonly search?: "grid" | "stepwise";
   readonly mean?: boolean;
   readonly regressors?: Readonly<Record<string, Regressor>>;
   readonly models?: unknown;
@@ -38,9 +39,10 @@ const mostFromGrid = 12;
 
 export const compareOptions: OptionTable = {
   series: { type: "series", sentence: "For a grid of orders: the series that every order is fitted to.", example: "steady" },
-  ar: { type: "any", default: 0, sentence: "For a grid: a number n tries 0 to n autoregressive lags; a list tries each of its items.", example: "2" },
-  ma: { type: "any", default: 0, sentence: "For a grid: a number n tries 0 to n moving-average lags; a list tries each of its items.", example: "2" },
-  season: { type: "any", sentence: "For a grid: the season of every model, as in fit; a number n tries 0 to n seasonal lags of both sorts; a list tries each of its items, 0 being none.", example: "[0, {ma: 1}]" },
+  ar: { type: "any", sentence: "For a grid: a number n tries 0 to n autoregressive lags; a list tries each of its items; none unless given. For a stepwise search the largest number of lags (5).", example: "2" },
+  ma: { type: "any", sentence: "For a grid: a number n tries 0 to n moving-average lags; a list tries each of its items; none unless given. For a stepwise search the largest number of lags (5).", example: "2" },
+  season: { type: "any", sentence: "For a grid: the season of every model, as in fit; a number n tries 0 to n seasonal lags of both sorts; a list tries each of its items, 0 being none. For a stepwise search its length and the largest orders (2 of both).", example: "[0, {ma: 1}]" },
+  search: { type: { oneOf: ["grid", "stepwise"] }, default: "grid", sentence: "For orders: try all of the grid, or start from four usual models and move to better neighbours, which tries a few dozen of hundreds." },
   mean: { type: "boolean", sentence: "For a grid: whether the models have a mean; as in fit unless given." },
   regressors: { type: "object", sentence: "For a grid: regressors by name, as in fit." },
   models: { type: "any", sentence: "Fits and rules to compare, as {label: model} or a list; all of one loaded series.", example: "[airline, rule.naive(crossings)]" },
@@ -104,14 +106,18 @@ async function compareOrders(options: CompareCell, context: RunContext): Promise
 }
 
 /** A list of seasons is several grids, ranked together. */
-async function gridOf(options: CompareCell, series: Series, rank: Criterion, context: RunContext): Promise<Grid> {
+async function gridOf(options: CompareCell, series: Series, rank: Criterion, context: RunContext): Promise<Grid | Stepwise> {
   const { ar, ma, mean, regressors, window } = options;
   const common = { series, ar, ma, rank, ...(mean === undefined ? {} : { mean }), ...(regressors === undefined ? {} : { regressors }), ...(window === undefined ? {} : { window }) };
+  const hooks = { progress: (done: number, total: number, what: string) => { context.progress(done, total, what); }, breathe: () => context.breathe() };
+  if (options.search === "stepwise") {
+    return stepwiseOrders({ ...common, ar: largest(ar, "ar"), ma: largest(ma, "ma"), ...largestSeason(options.season, series) }, hooks);
+  }
   const seasons = seasonsOf(options.season);
   const grids: Grid[] = [];
   for (const season of seasons) {
     grids.push(await gridOfOrders({ ...common, ...(season === undefined ? {} : { season }) }, {
-      progress: (done, total, what) => { context.progress(grids.length * total + done, seasons.length * total, what); }, breathe: () => context.breathe(),
+      ...hooks, progress: (done, total, what) => { hooks.progress(grids.length * total + done, seasons.length * total, what); },
     }));
   }
   return grids.length === 1 ? grids[0] : merged(grids, rank);
@@ -136,6 +142,24 @@ function seasonsOf(season: CompareCell["season"]): readonly GridOptions["season"
   if (!Array.isArray(season)) return [oneSeason(season)];
   if (season.length === 0) throw new OptionError("season", "season is an empty list; give at least one item, such as {ma: 1}");
   return (season as readonly unknown[]).map(oneSeason);
+}
+
+/** The largest order of a stepwise search. */
+function largest(tried: unknown, option: string): number | undefined {
+  if (tried === undefined) return undefined;
+  if (typeof tried === "number" && Number.isInteger(tried) && tried >= 0) return tried;
+  throw new OptionError(option, `in a stepwise search ${option} is the largest number of lags, such as 5; found ${Array.isArray(tried) ? "a list" : String(tried)}`);
+}
+
+/** A series with a season is searched with seasonal orders unless told otherwise by 0. */
+function largestSeason(season: CompareCell["season"], series: Series): { readonly season?: { readonly length?: number; readonly ar?: number; readonly ma?: number } } {
+  const length = defaultSeasonLength(series.every);
+  if (season === undefined) return length !== null && length > 1 && series.n >= 3 * length ? { season: {} } : {};
+  if (season === 0) return {};
+  if (typeof season === "number") return { season: { ar: season, ma: season } };
+  if (Array.isArray(season) || typeof season !== "object") throw new OptionError("season", "in a stepwise search season gives the largest seasonal orders, as in {length: 12, ar: 2, ma: 2}, or 0 for none");
+  const { length: asked, ar, ma } = season as Season;
+  return { season: { ...(asked === undefined ? {} : { length: asked }), ar: largest(ar, "season"), ma: largest(ma, "season") } };
 }
 
 function oneSeason(item: unknown): GridOptions["season"] {

@@ -1,13 +1,13 @@
 // What a comparison shows: the finding, then how a grid's orders or the models' errors stand to each other.
 
-import type { Evaluation, Grid } from "../../stdlib/index.ts";
+import type { Evaluation, Grid, Stepwise } from "../../stdlib/index.ts";
 import { evaluationParts } from "./evaluationParts.ts";
 import { gridParts } from "./gridParts.ts";
 import type { Part } from "./part.ts";
 
 /** A grid's result, or an evaluation's; `scores` and `against` are empty for a grid. */
 export type Comparison =
-  | (Grid & { readonly how: "criterion"; readonly scores: readonly never[]; readonly against: readonly never[] })
+  | ((Grid | Stepwise) & { readonly how: "criterion"; readonly scores: readonly never[]; readonly against: readonly never[] })
   | (Evaluation & { readonly how: "origins"; readonly every: string | null });
 
 export function compareParts(result: Comparison): readonly Part[] {

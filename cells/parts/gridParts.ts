@@ -1,18 +1,19 @@
 // What a grid of orders shows: the finding, the surface of orders as tiles, the ranking with ties, what failed and why.
 
-import type { Grid, Lags } from "../../stdlib/index.ts";
+import type { Grid, Lags, Stepwise } from "../../stdlib/index.ts";
 import { heatChart, type Tile } from "./heatChart.ts";
 import type { ChartPart, Part, TablePart, TextPart } from "./part.ts";
-import { count, figure } from "./words.ts";
+import { searchChart } from "./searchChart.ts";
+import { count, decimals, figure } from "./words.ts";
 
 const mostRows = 20;
 const mostTiles = 12;
 
-export function gridParts(grid: Grid): readonly Part[] {
+export function gridParts(grid: Grid | Stepwise): readonly Part[] {
   return [
     { part: "text", text: grid.sentence },
     ...grid.notes.map((text): TextPart => ({ part: "text", tone: /caution|could not/.test(text) ? "caution" : "note", text })),
-    ...surfaces(grid),
+    ...("path" in grid ? pathParts(grid) : surfaces(grid)),
     ...(grid.models.length > 0 ? [rankingTable(grid)] : []),
     ...(grid.failures.length > 0 ? [failureTable(grid)] : []),
   ];
@@ -20,6 +21,14 @@ export function gridParts(grid: Grid): readonly Part[] {
 
 export function criterionName(rankedBy: Grid["rankedBy"]): string {
   return { aic: "AIC", aicc: "AICc", bic: "BIC" }[rankedBy];
+}
+
+/** The way of a stepwise search: what was tried from where, and where it moved. */
+function pathParts(grid: Stepwise): readonly Part[] {
+  const name = criterionName(grid.rankedBy);
+  const moves = grid.path.filter(step => step.moved);
+  const alt = `The search tried ${count(grid.path.length, "model")} and moved ${count(moves.length, "time")}: ${moves.map(step => `${step.label} (${decimals(step.value, 1)})`).join(", then ")}.`;
+  return [searchChart(`The way of the search: ${name} of each model tried`, alt, name, grid.path), { part: "text", text: alt }];
 }
 
 /** One surface of the plain orders, and one of the seasonal ones, each tile the best over the other pair. */

@@ -68,6 +68,16 @@ describe("compare over a grid of orders", () => {
     ]);
     await expect(drawnCharts(parts)).resolves.toHaveLength(2);
   });
+  test("searches stepwise where asked, and draws its way", async () => {
+    const { result } = await run({ series: steady, ar: 2, ma: 2, season: { ar: 1, ma: 1 }, search: "stepwise" });
+    if (result.how !== "criterion" || !("path" in result)) throw new Error("expected a search");
+    expect(result.path.length).toBeLessThan(36);
+    expect(result.path.filter(step => step.moved).at(-1)?.label).toBe(result.best?.label);
+    const parts = compare.show(result, show);
+    expect(texts(parts)).toMatch(/The search tried \d+ models and moved \d+ times?: /);
+    await expect(drawnCharts(parts)).resolves.toHaveLength(1);
+    await expect(run({ series: steady, ar: [1, 2], search: "stepwise" })).rejects.toThrow("in a stepwise search ar is the largest number of lags");
+  });
   test("goes on to held-out origins when an error ranks it", async () => {
     const { result, context } = await run({ series: steady, ma: 1, rank: "mae", origins: 6, horizon: 2 });
     expect(result.how).toBe("origins");
