@@ -6,7 +6,7 @@ import { panelChart } from "./panelChart.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { ratioChart, type RatioRow } from "./ratioChart.ts";
 import { spreadChart } from "./spreadChart.ts";
-import { figure, percent, pText } from "./words.ts";
+import { figure, listOf, percent, pText } from "./words.ts";
 
 type Shown = Stationarity & { readonly of: string; readonly axis: string; readonly series: Series; readonly lambda: { readonly guerrero: LambdaProfile; readonly likelihood: LambdaProfile } | null; readonly rangeMean: RangeMean | null };
 
@@ -49,7 +49,7 @@ function testsOf(result: Shown): readonly NamedTest[] {
 function ratioPart(tests: readonly NamedTest[]): Part {
   const rows: RatioRow[] = tests.flatMap(({ name, test }) => test.status === "unavailable" || test.critical === undefined ? [] : [{ label: name, statistic: test.statistic, critical: test.critical }]);
   const beyond = rows.filter(row => row.statistic / row.critical["5%"] > 1).map(row => row.label);
-  return ratioChart("Each statistic against its critical values at 10%, 5% and 1%", `Right of 1 a test rejects its null hypothesis at 5%: ${beyond.length === 0 ? "none does" : `${beyond.join(", ")} ${beyond.length === 1 ? "does" : "do"}`}.`, rows);
+  return ratioChart("Each statistic against its critical values at 10%, 5% and 1%", `Right of 1 a test rejects its null hypothesis at 5%: ${beyond.length === 0 ? "none does" : `${listOf(beyond)} ${beyond.length === 1 ? "does" : "do"}`}.`, rows);
 }
 
 function testTable(tests: readonly NamedTest[], level: number): TablePart {
