@@ -1,6 +1,6 @@
 // The kind that shows autocorrelations and partial autocorrelations on one lag axis, and what they suggest.
 
-import { correlogram as compute, theoreticalAcf, theoreticalPacf, type Correlogram, type Fit } from "../stdlib/index.ts";
+import { correlogram as compute, extendedAcf, smallestCanonical, theoreticalAcf, theoreticalPacf, type Correlogram, type Fit, type OrderTable, type Series } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable } from "./kind.ts";
 import { correlogramParts } from "./parts/correlogramParts.ts";
 import { needLevel, needVaryingSeries, plainly } from "./parts/needs.ts";
@@ -20,6 +20,8 @@ export interface CorrelogramCell {
 /** A correlogram with what it is of, and a model's own correlations from lag 0 where a model was given. */
 export interface ShownCorrelogram extends Correlogram {
   readonly of: string;
+  /** Tables that read mixed orders; null where a cut-off already suggests pure ones, or where the data cannot carry them. */
+  readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null;
   readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null;
 }
 
@@ -51,7 +53,14 @@ export function runCorrelogram(options: CorrelogramCell): ShownCorrelogram {
     throw new OptionError("lags", `lags is ${lags}; with ${count(series.n, "value")} it can be a whole number from 1 to ${series.n - 1}`);
   }
   const result = plainly(() => compute({ series, lags, level: needLevel(options.level), band: options.band ?? "independent", partial: options.partial ?? "levinson" }));
-  return { ...result, of: scaleText(series), theory: options.model ? theoryOf(options.model, result.lags) : null };
+  return { ...result, of: scaleText(series), mixed: mixedTables(result, series), theory: options.model ? theoryOf(options.model, result.lags) : null };
+}
+
+/** Where neither correlations cut off, the rule of thumb has no more to say, and tables made for mixed models begin. */
+function mixedTables(result: Correlogram, series: Series): ShownCorrelogram["mixed"] {
+  if (result.status !== "ok" || result.suggests.ar === 0 || result.suggests.ma === 0) return null;
+  const extended = extendedAcf(series), canonical = smallestCanonical(series);
+  return extended.status === "ok" && canonical.status === "ok" ? { extended, canonical } : null;
 }
 
 function theoryOf(model: Fit, lags: number): NonNullable<ShownCorrelogram["theory"]> {

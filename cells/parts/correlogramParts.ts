@@ -1,11 +1,12 @@
 // What a correlogram shows: what stands out, both correlations on one lag axis, the portmanteau tests, the suggestion.
 
-import type { Correlogram } from "../../stdlib/index.ts";
+import type { Correlogram, OrderTable } from "../../stdlib/index.ts";
 import { lagChart, type LagPanel } from "./lagChart.ts";
+import { orderChart } from "./orderChart.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { percent, pText, someOf } from "./words.ts";
 
-type Shown = Correlogram & { readonly of: string; readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null };
+type Shown = Correlogram & { readonly of: string; readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null; readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null };
 
 export function correlogramParts(result: Shown): readonly Part[] {
   if (result.status === "unavailable") return [{ part: "text", tone: "caution", text: result.sentence }];
@@ -17,6 +18,7 @@ export function correlogramParts(result: Shown): readonly Part[] {
     }),
     startText(result),
     ...(result.theory === null ? [] : [{ part: "text" as const, tone: "note" as const, text: `The line is what ${result.theory.label} would give in a long series.` }]),
+    ...mixedParts(result),
     portmanteauTable(result),
     ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
   ];
@@ -41,6 +43,17 @@ function startText(result: Shown): TextPart {
   if (ar + ma === 0 && season === null) return { part: "text", tone: "note", text: "Nothing here asks for AR or MA terms." };
   const seasonal = season === null ? "" : `, season: {${[season.ar > 0 ? `ar: ${season.ar}` : "", season.ma > 0 ? `ma: ${season.ma}` : ""].filter(Boolean).join(", ")}}`;
   return { part: "text", tone: "note", text: `A fit could begin with ar: ${ar}, ma: ${ma}${seasonal}. That is a suggestion from a rule of thumb: compare it with its neighbours before relying on it.` };
+}
+
+/** Tables for mixed orders: shaded is what chance would give; the corner of the shaded field is read as the orders. */
+function mixedParts(result: Shown): readonly Part[] {
+  if (result.mixed === null) return [];
+  const { extended, canonical } = result.mixed;
+  return [
+    { part: "text", text: `For mixed orders: ${extended.sentence} ${canonical.sentence}` },
+    orderChart("Extended autocorrelations by orders (Tsay and Tiao 1984); shaded: within chance", extended.sentence, extended),
+    orderChart("Smallest canonical correlations, p-values by orders (Tsay and Tiao 1985); shaded: above 0.05", canonical.sentence, canonical),
+  ];
 }
 
 function portmanteauTable(result: Shown): TablePart {

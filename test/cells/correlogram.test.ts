@@ -3,7 +3,7 @@ import { describe, expect, test } from "vitest";
 import { checkOptions } from "../../cells/check.ts";
 import { correlogram } from "../../cells/correlogram.ts";
 import type { ChartPart, TablePart, TextPart } from "../../cells/parts/part.ts";
-import { makeSeries } from "../../stdlib/index.ts";
+import { fit as estimate, makeSeries } from "../../stdlib/index.ts";
 import { drawnCharts } from "./drawn.ts";
 import { madeContext } from "./madeContext.ts";
 import { madeSeries, stepped } from "./made.ts";
@@ -50,6 +50,27 @@ describe("correlogram", () => {
     const table = correlogram.show(await run({ series: nile }), show).find((p): p is TablePart => p.part === "table")!;
     expect(table.note).toContain("no autocorrelation up to this lag");
     expect(table.rows[0].at(-1)).toBe("larger than chance would make them");
+  });
+  test("adds the tables for mixed orders where neither kind of correlation cuts off, and only there", async () => {
+    const mixed = await run({ series: stepped(madeSeries(), [{ step: "log" }]) });
+    expect(mixed.suggests.ar * mixed.suggests.ma).toBeGreaterThan(0);
+    const parts = correlogram.show(mixed, show);
+    expect(texts(parts)).toContain("For mixed orders: ");
+    const svgs = await drawnCharts(parts);
+    expect(svgs).toHaveLength(3);
+    expect(svgs[1]).toContain("AR order");
+    const pure = await run({ series: numbered(Array.from({ length: 60 }, (_, i) => Math.sin(i * i * 12.9898) * 43758.5453 % 1)) });
+    expect(pure.suggests.ar * pure.suggests.ma).toBe(0);
+    expect(pure.mixed).toBeNull();
+  });
+  test("lays a model's own correlations over the sample's", async () => {
+    const model = estimate({ series: nile, ar: 1, label: "memory" });
+    const parts = correlogram.show(await run({ series: nile, model, lags: 10 }), show);
+    const chart = parts[1] as ChartPart;
+    // An AR(1)'s autocorrelations are powers of its coefficient.
+    const line = chart.data.panel1Theory.value as readonly number[];
+    expect(line[2]).toBeCloseTo(model.phi[0] ** 3, 10);
+    expect(texts(parts)).toContain("The line is what memory would give in a long series.");
   });
   test("widens Bartlett's band with the lag", async () => {
     const { band } = await run({ series: nile, band: "bartlett", lags: 10 });
