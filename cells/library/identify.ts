@@ -1,8 +1,8 @@
 // Functions of identification and diagnostic checking: correlations, tests, spectra.
 
 import {
-  acf, adf, archLM, boxPierce, canovaHansen, ccf, cumulativePeriodogram, cusum, decompose, defaultSeasonLength, dfGls, durbinWatson, jarqueBera, kpss, lambdaProfile, largestBreak, ljungBox, mcleodLi, monti, outliers,
-  pacf, phillipsPerron, seasonalStrength, spectrum, stl, subseries, withValues, type Series,
+  acf, adf, archLM, boxPierce, canovaHansen, ccf, cumulativePeriodogram, cusum, decompose, defaultSeasonLength, dfGls, durbinWatson, extendedAcf, jarqueBera, kpss, lambdaProfile, largestBreak, ljungBox, mcleodLi, monti, outliers,
+  pacf, phillipsPerron, prewhitenedCcf, seasonalStrength, smallestCanonical, spectrum, stl, subseries, withValues, type OrderTable, type Series,
 } from "../../stdlib/index.ts";
 import type { LibraryFunction } from "../kind.ts";
 import { define, fit, number, numbers, optional, series, settings, subject, whole, word } from "./define.ts";
@@ -14,6 +14,9 @@ export const identifyFunctions: readonly LibraryFunction[] = [
   define(correlations, "acf", [numbers("series"), whole("lags")], "Autocorrelations from lag 0.", (x, lags) => acf(x, lags)),
   define(correlations, "pacf", [numbers("series"), whole("lags"), optional(word("how", ["levinson", "regression", "burg"]))], "Partial autocorrelations from lag 0, by Levinson's recursion unless told otherwise.", (x, lags, how) => pacf(x, lags, how)),
   define(correlations, "ccf", [numbers("x"), numbers("y"), whole("lags")], "Cross-correlations: index k is x at t with y at t + k.", (x, y, lags) => ccf(x, y, lags)),
+  define(correlations, "extendedAcf", [numbers("series"), optional(whole("maxAr", 0, 20)), optional(whole("maxMa", 0, 20))], "Extended autocorrelations for mixed orders, with a row for each pair of orders.", (x, maxAr, maxMa) => withRows(extendedAcf(x, maxAr, maxMa))),
+  define(correlations, "smallestCanonical", [numbers("series"), optional(whole("maxAr", 0, 20)), optional(whole("maxMa", 0, 20))], "Tests of the smallest canonical correlation for mixed orders, with a row for each pair of orders.", (x, maxAr, maxMa) => withRows(smallestCanonical(x, maxAr, maxMa))),
+  define(correlations, "prewhitenedCcf", [numbers("x"), numbers("y"), whole("lags"), optional(settings("options", ["level", "order"]))], "Cross-correlations at lags -lags to lags after an autoregression of x has been taken out of both.", (x, y, lags, options) => prewhitenedCcf(x, y, lags, options as Parameters<typeof prewhitenedCcf>[3])),
   define(unitRoots, "adf", [numbers("series"), optional(settings("options", ["trend", "lags", "maxLags"]))], "Augmented Dickey-Fuller test of a unit root.", (x, options) => adf(x, options as Parameters<typeof adf>[1])),
   define(unitRoots, "kpss", [numbers("series"), optional(settings("options", ["trend", "bandwidth"]))], "KPSS test of stationarity.", (x, options) => kpss(x, options as Parameters<typeof kpss>[1])),
   define(unitRoots, "phillipsPerron", [numbers("series"), optional(settings("options", ["trend", "bandwidth"]))], "Phillips-Perron test of a unit root.", (x, options) => phillipsPerron(x, options as Parameters<typeof phillipsPerron>[1])),
@@ -46,6 +49,12 @@ export const identifyFunctions: readonly LibraryFunction[] = [
     return seasonalStrength(s, periods);
   }),
 ];
+
+/** A table of orders with its cells as rows besides, for tables and charts. */
+function withRows(table: OrderTable) {
+  const wide = table.maxMa + 1;
+  return { ...table, rows: Array.from(table.values, (value, i) => ({ ar: Math.floor(i / wide), ma: i % wide, value, beyond: table.beyond[i] === 1 })) };
+}
 
 /** The parts of a decomposition as series, so that they can be drawn and combined. */
 function asSeries<T extends { readonly status: string; readonly trend: Float64Array; readonly seasonal: Float64Array; readonly remainder: Float64Array }>(given: Series, parts: T) {

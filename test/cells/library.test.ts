@@ -104,6 +104,11 @@ describe("what the functions give", () => {
       crossings.values.forEach((v, t) => { if (!Number.isNaN(trend.values[t])) expect(trend.values[t] + seasonal.values[t] + remainder.values[t]).toBeCloseTo(v, 9); });
     }
   });
+  it("tables of orders have a row for each pair of orders", () => {
+    const { rows } = call("extendedAcf", crossings, 2, 3) as { rows: { ar: number; ma: number }[] };
+    expect([rows.length, rows[5]]).toEqual([12, expect.objectContaining({ ar: 1, ma: 1 })]);
+    expect((call("prewhitenedCcf", crossings, crossings, 4) as { lags: Int32Array }).lags.length).toBe(9);
+  });
   it("estimateLambda is a number, or says why there is none", () => {
     expect(call("estimateLambda", crossings, "likelihood")).toBeTypeOf("number");
     expect(() => call("estimateLambda", [1, 2, -3, 4, 5, 6, 7, 8, 9, 10])).toThrow(/^estimateLambda: /);
