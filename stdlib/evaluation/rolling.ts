@@ -91,6 +91,9 @@ function commonBase(models: readonly Labelled[], { data, window }: RollingOption
   return window ? cut(whole, window) : whole;
 }
 
+/** Draws a forecast where there is no closed form: chance of the draws averages out over the origins. */
+const drawsAnOrigin = 1000;
+
 /** Number of the first period that a model was made from, in the units of the forecasts. */
 const sampleStart = ({ model }: Labelled): number => firstIndex(baseOf(model.series));
 
@@ -124,7 +127,7 @@ export async function rollModel({ label, model }: Labelled, frame: RollingFrame,
 }
 
 function writeForecasts(rolled: Omit<Rolled, "done" | "failures">, k: number, model: Forecaster, { base, at, horizon, levels }: RollingFrame, seed: number): void {
-  const { outlook } = modelOutlook(model, horizon, {}, seed), offset = k * horizon;
+  const { outlook } = modelOutlook(model, horizon, {}, seed, drawsAnOrigin), offset = k * horizon;
   rolled.mean.set(outlook.mean, offset); rolled.median.set(outlook.median, offset); rolled.sd.set(outlook.sd, offset);
   levels.forEach((level, i) => {
     rolled.bands[i].low.set(outlook.quantile((1 - level) / 2), offset);

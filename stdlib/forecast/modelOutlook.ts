@@ -20,18 +20,19 @@ export interface ModelOutlook {
 
 /** Plug-in forecasts: the parameters count as known, the errors as normal.
  *  @param regressors  future values, by the fit's names
- *  @param seed        of the draws, where there is no closed form */
-export function modelOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>> = {}, seed = 1): ModelOutlook {
-  if (isRule(model) && model.rule === "combine") return combinedOutlook(model.members ?? [], horizon, regressors, seed);
+ *  @param seed        of the draws, where there is no closed form
+ *  @param draws       how many stand for such a distribution; fewer where many forecasts are scored together */
+export function modelOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>> = {}, seed = 1, draws?: number): ModelOutlook {
+  if (isRule(model) && model.rule === "combine") return combinedOutlook(model.members ?? [], horizon, regressors, seed, draws);
   const undo: Undo = undoOf(model.series, keptSteps(model), horizon);
   const predictive = isRule(model) ? rulePredictive(model, horizon) : fitPredictive(model, horizon, undo.times, regressors);
-  return { outlook: outlookOf(predictive, undo.steps, seed), base: undo.base, times: undo.times, notes: undo.notes };
+  return { outlook: outlookOf(predictive, undo.steps, seed, draws), base: undo.base, times: undo.times, notes: undo.notes };
 }
 
 /** The mean of the members, point by point and limit by limit: as if their errors rose and fell together, which is the
  *  cautious reading of forecasters who see the same data. */
-function combinedOutlook(members: readonly Forecaster[], horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): ModelOutlook {
-  const parts = members.map((member) => modelOutlook(member, horizon, regressors, seed)), [first] = parts;
+function combinedOutlook(members: readonly Forecaster[], horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, draws?: number): ModelOutlook {
+  const parts = members.map((member) => modelOutlook(member, horizon, regressors, seed, draws)), [first] = parts;
   const origins = new Set(parts.map((p) => p.base.times[p.base.n - 1]));
   if (origins.size > 1) throw new RangeError(`rule.combine: the members end at different times (${[...origins].join(", ")}); cut them to one window`);
   const outlooks = parts.map((p) => p.outlook), mean = (pick: (o: Outlook) => Float64Array): Float64Array => averaged(outlooks.map(pick));

@@ -35,7 +35,7 @@ const drawCount = 4000;
 
 /** Undoes the steps of a predictive distribution. Linear steps keep it normal; a log or Box-Cox is undone on quantiles
  *  directly, and the mean by its own formula (log) or by quadrature; whatever couples periods after that, by seeded draws. */
-export function outlookOf(predictive: Predictive, steps: readonly UndoStep[], seed: number): Outlook {
+export function outlookOf(predictive: Predictive, steps: readonly UndoStep[], seed: number, draws = drawCount): Outlook {
   const size = predictive.mean.length, split = steps.findIndex((s) => !isLinear(s)), cut = split < 0 ? steps.length : split;
   const linear = steps.slice(0, cut), rest = steps.slice(cut);
   const mean = linear.reduce((m, step) => undoMean(step, m), predictive.mean);
@@ -44,7 +44,7 @@ export function outlookOf(predictive: Predictive, steps: readonly UndoStep[], se
     ? predictive.se.map((s, h) => linear.reduce((v, step) => (step.undo === "affine" ? v * Math.abs(step.times[h]) : v), s)) : diagonalRoots(covariance(), size);
   const { draw } = predictive;
   const modelled: Predictive = { mean, covariance, se, ...(draw ? { draw: (normal) => undoPath(linear, draw(normal)) } : {}) };
-  if (draw || rest.some((s) => s.undo === "difference")) return drawnOutlook(modelled, rest, seed);
+  if (draw || rest.some((s) => s.undo === "difference")) return drawnOutlook(modelled, rest, seed, draws);
   return normalOutlook(modelled, rest);
 }
 
@@ -81,18 +81,22 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
 }
 
 /** Distribution by equally likely paths. Point forecasts in closed form stay what they are where the rest is linear. */
-function drawnOutlook(predictive: Predictive, rest: readonly UndoStep[], seed: number): Outlook {
+function drawnOutlook(predictive: Predictive, rest: readonly UndoStep[], seed: number, draws: number): Outlook {
   const horizon = predictive.mean.length, factor = once(() => factorOf(predictive.covariance(), horizon));
   const paths = (count: number, from: number): Float64Array[] =>
     (predictive.draw ? drawPairs(predictive.draw, count, from) : drawNormal(predictive.mean, factor(), count, from)).map((path) => undoPath(rest, path));
-  return sampleOutlook(paths(drawCount, seed), predictive.se, paths, rest.length === 0 ? predictive.mean : undefined);
+  return sampleOutlook(paths(draws, seed), predictive.se, paths, rest.length === 0 ? predictive.mean : undefined);
 }
 
 /** Distribution that is known by sample paths in data units.
  *  @param mean  where it is known better than by the sample's own */
 export function sampleOutlook(sample: readonly Float64Array[], se: Float64Array, paths: Outlook["paths"], mean?: Float64Array): Outlook {
   const horizon = se.length;
-  const sorted = Array.from({ length: horizon }, (_, h) => Float64Array.from(sample, (path) => path[h]).sort());
+  const sorted = Array.from({ length: horizon }, (_, h) => {
+    const column = new Float64Array(sample.length);
+    for (let i = 0; i < column.length; i++) column[i] = sample[i][h];
+    return column.sort();
+  });
   const average = sorted.map((column) => column.reduce((a, b) => a + b, 0) / column.length);
   const sd = Float64Array.from(sorted, (column, h) => Math.sqrt(column.reduce((sum, x) => sum + (x - average[h]) ** 2, 0) / (column.length - 1)));
   const quantile = (p: number): Float64Array => Float64Array.from(sorted, (column) => quantileOf(column, p));
@@ -204,13 +208,14 @@ function drawNormal(mean: Float64Array, factor: Float64Array, count: number, see
 }
 
 function drawPairs(draw: (normal: () => number) => Float64Array, count: number, seed: number): Float64Array[] {
-  const normal = normals(seeded(seed)), paths: Float64Array[] = [];
+  const normal = normals(seeded(seed)), paths: Float64Array[] = [], used: number[] = [];
+  let at = 0;
+  const fresh = (): number => { const e = normal(); used[at++] = e; return e; }, mirrored = (): number => -used[at++];
   while (paths.length < count) {
-    const used: number[] = [];
-    paths.push(draw(() => { const e = normal(); used.push(e); return e; }));
-    if (paths.length === count) break;
-    let at = 0;
-    paths.push(draw(() => -used[at++]));
+    at = 0;
+    paths.push(draw(fresh));
+    at = 0;
+    if (paths.length < count) paths.push(draw(mirrored));
   }
   return paths;
 }

@@ -70,7 +70,11 @@ function smoothing(model: Rule, horizon: number): Predictive {
     return { mean, covariance: () => covariance, se: diagonalRoots(covariance, horizon) };
   }
   const sigma = Math.sqrt(sigma2);
-  const draw = (normal: () => number): Float64Array => innovationsPath(form, after, Float64Array.from({ length: horizon }, () => sigma * normal()));
+  const draw = (normal: () => number): Float64Array => {
+    const errors = new Float64Array(horizon);
+    for (let h = 0; h < horizon; h++) errors[h] = sigma * normal();
+    return innovationsPath(form, after, errors);
+  };
   // First-order: what an error of one standard deviation does to the path. Bands come from the paths themselves.
   const covariance = firstOrderCovariance(form, after, sigma, mean);
   return { mean, covariance: () => covariance, se: diagonalRoots(covariance, horizon), draw };

@@ -90,12 +90,13 @@ export function minusTwiceLogLikelihood(y: Float64Array, form: SmoothingForm, st
 /** A path of the model from its states on, driven by given errors (0 = the point forecasts of an additive model,
  *  and the usual point forecasts of a multiplicative one). */
 export function innovationsPath(form: SmoothingForm, from: SmoothingState, errors: ArrayLike<number>): Float64Array {
-  const states = new States(form, from);
-  return Float64Array.from(errors, (error) => {
+  const states = new States(form, from), path = new Float64Array(errors.length);
+  for (let h = 0; h < path.length; h++) {
     const f = states.ahead();
-    states.move(error);
-    return form.error === "multiplicative" ? f * (1 + error) : f + error;
-  });
+    states.move(errors[h]);
+    path[h] = form.error === "multiplicative" ? f * (1 + errors[h]) : f + errors[h];
+  }
+  return path;
 }
 
 /** The moving parts, kept in place: a class because every period moves all of them. */
