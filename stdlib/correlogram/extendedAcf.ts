@@ -41,6 +41,7 @@ export function extendedAcf(x: Series | ArrayLike<number>, maxAr = 5, maxMa = 8)
       beyond[k * (maxMa + 1) + j] = Math.abs(r) > 2 / Math.sqrt(n - k - j) ? 1 : 0;
     }
   }
+  if (table.some(Number.isNaN)) return unavailableTable(maxAr, maxMa, exactly);
   const suggests = triangle(beyond, maxAr, maxMa);
   return { status: "ok", maxAr, maxMa, values: table, beyond, suggests, sentence: sentenceOf("extended autocorrelations", "triangle", suggests) };
 }
@@ -61,9 +62,12 @@ export function smallestCanonical(x: Series | ArrayLike<number>, maxAr = 5, maxM
     table[m * (maxMa + 1) + j] = p;
     beyond[m * (maxMa + 1) + j] = p < 0.05 ? 1 : 0;
   }
+  if (table.some(Number.isNaN)) return unavailableTable(maxAr, maxMa, exactly);
   const suggests = rectangle(beyond, maxAr, maxMa);
   return { status: "ok", maxAr, maxMa, values: table, beyond, suggests, sentence: sentenceOf("smallest canonical correlations", "rectangle", suggests) };
 }
+
+const exactly = "some combination of neighbouring values is exact, which leaves no errors to correlate";
 
 function autoregression(z: Float64Array, order: number): Float64Array {
   const rows = z.length - order, X = new Float64Array(rows * order);
@@ -95,7 +99,7 @@ function smallestPair(z: Float64Array, m: number, j: number): { lambda: number; 
     xx[a * size + b] += z[t - j - 1 - a] * z[t - j - 1 - b];
     xy[a * size + b] += z[t - j - 1 - a] * z[t - b];
   }
-  if (choleskyInto(yy, size) >= 0 || choleskyInto(xx, size) >= 0) return { lambda: 0, combined: z };
+  if (choleskyInto(yy, size) >= 0 || choleskyInto(xx, size) >= 0) return { lambda: NaN, combined: z };
   // K = Lx^-1 (X'Y) Ly^-T has the canonical correlations as singular values: K'K their squares.
   const half = new Float64Array(size * size), k = new Float64Array(size * size), column = new Float64Array(size);
   for (let b = 0; b < size; b++) {

@@ -140,6 +140,7 @@ function sentenceOf(how: string, lambda: number, low: number, high: number, leve
     return `The spread depends least on the level at lambda ${lambda.toFixed(2)}, ${near}; the method gives no interval.${edge}`;
   }
   const share = `${Number((100 * level).toPrecision(4))}%`;
-  const holds = [[0, "a logarithm (0)"], [0.5, "a square root (0.5)"], [1, "no transformation (1)"]].filter(([v]) => Number(v) >= low && Number(v) <= high).map(([, w]) => w);
-  return `By likelihood lambda is ${lambda.toFixed(2)} (${share} interval ${low.toFixed(2)} to ${high.toFixed(2)})${holds.length === 0 ? "; none of logarithm, square root and no transformation lies inside" : `; ${holds.join(" and ")} ${holds.length === 1 ? "lies" : "lie"} inside`}. The interval supposes independent residuals.${edge}`;
+  const ends = Number.isNaN(low) || Number.isNaN(high) ? `; the likelihood is too flat for a ${share} interval` : ` (${share} interval ${low.toFixed(2)} to ${high.toFixed(2)})`;
+  const holds = Number.isNaN(low) || Number.isNaN(high) ? null : [[0, "a logarithm (0)"], [0.5, "a square root (0.5)"], [1, "no transformation (1)"]].filter(([v]) => Number(v) >= low && Number(v) <= high).map(([, w]) => w);
+  return `By likelihood lambda is ${lambda.toFixed(2)}${ends}${holds === null ? "" : holds.length === 0 ? "; none of logarithm, square root and no transformation lies inside" : `; ${holds.join(" and ")} ${holds.length === 1 ? "lies" : "lie"} inside`}. The interval supposes independent residuals.${edge}`;
 }

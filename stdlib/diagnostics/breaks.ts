@@ -71,7 +71,7 @@ export function largestBreak(x: Subject, trim = 0.15): LargestBreak {
   for (let i = 1; i < n; i++) {
     sum += values[kept[i - 1]] - centre;
     if (i < trim * n || i > (1 - trim) * n) continue;
-    const between = (sum * sum * n) / (i * (n - i)), wald = (n * between) / Math.max(all - between, Number.MIN_VALUE);
+    const between = (sum * sum * n) / (i * (n - i)), wald = (n * between) / Math.max(all - between, 1e-15 * all);
     path[kept[i]] = wald;
     if (wald > best) { best = wald; at = i; }
   }
@@ -91,6 +91,7 @@ export function largestBreak(x: Subject, trim = 0.15): LargestBreak {
 /** P(sup of the squared normalised Brownian bridge over [trim, 1 - trim] > c), one parameter; good in the upper tail (Estrella 2003). */
 export function supremumP(c: number, trim: number): number {
   if (c < 2) return 1; // the approximation is for the upper tail
+  if (c > 1400) return 0; // below the smallest double
   const front = Math.exp(0.5 * Math.log(c) - c / 2 - 0.5 * Math.log(2) - logGamma(0.5));
   return Math.min(1, Math.max(front * ((1 - 1 / c) * 2 * Math.log((1 - trim) / trim) + 2 / c), chiSquareUpper(c, 1)));
 }

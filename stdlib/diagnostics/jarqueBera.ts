@@ -15,8 +15,10 @@ export function jarqueBera(x: Subject): Test & { readonly skewness?: number; rea
   const nullHypothesis = "normally distributed", name = "Jarque-Bera";
   if (n < 4) return unavailable(nullHypothesis, n, `${n} observed values are too few for a kurtosis`, { name });
   const mean = seen.reduce((s, v) => s + v, 0) / n;
+  // In units of the largest deviation, so that a fourth power of 1e150 does not overflow.
+  const unit = seen.reduce((top, v) => Math.max(top, Math.abs(v - mean)), 0);
   let m2 = 0, m3 = 0, m4 = 0;
-  for (const v of seen) { const d = v - mean, d2 = d * d; m2 += d2; m3 += d2 * d; m4 += d2 * d2; }
+  for (const v of seen) { const d = (v - mean) / unit, d2 = d * d; m2 += d2; m3 += d2 * d; m4 += d2 * d2; }
   m2 /= n; m3 /= n; m4 /= n;
   if (!(m2 > 0) || seen.every((v) => v === seen[0])) return unavailable(nullHypothesis, n, `all ${n} values are the same`, { name });
   const skewness = m3 / m2 ** 1.5, kurtosis = m4 / (m2 * m2);
