@@ -94,7 +94,8 @@ function chartTree(part: ChartPart, key: string, context: CellContext, source: R
   const box = context.still
     ? { class: "chart-box", own: key, role: "img", "aria-label": part.alt }
     : { class: "chart-box", own: key, role: "application", "aria-roledescription": "chart", tabindex: 0, "aria-label": `${part.title}. ${part.alt} The arrow keys read its points.`, "data-chart": key, style: `min-height:${part.height}px` };
-  return h("figure", { class: "part part-chart", key: `chart ${key}` },
+  // Its place is kept while it is out of sight and the browser spares itself its layout.
+  return h("figure", { class: "part part-chart", key: `chart ${key}`, style: context.still ? null : `contain-intrinsic-height:auto ${part.height + 70}px` },
     h("figcaption", {}, h("span", { class: "chart-title" }, part.title), context.still ? null : chartMenu(key, context.asTable(key))),
     h("div", { class: "outlet", ...source }, h("div", box)),
     says ? h("p", { class: "chart-alt", "aria-hidden": "true" }, part.alt) : null,

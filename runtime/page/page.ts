@@ -50,7 +50,8 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   const state = pageState();
   const ui: PageUi = { canEdit: false, stripOpen: !matchMedia("(max-width: 640px)").matches, tables: new Set(), faults: new Map(), broken: null };
   const files = new Map<string, Extract<ToEngine, { to: "file" }>>();
-  const held = new Set<string>();
+  /** Cells that the reader stopped, with their source then: one that was edited since may run again. */
+  const held = new Map<string, string>();
   let text: Extract<ToPage, { to: "text" }> | null = null;
   let allow: boolean | null = null;
 
@@ -77,10 +78,12 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
     }
     hear(state, message);
     if (message.from === "cell") { settings.answered(message.cell); dog.reported(message.cell); }
-    if (message.from === "outline") { document.title = message.title; post({ page: "outline", version: message.version, title: message.title, problems: message.problems }); for (const id of held) if (!state.blocks.some((block) => block.block === "cell" && block.cell === id)) held.delete(id); }
+    if (message.from === "outline") { document.title = message.title; post({ page: "outline", version: message.version, title: message.title, problems: message.problems }); }
     if (message.from === "settled") { settings.settled(message.moved); post({ page: "settled", version: message.version, moved: message.moved }); sayLater(); stills.settled(); }
     states.note(message);
-    if (message.from === "settled") drawSoon(); else schedule();
+    if (message.from === "settled") drawSoon();
+    else if (message.from === "cell" && (message.cell.state === "working" || message.cell.state === "waiting")) scheduleLater();
+    else schedule();
   }
 
   let frame = 0;
@@ -93,9 +96,10 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
     cancelAnimationFrame(frame);
     draw();
   }
-  /** A moved control is shown moved with the engine's answer, which mostly comes within a frame; by itself only if that takes longer. */
+  /** For what is not worth a drawing of its own unless it lasts: a cell that has begun to work mostly ends within a few frames,
+   *  and a moved control is shown moved with the answer. */
   let waiting = 0;
-  function scheduleMoved(): void { if (waiting === 0) waiting = window.setTimeout(() => { waiting = 0; schedule(); }, 30); }
+  function scheduleLater(): void { if (waiting === 0) waiting = window.setTimeout(() => { waiting = 0; schedule(); }, 90); }
   function draw(): void {
     frame = 0; drawnAt = performance.now();
     clearTimeout(waiting); waiting = 0;
@@ -116,7 +120,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
     ui.broken = null; dog.fresh();
     if (allow !== null) engine.send({ to: "allowCode", allow });
     engine.send({ to: "width", width: figureWidth(article) });
-    for (const cell of held) engine.send({ to: "hold", cell });
+    for (const [cell, source] of held) if (text?.text.includes(source)) engine.send({ to: "hold", cell }); else held.delete(cell);
     for (const message of settings.again()) engine.send(message);
     if (text) engine.send({ to: "text", version: text.version, text: text.text });
   }
@@ -137,8 +141,8 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   }
 
   const actions = pageActions({
-    root, state, ui, settings, charts, post, schedule, scheduleMoved, announce, alone: parent === null,
-    stop(cell) { held.add(cell); engine.restart(); sayAllAgain(); schedule(); },
+    root, state, ui, settings, charts, post, schedule, scheduleLater, announce, alone: parent === null,
+    stop(cell) { const { from, to } = state.cells.get(cell) ?? { from: 0, to: 0 }; held.set(cell, text?.text.slice(from, to) ?? ""); engine.restart(); sayAllAgain(); schedule(); },
     startAgain() { engine.restart(); sayAllAgain(); schedule(); },
   });
   listen(root, actions);

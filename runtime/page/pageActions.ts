@@ -26,7 +26,7 @@ export interface PageUi {
 
 export interface PageHands {
   readonly root: HTMLElement; readonly state: PageState; readonly ui: PageUi; readonly settings: Settings; readonly charts: Charts;
-  post(message: FromPage): void; schedule(): void; scheduleMoved(): void; announce(words: string): void;
+  post(message: FromPage): void; schedule(): void; scheduleLater(): void; announce(words: string): void;
   readonly alone: boolean;
   stop(cell: string): void; startAgain(): void;
 }
@@ -35,14 +35,14 @@ export interface PageHands {
 const parentKeys = new Set(["s", "z", "y", "e", "b", "o", "p", "\\", "1", "2", "3", "/"]);
 
 export function pageActions(hands: PageHands): Actions & { reveal(position: number): void } {
-  const { root, state, ui, settings, charts, post, schedule, scheduleMoved, announce } = hands;
+  const { root, state, ui, settings, charts, post, schedule, scheduleLater, announce } = hands;
 
   const control = (name: string): ControlPart | null => controlOf([...state.cells.values()].find((cell) => cell.name === name));
   const windowOf = (name: string): { part: WindowPart; span: Span } | null => {
     const part = control(name);
     return part?.control === "window" ? { part, span: (settings.pending(name) as Span | undefined) ?? part.at } : null;
   };
-  const set = (name: string, value: unknown): void => { ui.faults.delete(name); settings.set(name, value); scheduleMoved(); };
+  const set = (name: string, value: unknown): void => { ui.faults.delete(name); settings.set(name, value); scheduleLater(); };
   const partAt = (key: string): Part | null => {
     const cut = key.lastIndexOf("/");
     return state.cells.get(key.slice(0, cut))?.show?.[Number(key.slice(cut + 1))] ?? null;

@@ -13,7 +13,7 @@ export function tableTree(part: TablePart, menu: Given): Tree {
   const right = part.columns.map((column, i) => (column.align ?? (part.rows.some((row) => typeof row[i] === "number") ? "right" : "left")) === "right");
   const marked = new Map((part.marked ?? []).map(({ row, word }) => [row, word]));
   const shown = part.rows.slice(0, mostRows);
-  return h("div", { class: "part part-table" },
+  return h("div", { class: "part part-table", style: `contain-intrinsic-height:auto ${Math.min(640, 60 + 29 * shown.length)}px` },
     h("div", { class: "table-box", tabindex: 0, role: "group", "aria-label": part.title ?? "table" },
       h("table", { class: "figures-table" },
         part.title ? h("caption", {}, part.title) : null,
