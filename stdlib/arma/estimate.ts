@@ -83,7 +83,7 @@ export function estimate(search: Search): Estimate {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
       const rival = best as Minimum;
-      if (first.value < rival.value + 3 && apart(first, rival)) keep(run(full(first, free, held), TOLERANCE, LATER));
+      if (first.value < rival.value + 3 && apart(first, rival)) keep(run(full(first, free, held), TOLERANCE, shape.count > 6 ? LATER : undefined));
     }
   }
   if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
@@ -94,11 +94,11 @@ export function estimate(search: Search): Estimate {
 /** Predicted gain in log-likelihood below which a search stops: far below the 1e-6 that anyone could notice. */
 const TOLERANCE = 1e-9;
 
-/** Most steps for a later start that looked promising: on a ridge between maxima more would not be noticed. */
+/** Most steps for a later start of a large model that looked promising: on a ridge between maxima more would not be noticed. */
 const LATER = 60;
 
 /** Steps given to a start before it is compared with the best so far. */
-const SCOUT = 6;
+const SCOUT = 8;
 
 /** Whether two points are more than a hundredth of a standard error apart, by the search's own curvature. */
 function apart(a: Minimum, b: Minimum): boolean {
@@ -251,8 +251,8 @@ function suspicious(shape: Shape, x: Float64Array, n: number): { plain: boolean;
   const near = parts.map(f => edge(f, x));
   const mixed = (i: number) => parts[i].lags.length > 0 && parts[i + 2].lags.length > 0;
   return {
-    plain: near[2] < 1.07 || (mixed(0) && (near[0] < 1.01 || pairStatistic(parts[0], parts[2], x, n) < 16)),
-    seasonal: near[3] < 1.03 || (mixed(1) && (near[1] < 1.01 || pairStatistic(parts[1], parts[3], x, n) < 16)),
+    plain: near[2] < 1.07 || (mixed(0) && (near[0] < 1.01 || pairStatistic(parts[0], parts[2], x, n) < 25)),
+    seasonal: near[3] < 1.03 || (mixed(1) && (near[1] < 1.01 || pairStatistic(parts[1], parts[3], x, n) < 25)),
   };
 }
 

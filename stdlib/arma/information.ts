@@ -94,25 +94,37 @@ function regressionCovariance(work: Work, data: Data): Float64Array | null {
 /** A B A with B the sum of squared scores of the single innovations (White 1982): right also when the variance is not constant. */
 function sandwich(work: Work, data: Data, x: Float64Array, free: Int32Array, covariance: Float64Array, size: number): Float64Array {
   const { shape, n, er, r, b, sigma2 } = work;
-  const k = free.length, m = size - k;
-  const fa = Float64Array.from(r), fe = Float64Array.from(er);
+  const k = free.length;
+  // a0 of the series is no longer needed, nor lambda: their places serve for the two filtered series.
+  const fa = work.a0[0], fe = work.lambda;
+  fa.set(r); fe.set(er);
   divideInto(fa, n, shape.ma.lags, b);
   divideInto(fe, n, shape.ma.lags, b);
   const ar = shape.ar.lags, ma = shape.ma.lags;
   const jac = productJacobian(shape, x, free);
-  const scores = Array.from({ length: size }, () => new Float64Array(n));
-  const add = (out: Float64Array, source: Float64Array, lag: number, c: number) => { for (let t = lag; t < n; t++) out[t] += c * source[t - lag]; };
-  for (let c = 0; c < k; c++) {
-    for (let i = 0; i < ar.length; i++) if (jac[i * k + c] !== 0) add(scores[c], fa, ar[i], jac[i * k + c]);
-    for (let i = 0; i < ma.length; i++) if (jac[(ar.length + i) * k + c] !== 0) add(scores[c], fe, ma[i], jac[(ar.length + i) * k + c]);
-  }
-  for (let j = 0; j < m; j++) scores[k + j].set(work.e[data.gaps + j + 1]);
-  for (const column of scores) for (let t = 0; t < n; t++) column[t] *= er[t] / sigma2;
   const meat = new Float64Array(size * size);
-  for (let a = 0; a < size; a++) for (let c = 0; c <= a; c++) meat[a * size + c] = dot(scores[a], scores[c], n);
+  const scores = Array.from({ length: size }, () => new Float64Array(Math.min(n, BLOCK)));
+  for (let start = 0; start < n; start += BLOCK) {
+    const length = Math.min(BLOCK, n - start);
+    const add = (out: Float64Array, source: Float64Array, lag: number, c: number) => { for (let t = Math.max(0, lag - start); t < length; t++) out[t] += c * source[start + t - lag]; };
+    for (let c = 0; c < size; c++) {
+      const out = scores[c];
+      out.fill(0);
+      if (c >= k) { const e = work.e[data.gaps + c - k + 1]; for (let t = 0; t < length; t++) out[t] = e[start + t]; }
+      else {
+        for (let i = 0; i < ar.length; i++) if (jac[i * k + c] !== 0) add(out, fa, ar[i], jac[i * k + c]);
+        for (let i = 0; i < ma.length; i++) if (jac[(ar.length + i) * k + c] !== 0) add(out, fe, ma[i], jac[(ar.length + i) * k + c]);
+      }
+      for (let t = 0; t < length; t++) out[t] *= er[start + t] / sigma2;
+    }
+    for (let a = 0; a < size; a++) for (let c = 0; c <= a; c++) meat[a * size + c] += dot(scores[a], scores[c], length);
+  }
   for (let a = 0; a < size; a++) for (let c = 0; c < a; c++) meat[c * size + a] = meat[a * size + c];
   return threefold(covariance, meat, size);
 }
+
+/** Rows of scores held at a time. */
+const BLOCK = 4096;
 
 function threefold(a: Float64Array, b: Float64Array, size: number): Float64Array {
   const half = new Float64Array(size * size), out = new Float64Array(size * size);

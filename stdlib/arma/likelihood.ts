@@ -46,7 +46,7 @@ export interface Work {
   readonly a0: Float64Array[]; readonly e: Float64Array[];
   readonly u: Float64Array; readonly v: Float64Array;
   /** Residual series, its innovations, lambda. */
-  readonly r: Float64Array; readonly er: Float64Array; readonly lambda: Float64Array; readonly delta: Float64Array;
+  readonly r: Float64Array; readonly er: Float64Array; readonly lambda: Float64Array; delta: Float64Array;
   readonly q: Float64Array; readonly qy: Float64Array; readonly chol: Float64Array;
   readonly beta: Float64Array;
   /** Dense lags 1..2 on both sides: the fused kernels serve. */
@@ -72,7 +72,7 @@ export function makeWork(shape: Shape, n: number, columns: number): Work {
     pre: makePresample(shape.ar.degree, shape.ma.degree), response: makeResponse(n, g),
     l: square(), d: square(), wk: square(), k: square(), s1: square(), omegaBar: new Float64Array(shape.memory ** 2),
     a0: Array.from({ length: columns + 1 }, big), e: Array.from({ length: columns + 1 }, big),
-    u: new Float64Array(g), v: new Float64Array(g), r: big(), er: big(), lambda: big(), delta: big(),
+    u: new Float64Array(g), v: new Float64Array(g), r: big(), er: big(), lambda: big(), delta: new Float64Array(Math.min(n, 4096)),
     q: new Float64Array(columns * columns), qy: new Float64Array(columns), chol: new Float64Array(columns * columns),
     beta: new Float64Array(columns),
     small: shape.ma.lags.length > 0 && dense(shape.ar.lags) && dense(shape.ma.lags), sums: new Float64Array(4), flat: 0, swept: false, sum: 0, logDet: 0, nEffective: n, f: Infinity, sigma2: NaN,
@@ -182,11 +182,12 @@ function constantInto(work: Work, c: number): void {
 
 /** e = a0 - V K V'a0: only the first values change where 1/theta dies out. */
 function correctInto(work: Work, e: Float64Array, a0: Float64Array): void {
-  const { n, g, u, v, delta, response, shape, b } = work;
+  const { n, g, u, v, response, shape, b } = work;
   e.set(a0);
   if (g === 0) return;
   const m = response.length;
   const reach = Math.min(n, g + m);
+  const delta = deltaOf(work, reach);
   for (let t = 0; t < reach; t++) delta[t] = a0[t];
   divideBackInto(delta, reach, shape.ma.lags, b);
   for (let i = 0; i < g; i++) v[i] = delta[i];
@@ -194,6 +195,12 @@ function correctInto(work: Work, e: Float64Array, a0: Float64Array): void {
   for (let t = 0; t < reach; t++) delta[t] = t < g ? u[t] : 0;
   divideInto(delta, reach, shape.ma.lags, b);
   for (let t = 0; t < reach; t++) e[t] -= delta[t];
+}
+
+/** Scratch of at least the length asked for. */
+function deltaOf(work: Work, length: number): Float64Array {
+  if (work.delta.length < length) work.delta = new Float64Array(Math.min(work.n, 2 * length));
+  return work.delta;
 }
 
 /** out = K x = W'(W x). */
@@ -328,7 +335,8 @@ function addOuter(work: Work, lambda: Float64Array, weight: number): void {
 
 /** Half the log determinant of the gaps' information C: tr(C^-1 dC) is a sum of quadratic forms of the columns of X C^(-T/2). */
 function addGaps(work: Work, data: Data): void {
-  const { n, shape, b, e, chol, delta } = work;
+  const { n, shape, b, e, chol } = work;
+  const delta = deltaOf(work, n);
   const m = data.columns.length;
   const series = new Float64Array(n), innovations = new Float64Array(n);
   const c = new Float64Array(data.gaps);
@@ -346,7 +354,7 @@ function addGaps(work: Work, data: Data): void {
       const x = data.columns[i], ex = e[i + 1], ci = c[i];
       for (let t = 0; t < n; t++) { series[t] += ci * x[t]; innovations[t] += ci * ex[t]; }
     }
-    delta.set(innovations);
+    for (let t = 0; t < n; t++) delta[t] = innovations[t];
     divideBackInto(delta, n, shape.ma.lags, b);
     addLagSums(work, series, innovations, delta, 0.5);
     addOuter(work, delta, 0.5);

@@ -47,10 +47,13 @@ export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   if (shape.memory >= length && shape.count > 0) throw new RangeError(`fit: the longest lag of the model is ${shape.memory}, and ${name} has only ${length - lost} periods${lost > 0 ? " after differencing" : ""}; take shorter lags or a longer sample`);
   const gaps: number[] = [];
   if (observed < length) for (let t = from; t < to; t++) if (Number.isNaN(levels.values[t])) gaps.push(t - from);
-  const raw = levels.values.slice(from, to);
+  // A copy only where something is subtracted below.
+  const plain = prepared.heldBeta.every(Number.isNaN) && !(prepared.hasMean && !Number.isNaN(prepared.heldMean));
+  const raw = plain ? levels.values.subarray(from, to) : levels.values.slice(from, to);
   const columnsAll = levelColumns(prepared, from, to);
   subtractHeld(prepared, raw, columnsAll);
-  const w = differencedBy(delta, gaps.length > 0 ? bridge(raw) : raw);
+  const whole = gaps.length > 0 ? bridge(raw) : raw;
+  const w = lost > 0 ? differencedBy(delta, whole) : whole;
   const clean = gaps.length > 0 ? cleanRows(raw, delta) : null;
   refuseConstant(w, clean, prepared, name, levels.values.subarray(from, to));
   const free = freeColumns(prepared);
@@ -65,12 +68,11 @@ export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   const columns = combined(kept.map(i => differenced[i]), basis);
   const y = reduced(w, kept.map(i => differenced[i]), ols, unit);
   const pulses = !filtered && gaps.length <= MANY_GAPS ? gaps.map(t => pulse(t, length, delta)) : [];
-  const data: Data = { n: y.length, y, columns: [...pulses, ...columns], gaps: pulses.length, constant: kept.length > 0 && free[kept[0]] < 0 && pulses.length === 0, sigma2: Number.isNaN(prepared.heldSigma2) ? null : prepared.heldSigma2 / unit ** 2 };
-  const meanLevels = integrated(delta, length);
-  const keptLevels = kept.map(i => free[i] < 0 ? meanLevels : columnsAll[free[i]]);
+  const data: Data = { n: y.length, y, columns: [...pulses, ...columns], gaps: pulses.length, constant: kept.length > 0 && free[kept[0]] < 0 && gaps.length === 0, sigma2: Number.isNaN(prepared.heldSigma2) ? null : prepared.heldSigma2 / unit ** 2 };
+  const keptLevels = kept.map(i => lost === 0 ? differenced[i] : free[i] < 0 ? integrated(delta, length) : columnsAll[free[i]]);
   return {
     prepared, from, to, gaps, n, data, bridged: y, unit, kept: kept.map(i => free[i]), aliased: aliased.map(i => free[i]), ols, basis,
-    levels: reduced(raw, keptLevels, ols, unit), levelColumns: combined(keptLevels, basis),
+    levels: lost === 0 && gaps.length === 0 ? y : reduced(raw, keptLevels, ols, unit), levelColumns: lost === 0 ? columns : combined(keptLevels, basis),
   };
 }
 

@@ -19,6 +19,8 @@ export function otherStarts(search: Search, found: Float64Array, where: { readon
   else if (ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags)) {
     out.push(...pairs(search, 1, maximise));
     if (ar.lags.length > 1 && ma.lags.length > 1) out.push(...pairs(search, 2, maximise));
+    // A small model's smaller one may itself sit on the wrong maximum: two fixed places besides.
+    if (shape.count <= 3) for (const c of [0.9, -0.9]) { const x = new Float64Array(shape.count); x[ar.from] = c; x[ma.from] = -0.7 * c; out.push(x); }
   } else if (ma.lags.length > 1 && free && full(ma.lags)) {
     const small = maximise(reduced(shape, 0, 1));
     if (small) out.push(padded(search, small.x, 0, 1, [], []));
@@ -73,11 +75,11 @@ function pairs(search: Search, order: 1 | 2, maximise: Maximise): Float64Array[]
   else for (const r of [0.7, 0.92]) for (let k = 1; k < 10; k++) places.push(place(small.innovations, [-2 * r * Math.cos(k * Math.PI / 10), r * r], [r * Math.cos(k * Math.PI / 10), r * Math.sin(k * Math.PI / 10)]));
   places.sort((a, b) => b.gain - a.gain);
   // Large models have many ridges and cost more a pass: fewer of them are walked.
-  const most = search.shape.count > 5 ? 1 : search.shape.count > 3 ? 2 : 3;
+  const most = search.shape.count > 6 ? 1 : search.shape.count > 4 ? 2 : search.shape.count > 3 ? 3 : 5;
   const chosen: Place[] = [];
   for (const p of places) {
     if (chosen.length === most) break;
-    if (chosen.every(c => Math.hypot(c.at[0] - p.at[0], c.at[1] - p.at[1]) > 0.35)) chosen.push(p);
+    if (chosen.every(c => Math.hypot(c.at[0] - p.at[0], c.at[1] - p.at[1]) > (search.shape.count > 3 ? 0.35 : 0.2))) chosen.push(p);
   }
   return chosen.map(p => {
     // phi's factor differs from theta's by the shift that the score asks for, no more than keeps it inside.

@@ -8,23 +8,26 @@ import { divideBackInto, lagDot } from "./kernels.ts";
 
 export interface Response {
   readonly n: number; readonly g: number;
-  readonly h: Float64Array;
+  /** Grows with the terms that are needed: most responses die out long before n. */
+  h: Float64Array;
   /** Terms of h kept: the rest is below 1e-18 in size, or n. */
   length: number;
   /** Terms needed for G: below 1e-10 a product adds nothing in double precision. */
   short: number;
   readonly gram: Float64Array;
-  readonly hBar: Float64Array;
+  hBar: Float64Array;
 }
 
 export function makeResponse(n: number, g: number): Response {
-  return { n, g, h: new Float64Array(n), length: 0, short: 0, gram: new Float64Array(g * g), hBar: new Float64Array(n) };
+  const first = Math.min(n, 4096);
+  return { n, g, h: new Float64Array(first), length: 0, short: 0, gram: new Float64Array(g * g), hBar: new Float64Array(first) };
 }
 
 /** Fills h and G (full, symmetric). Cost: (terms kept) * g. */
 export function responseInto(r: Response, lags: Int32Array, b: Float64Array): void {
-  const { n, h, g, gram } = r;
+  const { n, g, gram } = r;
   impulseInto(r, lags, b);
+  const h = r.h;
   const m = r.short;
   const base = n - g;
   if (m <= base + 1) {
@@ -50,13 +53,15 @@ export function responseInto(r: Response, lags: Int32Array, b: Float64Array): vo
 }
 
 function impulseInto(r: Response, lags: Int32Array, b: Float64Array): void {
-  const { n, h } = r;
+  const { n } = r;
+  let h = r.h;
   const count = lags.length;
   h[0] = 1;
   if (count === 0) { r.length = r.short = Math.min(1, n); return; }
   const q = lags[count - 1];
   let big = 0, medium = 0, t = 1;
   for (; t < n; t++) {
+    if (t === h.length) { const more = new Float64Array(Math.min(n, 4 * t)); more.set(h); r.h = h = more; }
     let sum = 0;
     for (let j = 0; j < count && lags[j] <= t; j++) sum -= b[j] * h[t - lags[j]];
     h[t] = sum;
@@ -67,14 +72,16 @@ function impulseInto(r: Response, lags: Int32Array, b: Float64Array): void {
   }
   r.length = Math.min(n, big + 1);
   r.short = Math.min(n, medium + 1);
-  for (let s = r.length; s < Math.min(n, t + 1); s++) h[s] = 0;
+  for (let s = r.length; s < Math.min(n, t + 1, h.length); s++) h[s] = 0;
 }
 
 /** Reverse mode: from `weights` (g x g symmetric, the derivative by G) adds the derivatives by the coefficients to `bBar`. */
 export function responseBack(r: Response, weights: Float64Array, lags: Int32Array, b: Float64Array, bBar: Float64Array): void {
-  const { n, g, h, hBar } = r;
+  const { n, g, h } = r;
   if (lags.length === 0) return;
   const m = r.short, base = n - g;
+  if (r.hBar.length < m) r.hBar = new Float64Array(h.length);
+  const hBar = r.hBar;
   for (let s = 0; s < m; s++) hBar[s] = 0;
   for (let d = 0; d < g; d++) {
     let weight = 0;
