@@ -22,6 +22,8 @@ export function intervalChart(title: string, alt: string, axis: string, rows: re
       encoding: { y: { field: "label", type: "nominal", sort: null, axis: null } },
       layer: [
         { data: { name: "rows" }, mark: { type: "rule", style: "guide" }, encoding: { x: { datum: 0, type: "quantitative" }, y: null } },
+        // All rows first: the order of the rows is that of the first layer that names them.
+        { data: { name: "rows" }, mark: { type: "point", opacity: 0, tooltip: false }, encoding: { x: { field: "value", type: "quantitative" } } },
         {
           data: { name: "intervals" }, mark: { type: "rule", style: "mark", strokeWidth: 2, yOffset: 7 },
           encoding: { x: { field: "low", type: "quantitative", title: axis, scale: { zero: true, nice: true } }, x2: { field: "high" } },

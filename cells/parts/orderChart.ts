@@ -20,8 +20,8 @@ export function orderChart(title: string, alt: string, table: OrderTiles): Chart
     spec: {
       data: { name: "tiles" },
       encoding: {
-        x: { field: "ma", type: "ordinal", sort: null, title: "MA order", axis: { labelAngle: 0, domain: false, ticks: false } },
-        y: { field: "ar", type: "ordinal", sort: null, title: "AR order", axis: { domain: false, ticks: false } },
+        x: { field: "ma", type: "ordinal", sort: "ascending", title: "MA order", axis: { labelAngle: 0, domain: false, ticks: false } },
+        y: { field: "ar", type: "ordinal", sort: "ascending", title: "AR order", axis: { domain: false, ticks: false } },
       },
       layer: [
         { transform: [{ filter: { field: "beyond", equal: false } }], mark: { type: "rect", style: "mark", stroke: null, strokeWidth: 0, fillOpacity: 0.16 } },
@@ -31,7 +31,7 @@ export function orderChart(title: string, alt: string, table: OrderTiles): Chart
     },
     data: {
       tiles: {
-        ar: places.map(place => String(place.ar)), ma: places.map(place => String(place.ma)), value: places.map(({ i }) => table.values[i]),
+        ar: places.map(place => place.ar), ma: places.map(place => place.ma), value: places.map(({ i }) => table.values[i]),
         beyond: places.map(({ i }) => table.beyond[i] === 1), shown: places.map(({ i }) => decimals(table.values[i], 2)),
         corner: places.map(({ ar, ma }) => suggests !== null && suggests.ar === ar && suggests.ma === ma),
       },

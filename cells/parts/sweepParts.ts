@@ -62,6 +62,8 @@ function chartOf(sweep: Swept, measure: string): readonly ChartPart[] {
     spec: {
       data: { name: "rows" },
       layer: [
+        // All values first: the order of the axis is that of the first layer that names them.
+        { mark: { type: "point", opacity: 0, tooltip: false }, encoding: { x, y } },
         { transform: [{ filter: { field: "present", equal: true } }], mark: { type: "rule", style: "limit" }, encoding: { x } },
         ...(numeric && across === "quantitative" ? [{ mark: { type: "line", style: "model" }, encoding: { x, y } }] : []),
         { transform: [{ filter: { field: "present", equal: false } }], mark: { type: "point", style: "mark", filled: true, size: 50, opacity: 1 }, encoding: { x, y, tooltip: tooltip(sweep.over, name) } },

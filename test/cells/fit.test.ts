@@ -42,12 +42,16 @@ describe("fit shows", () => {
     expect((await drawnCharts(parts))[0]).toContain("−1.00 (no interval)");
     expect(texts(parts)).toContain("A moving-average root lies on the unit circle.");
   });
-  test("held coefficients as held", () => {
+  test("held coefficients as held", async () => {
     const base = madeFit();
     const fitHeld = madeFit({ options: { ...base.options, hold: { theta: [-0.402] } }, se: { ...base.se, theta: Float64Array.of(NaN) } });
     expect(coefficientsOf(fitHeld)[0]).toMatchObject({ label: "MA lag 1", held: true });
     const chart = fit.show(fitHeld, show).find((p): p is ChartPart => p.part === "chart")!;
     expect(chart.alt).toContain("MA lag 1 held at −0.402");
+    // The held row has no interval, and still comes first.
+    const [svg] = await drawnCharts([chart]);
+    const height = (label: string): number => Number(new RegExp(`translate\\([^,]*,([-\\d.]+)\\)"[^>]*>${label}`).exec(svg)?.[1]);
+    expect(height("MA lag 1: ")).toBeLessThan(height("seasonal MA lag 12: "));
   });
   test("which observations were used, and how many the differences took", () => {
     expect(texts(fit.show(madeFit(), show))).toContain("It rests on 59 observations, 2019-02 to 2023-12; the differences used up the first 13 periods.");

@@ -36,6 +36,13 @@ describe("sweep", () => {
     expect(texts(parts)).toContain("holds hangs on order: true at 1 and 2 and false at 3. At the present order, 2, it is true.");
     await expect(drawnCharts(parts)).resolves.toHaveLength(1);
   });
+  test("keeps the order of words on the axis, wherever the present one stands", async () => {
+    const context = madeContext({ source: { measure: "m" }, control: control(["none", "short", "long"], "long"), recompute: async (_, value) => String(value).length });
+    const [svg] = await drawnCharts(sweep.show(await sweep.run({ over: "choice" } as never, context) as never, show));
+    const at = ["none", "short", "long"].map(word => svg.indexOf(`>${word}</text>`));
+    expect(at.every(place => place > 0)).toBe(true);
+    expect(at).toEqual([...at].sort((a, b) => a - b));
+  });
   test("keeps the values that worked when one fails, with the reason", async () => {
     const context = madeContext({ source: { measure: "m" }, control: control([1, 2, 3], 2), recompute: async (_, value) => { if (value === 3) throw new Error("too few observations"); return value; } });
     const result = await sweep.run({ over: "order" } as never, context) as { rows: readonly Record<string, unknown>[] };
