@@ -36,6 +36,7 @@ type ErrorMeasure = (typeof errors)[number];
 
 /** Models of a grid that go on to held-out origins, where it is ranked by errors. */
 const mostFromGrid = 12;
+const mostForecasts = 500_000;
 
 export const compareOptions: OptionTable = {
   series: { type: "series", sentence: "For a grid of orders: the series that every order is fitted to.", example: "steady" },
@@ -177,6 +178,7 @@ async function evaluated(models: readonly { readonly label: string; readonly mod
   const whole = data ?? first.steps[0]?.before ?? first;
   const horizon = options.horizon ?? usualHorizon(whole.every, whole.n);
   const origins = options.origins ?? usualOrigins(whole.n, horizon);
+  if (origins * horizon * models.length > mostForecasts) throw new OptionError("origins", `${origins} origins, ${horizon} periods ahead, of ${models.length} models are ${origins * horizon * models.length} forecasts, more than the ${mostForecasts} that are kept; ask for fewer origins or a shorter horizon`);
   const result = await rollingOrigins(models, {
     origins, horizon, rank, ...(training === undefined ? {} : { training }), ...(refit === undefined ? {} : { refit }), ...(window === undefined ? {} : { window }),
     ...(levels === undefined ? {} : { levels }), ...(loss === undefined ? {} : { loss }), ...(data === undefined ? {} : { data }),

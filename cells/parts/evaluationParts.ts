@@ -9,6 +9,7 @@ import { count, figure, listOf, percent, pText } from "./words.ts";
 type Model = Evaluation["models"][number];
 
 const mostPairs = 15;
+const mostPaths = 40;
 
 export function evaluationParts(result: Evaluation, every: string | null): readonly Part[] {
   const losers = result.models.filter(model => model.beatsNaive === "no" && model.label !== result.naive.label && !isNaive(model));
@@ -116,6 +117,8 @@ function horizonAlt(result: Evaluation, lines: readonly { readonly label: string
 /** The best model's forecasts from each origin; what happened is put together from all of them. */
 function pathsChart(result: Evaluation, every: string | null): Part {
   const own = result.forecasts.filter(one => one.label === result.best.label);
+  // More paths than these cover each other; all of them are in the data behind the picture.
+  const step = Math.ceil(own.length / mostPaths);
   const times = new Map<string, number>();
   for (const one of own) one.times.forEach((time, i) => { times.set(time, one.actual[i]); });
   const ms = (time: string): number => milliseconds(time, every, 1)[0];
@@ -124,10 +127,10 @@ function pathsChart(result: Evaluation, every: string | null): Part {
   const worst = errors.length > 0 ? ` The largest misses were from ${errors[0].origin}, ${figure(errors[0].size)}${result.unit ? ` ${result.unit}` : ""} on average.` : "";
   const chart = originsChart({
     title: `Forecasts of ${result.best.label} from each origin, and what happened`,
-    alt: `From ${result.origins[0]} to ${result.origins[result.origins.length - 1]}, ${count(own.length, "path")} of forecasts beside the observed values.${worst}`,
+    alt: `${step > 1 ? `One origin in ${step} is drawn. ` : ""}From ${result.origins[0]} to ${result.origins[result.origins.length - 1]}, ${count(own.length, "path")} of forecasts beside the observed values.${worst}`,
     axis: result.unit ? `${result.name} (${result.unit})` : result.name, dated: every !== null,
     actual: { time: actual.map(one => one.at), value: actual.map(one => one.value) },
-    paths: own.map(one => ({ origin: one.origin, time: one.times.map(ms), value: one.median })),
+    paths: own.filter((_, i) => (own.length - 1 - i) % step === 0).map(one => ({ origin: one.origin, time: one.times.map(ms), value: one.median })),
   });
   return { ...chart, full: { forecasts: allForecasts(result.forecasts) } };
 }
