@@ -39,6 +39,8 @@ export interface RankedModel extends Score {
   readonly model: Forecaster;
   /** The fit, where the model is one. */
   readonly fit?: Fit;
+  /** Criteria of that fit to its whole sample: of different data where the steps differ. */
+  readonly aic?: number; readonly aicc?: number; readonly bic?: number;
   /** p-value and membership of the model confidence set. */
   readonly setP: number; readonly inSet: boolean;
   /** Against the better naive rule: "yes" = better and not by chance, "no" = not better, "not shown" = better by what chance may do. */
@@ -112,7 +114,7 @@ export function summarise(given: readonly Labelled[], rolled: readonly Rolled[],
     const model = given.find((g) => g.label === even[i].label)?.model ?? given[0].model, score = overall[i];
     const mine = key(i), before = sorted.filter((s) => key(s.i) < mine - 1e-12 * Math.abs(mine)).length;
     const { beatsNaive, sentence } = naiveVerdict(score, bestNaive, overall, rank, bestNaive >= 0 && bestNaive !== i ? test(i, bestNaive) : null);
-    return { ...score, rank: before + 1, model, ...(isRule(model) ? {} : { fit: model }), setP: set.models[k].p, inSet: set.models[k].inside, beatsNaive, sentence };
+    return { ...score, rank: before + 1, model, ...(isRule(model) ? {} : { fit: model, aic: model.aic, aicc: model.aicc, bic: model.bic }), setP: set.models[k].p, inSet: set.models[k].inside, beatsNaive, sentence };
   });
   const against = pairs(asked.concat(bestNaive >= 0 && !asked.includes(bestNaive) ? [bestNaive] : [])).flatMap(([i, j]) => [
     ...Array.from({ length: horizon }, (_, h) => againstAt(even[i].label, even[j].label, losses[i], losses[j], h, horizon, common)), test(i, j)]);

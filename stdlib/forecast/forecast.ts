@@ -55,7 +55,7 @@ function passingOf(threshold: ForecastOptions["threshold"], outlook: Outlook, pa
 function heldOutOf(model: Forecaster, base: Series, data?: Series): Series | null {
   // A window that cut the data before the steps left what came after it beside them.
   if (data === undefined && base.later !== undefined) return { ...base.later, name: base.name, unit: base.unit };
-  const whole = baseOf(reachOf(model, data)), later = lastIndex(base) + 1 - firstIndex(whole);
+  const whole = data && data.every === base.every ? data : baseOf(reachOf(model, data)), later = lastIndex(base) + 1 - firstIndex(whole);
   if (later < 0 || later >= whole.n) return null;
   return makeSeries({ name: base.name, unit: base.unit, every: base.every, start: whole.times[later], values: whole.values.slice(later), times: whole.times.slice(later) });
 }

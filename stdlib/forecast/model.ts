@@ -64,7 +64,7 @@ export interface Forecast {
   readonly times: readonly string[];
   /** Data units. */
   readonly mean: Float64Array; readonly median: Float64Array;
-  /** Standard error on the scale before differencing (of the logs, say). */
+  /** Standard error on the scale before differencing, on which errors are normal: of the logs after a log, of the data where no step is a log or Box-Cox. */
   readonly se: Float64Array;
   readonly bands: readonly Band[];
   readonly totals: readonly Total[];

@@ -188,3 +188,12 @@ describe("the long-run shape", () => {
     expect(forecast(mean, { horizon: 400 }).mean[399]).toBeCloseTo(mean.mean, 6);
   });
 });
+
+describe("held-out data", () => {
+  it("come from a longer version of the data where the sample was cut before the steps", () => {
+    const s = airlineSeries(), early = makeSeries({ name: s.name, every: s.every, start: s.start, values: s.values.slice(0, 132) });
+    const model = fit({ series: applySteps(early, [{ step: "log" }, { step: "difference", lag: 1 }, { step: "difference", lag: 12 }]), ma: 1, season: { ma: 1 } });
+    expect(forecast(model, { horizon: 12 }).heldOut).toBe(null);
+    expect([...forecast(model, { horizon: 12, data: s }).heldOut!.values]).toEqual(Array.from(s.values.subarray(132)));
+  });
+});
