@@ -1,7 +1,7 @@
 // The kind that asks what hangs on a control: it recomputes numbers for each of the control's values, off to the side.
 
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
-import { sweepParts } from "./parts/sweepParts.ts";
+import { printed, sweepParts } from "./parts/sweepParts.ts";
 
 export interface SweepCell {
   /** A control's name. */
@@ -107,12 +107,6 @@ function whatIs(value: unknown): string {
   if (value === null || value === undefined) return "nothing";
   if (Array.isArray(value) || ArrayBuffer.isView(value)) return "a list";
   return typeof value === "object" ? "an object" : `a ${typeof value}`;
-}
-
-/** A control's value in a sentence; a window as its two ends. */
-export function printed(value: unknown): string {
-  if (typeof value === "object" && value !== null && "from" in value && "to" in value) return `${String(value.from)} to ${String(value.to)}`;
-  return String(value);
 }
 
 function same(a: unknown, b: unknown): boolean {

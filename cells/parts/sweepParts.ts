@@ -103,7 +103,8 @@ function shown(value: unknown): string {
   return String(value);
 }
 
-function printed(value: unknown): string {
+/** A control's value in a sentence; a window as its two ends. */
+export function printed(value: unknown): string {
   if (typeof value === "object" && value !== null && "from" in value && "to" in value) return `${String(value.from)} to ${String(value.to)}`;
   return String(value);
 }
