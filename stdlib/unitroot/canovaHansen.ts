@@ -73,12 +73,17 @@ function seasonalScores(values: Float64Array, length: number): Float64Array | nu
 /** n^-2 sum of F_t' Omega^-1 F_t, F_t the running sums of the scores. */
 function accumulated(scores: Float64Array, n: number, df: number, bandwidth: number): number {
   const omega = new Float64Array(df * df);
-  for (let lag = 0; lag <= bandwidth; lag++) {
-    const weight = (1 - lag / (bandwidth + 1)) / n;
-    for (let t = lag; t < n; t++) for (let a = 0; a < df; a++) for (let b = 0; b < df; b++) {
-      const product = weight * scores[t * df + a] * scores[(t - lag) * df + b];
-      omega[a * df + b] += product;
-      if (lag > 0) omega[b * df + a] += product;
+  const past = new Float64Array(df);
+  for (let t = 0; t < n; t++) {
+    // The weighted sum of the scores before: one outer product then does for all lags.
+    past.fill(0);
+    for (let lag = 1; lag <= Math.min(bandwidth, t); lag++) {
+      const weight = 1 - lag / (bandwidth + 1);
+      for (let a = 0; a < df; a++) past[a] += weight * scores[(t - lag) * df + a];
+    }
+    for (let a = 0; a < df; a++) for (let b = 0; b <= a; b++) {
+      const u = scores[t * df + a], v = scores[t * df + b];
+      omega[a * df + b] += (u * v + u * past[b] + past[a] * v) / n;
     }
   }
   if (choleskyInto(omega, df) >= 0) return NaN;
