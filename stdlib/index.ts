@@ -37,6 +37,7 @@ export { fit, type FitHow } from "./arma/fit.ts";
 export { fitAt } from "./arma/fitAt.ts";
 export { filterWith } from "./arma/filterWith.ts";
 export { modelName } from "./arma/modelName.ts";
+export { warmUp } from "./arma/warmUp.ts";
 export { criteria as fitCriteria } from "./arma/report.ts";
 export { predict, type Prediction } from "./arma/predict.ts";
 export { interpolate, type Interpolation } from "./arma/interpolate.ts";

@@ -40,13 +40,16 @@ export function filterEvaluate(numbers: Numbers, work: Work): Evaluate {
     choleskySolveInto(work.chol, m, beta);
     work.beta.set(beta);
     work.er.fill(0);
+    for (let j = 0; j < m; j++) work.e[j + 1].fill(0);
     for (let t = delta.length; t < length; t++) {
       const f = filtered.f[t];
       if (Number.isNaN(f)) continue;
       let v = filtered.v[0][t];
       for (let j = 0; j < m; j++) v -= beta[j] * filtered.v[j + 1][t];
       squares += v * v / f;
-      work.er[t - delta.length] = v / Math.sqrt(f);
+      const by = 1 / Math.sqrt(f);
+      work.er[t - delta.length] = v * by;
+      for (let j = 0; j < m; j++) work.e[j + 1][t - delta.length] = filtered.v[j + 1][t] * by;
     }
     const free = data.sigma2 === null;
     work.sum = squares;

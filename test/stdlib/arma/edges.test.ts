@@ -239,3 +239,13 @@ describe("the request", () => {
     expect(Math.abs(found.seasonalPhi[0] - 0.6)).toBeLessThan(4 * found.se.seasonalPhi[0]);
   });
 });
+
+describe("many gaps", () => {
+  it("robust standard errors are there too, near the usual ones", () => {
+    const long = simulate({ phi: [0.7], theta: [0.4], mean: 2 }, 3000, 13).values;
+    const found = fit({ series: series(long.map((v, t) => t % 11 === 4 ? NaN : v)), ar: 1, ma: 1 });
+    expect(found.notes.map(n => n.code)).toContain("gaps");
+    expect(Math.abs(found.seRobust.mean / found.se.mean - 1)).toBeLessThan(0.15);
+    expect(Math.abs(found.seRobust.phi[0] / found.se.phi[0] - 1)).toBeLessThan(0.25);
+  });
+});
