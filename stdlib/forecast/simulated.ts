@@ -15,8 +15,14 @@ import { isRule, observedPositions } from "./rules.ts";
 import { innovationsPath } from "./smoothing/innovations.ts";
 import { undoOf, undoPath } from "./undo.ts";
 
-/** Sets of parameters, and paths in all. */
-const parameterSets = 100, pathCount = 4000;
+/** Paths in all. */
+const pathCount = 4000;
+
+/** Sets of parameters: 100 for a few years of months; fewer where each is dear, since a long series leaves its parameters less uncertain. */
+function setsFor({ values, n }: Series): number {
+  const gaps = values.some((v) => Number.isNaN(v));
+  return Math.round(Math.min(100, Math.max(30, (gaps ? 6000 : 20_000) / n)));
+}
 
 type PathMaker = (random: () => number) => Float64Array;
 
@@ -46,7 +52,7 @@ function pathMaker(model: Forecaster, horizon: number, regressors: Readonly<Reco
 }
 
 function fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): { readonly maker: PathMaker; readonly assumption: string } {
-  const undo = undoOf(fit.series, keptSteps(fit), horizon), boots = bootstrapFits(fit, parameterSets, seed);
+  const undo = undoOf(fit.series, keptSteps(fit), horizon), asked = setsFor(fit.series), boots = bootstrapFits(fit, asked, seed);
   const sets = boots.fits.map((boot) => {
     const here = refit(boot, fit.series, "held") as Fit;
     return { mean: fitPredictive(here, horizon, undo.times, regressors).mean, psi: psiOfLevels(boot, horizon) };
@@ -62,7 +68,7 @@ function fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string,
     }
     return undoPath(undo.steps, path);
   };
-  const lost = boots.failed > 0 ? ` (${boots.failed} of ${parameterSets} sets could not be estimated and were left out)` : "";
+  const lost = boots.failed > 0 ? ` (${boots.failed} of ${asked} sets could not be estimated and were left out)` : "";
   return { maker, assumption: `Bands: from ${pathCount} simulated paths with ${sets.length} sets of parameters, estimated again on series simulated from the model${lost}, and shocks drawn from its residuals${fit.phi.length + fit.seasonalPhi.length > 0 ? "; autoregressive coefficients are corrected for coming out too small in short samples" : ""}. They take in that the parameters are estimates and that shocks need not be normal; the orders count as known.` };
 }
 
