@@ -1,5 +1,5 @@
 import { csvParseRows } from "d3-dsv";
-import fc from "fast-check";
+import * as fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import type { ChartPart } from "../../../cells/parts/part.ts";
 import { chartCsv, csv, rowsOf, timeFields, timeTexts } from "../../../runtime/page/chartData.ts";
