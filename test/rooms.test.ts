@@ -32,9 +32,15 @@ function filesIn(folder: string): string[] {
   });
 }
 
-function importsOf(file: string): string[] {
-  const text = readFileSync(file, "utf8").replace(/\/\*[\s\S]*?\*\//g, "");
-  return [...text.matchAll(/^\s*(?:import|export)\b[^;"'`]*?(?:from\s*)?"([^"]+)"|\bimport\("([^"]+)"\)/gm)].map((m) => m[1] ?? m[2]);
+/** What an import or re-export line names between its keyword and its source. */
+const named = String.raw`(?:\{[^}]*\}|\*(?:\s+as\s+\w+)?|\w+)(?:\s*,\s*\{[^}]*\})?\s*from\s*`;
+
+/** The sources of a file's imports; of those alone that stand when the program runs, without the types. */
+function importsOf(file: string, only: "all" | "values" = "all"): string[] {
+  const text = readFileSync(file, "utf8");
+  const type = only === "all" ? String.raw`(?:type\s+)?` : String.raw`(?!type\s)`;
+  const lines = new RegExp(String.raw`^(?:import|export)\s+${type}(?:${named})?"([^"]+)"`, "gm");
+  return [...text.matchAll(lines), ...text.matchAll(/\bimport\("([^"]+)"\)/g)].map((match) => match[1]);
 }
 
 const source = ["stdlib", "cells", "runtime"].flatMap((room) => filesIn(join(top, room)));
@@ -69,7 +75,7 @@ describe("rooms", () => {
     for (const [file, imports] of graph) {
       const row = rowOf(file);
       for (const name of imports.filter((n) => !n.startsWith("."))) {
-        const doors = [...(row?.doors ?? [])].filter(([pattern]) => name === pattern || name.startsWith(`${pattern}/`) || (pattern.endsWith("*") && name.startsWith(pattern.slice(0, -1))));
+        const doors = [...(row?.doors ?? [])].filter(([pattern]) => name === pattern || name.startsWith(`${pattern}/`) || (/[*:]$/.test(pattern) && name.startsWith(pattern.replace("*", ""))));
         const path = relative(top, file);
         if (!doors.some(([, files]) => files.some((door) => door === "anywhere" || path.endsWith(`/${door}`) || path.startsWith(`${row?.room}/${door}`)))) wrong.push(`${path} -> ${name}`);
       }
@@ -83,17 +89,10 @@ describe("rooms", () => {
     const visit = (file: string, trail: readonly string[]): void => {
       if (trail.includes(file)) { circles.push([...trail.slice(trail.indexOf(file)), file].map((f) => relative(top, f)).join(" -> ")); return; }
       if (done.has(file)) return;
-      for (const name of valueImports(file)) visit(resolve(dirname(file), name), [...trail, file]);
+      for (const name of importsOf(file, "values").filter((each) => /^\..*\.ts$/.test(each))) visit(resolve(dirname(file), name), [...trail, file]);
       done.add(file);
     };
     for (const file of source) visit(file, []);
     expect(circles).toEqual([]);
   });
 });
-
-/** Imports that stand when the program runs: a type that looks back is no circle. */
-function valueImports(file: string): string[] {
-  let text: string;
-  try { text = readFileSync(file, "utf8"); } catch { return []; }
-  return [...text.matchAll(/^\s*(?:import|export)\s+(?!type\b)[^;"'`]*?from\s*"(\.[^"]+)"/gm)].map((m) => m[1]);
-}
