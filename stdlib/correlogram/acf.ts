@@ -16,7 +16,7 @@ export function acf(x: Series | ArrayLike<number>, lags: number): Float64Array {
 /** Sample cross-correlations: index k is the correlation of x at t with y at t + k, k = 0..lags (x leads y by k).
  *  For y leading x, exchange them. Divisor n, each about its own mean; complete pairs where there are gaps.
  *  @throws RangeError where the lengths differ or lags is out of range
- *  @example ccf([1, 2, 3, 5], [0, 1, 2, 3], 1)[1] // about 0.17 */
+ *  @example ccf([1, 2, 3, 5], [0, 1, 2, 3], 1)[1] // 0.132 */
 export function ccf(x: Series | ArrayLike<number>, y: Series | ArrayLike<number>, lags: number): Float64Array {
   const a = valuesOf(x), b = valuesOf(y);
   if (a.length !== b.length) throw new RangeError(`ccf: the first series has ${a.length} values and the second ${b.length}: cut both to the same window`);

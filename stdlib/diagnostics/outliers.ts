@@ -38,7 +38,7 @@ export interface Outliers {
 }
 
 export interface OutlierOptions {
-  /** |t| to pass; default the normal quantile at 1 - 0.025/n, at least 3: about one false find in twenty clean series. */
+  /** |t| to pass; default the normal quantile at 1 - 0.0125/n, at least 3: a false find in about one clean series of fifteen. */
   readonly critical?: number | null;
   /** Types to look for; default all four. */
   readonly types?: readonly OutlierType[];
@@ -63,7 +63,7 @@ export function outliers(fit: Fit, options: OutlierOptions = {}): Outliers {
   const { types = ["additive", "levelShift", "temporaryChange", "innovational"], decay = 0.7 } = options;
   if (!(decay > 0 && decay < 1)) throw new RangeError(`outliers: decay is ${decay}, expected a share between 0 and 1`);
   const seen = observedOf(fit.residuals.values), n = fit.residuals.n;
-  const critical = options.critical ?? Math.max(3, normalQuantile(1 - 0.025 / Math.max(n, 1)));
+  const critical = options.critical ?? Math.max(3, normalQuantile(1 - 0.0125 / Math.max(n, 1)));
   if (seen.length < 12 || !(robustSigma(seen) > 0)) {
     return { found: [], critical, sigma: NaN, status: "unavailable", sentence: `The data cannot answer: ${seen.length < 12 ? `${seen.length} residuals are too few to tell outliers from the rest` : "more than half of the residuals are the same"}.` };
   }

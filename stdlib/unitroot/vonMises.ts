@@ -4,7 +4,7 @@
  *  By inverting the characteristic function (z / sin z)^(df/2), z = sqrt(2iu) (Gil-Pelaez 1951), about 1e-8 absolute;
  *  smaller probabilities are given as 1e-8.
  *  @param df  whole number >= 1
- *  @example vonMisesUpper(0.463, 1) // 0.0500 (Kwiatkowski et al. 1992, table 1) */
+ *  @example vonMisesUpper(0.46136, 1) // 0.0500 (MacNeill 1978; Kwiatkowski et al. 1992 print 0.463) */
 export function vonMisesUpper(x: number, df: number): number {
   if (!(x > 0)) return Number.isNaN(x) ? NaN : 1;
   // With u = v^2 the integrand is |phi| sin(arg phi - v^2 x) / v; |phi| falls like exp(-v df / 2).
