@@ -38,6 +38,7 @@ export function filterLevels(model: LevelModel, series: readonly Float64Array[])
   const p = new Float64Array(size * size);
   const state = series.map(x => startState(model, x, p, x === y));
   const v = series.map(() => new Float64Array(n).fill(NaN)), f = new Float64Array(n).fill(NaN);
+  const sparse = { arLags: lagsOf(a), maLags: lagsOf(b), a, b };
   const gain = new Float64Array(size), row = new Float64Array(size + 1);
   let logDet = 0, count = 0, settled = false, last = NaN;
   let reach = model.known ? Math.max(model.g, model.q) : size;
@@ -55,6 +56,17 @@ export function filterLevels(model: LevelModel, series: readonly Float64Array[])
       settled = moved < 1e-15 * variance && Math.abs(variance - last) < 1e-15 * variance;
       last = variance;
     }
+    if (settled && last - 1 < 1e-14 && t >= lost + size && model.known) {
+      // Nothing of the past is unknown any more: the prediction errors are those of the plain recursion, up to the next gap.
+      let end = t;
+      while (end < n && !Number.isNaN(y[end])) end++;
+      for (let i = 0; i < series.length; i++) recurInto(v[i], series[i], t, end, sparse);
+      for (let i = 0; i < series.length; i++) rebuildInto(state[i], series[i], v[i], end, sparse, size);
+      f.fill(1, t, end);
+      count += end - t;
+      t = end - 1;
+      continue;
+    }
     f[t] = last;
     for (let i = 0; i < state.length; i++) {
       const u = state[i], error = series[i][t] - (size > 0 ? u[0] : 0);
@@ -66,6 +78,33 @@ export function filterLevels(model: LevelModel, series: readonly Float64Array[])
     count++;
   }
   return { v, f, state, p, size, logDet, count };
+}
+
+interface Sparse { readonly arLags: Int32Array; readonly maLags: Int32Array; readonly a: Float64Array; readonly b: Float64Array }
+
+function lagsOf(c: Float64Array): Int32Array { return Int32Array.from([...c.keys()].filter(lag => lag > 0 && c[lag] !== 0)); }
+
+/** v_t = y_t - sum A_i y_{t-i} - sum b_j v_{t-j} over from..to. */
+function recurInto(v: Float64Array, y: Float64Array, from: number, to: number, { arLags, maLags, a, b }: Sparse): void {
+  for (let t = from; t < to; t++) v[t] = y[t];
+  for (const lag of arLags) { const c = a[lag]; for (let t = from; t < to; t++) v[t] -= c * y[t - lag]; }
+  if (maLags.length === 1) { const lag = maLags[0], c = b[lag]; for (let t = from; t < to; t++) v[t] -= c * v[t - lag]; return; }
+  if (maLags.length === 0) return;
+  for (let t = from; t < to; t++) {
+    let sum = v[t];
+    for (let j = 0; j < maLags.length; j++) sum -= b[maLags[j]] * v[t - maLags[j]];
+    v[t] = sum;
+  }
+}
+
+/** The state before time `end` from the last values and errors. */
+function rebuildInto(u: Float64Array, y: Float64Array, v: Float64Array, end: number, { arLags, maLags, a, b }: Sparse, size: number): void {
+  for (let k = 0; k < size; k++) {
+    let sum = 0;
+    for (const lag of arLags) if (lag > k) sum += a[lag] * y[end + k - lag];
+    for (const lag of maLags) if (lag > k) sum += b[lag] * v[end + k - lag];
+    u[k] = sum;
+  }
 }
 
 /** u_k <- u_{k+1} + A_{k+1} value + gain_k scaledError. */

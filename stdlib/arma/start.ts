@@ -6,7 +6,7 @@ import type { Product, Shape } from "./shape.ts";
 import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
 
 /** At most this many of the last observations are used: a start need not be better than the first steps that follow. */
-const STRETCH = 1200;
+const STRETCH = 800;
 
 /** Coefficients in the order phi, Phi, theta, Theta, inside the region.
  *  A long autoregression (Levinson) estimates the innovations; the second regression is on lags of both.
