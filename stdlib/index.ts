@@ -64,7 +64,8 @@ export { archLM, mcleodLi } from "./diagnostics/changingVariance.ts";
 export { durbinWatson } from "./diagnostics/durbinWatson.ts";
 export { cumulativePeriodogram, type CumulativePeriodogram } from "./diagnostics/cumulativePeriodogram.ts";
 export { cusum, largestBreak, type Cusum, type LargestBreak } from "./diagnostics/breaks.ts";
-export { outliers, type Outlier, type OutlierOptions, type Outliers, type OutlierType } from "./diagnostics/outliers.ts";
+export { outliers, type Outlier, type OutlierOptions, type Outliers } from "./diagnostics/outliers.ts";
+export { type OutlierType } from "./diagnostics/outlierPattern.ts";
 export { quantiles, type Quantiles } from "./diagnostics/qq.ts";
 export { diagnostics, type Diagnostics, type DiagnosticsOptions } from "./diagnostics/diagnostics.ts";
 // evaluation

@@ -1,15 +1,13 @@
 // Search for outliers of four types in the residuals of a fit, and the regressor that would take each one out.
 
-import { expandedPolynomials } from "../arma/coefficients.ts";
 import { fit as estimate } from "../arma/fit.ts";
 import type { Fit } from "../arma/model.ts";
-import { differencePolynomial, undifferenced } from "../arma/prepare.ts";
 import { normalQuantile } from "../distributions/normal.ts";
 import type { Intervention } from "../forecast/interventions.ts";
 import { leastSquares } from "../linear/leastSquares.ts";
+import type { OutlierType } from "./outlierPattern.ts";
+import { patternOf, robustSigma } from "./outlierPattern.ts";
 import { observedOf } from "./subject.ts";
-
-export type OutlierType = "additive" | "innovational" | "levelShift" | "temporaryChange";
 
 export interface Outlier {
   readonly type: OutlierType;
@@ -158,31 +156,6 @@ function patternsOf(types: readonly OutlierType[], fit: Fit, decay: number): Rea
 
 interface Candidate { readonly type: OutlierType; readonly index: number; readonly size: number; readonly t: number }
 
-/** Response of the residuals to a unit outlier, lags 0..n-1: pi(B), pi(B)/(1 - B), pi(B)/(1 - decay B), or 1 alone.
- *  pi(B) is of the scale before the differences: (1 - delta(B)) phi(B) / theta(B). */
-function patternOf(type: OutlierType, fit: Fit, decay: number, n: number): Float64Array {
-  const out = new Float64Array(n);
-  if (type === "innovational") { out[0] = 1; return out; }
-  const { phi, theta } = expandedPolynomials(fit);
-  const left = multiply([1, ...phi.map((v) => -v)], [1, ...differencePolynomial(undifferenced(fit.series).differences).map((v) => -v)]);
-  const keep = type === "additive" ? 0 : type === "levelShift" ? 1 : decay;
-  for (let j = 0; j < n; j++) {
-    let pi = left[j] ?? 0;
-    // First divide by theta, then by 1 - keep B: both as recursions on what is already there.
-    for (let i = 1; i <= Math.min(j, theta.length); i++) if (theta[i - 1] !== 0) pi -= theta[i - 1] * out[j - i];
-    out[j] = pi;
-  }
-  if (keep > 0) for (let j = 1; j < n; j++) out[j] += keep * out[j - 1];
-  for (let j = n - 1; j > 0 && Math.abs(out[j]) < 1e-14; j--) out[j] = 0;
-  return out;
-}
-
-function multiply(a: readonly number[], b: readonly number[]): number[] {
-  const out = Array.from({ length: a.length + b.length - 1 }, () => 0);
-  a.forEach((u, i) => b.forEach((v, j) => { out[i + j] += u * v; }));
-  return out;
-}
-
 /** The largest |t| over types and times not yet picked. */
 function strongest(e: Float64Array, patterns: ReadonlyMap<OutlierType, Float64Array>, sigma: number, picked: readonly Candidate[]): Candidate | null {
   let best: Candidate | null = null;
@@ -234,17 +207,6 @@ function lastNonZero(x: Float64Array): number {
   let j = x.length - 1;
   while (j > 0 && x[j] === 0) j--;
   return j;
-}
-
-/** 1.483 times the median absolute deviation from the median: the standard deviation of a normal sample, whatever a few values do. */
-function robustSigma(e: Float64Array): number {
-  const centre = median(e);
-  return 1.483 * median(e.map((v) => Math.abs(v - centre)));
-}
-
-function median(x: Float64Array): number {
-  const sorted = Float64Array.from(x).sort(), n = sorted.length;
-  return (sorted[Math.floor((n - 1) / 2)] + sorted[Math.floor(n / 2)]) / 2;
 }
 
 function interventionOf(c: Candidate, fit: Fit, decay: number): Intervention | null {

@@ -8,6 +8,7 @@ import { normals, seeded } from "../../../stdlib/forecast/random.ts";
 import { symmetricEigen } from "../../../stdlib/linear/symmetricEigen.ts";
 import { canovaHansen } from "../../../stdlib/unitroot/canovaHansen.ts";
 import { dfGls } from "../../../stdlib/unitroot/dfGls.ts";
+import { kpss } from "../../../stdlib/unitroot/kpss.ts";
 import { seriesOf, transformed } from "../referenceCases.ts";
 
 /** Values of test/fixtures/identify.R: R 4.2.2, package stats, by the papers' formulas. */
@@ -35,6 +36,9 @@ describe("methods written out in R from their papers agree", () => {
       expect(t.at).toBe(String(r[`largestBreak ${id}`].first[0]));
       same([cusum(seriesOf(id)).statistic], r[`cusum ${id}`].statistic);
     }
+  });
+  it("the data-dependent bandwidth of KPSS", () => {
+    for (const id of ["nile", "lakehuron", "treering"]) expect(kpss(seriesOf(id), { bandwidth: "automatic" }).lags).toBe(r[`automaticBandwidth ${id}`].lags[0]);
   });
   it("the extended autocorrelations", () => same(extendedAcf(seriesOf("lakehuron"), 3, 4).values, r["extendedAcf lakehuron 3 4"].values, 1e-9));
   it("the smallest canonical correlations", () => same(smallestCanonical(seriesOf("sim_arma21_long"), 3, 3).values, r["smallestCanonical sim_arma21_long 3 3"].p, 1e-7));
