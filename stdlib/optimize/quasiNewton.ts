@@ -42,7 +42,10 @@ export function quasiNewton(problem: Problem, start: Float64Array, tolerance = 1
     for (let i = 0; i < k; i++) slope += d[i] * g[i];
     if (-slope / 2 < tolerance) { converged = true; break; }
     const trial = new Float64Array(k);
-    let step = 1, fNew = Infinity, mended = false, tries = 0;
+    // Along a ridge the curvature says little, and a full step would leave by far the part that it describes.
+    let longest = 0;
+    for (let i = 0; i < k; i++) longest = Math.max(longest, Math.abs(d[i]));
+    let step = Math.min(1, LONGEST / longest), fNew = Infinity, mended = false, tries = 0;
     for (; tries < 40; tries++) {
       for (let i = 0; i < k; i++) trial[i] = x[i] + step * d[i];
       fNew = problem.value(trial);
@@ -75,6 +78,9 @@ export function quasiNewton(problem: Problem, start: Float64Array, tolerance = 1
   }
   return { x, value: f, gradient: g, hessian: h, passes, converged };
 }
+
+/** Largest change of a variable in one step; the variables here are of the order of one. */
+const LONGEST = 0.5;
 
 /** d = -h^-1 g, with as little of the identity added to h as makes it positive definite. */
 function directionInto(d: Float64Array, h: Float64Array, g: Float64Array, factor: Float64Array, k: number): void {
