@@ -125,7 +125,8 @@ class NotebookEngine implements Engine {
   #flushing = false;
   #unsettled = false;
   #waiters: (() => void)[] = [];
-  #running: string | null = null;
+  /** Cells that are running, the last one begun last. */
+  readonly #running = new Map<string, AbortSignal>();
   #disposed = false;
 
   constructor(language: Language, host: EngineHost, options: EngineOptions) {
@@ -206,7 +207,7 @@ class NotebookEngine implements Engine {
   notebook(): Notebook | null { return this.#notebook; }
   cells(): readonly CellReport[] { return [...this.#cells.keys()].map((id) => this.#cellReport(id)); }
   numbers(): readonly NumberReport[] { return [...this.#numbers.keys()].map((id) => this.#numberReport(id)); }
-  running(): string | null { return this.#running; }
+  running(): string | null { return [...this.#running.keys()].at(-1) ?? null; }
 
   claims(): readonly ClaimReport[] {
     return [...this.#cells.values()].flatMap((cell) => {
@@ -348,13 +349,14 @@ class NotebookEngine implements Engine {
     }
     const outcomes = new Map(entry.inputs.map((id, i) => [id, inputs[i]]));
     const started = performance.now();
-    this.#running = entry.id;
+    this.#running.delete(entry.id);
+    this.#running.set(entry.id, signal);
     try {
       const context = this.#context(entry, definition, outcomes, signal);
       return await runCell(definition, { language: this.#language, library: this.#library, outcomes, label: (id) => this.#label(id), context, notes: entry.notes });
     } finally {
       entry.lastMs = performance.now() - started;
-      if (this.#running === entry.id) this.#running = null;
+      if (this.#running.get(entry.id) === signal) this.#running.delete(entry.id);
     }
   }
 

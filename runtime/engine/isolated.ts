@@ -1,5 +1,6 @@
 // Runs the code of a `script` cell in a worker of its own, out of reach of the network, the page, storage and the engine:
 // an endless loop there is ended with its worker, while the engine lives.
+// oxlint-disable unicorn/require-post-message-target-origin -- a worker's postMessage takes no origin
 
 import { Overtaken } from "./values.ts";
 
@@ -9,7 +10,7 @@ const KEPT = ("Object Function Array Number parseFloat parseInt Infinity NaN und
   + "Proxy Reflect decodeURI decodeURIComponent encodeURI encodeURIComponent escape unescape isFinite isNaN Iterator structuredClone console setTimeout clearTimeout queueMicrotask performance TextEncoder TextDecoder").split(" ");
 
 /** The worker's program. It keeps the one way out to itself, takes the rest away, and imports the script as a module. */
-const PROGRAM = `
+const PROGRAM = `(() => {
 const post = self.postMessage.bind(self), urlOf = URL.createObjectURL.bind(URL), BlobOf = Blob;
 const kept = new Set(${JSON.stringify(KEPT)});
 function bare() {
@@ -27,8 +28,8 @@ function plain(name, value) {
   return value;
 }
 self.addEventListener("message", async ({ data: { source, inputs } }) => {
+  const url = urlOf(new BlobOf([source], { type: "text/javascript" }));
   try {
-    const url = urlOf(new BlobOf([source], { type: "text/javascript" }));
     bare();
     for (const [name, value] of Object.entries(inputs)) Object.defineProperty(globalThis, name, { value, enumerable: true });
     const module = await import(url);
@@ -36,21 +37,22 @@ self.addEventListener("message", async ({ data: { source, inputs } }) => {
     for (const name of Object.keys(module)) exports[name] = plain(name, module[name]);
     post({ exports });
   } catch (error) {
-    const line = /blob:\\S*?:(\\d+):\\d+/.exec(error?.stack ?? "");
-    post({ fault: (error instanceof Error ? error.message : String(error)) + (line === null ? "" : " (line " + line[1] + " of the script)") });
+    const line = parseInt(String(error?.stack ?? "").split(url + ":")[1], 10);
+    post({ fault: (error instanceof Error ? error.message : String(error)) + (line > 0 ? " (line " + line + " of the script)" : "") });
   }
 }, { once: true });
-`;
+})();`;
 
 /** Runs a module's source with values bound to names; gives its exports. Both are copies.
  *  @throws Error in the script's words; Overtaken when `signal` is aborted, whatever the script is doing */
 export function importIsolated(source: string, inputs: Readonly<Record<string, unknown>>, signal: AbortSignal): Promise<Readonly<Record<string, unknown>>> {
   const address = URL.createObjectURL(new Blob([PROGRAM], { type: "text/javascript" }));
-  const worker = new Worker(address, { type: "module" });
+  // A classic worker: module workers are refused to a page of opaque origin, `import()` inside a classic one is not.
+  const worker = new Worker(address);
   const end = (): void => { worker.terminate(); URL.revokeObjectURL(address); };
   return new Promise<Readonly<Record<string, unknown>>>((resolve, reject) => {
     signal.addEventListener("abort", () => reject(new Overtaken("overtaken by newer work")), { once: true });
-    worker.addEventListener("error", (event) => { event.preventDefault(); reject(new Error(event.message === "" ? "The script could not be started" : event.message)); });
+    worker.addEventListener("error", (event) => { event.preventDefault(); reject(new Error(event.message || "The script could not be started")); });
     worker.addEventListener("message", (event: MessageEvent<{ readonly exports?: Readonly<Record<string, unknown>>; readonly fault?: string }>) => {
       if (event.data.exports === undefined) reject(new Error(event.data.fault ?? "The script gave no answer"));
       else resolve(event.data.exports);

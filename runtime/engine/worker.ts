@@ -1,4 +1,5 @@
 // The engine in a worker: messages in, messages out. The host bundles it with the language.
+// oxlint-disable unicorn/require-post-message-target-origin -- a worker's postMessage takes no origin
 
 import type { Language } from "../../cells/kind.ts";
 import { createEngine } from "./engine.ts";

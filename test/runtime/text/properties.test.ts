@@ -1,4 +1,4 @@
-import fc from "fast-check";
+import * as fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { applyEdits, acceptNumber, keepSetting } from "../../../runtime/text/edits.ts";
 import { markdownTree } from "../../../runtime/text/markdown.ts";
