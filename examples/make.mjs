@@ -91,6 +91,30 @@ function inflow() {
   write("inflow.csv", "day,inflow", rows);
 }
 
+/** Monthly heat sent into a town's pipes: cold drives it, a new quarter was joined to the net, and a mild month's surplus carries on. */
+function heat() {
+  const shock = normal(613);
+  const weather = normal(4_417);
+  const usual = [412, 360, 318, 204, 96, 28, 12, 16, 74, 182, 288, 380];
+  const rows = [];
+  const coldness = [];
+  let carried = 0;
+  for (let t = 0; t < 11 * 12; t++) {
+    const month = `${2014 + Math.floor(t / 12)}-${pad((t % 12) + 1)}`;
+    const days = Math.max(4, usual[t % 12] * (1 + 0.1 * weather()) + 8 * weather());
+    carried = 0.62 * carried + 24 * shock();
+    const joined = t >= 93 ? 118 : 0;
+    rows.push(`${month},${(305 + joined + 2.15 * days + carried).toFixed(1)}`);
+    coldness.push(`${month},${days.toFixed(1)}`);
+  }
+  // The next twelve months: what the weather service calls usual, and a cold winter a fifth colder.
+  const ahead = usual.map((days, i) => ({ month: `2025-${pad(i + 1)}`, days }));
+  write("heat.csv", "month,heat", rows);
+  write("coldness.csv", "month,degree days", coldness);
+  write("coldness-ahead.csv", "month,usual,cold", ahead.map(({ month, days }) => `${month},${days.toFixed(1)},${(1.2 * days).toFixed(1)}`));
+}
+
 ferry();
 prices();
+heat();
 inflow();
