@@ -28,7 +28,7 @@ function filesIn(folder: string): string[] {
   return readdirSync(folder, { withFileTypes: true }).flatMap((entry) => {
     const path = join(folder, entry.name);
     if (entry.isDirectory()) return filesIn(path);
-    return /\.ts$/.test(entry.name) && !entry.name.endsWith(".d.ts") ? [path] : [];
+    return entry.name.endsWith(".ts") && !entry.name.endsWith(".d.ts") ? [path] : [];
   });
 }
 

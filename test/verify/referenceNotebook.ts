@@ -52,7 +52,7 @@ export function checksOf(item: Case, field: string, expression: (index: number) 
 }
 
 const cell = (kind: string, name: string, options: Readonly<Record<string, string | undefined>>): string =>
-  ["```" + `${kind}: ${name}`, ...Object.entries(options).flatMap(([option, text]) => (text === undefined ? [] : [`${option}: ${text}`])), "```", ""].join("\n");
+  [`\`\`\`${kind}: ${name}`, ...Object.entries(options).flatMap(([option, text]) => (text === undefined ? [] : [`${option}: ${text}`])), "```", ""].join("\n");
 
 /** Steps of `transform` that the language has as functions of a number; applied by `combine`. */
 const pointwise = (step: Transform): string | null => {
