@@ -86,6 +86,11 @@ const LONGEST = 0.5;
 function directionInto(d: Float64Array, h: Float64Array, g: Float64Array, factor: Float64Array, k: number): void {
   let top = 0;
   for (let i = 0; i < k; i++) top = Math.max(top, Math.abs(h[i * k + i]));
+  if (!h.every(Number.isFinite)) {
+    // Curvature that overflowed says nothing: go straight down.
+    h.fill(0);
+    for (let i = 0; i < k; i++) h[i * k + i] = top = 1;
+  }
   for (let ridge = 0; ; ridge = ridge === 0 ? 1e-10 * (top || 1) : ridge * 100) {
     factor.set(h);
     for (let i = 0; i < k; i++) factor[i * k + i] += ridge;
