@@ -2,12 +2,11 @@
 
 import { quasiNewton } from "../optimize/quasiNewton.ts";
 import { inversePositive } from "../linear/cholesky.ts";
-import { productJacobian } from "./estimate.ts";
+import { productJacobian } from "./gaussNewton.ts";
 import { divideInto, dot, subtractLagsInto } from "./kernels.ts";
 import type { Note } from "./model.ts";
 import type { Numbers } from "./numbers.ts";
 import { isStable } from "./region.ts";
-import { factors } from "./estimate.ts";
 import { expandInto } from "./shape.ts";
 import { hannanRissanen } from "./start.ts";
 import type { Information } from "./information.ts";
@@ -36,7 +35,7 @@ export function conditionalEstimate(numbers: Numbers): ConditionalSolution {
   const r = new Float64Array(n), e = new Float64Array(n);
   const size = free.length + m;
   const jac: Float64Array[] = Array.from({ length: size }, () => new Float64Array(n));
-  const parts = factors(shape);
+  const parts = shape.factors;
   const residuals = () => {
     for (let t = 0; t < n; t++) { r[t] = data.y[t]; for (let j = 0; j < m; j++) r[t] -= beta[j] * data.columns[j][t]; }
     expandInto(a, shape.ar, x, 0);

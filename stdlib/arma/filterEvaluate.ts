@@ -1,7 +1,7 @@
 // The likelihood by the filter, for series with many gaps: the same value as likelihood.ts, gradient by differences.
 
 import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
-import type { Evaluate } from "./estimate.ts";
+import type { Evaluate } from "./search.ts";
 import { filterLevels } from "./filter.ts";
 import { levelModel } from "./levelModel.ts";
 import type { Work } from "./likelihood.ts";

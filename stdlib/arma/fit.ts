@@ -3,7 +3,8 @@
 import type { Series } from "../series/series.ts";
 import { conditionalEstimate } from "./conditional.ts";
 import { autoregression } from "./autoregression.ts";
-import { estimate, factors, type Estimate, type Evaluate } from "./estimate.ts";
+import { estimate } from "./estimate.ts";
+import type { Estimate, Evaluate } from "./search.ts";
 import { filterEvaluate } from "./filterEvaluate.ts";
 import { BOUNDARY, flags, moduli } from "./flags.ts";
 import { informationAt } from "./information.ts";
@@ -61,7 +62,7 @@ function failure(p: Prepared): string {
 
 /** A moving-average factor wholly held at values with roots inside the unit circle: legal, with a likelihood of its own. */
 function heldOutside(p: Prepared): boolean {
-  return factors(p.shape).some(f => {
+  return p.shape.factors.some(f => {
     const c = p.held.subarray(f.from, f.from + f.lags.length);
     return f.sign < 0 && f.lags.length > 0 && !c.some(Number.isNaN) && !isStable(f.lags, c, f.sign, true);
   });
@@ -72,7 +73,7 @@ function finish(numbers: Numbers, work: Work, found: Estimate, evaluate: Evaluat
   const notes: Note[] = [];
   const { x, free } = found;
   let edge = false;
-  for (const part of factors(prepared.shape)) {
+  for (const part of prepared.shape.factors) {
     const estimated = [...part.lags.keys()].some(i => Number.isNaN(prepared.held[part.from + i]));
     if (estimated && moduli(part, x) < BOUNDARY) edge = true;
   }
@@ -112,7 +113,7 @@ function flagsOf(result: Fit, s: Solution): Note[] {
 /** "phi 1", "seasonal theta 2". */
 export function coefficientName(p: Prepared, at: number): string {
   const words = ["phi", "seasonal phi", "theta", "seasonal theta"];
-  const parts = factors(p.shape);
+  const parts = p.shape.factors;
   const which = parts.findIndex(f => at < f.from + f.lags.length);
   const lag = parts[which].lags[at - parts[which].from];
   return `${words[which]} ${which % 2 === 1 ? lag / p.shape.season : lag}`;

@@ -2,7 +2,8 @@
 
 import { inversePositive } from "../linear/cholesky.ts";
 import { divideInto, dot } from "./kernels.ts";
-import { productJacobian, type Evaluate } from "./estimate.ts";
+import { productJacobian } from "./gaussNewton.ts";
+import type { Evaluate } from "./search.ts";
 import type { Data, Work } from "./likelihood.ts";
 
 export interface Information {

@@ -1,6 +1,6 @@
 // Further places to start the search from, where the likelihood may have several maxima.
 
-import { factors, type Search } from "./estimate.ts";
+import type { Search } from "./search.ts";
 import { makeShape, type Shape } from "./shape.ts";
 
 /** The maximum of a smaller model, and its innovations. */
@@ -12,7 +12,7 @@ export type Maximise = (shape: Shape) => { readonly x: Float64Array; readonly in
 export function otherStarts(search: Search, found: Float64Array, where: { readonly plain: boolean; readonly seasonal: boolean }, maximise: Maximise): Float64Array[] {
   const { shape, held } = search;
   const out: Float64Array[] = [];
-  const [ar, sar, ma, sma] = factors(shape);
+  const [ar, sar, ma, sma] = shape.factors;
   const free = !held.some(v => !Number.isNaN(v)) && !search.evaluate;
   const full = (lags: Int32Array) => lags.every((l, i) => l === i + 1);
   if (!where.plain) { /* nothing to doubt there */ }

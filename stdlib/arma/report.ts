@@ -1,7 +1,7 @@
 // From the search's numbers to the Fit an analyst reads: units back, names, criteria, residuals, roots.
 
 import { makeSeries } from "../series/series.ts";
-import { denseFactor, factors } from "./estimate.ts";
+import { denseFactor } from "./shape.ts";
 import { filterLevels } from "./filter.ts";
 import type { Information } from "./information.ts";
 import { levelModel } from "./levelModel.ts";
@@ -63,7 +63,7 @@ function total(c: Float64Array): number { let sum = 0; for (const v of c) sum +=
 
 /** Coefficients of one factor, dense by its own lags. */
 function dense(s: Solution, which: number): Float64Array {
-  const f = factors(s.numbers.prepared.shape)[which];
+  const f = s.numbers.prepared.shape.factors[which];
   const step = which % 2 === 1 ? s.numbers.prepared.shape.season : 1;
   const out = new Float64Array(f.lags.length > 0 ? f.lags[f.lags.length - 1] / step : 0);
   f.lags.forEach((lag, i) => { out[lag / step - 1] = s.x[f.from + i]; });
@@ -71,7 +71,7 @@ function dense(s: Solution, which: number): Float64Array {
 }
 
 function factorRoots(s: Solution, plain: number, seasonal: number): Root[] {
-  const parts = factors(s.numbers.prepared.shape);
+  const parts = s.numbers.prepared.shape.factors;
   const found = [plain, seasonal].flatMap(i => {
     const f = parts[i];
     if (f.lags.length === 0) return [];
@@ -112,7 +112,7 @@ function standardErrors(s: Solution, covariance: Float64Array | null, unit: numb
   const root = (v: number) => v > 0 && Number.isFinite(v) ? Math.sqrt(v) : NaN;
   const byCoefficient = new Float64Array(s.x.length).fill(NaN);
   if (covariance !== null) free.forEach((at, i) => { byCoefficient[at] = root(covariance[i * size + i]); });
-  const parts = factors(p.shape);
+  const parts = p.shape.factors;
   const shaped = (which: number) => {
     const f = parts[which], step = which % 2 === 1 ? p.shape.season : 1;
     const out = new Float64Array(f.lags.length > 0 ? f.lags[f.lags.length - 1] / step : 0).fill(NaN);
