@@ -1,7 +1,7 @@
 // The expression language, interpreted: an ECMAScript tree compiled to closures. Nothing here makes code from text.
 
 import type { AnyNode, ArrowFunctionExpression, Expression, MemberExpression, Pattern } from "../text/acorn.ts";
-import { arithmetic, compare, EvaluationError, isSignal, property, spreadInto, spreadObject, textOf, Undecided } from "./values.ts";
+import { arithmetic, compare, EvaluationError, isSignal, property, spreadInto, spreadObject, textOf, Undecided, whatIs } from "./values.ts";
 import { method } from "./methods.ts";
 
 /** What an evaluation may ask of its surroundings. */
@@ -189,17 +189,25 @@ function unaryCode(node: Extract<AnyNode, { type: "UnaryExpression" }>, scope: S
 function binaryCode(node: Extract<AnyNode, { type: "BinaryExpression" }>, scope: Scope): Code {
   const left = codeOf(node.left as AnyNode, scope), right = codeOf(node.right, scope);
   const { operator } = node;
-  if (operator === "===" || operator === "!==") {
+  if (operator === "===" || operator === "!==" || operator === "==" || operator === "!=") {
+    const sameType = operator.length === 2, equal = operator.startsWith("=");
     return (frame) => {
       const a = left(frame), b = right(frame);
+      if (sameType) placed(node, () => comparable(operator, a, b));
       if (frame.around.claim === true && frame.up === null && (Number.isNaN(a) || Number.isNaN(b))) throw new Undecided("a value compared here is missing (NaN)");
-      return (a === b) === (operator === "===");
+      return (a === b) === equal;
     };
   }
   if (operator === "<" || operator === "<=" || operator === ">" || operator === ">=") {
     return (frame) => { const a = left(frame), b = right(frame); return placed(node, () => compare(operator, a, b, frame.around.claim === true)); };
   }
   return (frame) => { const a = left(frame), b = right(frame); return placed(node, () => arithmetic(operator, a, b)); };
+}
+
+/** ECMAScript's `==` would turn one type into the other without a word; here it takes two values of one type, or a value and `null`. */
+function comparable(operator: string, a: unknown, b: unknown): void {
+  if (a === null || b === null || typeof a === typeof b) return;
+  throw new EvaluationError(`\`${operator}\` compares two values of one type; here are ${whatIs(a)} and ${whatIs(b)}`);
 }
 
 /** ECMAScript's truth of a value; missing data does not decide a claim. */

@@ -140,10 +140,9 @@ export function placeOfName(tree: Expression, name: string): { readonly from: nu
   return found;
 }
 
-const BINARY = new Set(["+", "-", "*", "/", "%", "**", "===", "!==", "<", "<=", ">", ">="]);
+const BINARY = new Set(["+", "-", "*", "/", "%", "**", "===", "!==", "==", "!=", "<", "<=", ">", ">="]);
 
 function operatorHint(operator: string): string {
-  if (operator === "==" || operator === "!=") return `write \`${operator}=\`: two values are equal only if they are of one type`;
   if (operator === "^") return "`^` is not a power here: write `**`";
   if (operator === "&" || operator === "|") return `write \`${operator}${operator}\` for logic`;
   if (operator === "in") return "`in` is not part of the language: read the property with `?.` and compare with `null`";
@@ -152,7 +151,7 @@ function operatorHint(operator: string): string {
 
 function nodeHint(node: AnyNode): string {
   switch (node.type) {
-    case "AssignmentExpression": return "`=` would change something, and an expression only gives a value: write `===` to compare";
+    case "AssignmentExpression": return "`=` would change something, and an expression only gives a value: write `==` to compare";
     case "UpdateExpression": return "`++` and `--` would change something, and an expression only gives a value";
     case "SequenceExpression": return "one value is expected here, not several with commas: use a list `[…]`";
     case "FunctionExpression": return "write an arrow function, `x => …`";

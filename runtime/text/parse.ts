@@ -37,12 +37,17 @@ export function parse(text: string, shapes: readonly Shape[], around: ParseSurro
   const { cells, faults } = checkNames(reading.cells, reading.numbers, around.names ?? null);
   for (const fault of faults) problem(reading, fault.code, fault.message, fault.from, fault.to, fault.cell, fault.severity);
   reading.problems.sort((a, b) => a.from - b.from || a.to - b.to);
-  const broken = new Set(reading.problems.filter((each) => each.severity === "error" && each.cell !== null).map((each) => each.cell));
+  const broken = new Set(reading.problems.filter((each) => each.severity === "error" && each.cell !== null && !inOneClaim(each, cells[each.cell], reading)).map((each) => each.cell));
   return {
     text, tree: tree.root, title: titleOf(tree.root), blocks: reading.blocks,
     cells: cells.map((each) => ({ ...each, broken: broken.has(each.index) })),
     numbers: reading.numbers, problems: reading.problems, memory: { segments: tree.memory, bodies: reading.bodies },
   };
+}
+
+/** Claims are decided one by one, so a fault in the condition of one leaves the others standing. */
+function inOneClaim(fault: Problem, cell: CellText, reading: Reading): boolean {
+  return reading.shapes.get(cell.kind)?.body === "claims" && cell.options.some(({ expression }) => fault.from >= expression.from && fault.to <= expression.to);
 }
 
 function memoryOf(before: Notebook | undefined): Memory {

@@ -171,6 +171,14 @@ describe("function forms, claims, live numbers", () => {
     expect(engine.claims()[0].line).toBe(10);
   });
 
+  test("a claim whose condition cannot be read leaves the others decided", async () => {
+    const { engine, cell: at } = await open(cell("double: good", "of: 1") + cell("claims: c", '"good is two": good.twice == 2', '"slip": good.twice ^ 2', '"no such name": god.twice > 1', '"good is small": good.twice < 5'));
+    expect(engine.claims().map((each) => each.holds)).toEqual([true, null, null, true]);
+    expect(engine.claims()[1].message).toMatch(/is not a power here/);
+    expect(engine.claims()[2].message).toMatch(/`god`/);
+    expect(at("c").state).toBe("current");
+  });
+
   test("live numbers agree, have moved or are undecided", async () => {
     const { engine } = await open(`${chain}Twice is [4](=b.twice), then [7.9](=c.twice), [8](<=c.twice + 0.4>), [x](=nowhere), [1](=NaN), [2](=b), [four](=b.twice).\n`);
     expect(engine.numbers().map((each) => [each.state, each.now])).toEqual([["agrees", "4"], ["moved", "8.0"], ["agrees", "8"], ["undecided", null], ["undecided", null], ["undecided", null], ["moved", "4"]]);
