@@ -50,8 +50,8 @@ function surface(grid: Grid, across: (row: Grid["models"][number]) => Lags, up: 
   const best = new Map<string, Tile>();
   for (const model of grid.models) {
     const column = lagsText(across(model)), row = lagsText(up(model));
-    const key = `${column}|${row}`, known = best.get(key);
-    if (known === undefined || model.difference < known.difference) best.set(key, { column, row, difference: model.difference, remark: model.label });
+    const key = `${column}|${row}`, known = best.get(key), ranks = model.setAside === null || grid.best?.setAside !== null;
+    if (known === undefined || Number.isNaN(known.difference) || model.difference < known.difference) best.set(key, { column, row, difference: ranks ? model.difference : NaN, remark: ranks ? model.label : `${model.label}: set aside` });
   }
   // A pair without a model was tried and failed: its tile says so instead of being left out.
   return rows.flatMap(row => columns.map(column => best.get(`${column}|${row}`) ?? { column, row, difference: NaN, remark: "could not be estimated" }));
@@ -85,9 +85,9 @@ function rankingTable(grid: Grid): TablePart {
       ...(cautious ? [{ title: "caution" }] : []),
     ],
     rows: shown.map(row => [
-      row.rank, row.label, row.difference, row.weight, row.k, readingOf(row.difference, row.tied), ...(cautious ? [row.cautions[0] ?? ""] : []),
+      row.setAside === null ? row.rank : NaN, row.label, row.difference, row.weight, row.k, row.setAside === null ? readingOf(row.difference, row.tied) : "set aside", ...(cautious ? [row.cautions[0] ?? ""] : []),
     ]),
-    marked: [{ row: 0, word: "best" }],
+    marked: shown.flatMap((row, i) => (row === grid.best ? [{ row: i, word: "best" }] : [])),
     note: `${grid.models.length > shown.length ? `The first ${shown.length} of ${grid.models.length}. ` : ""}Weights are Akaike weights among the models tried. All ${count(grid.models.length, "model")} saw the same ${count(grid.models[0].n, "observation")}; only differences of ${name} mean anything.`,
   };
 }

@@ -26,7 +26,7 @@ describe("compare over a grid of orders", () => {
     expect(context.steps.at(-1)).toEqual([6, 6]);
     const values = result.models.map(row => row.aicc);
     expect(values).toEqual([...values].sort((a, b) => a - b));
-    expect(result.best?.label).toBe(result.models[0].label);
+    expect(result.best).toBe(result.models.find(row => row.setAside === null));
     expect(result.models.reduce((sum, row) => sum + row.weight, 0)).toBeCloseTo(1, 12);
     expect(result.scores).toEqual([]);
   });
@@ -39,7 +39,10 @@ describe("compare over a grid of orders", () => {
     expect(chart.alt).toMatch(/^The smallest is at AR \d and MA \d; /);
     const [svg] = await drawnCharts(parts);
     expect(svg).toContain("best");
-    expect(tables(parts)[0].marked).toEqual([{ row: 0, word: "best" }]);
+    if (result.how !== "criterion") throw new Error("expected a grid");
+    // On this made series two mixed models reach the unit circle: they keep their place in the list and are not the best.
+    expect(tables(parts)[0].marked).toEqual([{ row: result.models.findIndex(row => row.setAside === null), word: "best" }]);
+    expect(texts(parts)).toContain("set aside");
     expect(texts(parts)).toContain("6 models were tried");
   });
   test("ranks by BIC where asked", async () => {

@@ -1,3 +1,4 @@
+import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import { gridOfOrders, rankFits } from "../../../stdlib/evaluation/gridOfOrders.ts";
@@ -21,6 +22,20 @@ describe("gridOfOrders", () => {
     expect(aic(2, 0)).toBeCloseTo(215.266445, 3);
     expect(grid.best?.label).toBe(grid.models[0].fit.label);
     expect(grid.sentence).toContain("smallest AICc");
+  });
+  it("sets a model aside whose maximum lies on the region's edge, with the reason, and never chooses it over a proper one", async () => {
+    // A simulated (0,1,1)(0,1,1)12 on which (2,1,3) gains 7 in log likelihood from a cycle on the unit circle; R's arima stops at 318.47.
+    const values = readFileSync(new URL("../../fixtures/maximum-on-the-edge.csv", import.meta.url), "utf8").trim().split("\n").slice(1).map((line) => Number(line.split(",")[1]));
+    const series = applySteps(makeSeries({ name: "vehicles", every: "P1M", start: "2010-01", values }), [{ step: "log" }, { step: "difference", lag: 1 }, { step: "difference", lag: 12 }]);
+    const grid = await gridOfOrders({ series, ar: 2, ma: 3, season: { length: 12, ma: [1] } });
+    const aside = grid.models.filter((m) => m.setAside !== null), edge = aside.find((m) => m.ar === 2 && m.ma === 3)!;
+    expect(edge.setAside).toContain("unit circle");
+    expect(edge.aicc).toBeLessThan(grid.best!.aicc);
+    expect(edge).toMatchObject({ tied: false, weight: 0 });
+    expect(grid.best).toMatchObject({ setAside: null, rank: 1, difference: 0 });
+    expect(grid.models[0]).toBe(edge);
+    expect(grid.models.filter((m) => m.setAside === null).reduce((sum, m) => sum + m.weight, 0)).toBeCloseTo(1, 12);
+    expect(grid.notes.join(" ")).toContain("cannot rank");
   });
   it("a list tries just its items, subset lags too", async () => {
     const grid = await gridOfOrders({ series: lake, ar: [1, [1, 3]], ma: [0], rank: "bic" });
