@@ -3,6 +3,7 @@
 import type { Correlogram, OrderTable } from "../../stdlib/index.ts";
 import { lagChart, type LagPanel } from "./lagChart.ts";
 import { orderChart } from "./orderChart.ts";
+import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { percent, pText, someOf } from "./words.ts";
 
@@ -18,8 +19,7 @@ export function correlogramParts(result: Shown): readonly Part[] {
     }),
     startText(result),
     ...(result.theory === null ? [] : [{ part: "text" as const, tone: "note" as const, text: `The line is what ${result.theory.label} would give in a long series.` }]),
-    ...mixedParts(result),
-    portmanteauTable(result),
+    ...details([...mixedParts(result), portmanteauTable(result)]),
     ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
   ];
 }

@@ -3,6 +3,7 @@
 import { timesMs, type Diagnostics, type Test } from "../../stdlib/index.ts";
 import { timeField } from "./fanChart.ts";
 import { lagChart } from "./lagChart.ts";
+import { details } from "./part.ts";
 import type { ChartPart, Part, TablePart, TextPart } from "./part.ts";
 import { pathChart } from "./pathChart.ts";
 import { pValueChart } from "./pValueChart.ts";
@@ -23,13 +24,11 @@ export function diagnosticsParts(result: Diagnostics, width: number): readonly P
   return [
     { part: "text", text: result.sentence },
     questionTable(result),
-    pValuePart(result),
     timePart(result, width),
-    acfPart(result),
-    ...(result.qq.sample.length > 0 ? [quantilePart(result)] : []),
-    ...rhythmPart(result),
-    ...levelPart(result),
     ...outlierParts(result),
+    ...details([
+      pValuePart(result), acfPart(result), ...(result.qq.sample.length > 0 ? [quantilePart(result)] : []), ...rhythmPart(result), ...levelPart(result),
+    ]),
     ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
   ];
 }

@@ -2,6 +2,7 @@
 
 import { milliseconds, type Evaluation } from "../../stdlib/index.ts";
 import { originsChart } from "./originsChart.ts";
+import { details } from "./part.ts";
 import type { Columns, Part, TablePart, TextPart } from "./part.ts";
 import { scoreChart } from "./scoreChart.ts";
 import { count, figure, listOf, percent, pText } from "./words.ts";
@@ -18,9 +19,7 @@ export function evaluationParts(result: Evaluation, every: string | null): reado
     ...(losers.length > 0 ? [{ part: "text" as const, tone: "caution" as const, text: `${listOf(losers.map(model => model.label))} ${losers.length === 1 ? "does" : "do"} not beat naive.` }] : []),
     standingsTable(result),
     ...(result.horizon > 1 ? [horizonChart(result)] : []),
-    pathsChart(result, every),
-    coverageTable(result),
-    ...pairParts(result),
+    ...details([pathsChart(result, every), coverageTable(result), ...pairParts(result)]),
     ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
     ...failureParts(result),
   ];

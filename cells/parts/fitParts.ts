@@ -2,6 +2,7 @@
 
 import { normalQuantile, slice, type Fit } from "../../stdlib/index.ts";
 import { timePlot, type Line } from "./chart.ts";
+import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { backshiftEquation, legend, writtenOutEquation } from "./equation.ts";
 import { intervalChart } from "./intervalChart.ts";
@@ -27,10 +28,9 @@ export function fitParts(fit: Fit, width: number): readonly Part[] {
     backshiftEquation(fit),
     writtenOutEquation(fit),
     { part: "text", tone: "note", text: `Here ${legend(fit)}.` },
-    ...coefficientParts(coefficients),
-    ...rootParts(fit),
+    ...intervalCharts(coefficients),
     usedSentence(fit),
-    ...usedChart(fit, width),
+    ...details([...(coefficients.length > 0 ? [coefficientTable(coefficients)] : []), ...rootParts(fit), ...usedChart(fit, width)]),
     {
       part: "figures", figures: [
         { label: "log-likelihood", value: fit.logLikelihood, format: ",.2f" },
@@ -95,14 +95,14 @@ export function coefficientsOf(fit: Fit): readonly Coefficient[] {
   return list;
 }
 
-function coefficientParts(coefficients: readonly Coefficient[]): readonly Part[] {
+function intervalCharts(coefficients: readonly Coefficient[]): readonly Part[] {
   if (coefficients.length === 0) return [{ part: "text", text: "The model has no coefficients besides the variance of its shocks." }];
   const lags = coefficients.filter(c => c.group === "lags");
   const regressors = coefficients.filter(c => c.group === "regressor");
   const charts: Part[] = [];
   if (lags.length > 0) charts.push(intervalChart("Lag coefficients against zero", altOf(lags), "coefficient, with its 95% interval", lags.map(intervalRow)));
   if (regressors.length > 1) charts.push(intervalChart("Effects of the regressors", altOf(regressors), "effect on the modelled scale, with its 95% interval", regressors.map(intervalRow)));
-  return [...charts, coefficientTable(coefficients)];
+  return charts;
 }
 
 function limits(c: Coefficient): { low: number; high: number } {

@@ -2,6 +2,7 @@
 
 import type { Grid, Lags, Stepwise } from "../../stdlib/index.ts";
 import { heatChart, type Tile } from "./heatChart.ts";
+import { details } from "./part.ts";
 import type { ChartPart, Part, TablePart, TextPart } from "./part.ts";
 import { searchChart } from "./searchChart.ts";
 import { count, decimals, figure } from "./words.ts";
@@ -15,7 +16,7 @@ export function gridParts(grid: Grid | Stepwise): readonly Part[] {
     ...grid.notes.map((text): TextPart => ({ part: "text", tone: /caution|could not/.test(text) ? "caution" : "note", text })),
     ...("path" in grid ? pathParts(grid) : surfaces(grid)),
     ...(grid.models.length > 0 ? [rankingTable(grid)] : []),
-    ...(grid.failures.length > 0 ? [failureTable(grid)] : []),
+    ...details([...cautionsTable(grid), ...(grid.failures.length > 0 ? [failureTable(grid)] : [])]),
   ];
 }
 
@@ -51,7 +52,7 @@ function surface(grid: Grid, across: (row: Grid["models"][number]) => Lags, up: 
   for (const model of grid.models) {
     const column = lagsText(across(model)), row = lagsText(up(model));
     const key = `${column}|${row}`, known = best.get(key), ranks = model.setAside === null || grid.best?.setAside !== null;
-    if (known === undefined || Number.isNaN(known.difference) || model.difference < known.difference) best.set(key, { column, row, difference: ranks ? model.difference : NaN, remark: ranks ? model.label : `${model.label}: set aside` });
+    if (known === undefined || Number.isNaN(known.difference) || model.difference < known.difference) best.set(key, { column, row, difference: ranks ? model.difference : NaN, word: "set aside", remark: model.label });
   }
   // A pair without a model was tried and failed: its tile says so instead of being left out.
   return rows.flatMap(row => columns.map(column => best.get(`${column}|${row}`) ?? { column, row, difference: NaN, remark: "could not be estimated" }));
@@ -76,20 +77,24 @@ function altOf(tiles: readonly Tile[], across: string, up: string): string {
 function rankingTable(grid: Grid): TablePart {
   const name = criterionName(grid.rankedBy);
   const shown = grid.models.slice(0, mostRows);
-  const cautious = shown.some(row => row.cautions.length > 0);
   return {
     part: "table", title: `Ranked by ${name}`,
     columns: [
       { title: "place", align: "right", format: "d" }, { title: "model" }, { title: "behind the best", align: "right", format: ",.1f" },
       { title: "weight", align: "right", format: ".1%" }, { title: "free parameters", align: "right", format: "d" }, { title: "reading" },
-      ...(cautious ? [{ title: "caution" }] : []),
     ],
     rows: shown.map(row => [
-      row.setAside === null ? row.rank : NaN, row.label, row.difference, row.weight, row.k, row.setAside === null ? readingOf(row.difference, row.tied) : "set aside", ...(cautious ? [row.cautions[0] ?? ""] : []),
+      row.setAside === null ? row.rank : NaN, row.label, row.difference, row.weight, row.k, row.setAside === null ? readingOf(row.difference, row.tied) : "set aside",
     ]),
     marked: shown.flatMap((row, i) => (row === grid.best ? [{ row: i, word: "best" }] : [])),
     note: `${grid.models.length > shown.length ? `The first ${shown.length} of ${grid.models.length}. ` : ""}Weights are Akaike weights among the models tried. All ${count(grid.models.length, "model")} saw the same ${count(grid.models[0].n, "observation")}; only differences of ${name} mean anything.`,
   };
+}
+
+/** What the fits' own flags say, a model a row: too long to stand in the ranking. */
+function cautionsTable(grid: Grid): readonly TablePart[] {
+  const rows = grid.models.slice(0, mostRows).flatMap(row => [...(row.setAside === null ? [] : [[row.label, `set aside: ${row.setAside}`]]), ...row.cautions.map(text => [row.label, text])]);
+  return rows.length === 0 ? [] : [{ part: "table", title: "Cautions", columns: [{ title: "model" }, { title: "caution" }], rows }];
 }
 
 function readingOf(difference: number, tied: boolean): string {

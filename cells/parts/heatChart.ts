@@ -5,8 +5,10 @@ import type { ChartPart } from "./part.ts";
 export interface Tile {
   readonly column: number | string;
   readonly row: number | string;
-  /** Difference to the best, 0 or more; NaN where the model failed. */
+  /** Difference to the best, 0 or more; NaN where there is none to show. */
   readonly difference: number;
+  /** What stands in a tile without a difference. */
+  readonly word?: string;
   readonly remark?: string;
 }
 
@@ -42,7 +44,7 @@ export function heatChart(given: {
         nearness: tiles.map(tile => Number.isNaN(tile.difference) ? 0 : Math.max(0, 1 - tile.difference / 10)),
         difference: tiles.map(tile => tile.difference),
         best: tiles.map(tile => tile.difference === 0),
-        shown: tiles.map(tile => Number.isNaN(tile.difference) ? "failed" : tile.difference === 0 ? "best" : tile.difference >= 99.5 ? Math.round(tile.difference).toString() : tile.difference.toFixed(1)),
+        shown: tiles.map(tile => Number.isNaN(tile.difference) ? tile.word ?? "failed" : tile.difference === 0 ? "best" : tile.difference >= 99.5 ? Math.round(tile.difference).toString() : tile.difference.toFixed(1)),
         remark: tiles.map(tile => tile.remark ?? ""),
       },
     },

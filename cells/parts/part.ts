@@ -57,4 +57,10 @@ export type ControlPart =
   | { readonly part: "control"; readonly control: "switch"; readonly label: string; readonly at: boolean; readonly kept: boolean }
   | { readonly part: "control"; readonly control: "window"; readonly label: string; readonly times: readonly string[]; readonly values: Float64Array; readonly every: string | null; readonly unit: string; readonly at: { readonly from: string; readonly to: string }; readonly kept: { readonly from: string; readonly to: string } };
 
-export type Part = ChartPart | TablePart | EquationPart | TextPart | ClaimsPart | FiguresPart | ControlPart;
+/** A detail waits, folded, below what carries the cell's finding. */
+export type Part = (ChartPart | TablePart | EquationPart | TextPart | ClaimsPart | FiguresPart | ControlPart) & { readonly detail?: true };
+
+/** The same parts as details. */
+export function details(parts: readonly Part[]): readonly Part[] {
+  return parts.map((part) => ({ ...part, detail: true as const }));
+}

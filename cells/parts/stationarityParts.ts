@@ -3,6 +3,7 @@
 
 import { timesMs, type LambdaProfile, type RangeMean, type Series, type Stationarity, type Test } from "../../stdlib/index.ts";
 import { panelChart } from "./panelChart.ts";
+import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { ratioChart, type RatioRow } from "./ratioChart.ts";
 import { spreadChart } from "./spreadChart.ts";
@@ -20,10 +21,8 @@ export function stationarityParts(result: Shown, width: number): readonly Part[]
   return [
     { part: "text", text: result.together },
     ratioPart(tests),
-    testTable(tests, result.level),
-    ...differenceParts(result, width),
     ...strengthText(result),
-    ...spreadParts(result),
+    ...details([testTable(tests, result.level), ...differenceParts(result, width), ...spreadParts(result)]),
     ...notesOf(result, tests),
   ];
 }

@@ -1,5 +1,6 @@
 // What a sweep shows: how far each number moves over the control's values, drawn with the present value marked.
 
+import { details } from "./part.ts";
 import type { ChartPart, Part, TablePart } from "./part.ts";
 import { count, figure, listOf, someOf } from "./words.ts";
 
@@ -14,7 +15,7 @@ export function sweepParts(sweep: Swept): readonly Part[] {
     ...sweep.measures.map((measure): Part => ({ part: "text", text: sentence(sweep, measure) })),
     ...(failed.length === 0 ? [] : [{ part: "text" as const, tone: "caution" as const, text: `${count(failed.length, "value")} of ${sweep.over} gave no result (${someOf(failed.map(row => printed(row.value)))}); the first said: ${failed[0].failed}` }]),
     ...sweep.measures.flatMap(measure => chartOf(sweep, measure)),
-    tableOf(sweep),
+    ...details([tableOf(sweep)]),
   ];
 }
 

@@ -38,9 +38,25 @@ export function cellTree(cell: CellReport, key: string, context: CellContext, kn
       h("span", { class: "cell-state" }, h("span", { class: "shape", "aria-hidden": "true" }), cell.state)),
     h("div", { class: "cell-body" },
       faultTree(cell, context), progressTree(cell, context),
-      (cell.show ?? []).map((part, index) => keptPart(part, index, cell, context, source, known)),
+      partsOf(cell, false).map(([part, index]) => keptPart(part, index, cell, context, source, known)),
+      detailsTree(partsOf(cell, true), (part, index) => keptPart(part, index, cell, context, source, known)),
       cell.notes.length > 0 ? h("ul", { class: "cell-notes" }, cell.notes.map((note) => h("li", {}, note))) : null,
       fieldsTree(cell, context)));
+}
+
+/** Parts with their places among all of the cell's: charts are known by them. */
+function partsOf(cell: CellReport, detail: boolean): readonly (readonly [Part, number])[] {
+  return (cell.show ?? []).map((part, index) => [part, index] as const).filter(([part]) => (part.detail === true) === detail);
+}
+
+/** Folded, and named by what is inside. Charts in it are drawn when it is opened; paper shows it whole. */
+function detailsTree(parts: readonly (readonly [Part, number])[], tree: (part: Part, index: number) => Given): Given {
+  if (parts.length === 0) return null;
+  const titles = parts.flatMap(([part]) => ("title" in part && part.title ? [part.title] : []));
+  const named = titles.map((title) => (/^[A-Z][a-z]/.test(title) ? title[0].toLowerCase() + title.slice(1) : title)).slice(0, 4);
+  return h("details", { class: "more", key: "more" },
+    h("summary", {}, named.length === 0 ? "more" : `more: ${named.join("; ")}${titles.length > named.length ? "; …" : ""}`),
+    parts.map(([part, index]) => tree(part, index)));
 }
 
 function faultTree(cell: CellReport, context: CellContext): Given {

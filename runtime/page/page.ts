@@ -147,11 +147,22 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   });
   listen(root, actions);
   watchSize(article, (width) => engine.send({ to: "width", width }), live, (height) => post({ page: "height", height }));
-  window.addEventListener("beforeprint", () => charts.drawAll());
+  printWhole(article, () => { charts.drawAll(); });
   engine.send({ to: "width", width: figureWidth(article) });
   parent?.listen(fromParent);
   post({ page: "ready" });
   return { hear: fromParent, async drawn() { await new Promise((resolve) => requestAnimationFrame(resolve)); await done; } };
+}
+
+/** Paper cannot be unfolded: details are open while it is printed. */
+function printWhole(article: HTMLElement, drawAll: () => void): void {
+  let opened: HTMLDetailsElement[] = [];
+  window.addEventListener("beforeprint", () => {
+    opened = [...article.querySelectorAll<HTMLDetailsElement>("details.more:not([open])")];
+    for (const each of opened) each.open = true;
+    drawAll();
+  });
+  window.addEventListener("afterprint", () => { for (const each of opened) each.open = false; });
 }
 
 function addStyle(): void {

@@ -76,7 +76,7 @@ function words(models: readonly GridRow[], best: GridRow | null, failures: reado
   if (models.length > 1) notes.push(`${models.length} models were tried: the best of many looks better than it is, so check it on data that were not used to choose it.`);
   if (best === null) return { sentence: `None of ${tried} orders could be estimated.`, notes };
   const aside = models.filter((m) => m.setAside !== null);
-  if (aside.length > 0) notes.push(`${aside.length === models.length ? "All models have" : `${aside.length} of ${models.length} models ${aside.length === 1 ? "has" : "have"}`} a maximum that the criterion cannot rank, and ${aside.length === 1 ? "is" : "are"} set aside (${aside[0].label}: ${aside[0].setAside}).`);
+  if (aside.length > 0) notes.push(`${aside.length === models.length ? "All models have" : `${aside.length} of ${models.length} models ${aside.length === 1 ? "has" : "have"}`} a maximum that the criterion cannot rank, and ${aside.length === 1 ? "is" : "are"} set aside. Of ${aside[0].label}: ${aside[0].setAside}.`);
   const ties = models.filter((m) => m.tied && m !== best), simplest = [best, ...ties].reduce((a, b) => (b.k < a.k ? b : a));
   const also = ties.length === 0 ? "no other comes within 2 of it" : `${ties.slice(0, 4).map((m) => m.label).join(", ")}${ties.length > 4 ? ` and ${ties.length - 4} more` : ""} ${ties.length === 1 ? "is" : "are"} within 2 of it, which is a tie${simplest === best ? "" : `; the simplest of them is ${simplest.label}`}`;
   if (best.cautions.length > 0) notes.push(`The best has a caution: ${best.cautions[0]}`);

@@ -39,19 +39,19 @@ describe("diagnostics", () => {
   test("draws p-values across lags, residuals in time, correlations, quantiles, rhythm and running sum", async () => {
     const parts = diagnostics.show(await run({ model: seasonal(madeSeries()) }), show);
     expect(charts(parts).map(p => p.title)).toEqual([
-      "Is anything left to predict, taking lags together?", "Residuals in time, the large ones named", "Autocorrelations of the residuals, lag by lag",
+      "Residuals in time, the large ones named", "Is anything left to predict, taking lags together?", "Autocorrelations of the residuals, lag by lag",
       "Residuals against a normal distribution", "Share of the residuals' variation at slower frequencies", "Running sum of the residuals",
     ]);
     await expect(drawnCharts(parts)).resolves.toHaveLength(6);
   });
   test("says up to which lag no degrees of freedom are left", async () => {
     const parts = diagnostics.show(await run({ model: seasonal(madeSeries()) }), show);
-    expect(charts(parts)[0].alt).toContain("Up to lag 2 no degrees of freedom are left.");
-    expect(charts(parts)[0].data.points.lag).not.toContain(2);
+    expect(charts(parts)[1].alt).toContain("Up to lag 2 no degrees of freedom are left.");
+    expect(charts(parts)[1].data.points.lag).not.toContain(2);
   });
   test("names the date of an event, in the picture and with a regressor to try", async () => {
     const parts = diagnostics.show(await run({ model: seasonal(withEvent()) }), show);
-    const inTime = charts(parts)[1];
+    const inTime = charts(parts)[0];
     expect(inTime.alt).toContain("2023-01");
     expect((await drawnCharts([inTime]))[0]).toContain("2023-01");
     const events = parts.find((p): p is TablePart => p.part === "table" && p.title === "Single events that stand out")!;
