@@ -2,7 +2,7 @@
 // what the browser needs for a page that does nothing.
 
 import { execFileSync, spawnSync } from "node:child_process";
-import { cpSync, mkdtempSync, rmSync, statSync } from "node:fs";
+import { cpSync, mkdtempSync, readFileSync, rmSync, statSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { performance } from "node:perf_hooks";
@@ -63,7 +63,7 @@ async function sliders(browser: Browser, print: Print): Promise<void> {
     { name: "the browser alone: a slider and its printed value", text: "# S\n\n```slider: q\nfrom: 0\nto: 4\nat: 1\n```\n", files: {}, look: "q", budget: 16 },
     { name: "200 points: fit, forecast, residuals", text: modelled, files: { "y.csv": series(200) }, look: "ahead", budget: 16 },
     { name: "5,000 points: the same", text: modelled, files: { "y.csv": series(5000) }, look: "ahead", budget: 33 },
-    { name: "main example, at its forecast", text: execFileSync("cat", [join(examples, "ferry.md")], { encoding: "utf8" }), files: {}, look: "nextYear", budget: 16 },
+    { name: "main example, at its forecast", text: readFileSync(join(examples, "ferry.md"), "utf8"), files: {}, look: "nextYear", budget: 16 },
   ];
   print("slider moved to drawn, 50 moves: the last change of the page after a move (ms, median and worst; until the cell in view has changed, and until all has settled)");
   for (const { name, text, files, look, budget } of cases) {
@@ -87,7 +87,7 @@ async function moves(frame: Frame, look: string, count: number): Promise<{ reado
   return frame.evaluate(async ([cell, times]) => {
     const input = document.querySelector<HTMLInputElement>("#strip-q")!, target = document.querySelector(`#cell-${cell}`)!;
     const settled = (): boolean => document.querySelector("[data-state=working], [data-state=waiting]") === null;
-    const frameAfter = (): Promise<number> => new Promise((done) => { requestAnimationFrame(() => { const port = new MessageChannel(); port.port1.onmessage = () => done(performance.now()); port.port2.postMessage(0); }); });
+    const frameAfter = (): Promise<number> => new Promise((done) => { requestAnimationFrame(() => { const port = new MessageChannel(); port.port1.addEventListener("message", () => done(performance.now())); port.port1.start(); port.port2.postMessage(0); }); });
     const seen: number[] = [], all: number[] = [];
     for (let i = 0; i < times; i++) {
       let first = 0, last = 0;
@@ -135,7 +135,7 @@ async function keys(browser: Browser, print: Print): Promise<void> {
   const { page } = await openDesk(context, served.url);
   await page.locator(".cm-line").nth(8).click();
   const times: number[] = [];
-  await page.evaluate(() => { (window as unknown as { keys: number[] }).keys = []; document.addEventListener("keydown", () => { const start = performance.now(); requestAnimationFrame(() => { const port = new MessageChannel(); port.port1.onmessage = () => { (window as unknown as { keys: number[] }).keys.push(performance.now() - start); }; port.port2.postMessage(0); }); }, true); });
+  await page.evaluate(() => { (window as unknown as { keys: number[] }).keys = []; document.addEventListener("keydown", () => { const start = performance.now(); requestAnimationFrame(() => { const port = new MessageChannel(); port.port1.addEventListener("message", () => { (window as unknown as { keys: number[] }).keys.push(performance.now() - start); }); port.port1.start(); port.port2.postMessage(0); }); }, true); });
   for (let i = 0; i < 60; i++) { await page.keyboard.type("a"); await page.waitForTimeout(30); }
   times.push(...await page.evaluate(() => (window as unknown as { keys: number[] }).keys));
   print(`a key in a 5,000-line notebook, to its frame: ${middle(times)} and ${worst(times)} (budget 16, waiting for the display's next frame included)`);
