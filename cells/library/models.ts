@@ -1,9 +1,9 @@
 // Functions of models: theory, simulation, rules of comparison, interventions.
 
 import {
-  easterEffect, halfLife, harmonics, impulseResponse, interpolate, isFit, levelShift, longRun, piWeights, psi, pulse, ramp, rule, simulate, temporaryChange, theoreticalAcf, theoreticalPacf,
+  easterEffect, exponentialSmoothing, halfLife, harmonics, impulseResponse, interpolate, isFit, levelShift, longRun, piWeights, psi, pulse, ramp, rule, simulate, temporaryChange, theoreticalAcf, theoreticalPacf,
   theoreticalSpectrum, tradingDays,
-  valuesOf, type Fit, type Forecaster,
+  valuesOf, type Fit, type Forecaster, type SmoothingWeights,
 } from "../../stdlib/index.ts";
 import type { LibraryFunction } from "../kind.ts";
 import { define, fit, forecasterOf, number, numbers, optional, param, series, settings, time, whole, type Param } from "./define.ts";
@@ -28,7 +28,11 @@ export const modelFunctions: readonly LibraryFunction[] = [
   define(rules, "rule.seasonalNaive", [series(), optional(whole("length", 2))], "The last season, again and again.", (s, length) => rule.seasonalNaive(s, length)),
   define(rules, "rule.drift", [series()], "The last value and the mean step between first and last.", (s) => rule.drift(s)),
   define(rules, "rule.average", [series()], "The mean of all values.", (s) => rule.average(s)),
-  define(rules, "rule.smoothing", [series(), optional(settings("options", ["trend", "season", "damped", "length", "error", "alpha", "beta", "gamma", "phi"]))], "Exponential smoothing: trend and season \"none\", \"additive\" or \"multiplicative\"; weights are estimated unless given.", (s, options = {}) => rule.smoothing(s, options as Parameters<typeof rule.smoothing>[1])),
+  define(rules, "rule.smoothing", [series(), optional(settings("options", ["trend", "season", "damped", "length", "error", "alpha", "beta", "gamma", "phi", "level0", "trend0", "seasonal0"]))], "Exponential smoothing: trend and season \"none\", \"additive\" or \"multiplicative\"; weights are estimated unless given.", (s, options = {}) => rule.smoothing(s, options as Parameters<typeof rule.smoothing>[1])),
+  define(rules, "exponentialSmoothing", [series(), settings("weights", ["alpha", "beta", "gamma", "damped", "level0", "trend0", "seasonal0", "season"]), whole("horizon", 1)], "The smoothing recursions at given weights and starting states: fitted values, last states, forecasts with standard errors.", (s, weights, horizon) => {
+    if (typeof weights.alpha !== "number" || typeof weights.level0 !== "number") throw new RangeError("exponentialSmoothing: give at least alpha and level0, as in {alpha: 0.3, level0: 100}");
+    return exponentialSmoothing(s.values, weights as unknown as SmoothingWeights, horizon);
+  }),
   define(rules, "rule.combine", [forecasters("models")], "The mean of several models' forecasts.", (models) => rule.combine(models)),
   define(regressors, "pulse", [time("at")], "1 in one period, 0 elsewhere.", (at) => pulse(at)),
   define(regressors, "levelShift", [time("at")], "0 before a period, 1 from it on.", (at) => levelShift(at)),

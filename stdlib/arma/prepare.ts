@@ -106,7 +106,8 @@ function readRegressors(regressors: Readonly<Record<string, Regressor>>, levels:
       const made = interventionColumns(regressor, name, levels.start, levels.every, levels.n);
       names.push(...made.names);
       columns.push(...made.columns);
-    } else throw new RangeError(`fit: the regressor ${name} is neither a series nor an intervention such as pulse("2020-04")`);
+    } else if (name === "intervention") throw new RangeError(`fit: regressors holds one intervention without a name; give it one, as in {effect: ${String(regressor)}(…)}`);
+    else throw new RangeError(`fit: the regressor ${name} is neither a series nor an intervention such as pulse("2020-04")`);
   }
   return { names, columns };
 }

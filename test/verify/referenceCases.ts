@@ -101,6 +101,24 @@ const writers: Readonly<Record<string, (item: Case) => Written>> = {
   jarqueBera: ofResiduals((item, x) => [...checksOf(item, "statistic", () => `jarqueBera(${x}).statistic`), ...checksOf(item, "pValue", () => `jarqueBera(${x}).p`)]),
   durbinWatson: ofResiduals((item, x) => checksOf(item, "statistic", () => `durbinWatson(${x})`)),
   archLM: ofResiduals((item, x) => [...checksOf(item, "lm", () => `archLM(${x}, ${item.inputs.lags as number}).statistic`), ...checksOf(item, "lmPValue", () => `archLM(${x}, ${item.inputs.lags as number}).p`)]),
+  mcleodLi: ofResiduals((item, x) => {
+    const at = (path: string) => (i: number): string => `mcleodLi(${x}, ${(item.inputs.lags as readonly number[])[i]}).${path}`;
+    return [...checksOf(item, "statistic", at("statistic")), ...checksOf(item, "pValue", at("p"))];
+  }),
+  interpolate: (item) => write(modelCells(item), [...checksOf(item, "value", (i) => `interpolate(m).mean[${i}]`), ...checksOf(item, "se", (i) => `interpolate(m).se[${i}]`)]),
+  benchmark: (item) => {
+    const { method, horizon, period } = item.inputs as { readonly method: string; readonly horizon: number; readonly period: number };
+    const name = method === "mean" ? "average" : method;
+    const cells = `${seriesCells(item.series as string, item.transform, "y")}\n\n\`\`\`forecast: f\nmodel: rule.${name}(y${method === "seasonalNaive" ? `, ${period}` : ""})\nhorizon: ${horizon}\n\`\`\`\n`;
+    const inLogs = item.transform.includes("log");
+    return write(cells, [...checksOf(item, "point", (i) => (inLogs ? `log(f.median[${i}])` : `f.median[${i}]`)), ...checksOf(item, "se", (i) => `f.se[${i}]`)]);
+  },
+  expSmoothing: (item) => {
+    const { alpha, beta, gamma, damped, level0, trend0, seasonal0, seasonalType, horizon } = item.inputs;
+    const weights = Object.entries({ alpha, beta, gamma, damped, level0, trend0, seasonal0, season: seasonalType === undefined ? undefined : { additive: "additive", multiplicative: "multiplicative", add: "additive", mul: "multiplicative" }[seasonalType as string] }).filter(([, value]) => value !== undefined).map(([key, value]) => `${key}: ${JSON.stringify(value)}`).join(", ");
+    const at = `exponentialSmoothing(y, {${weights}}, ${horizon as number})`;
+    return write(seriesCells(item.series as string, item.transform, "y"), [...checksOf(item, "point", (i) => `${at}.point[${i}]`), ...checksOf(item, "sse", () => `${at}.sse`), ...(item.expected.se === undefined ? [] : checksOf(item, "se", (i) => `${at}.se[${i}]`))]);
+  },
   arimaLogLik: (item) => write(modelCells(item), [
     ...checksOf(item, "logLik", () => "m.logLikelihood"),
     ...checksOf(item, "nUsed", () => "m.n"),

@@ -1,3 +1,4 @@
+import { tradingDays } from "../../../stdlib/forecast/interventions.ts";
 import { describe, expect, it } from "vitest";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import { agree, caseCoefficients, caseHold, caseOptions, readCases } from "./cases.ts";
@@ -38,4 +39,9 @@ describe("fit by maximum likelihood", () => {
       if (c.expected.stdInnovLast) agree(c, "stdInnovLast", residuals.slice(-(c.expected.stdInnovLast as number[]).length));
     });
   }
+
+  it("asks for a name where regressors are one intervention instead of an object of them", () => {
+    const series = makeSeries({ name: "y", every: "P1M", start: "2015-01", values: Array.from({ length: 60 }, (_, t) => 100 + ((t * 7919) % 13)) });
+    expect(() => fit({ series, ar: 1, regressors: tradingDays() as never })).toThrow("without a name; give it one, as in {effect: tradingDays(…)}");
+  });
 });
