@@ -1,4 +1,5 @@
 import { tradingDays } from "../../../stdlib/forecast/interventions.ts";
+import { makeSeries } from "../../../stdlib/series/series.ts";
 import { describe, expect, it } from "vitest";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import { agree, caseCoefficients, caseHold, caseOptions, readCases } from "./cases.ts";
