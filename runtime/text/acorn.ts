@@ -13,6 +13,8 @@ const VERSION = 2022;
 export function expressionTree(source: string): { readonly tree: Expression } | { readonly fault: SyntaxFault } {
   try {
     const tree = parseExpressionAt(source, 0, { ecmaVersion: VERSION, sourceType: "script", preserveParens: true });
+    const deep = tooDeep(tree, DEEPEST_EXPRESSION);
+    if (deep !== null) return { fault: deep };
     const rest = restAfter(source, tree.end);
     return rest === null ? { tree } : { fault: { message: rest.message, at: rest.at } };
   } catch (error) {
@@ -23,10 +25,26 @@ export function expressionTree(source: string): { readonly tree: Expression } | 
 /** The tree of a module's source, or what is wrong with it. */
 export function moduleTree(source: string): { readonly tree: Program } | { readonly fault: SyntaxFault } {
   try {
-    return { tree: parse(source, { ecmaVersion: VERSION, sourceType: "module", allowAwaitOutsideFunction: true }) };
+    const tree = parse(source, { ecmaVersion: VERSION, sourceType: "module", allowAwaitOutsideFunction: true });
+    const deep = tooDeep(tree, DEEPEST_MODULE);
+    return deep === null ? { tree } : { fault: deep };
   } catch (error) {
     return { fault: faultOf(error) };
   }
+}
+
+/** Levels that an expression, and a script, may nest: whoever walks a tree does so by calling itself, and a chain of members or
+ *  sums nests without a bracket, so that the parser itself never runs out of room. Far beyond what anybody writes. */
+const TOO_DEEP = "this nests too deeply to be read: name a part of it in a cell of its own";
+const DEEPEST_EXPRESSION = 500, DEEPEST_MODULE = 1500;
+
+function tooDeep(tree: Node, deepest: number): SyntaxFault | null {
+  let level = [tree];
+  for (let depth = 0; level.length > 0; depth++) {
+    if (depth > deepest) return { message: TOO_DEEP, at: level[0].start };
+    level = level.flatMap(childrenOf);
+  }
+  return null;
 }
 
 /** What a token does to the depth of brackets, and where it stands. */
@@ -80,6 +98,8 @@ function restAfter(source: string, end: number): SyntaxFault | null {
 /** The parser's own message without its place, which is given beside it. */
 function faultOf(error: unknown): SyntaxFault {
   const at = typeof error === "object" && error !== null && "pos" in error && typeof error.pos === "number" ? error.pos : 0;
+  // Brackets in brackets use up the parser's own stack.
+  if (error instanceof RangeError || (error instanceof Error && error.message.includes("stack space"))) return { message: TOO_DEEP, at };
   const message = error instanceof Error ? error.message.replace(/ \(\d+:\d+\)$/, "") : String(error);
   return { message, at };
 }

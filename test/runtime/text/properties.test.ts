@@ -15,6 +15,17 @@ const breaks = fc.constantFrom("\n", "\n", "\n", "\r\n", "\r");
 const notebook = fc.array(fc.tuple(line, breaks), { maxLength: 30 }).map((lines) => lines.map(([text, end]) => text + end).join(""));
 const strip = (text: string): unknown => JSON.parse(JSON.stringify(markdownTree(text)));
 
+describe("what nests without end", () => {
+  const much = 50_000;
+  test.each([
+    ["members", `x${".a".repeat(much)}`], ["sums", `x${" + 1".repeat(much)}`], ["calls", `x${"()".repeat(much)}`], ["brackets", `${"(".repeat(much)}x${")".repeat(much)}`], ["lists", `${"[".repeat(much)}${"]".repeat(much)}`], ["signs", `${"- ".repeat(much)}x`],
+  ])("%s: one cell and one number are told so, and the rest of the notebook is read", (_, source) => {
+    const parsed = parse(`[1](<=${source}>)\n\n${cell("values: deep", `a: ${source}`)}${cell("values: sound", "a: 1")}${cell("script: s", `export const a = ${source};`)}`, shapes);
+    expect(parsed.cells.map((each) => each.broken)).toEqual([true, false, true]);
+    expect(parsed.problems.some((each) => each.cell === 0 && /[Tt]his nests too deeply/.test(each.message))).toBe(true);
+  });
+});
+
 describe("for any text", () => {
   test("blocks read one by one are the blocks of the whole text, every node with its place", () => {
     fc.assert(fc.property(notebook, (text) => { expect(JSON.parse(JSON.stringify(parse(text, shapes).tree))).toEqual(strip(text)); }), { ...seeded, numRuns: 1500 });
