@@ -5,7 +5,7 @@ import type { CellContext, PartTrees } from "./cell.ts";
 import { h } from "./tree.ts";
 import type { Tree } from "./tree.ts";
 import type { Node, PageState } from "./pageState.ts";
-import { anchor, prose, wordsOf } from "./prose.ts";
+import { anchor, headingPrefix, prose, wordsOf } from "./prose.ts";
 import type { ProseContext } from "./prose.ts";
 import type { NumberReport } from "../engine/messages.ts";
 
@@ -88,7 +88,8 @@ function sharedContext(state: PageState): Shared {
     const base = anchor(wordsOf(node));
     const times = taken.get(base) ?? 0;
     taken.set(base, times + 1);
-    anchors.set(node, times === 0 ? base : `${base}-${times}`);
+    // Cells, notes and the exported file have ids of their own, which no heading may take.
+    anchors.set(node, `${headingPrefix}${times === 0 ? base : `${base}-${times}`}`);
   }
   return { definitions, footnotes, anchors, signature: JSON.stringify([[...definitions], [...footnotes], [...anchors.values()]]) };
 }

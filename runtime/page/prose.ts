@@ -109,7 +109,9 @@ class Prose {
     const href = safeLink(url);
     if (href === null) return h("span", { class: "dead-link", title: `This link is not shown as one: ${url}` }, this.all(node));
     const outside = !href.startsWith("#");
-    return h("a", { href, title, rel: outside ? "noopener noreferrer nofollow" : null, target: outside ? "_blank" : null }, this.all(node));
+    const heading = `${headingPrefix}${href.slice(1)}`;
+    const goal = !outside && [...this.context.anchors.values()].includes(heading) ? `#${heading}` : href;
+    return h("a", { href: goal, title, rel: outside ? "noopener noreferrer nofollow" : null, target: outside ? "_blank" : null }, this.all(node));
   }
 
   private reference(node: Any): Child | readonly Child[] {
@@ -153,6 +155,8 @@ function image(url: string, alt: string): Tree {
 }
 
 /** A heading's words as an anchor: lower case, hyphens for spaces, letters and digits of any script. */
+export const headingPrefix = "part-";
+
 export function anchor(words: string): string {
   return words.trim().toLowerCase().replace(/[^\p{L}\p{N}\s_-]/gu, "").replace(/\s+/g, "-") || "part";
 }

@@ -58,8 +58,15 @@ describe("pageTrees", () => {
     const text = "# T\n\n## A\n\n## A\n\n## B\n\n### C\n\n## D\n";
     const state = stateAfter(fakeNotebook().answer({ to: "text", version: 1, text }));
     const still = renderStill(state, new Map());
-    expect(still).toContain('<a href="#a">A</a>'); expect(still).toContain('<a href="#a-1">A</a>'); expect(still).toContain('<li class="below"><a href="#c">C</a>');
-    expect(still).toContain('<h2 id="a-1">');
+    expect(still).toContain('<a href="#part-a">A</a>'); expect(still).toContain('<a href="#part-a-1">A</a>'); expect(still).toContain('<li class="below"><a href="#part-c">C</a>');
+    expect(still).toContain('<h2 id="part-a-1">');
+  });
+
+  it("gives no heading an id that something else answers to, and follows the author's own links to it", () => {
+    const text = "# Live\n\n## Carried\n\n## Cell model\n\n[here](#carried), [there](#cell-model), [nowhere](#else)\n";
+    const still = renderStill(stateAfter(fakeNotebook().answer({ to: "text", version: 1, text })), new Map());
+    expect([...still.matchAll(/<h\d id="([^"]*)"/g)].map((match) => match[1])).toEqual(["part-live", "part-carried", "part-cell-model"]);
+    expect([...still.matchAll(/<a href="([^"]*)"/g)].map((match) => match[1])).toEqual(["#part-carried", "#part-cell-model", "#else"]);
   });
 
   it("counts in one sentence what does not stand", () => {
