@@ -96,11 +96,17 @@ async function notebook(session: Session): Promise<Response> {
 async function save(session: Session, request: Request): Promise<Response> {
   const match = request.headers.get("if-match"), none = request.headers.get("if-none-match");
   if (match === null && none !== "*") return json({ message: "A save says which text it replaces (If-Match)." }, 428);
+  if (Number(request.headers.get("content-length") ?? 0) > largestText) return tooLarge(Number(request.headers.get("content-length")));
   const bytes = new Uint8Array(await request.arrayBuffer());
-  if (bytes.length > largestText) return json({ message: `The text has ${Math.round(bytes.length / 1048576)} MB; up to ${largestText / 1048576} MB are saved.` }, 413);
-  const content = new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes);
+  if (bytes.length > largestText) return tooLarge(bytes.length);
+  let content: string;
+  try { content = new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes); } catch { return json({ message: "The text sent is not UTF-8, so it was not saved." }, 400); }
   const result = await session.store.save(content, match === null ? null : match.replaceAll('"', ""));
   return "saved" in result ? json({ hash: result.saved.hash }, 200) : json({ found: result.found }, 412);
+}
+
+function tooLarge(size: number): Response {
+  return json({ message: `The text has ${Math.round(size / 1048576)} MB; up to ${largestText / 1048576} MB are saved.` }, 413);
 }
 
 async function data(session: Session, url: URL): Promise<Response> {

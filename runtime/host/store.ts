@@ -55,12 +55,20 @@ export class Store {
     if ((found?.hash ?? null) !== seen) return { found };
     // A notebook may be a link to a file elsewhere: the file is written, the link stays.
     const target = found ? await realpath(this.path) : this.path;
+    // Replacing a file asks the folder's leave, not the file's: a file that was protected would be written all the same.
+    if (found && ((await stat(target)).mode & 0o222) === 0) throw new CannotRun(`${this.path} is read-only, so nothing was written into it. Make it writable, or copy the text elsewhere.`);
     await writeWhole(target, text);
     return { saved: { text, hash: hash(text) } };
   }
 
   async #found(): Promise<Stored | null> {
-    const there = await stat(this.path).catch(() => null);
-    return there ? this.read() : null;
+    try {
+      await stat(this.path);
+    } catch (error) {
+      // Only what is not there may be written anew; what cannot be looked at may well be there.
+      if (error instanceof Error && "code" in error && error.code === "ENOENT") return null;
+      throw new CannotRun(`${this.path} cannot be read: ${error instanceof Error ? error.message : String(error)}`);
+    }
+    return this.read();
   }
 }

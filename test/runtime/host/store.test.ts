@@ -1,4 +1,4 @@
-import { existsSync, lstatSync, mkdtempSync, readFileSync, readdirSync, rmSync, symlinkSync, writeFileSync } from "node:fs";
+import { chmodSync, existsSync, lstatSync, mkdtempSync, readFileSync, readdirSync, rmSync, symlinkSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
@@ -55,6 +55,14 @@ describe("a notebook's store", () => {
     expect(readFileSync(target, "utf8")).toBe("two");
     expect(lstatSync(path).isSymbolicLink()).toBe(true);
     expect(readdirSync(folder).sort()).toEqual(["n.md", "real.md"]);
+  });
+
+  it("does not replace a file that is read-only", async () => {
+    writeFileSync(path, "one");
+    const store = new Store(path), { hash: seen } = await store.read();
+    chmodSync(path, 0o444);
+    await expect(store.save("two", seen)).rejects.toThrow("is read-only, so nothing was written");
+    expect(readFileSync(path, "utf8")).toBe("one");
   });
 
   it("tells in words what is no notebook", async () => {
