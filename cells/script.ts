@@ -10,7 +10,7 @@ export const script: Kind<CodeBody, Readonly<Record<string, unknown>>> = {
   sentence: "ECMAScript whose exports become names; it runs isolated, with copies of the values that it reads.",
   options: {},
   body: "code",
-  example: "export const double = (x) => 2 * x;",
+  example: "export const share = 0.5;",
   run: async ({ source, inputs }, context) => {
     const exported = await context.importCode(source, inputs);
     if (Object.hasOwn(exported, "default")) throw new OptionError(null, "a script exports names, as in `export const share = …`; a default export has none");
