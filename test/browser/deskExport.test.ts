@@ -117,6 +117,17 @@ describe("the exported page", () => {
     }
   });
 
+  it("comes alive whatever its headings are called", async () => {
+    writeFileSync(join(folder, "named.md"), "# Live\n\n## Carried\n\n## Still\n\n```slider: q\nfrom: 0\nto: 4\nat: 1\n```\n\nTwice q is [2](<=2 * q>).\n");
+    execFileSync(process.execPath, [command, "page", "named.md"], { cwd: folder });
+    const context = await browser.newContext({ offline: true }), page = await context.newPage();
+    await page.goto(pathToFileURL(join(folder, "named.html")).href);
+    const frame = await live(page);
+    await frame.locator("#strip-q").fill("3");
+    await expect.poll(() => frame.locator(".live.moved").first().innerText()).toContain("6");
+    await context.close();
+  });
+
   it("is under a megabyte plus its data", () => {
     const size = readFileSync(file).length - 2 * data.length;
     expect(size).toBeLessThan(1_000_000);

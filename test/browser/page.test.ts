@@ -173,7 +173,7 @@ describe("the page", () => {
   it("sends links out to the window around it and follows its own", async () => {
     const { page, frame, heard } = await open();
     await frame.click(".contents a >> nth=2");
-    await expect.poll(() => frame.evaluate(() => document.activeElement?.id)).toBe("what-is-forecast");
+    await expect.poll(() => frame.evaluate(() => document.activeElement?.id)).toBe("part-what-is-forecast");
     await frame.click(".notes a[href^=http]");
     expect((await heard("openLink"))[0].href).toBe("https://example.org/season");
     await page.close();
