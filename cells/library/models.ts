@@ -1,7 +1,7 @@
 // Functions of models: theory, simulation, rules of comparison, interventions.
 
 import {
-  easterEffect, exponentialSmoothing, halfLife, harmonics, impulseResponse, interpolate, isFit, levelShift, longRun, piWeights, psi, pulse, ramp, rule, simulate, temporaryChange, theoreticalAcf, theoreticalPacf,
+  easterEffect, exponentialSmoothing, halfLife, harmonics, impulseResponse, interpolate, isFit, levelShift, longRun, modelRoots, piWeights, psi, pulse, ramp, rule, simulate, temporaryChange, theoreticalAcf, theoreticalPacf,
   theoreticalSpectrum, tradingDays,
   valuesOf, type Fit, type Forecaster, type SmoothingWeights,
 } from "../../stdlib/index.ts";
@@ -19,6 +19,7 @@ export const modelFunctions: readonly LibraryFunction[] = [
   define(theory, "impulseResponse", [fit(), whole("n")], "Effect of a shock of 1 on the levels, differences undone, from lag 0.", (m, n) => impulseResponse(m, n)),
   define(theory, "longRun", [model("fit")], "Mean and variance that the modelled series settles at, as {mean, variance}.", (m) => longRun(m)),
   define(theory, "halfLife", [model("fit")], "Periods until half of a shock's effect is gone.", (m) => halfLife(m)),
+  define(theory, "roots", [model("model")], "Roots in B of both sides multiplied out, as {ar, ma} of {re, im, modulus}, by increasing modulus.", (m) => modelRoots(m)),
   define(theory, "theoreticalAcf", [model("model"), whole("lags")], "Autocorrelations that a model implies, from lag 0.", (m, lags) => theoreticalAcf(m, lags)),
   define(theory, "theoreticalPacf", [model("model"), whole("lags")], "Partial autocorrelations that a model implies, from lag 0.", (m, lags) => theoreticalPacf(m, lags)),
   define(theory, "theoreticalSpectrum", [model("model"), numbers("frequencies")], "Spectral density that a model implies, at frequencies in radians a period, from 0 to pi.", (m, frequencies) => theoreticalSpectrum(m, valuesOf(frequencies))),

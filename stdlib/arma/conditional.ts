@@ -18,6 +18,8 @@ export interface ConditionalSolution {
   readonly information: Information | null;
   readonly converged: boolean;
   readonly notes: readonly Note[];
+  /** The method's own innovations over the data's rows, NaN where it sets them to zero; left out: those of the exact filter. */
+  readonly innovations?: Float64Array;
 }
 
 /** Minimises the conditional sum of squares over coefficients, mean and regressors together; sigma2 = SS / (n - nCond).
@@ -27,7 +29,7 @@ export function conditionalEstimate(numbers: Numbers): ConditionalSolution {
   const { prepared, data } = numbers;
   if (numbers.gaps.length > 0) throw new RangeError(`fit: method "conditional" cannot step over missing values, and there ${numbers.gaps.length === 1 ? "is 1" : `are ${numbers.gaps.length}`} inside the sample; use method: "exact", or fill them first`);
   const { shape } = prepared;
-  const skip = shape.ar.degree, n = data.n, m = data.columns.length, c = shape.count;
+  const skip = shape.ar.degree, n = data.n, m = data.columns.length;
   if (n - skip < 2) throw new RangeError(`fit: method "conditional" leaves out the first ${skip} values, and there are only ${n}; use method: "exact"`);
   const free = [...prepared.held.keys()].filter(i => Number.isNaN(prepared.held[i]));
   const x = Float64Array.from(prepared.held), beta = new Float64Array(m);
@@ -89,7 +91,6 @@ export function conditionalEstimate(numbers: Numbers): ConditionalSolution {
   const guess = hannanRissanen(shape, numbers.bridged);
   const start = new Float64Array(size);
   free.forEach((at, i) => { start[i] = guess[at]; });
-  void c;
   let found = quasiNewton(problem, start, 1e-12);
   if (free.length > 1 || !found.converged) {
     const other = quasiNewton(problem, new Float64Array(size), 1e-12);
@@ -102,7 +103,7 @@ export function conditionalEstimate(numbers: Numbers): ConditionalSolution {
   problem.curvatureInto(hessian);
   const covariance = size > 0 ? inversePositive(hessian, size) : new Float64Array(0);
   return {
-    x: Float64Array.from(x), beta: Float64Array.from(beta), sigma2: value / used, converged: found.converged || size === 0,
+    x: Float64Array.from(x), beta: Float64Array.from(beta), innovations: e.fill(NaN, 0, skip), sigma2: value / used, converged: found.converged || size === 0,
     information: { covariance, robust: null, size, hessian, gradient: found.gradient },
     notes: [{ code: "conditional", tone: "note", text: `Estimated by conditional least squares: the first ${skip} innovation${skip === 1 ? "" : "s"} count as zero. The log-likelihood is the exact one at these estimates.` }],
   };

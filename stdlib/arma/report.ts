@@ -28,6 +28,10 @@ export interface Solution {
   readonly stationary: boolean;
   readonly method: Method;
   readonly notes: readonly Note[];
+  /** False where nobody will read the residuals. */
+  readonly residuals?: boolean;
+  /** In the scaled unit, over the differenced rows; left out: from the exact filter. */
+  readonly innovations?: Float64Array;
 }
 
 export function assemble(s: Solution): Fit {
@@ -132,12 +136,13 @@ function standardErrors(s: Solution, covariance: Float64Array | null, unit: numb
   return { phi: shaped(0), seasonalPhi: shaped(1), theta: shaped(2), seasonalTheta: shaped(3), mean, beta };
 }
 
-/** One-step errors over the root of their relative variance, at the times of the fitted series. */
+/** One-step errors over the root of their relative variance, or the method's own, at the times of the fitted series. */
 function residualSeries(s: Solution): Fit["residuals"] {
   const { numbers } = s;
   const { prepared: p, from, levels, levelColumns, unit } = numbers;
   const values = new Float64Array(p.series.n).fill(NaN);
-  const model = s.stationary ? levelModel(p.shape, s.x, p.delta) : null;
+  s.innovations?.forEach((v, t) => { values[from + t] = v * unit; });
+  const model = s.stationary && s.residuals !== false && !s.innovations ? levelModel(p.shape, s.x, p.delta) : null;
   const beta = s.beta;
   const series = Float64Array.from(levels);
   for (let j = 0; j < beta.length; j++) { const c = beta[j], x = levelColumns[j]; for (let t = 0; t < series.length; t++) series[t] -= c * x[t]; }

@@ -33,7 +33,7 @@ const misses = (check: Check, value: number | null): string | null => {
   return off <= check.within ? null : `${check.expression}: ${value}, expected ${check.expected} within ${check.within}`;
 };
 
-const files = ["acf.json", "unitroot.json", "diagnostics.json", "arima_loglik.json", "arima_ml.json", "forecast.json", "accuracy.json", "smoothing.json"];
+const files = ["acf.json", "unitroot.json", "diagnostics.json", "arima_loglik.json", "arima_ml.json", "ar_css.json", "arma_theory.json", "forecast.json", "accuracy.json", "smoothing.json"];
 
 describe.each(files)("verify --json gives the values of %s", (file) => {
   const skipped: string[] = [];

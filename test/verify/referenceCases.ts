@@ -1,7 +1,7 @@
 // Which expressions of the language answer which reference case.
 
 import type { Case, Check, Written } from "./referenceNotebook.ts";
-import { checksOf, modelCells, seriesCells, Unsupported, write } from "./referenceNotebook.ts";
+import { cell, checksOf, modelCells, seriesCells, Unsupported, write } from "./referenceNotebook.ts";
 
 const trends: Readonly<Record<string, string>> = { n: "none", c: "constant", ct: "linear", ctt: "quadratic" };
 
@@ -19,9 +19,18 @@ const ofSeries = (checks: (item: Case) => readonly Check[]) => (item: Case): Wri
 const ofResiduals = (checks: (item: Case, x: string) => readonly Check[]) => (item: Case): Written =>
   item.inputs.model ? write(modelCells(item), checks(item, "m.residuals")) : write(seriesCells(item.series as string, item.transform, "y"), checks(item, "y"));
 
+/** A plain autoregression of a series, by another method than maximum likelihood. */
+function autoregression(method: string, checks: (item: Case, order: number) => readonly Check[]): (item: Case) => Written {
+  return (item) => {
+    const order = item.inputs.order as number;
+    const cells = `${seriesCells(item.series as string, item.transform, "y")}\n${cell("fit", "m", { series: "y", ar: String(order), mean: "true", method: `"${method}"` })}`;
+    return write(cells, [...checksOf(item, "ar", (i) => `m.phi[${i}]`), ...checksOf(item, "mean", () => "m.mean"), ...checks(item, order)]);
+  };
+}
+
 function coefficients(item: Case): readonly Check[] {
   const model = item.inputs.model;
-  const expected = item.expected.coef as Readonly<Record<string, number | readonly number[]>>;
+  const expected = (item.expected.coef ?? {}) as Readonly<Record<string, number | readonly number[]>>;
   const se = item.expected.se as Readonly<Record<string, number | readonly number[]>> | undefined;
   if (!model) return [];
   const places: Readonly<Record<string, (i: number) => string>> = {
@@ -137,6 +146,57 @@ const writers: Readonly<Record<string, (item: Case) => Written>> = {
     const params = item.inputs.params ?? (item.expected.paramsUsed as Case["inputs"]["params"]);
     const cells = `${modelCells(item, item.inputs.model, params)}\n\n\`\`\`forecast: f\nmodel: m\nhorizon: ${item.inputs.horizon as number}\nlevels: [0.8, 0.95]\n\`\`\`\n`;
     return write(cells, forecastChecks(item));
+  },
+  css: (item) => {
+    const observed = "m.residuals.values.filter(v => v === v)";
+    return write(modelCells(item, item.inputs.model, item.inputs.params, "conditional"), [
+      ...checksOf(item, "sigma2", () => "m.sigma2"),
+      ...checksOf(item, "sumOfSquares", () => `m.sigma2 * ${item.expected.nUsed as number}`),
+      ...checksOf(item, "residualsFirst", (i) => `${observed}[${i}]`),
+      ...checksOf(item, "residualsLast", (i) => `${observed}.slice(-5)[${i}]`),
+      ...coefficients(item),
+    ]);
+  },
+  arYuleWalker: autoregression("yuleWalker", (item, p) => [
+    ...checksOf(item, "sigma2", () => "m.sigma2"),
+    ...checksOf(item, "sigma2DfAdjusted", () => `m.sigma2 * m.n / (m.n - ${p} - 1)`),
+    ...checksOf(item, "se", (i) => `m.se.phi[${i}]`),
+  ]),
+  arBurg: autoregression("burg", (item, p) => [
+    ...checksOf(item, "sigma2Levinson", () => "m.sigma2"),
+    ...checksOf(item, "reflection", (i) => `pacf(y, ${p}, "burg")[${i + 1}]`),
+  ]),
+  arOls: autoregression("leastSquares", (item, p) => [
+    ...checksOf(item, "intercept", () => "m.constant"),
+    ...checksOf(item, "sigma2", () => "m.sigma2"),
+    ...checksOf(item, "sigma2DfAdjusted", () => `m.sigma2 * (y.n - ${p}) / (y.n - ${2 * p + 1})`),
+    ...checksOf(item, "se", (i) => `m.se.phi[${i}]`),
+  ]),
+  arOrderAic: (item) => {
+    const { method, maxOrder } = item.inputs as { readonly method: string; readonly maxOrder: number };
+    const aic = `range(0, ${maxOrder}, 1).map(k => y.n * log(fit({series: y, ar: k, method: "${method}"}).sigma2) + 2 * k + 2)`;
+    const cells = `${seriesCells(item.series as string, item.transform, "y")}\n${cell("values", "order", { aic })}`;
+    return write(cells, [...checksOf(item, "aicMinusMin", (i) => `order.aic[${i}] - min(order.aic)`), ...checksOf(item, "order", () => "order.aic.indexOf(min(order.aic))")]);
+  },
+  armaTheory: (item) => {
+    const { ar, ma, sar, sma, period, sigma2, maxLag, freqs } = item.inputs as unknown as Readonly<Record<string, readonly number[]>> & { readonly period?: number; readonly sigma2?: number; readonly maxLag: number };
+    const given = (parts: Readonly<Record<string, unknown>>): string => `{${Object.entries(parts).filter(([, v]) => v !== undefined).map(([key, v]) => `${key}: ${JSON.stringify(v)}`).join(", ")}}`;
+    const m = given({ phi: ar ?? [], theta: ma, seasonalPhi: sar, seasonalTheta: sma, seasonLength: period, sigma2 });
+    const side = (phi: unknown, seasonalPhi: unknown): string => given({ phi: phi ?? [], seasonalPhi, seasonLength: period });
+    const full = (field: "arFull" | "maFull"): number => (item.expected[field] as readonly number[]).length;
+    return write("", [
+      // A pure autoregression's pi weights are its coefficients multiplied out, and a pure moving average's psi weights its own.
+      ...checksOf(item, "arFull", (i) => `piWeights(${side(ar, sar)}, ${full("arFull")})[${i}]`),
+      ...checksOf(item, "maFull", (i) => `psi(${given({ theta: ma ?? [], seasonalTheta: sma, seasonLength: period })}, ${full("maFull")})[${i + 1}]`),
+      ...checksOf(item, "psi", (i) => `psi(${m}, ${maxLag})[${i}]`),
+      ...checksOf(item, "pi", (i) => `piWeights(${m}, ${maxLag})[${i}]`),
+      ...checksOf(item, "acovf", (i) => `longRun(${m}).variance * theoreticalAcf(${m}, ${maxLag})[${i}]`),
+      ...checksOf(item, "acf", (i) => `theoreticalAcf(${m}, ${maxLag})[${i}]`),
+      ...checksOf(item, "pacf", (i) => `theoreticalPacf(${m}, ${maxLag})[${i + 1}]`),
+      ...checksOf(item, "spectrum", (i) => `theoreticalSpectrum(${m}, [${freqs.join(", ")}])[${i}]`),
+      ...checksOf(item, "arRootModuli", (i) => `roots(${m}).ar[${i}].modulus`),
+      ...checksOf(item, "maRootModuli", (i) => `roots(${m}).ma[${i}].modulus`),
+    ]);
   },
   dieboldMariano: (item) => {
     const at = `dieboldMariano([${list(item.inputs.e1).join(", ")}], [${list(item.inputs.e2).join(", ")}], {horizon: ${item.inputs.h as number}, loss: "${item.inputs.power === 2 ? "squared" : "absolute"}"})`;

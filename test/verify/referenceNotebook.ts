@@ -39,8 +39,9 @@ function timesOf(series: string): readonly string[] {
 
 const plainNumber = (x: number): string => (Object.is(x, -0) ? "0" : String(x));
 
-/** Checks of one field, number or array, at the case's own tolerance. */
+/** Checks of one field, number or array, at the case's own tolerance; none where the case has no such field. */
 export function checksOf(item: Case, field: string, expression: (index: number) => string, value: unknown = item.expected[field], from = 0): Check[] {
+  if (value === undefined) return [];
   const list = (Array.isArray(value) ? value : [value]) as readonly (number | null)[];
   const tolerance = item.tolerance.fields?.[field] ?? item.tolerance;
   const size = Math.max(...list.map((v) => Math.abs(v ?? 0)));
@@ -51,7 +52,7 @@ export function checksOf(item: Case, field: string, expression: (index: number) 
   });
 }
 
-const cell = (kind: string, name: string, options: Readonly<Record<string, string | undefined>>): string =>
+export const cell = (kind: string, name: string, options: Readonly<Record<string, string | undefined>>): string =>
   [`\`\`\`${kind}: ${name}`, ...Object.entries(options).flatMap(([option, text]) => (text === undefined ? [] : [`${option}: ${text}`])), "```", ""].join("\n");
 
 /** Steps of `transform` that the language has as functions of a number; applied by `combine`. */
@@ -110,7 +111,7 @@ const dense = (lags: readonly number[], values: readonly number[]): string => {
 };
 
 /** The cells of a model: its series (differenced), its regressors and a fit called `m`, its coefficients held where `params` are given. */
-export function modelCells(item: Case, model: Model = item.inputs.model as Model, params: Params | undefined = item.inputs.params): string {
+export function modelCells(item: Case, model: Model = item.inputs.model as Model, params: Params | undefined = item.inputs.params, method?: string): string {
   const season = model.seasonal;
   const differences = [...Array.from({ length: model.d }, () => 1), ...Array.from({ length: season?.D ?? 0 }, () => season?.period ?? 1)];
   const parts = [seriesCells(item.series as string, item.transform, "w", differences)];
@@ -145,6 +146,7 @@ export function modelCells(item: Case, model: Model = item.inputs.model as Model
     mean: String(model.constant),
     regressors: regressors.length > 0 ? `{${regressors.join(", ")}}` : undefined,
     hold: hold ? `{${hold}}` : undefined,
+    method: method && `"${method}"`,
   }));
   return parts.join("\n");
 }
