@@ -4,15 +4,15 @@
 
 import { Overtaken } from "./values.ts";
 
-/** Names of the language itself, and a few harmless helpers: all that a script finds besides what it reads from other cells. */
-const KEPT = ("Object Function Array Number parseFloat parseInt Infinity NaN undefined Boolean String Symbol Date Promise RegExp Error AggregateError EvalError RangeError ReferenceError SyntaxError TypeError URIError "
+/** Names of the language itself, and a few harmless helpers: all that a script finds besides what it reads from other cells, here and in Node. */
+export const SCRIPT_NAMES: readonly string[] = ("Object Function Array Number parseFloat parseInt Infinity NaN undefined Boolean String Symbol Date Promise RegExp Error AggregateError EvalError RangeError ReferenceError SyntaxError TypeError URIError "
   + "globalThis JSON Math Intl ArrayBuffer Uint8Array Int8Array Uint16Array Int16Array Uint32Array Int32Array Float32Array Float64Array Uint8ClampedArray BigUint64Array BigInt64Array DataView Map BigInt Set WeakMap WeakSet WeakRef "
-  + "Proxy Reflect decodeURI decodeURIComponent encodeURI encodeURIComponent escape unescape isFinite isNaN Iterator structuredClone console setTimeout clearTimeout queueMicrotask performance TextEncoder TextDecoder").split(" ");
+  + "Proxy Reflect decodeURI decodeURIComponent encodeURI encodeURIComponent escape unescape isFinite isNaN Iterator structuredClone console setTimeout clearTimeout queueMicrotask").split(" ");
 
 /** The worker's program. It keeps the one way out to itself, takes the rest away, and imports the script as a module. */
 const PROGRAM = `(() => {
 const post = self.postMessage.bind(self), urlOf = URL.createObjectURL.bind(URL), BlobOf = Blob;
-const kept = new Set(${JSON.stringify(KEPT)});
+const kept = new Set(${JSON.stringify(SCRIPT_NAMES)});
 function bare() {
   for (let holder = globalThis; holder !== null && holder !== Object.prototype; holder = Object.getPrototypeOf(holder)) {
     for (const key of Reflect.ownKeys(holder)) {
