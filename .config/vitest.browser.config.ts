@@ -6,8 +6,8 @@ export default defineConfig({
     root: new URL("..", import.meta.url).pathname,
     include: ["test/browser/**/*.test.ts"],
     fileParallelism: false,
-    testTimeout: 60_000,
-    hookTimeout: 60_000,
+    testTimeout: 180_000,
+    hookTimeout: 180_000,
     // A poll waits for what a person would wait for; how long it took is the benchmarks' business.
     expect: { poll: { timeout: 15_000 } },
   },

@@ -91,13 +91,11 @@ describe("the exported page", () => {
     await page.context().close();
   });
 
-  it("shows the live page within a second or two of opening, and the still one at once", async () => {
-    const started = Date.now();
+  it("shows the still page at once, then the live one in its place", async () => {
     const { page } = await open();
     expect(await page.locator("#still h1").innerText()).toBe("Sales");
     await live(page);
-    // The budget of one second is measured by the benchmark on a quiet machine; this is a limit for a busy one.
-    expect(Date.now() - started).toBeLessThan(8000);
+    expect(await page.locator("#still").isVisible()).toBe(false);
     await page.context().close();
   });
 
