@@ -21,10 +21,14 @@ export function piWeights(model: ArmaModel, n: number): Float64Array {
   return weights(theta.map(v => -v), phi.map(v => -v), count(n, "piWeights")).slice(1).map(v => -v || 0);
 }
 
-/** Effect of a shock of one unit after 0..n periods on the scale before the series' differences. */
-export function impulseResponse(fit: Fit, n: number): Float64Array {
-  const { phi, theta } = expandedPolynomials(fit);
-  const delta = differencePolynomial(undifferenced(fit.series).differences);
+/** Effect of a shock of one unit after 0..n periods on the scale before the differences: a fit's own, or those given by their
+ *  lags beside the coefficients.
+ *  @example impulseResponse({ theta: [-0.4], differences: [1] }, 2) // [1, 0.6, 0.6] */
+export function impulseResponse(model: Fit | ArmaModel & { readonly differences?: readonly number[] }, n: number): Float64Array {
+  const { phi, theta } = expandedPolynomials(model);
+  const differences = "series" in model ? undifferenced(model.series).differences : model.differences ?? [];
+  if (differences.some(lag => !Number.isInteger(lag) || lag < 1)) throw new RangeError(`impulseResponse: differences holds ${differences.join(", ")}; give the lags, whole numbers from 1 on, as in differences: [1, 12]`);
+  const delta = differencePolynomial(differences);
   const full = new Float64Array(phi.length + delta.length);
   // (1 - phi)(1 - delta): coefficients on the right-hand side.
   phi.forEach((v, i) => { full[i] += v; delta.forEach((d, j) => { full[i + j + 1] -= v * d; }); });

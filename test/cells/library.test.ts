@@ -65,12 +65,30 @@ describe("arguments", () => {
     ["pinball", [1, 2, 5], "give a number between 0 and 1"],
     ["harmonics", [12, 9], "expected a whole number from 1 to 6"],
     ["psi", [crossings, 3], "give a fit, or coefficients such as {phi: [0.5], theta: [0.3]}"],
+    ["psi", [{ phi: 0.5 }, 3], "write phi as a list from lag 1 on, as in phi: [0.5]"],
+    ["psi", [{ phi: [0.5], teta: [0.3] }, 3], "leave out teta, which is no part of a model: that is made of phi, theta, seasonalPhi"],
+    ["halfLife", [{ phi: [NaN] }], "give finite numbers in phi, 0 for a lag that is left out"],
+    ["simulate", [{ phi: [0.5], sigma2: -1 }, 10], "give a variance above 0 for sigma2, which is -1"],
+    ["theoreticalAcf", [{ seasonalPhi: [0.5], length: 12 }, 3], "(the season's length is seasonLength)"],
+    ["impulseResponse", [{ phi: [0.5], differences: [0] }, 3], "give the lags, whole numbers from 1 on"],
   ])("%s refuses in words, case %#", (name, given, message) => {
     expect(() => call(name, ...given)).toThrow(message);
   });
 });
 
 describe("what the functions give", () => {
+  it("theory of given coefficients: memory, effect on the levels, roots, a long simulation with the long-run variance", () => {
+    // Worked by hand: an AR(1) at 0.5; a random walk whose shocks lose 0.4 of their effect.
+    expect(call("psi", { phi: [0.5] }, 3)).toEqual(Float64Array.of(1, 0.5, 0.25, 0.125));
+    expect(Array.from(call("impulseResponse", { theta: [-0.4], differences: [1] }, 2) as Float64Array)).toEqual([1, 0.6, 0.6]);
+    expect((call("roots", { phi: [0.5], theta: [-0.25] }) as { ar: unknown; ma: unknown })).toEqual({ ar: [{ re: 2, im: 0, modulus: 2 }], ma: [{ re: 4, im: 0, modulus: 4 }] });
+    const { values } = call("simulate", { phi: [0.5], sigma2: 3, mean: 7 }, 20_000, 1) as { values: Float64Array };
+    const mean = values.reduce((a, b) => a + b) / values.length, variance = values.reduce((a, b) => a + (b - mean) ** 2, 0) / values.length;
+    // Four standard errors: of a mean, sqrt(sigma2) / (1 - phi) / sqrt(n); of a variance, var sqrt(2 (1 + phi^2) / (1 - phi^2) / n).
+    expect(Math.abs(mean - 7)).toBeLessThan(4 * 2 * Math.sqrt(3 / 20_000));
+    expect(Math.abs(variance / 4 - 1)).toBeLessThan(4 * Math.sqrt(2 * (1.25 / 0.75) / 20_000));
+    expect(call("longRun", { phi: [0.5], sigma2: 3, mean: 7 })).toEqual({ mean: 7, variance: 4 });
+  });
   it("plain ones", () => {
     expect(call("range", 0, 1, 0.25)).toEqual([0, 0.25, 0.5, 0.75, 1]);
     expect(call("range", 3, 1, -1)).toEqual([3, 2, 1]);
