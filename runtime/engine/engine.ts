@@ -525,7 +525,14 @@ class NotebookEngine implements Engine {
     const base = { index: text.index, line: text.line, from: text.from, to: text.to, expression: text.expression, saved: text.saved, now: null, value: null, state: "undecided" as const };
     if (outcome === null) return { ...base, message: null };
     if (!outcome.ok) return { ...base, message: outcome.message };
-    return { ...base, ...judge(text, outcome.value) };
+    const judged = judge(text, outcome.value);
+    return { ...base, ...judged, message: Number.isNaN(outcome.value) ? `${judged.message ?? ""}${this.#remarksOn(number)}` : judged.message };
+  }
+
+  /** What the values that a number reads say about themselves: why a figure of theirs is missing stands there. */
+  #remarksOn(number: PlannedNumber): string {
+    const said = number.inputs.flatMap((id) => { const notes = notesIn(this.#valueOf(id)); return notes.length === 0 ? [] : [`. ${this.#label(id)} notes: ${notes.join(" ")}`]; });
+    return said.join("");
   }
 
   #placeOf(cell: PlannedCell, at: { readonly option: string | null; readonly from: number; readonly to: number | null } | null): CellReport["at"] {
@@ -555,9 +562,15 @@ function judge(text: LiveNumber, value: unknown): Pick<NumberReport, "now" | "va
     return { now: null, value: null, state: "undecided", message: `This gives ${whatIs(value)}: choose one number, text or truth of it` };
   }
   const agreed = agrees(text.saved, text.pattern, value as LiveValue);
-  if (agreed === null) return { now: null, value: null, state: "undecided", message: "Undecided: the value is missing (NaN) or not finite" };
+  if (agreed === null) return { now: null, value: null, state: "undecided", message: `Undecided: \`${text.expression}\` is ${Number.isNaN(value) ? "missing (NaN)" : "infinite"}` };
   const fault = text.pattern === null ? null : patternFault(text.pattern);
   return { now: formatLike(text.saved, text.pattern, value), value, state: agreed ? "agrees" : "moved", message: fault };
+}
+
+/** The texts of a value's own `notes`, such as a fit's. */
+function notesIn(value: unknown): readonly string[] {
+  const notes: unknown = typeof value === "object" && value !== null && "notes" in value ? value.notes : null;
+  return !Array.isArray(notes) ? [] : notes.flatMap((each: unknown) => typeof each === "object" && each !== null && "text" in each && typeof each.text === "string" ? [each.text] : []);
 }
 
 function valuesOf(part: Extract<Part, { part: "control" }>): readonly unknown[] {

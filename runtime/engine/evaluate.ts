@@ -1,7 +1,7 @@
 // The expression language, interpreted: an ECMAScript tree compiled to closures. Nothing here makes code from text.
 
 import type { AnyNode, ArrowFunctionExpression, Expression, MemberExpression, Pattern } from "../text/acorn.ts";
-import { arithmetic, compare, EvaluationError, isSignal, property, spreadInto, spreadObject, textOf, Undecided, whatIs } from "./values.ts";
+import { arithmetic, compare, EvaluationError, isSignal, Missing, property, spreadInto, spreadObject, textOf, whatIs } from "./values.ts";
 import { method } from "./methods.ts";
 
 /** What an evaluation may ask of its surroundings. */
@@ -194,12 +194,16 @@ function binaryCode(node: Extract<AnyNode, { type: "BinaryExpression" }>, scope:
     return (frame) => {
       const a = left(frame), b = right(frame);
       if (sameType) placed(node, () => comparable(operator, a, b));
-      if (frame.around.claim === true && frame.up === null && (Number.isNaN(a) || Number.isNaN(b))) throw new Undecided("a value compared here is missing (NaN)");
+      if (frame.up === null) { decides(a, node.left, frame); decides(b, node.right, frame); }
       return (a === b) === equal;
     };
   }
   if (operator === "<" || operator === "<=" || operator === ">" || operator === ">=") {
-    return (frame) => { const a = left(frame), b = right(frame); return placed(node, () => compare(operator, a, b, frame.around.claim === true)); };
+    return (frame) => {
+      const a = left(frame), b = right(frame);
+      if (typeof a === typeof b) { decides(a, node.left, frame); decides(b, node.right, frame); }
+      return placed(node, () => compare(operator, a, b));
+    };
   }
   return (frame) => { const a = left(frame), b = right(frame); return placed(node, () => arithmetic(operator, a, b)); };
 }
@@ -210,9 +214,14 @@ function comparable(operator: string, a: unknown, b: unknown): void {
   throw new EvaluationError(`\`${operator}\` compares two values of one type; here are ${whatIs(a)} and ${whatIs(b)}`);
 }
 
-/** ECMAScript's truth of a value; missing data does not decide a claim. */
+/** Missing data does not decide a claim. */
+function decides(value: unknown, node: AnyNode, frame: Frame): void {
+  if (frame.around.claim === true && Number.isNaN(value)) throw new Missing({ from: node.start, to: node.end });
+}
+
+/** ECMAScript's truth of a value. */
 function truth(value: unknown, node: AnyNode, frame: Frame): boolean {
-  if (frame.around.claim === true && Number.isNaN(value)) throw new Undecided("a value asked for its truth is missing (NaN)");
+  decides(value, node, frame);
   if (typeof value === "object" && value !== null) throw new EvaluationError("A condition is true or false; this is an object or a list", { from: node.start, to: node.end });
   return Boolean(value);
 }

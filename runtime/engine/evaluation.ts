@@ -6,7 +6,7 @@ import type { Compiled } from "./evaluate.ts";
 import { compile } from "./evaluate.ts";
 import type { LibraryScope } from "./library.ts";
 import type { Outcome } from "./outcome.ts";
-import { EvaluationError, Pending, Undecided } from "./values.ts";
+import { EvaluationError, Missing, Pending, Undecided } from "./values.ts";
 
 /** Where a name comes from: a cell, or one of a script's exports. */
 export interface NameSource { readonly id: string; readonly part: string | null }
@@ -48,6 +48,7 @@ export async function evaluate(source: string, scope: EvaluationScope): Promise<
     try {
       return compiled({ callables, claim: scope.claim, lookup: (name) => lookup(name, scope, callables, callKind) });
     } catch (error) {
+      if (error instanceof Missing) throw new Undecided(`\`${source.slice(error.place.from, error.place.to)}\` is missing (NaN)`);
       if (!(error instanceof Pending)) throw error;
       await error.answer;
     }

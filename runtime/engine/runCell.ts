@@ -6,7 +6,7 @@ import { evaluate } from "./evaluation.ts";
 import type { EvaluationScope, NameSources } from "./evaluation.ts";
 import type { LibraryScope } from "./library.ts";
 import type { Outcome, PlaceInCell } from "./outcome.ts";
-import { EvaluationError, Overtaken, Undecided } from "./values.ts";
+import { EvaluationError, Overtaken, Undecided, whatIs } from "./values.ts";
 
 /** What a cell is, apart from where it stands. */
 export interface Definition {
@@ -70,7 +70,7 @@ async function decide(source: string, scope: EvaluationScope): Promise<ClaimOutc
     const value = await evaluate(source, scope);
     if (typeof value === "boolean") return { holds: value };
     if (typeof value === "number" && Number.isNaN(value)) return { holds: null, message: "Undecided: the condition is missing (NaN)" };
-    return { holds: null, message: `Undecided: a claim is true or false, and this gives ${typeof value === "object" || value === undefined ? "neither" : JSON.stringify(value)}` };
+    return { holds: null, message: `Undecided: a claim is true or false, and this gives ${whatIs(value)}` };
   } catch (error) {
     if (error instanceof Overtaken || scope.context.signal.aborted) throw error;
     return { holds: null, message: `Undecided: ${messageOf(error)}` };

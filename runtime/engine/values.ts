@@ -16,6 +16,11 @@ export class EvaluationError extends Error {
 export class Signal extends Error {}
 /** A claim cannot be decided. */
 export class Undecided extends Signal { override readonly name = "Undecided" }
+/** A claim hangs on missing data; `place` is in the expression's source, for whoever knows it to say what is missing. */
+export class Missing extends Undecided {
+  readonly place: { readonly from: number; readonly to: number };
+  constructor(place: { readonly from: number; readonly to: number }) { super("a value is missing (NaN)"); this.place = place; }
+}
 /** A called kind answers later: evaluate again when it has. */
 export class Pending extends Signal {
   override readonly name = "Pending";
@@ -93,10 +98,9 @@ export function arithmetic(operator: string, a: unknown, b: unknown): number | s
   throw new EvaluationError(`\`${operator}\` works on two numbers${operator === "+" ? " or two texts" : ""}; here is ${whatIs(typeof a === "number" ? b : a)}${instead(typeof a === "number" ? b : a, operator)}`);
 }
 
-/** Order of two numbers or two texts. @throws EvaluationError, Undecided where a claim meets missing data */
-export function compare(operator: "<" | "<=" | ">" | ">=", a: unknown, b: unknown, claim: boolean): boolean {
+/** Order of two numbers or two texts. @throws EvaluationError */
+export function compare(operator: "<" | "<=" | ">" | ">=", a: unknown, b: unknown): boolean {
   if ((typeof a === "number" && typeof b === "number") || (typeof a === "string" && typeof b === "string")) {
-    if (claim && (Number.isNaN(a) || Number.isNaN(b))) throw new Undecided("a value compared here is missing (NaN)");
     switch (operator) {
       case "<": return a < b;
       case "<=": return a <= b;

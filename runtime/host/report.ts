@@ -4,30 +4,47 @@ import type { VerifyResult } from "../engine/result.ts";
 
 /** @param accepted  how many numbers were written into the text; null where that was not asked for */
 export function reportText(file: string, result: VerifyResult, accepted: number | null): string {
-  const lines = [...cellLines(result), ...claimLines(result), ...numberLines(result), ...problemLines(result)].sort((a, b) => a.line - b.line);
-  const width = Math.max(0, ...lines.map(({ what }) => what.length)), digits = Math.max(0, ...lines.map(({ line }) => String(line).length));
-  const parts = lines.map(({ line, what, text }) => `${file}:${String(line).padEnd(digits)}  ${what.padEnd(width)}  ${text}`);
+  const lines = [...cellLines(result), ...claimLines(result), ...numberLines(result), ...problemLines(result), ...noteLines(result)].sort((a, b) => a.line - b.line || (a.column ?? 0) - (b.column ?? 0));
+  const places = lines.map(({ line, column }) => `${file}:${line}${column === null ? "" : `:${column}`}`);
+  const placeWidth = widest(places), width = widest(lines.map(({ what }) => what));
+  const parts = lines.map(({ what, text }, i) => `${places[i].padEnd(placeWidth)}  ${what.padEnd(width)}  ${text}`);
   if (accepted !== null) parts.push(accepted === 0 ? "No number had moved." : `${accepted === 1 ? "1 number was" : `${accepted} numbers were`} written into the text.`);
   parts.push(`${result.ok ? "All stands" : "Not all stands"}: ${tally(result)}.`);
   return `${parts.join("\n")}\n`;
 }
 
-interface Line { readonly line: number; readonly what: string; readonly text: string }
+/** `column` is null where the whole line is meant. */
+interface Line { readonly line: number; readonly column: number | null; readonly what: string; readonly text: string }
+
+function widest(texts: readonly string[]): number {
+  return texts.reduce((most, text) => Math.max(most, text.length), 0);
+}
 
 function cellLines({ cells }: VerifyResult): Line[] {
-  return cells.filter((cell) => cell.state !== "current").map(({ line, state, kind, name, message }) => ({ line, what: state, text: `${kind}${name === null ? "" : ` ${name}`}: ${message ?? ""}` }));
+  return cells.filter((cell) => cell.state !== "current").map(({ line, state, kind, name, message, at }) => ({ line: at?.line ?? line, column: at?.column ?? null, what: state, text: `${kind}${name === null ? "" : ` ${name}`}: ${message ?? ""}` }));
 }
 
 function claimLines({ claims }: VerifyResult): Line[] {
-  return claims.filter((claim) => claim.holds !== true).map(({ line, claim, holds, message }) => ({ line, what: holds === false ? "broken" : "undecided", text: `“${claim}”${message === null ? "" : `: ${message}`}` }));
+  return claims.filter((claim) => claim.holds !== true).map(({ line, claim, holds, message }) => ({ line, column: null, what: holds === false ? "broken" : "undecided", text: `“${claim}”${message === null ? "" : `: ${reason(message)}`}` }));
 }
 
 function numberLines({ numbers }: VerifyResult): Line[] {
-  return numbers.filter((number) => number.agrees !== true).map(({ line, expression, saved, now, agrees }) => ({ line, what: agrees === false ? "moved" : "undecided", text: agrees === false ? `${saved} is now ${now ?? "?"}  (${expression})` : `${saved}  (${expression})` }));
+  return numbers.filter((number) => number.agrees !== true).map(({ line, expression, saved, now, agrees, message }) => ({
+    line, column: null, what: agrees === false ? "moved" : "undecided", text: `${saved}${agrees === false ? ` is now ${now ?? "?"}` : ""}  (${expression})${message === null ? "" : `: ${reason(message)}`}`,
+  }));
 }
 
 function problemLines({ problems }: VerifyResult): Line[] {
-  return problems.map(({ line, message }) => ({ line, what: "problem", text: message }));
+  return problems.map(({ line, column, message }) => ({ line, column, what: "problem", text: message }));
+}
+
+function noteLines({ notes }: VerifyResult): Line[] {
+  return notes.map(({ line, column, message }) => ({ line, column, what: "note", text: message }));
+}
+
+/** The state is told in a column of its own. */
+function reason(message: string): string {
+  return message.replace(/^Undecided: /, "");
 }
 
 function tally({ cells, claims, numbers, problems }: VerifyResult): string {

@@ -187,12 +187,17 @@ describe("function forms, claims, live numbers", () => {
     expect(engine.numbers()[0]).toMatchObject({ state: "moved", saved: "4", now: "6", value: 6, line: 19 });
   });
 
+  test("a missing figure is undecided with what its cell notes about it", async () => {
+    const { engine } = await open(`${cell("values: v", "error: NaN", 'notes: [{text: "A root lies on the unit circle."}]')}[1](=v.error) [2](=v)\n`);
+    expect(engine.numbers().map((each) => each.message)).toEqual(["Undecided: `v.error` is missing (NaN). `v` notes: A root lies on the unit circle.", "This gives an object: choose one number, text or truth of it"]);
+  });
+
   test("the result of verify has the shape of the language", async () => {
     const { engine } = await open(`${chain}[4](=b.twice)\n\n${cell("claims:", '"holds": b.twice === 4')}`);
     expect(resultOf(engine, "n.md")).toEqual({
-      language: "1", notebook: "n.md", ok: true, problems: [],
-      cells: [["a", "slider", 1], ["b", "double", 7], ["c", "double", 11], ["other", "double", 15], [null, "claims", 21]].map(([name, kind, line]) => ({ name, kind, line, state: "current", message: null })),
-      numbers: [{ line: 19, expression: "b.twice", saved: "4", now: "4", value: 4, agrees: true }],
+      language: "1", notebook: "n.md", ok: true, problems: [], notes: [],
+      cells: [["a", "slider", 1], ["b", "double", 7], ["c", "double", 11], ["other", "double", 15], [null, "claims", 21]].map(([name, kind, line]) => ({ name, kind, line, state: "current", message: null, at: null })),
+      numbers: [{ line: 19, expression: "b.twice", saved: "4", now: "4", value: 4, agrees: true, message: null }],
       claims: [{ line: 22, claim: "holds", holds: true, message: null }],
     });
   });

@@ -36,6 +36,31 @@ describe("lagbook verify", () => {
     expect(out).toMatch(/n\.md:20 {2}broken {2}“q is small”/);
   });
 
+  it("names line and column of a fault, not the line of its cell's fence", async () => {
+    writeFileSync(join(folder, "f.md"), "# F\n\n```load: sold\nfile: \"sold.csv\"\n```\n\n```fit: m\nseries: sold\n\nar: [1,\n  two]\n```\n");
+    expect((await lagbook("verify", "f.md")).out).toMatch(/^f\.md:11:3 {2}failed {2}fit m: There is no `two`/);
+    const { cells } = JSON.parse((await lagbook("verify", "f.md", "--json")).out) as { cells: unknown[] };
+    expect(cells[1]).toMatchObject({ name: "m", line: 7, state: "failed", at: { line: 11, column: 3 } });
+  });
+
+  it("gives the reason why a number or claim is undecided: the cell that failed, or what is missing", async () => {
+    writeFileSync(join(folder, "u.md"), ["```load: sold", 'file: "gone.csv"', "```", "", "```values: v", "none: [NaN]", "```", "", "[1](=sold.n), [2](<=v.none[0]>) and [3](<=1 / 0>).", "", "```claims:", '"many": sold.n > 3', '"large": 4 < v.none[0] + 1', '"list": v.none', "```", ""].join("\n"));
+    const { out } = await lagbook("verify", "u.md");
+    expect(out).toContain("u.md:9    undecided  1  (sold.n): `sold` failed\n");
+    expect(out).toContain("u.md:9    undecided  2  (v.none[0]): `v.none[0]` is missing (NaN)\n");
+    expect(out).toContain("u.md:9    undecided  3  (1 / 0): `1 / 0` is infinite\n");
+    expect(out).toContain("u.md:12   undecided  “many”: `sold` failed\n");
+    expect(out).toContain("u.md:13   undecided  “large”: `v.none[0] + 1` is missing (NaN)\n");
+    expect(out).toContain("u.md:14   undecided  “list”: a claim is true or false, and this gives a list of 1\n");
+    const { numbers } = JSON.parse((await lagbook("verify", "u.md", "--json")).out) as { numbers: { message: string }[] };
+    expect(numbers[1].message).toBe("Undecided: `v.none[0]` is missing (NaN)");
+  });
+
+  it("a fence that only lacks its colon is prose, with a note that says so, and all may stand", async () => {
+    writeFileSync(join(folder, "c.md"), "Words.\n\n```fit m\nseries: sold\n```\n");
+    expect(await lagbook("verify", "c.md")).toMatchObject({ code: 0, out: expect.stringMatching(/^c\.md:3:4 {2}note {2}This is read as prose: for a cell, write `fit:` with a colon\n/) });
+  });
+
   it("sets a window by an ISO 8601 interval", async () => {
     const { out } = await lagbook("verify", "n.md", "--json", "--set", "sample=2019-01/2019-12");
     const { numbers } = JSON.parse(out) as { numbers: { expression: string; value: unknown }[] };
@@ -48,10 +73,10 @@ describe("lagbook verify", () => {
 
   it("prints the whole result as JSON in the fields of the language", async () => {
     const result = JSON.parse((await lagbook("verify", "n.md", "--json")).out) as Record<string, unknown[]>;
-    expect(Object.keys(result).slice(0, 6)).toEqual(["language", "notebook", "ok", "cells", "numbers", "claims"]);
+    expect(Object.keys(result)).toEqual(["language", "notebook", "ok", "cells", "numbers", "claims", "problems", "notes"]);
     expect(result.notebook).toBe("n.md");
-    expect(result.cells[0]).toEqual({ name: "sold", kind: "load", line: 3, state: "current", message: null });
-    expect(result.numbers[0]).toEqual({ line: 17, expression: "sold.n", saved: "72", now: "72", value: 72, agrees: true });
+    expect(result.cells[0]).toEqual({ name: "sold", kind: "load", line: 3, state: "current", message: null, at: null });
+    expect(result.numbers[0]).toEqual({ line: 17, expression: "sold.n", saved: "72", now: "72", value: 72, agrees: true, message: null });
     expect(result.claims[0]).toEqual({ line: 20, claim: "q is small", holds: true, message: null });
   });
 
