@@ -1,6 +1,7 @@
 // The notebook's file: read whole, written whole, and never over a text that the writer has not seen.
 
-import { readFile, realpath, stat } from "node:fs/promises";
+import { readFileSync } from "node:fs";
+import { readFile, stat } from "node:fs/promises";
 import { writeWhole } from "./write.ts";
 import { hash } from "./hash.ts";
 import { CannotRun } from "./io.ts";
@@ -53,12 +54,20 @@ export class Store {
   async #save(text: string, seen: string | null): Promise<SaveResult> {
     const found = await this.#found();
     if ((found?.hash ?? null) !== seen) return { found };
-    // A notebook may be a link to a file elsewhere: the file is written, the link stays.
-    const target = found ? await realpath(this.path) : this.path;
     // Replacing a file asks the folder's leave, not the file's: a file that was protected would be written all the same.
-    if (found && ((await stat(target)).mode & 0o222) === 0) throw new CannotRun(`${this.path} is read-only, so nothing was written into it. Make it writable, or copy the text elsewhere.`);
-    await writeWhole(target, text);
+    if (found && ((await stat(this.path)).mode & 0o222) === 0) throw new CannotRun(`${this.path} is read-only, so nothing was written into it. Make it writable, or copy the text elsewhere.`);
+    // Flushing a text to the disk takes a while, in which another program may have written its own.
+    if (!await writeWhole(this.path, text, () => this.#hashNow() === seen)) return { found: await this.#found() };
     return { saved: { text, hash: hash(text) } };
+  }
+
+  #hashNow(): string | null {
+    try {
+      return hash(readFileSync(this.path));
+    } catch (error) {
+      if (isMissing(error)) return null;
+      throw error;
+    }
   }
 
   async #found(): Promise<Stored | null> {
@@ -66,9 +75,11 @@ export class Store {
       await stat(this.path);
     } catch (error) {
       // Only what is not there may be written anew; what cannot be looked at may well be there.
-      if (error instanceof Error && "code" in error && error.code === "ENOENT") return null;
+      if (isMissing(error)) return null;
       throw new CannotRun(`${this.path} cannot be read: ${error instanceof Error ? error.message : String(error)}`);
     }
     return this.read();
   }
 }
+
+function isMissing(error: unknown): boolean { return error instanceof Error && "code" in error && error.code === "ENOENT"; }

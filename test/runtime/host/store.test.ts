@@ -46,6 +46,18 @@ describe("a notebook's store", () => {
     expect(results[1]).toHaveProperty("found.text", "first");
   });
 
+  it("lets one of two desks win, each with a store of its own, and shows it to the other", async () => {
+    for (let round = 0; round < 20; round++) {
+      writeFileSync(path, "base");
+      const stores = [new Store(path), new Store(path)], { hash: seen } = await stores[0].read();
+      const results = await Promise.all(stores.map((store, i) => store.save(`text ${i}`, seen)));
+      const winner = results.findIndex((result) => "saved" in result);
+      expect(readFileSync(path, "utf8")).toBe(`text ${winner}`);
+      expect(results[1 - winner]).toHaveProperty("found.text", `text ${winner}`);
+    }
+    expect(readdirSync(folder)).toEqual(["n.md"]);
+  });
+
   it("writes through a link and leaves nothing beside the file", async () => {
     const target = join(folder, "real.md");
     writeFileSync(target, "one");
