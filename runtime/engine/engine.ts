@@ -16,12 +16,12 @@ import { libraryScope } from "./library.ts";
 import type { CellReport, CellState, FromEngine, NumberReport } from "./messages.ts";
 import { createPace, nextTask } from "./nextTask.ts";
 import { sameData } from "./outcome.ts";
-import type { Outcome } from "./outcome.ts";
+import type { NotDone, Outcome } from "./outcome.ts";
 import { createOutliner } from "./outline.ts";
 import { planOf } from "./plan.ts";
 import type { Plan, PlannedCell, PlannedNumber } from "./plan.ts";
 import { messageOf, runCell } from "./runCell.ts";
-import type { Definition } from "./runCell.ts";
+import type { CellSurroundings, Definition } from "./runCell.ts";
 import { EvaluationError, Overtaken, Undecided, whatIs } from "./values.ts";
 
 export interface EngineHost {
@@ -63,6 +63,8 @@ export interface Engine {
   claims(): readonly ClaimReport[];
   /** Settings that differ from the text's. */
   moved(): Readonly<Record<string, unknown>>;
+  /** Settings that their controls could not take, each with the reason: those controls stand as the text says. */
+  refused(): Readonly<Record<string, string>>;
   /** Names of the controls, with what they stand at. */
   controls(): readonly { readonly name: string; readonly kind: string; readonly at: unknown }[];
   /** The cell that is running just now. */
@@ -118,6 +120,8 @@ class NotebookEngine implements Engine {
   #numbers = new Map<string, PlannedNumber>();
   readonly #entries = new Map<string, Entry>();
   readonly #settings = new Map<string, unknown>();
+  /** Settings that were dropped, until their control is moved again: the reader is told. `reason` is null where the control's own text was edited. */
+  readonly #dropped = new Map<string, { readonly at: unknown; readonly reason: string | null }>();
   readonly #held = new Set<string>();
   /** Ids whose present value is out of date. */
   readonly #outstanding = new Set<string>();
@@ -155,7 +159,7 @@ class NotebookEngine implements Engine {
       if (entry?.mark === each.mark) continue;
       if (entry !== undefined) this.#held.delete(id);
       // The newest intention wins: an edit of a control's own text drops its moved setting.
-      if (entry !== undefined && this.#settings.has(id)) this.#settings.delete(id);
+      if (entry !== undefined && this.#settings.has(id)) this.#drop(id, this.#controlPart(id)?.at ?? this.#settings.get(id), null);
       changed.push(id);
     }
     for (const id of changed) this.#ensure(id, planned.get(id));
@@ -166,6 +170,7 @@ class NotebookEngine implements Engine {
 
   set(name: string, value: unknown): void {
     this.#settings.set(name, value);
+    this.#dropped.delete(name);
     this.#rerun([name]);
   }
 
@@ -229,6 +234,10 @@ class NotebookEngine implements Engine {
     return moved;
   }
 
+  refused(): Readonly<Record<string, string>> {
+    return Object.fromEntries([...this.#dropped].flatMap(([name, { reason }]) => (reason === null ? [] : [[name, reason] as const])));
+  }
+
   controls(): readonly { readonly name: string; readonly kind: string; readonly at: unknown }[] {
     return [...this.#cells.values()].flatMap((cell) => {
       if (this.#kindOf(cell)?.control === undefined || cell.text.name === null) return [];
@@ -265,7 +274,13 @@ class NotebookEngine implements Engine {
     this.#outstanding.delete(id);
     this.#dirty.delete(id);
     this.#settings.delete(id);
+    this.#dropped.delete(id);
     this.#held.delete(id);
+  }
+
+  #drop(id: string, at: unknown, reason: string | null): void {
+    this.#settings.delete(id);
+    this.#dropped.set(id, { at, reason });
   }
 
   /** Asks for a new run of cells, on whatever they read. */
@@ -353,11 +368,22 @@ class NotebookEngine implements Engine {
     this.#running.set(entry.id, signal);
     try {
       const context = this.#context(entry, definition, outcomes, signal);
-      return await runCell(definition, { language: this.#language, library: this.#library, outcomes, label: (id) => this.#label(id), context, notes: entry.notes });
+      const around = { language: this.#language, library: this.#library, outcomes, label: (id: string) => this.#label(id), context, notes: entry.notes };
+      const outcome = await runCell(definition, around);
+      return outcome.ok || context.setting === undefined ? outcome : await this.#withoutSetting(definition, around, outcome);
     } finally {
       entry.lastMs = performance.now() - started;
       if (this.#running.get(entry.id) === signal) this.#running.delete(entry.id);
     }
+  }
+
+  /** A setting that its control cannot take, perhaps since an edit elsewhere, gives way to the text's, where that can be had. */
+  async #withoutSetting(cell: Definition, around: CellSurroundings, refused: NotDone): Promise<Outcome> {
+    const { setting, signal } = around.context;
+    const outcome = await runCell(cell, { ...around, context: { ...around.context, setting: undefined } });
+    if (!outcome.ok) return refused;
+    if (!signal.aborted && this.#settings.get(cell.id) === setting) this.#drop(cell.id, setting, refused.message);
+    return outcome;
   }
 
   async #runNumber(entry: Entry, inputs: readonly Outcome[], signal: AbortSignal): Promise<Outcome> {
@@ -495,12 +521,19 @@ class NotebookEngine implements Engine {
     }
     const shown = this.#shown(entry);
     if (shown !== null && shown.fault !== null) return { ...base, state: "failed", message: shown.fault };
-    const notes = [...outcome.notes, ...this.#textNotes(text.index)];
+    const notes = [...outcome.notes, ...this.#textNotes(text.index), ...this.#droppedNote(id)];
     return { ...base, notes, show: shown?.parts ?? null, fields: text.name === null || !this.#draw ? null : fieldsOf(text.name, outcome.value) };
   }
 
   #textNotes(index: number): string[] {
     return (this.#notebook?.problems ?? []).filter((each) => each.cell === index && each.severity === "note").map((each) => each.message);
+  }
+
+  #droppedNote(id: string): string[] {
+    const dropped = this.#dropped.get(id);
+    if (dropped === undefined || sameData(dropped.at, this.#controlPart(id)?.kept)) return [];
+    const why = dropped.reason === null ? "; its text was edited since" : `, which it cannot take: ${dropped.reason}`;
+    return [`It had been moved to ${settingWords(dropped.at)}${why}. It stands as the text says`];
   }
 
   #shown(entry: Entry): Entry["shown"] {
@@ -580,6 +613,12 @@ function valuesOf(part: Extract<Part, { part: "control" }>): readonly unknown[] 
     case "switch": return [false, true];
     case "window": return [];
   }
+}
+
+/** @example settingWords({ from: "2019-01", to: "2020-12" }) // "2019-01 to 2020-12" */
+function settingWords(setting: unknown): string {
+  const ends = typeof setting === "object" && setting !== null ? Object.values(setting).filter((each) => typeof each === "string") : [];
+  return ends.length > 0 ? ends.join(" to ") : JSON.stringify(setting);
 }
 
 function sourcesOf(cell: Definition): Readonly<Record<string, string>> {

@@ -34,7 +34,7 @@ export interface Computed {
 }
 
 /** Computes everything and waits until it stands.
- *  @throws CannotRun where a setting names no control */
+ *  @throws CannotRun where a setting names no control, or one that cannot take it */
 export async function compute(task: Task): Promise<Computed> {
   const files = new Map<string, { readonly bytes: Uint8Array } | { readonly reason: string }>();
   const messages: FromEngine[] = [];
@@ -48,6 +48,7 @@ export async function compute(task: Task): Promise<Computed> {
     checkSettings(engine, task.settings);
     for (const { name, value } of task.settings) engine.set(name, value);
     await engine.settle();
+    for (const [name, reason] of Object.entries(engine.refused())) throw new CannotRun(`--set ${name}: ${reason}.`);
     return { result: resultOf(engine, task.notebook ?? ""), messages, cells: engine.cells(), numbers: engine.numbers(), files };
   } finally {
     engine.dispose();

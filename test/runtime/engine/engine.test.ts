@@ -80,6 +80,36 @@ describe("recomputation", () => {
     expect(at("b").fields).toContainEqual({ expression: "b.of", value: 1 });
   });
 
+  test("a dropped setting is told beside its control until it is moved again", async () => {
+    const { engine, cell: at, sent } = await open(chain);
+    engine.set("a", 4);
+    await engine.settle();
+    engine.setText(chain.replace("at: 2", "at: 1"));
+    await engine.settle();
+    expect(at("a").notes).toEqual(["It had been moved to 4; its text was edited since. It stands as the text says"]);
+    expect(sent.findLast((each) => each.from === "cell" && each.cell.id === "a")).toMatchObject({ cell: { notes: [expect.stringContaining("moved to 4")] } });
+    // Whoever keeps the settings now takes this one back: that changes nothing.
+    engine.unset("a");
+    engine.set("a", 3);
+    await engine.settle();
+    expect(at("a").notes).toEqual([]);
+    expect(engine.refused()).toEqual({});
+  });
+
+  test("a setting that an edit elsewhere made impossible gives way to the text's, and that is told", async () => {
+    const bounded = (most: number): string => cell("slider: a", "from: 0", "to: most.n", "at: 1") + cell("values: most", `n: ${most}`) + cell("double: b", "of: a");
+    const { engine, cell: at } = await open(bounded(5));
+    engine.set("a", 4);
+    await engine.settle();
+    expect(at("b").fields).toContainEqual({ expression: "b.of", value: 4 });
+    engine.setText(bounded(3));
+    await engine.settle();
+    expect(at("a")).toMatchObject({ state: "current", notes: ["It had been moved to 4, which it cannot take: the setting is 4, outside 0 to 3. It stands as the text says"] });
+    expect(at("b").fields).toContainEqual({ expression: "b.of", value: 1 });
+    expect(engine.moved()).toEqual({});
+    expect(engine.refused()).toEqual({ a: "the setting is 4, outside 0 to 3" });
+  });
+
   test("the newest of many moves wins, and overtaken work stops", async () => {
     const { engine, cell: at, sent } = await open(cell("slider: a", "from: 0", "to: 30") + cell("double: slow", "of: a", "slow: 40") + cell("double: after", "of: slow.twice"));
     const began = performance.now();

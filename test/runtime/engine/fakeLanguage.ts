@@ -16,7 +16,9 @@ const slider: Kind<{ from: number; to: number; step: number; at?: number }, Slid
   },
   run: (options, context) => {
     const kept = options.at ?? options.from;
-    return { at: (context.setting as number | undefined) ?? kept, kept, from: options.from, to: options.to, step: options.step };
+    const setting = context.setting as number | undefined;
+    if (setting !== undefined && (setting < options.from || setting > options.to)) throw new OptionError(null, `the setting is ${setting}, outside ${options.from} to ${options.to}`);
+    return { at: setting ?? kept, kept, from: options.from, to: options.to, step: options.step };
   },
   show: (result) => [{ part: "control", control: "slider", label: "s", ...result }],
   value: (result) => result.at,

@@ -71,6 +71,11 @@ describe("lagbook verify", () => {
     expect(await lagbook("verify", "n.md", "--set", "r=1")).toMatchObject({ code: 2, out: "", error: expect.stringMatching(/no control of that name.*sample \(window\), q \(slider\)/) });
   });
 
+  it("refuses a setting that its control cannot take, with the reason", async () => {
+    expect(await lagbook("verify", "n.md", "--set", "q=9")).toMatchObject({ code: 2, out: "", error: "lagbook: --set q: the setting is 9, outside 0 to 3.\n" });
+    expect(await lagbook("verify", "n.md", "--set", "sample=1990")).toMatchObject({ code: 2, error: expect.stringMatching(/--set sample: the setting 1990 is no window/) });
+  });
+
   it("prints the whole result as JSON in the fields of the language", async () => {
     const result = JSON.parse((await lagbook("verify", "n.md", "--json")).out) as Record<string, unknown[]>;
     expect(Object.keys(result)).toEqual(["language", "notebook", "ok", "cells", "numbers", "claims", "problems", "notes"]);
