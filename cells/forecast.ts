@@ -1,10 +1,10 @@
 // The kind that forecasts from the end of a model's window.
 
-import { forecast as makeForecast, type Forecast, type ForecastOptions, type Series } from "../stdlib/index.ts";
-import { OptionError, type Kind, type OptionTable } from "./kind.ts";
+import { forecasting, withPauses, type Forecast, type ForecastOptions, type Series } from "../stdlib/index.ts";
+import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { needForecaster } from "./parts/forecaster.ts";
 import { forecastParts } from "./parts/forecastParts.ts";
-import { plainly } from "./parts/needs.ts";
+import { asOptionError } from "./parts/needs.ts";
 
 export interface ForecastCell {
   readonly model: unknown;
@@ -42,11 +42,11 @@ export const forecast: Kind<ForecastCell, Forecast> = {
   body: "options",
   callable: true,
   example: "model: airline\nhorizon: 12",
-  run: options => runForecast(options),
+  run: (options, context) => runForecast(options, context),
   show: result => forecastParts(result),
 };
 
-export function runForecast(options: ForecastCell): Forecast {
+export async function runForecast(options: ForecastCell, context: RunContext): Promise<Forecast> {
   const model = needForecaster(options.model);
   const { horizon } = options;
   if (!Number.isInteger(horizon) || horizon < 1) throw new OptionError("horizon", `the horizon is a whole number of periods, 1 or more; found ${String(horizon)}`);
@@ -56,5 +56,12 @@ export function runForecast(options: ForecastCell): Forecast {
     if (!(level > 0 && level < 1)) throw new OptionError("levels", `each level is a share between 0 and 1, such as 0.9; found ${String(level)}${level > 1 && level < 100 ? `: for ${level}% write ${level / 100}` : ""}`);
   }
   const rest = Object.fromEntries(Object.entries(options).filter(([name, value]) => value !== null && value !== undefined && name !== "model"));
-  return plainly(() => makeForecast(model, { ...rest, horizon, levels }));
+  try {
+    return await withPauses(forecasting(model, { ...rest, horizon, levels }), ({ done, total, what }) => {
+      context.progress(done, total, what);
+      return context.breathe();
+    });
+  } catch (error) {
+    throw asOptionError(error);
+  }
 }

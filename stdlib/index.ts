@@ -49,7 +49,8 @@ export { autoregressionByLeastSquares, burg, yuleWalker, type AutoregressionFit 
 export { type Fit, type FitOptions, type Held, type Hold, type Lags, type Method, type Note, type Regressor, type Root, type Season, type StandardErrors } from "./arma/model.ts";
 // forecast
 export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
-export { forecast, scenarios } from "./forecast/forecast.ts";
+export { forecast, forecasting } from "./forecast/forecast.ts";
+export { withPauses, type Gradual, type Progress } from "./forecast/gradual.ts";
 export { refit, type RefitHow } from "./forecast/refit.ts";
 export { rule, isRule, type SmoothingOptions } from "./forecast/rules.ts";
 export { exponentialSmoothing, type Smoothed, type SmoothingWeights } from "./forecast/smoothing/exponentialSmoothing.ts";

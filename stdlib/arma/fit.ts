@@ -19,6 +19,8 @@ import { assemble, type Solution } from "./report.ts";
 export interface FitHow {
   /** False leaves standard errors out (NaN): for grids and rolling refits, where nobody reads them. */
   readonly standardErrors?: boolean;
+  /** False leaves residuals out (NaN): for many refits of which only the coefficients are read. */
+  readonly residuals?: boolean;
   /** Coefficients phi, Phi, theta, Theta to start from. */
   readonly near?: Float64Array;
 }
@@ -86,7 +88,7 @@ function finish(numbers: Numbers, work: Work, found: Estimate, evaluate: Evaluat
   if (how.standardErrors !== false && edge) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: a root lies on the unit circle, the edge of the region, where the usual normal approximation does not hold." });
   const solution: Solution = {
     x, numbers, work, free, information, converged: found.converged, method: "exact", stationary: true, notes,
-    beta: work.beta.slice(numbers.data.gaps), logLikelihood: -found.value,
+    beta: work.beta.slice(numbers.data.gaps), logLikelihood: -found.value, residuals: how.residuals,
   };
   const result = assemble(solution);
   return { ...result, notes: [...result.notes, ...flagsOf(result, solution)] };

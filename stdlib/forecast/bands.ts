@@ -3,6 +3,7 @@
 import type { Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
 import { calibratedOutlook } from "./calibrated.ts";
+import type { Gradual } from "./gradual.ts";
 import { modelOutlook, type ModelOutlook } from "./modelOutlook.ts";
 import type { BandsHow, Forecaster } from "./model.ts";
 import { simulatedOutlook } from "./simulated.ts";
@@ -15,11 +16,11 @@ export interface BandsOptions {
 }
 
 /** A forecast distribution with bands of the asked kind, and notes on what they rest on. */
-export function bandedOutlook(model: Forecaster, horizon: number, { how, regressors, seed, levels }: BandsOptions): ModelOutlook {
+export function* bandedOutlook(model: Forecaster, horizon: number, { how, regressors, seed, levels }: BandsOptions): Gradual<ModelOutlook> {
   if (how !== "plugIn" && how !== "simulated" && how !== "calibrated") throw new RangeError(`forecast: bands is ${JSON.stringify(how)}, expected "plugIn", "simulated" or "calibrated"`);
   const plain = modelOutlook(model, horizon, regressors, seed);
   const { outlook, assumption } = how === "plugIn" ? { outlook: plain.outlook, assumption: plugIn }
-    : how === "simulated" ? simulatedOutlook(model, horizon, regressors, seed, plain) : calibratedOutlook(model, horizon, regressors, seed, levels, plain);
+    : how === "simulated" ? yield* simulatedOutlook(model, horizon, regressors, seed, plain) : yield* calibratedOutlook(model, horizon, regressors, seed, levels, plain);
   return { ...plain, outlook, notes: [...plain.notes, assumption, conditional] };
 }
 

@@ -4,22 +4,23 @@ import { expandedPolynomials } from "../arma/coefficients.ts";
 import { fitAt } from "../arma/fitAt.ts";
 import type { Fit } from "../arma/model.ts";
 import { isStable } from "../arma/region.ts";
-import { makeSeries, type Series } from "../series/series.ts";
 import { applySteps, stepOf } from "../series/steps.ts";
 import { positionIn } from "../series/calendar.ts";
-import { isSeries } from "../series/series.ts";
+import { isSeries, type Series } from "../series/series.ts";
+import type { Gradual } from "./gradual.ts";
 import { interventionColumns } from "./interventions.ts";
 import { seeded } from "./random.ts";
 import { trailingDifferences } from "./reach.ts";
 
 /** Fits on `count` simulated series of the sample's length, which start from the observed first levels.
  *  Sets that cannot be estimated, or do not converge, are counted and left out. */
-export function bootstrapFits(fit: Fit, count: number, seed: number): { readonly fits: readonly Fit[]; readonly failed: number } {
-  const random = seeded(seed), shocks = shocksOf(fit), fits: Fit[] = [];
+export function* bootstrapFits(fit: Fit, count: number, seed: number): Gradual<{ readonly fits: readonly Fit[]; readonly failed: number }> {
+  const random = seeded(seed), simulate = simulator(fit), fits: Fit[] = [];
   let failed = 0;
   for (let r = 0; r < count; r++) {
+    if (r > 0) yield { done: r, total: count, what: "sets of parameters" };
     try {
-      const again = fitAt(fit, simulatedSeries(fit, shocks, random));
+      const again = fitAt(fit, simulate(random), { residuals: false });
       if (again.converged) fits.push(again);
       else failed++;
     } catch (error) {
@@ -85,30 +86,41 @@ function differenceLags(series: Series): number[] {
   return series.steps.slice(series.steps.length - trailingDifferences(series)).map((s) => (s.step === "difference" ? s.lag : 0));
 }
 
-/** A series from the model: shocks through the recursion, after a run-in, then summed from the observed first levels. */
-function simulatedSeries(fit: Fit, shocks: Float64Array, random: () => number): Series {
-  const count = trailingDifferences(fit.series), steps = fit.series.steps.slice(fit.series.steps.length - count);
-  const levels = steps.length > 0 ? steps[0].before : fit.series, regression = regressionOf(fit, levels);
-  const { phi, theta } = expandedPolynomials(fit), runIn = 50 + 5 * Math.max(phi.length, theta.length), n = levels.n;
-  const w = new Float64Array(runIn + n), e = Float64Array.from(w, () => shocks[Math.floor(random() * shocks.length)]);
-  for (let t = 0; t < w.length; t++) {
-    let sum = e[t];
-    for (let i = 0; i < Math.min(t, phi.length); i++) sum += phi[i] * w[t - 1 - i];
-    for (let j = 0; j < Math.min(t, theta.length); j++) sum += theta[j] * e[t - 1 - j];
-    w[t] = sum;
-  }
-  const delta = times(new Float64Array(0), fit), values = new Float64Array(n);
-  for (let t = 0; t < n; t++) {
-    if (t < delta.length) values[t] = Number.isNaN(levels.values[t]) ? 0 : levels.values[t] - regression[t];
-    else {
-      let sum = w[runIn + t] + fit.mean;
-      for (let i = 0; i < delta.length; i++) sum += delta[i] * values[t - 1 - i];
-      values[t] = sum;
+/** Makes series from the model: shocks through the recursion, after a run-in, then summed from the observed first levels. */
+function simulator(fit: Fit): (random: () => number) => Series {
+  const shocks = shocksOf(fit), count = trailingDifferences(fit.series), steps = fit.series.steps.slice(fit.series.steps.length - count);
+  const levels = steps.length > 0 ? steps[0].before : fit.series, regression = regressionOf(fit, levels), n = levels.n;
+  const { phi, theta } = expandedPolynomials(fit), runIn = 50 + 5 * Math.max(phi.length, theta.length);
+  const ar = sparse(phi), ma = sparse(theta), sums = sparse(times(new Float64Array(0), fit)), lost = sums.reach;
+  const w = new Float64Array(runIn + n), e = new Float64Array(runIn + n), path = new Float64Array(n);
+  return (random) => {
+    for (let t = 0; t < w.length; t++) {
+      e[t] = shocks[Math.floor(random() * shocks.length)];
+      w[t] = e[t] + lagged(ar, w, t) + lagged(ma, e, t);
     }
-  }
-  // Missing where the sample is missing: gaps cost the simulated fits what they cost the real one.
-  const made = values.map((v, t) => (Number.isNaN(levels.values[t]) ? NaN : v + regression[t]));
-  return applySteps(makeSeries({ name: levels.name, unit: levels.unit, every: levels.every, start: levels.start, times: levels.times, values: made }), steps.map(stepOf));
+    for (let t = 0; t < n; t++) {
+      if (t >= lost) path[t] = w[runIn + t] + fit.mean + lagged(sums, path, t);
+      else path[t] = Number.isNaN(levels.values[t]) ? 0 : levels.values[t] - regression[t];
+    }
+    // Missing where the sample is missing: gaps cost the simulated fits what they cost the real one.
+    const values = path.map((v, t) => (Number.isNaN(levels.values[t]) ? NaN : v + regression[t]));
+    return applySteps({ ...levels, values, steps: [] }, steps.map(stepOf));
+  };
+}
+
+interface Sparse { readonly lags: Int32Array; readonly values: Float64Array; /** The longest lag; 0 without one. */ readonly reach: number }
+
+/** The coefficients that are not 0, of an array that starts at lag 1. */
+function sparse(c: Float64Array): Sparse {
+  const at = [...c.keys()].filter((i) => c[i] !== 0);
+  return { lags: Int32Array.from(at, (i) => i + 1), values: Float64Array.from(at, (i) => c[i]), reach: at.length > 0 ? at[at.length - 1] + 1 : 0 };
+}
+
+/** Sum of the coefficients times the values so many periods before t; before the start there is nothing. */
+function lagged({ lags, values }: Sparse, x: Float64Array, t: number): number {
+  let sum = 0;
+  for (let i = 0; i < lags.length && lags[i] <= t; i++) sum += values[i] * x[t - lags[i]];
+  return sum;
 }
 
 /** The regression part at the times of the levels. */

@@ -3,10 +3,12 @@
 import { normalCdf, normalQuantile } from "../distributions/normal.ts";
 import type { Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
+import type { Gradual } from "./gradual.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import { modelOutlook } from "./modelOutlook.ts";
 import type { Forecaster } from "./model.ts";
 import { crpsOfQuantiles, levelOf, type Outlook } from "./outlook.ts";
+import { drawsOf, type Paths } from "./paths.ts";
 import { firstIndex, lastIndex } from "./reach.ts";
 import { refitBetween } from "./refit.ts";
 
@@ -17,10 +19,10 @@ const mostOrigins = 60, fewestOrigins = 10;
  *  model's own standardised errors at the origins are collected, and a band of a level reaches as far as the
  *  (origins + 1) * level smallest of their absolute values (split conformal prediction: Lei et al. 2018).
  *  The median stays where it was. @throws RangeError where there are too few origins */
-export function calibratedOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, levels: readonly number[], plain: ModelOutlook): { readonly outlook: Outlook; readonly assumption: Note } {
+export function* calibratedOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, levels: readonly number[], plain: ModelOutlook): Gradual<{ readonly outlook: Outlook; readonly assumption: Note }> {
   const { base } = plain, count = Math.min(mostOrigins, Math.floor(base.n / 3) - horizon + 1);
   if (count < fewestOrigins) throw new RangeError(`forecast: calibrated bands need at least ${fewestOrigins} held-out origins in the last third of the sample; at horizon ${horizon} there are ${Math.max(0, count)}. Use bands: "plugIn" or "simulated", or a shorter horizon`);
-  const misses = heldOutMisses(model, base, horizon, count, regressors, seed).map((column) => column.filter((z) => !Number.isNaN(z)).map(Math.abs).sort());
+  const misses = (yield* heldOutMisses(model, base, horizon, count, regressors, seed)).map((column) => column.filter((z) => !Number.isNaN(z)).map(Math.abs).sort());
   const thin = misses.findIndex((column) => column.length < fewestOrigins);
   if (thin >= 0) throw new RangeError(`forecast: calibrated bands need at least ${fewestOrigins} observed values to hold out at horizon ${thin + 1}; there are ${misses[thin].length}`);
   const beyond = levels.filter((level) => level > count / (count + 1)), ratio = misses.map((column) => Math.sqrt(column.reduce((s, z) => s + z * z, 0) / column.length));
@@ -36,10 +38,11 @@ function inWords(ratio: number): string {
 }
 
 /** Standardised errors by horizon: the normal number whose probability the forecast gave to the actual value. */
-function heldOutMisses(model: Forecaster, base: Series, horizon: number, count: number, regressors: Readonly<Record<string, Series>>, seed: number): Float64Array[] {
+function* heldOutMisses(model: Forecaster, base: Series, horizon: number, count: number, regressors: Readonly<Record<string, Series>>, seed: number): Gradual<Float64Array[]> {
   const from = firstIndex(base), end = lastIndex(base), columns = Array.from({ length: horizon }, () => new Float64Array(count).fill(NaN));
   const first = refitBetween(model, { from, to: end - horizon - count + 1, how: "fresh" });
   for (let k = 0; k < count; k++) {
+    if (k > 0) yield { done: k, total: count, what: "held-out origins" };
     const origin = end - horizon - count + 1 + k, held = k === 0 ? first : refitBetween(model, { from, to: origin, how: "held" }, first);
     const { outlook } = modelOutlook(held, horizon, regressors, seed);
     for (let h = 0; h < horizon; h++) {
@@ -63,11 +66,13 @@ function stretched(plain: Outlook, misses: readonly Float64Array[], ratio: reado
     const z = Math.sign(p - 0.5) * Math.min(8, reach(h, Math.abs(2 * p - 1)));
     return plain.quantile(normalCdf(z))[h];
   });
-  const paths = (count: number, seed: number): Float64Array[] => {
+  const paths = (count: number, seed: number): Paths => {
     // Each period's values move from the old distribution to the new one; what goes with what stays.
     const grid = Float64Array.from({ length: 81 }, (_, i) => normalCdf((i - 40) * 0.1)), old = Array.from(grid, plain.quantile), fresh = Array.from(grid, quantile);
     const olds = Array.from({ length: horizon }, (_, h) => old.map((q) => q[h])), news = Array.from({ length: horizon }, (_, h) => fresh.map((q) => q[h]));
-    return plain.paths(count, seed).map((path) => Float64Array.from(path, (x, h) => between(x, olds[h], news[h])));
+    const drawn = plain.paths(count, seed);
+    for (let h = 0; h < horizon; h++) { const draws = drawsOf(drawn, h); for (let i = 0; i < count; i++) draws[i] = between(draws[i], olds[h], news[h]); }
+    return drawn;
   };
   return {
     ...plain, quantile, paths, sd: plain.sd.map((s, h) => s * ratio[h]), se: plain.se.map((s, h) => s * ratio[h]), normal: false, covariance: () => null,

@@ -3,13 +3,14 @@
 import type { Series } from "../series/series.ts";
 import type { Growth } from "./model.ts";
 import { quantileOf, type Outlook } from "./outlook.ts";
+import { drawsOf, type Paths } from "./paths.ts";
 import { wholeYearOf } from "./totals.ts";
 
 /** Growth of each period on the same one a year before, as a share. While the year before was observed its limits are those
  *  of the forecast; after that both ends are forecasts, and the limits come
  *  from the ratio's own distribution (logs) or from the paths.
  *  Empty where a year has no fixed number of periods; periods whose year before is missing or not above 0 are left out. */
-export function growthOf(base: Series, outlook: Outlook, times: readonly string[], levels: readonly number[], paths: () => readonly Float64Array[]): Growth[] {
+export function growthOf(base: Series, outlook: Outlook, times: readonly string[], levels: readonly number[], paths: () => Paths): Growth[] {
   const lag = wholeYearOf(base.every);
   if (lag === null) return [];
   const quantiles = new Map<number, Float64Array>();
@@ -29,8 +30,10 @@ export function growthOf(base: Series, outlook: Outlook, times: readonly string[
     }
     const { ratio } = outlook;
     if (ratio) { rows.push(row((p) => ratio(h, h - lag, p) - 1)); continue; }
-    const ratios = Float64Array.from(paths(), (path) => (path[h - lag] > 0 ? path[h] / path[h - lag] - 1 : NaN)).sort();
-    if (!ratios.some((r) => Number.isNaN(r))) rows.push(row((p) => quantileOf(ratios, p)));
+    const now = drawsOf(paths(), h), before = drawsOf(paths(), h - lag);
+    if (before.some((x) => !(x > 0))) continue;
+    const ratios = now.map((x, i) => x / before[i] - 1).sort();
+    rows.push(row((p) => quantileOf(ratios, p)));
   }
   return rows;
 }

@@ -5,6 +5,7 @@ import type { Series } from "../series/series.ts";
 import { crpsOfQuantiles, levelOf, outlookOf, type Outlook } from "./outlook.ts";
 import { fitPredictive } from "./fitPredictive.ts";
 import type { Forecaster } from "./model.ts";
+import type { Paths } from "./paths.ts";
 import { keptSteps } from "./reach.ts";
 import { rulePredictive } from "./rulePredictive.ts";
 import { isRule } from "./rules.ts";
@@ -37,11 +38,8 @@ function combinedOutlook(members: readonly Forecaster[], horizon: number, regres
   if (origins.size > 1) throw new RangeError(`rule.combine: the members end at different times (${[...origins].join(", ")}); cut them to one window`);
   const outlooks = parts.map((p) => p.outlook), mean = (pick: (o: Outlook) => Float64Array): Float64Array => averaged(outlooks.map(pick));
   const quantile = (p: number): Float64Array => mean((o) => o.quantile(p));
-  const paths = (count: number, from: number): Float64Array[] => {
-    // One seed for all: the members' shocks are then the same.
-    const each = outlooks.map((o) => o.paths(count, from));
-    return each[0].map((_, k) => averaged(each.map((e) => e[k])));
-  };
+  // One seed for all: the members' shocks are then the same.
+  const paths = (count: number, from: number): Paths => ({ count, horizon, values: averaged(outlooks.map((o) => o.paths(count, from).values)) });
   const outlook: Outlook = {
     horizon, mean: mean((o) => o.mean), median: quantile(0.5), sd: mean((o) => o.sd), se: mean((o) => o.sd), quantile, paths, normal: false, covariance: () => null,
     above: (h, value) => 1 - levelOf((p) => quantile(p)[h], value),
@@ -52,5 +50,7 @@ function combinedOutlook(members: readonly Forecaster[], horizon: number, regres
 }
 
 function averaged(parts: readonly Float64Array[]): Float64Array {
-  return Float64Array.from(parts[0], (_, h) => parts.reduce((sum, part) => sum + part[h], 0) / parts.length);
+  const sum = new Float64Array(parts[0].length);
+  for (const part of parts) for (let i = 0; i < sum.length; i++) sum[i] += part[i] / parts.length;
+  return sum;
 }

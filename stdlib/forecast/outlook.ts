@@ -2,9 +2,9 @@
 
 import { normalCdf, normalQuantile } from "../distributions/normal.ts";
 import { lognormalCrps, normalCrps, sampleCrps } from "../evaluation/scores.ts";
+import { drawnPaths, drawsOf, normalPaths, undoPaths, type Paths } from "./paths.ts";
 import { diagonalRoots, factorOf, type Predictive } from "./predictive.ts";
-import { normals, seeded } from "./random.ts";
-import { isLinear, redoValue, undoCovariance, undoMean, undoPath, undoValue, type UndoStep } from "./undo.ts";
+import { isLinear, redoValue, undoCovariance, undoMean, undoValue, type UndoStep } from "./undo.ts";
 
 export interface Outlook {
   readonly horizon: number;
@@ -18,8 +18,8 @@ export interface Outlook {
   readonly quantile: (p: number) => Float64Array;
   /** Probability that the value h periods ahead (0 is the first) lies above a value. */
   readonly above: (h: number, value: number) => number;
-  /** Seeded sample paths; each has length horizon. */
-  readonly paths: (count: number, seed: number) => Float64Array[];
+  /** Seeded sample paths in data units. */
+  readonly paths: (count: number, seed: number) => Paths;
   /** Exact covariance matrix in data units, flat by rows; null where it is only known by simulation. */
   readonly covariance: () => Float64Array | null;
   /** Quantile with probability p of the ratio of two periods, later over earlier, where it has a closed form (logs). */
@@ -42,10 +42,10 @@ export function outlookOf(predictive: Predictive, steps: readonly UndoStep[], se
   const covariance = once(() => linear.reduce((c, step) => undoCovariance(step, c, size), predictive.covariance()));
   const se = linear.length === 0 ? predictive.se : linear.every((s) => s.undo === "affine")
     ? predictive.se.map((s, h) => linear.reduce((v, step) => (step.undo === "affine" ? v * Math.abs(step.times[h]) : v), s)) : diagonalRoots(covariance(), size);
+  const modelled: Predictive = { mean, covariance, se };
   const { draw } = predictive;
-  const modelled: Predictive = { mean, covariance, se, ...(draw ? { draw: (normal) => undoPath(linear, draw(normal)) } : {}) };
-  if (draw || rest.some((s) => s.undo === "difference")) return drawnOutlook(modelled, rest, seed, draws);
-  return normalOutlook(modelled, rest);
+  if (draw) return drawnOutlook(modelled, rest, seed, draws, (count, from) => undoPaths(steps, drawnPaths(draw, count, size, from)));
+  return rest.some((s) => s.undo === "difference") ? drawnOutlook(modelled, rest, seed, draws) : normalOutlook(modelled, rest);
 }
 
 /** Quantiles in closed form: each period is a monotone function of a normal number. */
@@ -69,7 +69,7 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
       const z = (redoValue(rest, h, value) - m[h]) / se[h];
       return turnsOver ? normalCdf(z) : normalCdf(-z);
     },
-    paths: (count, seed) => drawNormal(m, factor(), count, seed).map((path) => undoPath(rest, path)),
+    paths: (count, seed) => undoPaths(rest, normalPaths(m, factor(), count, seed)),
     covariance: () => (form === "normal" ? predictive.covariance() : form === "lognormal" ? lognormalCovariance(predictive.covariance(), moments.mean, rest) : null),
     ...(form === "lognormal" && rest.slice(1).every((s) => s.undo === "affine" && s.add.every((a) => a === 0)) ? { ratio: ratioOf(predictive, rest) } : {}),
     crps: (h, actual) => {
@@ -81,30 +81,36 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
 }
 
 /** Distribution by equally likely paths. Point forecasts in closed form stay what they are where the rest is linear. */
-function drawnOutlook(predictive: Predictive, rest: readonly UndoStep[], seed: number, draws: number): Outlook {
-  const horizon = predictive.mean.length, factor = once(() => factorOf(predictive.covariance(), horizon));
-  const paths = (count: number, from: number): Float64Array[] =>
-    (predictive.draw ? drawPairs(predictive.draw, count, from) : drawNormal(predictive.mean, factor(), count, from)).map((path) => undoPath(rest, path));
+function drawnOutlook(predictive: Predictive, rest: readonly UndoStep[], seed: number, draws: number, own?: Outlook["paths"]): Outlook {
+  const factor = once(() => factorOf(predictive.covariance(), predictive.mean.length));
+  const paths = own ?? ((count: number, from: number): Paths => undoPaths(rest, normalPaths(predictive.mean, factor(), count, from)));
   return sampleOutlook(paths(draws, seed), predictive.se, paths, rest.length === 0 ? predictive.mean : undefined);
 }
 
 /** Distribution that is known by sample paths in data units.
  *  @param mean  where it is known better than by the sample's own */
-export function sampleOutlook(sample: readonly Float64Array[], se: Float64Array, paths: Outlook["paths"], mean?: Float64Array): Outlook {
-  const horizon = se.length;
+export function sampleOutlook(sample: Paths, se: Float64Array, paths: Outlook["paths"], mean?: Float64Array): Outlook {
+  const { horizon } = sample, average = new Float64Array(horizon), sd = new Float64Array(horizon);
   const sorted = Array.from({ length: horizon }, (_, h) => {
-    const column = new Float64Array(sample.length);
-    for (let i = 0; i < column.length; i++) column[i] = sample[i][h];
-    return column.sort();
+    const column = drawsOf(sample, h).slice().sort();
+    ({ mean: average[h], sd: sd[h] } = momentsOf(column));
+    return column;
   });
-  const average = sorted.map((column) => column.reduce((a, b) => a + b, 0) / column.length);
-  const sd = Float64Array.from(sorted, (column, h) => Math.sqrt(column.reduce((sum, x) => sum + (x - average[h]) ** 2, 0) / (column.length - 1)));
   const quantile = (p: number): Float64Array => Float64Array.from(sorted, (column) => quantileOf(column, p));
   return {
-    horizon, mean: mean ?? Float64Array.from(average), median: quantile(0.5), sd, se, quantile, paths, normal: false, covariance: () => null,
+    horizon, mean: mean ?? average, median: quantile(0.5), sd, se, quantile, paths, normal: false, covariance: () => null,
     above: (h, value) => 1 - countUpTo(sorted[h], value) / sorted[h].length,
     crps: (h, actual) => sampleCrps(actual, sorted[h]),
   };
+}
+
+/** Mean and standard deviation of draws. */
+export function momentsOf(draws: Float64Array): { readonly mean: number; readonly sd: number } {
+  let sum = 0, squares = 0;
+  for (let i = 0; i < draws.length; i++) sum += draws[i];
+  const mean = sum / draws.length;
+  for (let i = 0; i < draws.length; i++) squares += (draws[i] - mean) ** 2;
+  return { mean, sd: Math.sqrt(squares / (draws.length - 1)) };
 }
 
 /** Quantile of sorted values, straight lines between them (the usual definition with (n - 1) p). */
@@ -188,36 +194,6 @@ export function levelOf(quantile: (p: number) => number, value: number): number 
   if (quantile(high) < value) return 1;
   for (let i = 0; i < 50; i++) { const middle = (low + high) / 2; if (quantile(middle) < value) low = middle; else high = middle; }
   return (low + high) / 2;
-}
-
-/** Normal paths in pairs that mirror each other about the mean: means of linear things come out exact. */
-function drawNormal(mean: Float64Array, factor: Float64Array, count: number, seed: number): Float64Array[] {
-  const size = mean.length, normal = normals(seeded(seed)), e = new Float64Array(size), paths: Float64Array[] = [];
-  while (paths.length < count) {
-    for (let i = 0; i < size; i++) e[i] = normal();
-    const above = new Float64Array(size), below = new Float64Array(size);
-    for (let i = 0; i < size; i++) {
-      let off = 0;
-      for (let k = 0; k <= i; k++) off += factor[i * size + k] * e[k];
-      above[i] = mean[i] + off; below[i] = mean[i] - off;
-    }
-    paths.push(above);
-    if (paths.length < count) paths.push(below);
-  }
-  return paths;
-}
-
-function drawPairs(draw: (normal: () => number) => Float64Array, count: number, seed: number): Float64Array[] {
-  const normal = normals(seeded(seed)), paths: Float64Array[] = [], used: number[] = [];
-  let at = 0;
-  const fresh = (): number => { const e = normal(); used[at++] = e; return e; }, mirrored = (): number => -used[at++];
-  while (paths.length < count) {
-    at = 0;
-    paths.push(draw(fresh));
-    at = 0;
-    if (paths.length < count) paths.push(draw(mirrored));
-  }
-  return paths;
 }
 
 export function once<T>(make: () => T): () => T {

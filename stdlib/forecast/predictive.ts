@@ -7,8 +7,8 @@ export interface Predictive {
   readonly covariance: () => Float64Array;
   /** Standard errors. */
   readonly se: Float64Array;
-  /** Draws a path from standard normal numbers, where the paths are not normal. */
-  readonly draw?: (normal: () => number) => Float64Array;
+  /** Makes a path of as many standard normal numbers, where the paths are not normal. */
+  readonly draw?: (normal: Float64Array, path: Float64Array) => void;
 }
 
 /** Covariances of the forecast errors of a linear model from the weights of past shocks: weights[0] = 1 is the newest. */

@@ -3,10 +3,9 @@
 import { periodIndex } from "../series/calendar.ts";
 import { slice } from "../series/cut.ts";
 import type { Series } from "../series/series.ts";
-import { applySteps, stepOf } from "../series/steps.ts";
+import { applySteps, original, stepOf } from "../series/steps.ts";
 import { isRule } from "./rules.ts";
 import type { Forecaster } from "./model.ts";
-import { undoOf } from "./undo.ts";
 
 /** Steps at the end of a series that are differences: a fit undoes these itself. */
 export function trailingDifferences(series: Series): number {
@@ -34,7 +33,11 @@ export function reachOf(model: Forecaster, data?: Series): Series {
 }
 
 /** A series on the scale that forecasts come back to: the data, or the aggregated data. */
-export const baseOf = (series: Series): Series => undoOf(series, series.steps.length, 0).base;
+export function baseOf(series: Series): Series {
+  const { steps } = series, at = steps.findLastIndex((s) => s.step === "aggregate");
+  if (at < 0) return original(series);
+  return at + 1 < steps.length ? steps[at + 1].before : series;
+}
 
 /** Number of a series' first period on the common grid. */
 export const firstIndex = (series: Series): number => periodIndex(series.start, series.every);

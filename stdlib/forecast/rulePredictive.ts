@@ -3,7 +3,7 @@
 import type { Rule } from "./model.ts";
 import { covarianceOfWeights, diagonalRoots, type Predictive } from "./predictive.ts";
 import { observedPositions } from "./rules.ts";
-import { innovationsPath, type SmoothingForm, type SmoothingState } from "./smoothing/innovations.ts";
+import { innovationsPath, innovationsPaths, type SmoothingForm, type SmoothingState } from "./smoothing/innovations.ts";
 
 /** Forecasts of a rule on the scale of its series. Residual variances: naive rules divide by the number of steps,
  *  drift by one less than that, average by n - 1, smoothing by n; parameters count as known.
@@ -70,10 +70,10 @@ function smoothing(model: Rule, horizon: number): Predictive {
     return { mean, covariance: () => covariance, se: diagonalRoots(covariance, horizon) };
   }
   const sigma = Math.sqrt(sigma2);
-  const draw = (normal: () => number): Float64Array => {
-    const errors = new Float64Array(horizon);
-    for (let h = 0; h < horizon; h++) errors[h] = sigma * normal();
-    return innovationsPath(form, after, errors);
+  const paths = innovationsPaths(form, after), errors = new Float64Array(horizon);
+  const draw = (normal: Float64Array, path: Float64Array): void => {
+    for (let h = 0; h < horizon; h++) errors[h] = sigma * normal[h];
+    paths(errors, path);
   };
   // First-order: what an error of one standard deviation does to the path. Bands come from the paths themselves.
   const covariance = firstOrderCovariance(form, after, sigma, mean);

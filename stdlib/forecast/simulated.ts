@@ -1,19 +1,21 @@
 // Bands by simulation: uncertain parameters, and shocks drawn from the residuals that were seen.
 
 import type { Fit, Note } from "../arma/model.ts";
+import { normalQuantile } from "../distributions/normal.ts";
 import type { Series } from "../series/series.ts";
 import { bootstrapFits, psiOfLevels, shocksOf } from "./bootstrapFits.ts";
 import { fitPredictive } from "./fitPredictive.ts";
+import type { Gradual } from "./gradual.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import type { Forecaster, Rule } from "./model.ts";
 import { sampleOutlook, type Outlook } from "./outlook.ts";
-import { normals, seeded } from "./random.ts";
+import { pathsOf, undoPaths, type Paths } from "./paths.ts";
+import { seeded } from "./random.ts";
 import { keptSteps } from "./reach.ts";
-import { refit } from "./refit.ts";
 import { rulePredictive } from "./rulePredictive.ts";
 import { isRule, observedPositions } from "./rules.ts";
-import { innovationsPath } from "./smoothing/innovations.ts";
-import { undoOf, undoPath } from "./undo.ts";
+import { innovationsPaths } from "./smoothing/innovations.ts";
+import { undoOf } from "./undo.ts";
 
 /** Paths in all. */
 const pathCount = 4000;
@@ -24,83 +26,109 @@ function setsFor({ values, n }: Series): number {
   return Math.round(Math.min(100, Math.max(30, (gaps ? 6000 : 20_000) / n)));
 }
 
-type PathMaker = (random: () => number) => Float64Array;
+/** Writes one path on the modelled scale.
+ *  @param uniform  horizon + 1 numbers between 0 and 1: one a shock, the last for what is uncertain besides
+ *  @param i        number of the path */
+type PathMaker = (path: Float64Array, uniform: Float64Array, i: number) => void;
+
+/** Paths in data units, from a seed; two makers with one seed use the same numbers, so that their errors go together. */
+type PathSource = (count: number, seed: number) => Paths;
 
 /** A forecast distribution by seeded simulation.
  *  A fit's parameters are estimated again on series simulated from it (a parametric bootstrap), each set forecasts from the
  *  observed data, and shocks are drawn with replacement from the fit's residuals, enlarged for the parameters used up.
  *  Source: Thombs & Schucany (1990); Pascual, Romo & Ruiz (2004). */
-export function simulatedOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, plain: ModelOutlook): { readonly outlook: Outlook; readonly assumption: Note } {
-  const { maker, assumption } = pathMaker(model, horizon, regressors, seed);
-  const paths = (count: number, from: number): Float64Array[] => { const random = seeded(from + 7); return Array.from({ length: count }, () => maker(random)); };
-  return { outlook: sampleOutlook(paths(pathCount, seed), plain.outlook.se, paths), assumption: { code: "bands-simulated", tone: "note", text: assumption } };
+export function* simulatedOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, plain: ModelOutlook): Gradual<{ readonly outlook: Outlook; readonly assumption: Note }> {
+  const { source, assumption } = yield* pathSource(model, horizon, regressors, seed);
+  return { outlook: sampleOutlook(source(pathCount, seed), plain.outlook.se, source), assumption: { code: "bands-simulated", tone: "note", text: assumption } };
 }
 
-function pathMaker(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): { readonly maker: PathMaker; readonly assumption: string } {
-  if (!isRule(model)) return fitPaths(model, horizon, regressors, seed);
-  if (model.rule === "combine") {
-    const makers = (model.members ?? []).map((member) => pathMaker(member, horizon, regressors, seed).maker);
-    // Each path gives every member the same random numbers, so that their errors go together.
-    const maker: PathMaker = (random) => {
-      const own = Math.floor(random() * 4294967296), parts = makers.map((make) => make(seeded(own)));
-      return parts[0].map((_, h) => parts.reduce((sum, part) => sum + part[h], 0) / parts.length);
+function* pathSource(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): Gradual<{ readonly source: PathSource; readonly assumption: string }> {
+  if (isRule(model) && model.rule === "combine") {
+    const sources: PathSource[] = [];
+    for (const member of model.members ?? []) sources.push((yield* pathSource(member, horizon, regressors, seed)).source);
+    const source: PathSource = (count, from) => {
+      const each = sources.map((one) => one(count, from).values);
+      return { count, horizon, values: each[0].map((_, at) => each.reduce((sum, values) => sum + values[at], 0) / each.length) };
     };
-    return { maker, assumption: `Bands: from ${pathCount} simulated paths of the members, averaged path by path with shared random numbers.` };
+    return { source, assumption: `Bands: from ${pathCount} simulated paths of the members, averaged path by path with shared random numbers.` };
   }
-  const undo = undoOf(model.series, keptSteps(model), horizon), make = ruleMaker(model, horizon);
-  return { maker: (random) => undoPath(undo.steps, make(random)), assumption: `Bands: from ${pathCount} simulated paths whose shocks are drawn from the rule's own past errors${model.rule === "smoothing" ? "; the estimated weights count as known" : ""}. They assume that coming errors are like past ones, in any order.` };
+  const { maker, assumption } = isRule(model) ? rulePaths(model, horizon) : yield* fitPaths(model, horizon, regressors, seed);
+  const { steps } = undoOf(model.series, keptSteps(model), horizon);
+  const source: PathSource = (count, from) => {
+    const random = seeded(from + 7), uniform = new Float64Array(horizon + 1);
+    return undoPaths(steps, pathsOf(count, horizon, (path, i) => {
+      for (let h = 0; h <= horizon; h++) uniform[h] = random();
+      maker(path, uniform, i);
+    }));
+  };
+  return { source, assumption };
 }
 
-function fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): { readonly maker: PathMaker; readonly assumption: string } {
-  const undo = undoOf(fit.series, keptSteps(fit), horizon), asked = setsFor(fit.series), boots = bootstrapFits(fit, asked, seed);
-  const sets = boots.fits.map((boot) => {
-    const here = refit(boot, fit.series, "held") as Fit;
-    return { mean: fitPredictive(here, horizon, undo.times, regressors).mean, psi: psiOfLevels(boot, horizon) };
-  });
-  if (sets.length === 0) sets.push({ mean: fitPredictive(fit, horizon, undo.times, regressors).mean, psi: psiOfLevels(fit, horizon) });
-  const shocks = shocksOf(fit);
-  const maker: PathMaker = (random) => {
-    const { mean, psi } = sets[Math.floor(random() * sets.length)], e = new Float64Array(horizon), path = new Float64Array(horizon);
+function* fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): Gradual<{ readonly maker: PathMaker; readonly assumption: string }> {
+  const { times } = undoOf(fit.series, keptSteps(fit), horizon), asked = setsFor(fit.series), boots = yield* bootstrapFits(fit, asked, seed);
+  const sets = (boots.fits.length > 0 ? boots.fits : [fit]).map((boot) => ({
+    // The set's coefficients put to what was really observed.
+    mean: fitPredictive({ ...boot, series: fit.series, options: { ...fit.options, series: fit.series, window: undefined } }, horizon, times, regressors).mean,
+    psi: psiOfLevels(boot, horizon),
+  }));
+  const shocks = shocksOf(fit), e = new Float64Array(horizon);
+  const maker: PathMaker = (path, uniform, i) => {
+    // Each set makes as many paths as the next: its choice adds no noise of its own.
+    const { mean, psi } = sets[i % sets.length];
     for (let h = 0; h < horizon; h++) {
-      e[h] = shocks[Math.floor(random() * shocks.length)];
-      path[h] = mean[h];
-      for (let k = 0; k <= h; k++) path[h] += psi[k] * e[h - k];
+      e[h] = shocks[Math.floor(uniform[h] * shocks.length)];
+      let sum = mean[h];
+      for (let k = 0; k <= h; k++) sum += psi[k] * e[h - k];
+      path[h] = sum;
     }
-    return undoPath(undo.steps, path);
   };
   const lost = boots.failed > 0 ? ` (${boots.failed} of ${asked} sets could not be estimated and were left out)` : "";
   return { maker, assumption: `Bands: from ${pathCount} simulated paths with ${sets.length} sets of parameters, estimated again on series simulated from the model${lost}, and shocks drawn from its residuals${fit.phi.length + fit.seasonalPhi.length > 0 ? "; autoregressive coefficients are corrected for coming out too small in short samples" : ""}. They take in that the parameters are estimates and that shocks need not be normal; the orders count as known.` };
 }
 
-/** A path on the rule's own scale. */
+function rulePaths(model: Rule, horizon: number): { readonly maker: PathMaker; readonly assumption: string } {
+  return { maker: ruleMaker(model, horizon), assumption: `Bands: from ${pathCount} simulated paths whose shocks are drawn from the rule's own past errors${model.rule === "smoothing" ? "; the estimated weights count as known" : ""}. They assume that coming errors are like past ones, in any order.` };
+}
+
+/** Paths on the rule's own scale. */
 function ruleMaker(model: Rule, horizon: number): PathMaker {
   const y = model.series.values, { mean } = rulePredictive(model, horizon), seen = observedPositions(y);
-  const drawn = (errors: ArrayLike<number>, random: () => number): Float64Array => Float64Array.from({ length: horizon }, () => errors[Math.floor(random() * errors.length)]);
+  const drawnInto = (path: Float64Array, errors: ArrayLike<number>, uniform: Float64Array): void => { for (let h = 0; h < horizon; h++) path[h] = errors[Math.floor(uniform[h] * errors.length)]; };
   switch (model.rule) {
     case "smoothing": {
       if (!model.smoothing) throw new RangeError("a smoothing rule is made by rule.smoothing, which estimates its weights");
       const { form, filtered, k } = model.smoothing, grown = Math.sqrt(filtered.count / Math.max(1, filtered.count - k + 1));
-      const errors = Float64Array.from(seen, (t) => filtered.errors[t] * grown);
-      return (random) => innovationsPath(form, filtered.after, drawn(errors, random));
+      const errors = Float64Array.from(seen, (t) => filtered.errors[t] * grown), shocks = new Float64Array(horizon), follow = innovationsPaths(form, filtered.after);
+      return (path, uniform) => { drawnInto(shocks, errors, uniform); follow(shocks, path); };
     }
     case "average": {
       const centre = mean[0], errors = Float64Array.from(seen, (t) => (y[t] - centre) * Math.sqrt(seen.length / (seen.length - 1)));
       const sd = Math.sqrt(errors.reduce((s, e) => s + e * e, 0)) / seen.length;
-      return (random) => { const off = sd * normals(random)(); return drawn(errors, random).map((e) => centre + off + e); };
+      return (path, uniform) => {
+        const off = sd * normalQuantile(uniform[horizon]);
+        drawnInto(path, errors, uniform);
+        for (let h = 0; h < horizon; h++) path[h] += centre + off;
+      };
     }
     case "seasonalNaive": {
       const m = model.length ?? 1, errors = [...y.keys()].slice(m).map((t) => y[t] - y[t - m]).filter((d) => !Number.isNaN(d));
-      return (random) => { const path = drawn(errors, random); for (let h = m; h < horizon; h++) path[h] += path[h - m]; return path.map((e, h) => mean[h] + e); };
+      return (path, uniform) => {
+        drawnInto(path, errors, uniform);
+        for (let h = m; h < horizon; h++) path[h] += path[h - m];
+        for (let h = 0; h < horizon; h++) path[h] += mean[h];
+      };
     }
     case "naive": case "drift": {
       const slope = model.rule === "drift" ? (y[seen[seen.length - 1]] - y[seen[0]]) / (seen[seen.length - 1] - seen[0]) : 0;
       const steps = seen.slice(1).map((t, i) => (y[t] - y[seen[i]] - (t - seen[i]) * slope) / Math.sqrt(t - seen[i]));
       const sd = model.rule === "drift" ? Math.sqrt(steps.reduce((s, e) => s + e * e, 0) / Math.max(1, steps.length - 1) / (seen[seen.length - 1] - seen[0])) : 0;
       const grown = model.rule === "drift" ? Math.sqrt(steps.length / Math.max(1, steps.length - 1)) : 1;
-      return (random) => {
-        const off = sd > 0 ? sd * normals(random)() : 0, path = drawn(steps, random);
+      return (path, uniform) => {
+        const off = sd > 0 ? sd * normalQuantile(uniform[horizon]) : 0;
+        drawnInto(path, steps, uniform);
         for (let h = 1; h < horizon; h++) path[h] += path[h - 1];
-        return path.map((e, h) => mean[h] + e * grown + (h + 1) * off);
+        for (let h = 0; h < horizon; h++) path[h] = mean[h] + path[h] * grown + (h + 1) * off;
       };
     }
     case "combine": throw new RangeError("a combination is simulated member by member");

@@ -5,7 +5,8 @@ import type { Series } from "../series/series.ts";
 import { normalQuantile } from "../distributions/normal.ts";
 import type { Note } from "../arma/model.ts";
 import type { ForecastOptions, Total } from "./model.ts";
-import { quantileOf, type Outlook } from "./outlook.ts";
+import { momentsOf, quantileOf, type Outlook } from "./outlook.ts";
+import { sumsOver, type Paths } from "./paths.ts";
 import { firstIndex, lastIndex } from "./reach.ts";
 
 interface Span { readonly from: string; readonly to: string; readonly low: number; readonly high: number }
@@ -15,7 +16,7 @@ interface Span { readonly from: string; readonly to: string; readonly low: numbe
  *  @param base   the observed series up to the origin
  *  @param paths  sample paths of the forecasts
  *  @throws RangeError where a span needs a longer horizon or a value that is not there */
-export function totalsOf(asked: ForecastOptions["totals"], base: Series, outlook: Outlook, times: readonly string[], levels: readonly number[], paths: () => readonly Float64Array[]): { readonly totals: readonly Total[]; readonly notes: readonly Note[] } {
+export function totalsOf(asked: ForecastOptions["totals"], base: Series, outlook: Outlook, times: readonly string[], levels: readonly number[], paths: () => Paths): { readonly totals: readonly Total[]; readonly notes: readonly Note[] } {
   if (asked === undefined || asked === null) return { totals: [], notes: [] };
   const { spans, notes } = spansOf(asked, base, times);
   return { totals: spans.map((span) => totalOf(span, base, outlook, levels, paths)), notes };
@@ -58,18 +59,13 @@ function gapIn(base: Series, from: number): string | null {
   return null;
 }
 
-function totalOf({ from, to, low, high }: Span, base: Series, outlook: Outlook, levels: readonly number[], paths: () => readonly Float64Array[]): Total {
+function totalOf({ from, to, low, high }: Span, base: Series, outlook: Outlook, levels: readonly number[], paths: () => Paths): Total {
   const first = firstIndex(base), origin = lastIndex(base), { horizon } = outlook, label = from === to ? from : `${from} to ${to}`;
   if (high > origin + horizon) throw new RangeError(`totals: the total of ${label} needs a horizon of ${high - origin} periods; it is ${horizon}`);
   if (low < first) throw new RangeError(`totals: the total of ${label} needs values before ${base.start}, where ${base.name || "the series"} starts`);
   const past = sumOf(base, low, Math.min(high, origin), label);
   const begin = Math.max(0, low - origin - 1), end = high - origin, observed = Math.max(0, Math.min(high, origin) - low + 1);
   if (end <= 0) return { from, to, mean: past, median: past, se: 0, bands: levels.map((level) => ({ level, low: past, high: past })), observed };
-  const sums = (): Float64Array => {
-    const drawn = paths(), out = new Float64Array(drawn.length);
-    for (let i = 0; i < out.length; i++) { out[i] = past; for (let h = begin; h < end; h++) out[i] += drawn[i][h]; }
-    return out.sort();
-  };
   let mean = past;
   for (let h = begin; h < end; h++) mean += outlook.mean[h];
   const c = outlook.covariance();
@@ -80,8 +76,8 @@ function totalOf({ from, to, low, high }: Span, base: Series, outlook: Outlook, 
     const se = Math.sqrt(variance), at = (p: number): number => mean + normalQuantile(p) * se;
     return finish({ from, to, mean, median: mean, se, observed }, levels, at, before);
   }
-  const sorted = sums(), average = sorted.reduce((a, b) => a + b, 0) / sorted.length;
-  const spread = Math.sqrt(sorted.reduce((sum, x) => sum + (x - average) ** 2, 0) / (sorted.length - 1)), se = c ? Math.sqrt(variance) : spread;
+  const sorted = sumsOver(paths(), begin, end).map((x) => past + x).sort(), { mean: average, sd: spread } = momentsOf(sorted);
+  const se = c ? Math.sqrt(variance) : spread;
   // Where mean and standard error are known exactly the draws are moved and stretched to have them: only the shape is left to chance.
   const at = (p: number): number => (c && spread > 0 ? mean + (quantileOf(sorted, p) - average) * (se / spread) : quantileOf(sorted, p));
   return finish({ from, to, mean, median: at(0.5), se, observed }, levels, at, before);

@@ -116,7 +116,8 @@ export function undoValue(steps: readonly UndoStep[], h: number, z: number): num
   return x;
 }
 
-function undoAt(step: UndoStep, h: number, x: number): number {
+/** One step undone on the value of one period. */
+export function undoAt(step: UndoStep, h: number, x: number): number {
   switch (step.undo) {
     case "affine": return step.add[h] + step.times[h] * x;
     case "exp": return Math.exp(x);

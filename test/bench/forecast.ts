@@ -9,6 +9,7 @@ import type { Fit, FitOptions } from "../../stdlib/arma/model.ts";
 import { binomialRange } from "../../stdlib/evaluation/binomialRange.ts";
 import { rollingOrigins } from "../../stdlib/evaluation/rollingOrigins.ts";
 import { bandedOutlook } from "../../stdlib/forecast/bands.ts";
+import { atOnce } from "../../stdlib/forecast/gradual.ts";
 import type { BandsHow } from "../../stdlib/forecast/model.ts";
 import { slice } from "../../stdlib/series/cut.ts";
 import { makeSeries, type Series } from "../../stdlib/series/series.ts";
@@ -116,7 +117,7 @@ function covered(tries: number, n: number, make: (seed: number, n: number) => Se
   const horizon = Math.max(...horizons), hits = horizons.map(() => levels.map(() => 0));
   for (let r = 0; r < tries; r++) {
     const all = make(1000 + r, n + horizon), lost = (all.steps[0]?.before.n ?? all.n) - all.n, model = fit({ ...ask, series: slice(all, 0, n - lost) }, { standardErrors: false });
-    const { outlook } = bandedOutlook(model, horizon, { how, regressors: {}, seed: r, levels }), data = all.steps[0]?.before.values ?? all.values;
+    const { outlook } = atOnce(bandedOutlook(model, horizon, { how, regressors: {}, seed: r, levels })), data = all.steps[0]?.before.values ?? all.values;
     levels.forEach((level, j) => {
       const low = outlook.quantile((1 - level) / 2), high = outlook.quantile((1 + level) / 2);
       horizons.forEach((h, i) => { const y = data[n + h - 1]; if (y >= low[h - 1] && y <= high[h - 1]) hits[i][j]++; });

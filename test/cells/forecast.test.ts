@@ -50,7 +50,7 @@ describe("forecast shows", () => {
 });
 
 describe("forecast refuses", () => {
-  const run = (options: Record<string, unknown>) => () => forecast.run(checkOptions(forecast, options) as never, madeContext());
+  const run = async (options: Record<string, unknown>) => forecast.run(checkOptions(forecast, options) as never, madeContext());
   test("a series in place of a model", () => {
     expect(() => needForecaster(madeSeries())).toThrow("model is a series; fit a model to it first, or use a rule");
   });
@@ -59,14 +59,16 @@ describe("forecast refuses", () => {
     expect(() => needForecaster({ models: [], best: { fit } })).toThrow("name one of its rows, such as .best");
     expect(needForecaster({ label: "a", fit })).toBe(fit);
   });
-  test("a horizon that is no whole number of periods", () => {
-    expect(run({ model: madeFit(), horizon: 0 })).toThrow(/horizon.*at least 1/);
-    expect(run({ model: madeFit(), horizon: 2.5 })).toThrow(/horizon.*whole number/);
+  test("a horizon that is no whole number of periods", async () => {
+    await expect(run({ model: madeFit(), horizon: 0 })).rejects.toThrow(/horizon.*at least 1/);
+    await expect(run({ model: madeFit(), horizon: 2.5 })).rejects.toThrow(/horizon.*whole number/);
   });
-  test("a level in percent, and says what to write", () => {
-    expect(run({ model: madeFit(), horizon: 2, levels: [90] })).toThrow(/0\.9/);
+  test("a level in percent, and says what to write", async () => {
+    await expect(run({ model: madeFit(), horizon: 2, levels: [90] })).rejects.toThrow(/0\.9/);
   });
 });
+
+const madeModel = () => estimate({ series: stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 1 }, { step: "difference", lag: 12 }]), ma: 1, season: { ma: 1 } });
 
 describe("forecast runs", () => {
   test("a fit of a logged and differenced series in the units of the data", async () => {
@@ -79,6 +81,15 @@ describe("forecast runs", () => {
     const parts = forecast.show(result, show);
     await expect(drawnCharts(parts)).resolves.toHaveLength(1);
     expect(texts(parts)).toContain("From 2022-12");
+  });
+  test("simulated bands in slices: progress by count, and newer work overtakes it", async () => {
+    const options = checkOptions(forecast, { model: rule.combine([madeModel(), rule.naive(madeSeries())]), horizon: 6, bands: "simulated" }) as never;
+    const context = madeContext();
+    await forecast.run(options, context);
+    expect(context.steps.at(-1)).toEqual([99, 100]);
+    const overtaken = madeContext({ breathe: () => Promise.reject(new Error("overtaken")) });
+    await expect(forecast.run(options, overtaken)).rejects.toThrow("overtaken");
+    expect(overtaken.steps).toHaveLength(1);
   });
   test("a rule", async () => {
     const result = await forecast.run(checkOptions(forecast, { model: rule.naive(madeSeries()), horizon: 3 }) as never, madeContext());

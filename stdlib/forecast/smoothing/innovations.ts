@@ -90,13 +90,22 @@ export function minusTwiceLogLikelihood(y: Float64Array, form: SmoothingForm, st
 /** A path of the model from its states on, driven by given errors (0 = the point forecasts of an additive model,
  *  and the usual point forecasts of a multiplicative one). */
 export function innovationsPath(form: SmoothingForm, from: SmoothingState, errors: ArrayLike<number>): Float64Array {
-  const states = new States(form, from), path = new Float64Array(errors.length);
-  for (let h = 0; h < path.length; h++) {
-    const f = states.ahead();
-    states.move(errors[h]);
-    path[h] = form.error === "multiplicative" ? f * (1 + errors[h]) : f + errors[h];
-  }
+  const path = new Float64Array(errors.length);
+  innovationsPaths(form, from)(errors, path);
   return path;
+}
+
+/** The same for one path after another, each written into an array that it is given. */
+export function innovationsPaths(form: SmoothingForm, from: SmoothingState): (errors: ArrayLike<number>, path: Float64Array) => void {
+  const states = new States(form, from), multiplies = form.error === "multiplicative";
+  return (errors, path) => {
+    states.restart();
+    for (let h = 0; h < path.length; h++) {
+      const f = states.ahead();
+      states.move(errors[h]);
+      path[h] = multiplies ? f * (1 + errors[h]) : f + errors[h];
+    }
+  };
 }
 
 /** The moving parts, kept in place: a class because every period moves all of them. */
@@ -111,6 +120,10 @@ class States {
   constructor(form: SmoothingForm, start: SmoothingState) {
     this.#form = form; this.#weights = start;
     this.#level = start.level; this.#trend = start.trend; this.#seasonal = Float64Array.from(start.seasonal);
+  }
+
+  restart(): void {
+    this.#level = this.#weights.level; this.#trend = this.#weights.trend; this.#seasonal.set(this.#weights.seasonal); this.#at = 0;
   }
 
   #trended(): number {

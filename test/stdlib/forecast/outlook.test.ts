@@ -1,5 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { outlookOf } from "../../../stdlib/forecast/outlook.ts";
+import { pathAt } from "../../../stdlib/forecast/paths.ts";
 import type { Predictive } from "../../../stdlib/forecast/predictive.ts";
 import { redoValue, undoValue, type UndoStep } from "../../../stdlib/forecast/undo.ts";
 import { cases } from "./reference.ts";
@@ -27,7 +28,7 @@ describe("an outlook by law", () => {
     expect(redoValue(steps, 1, undoValue(steps, 1, 0.7))).toBeCloseTo(0.7, 12);
   });
   it("moments of sample paths agree with the exact ones, covariance included, within sampling error", () => {
-    const o = outlookOf(two, steps, 1), paths = o.paths(40_000, 5), n = paths.length, c = o.covariance()!;
+    const o = outlookOf(two, steps, 1), drawn = o.paths(40_000, 5), n = drawn.count, paths = Array.from({ length: n }, (_, i) => pathAt(drawn, i)), c = o.covariance()!;
     const mean = [0, 1].map((h) => paths.reduce((s, p) => s + p[h], 0) / n);
     mean.forEach((m, h) => expect(Math.abs(m - o.mean[h])).toBeLessThan(4 * o.sd[h] / Math.sqrt(n)));
     const cross = paths.reduce((s, p) => s + (p[0] - mean[0]) * (p[1] - mean[1]), 0) / n;
