@@ -1,10 +1,10 @@
 // Partial autocorrelations by three methods, which differ in small samples and near the unit circle.
 
-import { leastSquares } from "../linear/leastSquares.ts";
 import type { Series } from "../series/series.ts";
 import { valuesOf } from "../series/series.ts";
 import { acf } from "./acf.ts";
 import { centre, checkLags } from "./autocovariance.ts";
+import { regressionPartials } from "./regressionPartials.ts";
 
 export type PartialMethod = "levinson" | "regression" | "burg";
 
@@ -13,7 +13,7 @@ export type PartialMethod = "levinson" | "regression" | "burg";
  *              squares with a constant on lags 1..k, all rows available; "burg": least forward and backward errors
  *  @returns    length lags + 1; NaN where a lag has no answer (constant values, too few rows)
  *  @throws RangeError if lags is out of range, or Burg's method meets a gap
- *  Sources: Brockwell & Davis (1991), sections 5.2 and 8.2. Cost: levinson O(lags^2) after `acf`; regression O(n lags^3).
+ *  Sources: Brockwell & Davis (1991), sections 5.2 and 8.2. Cost: levinson O(lags^2) after `acf`; regression O(n lags + lags^4).
  *  @example pacf([1, 2, 3, 4], 1) // [1, 0.25] */
 export function pacf(x: Series | ArrayLike<number>, lags: number, how: PartialMethod = "levinson"): Float64Array {
   const values = valuesOf(x);
@@ -40,30 +40,6 @@ export function partialFrom(correlations: ArrayLike<number>): Float64Array {
     error *= 1 - last * last;
   }
   return partial;
-}
-
-function regressionPartials(values: Float64Array, lags: number): Float64Array {
-  const partial = new Float64Array(lags + 1);
-  partial[0] = 1;
-  const { deviations, seen } = centre(values); // with a constant in the regression, a shift changes nothing but the digits
-  for (let k = 1; k <= lags; k++) {
-    const rows: number[] = [];
-    for (let t = k; t < values.length; t++) if (seen === null || allSeen(seen, t - k, t)) rows.push(t);
-    if (rows.length <= k + 1) { partial[k] = NaN; continue; }
-    const X = new Float64Array(rows.length * (k + 1)), y = new Float64Array(rows.length);
-    rows.forEach((t, i) => {
-      y[i] = deviations[t];
-      X[i * (k + 1)] = 1;
-      for (let j = 1; j <= k; j++) X[i * (k + 1) + j] = deviations[t - j];
-    });
-    partial[k] = leastSquares(X, y, rows.length, k + 1).beta[k];
-  }
-  return partial;
-}
-
-function allSeen(seen: Float64Array, from: number, to: number): boolean {
-  for (let t = from; t <= to; t++) if (seen[t] === 0) return false;
-  return true;
 }
 
 /** Burg's reflection coefficients, mean removed: each minimises forward plus backward error squares (Burg 1967). */

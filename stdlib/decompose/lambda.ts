@@ -1,7 +1,6 @@
 // The Box-Cox parameter: which power makes the spread independent of the level, or the residuals most nearly normal.
 
 import { chiSquareQuantile } from "../distributions/chiSquare.ts";
-import { leastSquares } from "../linear/leastSquares.ts";
 import { defaultSeasonLength } from "../series/every.ts";
 import type { Series } from "../series/series.ts";
 import { isSeries, valuesOf } from "../series/series.ts";
@@ -75,21 +74,34 @@ export function guerrero(values: Float64Array, length: number): (lambda: number)
   };
 }
 
-/** Profile log likelihood less its constant, as a function of lambda. */
+/** Profile log likelihood less its constant, as a function of lambda. Cost O(n) a value: the residual sum of squares is that
+ *  within positions of the season (one position without a season), less what the slope explains there. */
 export function likelihood(values: Float64Array, regression: "mean" | "trend" | "season", length: number): (lambda: number) => number {
   const kept = [...values.keys()].filter((t) => !Number.isNaN(values[t])), n = kept.length;
-  const cols = regression === "mean" ? 1 : regression === "trend" ? 2 : 1 + length;
-  const X = new Float64Array(n * cols);
-  kept.forEach((t, i) => {
-    X[i * cols] = 1;
-    if (cols > 1) X[i * cols + 1] = (2 * t) / values.length - 1;
-    if (regression === "season" && t % length > 0) X[i * cols + 1 + (t % length)] = 1;
-  });
+  const positions = regression === "season" ? length : 1, at = Int32Array.from(kept, (t) => t % positions);
+  const counts = new Float64Array(positions), means = new Float64Array(positions);
+  for (const p of at) counts[p]++;
+  const slope = Float64Array.from(kept), z = new Float64Array(n);
+  if (regression === "mean") slope.fill(0);
+  centreWithin(slope, at, counts, means);
+  const reach = slope.reduce((s, v) => s + v * v, 0);
   const logs = Float64Array.from(kept, (t) => Math.log(values[t])), sumLogs = logs.reduce((a, b) => a + b, 0);
   return (lambda) => {
-    const z = logs.map((l) => (Math.abs(lambda) < 1e-12 ? l : Math.expm1(lambda * l) / lambda));
-    return (-n / 2) * Math.log(leastSquares(X, z, n, cols).rss / n) + (lambda - 1) * sumLogs;
+    for (let i = 0; i < n; i++) z[i] = Math.abs(lambda) < 1e-12 ? logs[i] : Math.expm1(lambda * logs[i]) / lambda;
+    centreWithin(z, at, counts, means);
+    let along = 0, rss = 0;
+    for (let i = 0; i < n; i++) along += slope[i] * z[i];
+    const b = reach > 0 ? along / reach : 0;
+    for (let i = 0; i < n; i++) rss += (z[i] - b * slope[i]) ** 2;
+    return (-n / 2) * Math.log(rss / n) + (lambda - 1) * sumLogs;
   };
+}
+
+/** Takes off, in place, the mean of each position. */
+function centreWithin(z: Float64Array, at: Int32Array, counts: Float64Array, means: Float64Array): void {
+  means.fill(0);
+  for (let i = 0; i < z.length; i++) means[at[i]] += z[i] / counts[at[i]];
+  for (let i = 0; i < z.length; i++) z[i] -= means[at[i]];
 }
 
 function whyNot(values: Float64Array, how: string, length: number): string | null {
@@ -109,8 +121,9 @@ function moments(x: Float64Array): [number, number] {
 
 /** The best grid point, then golden sections around it. */
 function maximum(score: (lambda: number) => number, grid: Float64Array): number {
+  const tried = grid.map(score);
   let best = 0;
-  grid.forEach((g, i) => { if (score(g) > score(grid[best])) best = i; });
+  tried.forEach((value, i) => { if (value > tried[best]) best = i; });
   const ratio = (Math.sqrt(5) - 1) / 2;
   let a = grid[Math.max(0, best - 1)], b = grid[Math.min(grid.length - 1, best + 1)];
   let c = b - ratio * (b - a), d = a + ratio * (b - a), fc = score(c), fd = score(d);
@@ -127,7 +140,7 @@ function interval(score: (lambda: number) => number, at: number, drop: number): 
     let inside = at, outside = NaN;
     for (let step = 0.05; step <= 5.001; step *= 1.5) if (score(at + direction * step) < target) { outside = at + direction * step; break; } else inside = at + direction * step;
     if (Number.isNaN(outside)) return NaN;
-    for (let i = 0; i < 60; i++) { const middle = (inside + outside) / 2; if (score(middle) < target) outside = middle; else inside = middle; }
+    while (Math.abs(outside - inside) > 1e-9) { const middle = (inside + outside) / 2; if (score(middle) < target) outside = middle; else inside = middle; }
     return (inside + outside) / 2;
   };
   return [side(-1), side(1)];

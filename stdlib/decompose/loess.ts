@@ -38,7 +38,8 @@ export function loessAt(y: Float64Array, window: number, degree: 0 | 1, xs: numb
   for (let j = from; j <= to; j++) {
     const r = Math.abs(j - xs);
     if (r > 0.999 * h) continue;
-    const tricube = r <= 0.001 * h ? 1 : (1 - (r / h) ** 3) ** 3;
+    const u = r / h, fall = 1 - u * u * u; // products: a general power takes five times as long
+    const tricube = r <= 0.001 * h ? 1 : fall * fall * fall;
     w[j - from] = weights === null ? tricube : tricube * weights[j - 1];
     sum += w[j - from];
   }

@@ -6,7 +6,7 @@ import { normalQuantile } from "../distributions/normal.ts";
 import type { Intervention } from "../forecast/interventions.ts";
 import { leastSquares } from "../linear/leastSquares.ts";
 import type { OutlierType } from "./outlierPattern.ts";
-import { patternOf, robustSigma } from "./outlierPattern.ts";
+import { patternOf, patternProducts, robustSigma } from "./outlierPattern.ts";
 import { observedOf } from "./subject.ts";
 
 export interface Outlier {
@@ -56,7 +56,7 @@ const words: Readonly<Record<OutlierType, string>> = { additive: "one period off
  *  `critical` the model is estimated again with each type's regressor, the likelihood decides between the types, and the
  *  search goes on with that model; the ones that no longer pass in the last one leave.
  *  At the last residual the types look alike and the outlier is called additive.
- *  @throws RangeError for decay outside (0, 1). Cost O(n m) per find, m the memory of the weights, and up to three fits. */
+ *  @throws RangeError for decay outside (0, 1). Cost per find O(n) times the model's lags, and up to three fits. */
 export function outliers(fit: Fit, options: OutlierOptions = {}): Outliers {
   const { types = ["additive", "levelShift", "temporaryChange", "innovational"], decay = 0.7 } = options;
   if (!(decay > 0 && decay < 1)) throw new RangeError(`outliers: decay is ${decay}, expected a share between 0 and 1`);
@@ -80,7 +80,7 @@ function searchOnce(fit: Fit, { types, decay, critical, most }: Plan): Found {
   const e = observedOrZero(fit), patterns = patternsOf(types, fit, decay);
   const picked: Candidate[] = [], clean = Float64Array.from(e);
   while (picked.length < most) {
-    const best = strongest(clean, patterns, robustSigma(clean), picked);
+    const best = strongest(clean, fit, decay, patterns, robustSigma(clean), picked);
     if (best === null || Math.abs(best.t) < critical) break;
     picked.push(best);
     subtract(clean, patterns.get(best.type) as Float64Array, best);
@@ -96,7 +96,7 @@ function searchAgain(fit: Fit, { types, decay, critical, most }: Plan): Found {
     const e = observedOrZero(current);
     shocks.forEach((c) => { e[c.index] = 0; });
     const patterns = patternsOf(types, current, decay), sigma = robustSigma(e);
-    const best = strongest(e, patterns, sigma, [...shocks, ...regressed]);
+    const best = strongest(e, current, decay, patterns, sigma, [...shocks, ...regressed]);
     if (best === null || Math.abs(best.t) < critical) break;
     const total = e.reduce((s, v) => s + v * v, 0);
     // A shock explains its own residual and nothing else: its gain in log likelihood is that of taking it out.
@@ -157,23 +157,21 @@ function patternsOf(types: readonly OutlierType[], fit: Fit, decay: number): Rea
 interface Candidate { readonly type: OutlierType; readonly index: number; readonly size: number; readonly t: number }
 
 /** The largest |t| over types and times not yet picked. */
-function strongest(e: Float64Array, patterns: ReadonlyMap<OutlierType, Float64Array>, sigma: number, picked: readonly Candidate[]): Candidate | null {
+function strongest(e: Float64Array, fit: Fit, decay: number, patterns: ReadonlyMap<OutlierType, Float64Array>, sigma: number, picked: readonly Candidate[]): Candidate | null {
   let best: Candidate | null = null;
-  const n = e.length;
+  const n = e.length, taken = new Set(picked.map((c) => c.index));
   for (const [type, x] of patterns) {
-    const reach = lastNonZero(x);
+    const products = patternProducts(type, fit, decay, e);
     let squares = 0;
-    const sums = new Float64Array(n); // sum of x_j^2, j < n - index
-    for (let j = 0; j < n; j++) { squares += x[j] * x[j]; sums[n - 1 - j] = squares; }
-    for (let index = 0; index < n; index++) {
+    // An outlier at index reaches the n - index residuals from there on: the sums grow towards the start.
+    for (let index = n - 1; index >= 0; index--) {
+      squares += x[n - 1 - index] ** 2;
       if (index === n - 1 && type !== "additive" && patterns.has("additive")) continue;
       // A level that is new from the first residual on is the mean's business.
-      if (type === "levelShift" && index === 0) continue;
-      let product = 0;
-      const end = Math.min(n - 1, index + reach);
-      for (let t = index; t <= end; t++) product += e[t] * x[t - index];
-      const t = product / (sigma * Math.sqrt(sums[index]));
-      if ((best === null || Math.abs(t) > Math.abs(best.t) + 1e-9) && !picked.some((c) => c.index === index)) best = { type, index, size: product / sums[index], t };
+      if ((type === "levelShift" && index === 0) || taken.has(index)) continue;
+      const t = products[index] / (sigma * Math.sqrt(squares));
+      // The earliest of equals, whichever way the series is gone through.
+      if (best === null || Math.abs(t) > Math.abs(best.t) + 1e-9 || (best.type === type && Math.abs(t) >= Math.abs(best.t) - 1e-9)) best = { type, index, size: products[index] / squares, t };
     }
   }
   return best;
@@ -201,12 +199,6 @@ function together(e: Float64Array, picked: readonly Candidate[], patterns: Reado
 
 function subtract(e: Float64Array, x: Float64Array, { index, size }: Candidate): void {
   for (let t = index; t < e.length; t++) e[t] -= size * x[t - index];
-}
-
-function lastNonZero(x: Float64Array): number {
-  let j = x.length - 1;
-  while (j > 0 && x[j] === 0) j--;
-  return j;
 }
 
 function interventionOf(c: Candidate, fit: Fit, decay: number): Intervention | null {
