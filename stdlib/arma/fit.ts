@@ -6,7 +6,8 @@ import { autoregression } from "./autoregression.ts";
 import { estimate } from "./estimate.ts";
 import type { Estimate, Evaluate } from "./search.ts";
 import { filterEvaluate } from "./filterEvaluate.ts";
-import { BOUNDARY, flags, moduli } from "./flags.ts";
+import { edgesOf, type Edges } from "./edges.ts";
+import { flags } from "./flags.ts";
 import { informationAt } from "./information.ts";
 import { gradientInto, makeWork, valueAt, type Work } from "./likelihood.ts";
 import type { Fit, FitOptions, Note } from "./model.ts";
@@ -74,18 +75,14 @@ function finish(numbers: Numbers, work: Work, found: Estimate, evaluate: Evaluat
   const { prepared } = numbers;
   const notes: Note[] = [];
   const { x, free } = found;
-  let edge = false;
-  for (const part of prepared.shape.factors) {
-    const estimated = [...part.lags.keys()].some(i => Number.isNaN(prepared.held[part.from + i]));
-    if (estimated && moduli(part, x) < BOUNDARY) edge = true;
-  }
+  const edges = edgesOf(prepared, x, free);
   let information = null;
-  if (how.standardErrors === false || edge) evaluate.value(x);
+  if (how.standardErrors === false || edges.side === "stationarity") evaluate.value(x);
   else {
-    information = informationAt(work, numbers.data, x, free, evaluate, found.hessian);
+    information = informationAt(work, numbers.data, x, free, evaluate, found.hessian, edges);
     if (information.covariance === null) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: the information matrix is singular at the estimates, so some combination of the parameters is not determined by the data. Take fewer lags or regressors." });
   }
-  if (how.standardErrors !== false && edge) notes.push({ code: "noStandardErrors", tone: "caution", text: "Standard errors are not available: a root lies on the unit circle, the edge of the region, where the usual normal approximation does not hold." });
+  if (how.standardErrors !== false && edges.side !== "none") notes.push({ code: "noStandardErrors", tone: "caution", text: edgeText(prepared, free, edges) });
   const solution: Solution = {
     x, numbers, work, free, information, converged: found.converged, method: "exact", stationary: true, notes,
     beta: work.beta.slice(numbers.data.gaps), logLikelihood: -found.value, residuals: how.residuals,
@@ -93,6 +90,14 @@ function finish(numbers: Numbers, work: Work, found: Estimate, evaluate: Evaluat
   const result = assemble(solution);
   return { ...result, notes: [...result.notes, ...flagsOf(result, solution)] };
 }
+
+function edgeText(p: Prepared, free: Int32Array, edges: Edges): string {
+  if (edges.side === "stationarity") return "Standard errors are not available: an autoregressive root lies on the unit circle, the edge of the region, where the usual normal approximation does not hold.";
+  const names = edges.without.map(i => coefficientName(p, free[i])), rest = free.length > names.length || p.hasMean || p.names.length > 0;
+  return `No standard error is available for ${listed(names)}: a moving-average root lies on the unit circle, the edge of the region, where the usual normal approximation does not hold.${rest ? " The other standard errors take that root as known." : ""}`;
+}
+
+function listed(names: readonly string[]): string { return names.length < 2 ? names.join("") : `${names.slice(0, -1).join(", ")} and ${names[names.length - 1]}`; }
 
 function flagsOf(result: Fit, s: Solution): Note[] {
   const { prepared } = s.numbers;
@@ -112,13 +117,12 @@ function flagsOf(result: Fit, s: Solution): Note[] {
   });
 }
 
-/** "phi 1", "seasonal theta 2". */
+/** "AR lag 1", "seasonal MA lag 24": as the page names them. */
 export function coefficientName(p: Prepared, at: number): string {
-  const words = ["phi", "seasonal phi", "theta", "seasonal theta"];
+  const words = ["AR", "seasonal AR", "MA", "seasonal MA"];
   const parts = p.shape.factors;
   const which = parts.findIndex(f => at < f.from + f.lags.length);
-  const lag = parts[which].lags[at - parts[which].from];
-  return `${words[which]} ${which % 2 === 1 ? lag / p.shape.season : lag}`;
+  return `${words[which]} lag ${parts[which].lags[at - parts[which].from]}`;
 }
 
 export { modelName, type Series };

@@ -1,6 +1,7 @@
 // Standard errors: the inverse of the observed information of the exact likelihood, and the robust (sandwich) alternative.
 
 import { inversePositive } from "../linear/cholesky.ts";
+import { inverseBeside, type Edges } from "./edges.ts";
 import { divideInto, dot } from "./kernels.ts";
 import { productJacobian } from "./gaussNewton.ts";
 import type { Evaluate } from "./search.ts";
@@ -23,8 +24,9 @@ const LONG = 5000;
 
 /** Central differences of the exact gradient, in steps of a two-hundredth of a
  *  standard error: truncation is then about 4e-6 of the curvature's own change over one standard error, rounding far less.
- *  The regression part is in closed form: by the gradient of its maximiser. Leaves `work` at x. */
-export function informationAt(work: Work, data: Data, x: Float64Array, free: Int32Array, evaluate: Evaluate, rough: Float64Array): Information {
+ *  The regression part is in closed form: by the gradient of its maximiser. Coefficients at the edge have NaN for a variance.
+ *  Leaves `work` at x. */
+export function informationAt(work: Work, data: Data, x: Float64Array, free: Int32Array, evaluate: Evaluate, rough: Float64Array, edges: Edges): Information {
   const k = free.length, m = data.columns.length - data.gaps, size = k + m;
   const hessian = new Float64Array(k * k), slope = new Float64Array(m * k);
   const gradient = new Float64Array(x.length), up = new Float64Array(x.length), down = new Float64Array(x.length);
@@ -57,7 +59,7 @@ export function informationAt(work: Work, data: Data, x: Float64Array, free: Int
   for (let a = 0; a < k; a++) for (let b = 0; b < a; b++) hessian[a * k + b] = hessian[b * k + a] = (hessian[a * k + b] + hessian[b * k + a]) / 2;
   evaluate.value(x);
   if (!oneSided) evaluate.gradientInto(x, gradient);
-  const own = k === 0 ? new Float64Array(0) : inversePositive(hessian, k);
+  const own = inverseBeside(hessian, k, edges.directions);
   const regression = regressionCovariance(work, data);
   if (own === null || regression === null) return { covariance: null, robust: null, size, hessian, gradient: pickFree(gradient, free) };
   const covariance = new Float64Array(size * size);
@@ -76,7 +78,9 @@ export function informationAt(work: Work, data: Data, x: Float64Array, free: Int
       covariance[(k + i) * size + k + j] = sum;
     }
   }
-  return { covariance, robust: sandwich(work, data, x, free, covariance, size), size, hessian, gradient: pickFree(gradient, free) };
+  const robust = sandwich(work, data, x, free, covariance, size);
+  for (const i of edges.without) covariance[i * size + i] = robust[i * size + i] = NaN;
+  return { covariance, robust, size, hessian, gradient: pickFree(gradient, free) };
 }
 
 function pickFree(gradient: Float64Array, free: Int32Array): Float64Array { return Float64Array.from(free, i => gradient[i]); }
