@@ -6,7 +6,8 @@ import { cut } from "../series/cut.ts";
 import { modelOutlook } from "../forecast/modelOutlook.ts";
 import type { Forecaster } from "../forecast/model.ts";
 import { baseOf, firstIndex, lastIndex, reachOf } from "../forecast/reach.ts";
-import { refitBetween } from "../forecast/refit.ts";
+import { contentKey, recallNothing, type Recall } from "./contentKey.ts";
+import { estimatesOf, type Seen } from "./estimates.ts";
 
 export interface Labelled { readonly label: string; readonly model: Forecaster }
 
@@ -27,11 +28,13 @@ export interface RollingOptions {
   readonly seed?: number;
 }
 
-/** How the caller slices time: `breathe` is awaited after each forecast, `stopped` ends the work early and keeps what is done. */
+/** How the caller slices time: `breathe` is awaited after each forecast, `stopped` ends the work early and keeps what is done.
+ *  `recall` gives what was computed from the same content before; left out, everything is computed. */
 export interface Hooks {
   readonly progress?: (done: number, total: number, what: string) => void;
   readonly breathe?: () => Promise<void>;
   readonly stopped?: () => boolean;
+  readonly recall?: Recall;
 }
 
 /** What happened at the origins, and the frame that all models share. */
@@ -97,46 +100,64 @@ const drawsAnOrigin = 1000;
 /** Number of the first period that a model was made from, in the units of the forecasts. */
 const sampleStart = ({ model }: Labelled): number => firstIndex(baseOf(model.series));
 
-/** Forecasts of one model from every origin of a frame. */
-export async function rollModel({ label, model }: Labelled, frame: RollingFrame, options: RollingOptions, hooks: Hooks = {}, onForecast: () => void = () => undefined): Promise<Rolled> {
-  const { base, at, horizon, levels, origins } = frame, { training = "expanding", refit = true, data, seed = 1 } = options, size = at.length * horizon;
-  const table = (): Float64Array => new Float64Array(size).fill(NaN);
-  const rolled = { label, mean: table(), median: table(), sd: table(), crps: table(), bands: levels.map((level) => ({ level, low: table(), high: table() })), failures: [] as { origin: string; reason: string }[] };
-  const every = refit === true ? 1 : refit === false ? Infinity : Math.max(1, Math.round(refit));
-  const first = firstIndex(base), start = Math.max(first, sampleStart({ label, model }));
-  let parameters: Forecaster | null = null, done = 0;
-  for (let k = 0; k < at.length; k++) {
-    if (hooks.stopped?.()) break;
-    try {
-      const from = training === "sliding" ? start + k : start, to = first + at[k];
-      // The first search starts from nothing: the model's own values know all the data.
-      const how = parameters === null ? "fresh" : k % every === 0 ? "refit" : "held";
-      const here = refitBetween(model, { from, to, how, data }, parameters ?? model);
-      if (how !== "held") parameters = here;
-      writeForecasts(rolled, k, here, frame, seed);
-    } catch (error) {
-      // A model that cannot be estimated on a short stretch is an outcome of the comparison; a fault of ours is not.
-      if (!(error instanceof RangeError)) throw error;
-      rolled.failures.push({ origin: origins[k], reason: error.message });
+/** Forecasts of all models from every origin of a frame, origin by origin, so that work stopped early has the same origins of all.
+ *  @param onForecast  called after each forecast with the label of its model */
+export async function rollModels(models: readonly Labelled[], frame: RollingFrame, options: RollingOptions, hooks: Hooks = {}, onForecast: (label: string) => void = () => undefined): Promise<Rolled[]> {
+  const rolled = models.map(({ label }) => ({ ...tablesOf(label, frame), done: 0 })), forecasts = models.map((one) => forecastsOf(one, frame, options, hooks.recall ?? recallNothing));
+  for (let k = 0; k < frame.at.length; k++) {
+    for (let i = 0; i < models.length; i++) {
+      if (hooks.stopped?.()) return rolled;
+      writeInto(rolled[i], k, forecasts[i](k), frame);
+      rolled[i].done++;
+      onForecast(models[i].label);
+      if (hooks.breathe) await hooks.breathe();
     }
-    done++;
-    onForecast();
-    if (hooks.breathe) await hooks.breathe();
   }
-  return { ...rolled, done };
+  return rolled;
 }
 
-function writeForecasts(rolled: Omit<Rolled, "done" | "failures">, k: number, model: Forecaster, { base, at, horizon, levels }: RollingFrame, seed: number): void {
-  const { outlook } = modelOutlook(model, horizon, {}, seed, drawsAnOrigin), offset = k * horizon;
-  rolled.mean.set(outlook.mean, offset); rolled.median.set(outlook.median, offset); rolled.sd.set(outlook.sd, offset);
-  levels.forEach((level, i) => {
-    rolled.bands[i].low.set(outlook.quantile((1 - level) / 2), offset);
-    rolled.bands[i].high.set(outlook.quantile((1 + level) / 2), offset);
-  });
-  for (let h = 0; h < horizon; h++) {
-    const actual = base.values[at[k] + h + 1];
-    if (!Number.isNaN(actual)) rolled.crps[offset + h] = outlook.crps(h, actual);
-  }
+/** The forecast from one origin, each column of the horizon's length; or why there is none. */
+type OriginRow = { readonly mean: Float64Array; readonly median: Float64Array; readonly sd: Float64Array; readonly crps: Float64Array; readonly low: readonly Float64Array[]; readonly high: readonly Float64Array[] } | { readonly reason: string };
+
+/** One model's forecasts by the number of their origin. */
+function forecastsOf({ label, model }: Labelled, frame: RollingFrame, options: RollingOptions, recall: Recall): (k: number) => OriginRow {
+  const { base, at, horizon, levels } = frame, { training = "expanding", refit = true, data, seed = 1 } = options, slides = training === "sliding";
+  const every = refit === true ? 1 : refit === false ? Infinity : Math.max(1, Math.round(refit));
+  const first = firstIndex(base), start = Math.max(first, sampleStart({ label, model })), estimates = estimatesOf(model, { data, slides, earliest: start, recall });
+  const seenAt = (k: number): Seen => ({ from: slides ? start + k : start, to: first + at[k] });
+  return (k) => {
+    const seen = seenAt(k), estimated = seenAt(every === Infinity ? 0 : k - (k % every)), actual = base.values.subarray(at[k] + 1, at[k] + 1 + horizon);
+    const key = `forecast ${estimates.key(seen)} ${estimated.to === seen.to ? "" : estimates.key(estimated)} ${contentKey([levels, seed, actual])}`;
+    return recall(key, () => {
+      try {
+        return rowOf(estimated.to === seen.to ? estimates.at(seen) : estimates.held(estimated, seen), actual, levels, seed);
+      } catch (error) {
+        // A model that cannot be estimated on a short stretch is an outcome of the comparison; a fault of ours is not.
+        if (!(error instanceof RangeError)) throw error;
+        return { reason: error.message };
+      }
+    });
+  };
+}
+
+function rowOf(model: Forecaster, actual: Float64Array, levels: readonly number[], seed: number): OriginRow {
+  const { outlook } = modelOutlook(model, actual.length, {}, seed, drawsAnOrigin);
+  return {
+    mean: outlook.mean, median: outlook.median, sd: outlook.sd, crps: actual.map((y, h) => (Number.isNaN(y) ? NaN : outlook.crps(h, y))),
+    low: levels.map((level) => outlook.quantile((1 - level) / 2)), high: levels.map((level) => outlook.quantile((1 + level) / 2)),
+  };
+}
+
+function tablesOf(label: string, { at, horizon, levels }: RollingFrame) {
+  const table = (): Float64Array => new Float64Array(at.length * horizon).fill(NaN);
+  return { label, mean: table(), median: table(), sd: table(), crps: table(), bands: levels.map((level) => ({ level, low: table(), high: table() })), failures: [] as { origin: string; reason: string }[] };
+}
+
+function writeInto(rolled: ReturnType<typeof tablesOf>, k: number, row: OriginRow, { horizon, origins }: RollingFrame): void {
+  if ("reason" in row) { rolled.failures.push({ origin: origins[k], reason: row.reason }); return; }
+  const offset = k * horizon;
+  for (const column of ["mean", "median", "sd", "crps"] as const) rolled[column].set(row[column], offset);
+  rolled.bands.forEach(({ low, high }, i) => { low.set(row.low[i], offset); high.set(row.high[i], offset); });
 }
 
 /** Times of the horizon after an origin. */

@@ -8,7 +8,7 @@ import type { Fit } from "../arma/model.ts";
 import type { Forecaster } from "../forecast/model.ts";
 import { lossDifferenceTest, type Loss } from "./dieboldMariano.ts";
 import { modelConfidenceSet, type ConfidenceSet } from "./modelConfidenceSet.ts";
-import { rollingFrame, rollModel, timesAfter, type Hooks, type Labelled, type Rolled, type RollingFrame, type RollingOptions } from "./rolling.ts";
+import { rollingFrame, rollModels, timesAfter, type Hooks, type Labelled, type Rolled, type RollingFrame, type RollingOptions } from "./rolling.ts";
 import { scoreTable, type Score } from "./scoreTable.ts";
 import { rankSentences } from "./verdict.ts";
 
@@ -84,22 +84,18 @@ export interface Evaluation {
 export async function rollingOrigins(models: readonly Labelled[] | readonly Forecaster[] | Readonly<Record<string, Forecaster>>, options: CompareOptions, hooks: Hooks = {}): Promise<Evaluation> {
   const given = labelled(models), frame = rollingFrame(given, options), length = options.length ?? seasonOf(given, frame);
   const all = [...given, ...naiveRules(given, frame, length)], total = all.length * frame.at.length;
-  const rolled: Rolled[] = [];
   let done = 0;
-  for (const one of all) {
-    rolled.push(await rollModel(one, frame, options, hooks, () => { done++; hooks.progress?.(done, total, one.label); }));
-    if (hooks.stopped?.()) break;
-  }
+  const rolled = await rollModels(all, frame, options, hooks, (label) => { done++; hooks.progress?.(done, total, label); });
   return summarise(given, rolled, frame, { ...options, length }, done, total);
 }
 
 /** Ranks, tests and words from the forecasts of each model (made here, or elsewhere in parts).
- *  @param rolled  of the models in order, then of the naive rules that stand beside them; those missing were not reached */
+ *  @param rolled  of the models in order, then of the naive rules that stand beside them */
 export function summarise(given: readonly Labelled[], rolled: readonly Rolled[], frame: RollingFrame, options: CompareOptions & { readonly length: number }, done: number, total: number): Evaluation {
   const { rank = "mase", loss = "absolute", length } = options, { horizon } = frame;
-  // Stopped early, models are compared on the origins that all of those begun have finished.
-  const reached = rolled.filter((r) => r.done > 0), common = Math.min(...reached.map((r) => r.done)), even = reached.map((r) => ({ ...r, done: common }));
-  if (even.length === 0) throw new RangeError("compare: stopped before the first forecast");
+  // Stopped early, models are compared on the origins that all of them have finished.
+  const common = Math.min(...rolled.map((r) => r.done)), even = rolled.map((r) => ({ ...r, done: common }));
+  if (common === 0) throw new RangeError("compare: stopped before all models had forecast from the first origin");
   const tables = even.map((r) => scoreTable(r, frame, length)), overall = tables.map((rows) => rows[rows.length - 1]);
   const isGiven = (label: string): boolean => given.some((g) => g.label === label);
   const asked = even.map((_, i) => i).filter((i) => isGiven(even[i].label)), naiveAt = naiveIndexes(given, even);

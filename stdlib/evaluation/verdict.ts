@@ -18,7 +18,7 @@ export function rankSentences(models: readonly RankedModel[], against: readonly 
     : `${best.label} had the smallest ${name}, ${figure(best[rank])}, ${over}.`;
   if (next && tied.length === 1) sentence += ` ${nextSentence(best, next, rank, against)}`;
   sentence += ` ${best.sentence}`;
-  if (!complete) notes.push(`Stopped early: scored on the ${origins} of ${total} origins that every model begun had finished.`);
+  if (!complete) notes.push(`Stopped early: scored on the first ${origins} of ${total} origins, which every model had finished.`);
   if (failures > 0) notes.push(`${failures} forecast${failures === 1 ? "" : "s"} could not be made; the reasons are listed. A model that misses some ranks behind those that made all, since it was spared what they had to forecast.`);
   if (horizon > 1) notes.push("Forecasts from neighbouring origins overlap, so that coverage strays more by chance than the binomial range for independent tries says.");
   notes.push("Bias, RMSE and RMSSE judge the mean forecast; MAE, MAPE, sMAPE and MASE the median, which makes absolute errors smallest.");

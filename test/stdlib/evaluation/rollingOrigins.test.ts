@@ -109,8 +109,15 @@ describe("work that is stopped, and models that fail", () => {
       progress: (done, total, what) => { seen.push([done, total, what]); }, breathe: async () => { breaths++; }, stopped: () => breaths >= 15 });
     expect(seen[0]).toEqual([1, 40, "a"]);
     expect(found).toMatchObject({ complete: false, done: 15, total: 40 });
-    expect(found.origins.length).toBe(5);
-    expect(found.notes[0]).toContain("Stopped early");
+    // Two models and the two naive rules take their turns origin by origin: three whole origins are among 15 forecasts.
+    expect(found.origins.length).toBe(3);
+    expect(found.models.every((m) => m.n === 3)).toBe(true);
+    expect(found.notes[0]).toContain("Stopped early: scored on the first 3 of 10 origins");
+  });
+  it("says so when it is stopped before one origin is whole", async () => {
+    const s = airline();
+    let forecasts = 0;
+    await expect(rollingOrigins({ a: rule.drift(s), b: rule.average(s) }, { origins: 10, horizon: 1 }, { progress: () => { forecasts++; }, stopped: () => forecasts === 1 })).rejects.toThrow("stopped before all models had forecast from the first origin");
   });
   it("a model that cannot be estimated on a short stretch is listed with its reason, and the others are scored", async () => {
     const s = airline(), small = makeSeries({ name: "s", every: "P1M", start: s.times[0], values: s.values.slice(0, 30) });
