@@ -38,7 +38,7 @@ export async function placeInside(folder: string, file: string): Promise<string>
     if (isMissing(error)) throw new NoFile(await missing(home, file));
     throw new NoFile(`"${file}" cannot be read (${reason(error)}).`);
   }
-  if (path !== home && !path.startsWith(home.endsWith(sep) ? home : home + sep)) {
+  if (!isInside(home, path)) {
     throw new NoFile(`"${file}" leads out of the notebook's folder by a link. A notebook reads only files inside its own folder: put a copy of the file there.`);
   }
   const found = await stat(path);
@@ -46,6 +46,11 @@ export async function placeInside(folder: string, file: string): Promise<string>
   if (!found.isFile()) throw new NoFile(`"${file}" is not an ordinary file.`);
   if (found.size > largestFile) throw new NoFile(`"${file}" has ${Math.round(found.size / 1048576)} MB; a notebook reads files up to ${largestFile / 1048576} MB. Aggregate it first, or split it.`);
   return path;
+}
+
+/** Whether a real path is the folder's own or inside it. */
+export function isInside(home: string, path: string): boolean {
+  return path === home || path.startsWith(home.endsWith(sep) ? home : home + sep);
 }
 
 function refuseByForm(file: string): void {

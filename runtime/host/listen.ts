@@ -4,6 +4,7 @@ import { createServer as createHttp } from "node:http";
 import type { IncomingMessage, ServerResponse } from "node:http";
 import type { AddressInfo } from "node:net";
 import { Readable } from "node:stream";
+import { closedPolicy } from "./policy.ts";
 import type { Server } from "./server.ts";
 
 export interface Listening { readonly port: number; close(): Promise<void> }
@@ -12,7 +13,8 @@ export interface Listening { readonly port: number; close(): Promise<void> }
  *  @param port  0 takes any free port
  *  @throws the socket's own error, EADDRINUSE where the port is taken */
 export async function listen(server: Server, port: number): Promise<Listening> {
-  const http = createHttp((request, response) => { void serve(server, request, response); });
+  // A client that says its request drop by drop is let go.
+  const http = createHttp({ headersTimeout: 10_000, requestTimeout: 60_000, connectionsCheckingInterval: 5_000 }, (request, response) => { void serve(server, request, response); });
   await new Promise<void>((resolve, reject) => {
     http.once("error", reject);
     http.listen(port, "127.0.0.1", () => { http.off("error", reject); resolve(); });
@@ -34,7 +36,7 @@ async function serve(server: Server, incoming: IncomingMessage, outgoing: Server
     body.on("error", () => outgoing.destroy());
     body.pipe(outgoing);
   } catch (error) {
-    if (!outgoing.headersSent) outgoing.writeHead(400, { "content-type": "text/plain; charset=utf-8" });
+    if (!outgoing.headersSent) outgoing.writeHead(400, { "content-type": "text/plain; charset=utf-8", "x-content-type-options": "nosniff", "content-security-policy": closedPolicy });
     outgoing.end(error instanceof Error ? error.message : String(error));
   }
 }

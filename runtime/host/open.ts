@@ -4,7 +4,7 @@ import { randomBytes } from "node:crypto";
 import { realpath } from "node:fs/promises";
 import { basename, dirname, resolve } from "node:path";
 import { EventStreams } from "./events.ts";
-import { placeInside } from "./folder.ts";
+import { isInside, placeInside } from "./folder.ts";
 import { scriptOf } from "./frame.ts";
 import { hash } from "./hash.ts";
 import { CannotRun, exit } from "./io.ts";
@@ -26,7 +26,7 @@ export async function open(command: { readonly file: string; readonly port: numb
   const events = new EventStreams(), key = randomBytes(18).toString("base64url");
   const watcher = follow(store, events);
   const framePolicy = pagePolicy([scriptOf(await readPart("frame.html"))]);
-  const server = createServer({ store, key, events, part: readPart, framePolicy, wanted: (file) => { void followData(watcher, path, file); } });
+  const server = createServer({ store, key, events, part: readPart, framePolicy, wanted: (file) => { followData(watcher, path, file).catch(() => undefined); } });
   const listening = await start(server, command.port, path);
   const beat = setInterval(() => events.beat(), 15000);
   io.out(`${basename(path)} is open at\n\n  http://127.0.0.1:${listening.port}/?key=${key}\n\nOn this machine only. End with Ctrl-C.\n`);
@@ -49,13 +49,11 @@ function follow(store: Store, events: EventStreams): Following {
   return { watcher, names };
 }
 
-/** Follows a data file where it may be read: also one that is not there yet. */
+/** Follows a data file where it may be read: also one that is not there yet. A folder that is a link may lead out. */
 async function followData({ watcher, names }: Following, notebook: string, file: string): Promise<void> {
-  const plain = resolve(dirname(notebook), file);
-  const paths = [plain, await placeInside(dirname(notebook), file).catch(() => null)];
-  const home = await realpath(dirname(notebook));
-  for (const path of paths) {
-    if (path === null || !(path.startsWith(`${home}/`) || path.startsWith(`${dirname(notebook)}/`))) continue;
+  const home = await realpath(dirname(notebook)), real = await placeInside(home, file).catch(() => null);
+  for (const path of [resolve(dirname(notebook), file), real]) {
+    if (path === null || !isInside(home, await realpath(dirname(path)).catch(() => ""))) continue;
     names.set(path, (names.get(path) ?? new Set()).add(file));
     watcher.follow(path);
   }

@@ -22,6 +22,9 @@ export const deskPolicy = [
   "connect-src 'self'", "frame-src 'self'", "form-action 'none'", "base-uri 'none'", "object-src 'none'", "frame-ancestors 'none'",
 ].join("; ");
 
+/** For everything else that is answered: it is no document, and shown as one it may do nothing. */
+export const closedPolicy = "default-src 'none'; frame-ancestors 'none'; sandbox";
+
 /** A script as it may stand inside a document: nothing in it ends the element early. Done before hashing. */
 export function inlineSafe(script: string): string {
   return script.replace(/<\/(script)/gi, "<\\/$1").replace(/<!--/g, "<\\!--");

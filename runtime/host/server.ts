@@ -7,7 +7,7 @@ import type { EventStreams } from "./events.ts";
 import { NoFile, readInside } from "./folder.ts";
 import { CannotRun } from "./io.ts";
 import type { BrowserPart } from "./parts.ts";
-import { deskPolicy } from "./policy.ts";
+import { closedPolicy, deskPolicy } from "./policy.ts";
 import type { Store } from "./store.ts";
 
 export interface Session {
@@ -29,10 +29,8 @@ const largestText = 64 * 1024 * 1024;
 export function createServer(session: Session): Server {
   return async (request) => {
     const url = new URL(request.url);
-    const refusal = refuse(request, url);
-    if (refusal) return refusal;
     try {
-      return secured(await answer(session, request, url));
+      return secured(refuse(request, url) ?? await answer(session, request, url));
     } catch (error) {
       return secured(json({ message: error instanceof Error ? error.message : String(error) }, error instanceof CannotRun ? 409 : 500));
     }
@@ -41,12 +39,13 @@ export function createServer(session: Session): Server {
 
 /** A request that was sent to another name (a name that was made to point here), or by another site's page. */
 function refuse(request: Request, url: URL): Response | null {
-  const host = request.headers.get("host") ?? url.host;
+  const host = request.headers.get("host") ?? "";
   if (!/^(127\.0\.0\.1|localhost)(:\d+)?$/.test(host)) return plain("This address is answered only as 127.0.0.1.", 403);
   const origin = request.headers.get("origin");
   if (origin !== null && origin !== `http://${host}`) return plain("Another site's page may not ask here.", 403);
   const site = request.headers.get("sec-fetch-site");
-  if (site === "cross-site" && url.pathname !== "/") return plain("Another site's page may not ask here.", 403);
+  // Another port of this machine is another site's too, though browsers call it the same one.
+  if ((site === "cross-site" || site === "same-site") && url.pathname !== "/") return plain("Another site's page may not ask here.", 403);
   return null;
 }
 
@@ -96,17 +95,25 @@ async function notebook(session: Session): Promise<Response> {
 async function save(session: Session, request: Request): Promise<Response> {
   const match = request.headers.get("if-match"), none = request.headers.get("if-none-match");
   if (match === null && none !== "*") return json({ message: "A save says which text it replaces (If-Match)." }, 428);
-  if (Number(request.headers.get("content-length") ?? 0) > largestText) return tooLarge(Number(request.headers.get("content-length")));
-  const bytes = new Uint8Array(await request.arrayBuffer());
-  if (bytes.length > largestText) return tooLarge(bytes.length);
+  const bytes = await bodyOf(request);
+  if (bytes === null) return json({ message: `The text is too long: up to ${largestText / 1048576} MB are saved.` }, 413);
   let content: string;
   try { content = new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes); } catch { return json({ message: "The text sent is not UTF-8, so it was not saved." }, 400); }
   const result = await session.store.save(content, match === null ? null : match.replaceAll('"', ""));
   return "saved" in result ? json({ hash: result.saved.hash }, 200) : json({ found: result.found }, 412);
 }
 
-function tooLarge(size: number): Response {
-  return json({ message: `The text has ${Math.round(size / 1048576)} MB; up to ${largestText / 1048576} MB are saved.` }, 413);
+/** The bytes sent, or null as soon as they are too many, whatever length was announced. */
+async function bodyOf(request: Request): Promise<Uint8Array | null> {
+  if (Number(request.headers.get("content-length") ?? 0) > largestText) return null;
+  const pieces: Uint8Array[] = [];
+  let length = 0;
+  for await (const piece of request.body ?? []) {
+    length += piece.length;
+    if (length > largestText) return null;
+    pieces.push(piece);
+  }
+  return Buffer.concat(pieces);
 }
 
 async function data(session: Session, url: URL): Promise<Response> {
@@ -132,6 +139,8 @@ function secured(response: Response): Response {
   headers.set("x-content-type-options", "nosniff");
   headers.set("referrer-policy", "no-referrer");
   headers.set("cross-origin-opener-policy", "same-origin");
+  headers.set("cross-origin-resource-policy", "same-origin");
+  if (!headers.has("content-security-policy")) headers.set("content-security-policy", closedPolicy);
   return response;
 }
 
@@ -140,7 +149,7 @@ function text(content: string, type: string): Response {
 }
 
 function plain(content: string, status: number): Response {
-  return new Response(`${content}\n`, { status, headers: { "content-type": "text/plain; charset=utf-8", "x-content-type-options": "nosniff" } });
+  return new Response(`${content}\n`, { status, headers: { "content-type": "text/plain; charset=utf-8" } });
 }
 
 function json(content: unknown, status = 200): Response {

@@ -50,8 +50,29 @@ describe("the desk's server", () => {
     expect((await ask("/notebook", { headers: { origin: "http://evil.example" } })).status).toBe(403);
     expect((await ask("/notebook", { headers: { origin: "null" } })).status).toBe(403);
     expect((await ask("/notebook", { headers: { origin: "http://127.0.0.1:9999" } })).status).toBe(403);
-    expect((await ask("/notebook", { headers: { "sec-fetch-site": "cross-site" } })).status).toBe(403);
+    for (const site of ["cross-site", "same-site"]) expect((await ask("/notebook", { headers: { "sec-fetch-site": site } })).status).toBe(403);
+    expect((await server(new Request(`${at}/desk.js`))).status).toBe(403);
     expect((await ask("/notebook", { headers: { origin: at } })).status).toBe(200);
+  });
+
+  it("says on every answer that it may not be sniffed, kept, referred to, embedded elsewhere, or do anything as a document", async () => {
+    const answers = [ask("/desk.js", { key: null }), ask("/notebook"), ask("/notebook", { key: null }), ask("/data?file=d.csv"), ask("/data?file=gone.csv"), ask("/events"), ask("/favicon.ico"), ask("/nothing"), ask("/", { key: null }), ask("/notebook", { host: "a.example" }), ask("/?key=the-key"), ask("/frame")];
+    for (const { url, headers } of await Promise.all(answers)) {
+      expect(Object.fromEntries(headers), url).toMatchObject({ "cache-control": "no-store", "x-content-type-options": "nosniff", "referrer-policy": "no-referrer", "cross-origin-resource-policy": "same-origin" });
+      expect(headers.get("content-security-policy"), url).toMatch(/^default-src 'none'.*frame-ancestors/);
+      expect(headers.has("access-control-allow-origin")).toBe(false);
+    }
+  });
+
+  it("takes no text above its limit, announced or not, and writes nothing of it", async () => {
+    const { hash } = await (await ask("/notebook")).json() as { hash: string };
+    const headers = { "if-match": `"${hash}"` };
+    expect((await ask("/notebook", { method: "PUT", body: "x", headers: { ...headers, "content-length": String(1e9) } })).status).toBe(413);
+    let sent = 0;
+    const endless = new ReadableStream<Uint8Array>({ pull: (controller) => { sent += 1 << 20; controller.enqueue(new Uint8Array(1 << 20)); } });
+    expect((await ask("/notebook", { method: "PUT", body: endless, headers, duplex: "half" } as RequestInit)).status).toBe(413);
+    expect(sent).toBeLessThan(80 << 20);
+    expect(readFileSync(join(folder, "n.md"), "utf8")).toBe("# One\n");
   });
 
   it("saves with the hash of the text that is replaced", async () => {
