@@ -1,6 +1,8 @@
 // The maximum of the likelihood over the ARMA coefficients: starts, search, and the choice among several maxima.
 
-import { gradientInto, makeWork, valueAt, type Work } from "./likelihood.ts";
+import { gradientInto } from "./gradient.ts";
+import { valueAt } from "./likelihood.ts";
+import { makeWork, type Work } from "./work.ts";
 import { inverseRoots, reflected } from "./roots.ts";
 import { isStable } from "./region.ts";
 import { denseFactor, type Factor, type Shape } from "./shape.ts";
@@ -13,7 +15,7 @@ import { quasiNewton, type Minimum, type Problem } from "../optimize/quasiNewton
 /** Maximises the exact likelihood. Cost: a start by regression and usually 4 to 10 passes; more starts where several maxima are likely. */
 export function estimate(search: Search): Estimate {
   const { shape, data, held } = search;
-  const work = search.work ?? makeWork(shape, data.n, data.columns.length);
+  const work = search.work ?? makeWork(shape, data);
   const free = Int32Array.from([...held.keys()].filter(i => Number.isNaN(held[i])));
   const evaluate = search.evaluate ?? {
     value: (x: Float64Array) => valueAt(work, data, x),
@@ -21,7 +23,7 @@ export function estimate(search: Search): Estimate {
   };
   const problem = makeProblem(search, work, free, evaluate);
   const maximise = (small: Shape): { x: Float64Array; innovations: Float64Array } | null => {
-    const own = makeWork(small, data.n, data.columns.length), none = new Float64Array(small.count).fill(NaN);
+    const own = makeWork(small, data), none = new Float64Array(small.count).fill(NaN);
     const plain: Evaluate = { value: x => valueAt(own, data, x), gradientInto: (x, g) => gradientInto(own, data, x, g) };
     if (small.count === 0) return Number.isFinite(plain.value(none)) ? { x: none, innovations: own.er } : null;
     const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, own, Int32Array.from(none.keys()), plain), hannanRissanen(small, search.bridged), 1e-3, 2 * SCOUT);
@@ -38,11 +40,12 @@ export function estimate(search: Search): Estimate {
     return found;
   };
   const keep = (found: Minimum) => { if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found; };
-  keep(run(search.near ?? hannanRissanen(shape, search.bridged)));
+  keep(run(search.near ?? acrossGaps(search) ?? hannanRissanen(shape, search.bridged)));
   if (best === null) keep(run(new Float64Array(shape.count)));
   if (!search.near && search.starts !== "one" && best !== null) {
     const at = full(best, free, held);
-    for (const x of otherStarts(search, at, suspicious(shape, at, data.n), maximise)) {
+    const others = search.evaluate ? [hannanRissanen(shape, search.bridged), new Float64Array(shape.count)] : otherStarts(search, at, suspicious(shape, at, data.n), maximise);
+    for (const x of others) {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
       const rival = best as Minimum;
@@ -52,6 +55,13 @@ export function estimate(search: Search): Estimate {
   if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
   const found = best as Minimum;
   return { x: invertible(shape, full(found, free, held), held), value: found.value, converged: found.converged, passes, hessian: found.hessian, free };
+}
+
+/** With many gaps a pass costs much, so the places are sorted out on the series with its gaps bridged: its best is the start. */
+function acrossGaps(search: Search): Float64Array | null {
+  if (!search.evaluate) return null;
+  const { x, value } = estimate({ ...search, evaluate: undefined, work: undefined });
+  return Number.isFinite(value) ? x : null;
 }
 
 /** Predicted gain in log-likelihood below which a search stops: far below the 1e-6 that anyone could notice. */

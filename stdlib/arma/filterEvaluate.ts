@@ -4,7 +4,7 @@ import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
 import type { Evaluate } from "./search.ts";
 import { filterLevels } from "./filter.ts";
 import { levelModel } from "./levelModel.ts";
-import type { Work } from "./likelihood.ts";
+import type { Work } from "./work.ts";
 import { differencedBy } from "./prepare.ts";
 import { bridge, type Numbers } from "./numbers.ts";
 import { expandInto } from "./shape.ts";
@@ -40,7 +40,7 @@ export function filterEvaluate(numbers: Numbers, work: Work): Evaluate {
     choleskySolveInto(work.chol, m, beta);
     work.beta.set(beta);
     work.er.fill(0);
-    for (let j = 0; j < m; j++) work.e[j + 1].fill(0);
+    for (let j = 0; j < m; j++) work.columnE[j].fill(0);
     for (let t = delta.length; t < length; t++) {
       const f = filtered.f[t];
       if (Number.isNaN(f)) continue;
@@ -49,7 +49,7 @@ export function filterEvaluate(numbers: Numbers, work: Work): Evaluate {
       squares += v * v / f;
       const by = 1 / Math.sqrt(f);
       work.er[t - delta.length] = v * by;
-      for (let j = 0; j < m; j++) work.e[j + 1][t - delta.length] = filtered.v[j + 1][t] * by;
+      for (let j = 0; j < m; j++) work.columnE[j][t - delta.length] = filtered.v[j + 1][t] * by;
     }
     const free = data.sigma2 === null;
     work.sum = squares;
@@ -66,7 +66,8 @@ export function filterEvaluate(numbers: Numbers, work: Work): Evaluate {
       if (Number.isFinite(f)) {
         const r = Float64Array.from(levels);
         for (let j = 0; j < m; j++) { const c = work.beta[j], column = levelColumns[j]; for (let t = 0; t < r.length; t++) r[t] -= c * column[t]; }
-        work.r.set(differencedBy(delta, bridge(r)));
+        work.r = differencedBy(delta, bridge(r));
+        work.rKnown = true;
       }
       return f;
     },

@@ -9,7 +9,9 @@ import { filterEvaluate } from "./filterEvaluate.ts";
 import { edgesOf, type Edges } from "./edges.ts";
 import { flags } from "./flags.ts";
 import { informationAt } from "./information.ts";
-import { gradientInto, makeWork, valueAt, type Work } from "./likelihood.ts";
+import { gradientInto } from "./gradient.ts";
+import { valueAt } from "./likelihood.ts";
+import { makeWork, type Work } from "./work.ts";
 import type { Fit, FitOptions, Note } from "./model.ts";
 import { modelName } from "./modelName.ts";
 import { numbersOf, parameterCount, type Numbers } from "./numbers.ts";
@@ -38,7 +40,7 @@ export function fit(options: FitOptions, how: FitHow = {}): Fit {
   const method = options.method ?? "exact";
   const explosive = heldOutside(prepared);
   const numbers = numbersOf(prepared, explosive);
-  const work = makeWork(prepared.shape, numbers.data.n, numbers.data.columns.length);
+  const work = makeWork(prepared.shape, numbers.data);
   // The filter takes what the recursion cannot: many gaps, and moving averages held with roots inside the unit circle.
   const filter = explosive || (numbers.gaps.length > 0 && numbers.data.gaps === 0);
   const evaluate: Evaluate = filter ? filterEvaluate(numbers, work) : {

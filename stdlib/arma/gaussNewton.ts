@@ -1,34 +1,30 @@
 // The Gauss-Newton information of the coefficients, and how the product's lags move with the factors' coefficients.
 
 import { divideInto, lagDot } from "./kernels.ts";
-import type { Data, Work } from "./likelihood.ts";
+import { residualsOf, type Data, type Work } from "./work.ts";
 import type { Product, Shape } from "./shape.ts";
 
-/** The information in the innovations' sensitivities de/dc, from lag sums of two filtered series over a capped stretch. */
+/** At most this many of the last observations are used. */
+const STRETCH = 3000;
+
+/** The information in the innovations' sensitivities de/dc, from lag sums of two filtered series over a capped stretch:
+ *  de/da at lag i is that of fa = theta^-1 r, de/db at lag j that of fe = theta^-1 e. */
 export function gaussNewtonInto(h: Float64Array, work: Work, data: Data, x: Float64Array, free: Int32Array): void {
   const { shape } = work;
-  const n = Math.min(work.n, 3000);
-  const offset = work.n - n;
-  const fa = Float64Array.from(work.r.subarray(offset)), fe = Float64Array.from(work.er.subarray(offset));
-  divideInto(fa, n, shape.ma.lags, work.b);
-  divideInto(fe, n, shape.ma.lags, work.b);
+  const n = Math.min(work.n, STRETCH), offset = work.n - n;
   const ar = shape.ar.lags, ma = shape.ma.lags, k = ar.length + ma.length;
-  const cache = new Map<number, number>();
-  const sum = (kind: number, lag: number) => {
-    const key = kind * 1e6 + lag + 5e5;
-    let v = cache.get(key);
-    if (v === undefined) {
-      v = kind === 0 ? lagDot(fa, fa, n, Math.abs(lag)) : kind === 1 ? lagDot(fe, fe, n, Math.abs(lag)) : lag >= 0 ? lagDot(fa, fe, n, lag) : lagDot(fe, fa, n, -lag);
-      cache.set(key, v);
-    }
-    return v;
+  const filtered = (series: Float64Array) => {
+    const f = series.slice(offset);
+    divideInto(f, n, ma, work.b);
+    return f;
   };
+  const fa = ar.length > 0 ? filtered(residualsOf(work, data)) : null, fe = ma.length > 0 ? filtered(work.er) : null;
   const r = new Float64Array(k * k);
   for (let i = 0; i < k; i++) {
     for (let j = 0; j <= i; j++) {
-      const v = i < ar.length ? sum(0, ar[i] - ar[j]) : j >= ar.length ? sum(1, ma[i - ar.length] - ma[j - ar.length])
-        // de/da at lag ar_j is fa_{t - ar_j}, de/db at lag ma_i is fe_{t - ma_i}: sum fa_{t - ar_j} fe_{t - ma_i}.
-        : sum(2, ma[i - ar.length] - ar[j]);
+      const v = sameLag(r, k, ar, ma, i, j) ?? (i < ar.length ? lagDot(fa!, fa!, n, ar[i] - ar[j])
+        : j >= ar.length ? lagDot(fe!, fe!, n, ma[i - ar.length] - ma[j - ar.length])
+        : crossDot(fa!, fe!, n, ma[i - ar.length] - ar[j]));
       r[i * k + j] = r[j * k + i] = v;
     }
   }
@@ -44,6 +40,18 @@ export function gaussNewtonInto(h: Float64Array, work: Work, data: Data, x: Floa
       h[a * free.length + b] = v * scale;
     }
   }
+}
+
+/** Sum over t of a_t b_{t-lag}, the lag of either sign. */
+function crossDot(a: Float64Array, b: Float64Array, n: number, lag: number): number {
+  return lag >= 0 ? lagDot(a, b, n, lag) : lagDot(b, a, n, -lag);
+}
+
+/** The sum of an earlier pair of the same kind with the same distance, where there is one: dense lags have few distances. */
+function sameLag(r: Float64Array, k: number, ar: Int32Array, ma: Int32Array, i: number, j: number): number | null {
+  const p = ar.length, at = (c: number) => c < p ? ar[c] : ma[c - p];
+  if (j === 0 || j === p || (i === p && j < p)) return null;
+  return at(i) - at(j) === at(i - 1) - at(j - 1) ? r[(i - 1) * k + j - 1] : null;
 }
 
 /** d(product coefficients, both sides) / d(free factor coefficients), rows = product lags of ar then ma. */

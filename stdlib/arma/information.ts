@@ -5,7 +5,7 @@ import { inverseBeside, type Edges } from "./edges.ts";
 import { divideInto, dot } from "./kernels.ts";
 import { productJacobian } from "./gaussNewton.ts";
 import type { Evaluate } from "./search.ts";
-import type { Data, Work } from "./likelihood.ts";
+import { columnInnovations, residualsOf, type Data, type Work } from "./work.ts";
 
 export interface Information {
   /** Covariance of (free coefficients, data columns after the gaps), flat; null when the information is singular. */
@@ -98,16 +98,15 @@ function regressionCovariance(work: Work, data: Data): Float64Array | null {
 
 /** A B A with B the sum of squared scores of the single innovations (White 1982): right also when the variance is not constant. */
 function sandwich(work: Work, data: Data, x: Float64Array, free: Int32Array, covariance: Float64Array, size: number): Float64Array {
-  const { shape, n, er, r, b, sigma2 } = work;
-  const k = free.length;
+  const { shape, n, er, b, sigma2 } = work;
+  const k = free.length, ar = shape.ar.lags, ma = shape.ma.lags;
   // a0 of the series is no longer needed, nor lambda: their places serve for the two filtered series.
-  const fa = work.a0[0], fe = work.lambda;
-  fa.set(r); fe.set(er);
-  divideInto(fa, n, shape.ma.lags, b);
-  divideInto(fe, n, shape.ma.lags, b);
-  const ar = shape.ar.lags, ma = shape.ma.lags;
+  const fa = work.a0, fe = work.lambda;
+  if (ar.length > 0) { fa.set(residualsOf(work, data)); divideInto(fa, n, ma, b); }
+  if (ma.length > 0) { fe.set(er); divideInto(fe, n, ma, b); }
   const jac = productJacobian(shape, x, free);
   const meat = new Float64Array(size * size);
+  const columns = Array.from({ length: size - k }, (_, j) => columnInnovations(work, data, data.gaps + j));
   const scores = Array.from({ length: size }, () => new Float64Array(Math.min(n, BLOCK)));
   for (let start = 0; start < n; start += BLOCK) {
     const length = Math.min(BLOCK, n - start);
@@ -115,7 +114,7 @@ function sandwich(work: Work, data: Data, x: Float64Array, free: Int32Array, cov
     for (let c = 0; c < size; c++) {
       const out = scores[c];
       out.fill(0);
-      if (c >= k) { const e = work.e[data.gaps + c - k + 1]; for (let t = 0; t < length; t++) out[t] = e[start + t]; }
+      if (c >= k) { const e = columns[c - k]; for (let t = 0; t < length; t++) out[t] = e[start + t]; }
       else {
         for (let i = 0; i < ar.length; i++) if (jac[i * k + c] !== 0) add(out, fa, ar[i], jac[i * k + c]);
         for (let i = 0; i < ma.length; i++) if (jac[(ar.length + i) * k + c] !== 0) add(out, fe, ma[i], jac[(ar.length + i) * k + c]);

@@ -2,7 +2,8 @@
 
 import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
 import { knownOf } from "./known.ts";
-import { makeWork, valueAt } from "./likelihood.ts";
+import { valueAt } from "./likelihood.ts";
+import { makeWork } from "./work.ts";
 import type { Fit } from "./model.ts";
 import { bridge, pulse } from "./numbers.ts";
 import { differencedBy } from "./prepare.ts";
@@ -31,8 +32,8 @@ export function interpolate(fit: Fit): Interpolation {
   const columns = gaps.map(t => pulse(t, to, delta));
   const mean = new Float64Array(gaps.length), se = new Float64Array(gaps.length);
   if (gaps.length > 0) {
-    const work = makeWork(shape, y.length, columns.length);
-    const value = valueAt(work, { n: y.length, y, columns, gaps: gaps.length, sigma2: fit.sigma2 }, x);
+    const data = { n: y.length, y, columns, gaps: gaps.length, sigma2: fit.sigma2 }, work = makeWork(shape, data);
+    const value = valueAt(work, data, x);
     const l = Float64Array.from(work.q), m = gaps.length, unit = new Float64Array(m);
     if (!Number.isFinite(value) || choleskyInto(l, m) >= 0) throw new RangeError("interpolate: the missing values are not determined by the observed ones (a whole season or stretch is missing)");
     for (let j = 0; j < m; j++) {

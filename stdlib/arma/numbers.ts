@@ -2,7 +2,7 @@
 
 import { leastSquares } from "../linear/leastSquares.ts";
 import { differencedBy, type Prepared } from "./prepare.ts";
-import type { Data } from "./likelihood.ts";
+import type { Data } from "./work.ts";
 import type { Series } from "../series/series.ts";
 
 export interface Numbers {
@@ -68,7 +68,7 @@ export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   const columns = combined(kept.map(i => differenced[i]), basis);
   const y = reduced(w, kept.map(i => differenced[i]), ols, unit);
   const pulses = !filtered && gaps.length <= MANY_GAPS ? gaps.map(t => pulse(t, length, delta)) : [];
-  const data: Data = { n: y.length, y, columns: [...pulses, ...columns], gaps: pulses.length, constant: kept.length > 0 && free[kept[0]] < 0 && gaps.length === 0, sigma2: Number.isNaN(prepared.heldSigma2) ? null : prepared.heldSigma2 / unit ** 2 };
+  const data: Data = { n: y.length, y, columns: [...pulses, ...columns], gaps: pulses.length, constant: kept.length > 0 && free[kept[0]] < 0 && gaps.length === 0 && !filtered, sigma2: Number.isNaN(prepared.heldSigma2) ? null : prepared.heldSigma2 / unit ** 2 };
   const keptLevels = kept.map(i => lost === 0 ? differenced[i] : free[i] < 0 ? integrated(delta, length) : columnsAll[free[i]]);
   return {
     prepared, from, to, gaps, n, data, bridged: y, unit, kept: kept.map(i => free[i]), aliased: aliased.map(i => free[i]), ols, basis,

@@ -5,7 +5,7 @@ import { denseFactor } from "./shape.ts";
 import { filterLevels } from "./filter.ts";
 import type { Information } from "./information.ts";
 import { levelModel } from "./levelModel.ts";
-import type { Work } from "./likelihood.ts";
+import type { Work } from "./work.ts";
 import type { Fit, Method, Note, Root, StandardErrors } from "./model.ts";
 import { modelName } from "./modelName.ts";
 import { parameterCount, type Numbers } from "./numbers.ts";

@@ -1,6 +1,6 @@
 // What a search for the maximum is given, and what it finds.
 
-import type { Data, Work } from "./likelihood.ts";
+import type { Data, Work } from "./work.ts";
 import type { Shape } from "./shape.ts";
 
 export interface Estimate {

@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { estimate } from "../../../stdlib/arma/estimate.ts";
-import type { Data } from "../../../stdlib/arma/likelihood.ts";
+import type { Data } from "../../../stdlib/arma/work.ts";
 import { makeShape } from "../../../stdlib/arma/shape.ts";
 import { differenced, readCases, readValues, regressors, transformed } from "./cases.ts";
 

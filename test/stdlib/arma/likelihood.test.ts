@@ -1,5 +1,7 @@
 import { describe, expect, it } from "vitest";
-import { gradientInto, makeWork, valueAt, type Data } from "../../../stdlib/arma/likelihood.ts";
+import { gradientInto } from "../../../stdlib/arma/gradient.ts";
+import { valueAt } from "../../../stdlib/arma/likelihood.ts";
+import { makeWork, type Data } from "../../../stdlib/arma/work.ts";
 import { makeShape, type Shape } from "../../../stdlib/arma/shape.ts";
 import { agree, type Case, coefficients, differenced, readCases, readValues, regressors, transformed } from "./cases.ts";
 
@@ -33,7 +35,7 @@ describe("exact likelihood", () => {
   for (const c of cases) {
     it(`${c.id} agrees with the dense Gaussian density`, () => {
       const data = caseData(c);
-      const work = makeWork(caseShape(c), data.n, data.columns.length);
+      const work = makeWork(caseShape(c), data);
       const x = coefficients(c.inputs.params!);
       const value = valueAt(work, data, x);
       agree(c, "logLikConcentrated", -value);
@@ -48,7 +50,7 @@ describe("gradient", () => {
   for (const c of cases) {
     it(`${c.id}: reverse mode agrees with differences`, () => {
       const data = caseData(c);
-      const work = makeWork(caseShape(c), data.n, data.columns.length);
+      const work = makeWork(caseShape(c), data);
       const x = coefficients(c.inputs.params!);
       const gradient = new Float64Array(x.length);
       valueAt(work, data, x);

@@ -1,0 +1,98 @@
+// What the likelihood is asked of, and the arrays it works in.
+
+import { makePresample, type Presample } from "./presample.ts";
+import { makeResponse, type Response } from "./response.ts";
+import type { Shape } from "./shape.ts";
+
+/** What is fitted: w - X beta, the first `gaps` columns being pulses of missing values. */
+export interface Data {
+  readonly n: number;
+  readonly y: Float64Array;
+  readonly columns: readonly Float64Array[];
+  readonly gaps: number;
+  /** Whether the first column is the same number throughout (there are then no gaps): its innovations are constant after a
+   *  while, and cost next to nothing. */
+  readonly constant?: boolean;
+  /** Innovation variance, or null when it is estimated. */
+  readonly sigma2: number | null;
+}
+
+/** Work arrays of one model shape and length; filled by `valueAt`, read by `gradientInto` and by who wants residuals. */
+export interface Work {
+  readonly shape: Shape; readonly n: number;
+  /** min(memory, n). */
+  readonly g: number;
+  readonly a: Float64Array; readonly b: Float64Array;
+  readonly aBar: Float64Array; readonly bBar: Float64Array;
+  readonly pre: Presample; readonly response: Response;
+  /** Of gain.ts: L, the factor C of I + L'GL, W = C^-1 L', K, scratch; g x g each. */
+  readonly l: Float64Array; readonly d: Float64Array; readonly wk: Float64Array; readonly k: Float64Array; readonly s1: Float64Array;
+  readonly omegaBar: Float64Array;
+  readonly u: Float64Array; readonly v: Float64Array;
+  /** a0 of the series, and its innovations less those of the columns. */
+  readonly a0: Float64Array; readonly er: Float64Array;
+  /** theta(F)^-1 er, where a gradient has been asked for; `er` itself where there is no moving average. */
+  readonly lambda: Float64Array;
+  /** a0 and innovations of the columns; of a constant one, the first `flat` values, and `level` is what follows. */
+  readonly columnA0: Float64Array[]; readonly columnE: Float64Array[];
+  flat: number; level: number;
+  /** The residual series y - X beta, where someone asked for it. */
+  r: Float64Array | null; rKnown: boolean;
+  delta: Float64Array;
+  readonly q: Float64Array; readonly qy: Float64Array; readonly chol: Float64Array;
+  readonly beta: Float64Array;
+  /** Dense lags 1..2 on both sides: the fused kernels serve. */
+  readonly small: boolean;
+  readonly sums: Float64Array;
+  /** Sum of squares, log determinant (gaps included), effective n, and the negative log-likelihood at the last `valueAt`. */
+  sum: number; logDet: number; nEffective: number; f: number; sigma2: number;
+}
+
+/** Scratch that grows starts at this length. */
+const FIRST = 4096;
+
+export function makeWork(shape: Shape, data: Data): Work {
+  const n = data.n, m = data.columns.length, g = Math.min(shape.memory, n), p = shape.ar.lags.length, q = shape.ma.lags.length;
+  // Long arrays are views of one block: a block of memory costs far more to get and to give back than a view.
+  const own = data.columns.map((_, j) => j === 0 && data.constant ? Math.min(n, FIRST) : n);
+  const block = new Float64Array((q > 0 ? 3 : 2) * n + 2 * own.reduce((a, b) => a + b, 0) + Math.min(n, FIRST) + 5 * g * g + 2 * g);
+  let at = 0;
+  const take = (length: number) => { const view = block.subarray(at, at + length); at += length; return view; };
+  const er = take(n), dense = (lags: Int32Array) => lags.length <= 2 && lags.every((l, i) => l === i + 1);
+  return {
+    shape, n, g,
+    a: new Float64Array(p), b: new Float64Array(q), aBar: new Float64Array(p), bBar: new Float64Array(q),
+    pre: makePresample(shape.ar.degree, shape.ma.degree), response: makeResponse(n, g),
+    l: take(g * g), d: take(g * g), wk: take(g * g), k: take(g * g), s1: take(g * g), omegaBar: new Float64Array(shape.memory ** 2),
+    u: take(g), v: take(g), a0: take(n), er, lambda: q > 0 ? take(n) : er,
+    columnA0: own.map(take), columnE: own.map(take), flat: 0, level: 0, r: null, rKnown: false, delta: take(Math.min(n, FIRST)),
+    q: new Float64Array(m * m), qy: new Float64Array(m), chol: new Float64Array(m * m), beta: new Float64Array(m),
+    small: q > 0 && dense(shape.ar.lags) && dense(shape.ma.lags), sums: new Float64Array(4),
+    sum: 0, logDet: 0, nEffective: n, f: Infinity, sigma2: NaN,
+  };
+}
+
+/** Scratch of at least the length asked for. */
+export function scratch(work: Work, length: number): Float64Array {
+  if (work.delta.length < length) work.delta = new Float64Array(Math.min(work.n, 2 * length));
+  return work.delta;
+}
+
+/** The residual series y - X beta at the last value. */
+export function residualsOf(work: Work, data: Data): Float64Array {
+  const r = work.r ??= new Float64Array(work.n);
+  if (work.rKnown) return r;
+  r.set(data.y);
+  data.columns.forEach((x, j) => { const c = work.beta[j]; for (let t = 0; t < r.length; t++) r[t] -= c * x[t]; });
+  work.rKnown = true;
+  return r;
+}
+
+/** Innovations of a column over the whole length. */
+export function columnInnovations(work: Work, data: Data, j: number): Float64Array {
+  const e = work.columnE[j];
+  if (j > 0 || !data.constant || work.flat === work.n) return e;
+  const whole = new Float64Array(work.n).fill(work.level);
+  whole.set(e.subarray(0, work.flat));
+  return whole;
+}
