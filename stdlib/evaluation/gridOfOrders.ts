@@ -1,7 +1,7 @@
 // A grid of orders, ranked by an information criterion on the same data.
 
-import { fit } from "../arma/fit.ts";
 import type { Fit, FitOptions, Lags } from "../arma/model.ts";
+import { orderFitter } from "./orderFitter.ts";
 import { orderText, ranked, type Criterion, type Grid, type GridFailure, type Order } from "./rankedGrid.ts";
 import type { Hooks } from "./rolling.ts";
 
@@ -19,23 +19,17 @@ export interface GridOptions extends Omit<FitOptions, "ar" | "ma" | "season"> {
  *  Orders that cannot be estimated are listed with the reason; so is every order when all fail.
  *  @throws RangeError where the grid is empty or too large */
 export async function gridOfOrders(options: GridOptions, hooks: Hooks = {}): Promise<Grid> {
-  const { ar, ma, season, rank = "aicc", label: _label, ...rest } = options;
+  const { ar, ma, season, rank = "aicc", ...rest } = options, fitted = orderFitter(rest, season, {}, hooks.recall);
   const orders = ordersOf(ar ?? 0, ma ?? 0, season), fits: { order: Order; fit: Fit }[] = [], failures: GridFailure[] = [];
   if (orders.length > 2000) throw new RangeError(`compare: the grid has ${orders.length} orders; more than 2,000 are not tried. Narrow it`);
   let tried = 0;
   for (const order of orders) {
     if (hooks.stopped?.()) break;
     const name = orderText(order);
-    try {
-      const found = fit({ ...rest, ar: order.ar, ma: order.ma, ...(season ? { season: { length: season.length, ar: order.seasonalAr, ma: order.seasonalMa } } : {}) });
-      const value = found[rank];
-      if (Number.isFinite(value)) fits.push({ order, fit: found });
-      else failures.push({ label: name, reason: `${rank.toUpperCase()} is not available: ${found.k} parameters on ${found.n} observations` });
-    } catch (error) {
-      // An order that the data cannot carry is an outcome; a fault of ours is not.
-      if (!(error instanceof RangeError)) throw error;
-      failures.push({ label: name, reason: error.message });
-    }
+    const found = fitted(order);
+    if ("reason" in found) failures.push({ label: name, reason: found.reason });
+    else if (Number.isFinite(found.fit[rank])) fits.push({ order, fit: found.fit });
+    else failures.push({ label: name, reason: `${rank.toUpperCase()} is not available: ${found.fit.k} parameters on ${found.fit.n} observations` });
     tried++;
     hooks.progress?.(tried, orders.length, name);
     if (hooks.breathe) await hooks.breathe();

@@ -1,7 +1,7 @@
 // A search through seasonal orders that tries a few dozen of the hundreds a grid would.
 
-import { fit } from "../arma/fit.ts";
 import type { Fit, FitOptions } from "../arma/model.ts";
+import { orderFitter } from "./orderFitter.ts";
 import { orderText, ranked, type Criterion, type Grid, type GridFailure } from "./rankedGrid.ts";
 import type { Hooks } from "./rolling.ts";
 
@@ -37,18 +37,13 @@ type Orders = readonly [number, number, number, number];
  *  down, or p and q together, or P and Q together. Models on the edge of the region are set aside, with the reason. Finds a good order, not surely the best of the grid; the path is kept.
  *  Source: Hyndman & Khandakar (2008), section 3.2, for given differences. */
 export async function stepwiseOrders(options: StepwiseOptions, hooks: Hooks = {}): Promise<Stepwise> {
-  const { ar = 5, ma = 5, season, rank = "aicc", label: _label, ...rest } = options, most: Orders = [ar, ma, season ? (season.ar ?? 2) : 0, season ? (season.ma ?? 2) : 0];
+  const { ar = 5, ma = 5, season, rank = "aicc", ...rest } = options, fitted = orderFitter(rest, season, { standardErrors: false }, hooks.recall), most: Orders = [ar, ma, season ? (season.ar ?? 2) : 0, season ? (season.ma ?? 2) : 0];
   for (const bound of most) if (!Number.isInteger(bound) || bound < 0) throw new RangeError(`stepwiseOrders: a largest order is ${bound}, expected a whole number from 0 on`);
   const tried = new Map<string, { readonly fit: Fit | null; readonly orders: Orders }>(), failures: GridFailure[] = [], path: PathStep[] = [];
   const attempt = async (orders: Orders): Promise<number> => {
     const asked = { ar: orders[0], ma: orders[1], seasonalAr: orders[2], seasonalMa: orders[3] };
-    let found: Fit | null = null;
-    try {
-      found = fit({ ...rest, ar: orders[0], ma: orders[1], ...(season ? { season: { length: season.length, ar: orders[2], ma: orders[3] } } : {}) }, { standardErrors: false });
-    } catch (error) {
-      if (!(error instanceof RangeError)) throw error;
-      failures.push({ label: orderText(asked), reason: error.message });
-    }
+    const made = fitted(asked), found = "fit" in made ? made.fit : null;
+    if ("reason" in made) failures.push({ label: orderText(asked), reason: made.reason });
     tried.set(orders.join(), { fit: found, orders });
     hooks.progress?.(tried.size, 0, orderText(asked));
     if (hooks.breathe) await hooks.breathe();

@@ -1,7 +1,9 @@
 import { describe, expect, it } from "vitest";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import { contentKey, type Recall } from "../../../stdlib/evaluation/contentKey.ts";
+import { gridOfOrders } from "../../../stdlib/evaluation/gridOfOrders.ts";
 import { rollingOrigins, type CompareOptions } from "../../../stdlib/evaluation/rollingOrigins.ts";
+import { stepwiseOrders } from "../../../stdlib/evaluation/stepwiseOrders.ts";
 import { rule } from "../../../stdlib/forecast/rules.ts";
 import { makeSeries, type Series } from "../../../stdlib/series/series.ts";
 import { applySteps } from "../../../stdlib/series/steps.ts";
@@ -69,6 +71,27 @@ describe("what was computed from the same content is not computed again", () => 
     const few = await rollingOrigins(models(airline()), { ...usual, origins: 3 }), many = await rollingOrigins(models(airline()), { ...usual, origins: 20 });
     const last = (found: typeof few) => found.forecasts.filter((f) => f.label === "model").at(-1)!;
     expect(last(few).median).toEqual(last(many).median);
+  });
+});
+
+describe("a grid and a search fit an order once", () => {
+  const series = applySteps(airline(), [{ step: "log" }, { step: "difference", lag: 1 }, { step: "difference", lag: 12 }]);
+  const fits = () => { const kept = new Map<string, unknown>(); const recall: Recall = <T>(key: string, make: () => T): T => { if (!kept.has(key)) kept.set(key, make()); return kept.get(key) as T; }; return { kept, recall }; };
+  it("another criterion fits nothing, and a wider grid only the new orders", async () => {
+    const { kept, recall } = fits();
+    await gridOfOrders({ series, ar: 1, ma: 1 }, { recall });
+    expect(kept.size).toBe(4);
+    const bic = await gridOfOrders({ series, ar: 1, ma: 1, rank: "bic" }, { recall });
+    expect(kept.size).toBe(4);
+    expect(bic).toEqual(await gridOfOrders({ series, ar: 1, ma: 1, rank: "bic" }));
+    await gridOfOrders({ series, ar: 1, ma: 2 }, { recall });
+    expect(kept.size).toBe(6);
+  });
+  it("a search takes its way again without fitting", async () => {
+    const { kept, recall } = fits(), options = { series, ar: 2, ma: 2, season: { length: 12, ar: 1, ma: 1 } };
+    const once = await stepwiseOrders(options, { recall }), made = kept.size, again = await stepwiseOrders(options, { recall });
+    expect(kept.size).toBe(made);
+    expect(again).toEqual(once);
   });
 });
 
