@@ -49,7 +49,7 @@ export function estimate(search: Search): Estimate {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
       const rival = best as Minimum;
-      if (first.value < rival.value + 3 && apart(first, rival)) keep(run(full(first, free, held), TOLERANCE, shape.count > 6 ? LATER : undefined));
+      if (first.value < rival.value + (search.evaluate ? 20 : 3) && apart(first, rival)) keep(run(full(first, free, held), TOLERANCE, shape.count > 6 ? LATER : undefined));
     }
   }
   if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };

@@ -1,7 +1,7 @@
 // Further places to start the search from, where the likelihood may have several maxima.
 
 import type { Search } from "./search.ts";
-import { makeShape, type Shape } from "./shape.ts";
+import { makeShape, type Factor, type Shape } from "./shape.ts";
 
 /** The maximum of a smaller model, and its innovations. */
 export type Maximise = (shape: Shape) => { readonly x: Float64Array; readonly innovations: Float64Array } | null;
@@ -24,7 +24,7 @@ export function otherStarts(search: Search, found: Float64Array, where: { readon
   } else if (ma.lags.length > 1 && free && full(ma.lags)) {
     const small = maximise(reduced(shape, 0, 1));
     if (small) out.push(padded(search, small.x, 0, 1, [], []));
-  } else out.push(new Float64Array(shape.count));
+  } else out.push(...fixedPlaces(shape, found));
   if (where.seasonal && sar.lags.length > 0 && sma.lags.length > 0) {
     for (const [a, b] of [[0.8, -0.5], [0, 0]]) {
       const x = Float64Array.from(found);
@@ -32,6 +32,24 @@ export function otherStarts(search: Search, found: Float64Array, where: { readon
       x[sma.from] = b;
       out.push(x);
     }
+  }
+  return out;
+}
+
+/** Where nothing can be asked of a smaller model (lags missing or held): nothing at all, either side alone, and a pair of factors
+ *  at either end of the line, the rest as found. */
+function fixedPlaces(shape: Shape, found: Float64Array): Float64Array[] {
+  const [ar, , ma] = shape.factors;
+  const out = [new Float64Array(shape.count)];
+  const without = (f: Factor) => { const x = Float64Array.from(found); for (let i = 0; i < f.lags.length; i++) x[f.from + i] = 0; return x; };
+  if (ar.lags.length === 0 || ma.lags.length === 0) return out;
+  out.push(without(ar), without(ma));
+  for (const c of [0.9, -0.9]) {
+    const x = without(ar);
+    for (let i = 0; i < ma.lags.length; i++) x[ma.from + i] = 0;
+    x[ar.from] = c ** ar.lags[0];
+    x[ma.from] = -0.7 * x[ar.from];
+    out.push(x);
   }
   return out;
 }
