@@ -8,9 +8,10 @@ type Given = Readonly<Record<string, unknown>>;
 /** Options ready for `run`: unknown ones refused, types and bounds checked, defaults filled in; null counts as left out.
  *  @param kind   name, body and option table; a "names" body may hold names that the table does not
  *  @param given  option values as evaluated
+ *  @param sources  their expressions, as far as there are any
  *  @throws OptionError naming the option, what was found, what was expected
  *  Cost O(options), and O(length) for lists. */
-export function checkOptions(kind: { readonly name: string; readonly body: Kind["body"]; readonly options: OptionTable }, given: Given): Given {
+export function checkOptions(kind: { readonly name: string; readonly body: Kind["body"]; readonly options: OptionTable }, given: Given, sources: Readonly<Record<string, string>> = {}): Given {
   const checked: Record<string, unknown> = {};
   for (const [name, value] of Object.entries(given)) {
     const option = Object.hasOwn(kind.options, name) ? kind.options[name] : undefined;
@@ -19,7 +20,7 @@ export function checkOptions(kind: { readonly name: string; readonly body: Kind[
       throw new OptionError(name, unknownOption(kind.name, name, Object.keys(kind.options)));
     }
     if (value === null || value === undefined) continue;
-    checked[name] = checkOption(name, option, value);
+    checked[name] = checkOption(name, option, value, Object.hasOwn(sources, name) ? sources[name] : undefined);
   }
   for (const [name, option] of Object.entries(kind.options)) {
     if (Object.hasOwn(checked, name)) continue;
@@ -30,13 +31,33 @@ export function checkOptions(kind: { readonly name: string; readonly body: Kind[
 }
 
 /** One option's value against its type and bounds. @throws OptionError */
-export function checkOption(name: string, option: Option, value: unknown): unknown {
+export function checkOption(name: string, option: Option, value: unknown, source?: string): unknown {
   if (option.taken === "name" || option.taken === "expression") return value;
   const fault = faultOf(option.type, value);
-  if (fault !== null) throw new OptionError(name, `\`${name}\` is ${describe(value)}, expected ${fault}`);
+  if (fault !== null) throw new OptionError(name, refusal(name, option, value, fault, source));
   const beyond = boundsFault(option, value);
   if (beyond !== null) throw new OptionError(name, `\`${name}\` ${beyond}`);
   return value;
+}
+
+/** What was found and what was expected: of the one item that is at fault where a list holds it; with what to write, where that can be told. */
+function refusal(name: string, { type, slip }: Option, value: unknown, fault: string, source: string | undefined): string {
+  const instead = slip?.(value) ?? null;
+  if (instead !== null) return `\`${name}\` is ${describe(value)}: write \`${instead}\``;
+  if (isListType(type)) {
+    if (isArrayLike(value) && type !== "list") {
+      const item = Array.from(value).findIndex((each) => faultOf(type.listOf, each) !== null);
+      return `item ${item + 1} of \`${name}\` is ${describe(value[item])}, expected ${faultOf(type.listOf, value[item])}`;
+    }
+    // One item where a list of such is wanted only lacks its brackets.
+    const written = source ?? (typeof value === "number" || typeof value === "string" ? JSON.stringify(value) : null);
+    if (written !== null && !isPlainObject(value) && (type === "list" || faultOf(type.listOf, value) === null)) return `\`${name}\` is ${describe(value)}, expected a list in brackets: write \`[${written}]\``;
+  }
+  return `\`${name}\` is ${describe(value)}, expected ${fault}`;
+}
+
+function isListType(type: OptionType): type is "list" | { readonly listOf: OptionType } {
+  return type === "list" || (typeof type === "object" && "listOf" in type);
 }
 
 /** A value in a few words, for messages: "the number 2", "a series of 144 values", "nothing". */
@@ -46,7 +67,7 @@ export function describe(value: unknown): string {
   if (typeof value === "string") return `the text ${JSON.stringify(value.length > 40 ? `${value.slice(0, 40)}…` : value)}`;
   if (typeof value === "boolean") return String(value);
   if (typeof value === "function") return "a function";
-  if (isArrayLike(value)) return value.length === 0 ? "an empty list" : `a list of ${value.length} items`;
+  if (isArrayLike(value)) return value.length === 0 ? "an empty list" : `a list of ${value.length} item${value.length === 1 ? "" : "s"}`;
   if (isSeries(value)) return `a series of ${value.n} values`;
   if (isFit(value)) return "a fit";
   if (isRule(value)) return "a rule";

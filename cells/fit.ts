@@ -23,7 +23,7 @@ export const fitOptions: OptionTable = {
   series: { type: "series", required: true, sentence: "The series to model; its transform steps are remembered, so that forecasts come back in the units of the data.", example: "steady" },
   ar: { type: "lags", default: 0, min: 0, sentence: "Autoregressive lags: a number for all lags up to it, or a list for just those lags.", example: "1" },
   ma: { type: "lags", default: 0, min: 0, sentence: "Moving-average lags: a number for all lags up to it, or a list for just those lags.", example: "1" },
-  season: { type: "object", sentence: "Seasonal lags as {length, ar, ma}, counted in season lengths and multiplied with the others; length is that of the series' spacing unless given.", example: "{ma: 1}" },
+  season: { type: "object", sentence: "Seasonal lags as {length, ar, ma}, counted in season lengths and multiplied with the others; length is that of the series' spacing unless given.", example: "{ma: 1}", slip: (value) => (Number.isInteger(value) ? `{length: ${String(value)}, ma: 1}` : null) },
   mean: { type: "boolean", sentence: "Whether the model has a mean; without this option, yes unless the steps include a difference, where a mean is a drift." },
   regressors: { type: "object", sentence: "Regressors by name, in levels: series, or interventions such as pulse(\"2020-03\"); the series' difference steps are applied to them.", example: "{storm: pulse(\"2020-03\")}" },
   hold: { type: "object", sentence: "Coefficients held at values, as {phi, theta, seasonalPhi, seasonalTheta, mean, beta, sigma2}; free leaves one to be estimated.", example: "{phi: [free, 0.2]}" },

@@ -29,6 +29,8 @@ export interface Option {
   readonly taken?: "value" | "name" | "expression";
   /** Example text that completion inserts after the colon. */
   readonly example?: string;
+  /** What to write for a value that a common slip gives; null for any other. */
+  readonly slip?: (value: unknown) => string | null;
 }
 
 export type OptionTable = Readonly<Record<string, Option>>;
@@ -114,6 +116,7 @@ export interface Language {
   /** Names with a fixed value besides `NaN`, `Infinity` and `free` (which is the text "free"). */
   readonly constants: Readonly<Record<string, unknown>>;
   /** `checkOptions` of cells/check.ts. `given` holds what the author wrote, null = not given.
+   *  `sources` are the options' expressions, where there are any, for messages that say what to write.
    *  @throws OptionError */
-  check(kind: { readonly name: string; readonly body: Kind["body"]; readonly options: OptionTable }, given: Readonly<Record<string, unknown>>): Readonly<Record<string, unknown>>;
+  check(kind: { readonly name: string; readonly body: Kind["body"]; readonly options: OptionTable }, given: Readonly<Record<string, unknown>>, sources?: Readonly<Record<string, string>>): Readonly<Record<string, unknown>>;
 }

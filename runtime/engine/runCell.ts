@@ -54,7 +54,7 @@ async function optionsOf(cell: Definition, scope: EvaluationScope): Promise<Read
     if (taken === "value") given[option.name] = (await inOption(option.name, () => evaluate(option.source, scope))) ?? null;
     else given[option.name] = taken === "name" ? option.source.replace(/^["'`]|["'`]$/g, "") : option.source;
   }
-  return scope.language.check(cell.kind, given);
+  return scope.language.check(cell.kind, given, Object.fromEntries(cell.text.options.map((option) => [option.name, option.source])));
 }
 
 /** Claims are decided one by one: what one of them reads may have failed. */

@@ -5,10 +5,11 @@ import { parseExpression, placeOfName } from "./expression.ts";
 import { suggestion } from "./nearest.ts";
 import { splitOptions } from "./options.ts";
 import { parseScript } from "./script.ts";
+import { perhapsText, unquotedText } from "./unquoted.ts";
 
 export interface BodyProblem { readonly code: string; readonly message: string; readonly from: number; readonly to: number }
-/** A name that is read, and where it first is. */
-export interface NameRead { readonly name: string; readonly from: number; readonly to: number }
+/** A name that is read, and where it first is; `quoted` is the text that it may have been meant as, should there be no such name. */
+export interface NameRead { readonly name: string; readonly from: number; readonly to: number; readonly quoted?: string }
 export interface BodyOptionText {
   readonly from: number; readonly to: number;
   readonly name: string; readonly nameFrom: number; readonly nameTo: number;
@@ -47,20 +48,27 @@ export function readBody(body: string, shape: Shape, indent: number): CellBody {
 
 function readOption(at: number, source: string, shape: Shape, name: string, known: boolean, namePlace: { from: number; to: number }, problems: BodyProblem[]): NameRead[] {
   const parsed = parseExpression(source);
-  if (parsed.tree === null) {
-    const fault = parsed.faults[0];
-    if (fault.code === "empty") problems.push({ code: "empty-option", message: `\`${name}\` has no value: write one after the colon, or remove the line`, ...namePlace });
+  const type = Object.hasOwn(shape.options, name) ? shape.options[name].type : undefined;
+  const fault = parsed.faults.at(0);
+  const text = fault === undefined || fault.code === "syntax" ? unquotedText(source, type, parsed.tree) : null;
+  if (text !== null) {
+    problems.push({ code: "unquoted-text", message: `\`${name}\` takes a text: put it in quotes, ${text}`, from: at, to: at + source.length });
+    return [];
+  }
+  if (parsed.tree === null || fault !== undefined) {
+    if (fault?.code === "empty") problems.push({ code: "empty-option", message: `\`${name}\` has no value: write one after the colon, or remove the line`, ...namePlace });
     // An unclosed bracket has been told already, where it opens.
-    else if (!known || fault.code !== "syntax") for (const each of parsed.faults) problems.push({ code: each.code, message: each.message, from: at + each.from, to: at + each.to });
+    else if (!known || fault?.code !== "syntax") for (const each of parsed.faults) problems.push({ code: each.code, message: each.message, from: at + each.from, to: at + each.to });
     return [];
   }
   const tree = parsed.tree;
   if (shape.options[name]?.taken === "name" && Object.hasOwn(shape.options, name) && tree.type !== "Identifier" && !(tree.type === "Literal" && typeof tree.value === "string")) {
     problems.push({ code: "name-expected", message: `\`${name}\` takes the name of a cell`, from: at, to: at + source.length });
   }
+  const quoted = perhapsText(source, type, tree);
   return parsed.reads.map((each) => {
     const place = placeOfName(tree, each) ?? { from: 0, to: source.length };
-    return { name: each, from: at + place.from, to: at + place.to };
+    return { name: each, from: at + place.from, to: at + place.to, ...(quoted === null ? {} : { quoted }) };
   });
 }
 

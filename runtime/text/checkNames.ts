@@ -67,7 +67,7 @@ function findUnknown(cells: readonly (CellText & CellReads)[], numbers: readonly
   for (const cell of cells) {
     if (cell.code) continue;
     for (const read of cell.nameReads) {
-      if (!known.has(read.name)) faults.push({ code: "unknown-name", severity: "error", cell: cell.index, from: read.from, to: read.to, message: unknown(read.name, known) });
+      if (!known.has(read.name)) faults.push({ code: "unknown-name", severity: "error", cell: cell.index, from: read.from, to: read.to, message: unknown(read.name, known, read.quoted) });
     }
   }
   for (const number of numbers) {
@@ -77,9 +77,9 @@ function findUnknown(cells: readonly (CellText & CellReads)[], numbers: readonly
   }
 }
 
-function unknown(name: string, known: ReadonlySet<string>): string {
+function unknown(name: string, known: ReadonlySet<string>, quoted?: string): string {
   const near = suggestion(name, known);
-  return `There is no \`${name}\`${near === "" ? ": no cell and no library function has this name" : near}`;
+  return `There is no \`${name}\`${near === "" ? ": no cell and no library function has this name" : near}${quoted === undefined ? "" : `${near === "" ? "." : ""} If a text is meant, put it in quotes: ${quoted}`}`;
 }
 
 function label(cell: CellText): string {

@@ -23,6 +23,8 @@ export function parseExpression(source: string): ParsedExpression {
   const parsed = expressionTree(source);
   if (date !== null) return failed(source, date);
   if ("fault" in parsed) {
+    const comma = strayComma(source);
+    if (comma !== null) return failed(source, { code: "syntax", message: "A comma is left over after the value: take it away, for an option ends with its line", from: comma, to: comma + 1 });
     const at = Math.min(parsed.fault.at, source.length);
     return failed(source, { code: "syntax", message: syntaxWords(parsed.fault.message, source, at), from: at, to: Math.min(source.length, at + 1) });
   }
@@ -138,6 +140,12 @@ export function placeOfName(tree: Expression, name: string): { readonly from: nu
   };
   look(tree);
   return found;
+}
+
+/** Place of a comma that only ends the source, as it would end an item of a list; null where there is none, or more is wrong. */
+function strayComma(source: string): number | null {
+  const at = source.trimEnd().length - 1;
+  return source[at] === "," && "tree" in expressionTree(source.slice(0, at)) ? at : null;
 }
 
 const BINARY = new Set(["+", "-", "*", "/", "%", "**", "===", "!==", "==", "!=", "<", "<=", ">", ">="]);

@@ -2,9 +2,19 @@
 
 import { distance } from "fastest-levenshtein";
 
+/** Words of the trade for what the language calls otherwise. */
+const OTHERWISE: ReadonlyMap<string, string> = new Map([["ln", "log"], ["avg", "mean"], ["average", "mean"], ["std", "sd"], ["stdev", "sd"], ["var", "variance"]]);
+
 /** The closest of `names` to what was written, where it is close enough to be worth suggesting; else null.
- *  Close enough: one letter of a name of three or four, two of five to eight, a third of a longer one; two letters swapped count as one, letter case does not count. */
+ *  Close enough: one letter of a name of three or four, two of five to eight, a third of a longer one; two letters swapped count as one, letter case does not count.
+ *  Where none is, the one name that goes on from what was written (`diff`: `difference`), or another word for the same. */
 export function nearest(written: string, names: Iterable<string>): string | null {
+  const all = [...names];
+  const otherwise = OTHERWISE.get(written);
+  return closest(written, all) ?? longer(written, all) ?? (otherwise !== undefined && all.includes(otherwise) ? otherwise : null);
+}
+
+function closest(written: string, names: readonly string[]): string | null {
   const limit = written.length < 3 ? 0 : written.length < 5 ? 1 : Math.max(2, Math.floor(written.length / 3));
   const low = written.toLowerCase();
   let best: string | null = null;
@@ -17,6 +27,11 @@ export function nearest(written: string, names: Iterable<string>): string | null
     if (far < bestDistance) { best = name; bestDistance = far; }
   }
   return best;
+}
+
+function longer(written: string, names: readonly string[]): string | null {
+  const found = written.length < 3 ? [] : names.filter((name) => name.toLowerCase().startsWith(written.toLowerCase()));
+  return found.length === 1 ? found[0] : null;
 }
 
 function swapped(a: string, b: string): boolean {

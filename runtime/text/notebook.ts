@@ -19,7 +19,8 @@ export interface Problem extends Place {
 export interface Shape {
   readonly name: string;
   readonly body: "options" | "names" | "claims" | "code";
-  readonly options: Readonly<Record<string, { readonly required?: true; readonly taken?: "value" | "name" | "expression" }>>;
+  /** Of an option's `type` only this is read: whether a text may stand there. */
+  readonly options: Readonly<Record<string, { readonly required?: true; readonly taken?: "value" | "name" | "expression"; readonly type?: unknown }>>;
   readonly control?: { readonly keeps: readonly string[] };
 }
 

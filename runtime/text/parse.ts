@@ -148,7 +148,7 @@ function shiftOption(option: CellBody["options"][number], by: number, reading: R
 }
 
 function shift(reads: readonly NameRead[], by: number): NameRead[] {
-  return reads.map((each) => ({ name: each.name, from: by + each.from, to: by + each.to }));
+  return reads.map((each) => ({ ...each, from: by + each.from, to: by + each.to }));
 }
 
 function unterminated(fence: Fence, reading: Reading, cell: number | null): void {

@@ -79,6 +79,15 @@ describe("problems say what was found, where, and what to try", () => {
     ["a cell that reads itself", cell("values: a", "x: 1 + a.x"), /^2:8 A circle: `a` reads itself/],
     ["an unknown name", cell("values: a", "x: 1 + maen(b)", "b: 1"), /^2:8 There is no `maen`: did you mean `mean`\?/],
     ["an unknown name that is like no other", cell("values: a", "x: quux"), /^2:4 There is no `quux`: no cell and no library function has this name/],
+    ["the beginning of a name", cell("transform: x", "series: mean", "steps: [diff(1)]"), /^3:9 There is no `diff`: did you mean `difference`\?$/],
+    ["another word for a name", cell("transform: x", "series: mean", "steps: [ln]"), /^3:9 There is no `ln`: did you mean `log`\?$/],
+    ["a path without quotes", cell("load: x", "file: data/sales.csv"), /^2:7 `file` takes a text: put it in quotes, "data\/sales\.csv"$/],
+    ["a path without quotes that is no expression", cell("load: x", "file: data/2019 sales.csv"), /^2:7 `file` takes a text: put it in quotes, "data\/2019 sales\.csv"$/],
+    ["a path without quotes in a cell of its folder's name", cell("load: data", "file: data/sales.csv"), /^2:7 `file` takes a text/],
+    ["a file's name without quotes", cell("load: x", "file: sales.csv"), /^2:7 There is no `sales`: .* If a text is meant, put it in quotes: "sales\.csv"$/],
+    ["a word without quotes", cell("load: x", 'file: "a"', "order: day-month"), /^3:8 `order` takes a text: put it in quotes, "day-month"$/],
+    ["a choice without quotes", cell("choice: c", 'among: ["aicc", "bic"]', "at: bic"), /^3:5 There is no `bic`: .* If a text is meant, put it in quotes: "bic"$/],
+    ["a comma at the end of an option", cell("slider: x", "from: 1,", "to: 2"), /^2:8 A comma is left over after the value: take it away/],
     ["a reserved word as a name", cell("values: class", "a: 1"), /^1:12 `class` is a reserved word/],
     ["a kind as a name", cell("values: slider", "a: 1"), /^1:12 `slider` is a kind of cell/],
     ["a fixed value as a name", cell("values: NaN", "a: 1"), /`NaN` has a fixed meaning/],
@@ -101,6 +110,10 @@ describe("problems say what was found, where, and what to try", () => {
     const notebook = read(cell("values: mean", "a: 1") + cell("values: v", "b: mean.a"));
     expect(notebook.problems).toMatchObject([{ severity: "note", code: "library-name", cell: 0 }]);
     expect(notebook.cells[0].broken).toBe(false);
+  });
+
+  test("a text that is computed needs no quotes", () => {
+    expect(told(cell("choice: which", 'among: ["a.csv", "b.csv"]') + cell("values: v", 'folder: "data/"') + cell("load: x", "file: which") + cell("load: y", "file: v.folder + which") + cell("load: z", "file: `${v.folder}${which}`"))).toEqual([]);
   });
 
   test("one slip costs one option: those after it are still read", () => {
