@@ -8,7 +8,7 @@ import { isStable } from "./region.ts";
 import { denseFactor, type Factor, type Shape } from "./shape.ts";
 import { gaussNewtonInto } from "./gaussNewton.ts";
 import type { Estimate, Evaluate, Search } from "./search.ts";
-import { otherStarts } from "./otherStarts.ts";
+import { otherStarts, type Maximise } from "./otherStarts.ts";
 import { hannanRissanen } from "./start.ts";
 import { quasiNewton, type Minimum, type Problem } from "../optimize/quasiNewton.ts";
 
@@ -22,12 +22,12 @@ export function estimate(search: Search): Estimate {
     gradientInto: (x: Float64Array, g: Float64Array) => gradientInto(work, data, x, g),
   };
   const problem = makeProblem(search, work, free, evaluate);
-  const maximise = (small: Shape): { x: Float64Array; innovations: Float64Array } | null => {
+  const maximise: Maximise = (small, rounds = 2 * SCOUT) => {
     const own = makeWork(small, data), none = new Float64Array(small.count).fill(NaN);
     const plain: Evaluate = { value: x => valueAt(own, data, x), gradientInto: (x, g) => gradientInto(own, data, x, g) };
-    if (small.count === 0) return Number.isFinite(plain.value(none)) ? { x: none, innovations: own.er } : null;
-    const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, own, Int32Array.from(none.keys()), plain), hannanRissanen(small, search.bridged), 1e-3, 2 * SCOUT);
-    return Number.isFinite(plain.value(found.x)) ? { x: found.x, innovations: own.er } : null;
+    if (small.count === 0) return Number.isFinite(plain.value(none)) ? { x: none, innovations: own.er, value: own.f, sigma2: own.sigma2 } : null;
+    const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, own, Int32Array.from(none.keys()), plain), hannanRissanen(small, search.bridged), 1e-3, rounds);
+    return Number.isFinite(plain.value(found.x)) ? { x: found.x, innovations: own.er, value: own.f, sigma2: own.sigma2 } : null;
   };
   if (free.length === 0) {
     const x = Float64Array.from(held);
@@ -44,7 +44,7 @@ export function estimate(search: Search): Estimate {
   if (best === null) keep(run(new Float64Array(shape.count)));
   if (!search.near && search.starts !== "one" && best !== null) {
     const at = full(best, free, held);
-    const others = search.evaluate ? [hannanRissanen(shape, search.bridged), new Float64Array(shape.count)] : otherStarts(search, at, suspicious(shape, at, data.n), maximise);
+    const others = search.evaluate ? [hannanRissanen(shape, search.bridged), new Float64Array(shape.count)] : otherStarts(search, at, (best as Minimum).value, suspicious(shape, at, data.n), maximise);
     for (const x of others) {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
