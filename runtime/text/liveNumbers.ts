@@ -3,7 +3,7 @@
 import type { Link, Nodes, RootContent } from "mdast";
 import { parseExpression } from "./expression.ts";
 import type { LiveNumber } from "./notebook.ts";
-import { placeOf, plainText, walk } from "./markdown.ts";
+import { LIVE, placeOf, plainText, walk } from "./markdown.ts";
 
 export interface NumberProblem { readonly code: string; readonly message: string; readonly from: number; readonly to: number }
 export interface FoundNumbers { readonly numbers: readonly Omit<LiveNumber, "index" | "line" | "column">[]; readonly problems: readonly NumberProblem[] }
@@ -21,6 +21,7 @@ export function liveNumbersOf(text: string, block: RootContent): FoundNumbers {
     const at = placeOf(node);
     if (at === null) return;
     if (["inlineCode", "code", "math", "inlineMath", "html"].includes(node.type)) quiet.push(at);
+    if (node.type === "inlineMath" && text.slice(at.from, at.to).search(LIVE) >= 0) problems.push({ code: "live-number-in-mathematics", message: "A live number stands between two `$`, which make mathematics of it: write `\\$` for the sign of a currency", from: at.from, to: at.from + 1 });
     if (node.type === "definition" && node.url.startsWith("=")) problems.push({ code: "live-number-reference", message: "A live number is an inline link: write `[value](=expression)` where it stands in the text", ...at });
     if (node.type === "link" && node.url.startsWith("=") && text[at.from] === "[") {
       quiet.push(at);

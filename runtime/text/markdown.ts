@@ -12,7 +12,29 @@ import { math } from "micromark-extension-math";
 export function markdownTree(text: string): Root {
   // A byte order mark is not counted by the parser; a space in its place keeps every offset true.
   const counted = text.startsWith("\uFEFF") ? ` ${text.slice(1)}` : text;
-  return fromMarkdown(counted, { extensions: [gfm(), math()], mdastExtensions: [gfmFromMarkdown(), mathFromMarkdown()] });
+  const money = moneyOf(counted);
+  const tree = fromMarkdown(money === null ? counted : money.text, { extensions: [gfm(), math()], mdastExtensions: [gfmFromMarkdown(), mathFromMarkdown()] });
+  if (money !== null) walk(tree, (node) => { putBack(node, money.stand); });
+  return tree;
+}
+
+/** What looks like a live number: its saved text, its destination (bare, or in `<…>`) and its title. */
+export const LIVE = /\[([^\][\n\r]*)\]\([ \t]*(?:<=[^<>\n\r]*>|=[^\s<>]*)(?:[ \t]+(?:"[^"\n\r]*"|'[^'\n\r]*'))?[ \t]*\)/g;
+
+/** The sign of a currency, in a live number and its pattern, would begin mathematics: `[$1,204](=sum "$,.0f")`. There another sign stands in
+ *  for it while the text is read, of the same length, so that every place stays true. null where there is nothing to do. */
+function moneyOf(text: string): { readonly text: string; readonly stand: string } | null {
+  if (!text.includes("$") || !text.includes("](")) return null;
+  let code = 0xe000;
+  while (text.includes(String.fromCharCode(code))) code += 1;
+  const stand = String.fromCharCode(code);
+  // Two signs in the saved text are mathematics; one behind a backslash is a sign already.
+  const read = text.replace(LIVE, (link: string, saved: string) => (/\$.*\$/.test(saved) ? link : link.replace(/(?<!\\)\$/g, stand)));
+  return read === text ? null : { text: read, stand };
+}
+
+function putBack(node: Nodes, stand: string): void {
+  for (const [key, value] of Object.entries(node)) if (typeof value === "string" && value.includes(stand)) Reflect.set(node, key, value.replaceAll(stand, "$"));
 }
 
 /** The words of a node without their marks. */

@@ -77,9 +77,11 @@ function nextHead(body: string, start: number, indent: number, claims: boolean):
   return match === null ? body.length : match.index;
 }
 
+/** Cost O(indent): a long line has many tokens, each asked this. */
 function atColumnZero(body: string, at: number, indent: number): boolean {
-  const line = Math.max(body.lastIndexOf("\n", at - 1), body.lastIndexOf("\r", at - 1)) + 1;
-  return at === line || (at - line <= indent && body.slice(line, at).trim() === "");
+  let line = at;
+  while (at - line < indent && /[^\S\n\r]/.test(body[line - 1] ?? "")) line -= 1;
+  return line === 0 || body[line - 1] === "\n" || body[line - 1] === "\r";
 }
 
 function notAnOption(body: string, start: number, end: number, indent: number, claims: boolean): BodyFault {

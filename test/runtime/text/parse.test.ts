@@ -99,6 +99,7 @@ describe("problems say what was found, where, and what to try", () => {
     ["a script with a syntax fault", cell("script: s", "export const = 1;"), /The script cannot be read/],
     ["a cell in a list", `- item\n\n  ${fence}values: v\n  a: 1\n  ${fence}\n`, /A cell stands at the top level/],
     ["a live number that is no link", "Is [0.31](=ljungBox(x, 24).p)\n", /^1:9 This is not read as a link: wrap the expression in `<…>`/],
+    ["a live number between two signs of a currency", "From $5 over [7](=mean) to $9.\n", /^1:6 A live number stands between two `\$`, which make mathematics of it: write `\\\$`/],
     ["a live number with emphasis inside", "Is [*0.31*](=mean)\n", /the text of a live number is plain/i],
     ["a live number with a fault", "Is [0.31](<=1 +>)\n", /^1:4 In the live number `1 \+`: The expression stops too early/],
     ["a live number with an unknown name", "Is [0.31](=maen)\n", /^1:4 There is no `maen`: did you mean `mean`\?/],
@@ -131,6 +132,16 @@ describe("problems say what was found, where, and what to try", () => {
 });
 
 describe("live numbers", () => {
+  test("may be sums of money, which are no mathematics", () => {
+    const text = 'It costs [$1,204](=mean "$,.0f"), [-$3](<=mean("$")>), [\\$7](=mean) and [2](=mean "$.2f"), where $x$ is $1. `[$1](=mean)`\n';
+    const notebook = read(text);
+    expect(notebook.problems).toEqual([]);
+    expect(notebook.numbers.map((each) => [each.saved, each.expression, each.pattern])).toEqual([["$1,204", "mean", "$,.0f"], ["-$3", 'mean("$")', null], ["$7", "mean", null], ["2", "mean", "$.2f"]]);
+    for (const each of notebook.numbers) expect(text.slice(each.savedPlace.from, each.savedPlace.to).replace("\\", "")).toBe(each.saved);
+    const [paragraph] = notebook.tree.children;
+    expect("children" in paragraph ? paragraph.children.flatMap((each) => ("value" in each ? [[each.type, each.value]] : [])) : []).toEqual([["text", "It costs "], ["text", ", "], ["text", ", "], ["text", " and "], ["text", ", where "], ["inlineMath", "x"], ["text", " is $1. "], ["inlineCode", "[$1](=mean)"]]);
+  });
+
   test("are found in paragraphs, headings, lists, tables, quotations and footnotes, with places and patterns", () => {
     const text = '# Head [1](=mean)\n\nText [2.50](=mean ".2f") and *so [3](=mean)*.\n\n- item [4](=mean)\n\n> quote [5](=mean)\n\n| a | b |\n| - | - |\n| [6](=mean) | x |\n\nNote[^1].\n\n[^1]: foot [−7](<=-mean>)\n';
     const notebook = read(text);

@@ -26,6 +26,20 @@ describe("what nests without end", () => {
   });
 });
 
+describe("what is very long", () => {
+  // Twice as long costs twice as much: four times as much, as once, would outlast any test here.
+  test("one line of a cell with 400,000 tokens", () => {
+    const parsed = parse(cell("values: v", `list: [${"1, ".repeat(200_000)}1]`, "b: 2"), shapes);
+    expect(parsed.problems).toEqual([]);
+    expect(parsed.cells[0].options.map((each) => each.name)).toEqual(["list", "b"]);
+  });
+
+  test("100,000 lines with a cell, a number and a heading in every ten", () => {
+    const parsed = parse(Array.from({ length: 10_000 }, (_, i) => `## Part ${i}\n\nIt is [1](=c${i}.a).\n\n${cell(`values: c${i}`, "a: 1")}\n\n`).join(""), shapes, { names });
+    expect([parsed.cells.length, parsed.numbers.length, parsed.problems]).toEqual([10_000, 10_000, []]);
+  });
+});
+
 describe("for any text", () => {
   test("blocks read one by one are the blocks of the whole text, every node with its place", () => {
     fc.assert(fc.property(notebook, (text) => { expect(JSON.parse(JSON.stringify(parse(text, shapes).tree))).toEqual(strip(text)); }), { ...seeded, numRuns: 1500 });
