@@ -11,6 +11,7 @@ export interface ForecastCell {
   readonly horizon: number;
   readonly levels?: readonly number[];
   readonly regressors?: Readonly<Record<string, Series>>;
+  readonly scenarios?: ForecastOptions["scenarios"];
   readonly totals?: ForecastOptions["totals"];
   readonly bands?: ForecastOptions["bands"];
   readonly seed?: number;
@@ -26,6 +27,7 @@ export const forecastOptions: OptionTable = {
   horizon: { type: "integer", required: true, min: 1, max: longestHorizon, sentence: "How many periods ahead, from the end of the model's window.", example: "12" },
   levels: { type: { listOf: "level" }, default: [0.5, 0.9], sentence: "Confidence of the bands, each a share between 0 and 1.", example: "[0.5, 0.9]" },
   regressors: { type: "object", sentence: "Future values of the regressors that are series, by the names the fit uses; interventions extend by themselves.", example: "{price: priceAhead}" },
+  scenarios: { type: "object", sentence: "Several futures of the regressors side by side, by label, each as in regressors; differences are from the first. What regressors gives holds in all of them.", example: "{cheap: {price: low}, dear: {price: high}}" },
   totals: { type: "any", sentence: "Spans to total: \"year\" for each calendar year touched, a year such as \"2025\", or a list of {from, to}.", example: "\"year\"" },
   bands: { type: { oneOf: ["plugIn", "simulated", "calibrated"] }, default: "plugIn", sentence: "How the bands are made: from the model's formula, by simulation with uncertain parameters and resampled shocks, or from held-out errors." },
   threshold: { type: { anyOf: ["number", { listOf: "number" }] }, sentence: "A value, or several, in the units of the data; the probability of lying above it is given for each period and for the whole span.", example: "1500" },

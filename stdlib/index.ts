@@ -55,7 +55,7 @@ export { refit, type RefitHow } from "./forecast/refit.ts";
 export { rule, isRule, type SmoothingOptions } from "./forecast/rules.ts";
 export { exponentialSmoothing, type Smoothed, type SmoothingWeights } from "./forecast/smoothing/exponentialSmoothing.ts";
 export { innovationsFilter, innovationsPath, type Filtered, type SmoothingForm, type SmoothingState } from "./forecast/smoothing/innovations.ts";
-export { type Band, type BandsHow, type Forecast, type ForecastOptions, type Forecaster, type Growth, type Passing, type Rule, type Total } from "./forecast/model.ts";
+export { type Band, type BandsHow, type Difference, type Forecast, type ForecastOptions, type Forecaster, type Growth, type Passing, type Rule, type Scenario, type Total } from "./forecast/model.ts";
 // diagnostics
 export { printedP, unavailable, type Test } from "./diagnostics/test.ts";
 export { boxPierce, ljungBox, monti, portmanteauRows, type PortmanteauRow, type PortmanteauRows } from "./diagnostics/portmanteau.ts";

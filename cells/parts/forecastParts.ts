@@ -3,21 +3,20 @@
 import type { Forecast } from "../../stdlib/index.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { fanChart } from "./fanChart.ts";
+import { pattern } from "./format.ts";
+import { scenarioParts } from "./scenarioParts.ts";
 import { figure, percent } from "./words.ts";
 
 /** Rows of the printed table; longer horizons are in the chart's data. */
 const mostRows = 60;
 
 export function forecastParts(forecast: Forecast): readonly Part[] {
-  const sentence = findings(forecast);
+  const several = Object.keys(forecast.scenarios).length > 0, sentence = several ? "" : findings(forecast);
   const past = Math.max(24, 4 * forecast.horizon);
   return [
-    { part: "text", text: sentence },
+    ...(several ? [] : [{ part: "text" as const, text: sentence }]),
     ...forecast.notes.filter(note => note.tone === "caution").map((note): TextPart => ({ part: "text", tone: "caution", text: note.text })),
-    fanChart(forecast, sentence, past),
-    ...(forecast.totals.length > 0 ? [totalsTable(forecast)] : []),
-    ...passingParts(forecast),
-    periodsTable(forecast),
+    ...(several ? scenarioParts(forecast, past) : [fanChart(forecast, sentence, past), ...(forecast.totals.length > 0 ? [totalsTable(forecast)] : []), ...passingParts(forecast), periodsTable(forecast)]),
     ...forecast.notes.filter(note => note.tone !== "caution").map((note): TextPart => ({ part: "text", tone: "note", text: note.text })),
     { part: "text", tone: "note", text: "A forecast is a calculation from the past, and no advice." },
   ];
@@ -89,7 +88,7 @@ function periodsTable(forecast: Forecast): TablePart {
       { title: "period" }, { title: "median", align: "right", format: pattern(forecast.median), unit: forecast.unit }, { title: "mean", align: "right", format: pattern(forecast.mean), unit: forecast.unit },
       ...bands.flatMap(band => [
         { title: `${percent(band.level)} from`, align: "right" as const, format: pattern(forecast.median) },
-        { title: "to", align: "right" as const, format: pattern(forecast.median) },
+        { title: `${percent(band.level)} to`, align: "right" as const, format: pattern(forecast.median) },
       ]),
       ...(grows ? [{ title: "on the year before", align: "right" as const, format: "+.1%" }] : []),
     ],
@@ -110,7 +109,7 @@ function totalsTable(forecast: Forecast): TablePart {
     part: "table", title: "Totals over spans",
     columns: [
       { title: "span" }, { title: "median", align: "right", format, unit: forecast.unit }, { title: "mean", align: "right", format, unit: forecast.unit },
-      ...levels.flatMap(level => [{ title: `${percent(level)} from`, align: "right" as const, format }, { title: "to", align: "right" as const, format }]),
+      ...levels.flatMap(level => [{ title: `${percent(level)} from`, align: "right" as const, format }, { title: `${percent(level)} to`, align: "right" as const, format }]),
       ...(grows ? [{ title: "on the year before", align: "right" as const, format: "+.1%" }] : []),
       ...(part ? [{ title: "periods already observed", align: "right" as const, format: "d" }] : []),
     ],
@@ -120,13 +119,4 @@ function totalsTable(forecast: Forecast): TablePart {
     ]),
     note: "The bands of a total take account of errors that run in the same direction: they are not the sum of the periods' bands.",
   };
-}
-
-/** A d3-format pattern that keeps about four significant digits of the numbers at hand. */
-export function pattern(values: ArrayLike<number>): string {
-  let size = 0;
-  for (let i = 0; i < values.length; i++) if (Number.isFinite(values[i])) size = Math.max(size, Math.abs(values[i]));
-  if (size === 0) return ",.3f";
-  const digits = Math.max(0, 3 - Math.floor(Math.log10(size)));
-  return size < 1e-4 || size >= 1e13 ? ".4~g" : `,.${Math.min(digits, 8)}f`;
 }

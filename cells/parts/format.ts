@@ -19,3 +19,12 @@ export function mixedFormat(figures: readonly unknown[]): string {
   const odd = figures.some((v) => typeof v === "number" && Number.isFinite(v) && v !== 0 && (Math.abs(v) < 1e-5 || Math.abs(v) >= 1e12));
   return odd ? ",.6~g" : ",.6~r";
 }
+
+/** A d3-format pattern that keeps about four significant digits of the numbers at hand. */
+export function pattern(values: ArrayLike<number>): string {
+  let size = 0;
+  for (let i = 0; i < values.length; i++) if (Number.isFinite(values[i])) size = Math.max(size, Math.abs(values[i]));
+  if (size === 0) return ",.3f";
+  const digits = Math.max(0, 3 - Math.floor(Math.log10(size)));
+  return size < 1e-4 || size >= 1e13 ? ".4~g" : `,.${Math.min(digits, 8)}f`;
+}

@@ -19,11 +19,14 @@ export function tableTree(part: TablePart, menu: Given): Tree {
         part.title ? h("caption", {}, part.title) : null,
         h("thead", {}, h("tr", {}, part.columns.map((column, i) => h("th", { scope: "col", class: right[i] ? "to-right" : null }, column.title, column.unit ? h("span", { class: "unit" }, ` (${column.unit})`) : null)))),
         h("tbody", {}, shown.map((row, r) => h("tr", { class: marked.has(r) ? "marked" : null }, row.map((value, i) =>
-          h("td", { class: right[i] ? "to-right number" : null }, printValue(value, part.columns[i]?.format), i === 0 && marked.has(r) ? h("span", { class: "mark-word" }, marked.get(r)) : null))))))),
+          h("td", { class: right[i] ? "to-right number" : isTime(value) ? "time" : null }, printValue(value, part.columns[i]?.format), i === 0 && marked.has(r) ? h("span", { class: "mark-word" }, marked.get(r)) : null))))))),
     part.rows.length > mostRows ? h("p", { class: "note" }, `${mostRows} of ${printValue(part.rows.length)} rows are shown; the data (CSV) have all.`) : null,
     part.note ? h("p", { class: "note" }, part.note) : null,
     menu);
 }
+
+/** "2025-03", "2025-W07", "2025, total": a time is never broken at its hyphens. Spans may break between their ends. */
+const isTime = (value: unknown): boolean => typeof value === "string" && value.length <= 24 && /^[+-]?\d{4,6}(-[\dWQ]\S*)?(,? [a-z]+)?$/.test(value);
 
 export function figuresTree(part: FiguresPart): Tree {
   return h("dl", { class: "part part-figures" }, part.figures.map(({ label, value, format, unit }) =>

@@ -5,7 +5,8 @@ import type { Series } from "../series/series.ts";
 import { calibratedOutlook } from "./calibrated.ts";
 import type { Gradual } from "./gradual.ts";
 import { modelOutlook, type ModelOutlook } from "./modelOutlook.ts";
-import type { BandsHow, Forecaster } from "./model.ts";
+import type { Band, BandsHow, Forecaster } from "./model.ts";
+import type { Outlook } from "./outlook.ts";
 import { simulatedOutlook } from "./simulated.ts";
 
 export interface BandsOptions {
@@ -23,6 +24,9 @@ export function* bandedOutlook(model: Forecaster, horizon: number, { how, regres
     : how === "simulated" ? yield* simulatedOutlook(model, horizon, regressors, seed, plain) : yield* calibratedOutlook(model, horizon, regressors, seed, levels, plain);
   return { ...plain, outlook, notes: [...plain.notes, assumption, conditional] };
 }
+
+/** The limits at each level. */
+export const bandsOf = (outlook: Outlook, levels: readonly number[]): Band[] => levels.map((level) => ({ level, low: outlook.quantile((1 - level) / 2), high: outlook.quantile((1 + level) / 2) }));
 
 const plugIn: Note = { code: "bands-plug-in", tone: "note", text: "Bands: from the model's formula. They take the estimated parameters as if they were known, and the shocks as normal with one variance; with short series they are somewhat too narrow." };
 const conditional: Note = { code: "bands-conditional", tone: "note", text: "Bands are conditional on the model: they hold if it keeps describing the series, and no band covers a break." };

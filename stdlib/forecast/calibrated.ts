@@ -28,7 +28,7 @@ export function* calibratedOutlook(model: Forecaster, horizon: number, regressor
   const beyond = levels.filter((level) => level > count / (count + 1)), ratio = misses.map((column) => Math.sqrt(column.reduce((s, z) => s + z * z, 0) / column.length));
   const text = `Bands: calibrated on the errors at ${count} held-out origins, with the parameters estimated before the first of them. They assume that coming errors are like those; no shape of distribution is assumed`
     + (beyond.length > 0 ? `, except that the ${beyond.map((l) => `${+(100 * l).toPrecision(4)}%`).join(", ")} band reaches beyond what ${count} origins can show and is extended as if normal` : "")
-    + `. The model's own bands were ${inWords(ratio[0])} one step ahead${horizon > 1 ? ` and ${inWords(ratio[horizon - 1])} ${horizon} steps ahead` : ""}.`;
+    + `. The model's own bands were ${inWords(ratio[0])} one step ahead${horizon > 1 ? `, and at ${horizon} steps ${inWords(ratio[horizon - 1])}` : ""}.`;
   return { outlook: stretched(plain.outlook, misses, ratio), assumption: { code: "bands-calibrated", tone: "note", text } };
 }
 

@@ -11,18 +11,24 @@ import type { Predictive } from "./predictive.ts";
  *  @param regressors  future values by the fit's names; a regressor left out here goes on with its own values, if they reach so far
  *  @throws RangeError naming a regressor whose future is missing, and the date */
 export function fitPredictive(fit: Fit, horizon: number, times: readonly string[], regressors: Readonly<Record<string, Series>>): Predictive {
-  const asked = fit.options.regressors ?? {};
+  const { mean, se, covariance } = predict(fit, horizon, futureColumns(fit, times, regressors));
+  return { mean, se, covariance };
+}
+
+/** The regressors' coming values by column, in levels: `fitPredictive` says from what. */
+export function futureColumns(fit: Fit, times: readonly string[], regressors: Readonly<Record<string, Series>>): Record<string, Float64Array> {
+  const asked = fit.options.regressors ?? {}, among = Object.keys(asked), future: Record<string, Float64Array> = {};
   for (const name of Object.keys(regressors)) {
-    if (!(name in asked)) throw new RangeError(`forecast: ${name} is no regressor of ${fit.label}${Object.keys(asked).length > 0 ? `; it has ${Object.keys(asked).join(", ")}` : "; it has none"}`);
+    if (!(name in asked)) throw new RangeError(`forecast: ${name} is no regressor of ${fit.label}${among.length > 0 ? `; it has ${among.join(", ")}` : "; it has none"}`);
+    if (!isSeries(asked[name])) throw new RangeError(`forecast: ${name} is an intervention, which extends by itself; leave it out of regressors`);
+    if (!isSeries(regressors[name])) throw new RangeError(`forecast: the future of ${name} is no series; give a series that covers ${times[0]} to ${times[times.length - 1]}`);
   }
-  const future: Record<string, Float64Array> = {};
   for (const [name, regressor] of Object.entries(asked)) {
     if (isSeries(regressor)) { future[name] = futureOf(name, regressors[name], regressor, fit.series.every, times); continue; }
-    const { names, columns } = interventionColumns(regressor, name, times[0], fit.series.every, horizon);
+    const { names, columns } = interventionColumns(regressor, name, times[0], fit.series.every, times.length);
     names.forEach((column, j) => { future[column] = columns[j]; });
   }
-  const { mean, se, covariance } = predict(fit, horizon, future);
-  return { mean, se, covariance };
+  return future;
 }
 
 /** The coming values of a regressor: those given, and before or between them its own.

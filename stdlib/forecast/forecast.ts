@@ -1,19 +1,18 @@
 // Forecasts that can be published: points, bands, totals, growth, probabilities, each in the units of the data.
 
 import { makeSeries, type Series } from "../series/series.ts";
-import type { Note } from "../arma/model.ts";
-import { bandedOutlook } from "./bands.ts";
+import type { Fit, Note } from "../arma/model.ts";
+import { bandedOutlook, bandsOf } from "./bands.ts";
 import { atOnce, type Gradual } from "./gradual.ts";
 import { growthOf } from "./growth.ts";
-import type { Band, Forecast, Forecaster, ForecastOptions, Passing } from "./model.ts";
+import type { Figures, Forecast, Forecaster, ForecastOptions, Passing } from "./model.ts";
+import type { ModelOutlook } from "./modelOutlook.ts";
 import { once, type Outlook } from "./outlook.ts";
-import { pathAt, type Paths } from "./paths.ts";
+import { pathAt, pathCount, type Paths } from "./paths.ts";
 import { baseOf, firstIndex, lastIndex, reachOf } from "./reach.ts";
+import { futuresOf, scenariosOf } from "./scenarios.ts";
 import { shapeOf } from "./shape.ts";
 import { totalsOf } from "./totals.ts";
-
-/** Sample paths behind the limits of totals and growth where those have no closed form. */
-const pathCount = 4000;
 
 /** Forecasts from the end of a model's sample.
  *  `mean` and `median` differ after a log or Box-Cox: the median is the plain way back, the mean takes the spread into account.
@@ -23,22 +22,44 @@ export function forecast(model: Forecaster, options: ForecastOptions): Forecast 
 
 /** The same in slices, for simulated and calibrated bands, which take a while. */
 export function* forecasting(model: Forecaster, options: ForecastOptions): Gradual<Forecast> {
-  const { horizon, levels = [0.5, 0.9], regressors = {}, totals: spans, bands: how = "plugIn", seed = 1, threshold, paths: wanted = 0, data } = options;
+  const { horizon, levels = [0.5, 0.9], seed = 1, paths: wanted = 0, data } = options;
   if (!Number.isInteger(horizon) || horizon < 1) throw new RangeError(`forecast: horizon is ${horizon}, expected a whole number of periods from 1 on`);
   for (const level of levels) if (!(level > 0 && level < 1)) throw new RangeError(`forecast: a level is ${level}, expected between 0 and 1, as in 0.9`);
-  const { outlook, base, times, notes } = yield* bandedOutlook(model, horizon, { how, regressors, seed, levels });
-  const paths = once(() => outlook.paths(pathCount, seed));
-  const totals = totalsOf(spans, base, outlook, times, levels, paths);
-  const bands: Band[] = levels.map((level) => ({ level, low: outlook.quantile((1 - level) / 2), high: outlook.quantile((1 + level) / 2) }));
-  const infinite = outlook.mean.some((m) => !Number.isFinite(m));
-  const shape = shapeOf(model), allNotes: Note[] = [...notes, ...totals.notes, { code: "shape", tone: "note", text: shape }];
-  if (infinite) allNotes.push({ code: "no-mean", tone: "caution", text: "The mean in data units is not finite (the transformation has no upper end there): read the median." });
+  const futures = futuresOf(model, options), made: Made[] = [];
+  for (const { label, regressors } of futures) made.push(yield* oneFuture(model, options, label, regressors));
+  const [{ banded, figures, notes }] = made, { outlook, base, times } = banded;
+  const shape = shapeOf(model), allNotes: Note[] = [...notes, { code: "shape", tone: "note", text: shape }];
+  if (outlook.mean.some((m) => !Number.isFinite(m))) allNotes.push({ code: "no-mean", tone: "caution", text: "The mean in data units is not finite (the transformation has no upper end there): read the median." });
+  const scenarios = options.scenarios === undefined ? null : scenariosOf(model as Fit, options, futures, made);
+  if (scenarios !== null) allNotes.push(...scenarios.notes);
   return {
-    label: model.label, name: base.name, unit: base.unit, every: base.every, origin: base.times[base.n - 1], horizon, times,
-    mean: outlook.mean, median: outlook.median, se: outlook.se, sd: outlook.sd, bands, totals: totals.totals,
-    growth: growthOf(base, outlook, times, levels, paths), passing: passingOf(threshold, outlook, paths),
+    label: model.label, name: base.name, unit: base.unit, every: base.every, origin: base.times[base.n - 1], horizon, times, ...figures, scenarios: scenarios?.scenarios ?? {},
     paths: wanted > 0 ? publishedPaths(outlook.paths(wanted, seed)) : [], shape, history: base, heldOut: heldOutOf(model, base, data), notes: allNotes,
   };
+}
+
+/** One future of the regressors, forecast. */
+export interface Made { readonly banded: ModelOutlook; readonly figures: Figures; readonly notes: readonly Note[] }
+
+function* oneFuture(model: Forecaster, options: ForecastOptions, label: string | null, regressors: NonNullable<ForecastOptions["regressors"]>): Gradual<Made> {
+  const { horizon, levels = [0.5, 0.9], bands: how = "plugIn", seed = 1 } = options;
+  try {
+    const banded = yield* bandedOutlook(model, horizon, { how, regressors, seed, levels });
+    const { figures, notes } = figuresOf(banded, options);
+    return { banded, figures, notes: [...banded.notes, ...notes] };
+  } catch (error) {
+    if (label === null || !(error instanceof RangeError)) throw error;
+    throw new RangeError(`In scenario ${label}: ${error.message.replace(/^forecast: /, "")}`, { cause: error });
+  }
+}
+
+/** What is published of a distribution. */
+function figuresOf({ outlook, base, times }: ModelOutlook, { levels = [0.5, 0.9], totals: spans, seed = 1, threshold }: ForecastOptions): { readonly figures: Figures; readonly notes: readonly Note[] } {
+  const paths = once(() => outlook.paths(pathCount, seed)), { totals, notes } = totalsOf(spans, base, outlook, times, levels, paths);
+  return { notes, figures: {
+    mean: outlook.mean, median: outlook.median, se: outlook.se, sd: outlook.sd, bands: bandsOf(outlook, levels), totals,
+    growth: growthOf(base, outlook, times, levels, paths), passing: passingOf(threshold, outlook, paths),
+  } };
 }
 
 function passingOf(threshold: ForecastOptions["threshold"], outlook: Outlook, paths: () => Paths): Passing[] {

@@ -54,7 +54,37 @@ export interface Passing {
   readonly ever: number;
 }
 
-export interface Forecast {
+/** What is forecast, in data units unless said otherwise; arrays have the horizon's length. */
+export interface Figures {
+  readonly mean: Float64Array; readonly median: Float64Array;
+  /** Standard error on the scale before differencing, on which errors are normal: of the logs after a log, of the data where no step is a log or Box-Cox. */
+  readonly se: Float64Array;
+  /** Standard deviation of each period's forecast. */
+  readonly sd: Float64Array;
+  readonly bands: readonly Band[];
+  readonly totals: readonly Total[];
+  /** By period, on the year before; empty where the spacing has no whole number of periods a year. */
+  readonly growth: readonly Growth[];
+  readonly passing: readonly Passing[];
+}
+
+/** One of several futures of the regressors. */
+export interface Scenario extends Figures {
+  readonly label: string;
+  /** Against the first scenario; null for the first itself. */
+  readonly difference: Difference | null;
+}
+
+/** One scenario less another, data units. */
+export interface Difference {
+  /** Label of the other. */
+  readonly against: string;
+  readonly mean: Float64Array; readonly median: Float64Array;
+  readonly bands: readonly Band[];
+  readonly totals: readonly Omit<Total, "observed" | "growth">[];
+}
+
+export interface Forecast extends Figures {
   readonly label: string;
   /** Name and unit of the series in data units. */
   readonly name: string; readonly unit: string; readonly every: string | null;
@@ -62,19 +92,10 @@ export interface Forecast {
   readonly origin: string;
   readonly horizon: number;
   readonly times: readonly string[];
-  /** Data units. */
-  readonly mean: Float64Array; readonly median: Float64Array;
-  /** Standard error on the scale before differencing, on which errors are normal: of the logs after a log, of the data where no step is a log or Box-Cox. */
-  readonly se: Float64Array;
-  readonly bands: readonly Band[];
-  readonly totals: readonly Total[];
-  /** Standard deviation of each period's forecast in data units. */
-  readonly sd: Float64Array;
-  /** By period, on the year before; empty where the spacing has no whole number of periods a year. */
-  readonly growth: readonly Growth[];
-  readonly passing: readonly Passing[];
   /** Sample paths in data units, as many as were asked for. */
   readonly paths: readonly Float64Array[];
+  /** By the labels asked for; the forecast's own figures are those of the first. Empty where none was asked for. */
+  readonly scenarios: Readonly<Record<string, Scenario>>;
   /** What the forecast turns into far ahead, in a sentence. */
   readonly shape: string;
   /** The observed series in data units up to the origin, and what came after it where there are later data. */
@@ -88,6 +109,8 @@ export interface ForecastOptions {
   readonly horizon: number;
   readonly levels?: readonly number[];
   readonly regressors?: Readonly<Record<string, Series>>;
+  /** Several futures of the regressors, by label, each as `regressors`; what `regressors` gives holds in all of them. */
+  readonly scenarios?: Readonly<Record<string, Readonly<Record<string, Series>>>>;
   /** Spans to total, each `{from, to}` in times, or "year" for each calendar year touched, or an ISO 8601 year text. */
   readonly totals?: string | readonly (string | { readonly from: string; readonly to: string })[];
   /** How the bands are made; each says what it assumes in `notes`. */

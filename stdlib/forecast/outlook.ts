@@ -2,7 +2,7 @@
 
 import { normalCdf, normalQuantile } from "../distributions/normal.ts";
 import { lognormalCrps, normalCrps, sampleCrps } from "../evaluation/scores.ts";
-import { drawnPaths, drawsOf, normalPaths, undoPaths, type Paths } from "./paths.ts";
+import { drawnPaths, drawsOf, normalPaths, pathCount, undoPaths, type Paths } from "./paths.ts";
 import { diagonalRoots, factorOf, type Predictive } from "./predictive.ts";
 import { isLinear, redoValue, undoCovariance, undoMean, undoValue, type UndoStep } from "./undo.ts";
 
@@ -30,12 +30,9 @@ export interface Outlook {
   readonly crps: (h: number, actual: number) => number;
 }
 
-/** Draws that stand for a distribution with no closed form: enough for a 95% limit to about 2% of its distance from the median. */
-const drawCount = 4000;
-
 /** Undoes the steps of a predictive distribution. Linear steps keep it normal; a log or Box-Cox is undone on quantiles
  *  directly, and the mean by its own formula (log) or by quadrature; whatever couples periods after that, by seeded draws. */
-export function outlookOf(predictive: Predictive, steps: readonly UndoStep[], seed: number, draws = drawCount): Outlook {
+export function outlookOf(predictive: Predictive, steps: readonly UndoStep[], seed: number, draws = pathCount): Outlook {
   const size = predictive.mean.length, split = steps.findIndex((s) => !isLinear(s)), cut = split < 0 ? steps.length : split;
   const linear = steps.slice(0, cut), rest = steps.slice(cut);
   const mean = linear.reduce((m, step) => undoMean(step, m), predictive.mean);

@@ -9,16 +9,13 @@ import type { Gradual } from "./gradual.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import type { Forecaster, Rule } from "./model.ts";
 import { sampleOutlook, type Outlook } from "./outlook.ts";
-import { pathsOf, undoPaths, type Paths } from "./paths.ts";
+import { pathCount, pathsOf, undoPaths, type Paths } from "./paths.ts";
 import { seeded } from "./random.ts";
 import { keptSteps } from "./reach.ts";
 import { rulePredictive } from "./rulePredictive.ts";
 import { isRule, observedPositions } from "./rules.ts";
 import { innovationsPaths } from "./smoothing/innovations.ts";
 import { undoOf } from "./undo.ts";
-
-/** Paths in all. */
-const pathCount = 4000;
 
 /** Sets of parameters: 100 for a few years of months; fewer where each is dear, since a long series leaves its parameters less uncertain. */
 function setsFor({ values, n }: Series): number {

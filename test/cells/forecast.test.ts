@@ -44,6 +44,22 @@ describe("forecast shows", () => {
     expect(tables.at(-1)!.rows.map(row => row.at(-1)).slice(0, 2)).toEqual([0.05, NaN]);
     await expect(drawnCharts(parts)).resolves.toHaveLength(1);
   });
+  test("scenarios side by side in one picture and one table, and what each makes against the first", async () => {
+    const { mean, median, se, sd, bands, totals } = madeForecast(), usual = { label: "usual", mean, median, se, sd, bands, totals, growth: [], passing: [], difference: null };
+    const less = { against: "usual", mean: se, median: new Float64Array(12).fill(-20), bands: [{ level: 0.9, low: new Float64Array(12).fill(-30), high: new Float64Array(12).fill(-10) }], totals: [{ from: "2024", to: "2024", mean: -240, median: -240, se: 60, bands: [{ level: 0.9, low: -350, high: -130 }] }] };
+    const parts = forecast.show(madeForecast({ scenarios: { usual, strike: { ...usual, label: "strike", difference: less } } }), show);
+    expect((parts[0] as TextPart).text).toBe("From 2023-12, candidate forecasts crossings in 2024-12 at 1,510 vehicles in scenario usual and 1,510 vehicles in scenario strike (medians). Against usual, strike comes to −240 vehicles over 2024 (90% band −350 to −130).");
+    const tables = parts.filter((p): p is TablePart => p.part === "table");
+    expect(tables.map(t => t.title)).toEqual(["Totals by scenario", "crossings by period and scenario", "Difference from usual"]);
+    expect(tables[1].columns.map(c => c.title)).toEqual(["period", "usual: median", "usual: 90% from", "usual: 90% to", "strike: median", "strike: 90% from", "strike: 90% to"]);
+    expect(tables[2].rows.slice(0, 2)).toEqual([["2024-01 to 2024-12, total", -240, -350, -130], ["2024-01", -20, -30, -10]]);
+    const [courses, difference] = await drawnCharts(parts);
+    expect(courses).toContain("strike");
+    expect(difference).toContain("less usual (vehicles)");
+  });
+  test("no two columns of a table have one title, so that its CSV can be read by name", () => {
+    for (const table of forecast.show(madeForecast(), show).filter((p): p is TablePart => p.part === "table")) expect(new Set(table.columns.map(c => c.title)).size).toBe(table.columns.length);
+  });
   test("the long-run shape, and that a forecast is no advice", () => {
     expect(texts(forecast.show(madeForecast(), show))).toMatch(/follows a line with the last season on it\..*no advice/);
   });

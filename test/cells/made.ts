@@ -37,7 +37,7 @@ export function madeForecast(changes: Partial<Forecast> = {}): Forecast {
     mean: around(1.01), median, se: new Float64Array(horizon).fill(0.05),
     bands: [{ level: 0.5, low: around(0.97), high: around(1.03) }, { level: 0.9, low: around(0.92), high: around(1.09) }],
     totals: [{ from: "2024-01", to: "2024-12", mean: 17628, median: 17460, se: 300, observed: 0, bands: [{ level: 0.5, low: 17000, high: 18000 }, { level: 0.9, low: 16500, high: 18600 }] }],
-    sd: around(0.05), growth: [], passing: [], paths: [], shape: "Far ahead the forecast follows a line with the last season on it.",
+    sd: around(0.05), growth: [], passing: [], scenarios: {}, paths: [], shape: "Far ahead the forecast follows a line with the last season on it.",
     history, heldOut: null, notes: [{ code: "shape", tone: "note", text: "Far ahead the forecast follows a line with the last season on it." }], ...changes,
   };
 }
