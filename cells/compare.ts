@@ -1,6 +1,6 @@
 // The kind that ranks models: a grid of orders by a criterion, or fits and rules by their errors at held-out origins.
 
-import { defaultSeasonLength, gridOfOrders, rankFits, rollingOrigins, stepwiseOrders, type Fit, type Forecaster, type Grid, type GridOptions, type Lags, type Regressor, type Season, type Series, type Stepwise } from "../stdlib/index.ts";
+import { defaultSeasonLength, gridOfOrders, rankFits, rollingOrigins, stepwiseOrders, type Fit, type Forecaster, type Grid, type GridOptions, type Hooks, type Lags, type Regressor, type Season, type Series, type Stepwise } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { compareParts, type Comparison } from "./parts/compareParts.ts";
 import { labelledModels } from "./parts/labelledModels.ts";
@@ -99,7 +99,7 @@ async function compareOrders(options: CompareCell, context: RunContext): Promise
   checkTried(options.ma, "ma");
   const { rank = "aicc" } = options;
   const grid = await gridOf(options, series, isCriterion(rank) ? rank : "aicc", context);
-  if (isCriterion(rank)) return asCriterion(grid);
+  if (isCriterion(rank) || context.stopped()) return asCriterion(grid);
   if (grid.best === null) throw new OptionError(null, `none of ${grid.asked} orders could be estimated; the first said: ${grid.failures[0]?.reason ?? "nothing"}`);
   const kept = grid.models.slice(0, mostFromGrid);
   if (grid.models.length > kept.length) context.note(`The ${kept.length} orders of smallest AICc went on to the held-out origins, of ${grid.models.length} that could be estimated. The criterion saw the held-out data when it chose them.`);
@@ -110,27 +110,30 @@ async function compareOrders(options: CompareCell, context: RunContext): Promise
 async function gridOf(options: CompareCell, series: Series, rank: Criterion, context: RunContext): Promise<Grid | Stepwise> {
   const { ar, ma, mean, regressors, window } = options;
   const common = { series, ar, ma, rank, ...(mean === undefined ? {} : { mean }), ...(regressors === undefined ? {} : { regressors }), ...(window === undefined ? {} : { window }) };
-  const hooks = { progress: (done: number, total: number, what: string) => { context.progress(done, total, what); }, breathe: () => context.breathe() };
+  const hooks = hooksOf(context);
   if (options.search === "stepwise") {
     return stepwiseOrders({ ...common, ar: largest(ar, "ar"), ma: largest(ma, "ma"), ...largestSeason(options.season, series) }, hooks);
   }
   const seasons = seasonsOf(options.season);
   const grids: Grid[] = [];
   for (const season of seasons) {
+    if (grids.length > 0 && context.stopped()) break;
     grids.push(await gridOfOrders({ ...common, ...(season === undefined ? {} : { season }) }, {
-      ...hooks, progress: (done, total, what) => { hooks.progress(grids.length * total + done, seasons.length * total, what); },
+      ...hooks, progress: (done, total, what) => { context.progress(grids.length * total + done, seasons.length * total, what); },
     }));
   }
-  return grids.length === 1 ? grids[0] : merged(grids, rank);
+  return seasons.length === 1 ? grids[0] : merged(grids, rank, seasons.length);
 }
 
-function merged(grids: readonly Grid[], rank: Criterion): Grid {
+/** @param asked  how many grids there were to be: all of one size */
+function merged(grids: readonly Grid[], rank: Criterion, askedGrids: number): Grid {
   const failures = grids.flatMap(grid => grid.failures);
   const fits = new Map(grids.flatMap(grid => grid.models).map(row => [row.label, row.fit]));
-  const asked = grids.reduce((sum, grid) => sum + grid.asked, 0);
-  if (fits.size === 0) return { ...grids[0], failures, asked, tried: asked, sentence: `None of ${asked} orders could be estimated.` };
+  const asked = askedGrids * grids[0].asked, tried = grids.reduce((sum, grid) => sum + grid.tried, 0), complete = tried === asked;
+  const early = complete ? [] : [`Stopped early: ${tried} of ${asked} orders were tried.`];
+  if (fits.size === 0) return { ...grids[0], failures, asked, tried, complete, sentence: `None of ${tried} orders could be estimated.`, notes: early };
   const all = rankFits(Object.fromEntries(fits), rank);
-  return { ...all, failures, asked, tried: asked, notes: [...all.notes, ...(failures.length > 0 ? [`${failures.length} of ${asked} orders could not be estimated; the reasons are listed.`] : [])] };
+  return { ...all, failures, asked, tried, complete, notes: [...early, ...all.notes, ...(failures.length > 0 ? [`${failures.length} of ${tried} orders could not be estimated; the reasons are listed.`] : [])] };
 }
 
 /** A number n is a grid of 0 to n seasonal lags of both sorts; anything else stands for the orders that a fit would read in it. */
@@ -182,8 +185,12 @@ async function evaluated(models: readonly { readonly label: string; readonly mod
   const result = await rollingOrigins(models, {
     origins, horizon, rank, ...(training === undefined ? {} : { training }), ...(refit === undefined ? {} : { refit }), ...(window === undefined ? {} : { window }),
     ...(levels === undefined ? {} : { levels }), ...(loss === undefined ? {} : { loss }), ...(data === undefined ? {} : { data }),
-  }, { progress: (done, total, what) => { context.progress(done, total, what); }, breathe: () => context.breathe() });
+  }, hooksOf(context));
   return { ...result, how: "origins", every: whole.every };
+}
+
+function hooksOf({ progress, breathe, stopped, recall }: RunContext): Hooks {
+  return { progress, breathe, stopped, recall };
 }
 
 function asCriterion(grid: Grid): Comparison {

@@ -51,6 +51,12 @@ export interface RunContext {
   progress(done: number, total: number, what?: string): void;
   /** Lets newer messages in; rejects when this work has been overtaken. Call it between slices of a few milliseconds. */
   breathe(): Promise<void>;
+  /** Whether the reader asked this work to end early. Work that asks keeps what it has done, and its result says how far it
+   *  came; work that never asks is broken off, and has no result. */
+  stopped(): boolean;
+  /** What this cell computed from the same content in one of its last runs, or what `make` gives, which is then kept.
+   *  The key must say all that the value hangs on. */
+  recall<T>(key: string, make: () => T): T;
   /** A remark shown with the cell (rows dropped, gaps found). */
   note(text: string): void;
   /** Runs a `script` cell's source, isolated; gives its exports. Rejects where code is not allowed. */

@@ -25,6 +25,8 @@ export interface Sweep {
   readonly at: unknown;
   readonly measures: readonly string[];
   readonly rows: readonly SweepRow[];
+  /** Values asked for; more than the rows where the work was ended early. */
+  readonly asked: number;
 }
 
 const mostValues = 1000;
@@ -57,16 +59,17 @@ export async function runSweep(options: SweepCell, context: RunContext): Promise
   if (values.length > mostValues) throw new OptionError("values", `${values.length} values of ${over} are too many to recompute; give fewer, at most ${mostValues}`);
   const found: { value: unknown; measures: Readonly<Record<string, unknown>> | null; failed: string | null }[] = [];
   for (const [i, value] of values.entries()) {
+    if (i > 0 && context.stopped()) break;
     context.progress(i, values.length, `${over} = ${printed(value)}`);
     // The work of one value may be long: what overtakes this cell is let in before each.
     await context.breathe();
     found.push(await oneValue(context, over, value, expression));
   }
-  context.progress(values.length, values.length);
+  context.progress(found.length, values.length);
   const measures = Array.from(new Set(found.flatMap(one => Object.keys(one.measures ?? {}))));
   if (measures.length === 0) throw new OptionError("measure", `no value of ${over} gave a result. The first said: ${found[0].failed ?? "nothing"}`);
   return {
-    over, at: control.at, measures,
+    over, at: control.at, measures, asked: values.length,
     rows: found.map(({ value, measures: got, failed }) => ({
       ...Object.fromEntries(measures.map(name => [name, got?.[name] ?? NaN])), value, present: same(value, control.at), failed,
     })),

@@ -15,14 +15,20 @@ const mostPaths = 40;
 export function evaluationParts(result: Evaluation, every: string | null): readonly Part[] {
   const losers = result.models.filter(model => model.beatsNaive === "no" && model.label !== result.naive.label && !isNaive(model));
   return [
+    ...result.notes.filter(endedEarly).map((text): TextPart => ({ part: "text", tone: "caution", text })),
     { part: "text", text: result.sentence },
     ...(losers.length > 0 ? [{ part: "text" as const, tone: "caution" as const, text: `${listOf(losers.map(model => model.label))} ${losers.length === 1 ? "does" : "do"} not beat naive.` }] : []),
     standingsTable(result),
     ...(result.horizon > 1 ? [horizonChart(result)] : []),
     ...details([pathsChart(result, every), coverageTable(result), ...pairParts(result)]),
-    ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
+    ...result.notes.filter(text => !endedEarly(text)).map((text): TextPart => ({ part: "text", tone: "note", text })),
     ...failureParts(result),
   ];
+}
+
+/** What was not reached bounds all that is said after it. */
+function endedEarly(note: string): boolean {
+  return note.startsWith("Stopped early");
 }
 
 function isNaive(model: Model): boolean {

@@ -13,7 +13,7 @@ const mostTiles = 12;
 export function gridParts(grid: Grid | Stepwise): readonly Part[] {
   return [
     { part: "text", text: grid.sentence },
-    ...grid.notes.map((text): TextPart => ({ part: "text", tone: /caution|could not/.test(text) ? "caution" : "note", text })),
+    ...grid.notes.map((text): TextPart => ({ part: "text", tone: /^Stopped early|caution|could not/.test(text) ? "caution" : "note", text })),
     ...("path" in grid ? pathParts(grid) : surfaces(grid)),
     ...(grid.models.length > 0 ? [rankingTable(grid)] : []),
     ...details([...cautionsTable(grid), ...(grid.failures.length > 0 ? [failureTable(grid)] : [])]),

@@ -5,7 +5,7 @@ import type { ChartPart, Part, TablePart } from "./part.ts";
 import { count, figure, listOf, someOf } from "./words.ts";
 
 interface Swept {
-  readonly over: string; readonly at: unknown; readonly measures: readonly string[];
+  readonly over: string; readonly at: unknown; readonly measures: readonly string[]; readonly asked: number;
   readonly rows: readonly { readonly value: unknown; readonly present: boolean; readonly failed: string | null; readonly [measure: string]: unknown }[];
 }
 
@@ -13,6 +13,7 @@ export function sweepParts(sweep: Swept): readonly Part[] {
   const failed = sweep.rows.filter(row => row.failed !== null);
   return [
     ...sweep.measures.map((measure): Part => ({ part: "text", text: sentence(sweep, measure) })),
+    ...(sweep.rows.length < sweep.asked ? [{ part: "text" as const, tone: "caution" as const, text: `Stopped early: ${sweep.rows.length} of ${sweep.asked} values of ${sweep.over} were tried.` }] : []),
     ...(failed.length === 0 ? [] : [{ part: "text" as const, tone: "caution" as const, text: `${count(failed.length, "value")} of ${sweep.over} gave no result (${someOf(failed.map(row => printed(row.value)))}); the first said: ${failed[0].failed}` }]),
     ...sweep.measures.flatMap(measure => chartOf(sweep, measure)),
     ...details([tableOf(sweep)]),

@@ -8,6 +8,7 @@ import type { NameSource } from "./evaluation.ts";
 import type { Outcome } from "./outcome.ts";
 import { runCell } from "./runCell.ts";
 import type { Definition } from "./runCell.ts";
+import { Overtaken } from "./values.ts";
 
 export interface AsideSurroundings {
   readonly language: Language;
@@ -15,6 +16,8 @@ export interface AsideSurroundings {
   /** Present outcomes of everything that the expression hangs on. */
   readonly outcomes: ReadonlyMap<string, Outcome>;
   definition(id: string): Definition | null;
+  /** Changes when the cell's text does. */
+  mark(id: string): string;
   resolve(name: string): NameSource | null;
   label(id: string): string;
   /** A quiet context for the run of a cell with its control's setting. */
@@ -25,23 +28,51 @@ export interface AsideSurroundings {
 
 export type Aside = (control: string, value: unknown, expression: string) => Promise<unknown>;
 
-/** One place to the side, for one run of one cell: what was computed for a value of the control is kept for the next expression. */
-export function createAside(around: AsideSurroundings): Aside {
+/** What earlier runs of the same cell found, by control: good for as long as all that does not hang on the control stays the same. */
+export type Swept = Map<string, { readonly frame: readonly unknown[]; readonly results: Map<string, { readonly value: unknown } | { readonly error: unknown }> }>;
+
+/** One place to the side, for one run of one cell: what was computed for a value of the control is kept for the next expression.
+ *  @param swept  kept with the cell from run to run: a run that only its own control brought about finds everything there */
+export function createAside(around: AsideSurroundings, swept: Swept): Aside {
   const worlds = new Map<string, Map<string, Promise<Outcome>>>();
   return async (control, value, expression) => {
-    const source = around.resolve(control);
-    if (source === null) throw new Error(`There is no control \`${control}\``);
-    const key = `${source.id}\n${JSON.stringify(value)}`;
-    const world = worlds.get(key) ?? new Map<string, Promise<Outcome>>();
-    worlds.set(key, world);
+    const source = around.resolve(control), self = source === null ? null : around.definition(source.id);
+    if (source === null || self === null) throw new Error(`There is no control \`${control}\``);
+    const results = resultsFor(source.id, around, swept), key = JSON.stringify([value, expression]);
+    const known = results.get(key);
+    if (known !== undefined) {
+      if ("error" in known) throw known.error;
+      return known.value;
+    }
+    const place = `${source.id}\n${JSON.stringify(value)}`, world = worlds.get(place) ?? new Map<string, Promise<Outcome>>();
+    worlds.set(place, world);
     const parsed = parseExpression(expression);
     const names = new Map(parsed.reads.flatMap((name) => { const from = around.resolve(name); return from === null ? [] : [[name, from] as const]; }));
     const outcomes = new Map<string, Outcome>();
     for (const { id } of names.values()) outcomes.set(id, await outcomeIn(world, id, source.id, value, around));
-    const self = around.definition(source.id);
-    if (self === null) throw new Error(`There is no control \`${control}\``);
-    return evaluate(expression, { ...around, names, outcomes, context: around.contextFor(self, undefined) });
+    try {
+      const found = await evaluate(expression, { ...around, names, outcomes, context: around.contextFor(self, undefined) });
+      results.set(key, { value: found });
+      return found;
+    } catch (error) {
+      if (!(error instanceof Overtaken)) results.set(key, { error });
+      throw error;
+    }
   };
+}
+
+/** Results found in the same surroundings, as far as the control does not reach; what was found in others is dropped. */
+function resultsFor(control: string, around: AsideSurroundings, swept: Swept): Map<string, { readonly value: unknown } | { readonly error: unknown }> {
+  const frame = [...around.outcomes].flatMap(([id, outcome]): readonly unknown[] => {
+    if (id === control) return [around.mark(id)];
+    if (hangsOn(id, control, around, new Set())) return [around.mark(id), around.setting(id)];
+    return [outcome.ok ? outcome.value : outcome];
+  });
+  const known = swept.get(control);
+  if (known?.frame.length === frame.length && known.frame.every((item, i) => Object.is(item, frame[i]))) return known.results;
+  const fresh = { frame, results: new Map<string, { readonly value: unknown } | { readonly error: unknown }>() };
+  swept.set(control, fresh);
+  return fresh.results;
 }
 
 function outcomeIn(world: Map<string, Promise<Outcome>>, id: string, control: string, value: unknown, around: AsideSurroundings): Promise<Outcome> {

@@ -8,20 +8,24 @@ import type { LiveNumber, Notebook } from "../text/notebook.ts";
 import { parse } from "../text/parse.ts";
 import type { ParsedNotebook } from "../text/parse.ts";
 import { createAside } from "./aside.ts";
-import { evaluate } from "./evaluation.ts";
+import type { Swept } from "./aside.ts";
+import { evaluate, farOf } from "./evaluation.ts";
 import { fieldsOf } from "./fields.ts";
 import { createGraph } from "./graph.ts";
 import type { GraphNode } from "./graph.ts";
 import { libraryScope } from "./library.ts";
 import type { CellReport, CellState, FromEngine, NumberReport } from "./messages.ts";
+import { createMemory } from "./memory.ts";
+import type { Memory } from "./memory.ts";
 import { createPace, nextTask } from "./nextTask.ts";
 import { sameData } from "./outcome.ts";
-import type { NotDone, Outcome } from "./outcome.ts";
+import type { CutShort, NotDone, Outcome } from "./outcome.ts";
 import { createOutliner } from "./outline.ts";
 import { planOf } from "./plan.ts";
 import type { Plan, PlannedCell, PlannedNumber } from "./plan.ts";
 import { messageOf, runCell } from "./runCell.ts";
 import type { CellSurroundings, Definition } from "./runCell.ts";
+import { createTimeLeft } from "./timeLeft.ts";
 import { EvaluationError, Overtaken, Undecided, whatIs } from "./values.ts";
 
 export interface EngineHost {
@@ -51,8 +55,11 @@ export interface Engine {
   fileChanged(file: string): void;
   setWidth(width: number): void;
   setAllowCode(allow: boolean): void;
-  /** Stops a cell that is at work; it has failed until something that it reads changes. */
+  /** Ends a cell's work early. One that keeps what it has done gives that, marked as cut short; one that does not, or that is
+   *  told a second time, is broken off and has failed until something that it reads changes. */
   stop(id: string): void;
+  /** Runs a stopped cell again. */
+  goOn(id: string): void;
   /** A cell that was stopped by hand with its worker: it is not run until its own text changes. */
   hold(id: string): void;
   /** Resolves when nothing is at work or waiting any more. */
@@ -91,9 +98,16 @@ interface Entry {
   notes: string[];
   progress: CellReport["progress"];
   files: Set<string>;
-  stop: AbortController | null;
+  stop: Stop | null;
+  /** Whether its present outcome is what a stop left. */
+  stopped: boolean;
+  readonly memory: Memory;
+  readonly swept: Swept;
   shown: { readonly outcome: Outcome; readonly width: number; readonly parts: readonly Part[] | null; readonly fault: string | null } | null;
 }
+
+/** How a run can be ended by hand. `heard`: the run asks by itself whether it should end; `wanted`: it should; `obeyed`: it was told so. */
+interface Stop { readonly controller: AbortController; heard: boolean; wanted: boolean; obeyed: boolean }
 
 /** A cell whose last run took longer says that it is at work before it runs again. */
 const SLOW_MS = 25;
@@ -196,7 +210,14 @@ class NotebookEngine implements Engine {
   }
 
   stop(id: string): void {
-    this.#entries.get(id)?.stop?.abort();
+    const stop = this.#entries.get(id)?.stop;
+    if (stop === null || stop === undefined) return;
+    if (stop.heard && !stop.wanted) stop.wanted = true;
+    else stop.controller.abort();
+  }
+
+  goOn(id: string): void {
+    if (this.#entries.get(id)?.stopped === true) this.#rerun([id]);
   }
 
   hold(id: string): void {
@@ -248,7 +269,7 @@ class NotebookEngine implements Engine {
 
   dispose(): void {
     this.#disposed = true;
-    for (const entry of this.#entries.values()) entry.stop?.abort();
+    for (const entry of this.#entries.values()) entry.stop?.controller.abort();
     this.#graph.dispose();
   }
 
@@ -258,7 +279,7 @@ class NotebookEngine implements Engine {
     if (each === undefined) return;
     const known = this.#entries.get(id);
     const entry: Entry = known ?? {
-      id, mark: each.mark, inputs: each.inputs, state: "waiting", outcome: null, ranOn: null, run: {}, runs: 0, lastMs: 0, notes: [], progress: null, files: new Set(), stop: null, shown: null,
+      id, mark: each.mark, inputs: each.inputs, state: "waiting", outcome: null, ranOn: null, run: {}, runs: 0, lastMs: 0, notes: [], progress: null, files: new Set(), stop: null, stopped: false, memory: createMemory(), swept: new Map(), shown: null,
       node: this.#graph.node(id, { stale: () => this.#stale(id), value: (outcome) => this.#arrived(id, outcome) }),
     };
     entry.mark = each.mark;
@@ -268,7 +289,7 @@ class NotebookEngine implements Engine {
   }
 
   #remove(id: string, entry: Entry): void {
-    entry.stop?.abort();
+    entry.stop?.controller.abort();
     entry.node.remove();
     this.#entries.delete(id);
     this.#outstanding.delete(id);
@@ -322,19 +343,25 @@ class NotebookEngine implements Engine {
     const { run } = entry;
     const before = entry.ranOn;
     if (before !== null && before.run === run && entry.outcome !== null && before.inputs.length === inputs.length && before.inputs.every((each, i) => sameForReaders(each, inputs[i]))) return entry.outcome;
-    const stop = new AbortController();
+    const stop: Stop = { controller: new AbortController(), heard: false, wanted: false, obeyed: false };
     entry.stop = stop;
-    const either = AbortSignal.any([signal, stop.signal]);
+    entry.stopped = false;
+    const either = AbortSignal.any([signal, stop.controller.signal]);
     try {
       await this.#pace.breathe(signal);
       const cell = this.#cells.get(entry.id);
       const outcome = cell === undefined ? await this.#runNumber(entry, inputs, either) : await this.#runCell(entry, cell, inputs, either);
       if (signal.aborted) return outcome;
-      const kept = this.#sameAsBefore(entry, cell, outcome);
+      entry.memory.ended();
+      entry.stopped = stop.obeyed;
+      const kept = withCut(this.#sameAsBefore(entry, cell, outcome), cutOf(entry, stop), inputs);
       entry.ranOn = { run, inputs };
       return kept;
     } catch (error) {
-      if (stop.signal.aborted && !signal.aborted) return { ok: false, state: "failed", root: entry.id, message: "Stopped by hand. It runs again when something that it reads changes", at: null, notes: [] };
+      if (stop.controller.signal.aborted && !signal.aborted) {
+        entry.stopped = true;
+        return { ok: false, state: "failed", root: entry.id, message: "Stopped by hand. It runs again when something that it reads changes", at: null, notes: [] };
+      }
       if (error instanceof Overtaken || signal.aborted) return overtaken(entry.id);
       return { ok: false, state: "failed", root: entry.id, message: messageOf(error), at: null, notes: [] };
     } finally {
@@ -356,13 +383,13 @@ class NotebookEngine implements Engine {
     entry.state = "working";
     entry.notes = [];
     entry.files = new Set();
-    const blocked = definition.kind.body !== "claims" && inputs.some((each) => !each.ok);
+    const outcomes = new Map(entry.inputs.map((id, i) => [id, inputs[i]]));
+    const blocked = definition.kind.body !== "claims" && definition.needs.some((id) => outcomes.get(id)?.ok === false);
     if (!blocked) {
       entry.runs += 1;
       // Said at once where it may take long, for nothing can be said while it runs.
       if (entry.runs === 1 || entry.lastMs > SLOW_MS || definition.kind.body === "code") this.#send(this.#cellReport(entry.id));
     }
-    const outcomes = new Map(entry.inputs.map((id, i) => [id, inputs[i]]));
     const started = performance.now();
     this.#running.delete(entry.id);
     this.#running.set(entry.id, signal);
@@ -392,9 +419,9 @@ class NotebookEngine implements Engine {
     entry.runs += 1;
     const outcomes = new Map(entry.inputs.map((id, i) => [id, inputs[i]]));
     try {
-      const context = this.#quietContext(null, {}, undefined, signal);
-      const value = await evaluate(number.text.expression, { language: this.#language, library: this.#library, names: number.names, outcomes, label: (id) => this.#label(id), context });
-      return { ok: true, result: value, value, notes: [], claims: null };
+      const context = { ...this.#quietContext(null, {}, undefined, signal), recall: entry.memory.recall };
+      const value = await evaluate(number.text.expression, { language: this.#language, library: this.#library, names: number.names, outcomes, label: (id) => this.#label(id), context, whole: true });
+      return { ok: true, result: value, value, notes: [], claims: null, cutShort: null };
     } catch (error) {
       if (error instanceof Overtaken || signal.aborted) throw error;
       const message = error instanceof EvaluationError || !(error instanceof Undecided) ? messageOf(error) : `Undecided: ${error.message}`;
@@ -406,21 +433,31 @@ class NotebookEngine implements Engine {
     const aside = createAside({
       language: this.#language, library: this.#library, outcomes,
       definition: (id) => this.#cells.get(id)?.definition ?? null,
+      mark: (id) => this.#cells.get(id)?.mark ?? "",
       resolve: (name) => this.#plan?.resolve(name) ?? null,
       label: (id) => this.#label(id),
       setting: (id) => this.#settings.get(id),
       contextFor: (each, setting) => this.#quietContext(each.text.name, sourcesOf(each), setting, signal),
-    });
+    }, entry.swept);
+    const { stop } = entry;
+    const timeLeft = createTimeLeft();
     return {
       ...this.#quietContext(cell.text.name, sourcesOf(cell), this.#settings.get(cell.id), signal),
       read: (file) => { entry.files.add(file); return this.#host.read(file); },
       progress: (done, total, what = "") => {
         if (signal.aborted) return;
-        entry.progress = { done, total, what };
+        entry.progress = { done, total, what, leftMs: timeLeft(done, total) };
         this.#dirty.add(entry.id);
         this.#scheduleFlush();
       },
       note: (text) => { if (!entry.notes.includes(text)) entry.notes.push(text); },
+      recall: entry.memory.recall,
+      stopped: () => {
+        if (stop === null) return false;
+        stop.heard = true;
+        stop.obeyed ||= stop.wanted;
+        return stop.obeyed;
+      },
       recompute: aside,
       control: (name) => this.#controlFor(name),
     };
@@ -433,6 +470,8 @@ class NotebookEngine implements Engine {
       read: (file) => this.#host.read(file),
       progress: () => undefined,
       breathe: () => this.#pace.breathe(signal),
+      stopped: () => false,
+      recall: (_key, make) => make(),
       note: () => undefined,
       importCode: (code, inputs) => {
         const { importCode } = this.#host;
@@ -511,18 +550,25 @@ class NotebookEngine implements Engine {
     const { outcome } = entry;
     const base = {
       id, name: text.name, kind: text.kind, line: text.line, from: text.from, to: text.to, state: entry.state, message: null, at: null,
-      notes: [] as readonly string[], show: null, progress: entry.state === "working" ? entry.progress : null, fields: null, runs: entry.runs,
+      notes: [] as readonly string[], show: null, progress: entry.state === "working" ? entry.progress : null, fields: null, runs: entry.runs, stopped: false,
     };
     if (entry.state === "waiting" || entry.state === "working" || outcome === null) return base;
+    const { stopped } = entry;
     if (!outcome.ok) {
       if (outcome.state === "blocked") return { ...base, message: `blocked by ${this.#label(outcome.root)}, which failed` };
       if (problem !== null && cell.definition === null) return { ...base, message: problem.message, at: { line: problem.line, column: problem.column, from: problem.from, to: problem.to } };
-      return { ...base, message: outcome.message, at: this.#placeOf(cell, outcome.at), notes: outcome.notes };
+      return { ...base, message: outcome.message, at: this.#placeOf(cell, outcome.at), notes: outcome.notes, stopped };
     }
     const shown = this.#shown(entry);
     if (shown !== null && shown.fault !== null) return { ...base, state: "failed", message: shown.fault };
     const notes = [...outcome.notes, ...this.#textNotes(text.index), ...this.#droppedNote(id)];
-    return { ...base, notes, show: shown?.parts ?? null, fields: text.name === null || !this.#draw ? null : fieldsOf(text.name, outcome.value) };
+    return { ...base, notes, message: this.#cutWords(id, outcome.cutShort), stopped, show: shown?.parts ?? null, fields: text.name === null || !this.#draw ? null : fieldsOf(text.name, outcome.value) };
+  }
+
+  #cutWords(id: string, cut: CutShort | null): string | null {
+    if (cut === null) return null;
+    const rest = "Claims and live numbers that read it are undecided.";
+    return cut.root === id ? `Ended early by hand, ${farOf(cut)}. ${rest}` : `Rests on ${this.#label(cut.root)}, which was ended early by hand, ${farOf(cut)}. ${rest}`;
   }
 
   #textNotes(index: number): string[] {
@@ -628,6 +674,18 @@ function sourcesOf(cell: Definition): Readonly<Record<string, string>> {
 /** Readers see values only: a control may show another kept setting and still stand where it stood. */
 function sameForReaders(a: Outcome, b: Outcome): boolean {
   return a === b || (a.ok && b.ok && Object.is(a.value, b.value));
+}
+
+/** How far a run had come that obeyed a stop; null where it ran to its end. */
+function cutOf(entry: Entry, stop: Stop): CutShort | null {
+  return stop.obeyed ? { root: entry.id, done: entry.progress?.done ?? 0, total: entry.progress?.total ?? 0 } : null;
+}
+
+/** What rests on work that was cut short is cut short too. */
+function withCut(outcome: Outcome, own: CutShort | null, inputs: readonly Outcome[]): Outcome {
+  if (!outcome.ok) return outcome;
+  const cutShort = own ?? inputs.reduce<CutShort | null>((found, input) => found ?? (input.ok ? input.cutShort : null), null);
+  return cutShort === null ? outcome : { ...outcome, cutShort };
 }
 
 /** Dropped by the graph: the run that gave it has been overtaken. */

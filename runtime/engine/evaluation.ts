@@ -5,7 +5,7 @@ import { parseExpression } from "../text/expression.ts";
 import type { Compiled } from "./evaluate.ts";
 import { compile } from "./evaluate.ts";
 import type { LibraryScope } from "./library.ts";
-import type { Outcome } from "./outcome.ts";
+import type { CutShort, Outcome } from "./outcome.ts";
 import { EvaluationError, Missing, Pending, Undecided } from "./values.ts";
 
 /** Where a name comes from: a cell, or one of a script's exports. */
@@ -22,6 +22,8 @@ export interface EvaluationScope {
   /** What a kind called as a function gets. */
   readonly context: RunContext;
   readonly claim?: boolean;
+  /** Values of work that was ended early decide nothing: reading one leaves the whole undecided. */
+  readonly whole?: boolean;
 }
 
 /** An input that failed: a claim or a live number is then undecided. */
@@ -100,6 +102,7 @@ function lookup(name: string, scope: EvaluationScope, callables: WeakSet<object>
     const outcome = scope.outcomes.get(source.id);
     if (outcome === undefined) throw new EvaluationError(`\`${name}\` is not available here`);
     if (!outcome.ok) throw new InputFailed(outcome.root, `${scope.label(outcome.root)} failed`);
+    if (scope.whole === true && outcome.cutShort !== null) throw new Undecided(`${scope.label(outcome.cutShort.root)} was ended early, ${farOf(outcome.cutShort)}`);
     return source.part === null ? outcome.value : exported(outcome.value, source.part, name);
   }
   const kind = scope.library.callableKinds.get(name);
@@ -110,6 +113,11 @@ function lookup(name: string, scope: EvaluationScope, callables: WeakSet<object>
   }
   if (scope.library.values.has(name)) return scope.library.values.get(name);
   throw new EvaluationError(`There is no \`${name}\`: no cell and no library function has this name`);
+}
+
+/** "after 12 of 40". */
+export function farOf({ done, total }: CutShort): string {
+  return total > 0 ? `after ${done} of ${total}` : `after ${done}`;
 }
 
 function exported(value: unknown, part: string, name: string): unknown {

@@ -22,10 +22,12 @@ export interface CellReport {
   /** Remarks: gaps found, rows dropped. */
   readonly notes: readonly string[];
   readonly show: readonly Part[] | null;
-  readonly progress: { readonly done: number; readonly total: number; readonly what: string } | null;
+  readonly progress: { readonly done: number; readonly total: number; readonly what: string; /** Milliseconds, where the pace so far tells. */ readonly leftMs: number | null } | null;
   readonly fields: readonly Field[] | null;
   /** How many times it has run since the notebook was opened. */
   readonly runs: number;
+  /** The reader ended it early, and it can be told to go on. */
+  readonly stopped: boolean;
 }
 
 export interface NumberReport {
@@ -58,6 +60,10 @@ export type ToEngine =
   | { readonly to: "allowCode"; readonly allow: boolean }
   /** Do not run this cell: it fails with "stopped by the reader" until its own text changes. Sent before the text to a fresh worker. */
   | { readonly to: "hold"; readonly cell: string }
+  /** End this cell's work early, keeping what is done where it can. */
+  | { readonly to: "stop"; readonly cell: string }
+  /** Run a stopped cell again: it takes up what it has kept. */
+  | { readonly to: "goOn"; readonly cell: string }
   | { readonly to: "ping"; readonly beat: number };
 
 export type FromEngine =

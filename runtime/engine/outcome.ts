@@ -14,7 +14,12 @@ export interface Done {
   readonly notes: readonly string[];
   /** A `claims` cell's conclusions, in the order of the text. */
   readonly claims: readonly (ClaimOutcome & { readonly claim: string })[] | null;
+  /** Set where it rests on work that the reader ended early: no claim or number is decided by it. */
+  readonly cutShort: CutShort | null;
 }
+
+/** The cell whose work was ended early, and how far it had come. */
+export interface CutShort { readonly root: string; readonly done: number; readonly total: number }
 
 export interface NotDone {
   readonly ok: false;

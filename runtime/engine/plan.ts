@@ -53,7 +53,10 @@ export function planOf(notebook: Notebook, language: Language): Plan {
     const own = direct.get(id) ?? [];
     const wide = runs && cell.options.some((option) => Object.hasOwn(kind.options, option.name) && kind.options[option.name].taken === "expression");
     const inputs = runs ? (wide ? closure(own, direct) : own) : [];
-    const definition = runs ? { id, kind, text: cell, body, names: reads[i], reads: own } : null;
+    // What hangs on a control that is tried at other values need not stand at its present one.
+    const tried = wide ? cell.options.flatMap((option) => (kind.options[option.name]?.taken === "name" ? [...sourcesOf(cell.reads.filter((name) => option.source.includes(name)), owners, null).values()] : [])).map((source) => source.id) : [];
+    const needs = wide ? inputs.filter((input) => !closure([input], direct).some((each) => tried.includes(each)) || tried.includes(input)) : own;
+    const definition = runs ? { id, kind, text: cell, body, names: reads[i], reads: own, needs } : null;
     const mark = JSON.stringify([cell.kind, cell.name, body, runs ? null : problem?.code, [...reads[i]].map(([name, source]) => [name, source.id, source.part]), inputs]);
     return { id, text: cell, definition, problem, inputs, mark };
   });

@@ -18,6 +18,8 @@ export interface Definition {
   readonly names: NameSources;
   /** Ids of the cells that it reads. */
   readonly reads: readonly string[];
+  /** Those without which it cannot run. */
+  readonly needs: readonly string[];
 }
 
 export interface CellSurroundings {
@@ -35,7 +37,7 @@ export async function runCell(cell: Definition, around: CellSurroundings): Promi
   const scope: EvaluationScope = { ...around, names: cell.names };
   try {
     if (cell.kind.body === "claims") return await runClaims(cell, scope, around);
-    for (const id of cell.reads) {
+    for (const id of cell.needs) {
       const outcome = around.outcomes.get(id);
       if (outcome !== undefined && !outcome.ok) return { ok: false, state: "blocked", root: outcome.root, message: "", at: null, notes: [] };
     }
@@ -60,7 +62,7 @@ async function optionsOf(cell: Definition, scope: EvaluationScope): Promise<Read
 /** Claims are decided one by one: what one of them reads may have failed. */
 async function runClaims(cell: Definition, scope: EvaluationScope, around: CellSurroundings): Promise<Outcome> {
   const claims: (ClaimOutcome & { readonly claim: string })[] = [];
-  for (const option of cell.text.options) claims.push({ claim: option.name, ...await decide(option.source, { ...scope, claim: true }) });
+  for (const option of cell.text.options) claims.push({ claim: option.name, ...await decide(option.source, { ...scope, claim: true, whole: true }) });
   const given = Object.fromEntries(claims.map(({ claim, ...outcome }) => [claim, outcome]));
   return done(cell, await cell.kind.run(given as never, around.context), around, claims);
 }
@@ -88,7 +90,7 @@ function inputsOf(cell: Definition, around: CellSurroundings): Record<string, un
 
 function done(cell: Definition, result: unknown, around: CellSurroundings, claims: (ClaimOutcome & { readonly claim: string })[] | null): Outcome {
   const { kind } = cell;
-  return { ok: true, result, value: kind.value === undefined ? result : kind.value(result as never), notes: [...around.notes], claims };
+  return { ok: true, result, value: kind.value === undefined ? result : kind.value(result as never), notes: [...around.notes], claims, cutShort: null };
 }
 
 /** A fault met while an option was evaluated: it remembers which. */

@@ -31,6 +31,8 @@ function receive(message: ToEngine, engine: Engine, files: Files, scope: WorkerS
     case "width": return engine.setWidth(message.width);
     case "allowCode": return engine.setAllowCode(message.allow);
     case "hold": return engine.hold(message.cell);
+    case "stop": return engine.stop(message.cell);
+    case "goOn": return engine.goOn(message.cell);
     case "ping": return scope.postMessage({ from: "pong", beat: message.beat, running: engine.running() });
   }
 }

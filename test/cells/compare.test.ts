@@ -17,6 +17,35 @@ const run = async (options: Record<string, unknown>, source: Record<string, stri
 const steady = stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 12 }]);
 const numbered = (values: readonly number[]) => makeSeries({ name: "short", values: Float64Array.from(values) });
 
+describe("compare that the reader ends early", () => {
+  const stopAfter = (count: number) => { let done = 0; return { progress: () => { done++; }, stopped: () => done >= count }; };
+  test("shows the origins that all models finished, and says so before anything else", async () => {
+    const series = madeSeries();
+    // Two rules, both naive ones: two forecasts an origin.
+    const { result } = await run({ models: { naive: rule.naive(series), season: rule.seasonalNaive(series, 12) }, origins: 20, horizon: 2 }, {}, stopAfter(25));
+    expect(result).toMatchObject({ how: "origins", complete: false, done: 25, total: 40 });
+    expect(result.how === "origins" && result.origins.length).toBe(12);
+    const [first] = compare.show(result, show);
+    expect(first).toMatchObject({ part: "text", tone: "caution", text: "Stopped early: scored on the first 12 of 20 origins, which every model had finished." });
+  });
+  test("a grid, several grids and a grid on its way to held-out origins keep the orders that were tried", async () => {
+    for (const [options, tried, asked] of [[{ ar: 1, ma: 2 }, 4, 6], [{ ar: 1, ma: 2, season: [0, { ma: 1 }] }, 8, 12], [{ ar: 1, ma: 2, rank: "mase" }, 4, 6]] as const) {
+      const { result } = await run({ series: steady, ...options }, {}, stopAfter(tried));
+      expect(result).toMatchObject({ how: "criterion", complete: false, tried, asked });
+      expect(compare.show(result, show).some(part => part.part === "text" && part.tone === "caution" && part.text === `Stopped early: ${tried} of ${asked} orders were tried.`)).toBe(true);
+    }
+  });
+  test("what was computed from the same content is recalled by the cell's own memory", async () => {
+    const kept = new Map<string, unknown>(), series = madeSeries();
+    const recall = <T>(key: string, make: () => T): T => { if (!kept.has(key)) kept.set(key, make()); return kept.get(key) as T; };
+    const options = { models: { model: estimate({ series: steady, ma: 1 }), naive: rule.naive(series) }, origins: 6, horizon: 2 };
+    await run(options, {}, { recall });
+    const made = kept.size;
+    await run({ ...options, loss: "squared", rank: "crps" }, {}, { recall });
+    expect([made > 0, kept.size]).toEqual([true, made]);
+  });
+});
+
 describe("compare over a grid of orders", () => {
   test("fits every order, ranks by AICc, and reports progress by count", async () => {
     const { result, context } = await run({ series: steady, ar: 1, ma: 2 });

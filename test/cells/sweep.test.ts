@@ -49,6 +49,14 @@ describe("sweep", () => {
     expect(result.rows[2]).toMatchObject({ failed: "too few observations", measure: NaN });
     expect(texts(sweep.show(result as never, show))).toContain("1 value of order gave no result (3); the first said: too few observations");
   });
+  test("ended early, it shows the values that were tried, and says so first", async () => {
+    let asked = 0;
+    const context = madeContext({ source: { measure: "m" }, control: control([1, 2, 3, 4], 3), recompute: async (_, value) => value, stopped: () => ++asked > 1 });
+    const result = await sweep.run({ over: "order" } as never, context) as { rows: readonly unknown[]; asked: number };
+    expect([result.rows.length, result.asked]).toEqual([2, 4]);
+    expect(texts(sweep.show(result as never, show))).toContain("Stopped early: 2 of 4 values of order were tried.");
+    await expect(drawnCharts(sweep.show(result as never, show))).resolves.toHaveLength(1);
+  });
   test("stops when it is overtaken", async () => {
     const context = madeContext({ source: { measure: "m" }, control: control([1, 2, 3], 2), recompute: async () => 1, breathe: async () => { throw new Error("overtaken"); } });
     await expect(sweep.run({ over: "order" } as never, context)).rejects.toThrow("overtaken");

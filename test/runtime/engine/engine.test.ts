@@ -135,8 +135,51 @@ describe("recomputation", () => {
     expect(engine.running()).toBe("slow");
     engine.stop("slow");
     await engine.settle();
-    expect(at("slow")).toMatchObject({ state: "failed", message: expect.stringContaining("Stopped by hand") });
+    expect(at("slow")).toMatchObject({ state: "failed", message: expect.stringContaining("Stopped by hand"), stopped: true });
     expect(at("c").state).toBe("current");
+  });
+
+  const counting = cell("count: long", "to: 3000") + cell("double: after", "of: long.reached > 40 ? 40 : long.reached") + cell("claims:", '"it counted": long.reached > 0', '"two is two": 2 === 2') + "[3](=after.of)\n";
+  test("work that asks whether it should end keeps what it has done, and decides no claim and no number", async () => {
+    const { engine, cell: at } = await open("");
+    engine.setText(counting);
+    await new Promise((resolve) => { setTimeout(resolve, 60); });
+    engine.stop("long");
+    await engine.settle();
+    const { reached } = (at("long").fields ?? []).reduce<{ reached: number }>((found, field) => (field.expression === "long.reached" ? { reached: Number(field.value) } : found), { reached: 0 });
+    expect(reached).toBeGreaterThan(0);
+    expect(reached).toBeLessThan(3000);
+    expect(at("long")).toMatchObject({ state: "current", stopped: true, message: `Ended early by hand, after ${reached} of 3000. Claims and live numbers that read it are undecided.` });
+    // What rests on it is shown, and says so.
+    expect(at("after")).toMatchObject({ state: "current", stopped: false, message: expect.stringContaining("Rests on `long`, which was ended early by hand") });
+    expect(engine.claims()).toMatchObject([{ holds: null, message: `Undecided: \`long\` was ended early, after ${reached} of 3000` }, { holds: true }]);
+    expect(engine.numbers()).toMatchObject([{ state: "undecided", message: expect.stringContaining("`long` was ended early") }]);
+    expect(resultOf(engine, "n.md").ok).toBe(false);
+  });
+
+  test("it can be told to go on, and takes up what it had", async () => {
+    const { engine, cell: at } = await open("");
+    engine.setText(cell("count: long", "to: 60"));
+    await new Promise((resolve) => { setTimeout(resolve, 40); });
+    engine.stop("long");
+    await engine.settle();
+    const field = (name: string) => Number(at("long").fields?.find((each) => each.expression === `long.${name}`)?.value);
+    const first = field("reached");
+    engine.goOn("long");
+    await engine.settle();
+    expect(at("long")).toMatchObject({ state: "current", stopped: false, message: null });
+    expect(field("reached")).toBe(60);
+    expect(field("made")).toBe(60 - first);
+  });
+
+  test("told a second time, it is broken off", async () => {
+    const { engine, cell: at } = await open("");
+    engine.setText(cell("count: long", "to: 3000", "heeds: false"));
+    await new Promise((resolve) => { setTimeout(resolve, 30); });
+    engine.stop("long");
+    engine.stop("long");
+    await engine.settle();
+    expect(at("long")).toMatchObject({ state: "failed", stopped: true });
   });
 });
 
@@ -234,6 +277,34 @@ describe("function forms, claims, live numbers", () => {
 });
 
 describe("off to the side", () => {
+  test("a sweep whose own control moves computes nothing again; anything else that it hangs on makes it do so", async () => {
+    const text = cell("slider: a", "from: 0", "to: 3", "at: 2") + cell("slider: b", "from: 0", "to: 3", "at: 1") + cell("load: l", "file: `f${a}`") + cell("sweep: s", "over: a", "measure: `${l.text}${b}`");
+    const { engine, files, asked, cell: at } = await open("");
+    for (const i of [0, 1, 2, 3]) files.set(`f${i}`, `text ${i} `);
+    engine.setText(text);
+    await engine.settle();
+    const rows = () => (at("s").fields ?? []).filter((each) => each.expression.endsWith("measure")).map((each) => each.value);
+    expect(rows()).toEqual(["text 0 1", "text 1 1", "text 2 1", "text 3 1"]);
+    asked.length = 0;
+    engine.set("a", 3);
+    await engine.settle();
+    // The cell itself reads its file at the new place; nothing is read off to the side.
+    expect(asked).toEqual(["f3"]);
+    expect(rows()).toEqual(["text 0 1", "text 1 1", "text 2 1", "text 3 1"]);
+    engine.set("b", 2);
+    await engine.settle();
+    expect(asked).toEqual(["f3", "f0", "f1", "f2", "f3"]);
+    expect(rows()).toEqual(["text 0 2", "text 1 2", "text 2 2", "text 3 2"]);
+  });
+
+  test("a sweep runs though what it measures has failed at the control's present value", async () => {
+    const { cell: at } = await open(cell("slider: a", "from: 12", "to: 14", "at: 13") + cell("double: d", "of: a") + cell("sweep: s", "over: a", "measure: d?.twice") + cell("double: off", "of: 13") + cell("sweep: t", "over: a", "measure: a + off.twice"));
+    expect(at("d").state).toBe("failed");
+    // 13 itself has no measure, and the fake sweep lets no value fail; what fails without the control still blocks.
+    expect(at("s").message).not.toContain("blocked");
+    expect(at("t")).toMatchObject({ state: "blocked", message: "blocked by `off`, which failed" });
+  });
+
   test("sweep recomputes what hangs on a control and leaves the notebook alone", async () => {
     const { engine, cell: at, sent } = await open(chain + cell("values: k", "ten: 10") + cell("sweep: s", "over: a", "measure: c.twice + k.ten + a"));
     expect(at("s").fields?.filter((each) => each.expression.endsWith("measure")).map((each) => each.value)).toEqual([10, 15, 20, 25, 30, 35]);

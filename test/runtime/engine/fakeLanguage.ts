@@ -35,6 +35,23 @@ const double: Kind<{ of: number; slow?: number }, { of: number; twice: number }>
   show: (result) => [{ part: "text", text: `${result.twice}` }],
 };
 
+/** Counts up to a number in slices; asked to end early, it gives how far it came. Counts that it remembers take no time. */
+const count: Kind<{ to: number; heeds: boolean }, { reached: number; made: number }> = {
+  name: "count", sentence: "Counts.", body: "options", example: "to: 3", 
+  options: { to: { type: "integer", sentence: "how far", required: true }, heeds: { type: "boolean", sentence: "whether it does as it is asked", default: true } },
+  run: async (options, context) => {
+    let reached = 0, made = 0;
+    while (reached < options.to && !(context.stopped() && options.heeds)) {
+      reached = context.recall(`after ${reached}`, () => { made += 1; return reached + 1; });
+      context.progress(reached, options.to);
+      await context.breathe();
+      if (made > 0) await new Promise((resolve) => { setTimeout(resolve, 2); });
+    }
+    return { reached, made };
+  },
+  show: (result) => [{ part: "text", text: `${result.reached}` }],
+};
+
 async function slowly(slices: number, context: { breathe(): Promise<void>; progress(done: number, total: number): void }): Promise<void> {
   for (let i = 0; i < slices; i += 1) {
     context.progress(i, slices);
@@ -74,7 +91,7 @@ const sweep: Kind<{ over: string; measure: string }, { rows: unknown[] }> = {
 };
 
 export const fake: Language = {
-  kinds: [slider, double, values, claims, script, load, sweep] as unknown as readonly AnyKind[],
+  kinds: [slider, double, count, values, claims, script, load, sweep] as unknown as readonly AnyKind[],
   library: [
     { name: "sum", signature: "sum(list)", sentence: "Sum.", topic: "plain", call: (list) => Array.from(list as ArrayLike<number>).reduce((a, b) => a + b, 0) },
     { name: "log", signature: "log(x)", sentence: "Logarithm.", topic: "plain", call: (x) => (x === undefined ? { step: "log" } : Math.log(x as number)) },

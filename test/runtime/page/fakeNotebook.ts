@@ -132,7 +132,7 @@ export function fakeNotebook(points = n): FakeNotebook {
         message: failed ? "There is no cell or function named nothing. Did you mean noting?" : blocked ? "It needs broken, which failed." : null,
         at: failed ? { line: line + 1, column: 9, from: from + 20, to: from + 27 } : null,
         notes: name === "crossings" ? ["2 months were absent from the file and count as missing: 2011-02, 2016-11."] : [],
-        show: failed || blocked ? null : show(kind, name), progress: null, fields: name === "airline" ? [{ expression: "airline.aicc", value: -483.2 + order() }, { expression: "airline.theta[0]", value: -0.4018 }, { expression: "ljungBox(airline, 24).p", value: 0.3127 }, { expression: "airline.label", value: "ARMA(0,1)(0,1)_12" }] : [], runs: 1,
+        show: failed || blocked ? null : show(kind, name), progress: null, fields: name === "airline" ? [{ expression: "airline.aicc", value: -483.2 + order() }, { expression: "airline.theta[0]", value: -0.4018 }, { expression: "ljungBox(airline, 24).p", value: 0.3127 }, { expression: "airline.label", value: "ARMA(0,1)(0,1)_12" }] : [], runs: 1, stopped: false,
       });
     }
     return found;

@@ -4,7 +4,7 @@ import { pageState } from "../../../runtime/page/pageState.ts";
 import { settings } from "../../../runtime/page/settings.ts";
 import { cellPatienceMs, patienceMs, watchdog } from "../../../runtime/page/watchdog.ts";
 
-const report = (given: Partial<CellReport>): CellReport => ({ id: "a", name: "a", kind: "fit", line: 3, from: 0, to: 1, state: "current", message: null, at: null, notes: [], show: [], progress: null, fields: [], runs: 1, ...given });
+const report = (given: Partial<CellReport>): CellReport => ({ id: "a", name: "a", kind: "fit", line: 3, from: 0, to: 1, state: "current", message: null, at: null, notes: [], show: [], progress: null, fields: [], runs: 1, stopped: false, ...given });
 
 function dogWith(...cells: CellReport[]) {
   const state = pageState(); let now = 0; let changes = 0;
