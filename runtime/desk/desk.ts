@@ -78,7 +78,6 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
       case "keep": edits.keep(message.name, message.value); later.now(); return;
       case "accept": if (message.version === version) { later.now(); edits.accept(message.numbers); later.now(); } return;
       case "outline": case "states": problems.hear(message); underlineLater(); return;
-      case "settled": underlineLater(); return;
       case "saveFile": saveFile(message); return;
       case "openLink": if (/^(https?|mailto):/i.test(message.href)) window.open(message.href, "_blank", "noopener,noreferrer"); return;
       case "key": keys.press(message); return;

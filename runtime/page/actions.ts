@@ -22,6 +22,7 @@ export interface Actions {
   startAgain(): void;
   save(key: string, as: "svg" | "png" | "csv"): void;
   asTable(key: string): void;
+  fields(cell: string, open: boolean): void;
   /** A link to the outside; true when it was taken care of. */
   link(href: string): boolean;
   key(event: KeyboardEvent): boolean;
@@ -35,6 +36,7 @@ export function listen(root: HTMLElement, actions: Actions): void {
     if (block?.dataset.block !== undefined) actions.sourceOfBlock(block.dataset.block);
   });
   root.addEventListener("input", (event) => onInput(event, actions));
+  root.addEventListener("toggle", (event) => { const { fields } = (event.target as HTMLDetailsElement).dataset; if (fields !== undefined) actions.fields(fields, (event.target as HTMLDetailsElement).open); }, true);
   root.addEventListener("change", (event) => {
     const field = event.target as HTMLInputElement;
     const end = field.dataset?.act === "window-from" ? "from" : field.dataset?.act === "window-to" ? "to" : null;

@@ -21,6 +21,8 @@ export interface CellContext {
   readonly fault: (name: string) => string | null;
   /** Whether the chart's or table's data are shown as a table. */
   readonly asTable: (key: string) => boolean;
+  /** Whether the cell's list of fields is unfolded: folded, it is not drawn at all. */
+  readonly fieldsOpen: (id: string) => boolean;
   /** Whether stopping this cell should be offered. */
   readonly canStop: (id: string) => boolean;
 }
@@ -125,9 +127,9 @@ function stillControl(part: Extract<Part, { part: "control" }>): Tree {
 
 function fieldsTree(cell: CellReport, context: CellContext): Given {
   if (context.still || !cell.fields || cell.fields.length === 0 || cell.state === "failed" || cell.state === "blocked") return null;
-  return h("details", { class: "fields" },
+  return h("details", { class: "fields", "data-fields": cell.id },
     h("summary", {}, "fields of this cell"),
-    h("ul", {}, cell.fields.map(({ expression, value }) => {
+    context.fieldsOpen(cell.id) && h("ul", {}, cell.fields.map(({ expression, value }) => {
       const link = fieldLink(expression, value);
       return h("li", {}, h("code", {}, link), h("button", { type: "button", class: "quiet", "data-act": "copy", "data-text": link, "aria-label": `copy ${expression}` }, "copy"));
     })));

@@ -1,4 +1,4 @@
-// All charts of the page: made when first seen, kept while their shape stays, redrawn only while in sight.
+// All charts of the page: made when first near to the view, kept while their shape stays, redrawn only while they are near.
 
 import { chartCompiler, makeChart } from "./chart.ts";
 import type { Chart } from "./chart.ts";
@@ -10,18 +10,18 @@ import type { ChartPart } from "../../cells/parts/part.ts";
 export interface Charts {
   mounted(key: string, element: HTMLElement): void;
   unmounted(key: string): void;
-  /** What a chart should show now; drawn at once if it is in sight. */
+  /** What a chart should show now; drawn at once if it is near. */
   want(key: string, part: ChartPart): void;
   part(key: string): ChartPart | null;
   svg(key: string): Promise<string | null>;
   /** Draws those out of sight too: the page is about to be printed. */
   drawAll(): void;
-  /** Resolves when every chart in sight shows what it should. */
+  /** Resolves when every chart near the view shows what it should. */
   drawn(): Promise<void>;
 }
 
 interface Place {
-  readonly element: HTMLElement; part: ChartPart | null; seen: boolean; near: boolean; width: number; later: number;
+  readonly element: HTMLElement; part: ChartPart | null; near: boolean; width: number;
   chart: Chart | null; shape: string; shown: ChartPart | null; shownWidth: number;
   /** Set while drawing; a newer wish waits for it, and only the newest is drawn. */
   busy: Promise<void> | null;
@@ -36,9 +36,6 @@ export function charts(announce: (words: string) => void): Charts {
   const near = new IntersectionObserver((entries) => {
     for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.near = entry.isIntersecting; void draw(place); } }
   }, { rootMargin: "400px 0px" });
-  const inView = new IntersectionObserver((entries) => {
-    for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.seen = entry.isIntersecting; if (place.seen) void draw(place); } }
-  });
   // Widths are taken from here only: asking an element for its width in the middle of a drawing makes the browser lay the page out at once.
   const sizes = new ResizeObserver((entries) => { for (const entry of entries) { const place = byElement.get(entry.target); if (place) { place.width = Math.floor(entry.contentRect.width); void draw(place); } } });
 
@@ -46,12 +43,6 @@ export function charts(announce: (words: string) => void): Charts {
     if (place.busy) return place.busy;
     place.busy = redraw(place).finally(() => { place.busy = null; });
     return place.busy;
-  }
-
-  /** Charts just out of sight wait until the hand that moves a control rests. */
-  function drawLater(place: Place): void {
-    clearTimeout(place.later);
-    place.later = window.setTimeout(() => { void draw(place); }, 150);
   }
 
   async function redraw(place: Place): Promise<void> {
@@ -85,18 +76,18 @@ export function charts(announce: (words: string) => void): Charts {
 
   return {
     mounted(key, element) {
-      const place: Place = { element, part: null, seen: false, near: false, width: 0, later: 0, chart: null, shape: "", shown: null, shownWidth: 0, busy: null,
+      const place: Place = { element, part: null, near: false, width: 0, chart: null, shape: "", shown: null, shownWidth: 0, busy: null,
         pointer: chartPointer(element, (): readonly Reading[] => places.get(key)?.chart?.readings() ?? [], announce) };
       places.set(key, place); byElement.set(element, place);
-      near.observe(element); inView.observe(element); sizes.observe(element);
+      near.observe(element); sizes.observe(element);
     },
     unmounted(key) {
       const place = places.get(key);
       if (!place) return;
-      clearTimeout(place.later); near.unobserve(place.element); inView.unobserve(place.element); sizes.unobserve(place.element);
+      near.unobserve(place.element); sizes.unobserve(place.element);
       place.pointer.leave(); place.chart?.destroy(); places.delete(key);
     },
-    want(key, part) { const place = places.get(key); if (place && place.part !== part) { place.part = part; if (place.seen || place.chart === null) void draw(place); else drawLater(place); } },
+    want(key, part) { const place = places.get(key); if (place && place.part !== part) { place.part = part; void draw(place); } },
     part: (key) => places.get(key)?.part ?? null,
     async svg(key) { const place = places.get(key); if (!place) return null; await place.busy; return place.chart ? place.chart.svg() : null; },
     drawAll() { for (const place of places.values()) { place.near = true; void draw(place); } },

@@ -9,7 +9,9 @@ import { focusKeeper } from "./focus.ts";
 import { hear, pageState } from "./pageState.ts";
 import { pageActions } from "./pageActions.ts";
 import type { PageUi } from "./pageActions.ts";
+import { paces } from "./paces.ts";
 import { pageTrees, summary } from "./pageTrees.ts";
+import { outOfSight } from "./sight.ts";
 import { controlOf, settings as settingsOf } from "./settings.ts";
 import { stripTree } from "./strip.ts";
 import { h } from "./tree.ts";
@@ -18,7 +20,7 @@ import { watchdog } from "./watchdog.ts";
 import type { FromPage, ParentLink, ToPage } from "./protocol.ts";
 import { stillPost } from "./stillPost.ts";
 import { statesPost } from "./statesPost.ts";
-import type { FromEngine, ToEngine } from "../engine/messages.ts";
+import type { CellReport, FromEngine, ToEngine } from "../engine/messages.ts";
 import css from "./page.css";
 
 export interface PageOptions {
@@ -48,7 +50,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   voice.setAttribute("aria-live", "polite"); voice.setAttribute("role", "status");
 
   const state = pageState();
-  const ui: PageUi = { canEdit: false, stripOpen: !matchMedia("(max-width: 640px)").matches, tables: new Set(), faults: new Map(), broken: null };
+  const ui: PageUi = { canEdit: false, stripOpen: !matchMedia("(max-width: 640px)").matches, tables: new Set(), fields: new Set(), faults: new Map(), broken: null };
   const files = new Map<string, Extract<ToEngine, { to: "file" }>>();
   /** Cells that the reader stopped, with their source then: one that was edited since may run again. */
   const held = new Map<string, string>();
@@ -63,12 +65,13 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   const keepFocus = focusKeeper(root);
   const states = statesPost(state, post);
   const stills = stillPost(state, post);
-  const dog = watchdog(state, () => schedule());
+  const pace = paces(draw), away = outOfSight(article);
+  const dog = watchdog(state, pace.frame);
   const engine = engineLink(workerSource, {
     hear: fromEngine, silent: (ms) => dog.silent(ms), answered: (running) => dog.answered(running),
-    broken: (message) => { ui.broken = message; schedule(); },
+    broken: (message) => { ui.broken = message; pace.frame(); },
   });
-  const settings = settingsOf((message) => engine.send(message));
+  const settings = settingsOf((message) => { root.dataset.drawn = "no"; engine.send(message); });
 
   function fromEngine(message: FromEngine): void {
     if (message.from === "need") {
@@ -81,36 +84,29 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
     if (message.from === "outline") { document.title = message.title; post({ page: "outline", version: message.version, title: message.title, problems: message.problems }); }
     if (message.from === "settled") { settings.settled(message.moved); post({ page: "settled", version: message.version, moved: message.moved }); sayLater(); stills.settled(); }
     states.note(message);
-    if (message.from === "settled") drawSoon();
-    else if (message.from === "cell" && (message.cell.state === "working" || message.cell.state === "waiting")) scheduleLater();
-    else schedule();
+    if (message.from === "outline") pace.frame();
+    else { if (message.from === "cell" && !waits(message.cell)) pace.sight(); pace.rest(); }
   }
 
-  let frame = 0;
+  /** Not worth a drawing of its own: out of sight, or at work for what mostly is a few frames. The strip shows controls wherever the reader is. */
+  const waits = (cell: CellReport): boolean => cell.state === "working" || cell.state === "waiting" || (away(cell.id) && controlOf(cell) === null);
   let done: Promise<void> = Promise.resolve();
-  let drawnAt = 0;
-  function schedule(): void { if (frame === 0) frame = requestAnimationFrame(draw); }
-  /** Everything that a move touched has come: drawn now rather than at the next frame, the work is done before that frame is due. */
-  function drawSoon(): void {
-    if (performance.now() - drawnAt < 6) { schedule(); return; }
-    cancelAnimationFrame(frame);
-    draw();
-  }
-  /** For what is not worth a drawing of its own unless it lasts: a cell that has begun to work mostly ends within a few frames,
-   *  and a moved control is shown moved with the answer. */
-  let waiting = 0;
-  function scheduleLater(): void { if (waiting === 0) waiting = window.setTimeout(() => { waiting = 0; schedule(); }, 90); }
-  function draw(): void {
-    frame = 0; drawnAt = performance.now();
-    clearTimeout(waiting); waiting = 0;
+  function draw(only: "sight" | "all"): void {
+    const later = only === "sight" ? waits : () => false;
     keepFocus(() => {
-      drawArticle(trees.blocks(state, { canEdit: ui.canEdit, still: false, pending: settings.pending, fault: (name) => ui.faults.get(name) ?? null, asTable: (key) => ui.tables.has(key), canStop: (id) => dog.canStop(id) }));
+      drawArticle(trees.blocks(state, { canEdit: ui.canEdit, still: false, pending: settings.pending, fault: (name) => ui.faults.get(name) ?? null, asTable: (key) => ui.tables.has(key), fieldsOpen: (id) => ui.fields.has(id), canStop: (id) => dog.canStop(id) }, later));
       const controls = [...state.cells.values()].flatMap((cell) => { const part = controlOf(cell); return part && cell.name !== null ? [{ name: cell.name, part, pending: settings.pending(cell.name), fault: ui.faults.get(cell.name) ?? null, from: cell.from }] : []; }).sort((a, b) => a.from - b.from);
       drawRest([noticeTree(dog.notice(), ui.broken), stripTree(controls, ui.stripOpen, Object.keys(state.moved), ui.canEdit)].filter((tree) => tree !== null));
     });
-    for (const cell of state.cells.values()) for (const [index, part] of (cell.show ?? []).entries()) if (part.part === "chart") charts.want(chartKey(cell.id, index), part);
+    for (const cell of state.cells.values()) if (!later(cell)) for (const [index, part] of (cell.show ?? []).entries()) if (part.part === "chart") charts.want(chartKey(cell.id, index), part);
     done = charts.drawn();
-    if (state.settled && still?.isConnected) void done.then(() => { still.remove(); live.classList.remove("getting-ready"); });
+    if (only === "all" && state.settled && state.version === (text?.version ?? 0)) void done.then(complete);
+  }
+
+  /** Everything is drawn as the text and the controls say: whoever waits for it may look. */
+  function complete(): void {
+    root.dataset.drawn = "yes";
+    if (still?.isConnected) { still.remove(); live.classList.remove("getting-ready"); }
   }
 
   let saying = 0;
@@ -127,23 +123,23 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
 
   function fromParent(message: ToPage): void {
     switch (message.to) {
-      case "text": text = message; engine.send({ to: "text", version: message.version, text: message.text }); break;
+      case "text": text = message; root.dataset.drawn = "no"; engine.send({ to: "text", version: message.version, text: message.text }); break;
       case "file": { const file: Extract<ToEngine, { to: "file" }> = { to: "file", file: message.file, bytes: message.bytes, ...(message.reason === undefined ? {} : { reason: message.reason }) }; files.set(message.file, file); engine.send(file); break; }
       case "allowCode": allow = message.allow; engine.send({ to: "allowCode", allow }); break;
       case "set": settings.set(message.name, message.value); break;
       case "unset": settings.unset(message.name); break;
       case "theme": if (message.theme === "auto") delete document.documentElement.dataset.theme; else document.documentElement.dataset.theme = message.theme; break;
       case "reveal": actions.reveal(message.position); break;
-      case "canEdit": ui.canEdit = message.canEdit; root.classList.toggle("can-edit", message.canEdit); schedule(); break;
+      case "canEdit": ui.canEdit = message.canEdit; root.classList.toggle("can-edit", message.canEdit); pace.frame(); break;
       case "sendStills": stills.ask(); break;
       case "restart": engine.restart(); sayAllAgain(); break;
     }
   }
 
   const actions = pageActions({
-    root, state, ui, settings, charts, post, schedule, scheduleLater, announce, alone: parent === null,
-    stop(cell) { const { from, to } = state.cells.get(cell) ?? { from: 0, to: 0 }; held.set(cell, text?.text.slice(from, to) ?? ""); engine.restart(); sayAllAgain(); schedule(); },
-    startAgain() { engine.restart(); sayAllAgain(); schedule(); },
+    root, state, ui, settings, charts, post, pace, announce, alone: parent === null,
+    stop(cell) { const { from, to } = state.cells.get(cell) ?? { from: 0, to: 0 }; held.set(cell, text?.text.slice(from, to) ?? ""); engine.restart(); sayAllAgain(); pace.frame(); },
+    startAgain() { engine.restart(); sayAllAgain(); pace.frame(); },
   });
   listen(root, actions);
   watchSize(article, (width) => engine.send({ to: "width", width }), live, (height) => post({ page: "height", height }));

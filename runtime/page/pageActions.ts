@@ -5,6 +5,7 @@ import { chartCsv, tableCsv } from "./chartData.ts";
 import type { Charts } from "./charts.ts";
 import { copyText } from "./copyText.ts";
 import type { PageState } from "./pageState.ts";
+import type { Paces } from "./paces.ts";
 import type { FromPage } from "./protocol.ts";
 import { fileName, pngOf, standaloneSvg } from "./savePicture.ts";
 import { controlOf } from "./settings.ts";
@@ -18,6 +19,8 @@ export interface PageUi {
   stripOpen: boolean;
   /** Keys of charts whose data are shown as a table. */
   readonly tables: Set<string>;
+  /** Ids of cells whose fields are unfolded. */
+  readonly fields: Set<string>;
   /** What is wrong with a typed date, by control. */
   readonly faults: Map<string, string>;
   /** Why the worker stopped; null while it stands. */
@@ -26,7 +29,7 @@ export interface PageUi {
 
 export interface PageHands {
   readonly root: HTMLElement; readonly state: PageState; readonly ui: PageUi; readonly settings: Settings; readonly charts: Charts;
-  post(message: FromPage): void; schedule(): void; scheduleLater(): void; announce(words: string): void;
+  post(message: FromPage): void; readonly pace: Paces; announce(words: string): void;
   readonly alone: boolean;
   stop(cell: string): void; startAgain(): void;
 }
@@ -35,14 +38,14 @@ export interface PageHands {
 const parentKeys = new Set(["s", "z", "y", "e", "b", "o", "p", "\\", "1", "2", "3", "/"]);
 
 export function pageActions(hands: PageHands): Actions & { reveal(position: number): void } {
-  const { root, state, ui, settings, charts, post, schedule, scheduleLater, announce } = hands;
+  const { root, state, ui, settings, charts, post, pace, announce } = hands;
 
   const control = (name: string): ControlPart | null => controlOf([...state.cells.values()].find((cell) => cell.name === name));
   const windowOf = (name: string): { part: WindowPart; span: Span } | null => {
     const part = control(name);
     return part?.control === "window" ? { part, span: (settings.pending(name) as Span | undefined) ?? part.at } : null;
   };
-  const set = (name: string, value: unknown): void => { ui.faults.delete(name); settings.set(name, value); scheduleLater(); };
+  const set = (name: string, value: unknown): void => { ui.faults.delete(name); settings.set(name, value); pace.rest(); };
   const partAt = (key: string): Part | null => {
     const cut = key.lastIndexOf("/");
     return state.cells.get(key.slice(0, cut))?.show?.[Number(key.slice(cut + 1))] ?? null;
@@ -79,15 +82,15 @@ export function pageActions(hands: PageHands): Actions & { reveal(position: numb
       const span = time === null ? null : { ...found.span, [end]: time };
       if (span === null || times.indexOf(span.from) > times.indexOf(span.to)) {
         ui.faults.set(name, span === null ? `The series has no period ${text}; it runs from ${times[0]} to ${times[times.length - 1]}.` : `The window would end before it starts: ${span.from} to ${span.to}.`);
-        schedule();
+        pace.frame();
       } else set(name, span);
     },
     windowMoved(name, grip, steps, start) { const found = windowOf(name); if (found) set(name, moveSpan(found.part.times, start, grip, steps)); },
     windowAt(name) { const found = windowOf(name); return found ? { span: found.span, periods: found.part.times.length, season: seasonOf(found.part.every) } : null; },
-    back(name) { ui.faults.delete(name); settings.unset(name); schedule(); },
-    allBack() { for (const name of Object.keys(state.moved)) settings.unset(name); ui.faults.clear(); schedule(); },
+    back(name) { ui.faults.delete(name); settings.unset(name); pace.frame(); },
+    allBack() { for (const name of Object.keys(state.moved)) settings.unset(name); ui.faults.clear(); pace.frame(); },
     keep(name) { const part = control(name); if (part) post({ page: "keep", name, value: settings.pending(name) ?? part.at }); },
-    strip() { ui.stripOpen = !ui.stripOpen; schedule(); },
+    strip() { ui.stripOpen = !ui.stripOpen; pace.frame(); },
     copy(text, button) {
       void copyText(text).then((done) => {
         announce(done ? "copied" : "Could not copy; select the text and copy it by hand.");
@@ -97,7 +100,8 @@ export function pageActions(hands: PageHands): Actions & { reveal(position: numb
     },
     stop: hands.stop, startAgain: hands.startAgain,
     save(key, as) { save(key, as).catch((error: unknown) => announce(`The picture could not be saved: ${error instanceof Error ? error.message : String(error)}`)); },
-    asTable(key) { if (!ui.tables.delete(key)) ui.tables.add(key); schedule(); },
+    asTable(key) { if (!ui.tables.delete(key)) ui.tables.add(key); pace.frame(); },
+    fields(cell, open) { if (open) ui.fields.add(cell); else ui.fields.delete(cell); pace.frame(); },
     link(href) { if (hands.alone) return false; post({ page: "openLink", href }); return true; },
     key(event) {
       const forward = ((event.ctrlKey || event.metaKey) && parentKeys.has(event.key.toLowerCase())) || event.key === "F6";

@@ -7,13 +7,16 @@ import type { Tree } from "./tree.ts";
 import type { Node, PageState } from "./pageState.ts";
 import { anchor, headingPrefix, prose, wordsOf } from "./prose.ts";
 import type { ProseContext } from "./prose.ts";
-import type { NumberReport } from "../engine/messages.ts";
+import type { CellReport, NumberReport } from "../engine/messages.ts";
 
 type Definition = Extract<Node, { type: "definition" }>;
 type Footnote = Extract<Node, { type: "footnoteDefinition" }>;
 
 /** Keeps the tree of every block whose inputs stayed the same, so that only what changed is drawn. */
-export interface PageTrees { blocks(state: PageState, context: CellContext): readonly Tree[] }
+export interface PageTrees {
+  /** @param later whether a cell may stay as it was drawn before, for now */
+  blocks(state: PageState, context: CellContext, later?: (cell: CellReport) => boolean): readonly Tree[];
+}
 
 interface Kept { readonly inputs: readonly unknown[]; readonly tree: Tree }
 
@@ -23,7 +26,7 @@ export function pageTrees(): PageTrees {
   let sharedFor: unknown = null;
   const parts: PartTrees = new WeakMap();
   return {
-    blocks(state, context) {
+    blocks(state, context, later = () => false) {
       // A new outline is a new list: only then can definitions, notes and anchors differ.
       if (shared === null || sharedFor !== state.blocks) { shared = sharedContext(state); sharedFor = state.blocks; }
       const common = shared;
@@ -43,9 +46,11 @@ export function pageTrees(): PageTrees {
         if (block.block === "cell") {
           const cell = state.cells.get(block.cell);
           if (!cell) continue;
+          const key = `cell ${cell.id}`, before = kept.get(key);
+          if (before && later(cell)) { next.set(key, before); trees.push(before.tree); continue; }
           const name = cell.name ?? "";
           const tables = (cell.show ?? []).map((_, i) => context.asTable(`${cell.id}/${i}`)).join();
-          trees.push(keep(`cell ${cell.id}`, [cell, context.canEdit, context.pending(name), context.fault(name), tables, context.canStop(cell.id)], () => cellTree(cell, `cell ${cell.id}`, context, parts)));
+          trees.push(keep(key, [cell, context.canEdit, context.pending(name), context.fault(name), tables, context.fieldsOpen(cell.id), context.canStop(cell.id)], () => cellTree(cell, key, context, parts)));
           continue;
         }
         const node = state.nodes.get(block.key);

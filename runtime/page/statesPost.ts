@@ -2,16 +2,25 @@
 
 import type { CellNote, FromPage } from "./protocol.ts";
 import type { PageState } from "./pageState.ts";
-import type { CellReport, FromEngine } from "../engine/messages.ts";
+import type { CellReport, FromEngine, NumberReport } from "../engine/messages.ts";
 
 export function statesPost(state: PageState, post: (message: FromPage) => void): { note(message: FromEngine): void } {
   const cells = new Set<string>(); const numbers = new Set<number>();
+  /** What was said last, as text: a cell that ran and stands as it stood is nothing to tell. */
+  const said = new Map<string | number, string>();
   let all = false; let timer = 0;
+  const news = (note: CellNote | NumberReport): boolean => {
+    const key = "id" in note ? note.id : note.index, now = JSON.stringify(note);
+    if (said.get(key) === now) return false;
+    said.set(key, now);
+    return true;
+  };
   const send = (): void => {
     timer = 0;
-    const spoken = all ? [...state.cells.values()] : [...cells].map((id) => state.cells.get(id)).filter((cell) => cell !== undefined);
-    const said = all ? [...state.numbers.values()] : [...numbers].map((index) => state.numbers.get(index)).filter((number) => number !== undefined);
-    post({ page: "states", version: state.version, all, cells: spoken.map(noteOf), numbers: said });
+    if (all) said.clear();
+    const spoken = (all ? [...state.cells.values()] : [...cells].flatMap((id) => state.cells.get(id) ?? [])).map(noteOf).filter(news);
+    const counted = (all ? [...state.numbers.values()] : [...numbers].flatMap((index) => state.numbers.get(index) ?? [])).filter(news);
+    if (all || spoken.length + counted.length > 0) post({ page: "states", version: state.version, all, cells: spoken, numbers: counted });
     cells.clear(); numbers.clear(); all = false;
   };
   return {
@@ -21,7 +30,7 @@ export function statesPost(state: PageState, post: (message: FromPage) => void):
       else if (message.from === "number") numbers.add(message.number.index);
       else return;
       // A timer, not an animation frame: those stand still while the desk hides the page.
-      if (timer === 0) timer = window.setTimeout(send, 16);
+      if (timer === 0) timer = window.setTimeout(send, 40);
     },
   };
 }

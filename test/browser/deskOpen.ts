@@ -89,14 +89,13 @@ export async function openDesk(context: BrowserContext, url: string): Promise<De
   return { page, frame: await pageOf(page), faults };
 }
 
-/** The page's frame, once nothing in it is at work. */
+/** The page's frame, once it has drawn all that the text and the controls say. */
 export async function pageOf(page: Page): Promise<Frame> {
   const handle = await page.waitForSelector("#frame", { state: "attached" });
   for (;;) {
     const frame = await handle.contentFrame();
     if (frame && frame.url() !== "about:blank") {
-      await frame.waitForSelector("[data-state=current], [data-state=failed]", { state: "attached" });
-      await frame.waitForFunction(() => document.querySelector("[data-state=working], [data-state=waiting]") === null);
+      await frame.waitForSelector("#page[data-drawn=yes]", { state: "attached" });
       return frame;
     }
     await page.waitForTimeout(20);

@@ -34,8 +34,7 @@ const claims = async (): Promise<string> => (await frame.locator("[data-kind=cla
 const live = (text: string): Promise<number> => frame.locator(".live.moved").filter({ hasText: text }).count();
 const move = async (value: string): Promise<void> => {
   await frame.locator("#strip-q").fill(value);
-  await frame.waitForFunction(() => document.querySelector("[data-state=working], [data-state=waiting]") === null);
-  await page.waitForTimeout(200);
+  await frame.waitForSelector("#page[data-drawn=yes]", { state: "attached" });
 };
 
 describe("the main example", () => {

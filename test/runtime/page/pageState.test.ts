@@ -7,8 +7,8 @@ import { stillCharts } from "../../../runtime/page/stillCharts.ts";
 import { fakeNotebook, fakeText } from "./fakeNotebook.ts";
 
 const messages = fakeNotebook().answer({ to: "text", version: 1, text: fakeText });
-const context = { canEdit: true, still: false, pending: () => undefined, fault: () => null, asTable: () => false, canStop: () => false };
-const cell = (given: Partial<CellReport>): FromEngine => ({ from: "cell", cell: { id: "a", name: "a", kind: "fit", line: 1, from: 0, to: 1, state: "current", message: null, at: null, notes: [], show: [], progress: null, fields: [], runs: 1, ...given } });
+const context = { canEdit: true, still: false, pending: () => undefined, fault: () => null, asTable: () => false, fieldsOpen: () => false, canStop: () => false };
+const cell = (given: Partial<CellReport>): FromEngine => ({ from: "cell", cell: { id: "a", name: "a", kind: "fit", line: 1, from: 0, to: 1, state: "current", message: null, at: null, notes: [], show: [], progress: null, fields: [], runs: 1, stopped: false, ...given } });
 
 describe("hear", () => {
   it("keeps the last result in view while a cell is at work, and drops it when the cell fails", () => {
@@ -43,6 +43,30 @@ describe("pageTrees", () => {
     const after = trees.blocks(state, context);
     expect(after.length).toBe(before.length);
     expect(after.filter((tree, i) => tree !== before[i]).map((tree) => tree.attributes.id)).toEqual(["cell-airline"]);
+  });
+
+  it("leaves a cell that may wait as it was drawn, and draws it when it may no longer", () => {
+    const state = stateAfter(messages);
+    const trees = pageTrees();
+    const before = trees.blocks(state, context);
+    const airline = state.cells.get("airline");
+    if (!airline) throw new Error("no airline");
+    state.cells.set("airline", { ...airline, state: "working" });
+    const unlike = (after: readonly unknown[]): number => after.filter((tree, i) => tree !== before[i]).length;
+    expect(unlike(trees.blocks(state, context, (cell) => cell.state === "working"))).toBe(0);
+    expect(unlike(trees.blocks(state, context))).toBe(1);
+    // One that was never drawn cannot wait.
+    expect(pageTrees().blocks(state, context, () => true).length).toBe(before.length);
+  });
+
+  it("draws the fields of a cell only where they are unfolded", () => {
+    const state = pageState();
+    hear(state, { from: "outline", version: 1, title: "", blocks: [{ block: "cell", key: "c", from: 0, to: 1, cell: "a" }], problems: [], definitions: [] });
+    hear(state, cell({ fields: [{ expression: "a.aicc", value: 12.5 }] }));
+    const drawn = (open: boolean): string => JSON.stringify(pageTrees().blocks(state, { ...context, fieldsOpen: () => open }));
+    expect(drawn(false)).toContain("fields of this cell");
+    expect(drawn(false)).not.toContain("a.aicc");
+    expect(drawn(true)).toContain("a.aicc");
   });
 
   it("draws a number anew when only it moved", () => {
