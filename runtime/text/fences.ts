@@ -21,7 +21,7 @@ export function fenceOf(text: string, node: Code): Fence | null {
   const place = placeOf(node);
   if (place === null) return null;
   // The node may begin after its indentation; look at the whole line.
-  const lineFrom = text.lastIndexOf("\n", place.from - 1) + 1;
+  const lineFrom = startOfLine(text, place.from);
   const opening = /^(\uFEFF?[ \t]{0,3})(`{3,}|~{3,})[ \t]*([^\n\r]*)/.exec(text.slice(lineFrom, endOfLine(text, place.from)));
   if (opening === null) return null;
   const fence = opening[2];
@@ -29,7 +29,7 @@ export function fenceOf(text: string, node: Code): Fence | null {
   const bodyFrom = Math.min(afterBreak(text, lineTo), text.length);
   const info = opening[3].trimEnd();
   const infoFrom = lineFrom + opening[0].length - opening[3].length;
-  const lastFrom = Math.max(text.lastIndexOf("\n", place.to - 1), text.lastIndexOf("\r", place.to - 1)) + 1;
+  const lastFrom = startOfLine(text, place.to);
   const closing = lastFrom >= bodyFrom && place.to > lastFrom ? /^[ \t]{0,3}(`{3,}|~{3,})[ \t]*$/.exec(text.slice(lastFrom, place.to)) : null;
   const closed = closing !== null && closing[1][0] === fence[0] && closing[1].length >= fence.length;
   const words = /^(\S*)\s*([\s\S]*)$/.exec(info);
@@ -38,6 +38,13 @@ export function fenceOf(text: string, node: Code): Fence | null {
     bodyFrom: Math.min(bodyFrom, place.to), bodyTo: closed ? lastFrom : Math.max(place.to, Math.min(bodyFrom, place.to)),
     indent: opening[1].replace("\uFEFF", "").length, fence, closed,
   };
+}
+
+/** Looked for step by step: a search for a sign that is nowhere in the text would go through all of it. */
+function startOfLine(text: string, from: number): number {
+  let at = from;
+  while (at > 0 && text[at - 1] !== "\n" && text[at - 1] !== "\r") at -= 1;
+  return at;
 }
 
 function endOfLine(text: string, from: number): number {

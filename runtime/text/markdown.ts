@@ -8,12 +8,15 @@ import { toString } from "mdast-util-to-string";
 import { gfm } from "micromark-extension-gfm";
 import { math } from "micromark-extension-math";
 
+/** Made once, for a text is read in many pieces. */
+const marks: Parameters<typeof fromMarkdown>[1] & object = { extensions: [gfm(), math()], mdastExtensions: [gfmFromMarkdown(), mathFromMarkdown()] };
+
 /** The tree of a Markdown text; places are UTF-16 offsets into that text. Never throws. Cost O(length). */
 export function markdownTree(text: string): Root {
   // A byte order mark is not counted by the parser; a space in its place keeps every offset true.
   const counted = text.startsWith("\uFEFF") ? ` ${text.slice(1)}` : text;
   const money = moneyOf(counted);
-  const tree = fromMarkdown(money === null ? counted : money.text, { extensions: [gfm(), math()], mdastExtensions: [gfmFromMarkdown(), mathFromMarkdown()] });
+  const tree = fromMarkdown(money === null ? counted : money.text, marks);
   if (money !== null) walk(tree, (node) => { putBack(node, money.stand); });
   return tree;
 }
