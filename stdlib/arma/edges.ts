@@ -1,8 +1,9 @@
 // Where an estimate lies on the edge of the region, and what that leaves of the standard errors.
 
 import { inversePositive } from "../linear/cholesky.ts";
-import { BOUNDARY, moduli } from "./flags.ts";
+import { BOUNDARY } from "./flags.ts";
 import type { Prepared } from "./prepare.ts";
+import { nearestRoot } from "./region.ts";
 import { inverseRoots } from "./roots.ts";
 import { denseFactor, type Factor } from "./shape.ts";
 
@@ -22,7 +23,7 @@ export function edgesOf(p: Prepared, x: Float64Array, free: Int32Array): Edges {
   const directions: Float64Array[] = [], without: number[] = [];
   for (const f of p.shape.factors) {
     const own = [...free.keys()].filter(i => free[i] >= f.from && free[i] < f.from + f.lags.length);
-    if (own.length === 0 || moduli(f, x) >= BOUNDARY) continue;
+    if (own.length === 0 || nearestRoot(f, x) >= BOUNDARY) continue;
     if (f.sign > 0) return { side: "stationarity", directions: [], without: [...free.keys()] };
     without.push(...own);
     directions.push(...rootDirections(f, x, free));

@@ -4,7 +4,7 @@ import { gradientInto } from "./gradient.ts";
 import { valueAt } from "./likelihood.ts";
 import { makeWork, type Work } from "./work.ts";
 import { inverseRoots, reflected } from "./roots.ts";
-import { isStable } from "./region.ts";
+import { isStable, movedInside, nearestRoot } from "./region.ts";
 import { denseFactor, type Factor, type Shape } from "./shape.ts";
 import { gaussNewtonInto } from "./gaussNewton.ts";
 import type { Estimate, Evaluate, Search } from "./search.ts";
@@ -35,7 +35,7 @@ export function estimate(search: Search): Estimate {
   }
   let best: Minimum | null = null, passes = 0;
   const run = (x: Float64Array, tolerance = TOLERANCE, rounds?: number): Minimum => {
-    const found = quasiNewton(problem, pick(inside(shape, withHeld(x, held), held), free), tolerance, rounds);
+    const found = quasiNewton(problem, pick(movedInside(shape, withHeld(x, held), held), free), tolerance, rounds);
     passes += found.passes;
     return found;
   };
@@ -103,16 +103,6 @@ function invertible(shape: Shape, x: Float64Array, held: Float64Array): Float64A
   return x;
 }
 
-/** Held coefficients may make a start unstable: the free ones give way. */
-function inside(shape: Shape, x: Float64Array, held: Float64Array): Float64Array {
-  for (const f of shape.factors) {
-    for (let tries = 0; tries < 60 && !isStable(f.lags, x.subarray(f.from, f.from + f.lags.length), f.sign, f.sign < 0); tries++) {
-      for (let i = 0; i < f.lags.length; i++) if (Number.isNaN(held[f.from + i])) x[f.from + i] *= 0.9;
-    }
-  }
-  return x;
-}
-
 function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Evaluate): Problem {
   const { shape, held } = search;
   const parts = shape.factors;
@@ -154,7 +144,7 @@ function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Eva
  *  data hardly tell a pair of factors from none (a chi-square of n d^2 / (1 - b^2), d the inverse roots' distance). */
 function suspicious(shape: Shape, x: Float64Array, n: number): { plain: boolean; seasonal: boolean } {
   const parts = shape.factors;
-  const near = parts.map(f => edge(f, x));
+  const near = parts.map(f => nearestRoot(f, x));
   const mixed = (i: number) => parts[i].lags.length > 0 && parts[i + 2].lags.length > 0;
   return {
     plain: near[2] < 1.07 || (mixed(0) && (near[0] < 1.01 || pairStatistic(parts[0], parts[2], x, n) < 25)),
@@ -170,13 +160,4 @@ function pairStatistic(ar: Factor, ma: Factor, x: Float64Array, n: number): numb
     for (let s = 0; s < a.re.length; s++) least = Math.min(least, n * ((a.re[s] - b.re[t]) ** 2 + (a.im[s] - b.im[t]) ** 2) / room);
   }
   return least;
-}
-
-/** Smallest modulus of a factor's roots, in its own step. */
-function edge(f: Factor, x: Float64Array): number {
-  if (f.lags.length === 0) return Infinity;
-  const z = inverseRoots(denseFactor(f, x));
-  let top = 0;
-  for (let i = 0; i < z.re.length; i++) top = Math.max(top, Math.hypot(z.re[i], z.im[i]));
-  return top > 0 ? 1 / top : Infinity;
 }

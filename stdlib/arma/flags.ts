@@ -1,8 +1,9 @@
 // What an analyst should know before leaning on a fit: each flag says what was found, by which rule, and what to do.
 
 import type { Note } from "./model.ts";
-import { denseFactor, type Factor } from "./shape.ts";
+import { denseFactor } from "./shape.ts";
 import type { Prepared } from "./prepare.ts";
+import { nearestRoot } from "./region.ts";
 import { inverseRoots } from "./roots.ts";
 
 /** Root modulus below which a root counts as close to the unit circle: a shock then still has a tenth of its effect after
@@ -49,7 +50,7 @@ export function flags(f: Findings): Note[] {
 type Caution = (code: string, text: string) => void;
 
 function rootFlags(f: Findings, caution: Caution): void {
-  const [ar, sar, ma, sma] = f.prepared.shape.factors.map(part => moduli(part, f.x));
+  const [ar, sar, ma, sma] = f.prepared.shape.factors.map(part => nearestRoot(part, f.x));
   const season = f.prepared.seasonLength;
   if (ar < NEAR_UNIT) caution("nearUnitRoot", `An autoregressive root lies at ${digits(ar)}, close to the unit circle: the process hardly returns to a mean. Consider ${f.prepared.lost > 0 ? "another difference" : "differencing"}, and check with the stationarity tests.`);
   if (sar < NEAR_UNIT) caution("nearUnitRoot", `A seasonal autoregressive root lies at ${digits(sar)} (in seasons), close to the unit circle: the seasonal pattern is nearly permanent. Consider difference(${season}).`);
@@ -61,14 +62,6 @@ function rootFlags(f: Findings, caution: Caution): void {
 }
 
 function digits(v: number): string { return v.toFixed(v < 1.001 ? 5 : 3); }
-
-/** Smallest root modulus of a factor, in its own step; Infinity for none. */
-export function moduli(part: Factor, x: Float64Array): number {
-  const z = inverseRoots(denseFactor(part, x));
-  let top = 0;
-  for (let i = 0; i < z.re.length; i++) top = Math.max(top, Math.hypot(z.re[i], z.im[i]));
-  return top > 0 ? 1 / top : Infinity;
-}
 
 function cancellation(f: Findings, caution: Caution): void {
   const parts = f.prepared.shape.factors;

@@ -1,6 +1,8 @@
 // Is a factor's polynomial stationary (or invertible), and if not, how to get back inside.
 
 import { stepDownInto } from "./presample.ts";
+import { inverseRoots } from "./roots.ts";
+import { denseFactor, type Factor, type Shape } from "./shape.ts";
 
 /** Whether 1 - sum c_i B^lag_i has all roots outside the unit circle (on it too when `closed`). Lags ascending.
  *  @param slack  inverse roots up to 1 + slack (in the lags' common step) pass too */
@@ -35,4 +37,40 @@ export function shrinkInto(lags: ArrayLike<number>, c: Float64Array, sign: 1 | -
     for (let i = 0; i < lags.length; i++) c[i] *= 0.95 ** (lags[i] / lags[0]);
   }
   c.fill(0);
+}
+
+/** Smallest modulus of a factor's roots, in its own step; Infinity for none. */
+export function nearestRoot(f: Factor, x: Float64Array): number {
+  if (f.lags.length === 0) return Infinity;
+  const z = inverseRoots(denseFactor(f, x));
+  let top = 0;
+  for (let i = 0; i < z.re.length; i++) top = Math.max(top, Math.hypot(z.re[i], z.im[i]));
+  return top > 0 ? 1 / top : Infinity;
+}
+
+/** Held coefficients may make a start unstable: the free ones give way, or where nearer zero is no help, go where the roots are
+ *  farthest out. Changes and returns x; it may stay outside when the held ones leave no place inside.
+ *  @param held  NaN where free */
+export function movedInside(shape: Shape, x: Float64Array, held: Float64Array): Float64Array {
+  for (const f of shape.factors) {
+    const c = x.subarray(f.from, f.from + f.lags.length), own = [...f.lags.keys()].filter(i => Number.isNaN(held[f.from + i]));
+    const stable = () => isStable(f.lags, c, f.sign, f.sign < 0);
+    for (let tries = 0; tries < 60 && !stable(); tries++) for (const i of own) c[i] *= 0.9;
+    if (!stable()) moveRootsOut(f, x, own, stable);
+  }
+  return x;
+}
+
+/** Steps along each free coefficient of a factor that put its nearest root farther out, halved when none does. */
+function moveRootsOut(f: Factor, x: Float64Array, own: readonly number[], done: () => boolean): void {
+  let best = nearestRoot(f, x);
+  for (let step = 0.4; step > 1e-3 && !done();) {
+    let moved = false;
+    for (const i of own) for (const by of [step, -step]) {
+      x[f.from + i] += by;
+      const modulus = nearestRoot(f, x);
+      if (modulus > best) { best = modulus; moved = true; } else x[f.from + i] -= by;
+    }
+    if (!moved) step /= 2;
+  }
 }
