@@ -27,7 +27,7 @@ export interface ShownStationarity extends Stationarity {
 export const stationarityOptions: OptionTable = {
   series: { type: "series", required: true, sentence: "The series to test, on the scale that would be modelled.", example: "crossings" },
   trend: { type: { oneOf: ["none", "constant", "linear", "quadratic"] }, default: "constant", sentence: "What the series would be stationary around: nothing, a constant, a line, or a parabola." },
-  lags: { type: { anyOf: ["integer", { oneOf: ["aic", "bic", "maic"] }] }, default: "aic", min: 0, sentence: "Lagged differences in the Dickey-Fuller regressions: a number, or the criterion that chooses it." },
+  lags: { type: { anyOf: ["integer", { oneOf: ["aic", "bic", "maic"] }] }, min: 0, sentence: "Lagged differences in the Dickey-Fuller regressions: a number, or the criterion that chooses it; without this option AIC for ADF and, as its authors have it, BIC for DF-GLS." },
   bandwidth: { type: { anyOf: ["integer", { oneOf: ["short", "long", "automatic"] }] }, default: "short", min: 0, sentence: "Autocovariances in the long-run variance of the other tests: a number, or the rule that chooses it from the number of observations." },
   level: { type: "level", default: 0.95, sentence: "Confidence at which a test is read as rejecting its null hypothesis." },
 };

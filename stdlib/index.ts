@@ -57,7 +57,7 @@ export { exponentialSmoothing, type Smoothed, type SmoothingWeights } from "./fo
 export { innovationsFilter, innovationsPath, type Filtered, type SmoothingForm, type SmoothingState } from "./forecast/smoothing/innovations.ts";
 export { type Band, type BandsHow, type Difference, type Forecast, type ForecastOptions, type Forecaster, type Growth, type Passing, type Rule, type Scenario, type Total } from "./forecast/model.ts";
 // diagnostics
-export { printedP, unavailable, type Test } from "./diagnostics/test.ts";
+export { levelWords, printedP, rejects, unavailable, type Test } from "./diagnostics/test.ts";
 export { boxPierce, ljungBox, monti, portmanteauRows, type PortmanteauRow, type PortmanteauRows } from "./diagnostics/portmanteau.ts";
 export { freeArmaCoefficients, isFit, type Subject } from "./diagnostics/subject.ts";
 export { jarqueBera } from "./diagnostics/jarqueBera.ts";

@@ -5,7 +5,7 @@ import { lagChart, type LagPanel } from "./lagChart.ts";
 import { orderChart } from "./orderChart.ts";
 import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
-import { percent, pText, someOf } from "./words.ts";
+import { lagsInWords, percent, pText } from "./words.ts";
 
 type Shown = Correlogram & { readonly of: string; readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null; readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null };
 
@@ -33,13 +33,14 @@ function panel(title: string, result: Shown, which: "acf" | "pacf"): LagPanel {
 }
 
 function altOf(result: Shown): string {
-  const say = (lags: readonly number[], what: string): string => lags.length === 0 ? `no ${what} is outside the ${percent(result.level)} band` : `the ${what}s at lag${lags.length > 1 ? "s" : ""} ${someOf(lags, 8)} are outside the ${percent(result.level)} band`.replace(/s at lag (\S+) are/, " at lag $1 is");
+  const say = (lags: readonly number[], what: string): string => lags.length === 0 ? `no ${what} is outside the ${percent(result.level)} band` : `the ${what}s at lag${lags.length > 1 ? "s" : ""} ${lagsInWords(lags)} are outside the ${percent(result.level)} band`.replace(/s at lag (\S+) are/, " at lag $1 is");
   return `Lags 1 to ${result.lags}: ${say(result.outside.acf, "autocorrelation")}; ${say(result.outside.pacf, "partial autocorrelation")}.`;
 }
 
 /** The orders as options of a fit, ready to be typed. */
 function startText(result: Shown): TextPart {
   const { ar, ma, season } = result.suggests;
+  if (result.differenceFirst !== null) return { part: "text", tone: "note", text: `No orders are read yet: try the step difference(${result.differenceFirst === "season" ? result.seasonLength : ""}) in a transform, and a correlogram of what it leaves.` };
   if (ar + ma === 0 && season === null) return { part: "text", tone: "note", text: "Nothing here asks for AR or MA terms." };
   const seasonal = season === null ? "" : `, season: {${[season.ar > 0 ? `ar: ${season.ar}` : "", season.ma > 0 ? `ma: ${season.ma}` : ""].filter(Boolean).join(", ")}}`;
   return { part: "text", tone: "note", text: `A fit could begin with ar: ${ar}, ma: ${ma}${seasonal}. That is a suggestion from a rule of thumb: compare it with its neighbours before relying on it.` };
@@ -61,7 +62,7 @@ function portmanteauTable(result: Shown): TablePart {
     part: "table", title: "Lags taken together (Ljung and Box)",
     columns: [{ title: "up to lag", align: "right", format: "d" }, { title: "statistic", align: "right", format: ",.2f" }, { title: "p", align: "right" }, { title: "reading" }],
     rows: result.portmanteau.map(row => [
-      row.lag, row.statistic, row.df === null ? "none left" : pText(row.p).replace(/^p [=] /, "").replace(/^p /, ""),
+      row.lag, row.statistic, row.df === null ? "none left" : pText(row.p).replace(/^p (= )?/, ""),
       row.df === null ? "no degrees of freedom left" : row.p < 1 - result.level ? "larger than chance would make them" : "no larger than chance would make them",
     ]),
     note: "The null hypothesis: no autocorrelation up to this lag.",

@@ -1,6 +1,6 @@
 // What diagnostic checking shows: question by question what the residuals still hold, then the pictures that say where.
 
-import { timesMs, type Diagnostics, type Test } from "../../stdlib/index.ts";
+import { rejects, timesMs, type Diagnostics, type Test } from "../../stdlib/index.ts";
 import { timeField } from "./fanChart.ts";
 import { lagChart } from "./lagChart.ts";
 import { details } from "./part.ts";
@@ -9,7 +9,7 @@ import { pathChart } from "./pathChart.ts";
 import { pValueChart } from "./pValueChart.ts";
 import { quantileChart } from "./quantileChart.ts";
 import { largeInWords, largeResiduals, residualChart } from "./residualChart.ts";
-import { count, decimals, figure, percent, pText, someOf } from "./words.ts";
+import { count, figure, lagsInWords, percent, pText } from "./words.ts";
 
 /** One question about the residuals, the tests that speak to it, and what to try where they find something. */
 interface Question {
@@ -50,8 +50,8 @@ function questionTable(result: Diagnostics): TablePart {
     columns: [{ title: "question" }, { title: "answer" }, { title: "evidence" }, { title: "what to try" }],
     rows: questions(result).map(question => {
       const usable = question.tests.filter(test => test.status !== "unavailable" && !Number.isNaN(test.p));
-      const finds = usable.some(test => test.p < small);
-      const disagree = finds && usable.some(test => test.p >= small);
+      const finds = usable.some(test => rejects(test, small) === true);
+      const disagree = finds && usable.some(test => rejects(test, small) !== true);
       const answer = usable.length === 0 ? "cannot be said" : finds ? question.found + (disagree ? " (the tests disagree)" : "") : question.notFound;
       return [question.asked, answer, question.tests.map(evidence).join("; "), finds ? question.remedy : ""];
     }),
@@ -73,8 +73,8 @@ function pValuePart(result: Diagnostics): ChartPart {
   const none = rows.ljungBox.length - usable.length;
   const start = none > 0 ? ` Up to lag ${none} no degrees of freedom are left.` : "";
   const alt = below.length === 0
-    ? `The Ljung-Box p-value stays above ${decimals(small, 2)} at each lag where it is defined.${start}`
-    : `The Ljung-Box p-value is below ${decimals(small, 2)} up to lag${below.length > 1 ? "s" : ""} ${someOf(below.map(row => row.lag), 8)}.${start}`;
+    ? `The Ljung-Box p-value stays above ${figure(small, 2)} at each lag where it is defined.${start}`
+    : `The Ljung-Box p-value is below ${figure(small, 2)} where the lags up to ${lagsInWords(below.map(row => row.lag), 6)} are taken together.${start}`;
   return pValueChart("Is anything left to predict, taking lags together?", alt, [
     { label: "Ljung-Box", rows: rows.ljungBox }, { label: "Box-Pierce", rows: rows.boxPierce }, { label: "Monti", rows: rows.monti },
   ], small);
@@ -92,7 +92,7 @@ function acfPart(result: Diagnostics): ChartPart {
   const lags = result.acf.length - 1;
   const outside = result.outside.acf;
   const chance = (1 - result.level) * lags;
-  const which = outside.length === 0 ? "No autocorrelation of the residuals is" : outside.length === 1 ? `The residuals' autocorrelation at lag ${outside[0]} is` : `The residuals' autocorrelations at lags ${someOf(outside, 8)} are`;
+  const which = outside.length === 0 ? "No autocorrelation of the residuals is" : outside.length === 1 ? `The residuals' autocorrelation at lag ${outside[0]} is` : `The residuals' autocorrelations at lags ${lagsInWords(outside)} are`;
   const alt = `${which} outside the ${percent(result.level)} band; about ${figure(chance, 2)} of ${lags} would be by chance.`;
   return lagChart({
     title: "Autocorrelations of the residuals, lag by lag", alt, season: result.seasonLength ?? 0,
@@ -109,13 +109,13 @@ function quantilePart(result: Diagnostics): ChartPart {
 }
 
 function rhythmPart(result: Diagnostics): readonly ChartPart[] {
-  const { frequency, cumulative, critical95, sentence } = result.cumulativePeriodogram;
-  if (frequency === undefined || cumulative === undefined || critical95 === undefined) return [];
+  const { frequency, cumulative, limit, sentence } = result.cumulativePeriodogram;
+  if (frequency === undefined || cumulative === undefined || limit === undefined) return [];
   const line = Array.from(frequency, (_, j) => (j + 1) / frequency.length);
   return [pathChart({
     title: "Share of the residuals' variation at slower frequencies", alt: sentence ?? "The running share of variation by frequency.", axis: "running share of variation",
     xField: { type: "quantitative", title: "frequency (cycles a period)", scale: { nice: false, zero: true }, axis: { grid: false } },
-    path: { x: frequency, value: cumulative, low: line.map(at => Math.max(0, at - critical95)), high: line.map(at => Math.min(1, at + critical95)) },
+    path: { x: frequency, value: cumulative, low: line.map(at => Math.max(0, at - limit)), high: line.map(at => Math.min(1, at + limit)) },
   })];
 }
 

@@ -1,4 +1,4 @@
-// Tests of different kinds on one line: each statistic as a multiple of its own 5% critical value.
+// Tests of different kinds on one line: each statistic as a multiple of its own critical value.
 
 import type { ChartPart } from "./part.ts";
 import { figure } from "./words.ts";
@@ -6,23 +6,25 @@ import { figure } from "./words.ts";
 export interface RatioRow {
   readonly label: string;
   readonly statistic: number;
-  /** Critical values by "1%", "5%", "10%"; the row is left out where "5%" is not there. */
+  /** Critical values by "1%", "5%", "10%"; the row is left out where that of the scale is not there. */
   readonly critical: Readonly<Record<string, number>>;
+  readonly rejects: boolean;
 }
 
 const nearest = 0.8;
 const farthest = 2.6;
 
-/** Right of 1, whatever the test's own sign, its null hypothesis is rejected at 5%. */
-export function ratioChart(title: string, alt: string, rows: readonly RatioRow[]): ChartPart {
-  const usable = rows.filter(row => Number.isFinite(row.critical["5%"]) && Number.isFinite(row.statistic));
-  const ratio = (row: RatioRow, value: number): number => value / row.critical["5%"];
+/** Right of 1, whatever the test's own sign, the statistic is beyond its critical value.
+ *  @param base  the significance whose critical value is 1 */
+export function ratioChart(title: string, alt: string, rows: readonly RatioRow[], base = "5%"): ChartPart {
+  const usable = rows.filter(row => Number.isFinite(row.critical[base]) && Number.isFinite(row.statistic));
+  const ratio = (row: RatioRow, value: number): number => value / row.critical[base];
   // Far out a statistic says no more: it is drawn at the edge with an arrow, so that the critical values stay apart.
   const placed = (row: RatioRow): number => Math.max(-nearest, Math.min(farthest, ratio(row, row.statistic)));
   const figures = (row: RatioRow): string => `${row.label}: ${ratio(row, row.statistic) < -nearest ? "← " : ""}${figure(row.statistic, 3)}${ratio(row, row.statistic) > farthest ? " →" : ""}`;
   const ticks = usable.flatMap(row => ["10%", "5%", "1%"].filter(level => Number.isFinite(row.critical[level])).map(level => ({ label: row.label, at: ratio(row, row.critical[level]), level })));
   const y = { field: "label", type: "nominal", sort: null, axis: null };
-  const x = (field: string): Record<string, unknown> => ({ field, type: "quantitative", title: "multiple of the 5% critical value; beyond 1 it rejects", scale: { zero: true, nice: false, padding: 12 }, axis: { grid: false } });
+  const x = (field: string): Record<string, unknown> => ({ field, type: "quantitative", title: `multiple of the ${base} critical value; beyond 1 it rejects`, scale: { zero: true, nice: false, padding: 12 }, axis: { grid: false } });
   return {
     part: "chart", title, alt, height: 56 + 38 * usable.length,
     spec: {
@@ -36,7 +38,7 @@ export function ratioChart(title: string, alt: string, rows: readonly RatioRow[]
       ],
     },
     data: {
-      rows: { label: usable.map(r => r.label), at: usable.map(placed), rejects: usable.map(r => ratio(r, r.statistic) > 1), shown: usable.map(figures) },
+      rows: { label: usable.map(r => r.label), at: usable.map(placed), rejects: usable.map(r => r.rejects), shown: usable.map(figures) },
       ticks: { label: ticks.map(t => t.label), at: ticks.map(t => t.at), level: ticks.map(t => t.level) },
       spans: { label: usable.map(r => r.label), from: usable.map(() => 0), to: usable.map(r => Math.max(placed(r), ...ticks.filter(t => t.label === r.label).map(t => t.at))) },
     },

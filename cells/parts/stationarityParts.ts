@@ -1,7 +1,7 @@
 // What the stationarity tests show: what they say together, each null hypothesis in words, the statistics on one line,
 // and what differencing would change.
 
-import { timesMs, type LambdaProfile, type RangeMean, type Series, type Stationarity, type Test } from "../../stdlib/index.ts";
+import { rejects, timesMs, type LambdaProfile, type RangeMean, type Series, type Stationarity, type Test } from "../../stdlib/index.ts";
 import { panelChart } from "./panelChart.ts";
 import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
@@ -17,12 +17,12 @@ const mostPanels = 6;
 interface NamedTest { readonly name: string; readonly test: Test }
 
 export function stationarityParts(result: Shown, width: number): readonly Part[] {
-  const tests = testsOf(result);
+  const tests = testsOf(result), answered = tests.filter(({ test }) => test.status !== "unavailable");
   return [
-    { part: "text", text: result.together },
-    ratioPart(tests),
+    { part: "text", text: result.together, ...(answered.length === 0 ? { tone: "caution" as const } : {}) },
+    ...(answered.length === 0 ? [] : [ratioPart(answered, result.level)]),
     ...strengthText(result),
-    ...details([testTable(tests, result.level), ...differenceParts(result, width), ...spreadParts(result)]),
+    ...details([...(answered.length === 0 ? [] : [testTable(tests, result.level)]), ...differenceParts(result, width), ...spreadParts(result)]),
     ...notesOf(result, tests),
   ];
 }
@@ -45,10 +45,14 @@ function testsOf(result: Shown): readonly NamedTest[] {
   return named.flatMap(([name, test]) => test === null || test === undefined ? [] : [{ name, test }]);
 }
 
-function ratioPart(tests: readonly NamedTest[]): Part {
-  const rows: RatioRow[] = tests.flatMap(({ name, test }) => test.status === "unavailable" || test.critical === undefined ? [] : [{ label: name, statistic: test.statistic, critical: test.critical }]);
-  const beyond = rows.filter(row => row.statistic / row.critical["5%"] > 1).map(row => row.label);
-  return ratioChart("Each statistic against its critical values at 10%, 5% and 1%", `Right of 1 a test rejects its null hypothesis at 5%: ${beyond.length === 0 ? "none does" : `${listOf(beyond)} ${beyond.length === 1 ? "does" : "do"}`}.`, rows);
+function ratioPart(tests: readonly NamedTest[], level: number): Part {
+  const alpha = percent(1 - level);
+  // The scale is that of the level asked for, where every test prints a critical value there.
+  const base = tests.every(({ test }) => test.critical?.[alpha] !== undefined) ? alpha : "5%";
+  const rows: RatioRow[] = tests.flatMap(({ name, test }) => test.critical === undefined ? [] : [{ label: name, statistic: test.statistic, critical: test.critical, rejects: rejects(test, 1 - level) === true }]);
+  const beyond = rows.filter(row => row.rejects).map(row => row.label);
+  const found = beyond.length === 0 ? "no test rejects its null hypothesis" : `${listOf(beyond)} ${beyond.length === 1 ? "rejects its null hypothesis" : "reject their null hypotheses"}`;
+  return ratioChart("Each statistic against its critical values at 10%, 5% and 1%", `At the ${alpha} level ${found}; right of 1 a statistic is beyond its ${base} critical value.`, rows, base);
 }
 
 function testTable(tests: readonly NamedTest[], level: number): TablePart {
@@ -57,9 +61,9 @@ function testTable(tests: readonly NamedTest[], level: number): TablePart {
     columns: [{ title: "test" }, { title: "null hypothesis" }, { title: "statistic", align: "right", format: ".3f" }, { title: "p", align: "right" }, { title: "critical at 10%, 5%, 1%" }, { title: "lags, and how chosen" }, { title: `reading at ${percent(1 - level)}` }],
     rows: tests.map(({ name, test }) => [
       name, test.nullHypothesis, test.statistic, test.status === "unavailable" ? "–" : pText(test.p, test.bound).replace(/^p (= )?/, ""),
-      criticalText(test), test.lags === undefined ? "" : `${test.lags}${test.lagRule ? ` (${test.lagRule})` : ""}`, reading(test, level),
+      criticalText(test), test.lags === undefined ? "" : `${test.lags}${test.lagRule ? `, ${test.lagRule}` : ""}`, reading(test, level),
     ]),
-    note: "The first three take a unit root as given until the data speak against it; KPSS takes stationarity as given. A null hypothesis that is not rejected is not thereby shown to be true.",
+    note: "Small p speaks against the null hypothesis in its row: a unit root for the first three, stationarity for KPSS, a season that stays for Canova-Hansen. A null hypothesis that is not rejected is not thereby shown to be true.",
   };
 }
 
@@ -70,7 +74,8 @@ function criticalText(test: Test): string {
 
 function reading(test: Test, level: number): string {
   if (test.status === "unavailable" || Number.isNaN(test.p)) return `cannot be said: ${test.note ?? "no p-value"}`;
-  return test.p < 1 - level ? "rejected" : "not rejected";
+  const rejected = rejects(test, 1 - level);
+  return rejected === null ? "cannot be said: the printed table ends before this level" : rejected ? "rejected" : "not rejected";
 }
 
 function notesOf(result: Shown, tests: readonly NamedTest[]): readonly TextPart[] {
@@ -88,7 +93,7 @@ function differenceParts(result: Shown, width: number): readonly Part[] {
     { part: "text", text: result.differencesSentence },
     panelChart({
       title: "Differences side by side", alt: result.differencesSentence, dated: result.series.every !== null, width,
-      panels: rows.slice(0, mostPanels).map(row => ({ title: row.lags.length === 0 ? `${result.axis}, undifferenced` : `differenced at lag${row.lags.length > 1 ? "s" : ""} ${row.label}`, time: ms.slice(ms.length - row.values.length), value: row.values })),
+      panels: rows.slice(0, mostPanels).map(row => ({ title: row.lags.length === 0 ? `${result.axis}, undifferenced` : row.words, time: ms.slice(ms.length - row.values.length), value: row.values })),
     }),
     {
       part: "table", title: "What differencing would change",

@@ -47,6 +47,17 @@ export function someOf(items: readonly (string | number)[], most = 6): string {
   return `${items.slice(0, most).join(", ")} and ${items.length - most} more`;
 }
 
+/** "1, 2 and 12", and "1 to 9 and 12" where lags follow on each other. */
+export function lagsInWords(lags: readonly number[], most = 8): string {
+  const runs: [number, number][] = [];
+  for (const lag of lags) {
+    const last = runs[runs.length - 1];
+    if (last !== undefined && lag === last[1] + 1) last[1] = lag;
+    else runs.push([lag, lag]);
+  }
+  return someOf(runs.flatMap(([from, to]) => (to - from < 2 ? Array.from({ length: to - from + 1 }, (_, i) => String(from + i)) : [`${from} to ${to}`])), most);
+}
+
 /** "1 lag", "3 lags". */
 export function count(n: number, one: string, many = `${one}s`): string {
   return `${String(n).replace(/\B(?=(\d{3})+$)/g, ",")} ${n === 1 ? one : many}`;

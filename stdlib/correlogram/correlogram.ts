@@ -37,6 +37,8 @@ export interface Correlogram {
   /** Lags whose correlation is outside its band. */
   readonly outside: { readonly acf: readonly number[]; readonly pacf: readonly number[] };
   readonly suggests: Suggestion;
+  /** Where the correlations die out too slowly for orders to be read: at the low lags ("level") or the seasonal ones. */
+  readonly differenceFirst: "level" | "season" | null;
   readonly lags: number;
   readonly n: number; readonly observed: number;
   readonly level: number;
@@ -76,7 +78,7 @@ export function correlogram(options: CorrelogramOptions): Correlogram {
   const seasonalLags = seasonLength === null ? [] : Array.from({ length: Math.floor(lags / seasonLength) }, (_, i) => (i + 1) * seasonLength);
   const slow = diesOutSlowly(r, acfBand, seasonalLags);
   return {
-    status: "ok", acf: r, pacf: p, band: { acf: acfBand, pacf: flat }, outside, suggests, lags, n, observed, level, bandKind: band, seasonLength, seasonalLags, portmanteau,
+    status: "ok", acf: r, pacf: p, band: { acf: acfBand, pacf: flat }, outside, suggests, differenceFirst: slow, lags, n, observed, level, bandKind: band, seasonLength, seasonalLags, portmanteau,
     notes: notesOf({ n, observed, asked, lags, level, slow, band }),
     sentence: sentenceOf(outside, portmanteau, suggests, lags, level, slow),
   };
@@ -146,6 +148,6 @@ function empty(n: number, observed: number, level: number, bandKind: "independen
   return {
     status: "unavailable", acf: none, pacf: none, band: { acf: none, pacf: none }, outside: { acf: [], pacf: [] },
     suggests: { ar: 0, ma: 0, season: null, cutOff: { acf: null, pacf: null }, reason: why },
-    lags: 0, n, observed, level, bandKind, seasonLength: null, seasonalLags: [], portmanteau: [], notes: [why], sentence: `The data cannot answer: ${why}.`,
+    differenceFirst: null, lags: 0, n, observed, level, bandKind, seasonLength: null, seasonalLags: [], portmanteau: [], notes: [why], sentence: `The data cannot answer: ${why}.`,
   };
 }

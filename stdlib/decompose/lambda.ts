@@ -146,14 +146,19 @@ function interval(score: (lambda: number) => number, at: number, drop: number): 
   return [side(-1), side(1)];
 }
 
+/** Two decimals, true minus sign. */
+function two(value: number): string {
+  return value.toFixed(2).replace("-", "−");
+}
+
 function sentenceOf(how: string, lambda: number, low: number, high: number, level: number, from: number, to: number): string {
   const edge = Math.min(lambda - from, to - lambda) < 1e-3 ? " It lies at the edge of the range that was searched." : "";
   if (how === "guerrero") {
-    const near = Math.abs(lambda) < 0.25 ? "near 0, a logarithm" : Math.abs(lambda - 1) < 0.25 ? "near 1, no transformation" : Math.abs(lambda - 0.5) < 0.25 ? "near 0.5, a square root" : "between the usual powers";
-    return `The spread depends least on the level at lambda ${lambda.toFixed(2)}, ${near}; the method gives no interval.${edge}`;
+    const near = Math.abs(lambda) < 0.25 ? "near 0, a logarithm" : Math.abs(lambda - 1) < 0.25 ? "near 1, no transformation" : Math.abs(lambda - 0.5) < 0.25 ? "near 0.5, a square root" : Math.abs(lambda + 1) < 0.25 ? "near −1, a reciprocal" : "away from the usual powers";
+    return `The spread depends least on the level at lambda ${two(lambda)}, ${near}; the method gives no interval.${edge}`;
   }
   const share = `${Number((100 * level).toPrecision(4))}%`;
-  const ends = Number.isNaN(low) || Number.isNaN(high) ? `; the likelihood is too flat for a ${share} interval` : ` (${share} interval ${low.toFixed(2)} to ${high.toFixed(2)})`;
+  const ends = Number.isNaN(low) || Number.isNaN(high) ? `; the likelihood is too flat for a ${share} interval` : ` (${share} interval ${two(low)} to ${two(high)})`;
   const holds = Number.isNaN(low) || Number.isNaN(high) ? null : [[0, "a logarithm (0)"], [0.5, "a square root (0.5)"], [1, "no transformation (1)"]].filter(([v]) => Number(v) >= low && Number(v) <= high).map(([, w]) => w);
-  return `By likelihood lambda is ${lambda.toFixed(2)}${ends}${holds === null ? "" : holds.length === 0 ? "; none of logarithm, square root and no transformation lies inside" : `; ${holds.join(" and ")} ${holds.length === 1 ? "lies" : "lie"} inside`}. The interval supposes independent residuals.${edge}`;
+  return `By likelihood lambda is ${two(lambda)}${ends}${holds === null ? "" : holds.length === 0 ? "; none of logarithm, square root and no transformation lies inside" : `; ${holds.join(", ").replace(/, ([^,]*)$/, " and $1")} ${holds.length === 1 ? "lies" : "lie"} inside`}. The interval supposes independent residuals.${edge}`;
 }

@@ -44,6 +44,6 @@ function logSlope(mean: readonly number[], sd: readonly number[]): number {
 function sentenceOf(blocks: number, slope: number): string {
   if (blocks < 3) return `The data cannot answer: ${blocks} whole ${blocks === 1 ? "block is" : "blocks are"} too few.`;
   if (Number.isNaN(slope)) return "Some block means or spreads are not above 0, so that no power of the level can be read.";
-  const word = slope > 0.75 ? "in proportion to the level, which a logarithm evens out" : slope > 0.25 ? "with the level, about as a square root evens out" : slope < -0.25 ? "less where the level is higher" : "about the same at every level";
-  return `Over ${blocks} blocks the spread is ${slope > 0.25 ? "growing " : ""}${word} (slope ${slope.toFixed(2)} of log spread on log level).`;
+  const word = slope > 0.75 ? "grows in proportion to the level, which a logarithm evens out" : slope > 0.25 ? "grows with the level, about as a square root evens out" : slope < -0.25 ? "is smaller where the level is higher" : "is about the same at every level";
+  return `Over ${blocks} blocks the spread ${word} (slope ${slope.toFixed(2).replace("-", "−")} of log spread on log level).`;
 }

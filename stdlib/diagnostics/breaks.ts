@@ -2,18 +2,18 @@
 
 import { chiSquareUpper } from "../distributions/chiSquare.ts";
 import { logGamma } from "../distributions/special.ts";
-import { kolmogorovUpper } from "./cumulativePeriodogram.ts";
+import { kolmogorovQuantile, kolmogorovUpper } from "./cumulativePeriodogram.ts";
 import type { Subject, Tested } from "./subject.ts";
 import { observedOf, testedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { printedP, unavailable } from "./test.ts";
+import { levelWords, printedP, rejects, unavailable } from "./test.ts";
 
 const steady = "a level that does not change";
 
 export interface Cusum extends Test {
   /** Running sums over sigma sqrt(n), one per value (carried through gaps), starting and ending near 0. */
   readonly path?: Float64Array;
-  /** Value that the path passes somewhere with probability 5% when nothing changes. */
+  /** Value that the path passes somewhere with probability 1 - level when nothing changes. */
   readonly limit?: number;
   /** Time or position (from 1) where the path is furthest out. */
   readonly furthest?: string;
@@ -21,8 +21,8 @@ export interface Cusum extends Test {
 
 /** CUSUM of the values about their own mean: the largest distance of the running sum from 0, over sigma sqrt(n).
  *  p from the Kolmogorov distribution (the supremum of a Brownian bridge). Values must be uncorrelated: give it residuals.
- *  Source: Ploberger & Kramer (1992). */
-export function cusum(x: Subject): Cusum {
+ *  @param level  confidence of `limit`, and of the sentence. Source: Ploberger & Kramer (1992). */
+export function cusum(x: Subject, level = 0.95): Cusum {
   const tested = testedOf(x), name = "CUSUM";
   const { mean, sigma, n, why } = moments(tested);
   if (why !== null) return unavailable(steady, n, why, { name });
@@ -34,12 +34,12 @@ export function cusum(x: Subject): Cusum {
     path[t] = sum / (sigma * Math.sqrt(n));
     if (Math.abs(path[t]) > statistic) { statistic = Math.abs(path[t]); at = t; }
   }
-  const p = kolmogorovUpper(statistic), furthest = timeOf(tested, at);
+  const p = kolmogorovUpper(statistic), furthest = timeOf(tested, at), limits = `${Number((100 * level).toPrecision(6))}% limits`;
   return {
-    name, statistic, p, n, nullHypothesis: steady, status: "ok", path, limit: 1.358, furthest, critical: { "1%": 1.628, "5%": 1.358, "10%": 1.224 },
-    sentence: p < 0.05
-      ? `The running sum of ${words} leaves its 95% limits, furthest at ${furthest} (${printedP(p)}): the level changed somewhere.`
-      : `The running sum of ${words} stays within its 95% limits (${printedP(p)}): no sign of a changed level.`,
+    name, statistic, p, n, nullHypothesis: steady, status: "ok", path, limit: level === 0.95 ? 1.358 : kolmogorovQuantile(1 - level), furthest, critical: { "1%": 1.628, "5%": 1.358, "10%": 1.224 },
+    sentence: p < 1 - level
+      ? `The running sum of ${words} leaves its ${limits}, furthest at ${furthest} (${printedP(p)}): the level changed somewhere.`
+      : `The running sum of ${words} stays within its ${limits} (${printedP(p)}): no sign of a changed level.`,
   };
 }
 
@@ -54,8 +54,8 @@ export interface LargestBreak extends Test {
 
 /** Largest-break test of one change of level at an unknown date: the largest Wald statistic among the dates that leave
  *  `trim` of the values at each end. p by the approximation of Estrella (2003), given up to 0.3.
- *  @param trim  0.05 to 0.4   @throws RangeError outside. Source: Andrews (1993). */
-export function largestBreak(x: Subject, trim = 0.15): LargestBreak {
+ *  @param trim   0.05 to 0.4   @param level  confidence at which the sentence reads it   @throws RangeError outside. Source: Andrews (1993). */
+export function largestBreak(x: Subject, trim = 0.15, level = 0.95): LargestBreak {
   if (!(trim >= 0.05 && trim <= 0.4)) throw new RangeError(`largestBreak: trim is ${trim}, expected a share from 0.05 to 0.4`);
   const tested = testedOf(x), name = "largest-break Wald";
   const { n, why } = moments(tested);
@@ -82,8 +82,8 @@ export function largestBreak(x: Subject, trim = 0.15): LargestBreak {
   return {
     name, statistic: best, p, ...(bound === undefined ? {} : { bound }), n, nullHypothesis: steady, status: "ok", at: when, index, before, after, path,
     ...(trim === 0.15 ? { critical: { "1%": 12.16, "5%": 8.68, "10%": 7.12 } } : {}), // Andrews (2003), corrected table, one parameter
-    sentence: p < 0.05
-      ? `The largest change of level in ${words} is at ${when} (from ${before.toPrecision(3)} to ${after.toPrecision(3)}), more than chance would make it at the 5% level (${printedP(p, bound)}).`
+    sentence: rejects({ p, ...(bound === undefined ? {} : { bound }) }, 1 - level) === true
+      ? `The largest change of level in ${words} is at ${when} (from ${before.toPrecision(3)} to ${after.toPrecision(3)}), more than chance would make it at the ${levelWords(level)} (${printedP(p, bound)}).`
       : `The largest change of level in ${words}, at ${when}, is no larger than chance would make it (${printedP(p, bound)}).`,
   };
 }

@@ -11,15 +11,18 @@ export interface CumulativePeriodogram extends Test {
   readonly frequency?: Float64Array;
   /** Share of the variation at frequencies up to each, ends at 1. */
   readonly cumulative?: Float64Array;
-  /** Distance from the straight line j/m that is passed at the 5% level. */
+  /** Distance from the straight line j/m that white noise passes with probability 5%. */
   readonly critical95?: number;
+  /** The same with probability 1 - level. */
+  readonly limit?: number;
 }
 
 /** Cumulative periodogram of the values about their mean; `statistic` is the largest distance from the straight line.
  *  Source: Bartlett (1955); 5% limit 1.358 / (sqrt(q) + 0.12 + 0.11 / sqrt(q)), q = m - 1 (Stephens 1974); p from the
  *  Kolmogorov distribution at the same scaling. A model's estimated coefficients make the true size smaller than stated.
- *  @param taper  share at each end under a cosine bell, 0 <= taper <= 0.5 */
-export function cumulativePeriodogram(x: Subject, taper = 0): CumulativePeriodogram {
+ *  @param taper  share at each end under a cosine bell, 0 <= taper <= 0.5
+ *  @param level  confidence of `limit`, and of the sentence */
+export function cumulativePeriodogram(x: Subject, taper = 0, level = 0.95): CumulativePeriodogram {
   const { values, words } = testedOf(x), name = "cumulative periodogram";
   const n = values.length, m = Math.floor((n - 1) / 2), nullHypothesis = "white noise: no frequency stands out";
   const seen = observedOf(values);
@@ -37,13 +40,13 @@ export function cumulativePeriodogram(x: Subject, taper = 0): CumulativePeriodog
     if (distance > statistic) { statistic = distance; at = j; }
   }
   const root = Math.sqrt(m - 1), scale = root + 0.12 + 0.11 / root;
-  const p = kolmogorovUpper(statistic * scale), critical95 = 1.358 / scale;
+  const p = kolmogorovUpper(statistic * scale), critical95 = 1.358 / scale, limit = level === 0.95 ? critical95 : kolmogorovQuantile(1 - level) / scale, inside = `${Number((100 * level).toPrecision(6))}% limits`;
   const where = `${Number((1 / frequency[at]).toPrecision(3))} periods a cycle`;
   return {
-    name, statistic, p, n, nullHypothesis, status: "ok", frequency, cumulative, critical95, critical: { "5%": critical95 },
-    sentence: p < 0.05
-      ? `The cumulative periodogram of ${words} leaves its 95% limits, furthest near ${where} (${printedP(p)}): some frequencies carry more than white noise would.`
-      : `The cumulative periodogram of ${words} stays within its 95% limits (${printedP(p)}): no frequency stands out from white noise.`,
+    name, statistic, p, n, nullHypothesis, status: "ok", frequency, cumulative, critical95, limit, critical: { "5%": critical95 },
+    sentence: p < 1 - level
+      ? `The cumulative periodogram of ${words} leaves its ${inside}, furthest near ${where} (${printedP(p)}): some frequencies carry more than white noise would.`
+      : `The cumulative periodogram of ${words} stays within its ${inside} (${printedP(p)}): no frequency stands out from white noise.`,
   };
 }
 
@@ -58,6 +61,13 @@ export function tapered(values: Float64Array, share: number): Float64Array {
     out[n - 1 - t] *= weight;
   }
   return out;
+}
+
+/** The x that the Kolmogorov distribution passes with probability p, by halving. @example kolmogorovQuantile(0.05) // 1.3581 */
+export function kolmogorovQuantile(p: number): number {
+  let low = 0.2, high = 10;
+  while (high - low > 1e-12) { const middle = (low + high) / 2; if (kolmogorovUpper(middle) > p) low = middle; else high = middle; }
+  return (low + high) / 2;
 }
 
 /** P(K > x) for the Kolmogorov distribution. */

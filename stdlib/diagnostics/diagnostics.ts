@@ -22,7 +22,7 @@ import type { Quantiles } from "./qq.ts";
 import { quantiles } from "./qq.ts";
 import { freeArmaCoefficients, observedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { printedP } from "./test.ts";
+import { printedP, rejects } from "./test.ts";
 
 export interface DiagnosticsOptions {
   readonly model: Fit;
@@ -76,8 +76,9 @@ export function diagnostics({ model, lags: asked, level = 0.95 }: DiagnosticsOpt
   const outsideOf = (c: Float64Array): number[] => [...c.keys()].filter((k) => k > 0 && Math.abs(c[k]) > band);
   const tested = short
     ? { ljungBox: tooShort(n), boxPierce: tooShort(n), monti: tooShort(n) }
-    : { ljungBox: ljungBox(model, lags), boxPierce: boxPierce(model, lags), monti: monti(model, lags) };
-  const tests = { ...tested, jarqueBera: jarqueBera(model), archLM: archLM(model), mcleodLi: short ? tooShort(n) : mcleodLi(model), cumulativePeriodogram: cumulativePeriodogram(model), cusum: cusum(model), break: largestBreak(model) };
+    : { ljungBox: ljungBox(model, lags, undefined, level), boxPierce: boxPierce(model, lags, undefined, level), monti: monti(model, lags, undefined, level) };
+  const tests = { ...tested, jarqueBera: jarqueBera(model, level), archLM: archLM(model, undefined, level), mcleodLi: short ? tooShort(n) : mcleodLi(model, undefined, level),
+    cumulativePeriodogram: cumulativePeriodogram(model, 0, level), cusum: cusum(model, level), break: largestBreak(model, 0.15, level) };
   const found = outliers(model);
   const { verdict, sentence } = summary(tests, found, outsideOf(r), lags, 1 - level, band, r);
   return {
@@ -105,15 +106,15 @@ type Tests = Pick<Diagnostics, "ljungBox" | "monti" | "jarqueBera" | "archLM" | 
 function summary(tests: Tests, found: Outliers, outside: readonly number[], lags: number, alpha: number, band: number, r: Float64Array): { verdict: Diagnostics["verdict"]; sentence: string } {
   const { ljungBox: lb } = tests;
   if (lb.status !== "ok") return { verdict: "unavailable", sentence: lb.note?.startsWith("none left") ? `No portmanteau test at lag ${lags}: ${lb.note}.` : `The data cannot answer: ${lb.note ?? "the residuals cannot be tested"}.` };
-  const rejects = (t: Test): boolean => t.p < alpha;
+  const finds = (t: Test): boolean => rejects(t, alpha) === true;
   const signs = [
-    ...(rejects(tests.archLM) || rejects(tests.mcleodLi) ? ["their variance changes with its own past"] : []),
-    ...(rejects(tests.cusum) || rejects(tests.break) ? [`their level seems to shift${tests.break.at === undefined ? "" : ` about ${tests.break.at}`}`] : []),
-    ...(rejects(tests.jarqueBera) ? ["they are not normally distributed"] : []),
+    ...(finds(tests.archLM) || finds(tests.mcleodLi) ? ["their variance changes with its own past"] : []),
+    ...(finds(tests.cusum) || finds(tests.break) ? [`their level seems to shift${tests.break.at === undefined ? "" : ` about ${tests.break.at}`}`] : []),
+    ...(finds(tests.jarqueBera) ? ["they are not normally distributed"] : []),
     ...(found.found.length > 0 ? [`${found.found.length === 1 ? `one period (${found.found[0].time}) stands` : `${found.found.length} periods stand`} out`] : []),
   ];
-  const also = signs.length === 0 ? "" : ` ${rejects(lb) ? "Also, " : "But "}${joined(signs)}.`;
-  if (rejects(lb)) {
+  const also = signs.length === 0 ? "" : ` ${finds(lb) ? "Also, " : "But "}${joined(signs)}.`;
+  if (finds(lb)) {
     const largest = outside.length === 0 ? "" : `; the largest is at lag ${outside.reduce((a, b) => (Math.abs(r[b]) > Math.abs(r[a]) ? b : a))}`;
     return { verdict: "autocorrelated", sentence: `The residuals are still autocorrelated over ${lags} lags (Ljung-Box ${printedP(lb.p)} on ${lb.df} df${largest}): the model leaves something to predict.${also}` };
   }

@@ -4,12 +4,12 @@ import { chiSquareUpper } from "../distributions/chiSquare.ts";
 import type { Subject } from "./subject.ts";
 import { observedOf, testedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { printedP, unavailable } from "./test.ts";
+import { levelWords, printedP, unavailable } from "./test.ts";
 
 /** Jarque-Bera test: n (skewness^2 / 6 + (kurtosis - 3)^2 / 24), chi-square with 2 degrees of freedom, moments with divisor n.
  *  `kurtosis` is not excess: 3 for a normal distribution. Its size is close to nominal only in long series (n > 200, say).
- *  Source: Jarque & Bera (1980). */
-export function jarqueBera(x: Subject): Test & { readonly skewness?: number; readonly kurtosis?: number } {
+ *  @param level  confidence at which the sentence reads it. Source: Jarque & Bera (1980). */
+export function jarqueBera(x: Subject, level = 0.95): Test & { readonly skewness?: number; readonly kurtosis?: number } {
   const { values, words } = testedOf(x);
   const seen = observedOf(values), n = seen.length;
   const nullHypothesis = "normally distributed", name = "Jarque-Bera";
@@ -27,8 +27,8 @@ export function jarqueBera(x: Subject): Test & { readonly skewness?: number; rea
   const are = words === "the series" ? "is" : "are";
   return {
     name, statistic, p, df: 2, n, nullHypothesis, status: "ok", skewness, kurtosis,
-    sentence: p < 0.05
-      ? `${words.replace("the", "The")} ${are} not normally distributed by this test at the 5% level (${printedP(p)}; ${shape}): limits from normal quantiles are then only approximate.`
+    sentence: p < 1 - level
+      ? `${words.replace("the", "The")} ${are} not normally distributed by this test at the ${levelWords(level)} (${printedP(p)}; ${shape}): limits from normal quantiles are then only approximate.`
       : `Skewness and kurtosis of ${words} do not contradict a normal distribution (${printedP(p)}; ${shape}); that does not show that it is one.`,
   };
 }

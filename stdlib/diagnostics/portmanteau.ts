@@ -6,7 +6,7 @@ import { chiSquareUpper } from "../distributions/chiSquare.ts";
 import type { Subject } from "./subject.ts";
 import { observedOf, testedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { printedP, unavailable } from "./test.ts";
+import { levelWords, printedP, unavailable } from "./test.ts";
 
 /** One lag of a portmanteau test followed across lags. `df` is null and `p` NaN where the model leaves none. */
 export interface PortmanteauRow { readonly lag: number; readonly statistic: number; readonly df: number | null; readonly p: number }
@@ -20,21 +20,22 @@ const nullHypothesis = "no autocorrelation up to this lag";
  *  @param x        a series, numbers or a fit; gaps are allowed, n is then the number observed
  *  @param lag      1 <= lag < n
  *  @param modelDf  coefficients to take off the degrees of freedom; a fit knows its own
+ *  @param level    confidence at which the sentence reads it
  *  @throws RangeError if lag is out of range. Source: Ljung & Box (1978). */
-export function ljungBox(x: Subject, lag: number, modelDf?: number): Test {
-  return portmanteauTest("Ljung-Box Q", x, lag, modelDf, (rows) => rows.ljungBox);
+export function ljungBox(x: Subject, lag: number, modelDf?: number, level = 0.95): Test {
+  return portmanteauTest("Ljung-Box Q", x, lag, modelDf, level, (rows) => rows.ljungBox);
 }
 
 /** Box-Pierce test at one lag: n sum of r_k^2; smaller than Ljung-Box in short series, where it rejects too seldom.
  *  Source: Box & Pierce (1970). Arguments as for `ljungBox`. */
-export function boxPierce(x: Subject, lag: number, modelDf?: number): Test {
-  return portmanteauTest("Box-Pierce Q", x, lag, modelDf, (rows) => rows.boxPierce);
+export function boxPierce(x: Subject, lag: number, modelDf?: number, level = 0.95): Test {
+  return portmanteauTest("Box-Pierce Q", x, lag, modelDf, level, (rows) => rows.boxPierce);
 }
 
 /** Monti's test at one lag: n(n + 2) sum of p_k^2 / (n - k) over partial autocorrelations; stronger against a missing
  *  moving-average term. Source: Monti (1994). Arguments as for `ljungBox`. */
-export function monti(x: Subject, lag: number, modelDf?: number): Test {
-  return portmanteauTest("Monti Q", x, lag, modelDf, (rows) => rows.monti);
+export function monti(x: Subject, lag: number, modelDf?: number, level = 0.95): Test {
+  return portmanteauTest("Monti Q", x, lag, modelDf, level, (rows) => rows.monti);
 }
 
 /** The three tests at every lag from 1, or at chosen lags. Empty where the values do not vary.
@@ -58,7 +59,7 @@ export function portmanteauRows(values: Float64Array, lags: number | readonly nu
   return { ljungBox: rowsOf(sums.ljungBox), boxPierce: rowsOf(sums.boxPierce), monti: rowsOf(sums.monti) };
 }
 
-function portmanteauTest(name: string, x: Subject, lag: number, given: number | undefined, pick: (rows: PortmanteauRows) => readonly PortmanteauRow[]): Test {
+function portmanteauTest(name: string, x: Subject, lag: number, given: number | undefined, level: number, pick: (rows: PortmanteauRows) => readonly PortmanteauRow[]): Test {
   const { values, modelDf, words } = testedOf(x);
   const less = given ?? modelDf;
   checkLag(lag, values.length);
@@ -69,13 +70,13 @@ function portmanteauTest(name: string, x: Subject, lag: number, given: number | 
     const note = `none left: ${lag} ${lag === 1 ? "lag" : "lags"} and ${less} estimated ${less === 1 ? "coefficient" : "coefficients"} leave no degrees of freedom; take a lag above ${less}`;
     return { ...unavailable(nullHypothesis, n, note, { name, lags: lag }), statistic: row.statistic, df: null };
   }
-  return { name, statistic: row.statistic, p: row.p, df: row.df, lags: lag, n, nullHypothesis, status: "ok", sentence: sentence(name, lag, row, words) };
+  return { name, statistic: row.statistic, p: row.p, df: row.df, lags: lag, n, nullHypothesis, status: "ok", sentence: sentence(name, lag, row, words, level) };
 }
 
-function sentence(name: string, lag: number, row: PortmanteauRow, words: string): string {
+function sentence(name: string, lag: number, row: PortmanteauRow, words: string, level: number): string {
   const numbers = `${name}(${lag}) = ${row.statistic.toFixed(1)} on ${row.df} df, ${printedP(row.p)}`;
-  return row.p < 0.05
-    ? `Over the first ${lag} lags together ${words} are autocorrelated beyond chance at the 5% level (${numbers}).`.replace("the series are", "the series is")
+  return row.p < 1 - level
+    ? `Over the first ${lag} lags together ${words} are autocorrelated beyond chance at the ${levelWords(level)} (${numbers}).`.replace("the series are", "the series is")
     : `The first ${lag} autocorrelations of ${words} together are no larger than chance would make them (${numbers}); that does not show that there is none.`;
 }
 

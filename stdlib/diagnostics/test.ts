@@ -32,6 +32,26 @@ export function unavailable(nullHypothesis: string, n: number, note: string, mor
   return { ...more, statistic: NaN, p: NaN, n, nullHypothesis, status: "unavailable", note, sentence: `The data cannot answer: ${note}.` };
 }
 
+/** Whether a test rejects its null hypothesis at significance `alpha`; null where it cannot be said: the data did not answer,
+ *  or the printed table ends before that level. */
+export function rejects(test: Pick<Test, "p" | "bound">, alpha: number): boolean | null {
+  const { p, bound } = test;
+  if (Number.isNaN(p)) return null;
+  if (bound === "below") return p <= alpha ? true : null;
+  if (bound === "above") return p >= alpha ? false : null;
+  return p < alpha;
+}
+
+/** "5% level" of a confidence of 0.95, as it stands in a sentence. */
+export function levelWords(level: number): string {
+  return `${Number((100 * (1 - level)).toPrecision(3))}% level`;
+}
+
+/** A number in three digits or so, with a true minus sign. */
+export function rounded(value: number, digits = 3): string {
+  return String(Number(value.toPrecision(digits))).replace("-", "−");
+}
+
 /** A p-value as it stands in a sentence: "p = 0.031", "p < 0.001", "p < 0.01" and "p > 0.10" where a table ends. */
 export function printedP(p: number, bound?: "below" | "above"): string {
   if (Number.isNaN(p)) return "p not available";

@@ -1,7 +1,7 @@
 // The augmented Dickey-Fuller test.
 
 import type { Test } from "../diagnostics/test.ts";
-import { printedP, unavailable } from "../diagnostics/test.ts";
+import { levelWords, printedP, rejects, unavailable } from "../diagnostics/test.ts";
 import type { Series } from "../series/series.ts";
 import type { LagChoice } from "./dickeyFullerRegression.ts";
 import { dickeyFullerRegression, schwertLags } from "./dickeyFullerRegression.ts";
@@ -16,6 +16,8 @@ export interface AdfOptions {
   readonly lags?: LagChoice | null;
   /** Largest number a criterion compares; default ceil(12 (n/100)^(1/4)). */
   readonly maxLags?: number | null;
+  /** Confidence at which the sentence reads the test. */
+  readonly level?: number;
 }
 
 /** Augmented Dickey-Fuller test of a unit root, against stationarity around the trend. Small p: no unit root.
@@ -35,7 +37,7 @@ export function adf(x: Series | ArrayLike<number>, options: AdfOptions = {}): Te
   const p = dickeyFullerP(trend, statistic);
   return {
     name, statistic, p, lags, lagRule: lagRule(asked, maxLags), critical: dickeyFullerCritical(trend, n), n, nullHypothesis, status: "ok",
-    ...(note === null ? {} : { note }), sentence: unitRootSentence("The augmented Dickey-Fuller test", p, undefined, trend),
+    ...(note === null ? {} : { note }), sentence: unitRootSentence("The augmented Dickey-Fuller test", { p }, trend, options.level),
   };
 }
 
@@ -54,12 +56,14 @@ export function checkedLags(who: string, asked: LagChoice, given: number | null 
 
 /** How the lags were chosen, in words. */
 export function lagRule(asked: LagChoice, maxLags: number): string {
-  return typeof asked === "number" ? "given" : `least ${asked.toUpperCase()} among 0 to ${maxLags}, on one sample`;
+  return typeof asked === "number" ? "as given" : `by least ${asked.toUpperCase()} among 0 to ${maxLags}`;
 }
 
-/** What a test whose null hypothesis is a unit root says at 5%, without claiming that a hypothesis was proved. */
-export function unitRootSentence(test: string, p: number, bound: "below" | "above" | undefined, trend: Trend): string {
-  return p < 0.05
-    ? `${test} rejects a unit root at the 5% level (${printedP(p, bound)}), in favour of a series that is stationary ${trendWords(trend)}.`
-    : `${test} does not reject a unit root at the 5% level (${printedP(p, bound)}); that is no proof of one.`;
+/** What a test whose null hypothesis is a unit root says at a level, without claiming that a hypothesis was proved. */
+export function unitRootSentence(name: string, test: Pick<Test, "p" | "bound">, trend: Trend, level = 0.95): string {
+  const rejected = rejects(test, 1 - level), p = printedP(test.p, test.bound);
+  if (rejected === null) return `${name} cannot be read at the ${levelWords(level)}: its printed table ends before it (${p}).`;
+  return rejected
+    ? `${name} rejects a unit root at the ${levelWords(level)} (${p}), in favour of a series that is stationary ${trendWords(trend)}.`
+    : `${name} does not reject a unit root at the ${levelWords(level)} (${p}); that is no proof of one.`;
 }

@@ -1,14 +1,15 @@
 // The Canova-Hansen test: does the seasonal pattern stay, or does it wander?
 
 import type { Test } from "../diagnostics/test.ts";
-import { printedP, unavailable } from "../diagnostics/test.ts";
+import { levelWords, printedP, unavailable } from "../diagnostics/test.ts";
 import { choleskyInto, forwardSolveInto } from "../linear/cholesky.ts";
 import { leastSquares } from "../linear/leastSquares.ts";
 import { defaultSeasonLength } from "../series/every.ts";
 import type { Series } from "../series/series.ts";
 import { isSeries } from "../series/series.ts";
 import { sampleOf } from "./sample.ts";
-import { vonMisesUpper } from "./vonMises.ts";
+import { lagRuleOf } from "./longRunVariance.ts";
+import { vonMisesQuantile, vonMisesUpper } from "./vonMises.ts";
 
 export interface CanovaHansenOptions {
   /** Periods a season; default from the spacing. */
@@ -17,6 +18,8 @@ export interface CanovaHansenOptions {
   readonly bandwidth?: number | null;
   /** Take a first difference before, so that a unit root of the level is not mistaken for a wandering season; default true. */
   readonly difference?: boolean;
+  /** Confidence at which the sentence reads the test. */
+  readonly level?: number;
 }
 
 /** Canova-Hansen test that all seasonal frequencies together are stable, against unit roots at some of them.
@@ -31,7 +34,7 @@ export function canovaHansen(x: Series | ArrayLike<number>, options: CanovaHanse
   if (!Number.isInteger(length) || length < 2) throw new RangeError(`canovaHansen: length is ${length}, expected a whole number of periods from 2 on`);
   const { values: levels, note, why } = sampleOf(x, 3 * length + 2);
   if (why !== null) return unavailable(nullHypothesis, levels.length, why, { name });
-  const difference = options.difference ?? true;
+  const { difference = true, level = 0.95 } = options;
   const values = difference ? levels.slice(1).map((v, t) => v - levels[t]) : levels;
   const n = values.length, df = length - 1;
   const bandwidth = options.bandwidth ?? Math.floor(4 * (n / 100) ** 0.25);
@@ -41,11 +44,12 @@ export function canovaHansen(x: Series | ArrayLike<number>, options: CanovaHanse
   if (Number.isNaN(statistic)) return unavailable(nullHypothesis, n, "the seasonal pattern fits the data exactly, so there are no errors to measure it against", { name, df });
   const p = vonMisesUpper(statistic, df);
   return {
-    name, statistic, p, df, lags: bandwidth, lagRule: options.bandwidth === null || options.bandwidth === undefined ? "floor(4 (n/100)^(1/4))" : "given", n, nullHypothesis, status: "ok",
-    note: [difference ? "of the first difference" : "of the level", ...(note === null ? [] : [note])].join("; "),
-    sentence: p < 0.05
-      ? `The Canova-Hansen test rejects a stable seasonal pattern of length ${length} at the 5% level (${printedP(p)}): a seasonal difference is called for.`
-      : `The Canova-Hansen test does not reject a stable seasonal pattern of length ${length} at the 5% level (${printedP(p)}); that is no proof of one.`,
+    name, statistic, p, df, lags: bandwidth, lagRule: options.bandwidth === null || options.bandwidth === undefined ? lagRuleOf("short") : "as given", n, nullHypothesis, status: "ok",
+    critical: { "10%": vonMisesQuantile(0.1, df), "5%": vonMisesQuantile(0.05, df), "1%": vonMisesQuantile(0.01, df) },
+    note: [difference ? "run on the first difference, so that a unit root of the level does not pass for a wandering season" : "run on the level", ...(note === null ? [] : [note])].join("; "),
+    sentence: p < 1 - level
+      ? `The Canova-Hansen test rejects a stable seasonal pattern of length ${length} at the ${levelWords(level)} (${printedP(p)}): a seasonal difference is called for.`
+      : `The Canova-Hansen test does not reject a stable seasonal pattern of length ${length} at the ${levelWords(level)} (${printedP(p)}); that is no proof of one.`,
   };
 }
 

@@ -11,7 +11,7 @@ import { tableP } from "./kpss.ts";
 import { checkTrend, dickeyFullerCritical, dickeyFullerP } from "./mackinnon.ts";
 import { sampleOf } from "./sample.ts";
 
-export interface DfGlsOptions { readonly trend?: "constant" | "linear"; readonly lags?: LagChoice | null; readonly maxLags?: number | null }
+export interface DfGlsOptions { readonly trend?: "constant" | "linear"; readonly lags?: LagChoice | null; readonly maxLags?: number | null; readonly level?: number }
 
 // Elliott, Rothenberg & Stock (1996), table I.C (linear trend): 1%, 2.5%, 5%, 10% at T = 50, 100, 200 and without end.
 const printed = { sizes: [50, 100, 200, Infinity], rows: [[-3.77, -3.46, -3.19, -2.89], [-3.58, -3.29, -3.03, -2.74], [-3.46, -3.18, -2.93, -2.64], [-3.48, -3.15, -2.89, -2.57]] };
@@ -37,7 +37,7 @@ export function dfGls(x: Series | ArrayLike<number>, options: DfGlsOptions = {})
     : tableP(-statistic, ["10%", "5%", "2.5%", "1%"].map((level) => -(critical as Record<string, number>)[level]));
   return {
     name, statistic, p, ...(bound === undefined ? {} : { bound }), lags, lagRule: lagRule(asked, maxLags), critical, n, nullHypothesis, status: "ok",
-    ...(note === null ? {} : { note }), sentence: unitRootSentence("The DF-GLS test", p, bound, trend),
+    ...(note === null ? {} : { note }), sentence: unitRootSentence("The DF-GLS test", { p, ...(bound === undefined ? {} : { bound }) }, trend, options.level),
   };
 }
 

@@ -3,6 +3,7 @@
 import { acf } from "../correlogram/acf.ts";
 import { observedOf } from "../diagnostics/subject.ts";
 import type { Test } from "../diagnostics/test.ts";
+import { rounded } from "../diagnostics/test.ts";
 import type { Series } from "../series/series.ts";
 import { valuesOf } from "../series/series.ts";
 import { adf } from "./adf.ts";
@@ -10,8 +11,10 @@ import { kpss } from "./kpss.ts";
 
 /** One way of differencing. */
 export interface DifferenceRow {
-  /** "none", "1", "12", "1 and 12", ... in the order they would be applied. */
+  /** "none", "1", "1 twice", "12", "1 and 12", "1 twice and 12". */
   readonly label: string;
+  /** "no difference", "two differences at lag 1", "differences at lags 1 and 12", for sentences. */
+  readonly words: string;
   /** Lags of the `difference` steps. */
   readonly lags: readonly number[];
   readonly d: number; readonly seasonal: number;
@@ -28,8 +31,9 @@ export interface DifferenceRow {
 /** Tries no, one and two first differences, without and with one seasonal difference.
  *  The sign of one too many: the variance rises over the row with one less, and the lag-1 autocorrelation (or the one at the
  *  season) comes near -0.5 or below, the value that differencing leaves behind in white noise.
- *  @param seasonLength  null for no seasonal difference */
-export function differences(x: Series | ArrayLike<number>, seasonLength: number | null, most = 2): DifferenceRow[] {
+ *  @param seasonLength  null for no seasonal difference
+ *  @param most          most differences at lag 1   @param level  confidence at which each row's tests are read */
+export function differences(x: Series | ArrayLike<number>, seasonLength: number | null, { most = 2, level = 0.95 }: { readonly most?: number; readonly level?: number } = {}): DifferenceRow[] {
   const values = valuesOf(x), rows: DifferenceRow[] = [];
   for (const seasonal of seasonLength === null ? [0] : [0, 1]) {
     for (let d = 0; d <= most; d++) {
@@ -40,8 +44,8 @@ export function differences(x: Series | ArrayLike<number>, seasonLength: number 
       const less = [rows.find((r) => r.d === d - 1 && r.seasonal === seasonal), rows.find((r) => r.d === d && r.seasonal === seasonal - 1)];
       const { variance, r } = moments(tried, seasonLength);
       rows.push({
-        label: lags.length === 0 ? "none" : lags.join(" and "), lags, d, seasonal, n, values: tried, variance, lag1: r[1] ?? NaN,
-        adf: adf(tried), kpss: kpss(tried), overDifferenced: sign(variance, r, less, seasonLength),
+        ...named(d, seasonal === 1 ? seasonLength : null), lags, d, seasonal, n, values: tried, variance, lag1: r[1] ?? NaN,
+        adf: adf(tried, { level }), kpss: kpss(tried, { level }), overDifferenced: sign(variance, r, less, seasonLength),
       });
     }
   }
@@ -53,10 +57,27 @@ export function differencesSentence(rows: readonly DifferenceRow[]): string {
   const usable = rows.filter((r) => r.variance > 0);
   if (usable.length === 0) return "The data cannot answer: no way of differencing leaves ten values that vary.";
   const best = usable.reduce((a, b) => (b.variance < a.variance ? b : a));
-  const what = best.d + best.seasonal === 0 ? "without differencing" : `after ${best.lags.length === 1 ? "a difference" : "differences"} at lag ${best.label}`;
-  const over = rows.filter((r) => r.overDifferenced !== null).map((r) => r.label);
-  const warning = over.length === 0 ? "" : `; ${over.map((l) => `"${l}"`).join(" and ")} ${over.length === 1 ? "shows" : "show"} signs of one difference too many`;
-  return `The variance is smallest ${what}${best.overDifferenced === null ? "" : " (although that row itself shows signs of one too many)"}${warning}. Least variance is a guide, not a test.`;
+  const over = rows.filter((r) => r.overDifferenced !== null);
+  const least = `The variance is smallest ${best.lags.length === 0 ? "without differencing" : `after ${best.words}`}${best.overDifferenced === null ? "" : ", although that itself shows the signs of one difference too many"}.`;
+  return [least, ...tooMany(over.filter((r) => r !== best), rows.length), "Least variance is a guide, not a test."].join(" ");
+}
+
+/** Which rows look like one difference too many, and by what. */
+function tooMany(over: readonly DifferenceRow[], tried: number): string[] {
+  if (over.length === 0) return [];
+  const why = "the variance rises, and the correlation left at that lag is near −0.5";
+  if (over.length > 2 && over.length === tried - 1) return [`Every difference tried looks like one too many: ${why}.`];
+  if (over.length > 1) return [`Signs of one difference too many (${why}): ${over.map((r) => r.words).join("; ")}.`];
+  const { words, lags } = over[0];
+  return [`${words[0].toUpperCase()}${words.slice(1)} ${lags.length === 1 ? "looks" : "look"} like one too many: ${why}.`];
+}
+
+/** A way of differencing, for tables and for sentences. */
+function named(d: number, season: number | null): Pick<DifferenceRow, "label" | "words"> {
+  const near = ["", "1", "1 twice"][d] ?? `1, ${d} times`, count = ["", "a difference", "two differences"][d] ?? `${d} differences`;
+  if (season === null) return d === 0 ? { label: "none", words: "no difference" } : { label: near, words: `${count} at lag 1` };
+  if (d === 0) return { label: String(season), words: `a difference at lag ${season}` };
+  return { label: `${near} and ${season}`, words: d === 1 ? `differences at lags 1 and ${season}` : `${count} at lag 1 and one at lag ${season}` };
 }
 
 function moments(values: Float64Array, seasonLength: number | null): { variance: number; r: Float64Array } {
@@ -68,8 +89,8 @@ function moments(values: Float64Array, seasonLength: number | null): { variance:
 
 function sign(variance: number, r: Float64Array, less: readonly (DifferenceRow | undefined)[], seasonLength: number | null): string | null {
   const [oneLess, seasonLess] = less;
-  const rose = (row: DifferenceRow): string => `the variance rises from ${row.variance.toPrecision(3)} to ${variance.toPrecision(3)}`;
-  if (oneLess !== undefined && oneLess.variance < variance && r[1] < -0.4) return `${rose(oneLess)} and the lag-1 autocorrelation is ${r[1].toFixed(2)}`;
-  if (seasonLess !== undefined && seasonLength !== null && seasonLess.variance < variance && r[seasonLength] < -0.4) return `${rose(seasonLess)} and the lag-${seasonLength} autocorrelation is ${r[seasonLength].toFixed(2)}`;
+  const rose = (row: DifferenceRow): string => `the variance rises from ${rounded(row.variance)} to ${rounded(variance)}`;
+  if (oneLess !== undefined && oneLess.variance < variance && r[1] < -0.4) return `${rose(oneLess)} and the lag-1 autocorrelation is ${rounded(r[1], 2)}`;
+  if (seasonLess !== undefined && seasonLength !== null && seasonLess.variance < variance && r[seasonLength] < -0.4) return `${rose(seasonLess)} and the lag-${seasonLength} autocorrelation is ${rounded(r[seasonLength], 2)}`;
   return null;
 }

@@ -1,7 +1,7 @@
 // The KPSS test, whose null hypothesis is stationarity.
 
 import type { Test } from "../diagnostics/test.ts";
-import { printedP, unavailable } from "../diagnostics/test.ts";
+import { levelWords, printedP, rejects, unavailable } from "../diagnostics/test.ts";
 import { leastSquares } from "../linear/leastSquares.ts";
 import type { Series } from "../series/series.ts";
 import type { Bandwidth } from "./longRunVariance.ts";
@@ -13,6 +13,8 @@ export interface KpssOptions {
   /** Stationary around a constant or around a straight trend. */
   readonly trend?: "constant" | "linear";
   readonly bandwidth?: Bandwidth | null;
+  /** Confidence at which the sentence reads the test. */
+  readonly level?: number;
 }
 
 // Kwiatkowski, Phillips, Schmidt & Shin (1992), table 1: upper tail critical values at 10%, 5%, 2.5%, 1%.
@@ -42,10 +44,16 @@ export function kpss(x: Series | ArrayLike<number>, options: KpssOptions = {}): 
     name, statistic, p, ...(bound === undefined ? {} : { bound }), lags, lagRule: rule, n, nullHypothesis, status: "ok", longRunVariance: variance,
     critical: { "10%": tables[trend][0], "5%": tables[trend][1], "2.5%": tables[trend][2], "1%": tables[trend][3] },
     ...(note === null ? {} : { note }),
-    sentence: p < 0.05
-      ? `The KPSS test rejects stationarity around ${around} at the 5% level (${printedP(p, bound)}).`
-      : `The KPSS test does not reject stationarity around ${around} at the 5% level (${printedP(p, bound)}); that is no proof of it.`,
+    sentence: sentenceOf({ p, ...(bound === undefined ? {} : { bound }) }, around, options.level),
   };
+}
+
+function sentenceOf(test: Pick<Test, "p" | "bound">, around: string, level = 0.95): string {
+  const rejected = rejects(test, 1 - level), p = printedP(test.p, test.bound);
+  if (rejected === null) return `The KPSS test cannot be read at the ${levelWords(level)}: its printed table ends before it (${p}).`;
+  return rejected
+    ? `The KPSS test rejects stationarity around ${around} at the ${levelWords(level)} (${p}).`
+    : `The KPSS test does not reject stationarity around ${around} at the ${levelWords(level)} (${p}); that is no proof of it.`;
 }
 
 function residuals(values: Float64Array, trend: "constant" | "linear"): Float64Array {

@@ -11,7 +11,7 @@ import type { Trend } from "./mackinnon.ts";
 import { checkTrend, dickeyFullerCritical, dickeyFullerP, trendCount, trendTerm } from "./mackinnon.ts";
 import { sampleOf } from "./sample.ts";
 
-export interface PhillipsPerronOptions { readonly trend?: Trend; readonly bandwidth?: Bandwidth | null }
+export interface PhillipsPerronOptions { readonly trend?: Trend; readonly bandwidth?: Bandwidth | null; readonly level?: number }
 
 /** Phillips-Perron test of a unit root: the Dickey-Fuller regression without lags, its t statistic corrected for
  *  autocorrelation by a long-run variance. Small p: no unit root. `statistic` is Z_tau, `zAlpha` the coefficient version.
@@ -42,6 +42,6 @@ export function phillipsPerron(x: Series | ArrayLike<number>, options: PhillipsP
   const p = dickeyFullerP(trend, statistic);
   return {
     name, statistic, p, lags, lagRule: rule, critical: dickeyFullerCritical(trend, n), n, nullHypothesis, status: "ok", zAlpha, gamma0, longRunVariance: lambda2,
-    ...(note === null ? {} : { note }), sentence: unitRootSentence("The Phillips-Perron test", p, undefined, trend),
+    ...(note === null ? {} : { note }), sentence: unitRootSentence("The Phillips-Perron test", { p }, trend, options.level),
   };
 }

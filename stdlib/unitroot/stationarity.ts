@@ -1,6 +1,7 @@
 // Unit-root and stationarity tests side by side, and what they say together.
 
 import type { Test } from "../diagnostics/test.ts";
+import { levelWords, printedP, rejects } from "../diagnostics/test.ts";
 import { checkLevel } from "../correlogram/bands.ts";
 import { defaultSeasonLength } from "../series/every.ts";
 import type { Series } from "../series/series.ts";
@@ -61,11 +62,11 @@ export function stationarity(options: StationarityOptions): Stationarity {
   const seasonLength = asked !== null && valuesOf(series).length >= 3 * asked + 2 ? asked : null;
   const simple = trend === "linear" || trend === "quadratic" ? "linear" : "constant";
   const tests = {
-    adf: adf(series, { trend, lags }), phillipsPerron: phillipsPerron(series, { trend, bandwidth }),
-    kpss: kpss(series, { trend: simple, bandwidth }), dfGls: dfGls(series, { trend: simple, lags }),
+    adf: adf(series, { trend, lags, level }), phillipsPerron: phillipsPerron(series, { trend, bandwidth, level }),
+    kpss: kpss(series, { trend: simple, bandwidth, level }), dfGls: dfGls(series, { trend: simple, lags, level }),
   };
-  const seasonal = seasonLength === null ? null : canovaHansen(series, { length: seasonLength, bandwidth: typeof bandwidth === "number" ? bandwidth : null });
-  const rows = differences(series, seasonLength);
+  const seasonal = seasonLength === null ? null : canovaHansen(series, { length: seasonLength, bandwidth: typeof bandwidth === "number" ? bandwidth : null, level });
+  const rows = differences(series, seasonLength, { level });
   const { verdict, together } = whatTheySay(tests, seasonal, trend, 1 - level);
   const notes = [
     ...(trend === "none" || trend === "quadratic" ? [`KPSS and DF-GLS are not made for this trend and were run ${trendWords(simple)}.`] : []),
@@ -81,12 +82,14 @@ export function stationarity(options: StationarityOptions): Stationarity {
 type Tests = Pick<Stationarity, "adf" | "phillipsPerron" | "kpss" | "dfGls">;
 
 function whatTheySay(tests: Tests, seasonal: Test | null, trend: Trend, alpha: number): { verdict: Stationarity["verdict"]; together: string } {
-  const at = `at the ${Number((100 * alpha).toPrecision(3))}% level`;
+  const at = `at the ${levelWords(1 - alpha)}`;
   const rooted: [string, Test][] = ([["ADF", tests.adf], ["Phillips-Perron", tests.phillipsPerron], ["DF-GLS", tests.dfGls]] as [string, Test][]).filter(([, t]) => t.status === "ok");
   const still = tests.kpss;
   if (rooted.length === 0 || still.status !== "ok") return { verdict: "unavailable", together: `The data cannot answer: ${tests.adf.note ?? still.note ?? "the tests could not be run"}.` };
-  const against = rooted.filter(([, t]) => t.p < alpha).map(([name]) => name), not = rooted.filter(([, t]) => !(t.p < alpha)).map(([name]) => name);
-  const kpssRejects = still.p < alpha || (still.bound === "below" && still.p <= alpha);
+  const unread = ([...rooted, ["KPSS", still]] as [string, Test][]).find(([, t]) => rejects(t, alpha) === null);
+  if (unread !== undefined) return { verdict: "undecided", together: `The tests cannot be read together ${at}: the printed table of ${unread[0]} ends before it (${printedP(unread[1].p, unread[1].bound)}). Each is in the table with its p-value.` };
+  const against = rooted.filter(([, t]) => rejects(t, alpha)).map(([name]) => name), not = rooted.filter(([, t]) => !rejects(t, alpha)).map(([name]) => name);
+  const kpssRejects = rejects(still, alpha) === true;
   const around = trendWords(trend), season = seasonal === null || seasonal.status !== "ok" ? "" : ` ${seasonal.sentence ?? ""}`;
   const reject = (names: string[]): string => `${list(names)} ${names.length === 1 ? "rejects" : "reject"}`;
   if (not.length === 0 && !kpssRejects) return { verdict: "stationary", together: `The tests agree ${at}: ${reject(against)} a unit root and KPSS does not reject stationarity, so the series can be treated as stationary ${around}.${season}` };

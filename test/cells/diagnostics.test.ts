@@ -44,6 +44,16 @@ describe("diagnostics", () => {
     ]);
     await expect(drawnCharts(parts)).resolves.toHaveLength(6);
   });
+  test("reads every test at the level asked for, limits of the pictures included", async () => {
+    const result = await run({ model: seasonal(madeSeries()), level: 0.9 });
+    // Kolmogorov's distribution, 10% point as printed by Smirnov (1948): 1.22.
+    expect(result.cusum.limit).toBeCloseTo(1.2238, 3);
+    expect(result.cusum.sentence).toContain("90% limits");
+    expect(result.cumulativePeriodogram.limit! / result.cumulativePeriodogram.critical95!).toBeCloseTo(1.2238 / 1.358, 3);
+    expect(result.cumulativePeriodogram.sentence).toContain("90% limits");
+    const doubtful = { ...result, ljungBox: { ...result.ljungBox, p: 0.07 } };
+    expect((diagnostics.show(doubtful, show)[1] as TablePart).rows[0][1]).toMatch(/^yes, beyond chance/);
+  });
   test("says up to which lag no degrees of freedom are left", async () => {
     const parts = diagnostics.show(await run({ model: seasonal(madeSeries()) }), show);
     expect(charts(parts)[1].alt).toContain("Up to lag 2 no degrees of freedom are left.");

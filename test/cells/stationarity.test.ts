@@ -36,7 +36,7 @@ describe("stationarity", () => {
     expect(table.rows[0][1]).toBe("a unit root: shocks never die out");
     expect(table.rows[3][1]).toBe("stationary around a constant");
     expect(table.rows[0][4]).toMatch(/^−2\.58, −2\.89, −3\.50$/);
-    expect(table.rows[0][5]).toMatch(/^\d+ \(least AIC among 0 to \d+, on one sample\)$/);
+    expect(table.rows[0][5]).toMatch(/^\d+, by least AIC among 0 to \d+$/);
     expect(parts[0].part).toBe("text");
   });
   test("prints a bound where the table of KPSS ends", async () => {
@@ -52,9 +52,9 @@ describe("stationarity", () => {
     const parts = stationarity.show(result, show);
     const charts = parts.filter((p): p is ChartPart => p.part === "chart");
     expect(charts.map(p => p.title)).toEqual(["Each statistic against its critical values at 10%, 5% and 1%", "Differences side by side"]);
-    expect(charts[0].alt).toMatch(/^Right of 1 a test rejects its null hypothesis at 5%: /);
+    expect(charts[0].alt).toBe("At the 5% level Phillips-Perron and KPSS reject their null hypotheses; right of 1 a statistic is beyond its 5% critical value.");
     const svgs = await drawnCharts(parts);
-    expect(svgs[1]).toContain("differenced at lags 1 and 12");
+    expect(svgs[1]).toContain("differences at lags 1 and 12");
     expect(result.seasonal).not.toBeNull();
     expect(texts(parts)).toContain(result.together);
   });
@@ -62,10 +62,40 @@ describe("stationarity", () => {
     const raw = await run({ series: madeSeries() });
     const parts = stationarity.show(raw, show);
     expect(parts.filter((p): p is ChartPart => p.part === "chart").map(p => p.title)).toContain("Spread against level, block by block");
-    expect(texts(parts)).toMatch(/Over 6 blocks the spread is .*lambda .*95% interval/);
+    expect(texts(parts)).toMatch(/Over 6 blocks the spread grows in proportion to the level.* \(slope 1\.01 .*lambda .*95% interval −/);
     await expect(drawnCharts(parts)).resolves.toHaveLength(3);
     expect(raw.lambda?.guerrero.lambda).toBeGreaterThanOrEqual(-1);
     expect((await run({ series: stepped(madeSeries(), [{ step: "log" }]) })).lambda).toBeNull();
+  });
+  test("reads every test at the level asked for, in its sentence, in the table and in the picture", async () => {
+    // The log of lynx trappings: ADF p = 0.0056 and DF-GLS p = 0.046 (MacKinnon 1994), so 1% parts them.
+    const lynx = stepped(numbered(column("lynx")), [{ step: "log" }]);
+    const strict = await run({ series: lynx, level: 0.99, lags: 10 });
+    expect(strict.adf.p).toBeLessThan(0.01);
+    expect(strict.dfGls.p).toBeGreaterThan(0.01);
+    expect(strict.adf.sentence).toContain("rejects a unit root at the 1% level");
+    expect(strict.dfGls.sentence).toContain("does not reject a unit root at the 1% level");
+    expect(strict.together).toMatch(/^The tests disagree at the 1% level/);
+    const parts = stationarity.show(strict, show), [chart] = parts.filter((p): p is ChartPart => p.part === "chart");
+    expect(chart.alt).toContain("right of 1 a statistic is beyond its 1% critical value");
+    expect(JSON.stringify(parts.find((p): p is TablePart => p.part === "table")!.rows.map(row => row[6]))).toBe('["rejected","rejected","not rejected","not rejected"]');
+    // The printed table of KPSS ends at 1% and 10%: nothing is read beyond its ends.
+    expect((await run({ series: lynx, level: 0.85 })).together).toContain("cannot be read together at the 15% level: the printed table of KPSS ends before it (p > 0.10)");
+  });
+  test("takes BIC for the lags of DF-GLS unless told otherwise, as its authors do", async () => {
+    const { adf, dfGls } = await run({ series: numbered(column("nile")) });
+    expect([adf.lagRule, dfGls.lagRule]).toEqual(["by least AIC among 0 to 12", "by least BIC among 0 to 12"]);
+    expect((await run({ series: numbered(column("nile")), lags: "aic" })).dfGls.lagRule).toBe("by least AIC among 0 to 12");
+  });
+  test("takes the bandwidth as a rule, too", async () => {
+    const { kpss } = await run({ series: numbered(column("nile")), bandwidth: "long" });
+    expect([kpss.lags, kpss.lagRule]).toEqual([12, "by the long rule, 12 (n/100)^¼ rounded down"]);
+  });
+  test("says once that gaps keep it from an answer, and draws no empty picture", async () => {
+    const parts = stationarity.show(await run({ series: numbered(column("nile").map((v, t) => (t % 30 === 20 ? NaN : v))) }), show);
+    expect(texts(parts)).toContain("fill them first, or take a window without them");
+    expect(parts.some(p => p.part === "chart" && p.title.startsWith("Each statistic"))).toBe(false);
+    expect(parts.some(p => p.part === "table" && p.title === "Test by test")).toBe(false);
   });
   test("shows no number where a test could not be run", async () => {
     const parts = stationarity.show(await run({ series: numbered([1, 3, 2, 5, 4, 6, 3]) }), show);

@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
 import { canovaHansen } from "../../../stdlib/unitroot/canovaHansen.ts";
-import { vonMisesUpper } from "../../../stdlib/unitroot/vonMises.ts";
+import { vonMisesQuantile, vonMisesUpper } from "../../../stdlib/unitroot/vonMises.ts";
 import { makeSeries } from "../../../stdlib/series/series.ts";
 import { seriesOf } from "../referenceCases.ts";
 
@@ -14,6 +14,12 @@ describe("the generalised von Mises distribution", () => {
   it("has the finer points of the KPSS table for one", () => {
     // Kwiatkowski, Phillips, Schmidt & Shin (1992), table 1; exact to four digits by MacNeill (1978): 0.46136, 0.74346, 0.34730.
     [[0.3473, 0.1], [0.46136, 0.05], [0.74346, 0.01]].forEach(([x, p]) => expect(vonMisesUpper(x, 1)).toBeCloseTo(p, 5));
+  });
+  it("turns a probability back into its point, so that the test can print critical values", () => {
+    for (const df of [1, 3, 11, 51]) for (const p of [0.1, 0.05, 0.01]) expect(vonMisesUpper(vonMisesQuantile(p, df), df) / p).toBeCloseTo(1, 5);
+    // Canova & Hansen (1995), table 1, for months: 2.49, 2.75, 3.27.
+    const { critical } = canovaHansen(seriesOf("usaccdeaths"), { length: 12 });
+    [["10%", 2.49], ["5%", 2.75], ["1%", 3.27]].forEach(([level, printed]) => expect(Math.abs(critical![level] - Number(printed))).toBeLessThan(0.02));
   });
   it("has mean df / 6", () => {
     for (const df of [1, 4]) {
@@ -32,7 +38,7 @@ describe("the Canova-Hansen test", () => {
   });
   it("finds the wandering season of the airline passengers, and not one where the pattern is fixed", () => {
     const airline = canovaHansen(makeSeries({ name: "passengers", every: "P1M", start: "1949-01", values: seriesOf("airline").map(Math.log) }));
-    expect(airline).toMatchObject({ df: 11, lags: 4, lagRule: "floor(4 (n/100)^(1/4))", status: "ok" });
+    expect(airline).toMatchObject({ df: 11, lags: 4, lagRule: "by the short rule, 4 (n/100)^¼ rounded down", status: "ok" });
     expect(airline.p).toBeLessThan(0.05);
     const noise = seriesOf("treering").slice(0, 400).map((v, t) => v + 5 * Math.cos((Math.PI * t) / 2));
     expect(canovaHansen(noise, { length: 4, difference: false }).p).toBeGreaterThan(0.05);

@@ -23,16 +23,16 @@ describe("stationarity", () => {
     expect(s.seasonLength).toBe(12);
     expect(s.seasonal?.sentence).toContain("a seasonal difference is called for");
     expect(s.strength!.seasonal).toBeGreaterThan(0.9);
-    expect(s.differences.map((r) => r.label)).toEqual(["none", "1", "1 and 1", "12", "1 and 12", "1 and 1 and 12"]);
+    expect(s.differences.map((r) => r.label)).toEqual(["none", "1", "1 twice", "12", "1 and 12", "1 twice and 12"]);
     // Box & Jenkins (1976), section 9.2: variance falls to one difference of each kind and rises after.
-    expect(s.differencesSentence).toContain('after differences at lag 1 and 12');
-    expect(s.differences[5].overDifferenced).toContain("lag-1 autocorrelation is -0.6");
+    expect(s.differencesSentence).toContain("after differences at lags 1 and 12. Two differences at lag 1 and one at lag 12 look like one too many");
+    expect(s.differences[5].overDifferenced).toContain("lag-1 autocorrelation is −0.6");
   });
   it("marks a series that was differenced once too often", () => {
     const rows = differences(seriesOf("sim_white"), null);
     expect(rows[0].overDifferenced).toBeNull();
-    expect(rows[1].overDifferenced).toMatch(/^the variance rises from .* and the lag-1 autocorrelation is -0\.5/);
-    expect(differencesSentence(rows)).toMatch(/^The variance is smallest without differencing; "1" and "1 and 1" show signs/);
+    expect(rows[1].overDifferenced).toMatch(/^the variance rises from .* and the lag-1 autocorrelation is −0\.5/);
+    expect(differencesSentence(rows)).toMatch(/^The variance is smallest without differencing. Signs of one difference too many .*: a difference at lag 1; two differences at lag 1\. /);
   });
   it("answers in words where the data cannot", () => {
     for (const series of [[], [1], [1, 2], Array.from({ length: 40 }, () => 7)]) {
