@@ -511,11 +511,12 @@ class NotebookEngine implements Engine {
     entry.progress = null;
     entry.state = outcome.ok ? "current" : outcome.state;
     this.#outstanding.delete(id);
-    this.#dirty.add(id);
+    // A cell that is done is not held up by the cells that read it: they may run before the next task.
+    if (outcome.ok && this.#cells.has(id) && !this.#disposed) { this.#dirty.delete(id); this.#send(this.#cellReport(id)); } else this.#dirty.add(id);
     this.#scheduleFlush();
   }
 
-  /** Reports go out together, so that a cell that is done at once never flickers through its states. */
+  /** Other reports go out together, so that a cell that is done at once never flickers through its states. */
   #scheduleFlush(): void {
     if (this.#flushing || this.#disposed) return;
     this.#flushing = true;

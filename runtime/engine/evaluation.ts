@@ -35,7 +35,7 @@ export class InputFailed extends Undecided {
 /** The value of an expression.
  *  @throws EvaluationError with its place; InputFailed, Undecided; Overtaken from the context */
 export async function evaluate(source: string, scope: EvaluationScope): Promise<unknown> {
-  const compiled = compiledFrom(source);
+  const compiled = compiledFrom(source, scope.library.compiled);
   const callables = new WeakSet(scope.library.functions);
   // An expression always takes the same way, so the n-th call of a kind is the same call when it is evaluated again.
   const answers: Answer[] = [];
@@ -57,13 +57,20 @@ export async function evaluate(source: string, scope: EvaluationScope): Promise<
   }
 }
 
-function compiledFrom(source: string): Compiled {
+/** A moved control evaluates the same texts again and again: each is parsed once. */
+function compiledFrom(source: string, known: Map<string, Compiled>): Compiled {
+  const found = known.get(source);
+  if (found !== undefined) return found;
   const parsed = parseExpression(source);
   if (parsed.tree === null) {
     const fault = parsed.faults[0];
     throw new EvaluationError(fault.message, { from: fault.from, to: fault.to });
   }
-  return compile(parsed.tree);
+  const made = compile(parsed.tree);
+  // Typing leaves its half-written texts behind.
+  if (known.size >= 2000) known.clear();
+  known.set(source, made);
+  return made;
 }
 
 /** What a call of a kind gave, or will give. */

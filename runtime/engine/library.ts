@@ -1,6 +1,7 @@
 // The names that every expression may use: library functions, constants, function forms of kinds.
 
 import type { Language } from "../../cells/kind.ts";
+import type { Compiled } from "./evaluate.ts";
 
 export interface LibraryScope {
   /** Functions, and objects of them for dotted names ("rule.naive"). Constants too. */
@@ -10,6 +11,8 @@ export interface LibraryScope {
   readonly functions: readonly object[];
   /** All of these names, for the parser. */
   readonly names: readonly string[];
+  /** Expressions compiled so far, by their text. */
+  readonly compiled: Map<string, Compiled>;
 }
 
 export function libraryScope(language: Language): LibraryScope {
@@ -26,5 +29,5 @@ export function libraryScope(language: Language): LibraryScope {
   }
   for (const [space, members] of spaces) values.set(space, Object.freeze(members));
   const callableKinds = new Map(language.kinds.filter((kind) => kind.callable).map((kind) => [kind.name, kind]));
-  return { values, callableKinds, functions, names: [...new Set([...values.keys(), ...callableKinds.keys()])] };
+  return { values, callableKinds, functions, names: [...new Set([...values.keys(), ...callableKinds.keys()])], compiled: new Map() };
 }

@@ -47,6 +47,20 @@ describe("recomputation", () => {
     expect(sent.at(-1)).toEqual({ from: "settled", version: 1, moved: { a: 3 } });
   });
 
+  test("a cell that is done is told before the cells that read it have run", async () => {
+    const runsOfReader: number[] = [];
+    const engine = createEngine(fake, {
+      send: (message) => { if (message.from === "cell" && message.cell.id === "b" && message.cell.state === "current") runsOfReader.push(engine.cells().find((each) => each.id === "c")?.runs ?? NaN); },
+      read: () => Promise.reject(new Error("reads nothing")),
+    });
+    engines.push(engine);
+    engine.setText(chain);
+    await engine.settle();
+    engine.set("a", 3);
+    await engine.settle();
+    expect(runsOfReader).toEqual([0, 1]);
+  });
+
   test("a control moved to where it stands recomputes nothing else", async () => {
     const { engine, cell: at } = await open(chain);
     engine.set("a", 2);
