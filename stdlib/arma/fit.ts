@@ -7,7 +7,8 @@ import { estimate } from "./estimate.ts";
 import type { Estimate, Evaluate } from "./search.ts";
 import { filterEvaluate } from "./filterEvaluate.ts";
 import { edgesOf, type Edges } from "./edges.ts";
-import { flags } from "./flags.ts";
+import { inOwnColumns } from "./covariance.ts";
+import { flags, MEAN } from "./flags.ts";
 import { informationAt } from "./information.ts";
 import { gradientInto } from "./gradient.ts";
 import { valueAt } from "./likelihood.ts";
@@ -103,19 +104,13 @@ function listed(names: readonly string[]): string { return names.length < 2 ? na
 
 function flagsOf(result: Fit, s: Solution): Note[] {
   const { prepared } = s.numbers;
-  const names = s.numbers.kept.map(j => j < 0 ? "the mean" : prepared.names[j]);
-  const all = [...[...s.free].map(i => coefficientName(prepared, i)), ...names];
+  const lags = [...s.free].map(i => coefficientName(prepared, i));
+  const columns = s.numbers.kept.map(j => j < 0 ? MEAN : prepared.names[j]);
   const covariance = s.information?.covariance ?? null;
-  let correlation: Float64Array | null = null;
-  if (covariance !== null) {
-    const m = all.length, k = s.free.length;
-    correlation = new Float64Array(m * m);
-    // Among regressors the basis is orthogonal by construction; their own correlations are read from report.ts if wanted.
-    for (let i = 0; i < m; i++) for (let j = 0; j < m; j++) if (i < k && j < k) correlation[i * m + j] = covariance[i * m + j] / Math.sqrt(covariance[i * m + i] * covariance[j * m + j]);
-  }
   return flags({
-    prepared, x: s.x, converged: result.converged, n: result.n, k: parameterCount(prepared) - s.numbers.aliased.length, correlation, names: all,
-    aliased: s.numbers.aliased.map(j => j < 0 ? "mean" : prepared.names[j]), gaps: s.numbers.gaps.length, sigma2: result.sigma2, variance: s.numbers.unit ** 2,
+    prepared, x: s.x, converged: result.converged, n: result.n, k: parameterCount(prepared) - s.numbers.aliased.length, lags, columns,
+    covariance: covariance === null ? null : inOwnColumns(covariance, s.free.length, s.numbers.basis),
+    aliased: s.numbers.aliased.map(j => j < 0 ? MEAN : prepared.names[j]), gaps: s.numbers.gaps.length, sigma2: result.sigma2, variance: s.numbers.unit ** 2,
   });
 }
 

@@ -2,7 +2,8 @@
 
 import type { Note } from "./model.ts";
 import { denseFactor } from "./shape.ts";
-import type { Prepared } from "./prepare.ts";
+import { correlationAt, inflation } from "./covariance.ts";
+import { differencedBy, type Prepared } from "./prepare.ts";
 import { nearestRoot } from "./region.ts";
 import { inverseRoots } from "./roots.ts";
 
@@ -15,6 +16,10 @@ export const BOUNDARY = 1 + 1e-4;
 const CANCEL = 0.1;
 /** Correlation of two estimates from which they can hardly be told apart. */
 const CORRELATED = 0.95;
+/** A regressor's variance inflation factor from which the others say nearly the same (common practice, Marquardt 1970). */
+const INFLATED = 10;
+/** What the mean is called among the columns. */
+export const MEAN = "the mean";
 /** Observations a parameter: common advice is 10 or more. */
 const PER_PARAMETER = 5;
 
@@ -24,9 +29,11 @@ export interface Findings {
   readonly converged: boolean;
   readonly n: number;
   readonly k: number;
-  /** Correlations of estimates, with their names; null when not available. */
-  readonly correlation: Float64Array | null;
-  readonly names: readonly string[];
+  /** Names of the free lag coefficients, then of the estimated columns (mean and regressors). */
+  readonly lags: readonly string[];
+  readonly columns: readonly string[];
+  /** Of the estimates in that order, in their own units; null when not available. */
+  readonly covariance: Float64Array | null;
   readonly aliased: readonly string[];
   readonly gaps: number;
   readonly sigma2: number;
@@ -41,7 +48,8 @@ export function flags(f: Findings): Note[] {
   cancellation(f, caution);
   correlated(f, caution);
   if (f.k > 0 && f.n < PER_PARAMETER * f.k) caution("fewObservations", `There are ${f.n} observations for ${f.k} parameters, fewer than ${PER_PARAMETER} each: estimates and standard errors are rough, and criteria without the small-sample correction mislead. Take fewer lags, or use aicc.`);
-  for (const name of f.aliased) caution("collinear", `${name === "mean" ? "The mean" : `The regressor ${name}`} is a linear combination of the other regressors${f.prepared.lost > 0 ? " after differencing" : ""}, so its coefficient cannot be told from theirs; it was left out (coefficient 0, no standard error). Remove it, or one of the others.`);
+  for (const name of f.aliased) caution("collinear", aliasText(f, name));
+  inflated(f, caution);
   if (f.sigma2 < 1e-10 * f.variance && Number.isNaN(f.prepared.heldSigma2)) caution("perfectFit", "The model follows the series almost exactly, so the likelihood has no proper maximum: the series looks deterministic. Look at how it was made before using its standard errors.");
   if (f.gaps > 0) notes.push({ code: "gaps", tone: "note", text: `${f.gaps} missing value${f.gaps === 1 ? "" : "s"} inside the sample: the likelihood is that of what was observed, nothing was filled in.` });
   return notes;
@@ -79,13 +87,44 @@ function cancellation(f: Findings, caution: Caution): void {
   }
 }
 
+/** Estimates that move together: lag coefficients with each other, with the mean, with regressors. (Regressors among themselves are
+ *  told by their inflation; a mean that moves with a regressor far from zero is only a matter of where zero lies.) */
 function correlated(f: Findings, caution: Caution): void {
-  const m = f.names.length;
-  if (f.correlation === null) return;
-  let worst = 0, a = 0, b = 0;
-  for (let i = 0; i < m; i++) for (let j = 0; j < i; j++) {
-    const r = f.correlation[i * m + j];
-    if (Math.abs(r) > Math.abs(worst)) { worst = r; a = j; b = i; }
+  if (f.covariance === null) return;
+  const names = [...f.lags, ...f.columns.map(coefficientOf)], size = names.length;
+  const pairs: { a: string; b: string; r: number }[] = [];
+  for (let j = 0; j < f.lags.length; j++) for (let i = j + 1; i < size; i++) {
+    const r = correlationAt(f.covariance, size, i, j);
+    if (Math.abs(r) > CORRELATED) pairs.push({ a: names[j], b: names[i], r });
   }
-  if (Math.abs(worst) > CORRELATED) caution("correlated", `The estimates of ${f.names[a]} and ${f.names[b]} are correlated ${worst.toFixed(2)}: the data hardly tell one from the other, and each alone means little. Try the model without one of them.`);
+  if (pairs.length === 0) return;
+  const [worst, ...rest] = pairs.sort((a, b) => Math.abs(b.r) - Math.abs(a.r));
+  const also = rest.length === 0 ? "" : ` (so are ${rest.slice(0, 3).map(p => `${p.a} and ${p.b}, ${minus(p.r)}`).join("; ")}${rest.length > 3 ? `; and ${rest.length - 3} more` : ""})`;
+  caution("correlated", `The estimates of ${worst.a} and ${worst.b} are correlated ${minus(worst.r)}${also}: the data hardly tell one from the other, and each alone means little. Try the model without one of them.`);
 }
+
+function coefficientOf(column: string): string { return column === MEAN ? MEAN : `the coefficient of ${column}`; }
+
+function aliasText(f: Findings, name: string): string {
+  const differenced = f.prepared.lost > 0 ? " after differencing" : "";
+  const left = "so it was left out (coefficient 0, no standard error).";
+  if (name === MEAN) return `The mean${f.prepared.lost > 0 ? " (a drift)" : ""} is a linear combination of the regressors${differenced}, ${left} Write mean: false, or remove one of the regressors.`;
+  const column = differencedBy(f.prepared.delta, f.prepared.columns[f.prepared.names.indexOf(name)]);
+  if (column.every(v => v === column[0] || Number.isNaN(v))) return `The regressor ${name} is ${column[0] === 0 ? "0" : "the same"} throughout the sample${differenced}, ${left} Remove it, or take a sample in which it varies.`;
+  return `The regressor ${name} is a linear combination of the other regressors${f.columns.includes(MEAN) ? " and the mean" : ""}${differenced}: its coefficient cannot be told from theirs, ${left} Remove it, or one of the others.`;
+}
+
+/** Regressors that the others nearly replace. */
+function inflated(f: Findings, caution: Caution): void {
+  if (f.covariance === null) return;
+  const size = f.lags.length + f.columns.length, own = [...f.columns.keys()].filter(j => f.columns[j] !== MEAN), at = own.map(j => f.lags.length + j);
+  const factors = inflation(f.covariance, size, at);
+  const found = own.map((j, i) => ({ name: f.columns[j], factor: factors[i], at: at[i] })).filter(r => r.factor > INFLATED).sort((a, b) => b.factor - a.factor);
+  if (found.length === 0) return;
+  const [worst] = found, others = at.filter(i => i !== worst.at);
+  const near = others.reduce((best, i) => Math.abs(correlationAt(f.covariance!, size, i, worst.at)) > Math.abs(correlationAt(f.covariance!, size, best, worst.at)) ? i : best, others[0]);
+  const times = worst.factor < 1e4 ? worst.factor.toPrecision(2) : "over 10000";
+  caution("collinear", `The regressor${found.length === 1 ? "" : "s"} ${found.slice(0, 4).map(r => r.name).join(", ")}${found.length > 4 ? ` and ${found.length - 4} more` : ""} can hardly be told from the rest: the variance of ${worst.name}'s coefficient is ${Number(times) ? Number(times) : times} times what it would be alone, mostly for ${f.columns[near - f.lags.length]}. Remove one of them, or combine them into one.`);
+}
+
+function minus(r: number): string { return r.toFixed(2).replace("-", "−"); }

@@ -1,6 +1,7 @@
 // From the search's numbers to the Fit an analyst reads: units back, names, criteria, residuals, roots.
 
 import { makeSeries } from "../series/series.ts";
+import { inOwnColumns } from "./covariance.ts";
 import { denseFactor } from "./shape.ts";
 import { filterLevels } from "./filter.ts";
 import type { Information } from "./information.ts";
@@ -112,10 +113,11 @@ function regressionPart(s: Solution): { mean: number; beta: Record<string, numbe
 function standardErrors(s: Solution, covariance: Float64Array | null, unit: number): StandardErrors {
   const { numbers, free, information } = s;
   const { prepared: p, basis, kept } = numbers;
-  const k = free.length, m = kept.length, size = information?.size ?? 0;
+  const k = free.length, size = information?.size ?? 0, own = covariance === null ? null : inOwnColumns(covariance, k, basis);
   const root = (v: number) => v > 0 && Number.isFinite(v) ? Math.sqrt(v) : NaN;
   const byCoefficient = new Float64Array(s.x.length).fill(NaN);
-  if (covariance !== null) free.forEach((at, i) => { byCoefficient[at] = root(covariance[i * size + i]); });
+  const error = (i: number) => own === null ? NaN : root(own[i * size + i]);
+  free.forEach((at, i) => { byCoefficient[at] = error(i); });
   const parts = p.shape.factors;
   const shaped = (which: number) => {
     const f = parts[which], step = which % 2 === 1 ? p.shape.season : 1;
@@ -127,10 +129,7 @@ function standardErrors(s: Solution, covariance: Float64Array | null, unit: numb
   for (const name of p.names) beta[name] = NaN;
   let mean = NaN;
   kept.forEach((j, i) => {
-    if (covariance === null) return;
-    let variance = 0;
-    for (let a = i; a < m; a++) for (let b = i; b < m; b++) variance += basis[i * m + a] * covariance[(k + a) * size + k + b] * basis[i * m + b];
-    const se = unit * root(variance);
+    const se = unit * error(k + i);
     if (j < 0) mean = se; else beta[p.names[j]] = se;
   });
   return { phi: shaped(0), seasonalPhi: shaped(1), theta: shaped(2), seasonalTheta: shaped(3), mean, beta };

@@ -114,6 +114,33 @@ describe("pathological series give a result or a clear refusal", () => {
     expect(Math.min(Math.abs(found.beta.a), Math.abs(found.beta.b))).toBe(0);
   });
 
+  it("names a regressor that the others together nearly replace, and by how much", () => {
+    const y = simulate({ phi: [0.5] }, 200, 3), a = simulate({}, 200, 4).values, b = simulate({}, 200, 5).values, noise = simulate({}, 200, 6).values;
+    const c = a.map((v, t) => v + b[t] + 0.1 * noise[t]);
+    const found = fit({ series: series(y.values), ar: 1, regressors: { a: series(a), b: series(b), c: series(c) } });
+    const text = found.notes.find(n => n.code === "collinear")?.text ?? "";
+    // By hand: given a and b, c has a variance of 0.01 left of 2.01, so its coefficient's variance is about 201 times as large.
+    const times = Number(/variance of c's coefficient is (\d+) times/.exec(text)?.[1]);
+    expect(times).toBeGreaterThan(150);
+    expect(times).toBeLessThan(280);
+    expect(text).toMatch(/^The regressors c, [ab], [ab] can hardly be told from the rest/);
+    // No pair of them is correlated as much as that.
+    expect(found.notes.map(n => n.code)).not.toContain("correlated");
+    expect(fit({ series: series(y.values), ar: 1, regressors: { a: series(a), b: series(b) } }).notes.map(n => n.code)).not.toContain("collinear");
+  });
+
+  it("says why a regressor is left out: it does not vary in the sample, or takes the place of the drift", () => {
+    const y = simulate({ phi: [0.5] }, 80, 3);
+    const text = (options: Partial<FitOptions>) => fit({ series: series(y.values, "P1M", "2015-01"), ar: 1, ...options }).notes.find(n => n.code === "collinear")?.text;
+    expect(text({ regressors: { strike: levelShift("2025-01") } })).toBe("The regressor strike is 0 throughout the sample, so it was left out (coefficient 0, no standard error). Remove it, or take a sample in which it varies.");
+    expect(text({ regressors: { always: levelShift("2010-01") } })).toMatch(/^The regressor always is the same throughout the sample, so/);
+  });
+
+  it("names lag coefficients that move together", () => {
+    const found = fit({ series: series(simulate({ phi: [0.3] }, 150, 9).values), ar: 2, ma: 1, mean: false });
+    expect(found.notes.find(n => n.code === "correlated")?.text).toMatch(/^The estimates of AR lag 1 and MA lag 1 are correlated −0\.9\d/);
+  });
+
   it("names the regressor and the time where one is missing", () => {
     const y = simulate({ phi: [0.5] }, 30, 3), x = Float64Array.from(y.values);
     x[12] = NaN;
