@@ -11,6 +11,7 @@ import type { Gradual } from "./gradual.ts";
 import { interventionColumns } from "./interventions.ts";
 import { seeded } from "./random.ts";
 import { trailingDifferences } from "./reach.ts";
+import { lagged, sparse, type Sparse } from "./sparse.ts";
 
 /** Fits on `count` simulated series of the sample's length, which start from the observed first levels.
  *  Sets that cannot be estimated, or do not converge, are counted and left out. */
@@ -60,15 +61,10 @@ export function shocksOf(fit: Fit): Float64Array {
   return seen.map((e) => (e - mean) * grown);
 }
 
-/** Weights of past shocks in the levels (the scale before the differences): psi of theta / (phi times the differences). */
-export function psiOfLevels(fit: Fit, count: number): Float64Array {
-  const { phi, theta } = expandedPolynomials(fit), ar = times(phi, fit), psi = new Float64Array(count);
-  for (let k = 0; k < count; k++) {
-    let sum = k === 0 ? 1 : (theta[k - 1] ?? 0);
-    for (let i = 1; i <= Math.min(k, ar.length); i++) sum += ar[i - 1] * psi[k - i];
-    psi[k] = sum;
-  }
-  return psi;
+/** The model in levels (the scale before the differences): value = sum of ar times past values, and of ma times past shocks. */
+export function recursionOfLevels(fit: Fit): { readonly ar: Sparse; readonly ma: Sparse } {
+  const { phi, theta } = expandedPolynomials(fit);
+  return { ar: sparse(times(phi, fit)), ma: sparse(theta) };
 }
 
 /** Coefficients from lag 1 of the autoregression with the differences multiplied in. */
@@ -106,21 +102,6 @@ function simulator(fit: Fit): (random: () => number) => Series {
     const values = path.map((v, t) => (Number.isNaN(levels.values[t]) ? NaN : v + regression[t]));
     return applySteps({ ...levels, values, steps: [] }, steps.map(stepOf));
   };
-}
-
-interface Sparse { readonly lags: Int32Array; readonly values: Float64Array; /** The longest lag; 0 without one. */ readonly reach: number }
-
-/** The coefficients that are not 0, of an array that starts at lag 1. */
-function sparse(c: Float64Array): Sparse {
-  const at = [...c.keys()].filter((i) => c[i] !== 0);
-  return { lags: Int32Array.from(at, (i) => i + 1), values: Float64Array.from(at, (i) => c[i]), reach: at.length > 0 ? at[at.length - 1] + 1 : 0 };
-}
-
-/** Sum of the coefficients times the values so many periods before t; before the start there is nothing. */
-function lagged({ lags, values }: Sparse, x: Float64Array, t: number): number {
-  let sum = 0;
-  for (let i = 0; i < lags.length && lags[i] <= t; i++) sum += values[i] * x[t - lags[i]];
-  return sum;
 }
 
 /** The regression part at the times of the levels. */

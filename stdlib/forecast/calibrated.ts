@@ -8,7 +8,7 @@ import type { ModelOutlook } from "./modelOutlook.ts";
 import { modelOutlook } from "./modelOutlook.ts";
 import type { Forecaster } from "./model.ts";
 import { crpsOfQuantiles, levelOf, type Outlook } from "./outlook.ts";
-import { drawsOf, type Paths } from "./paths.ts";
+import type { Paths } from "./paths.ts";
 import { firstIndex, lastIndex } from "./reach.ts";
 import { refitBetween } from "./refit.ts";
 
@@ -70,9 +70,8 @@ function stretched(plain: Outlook, misses: readonly Float64Array[], ratio: reado
     // Each period's values move from the old distribution to the new one; what goes with what stays.
     const grid = Float64Array.from({ length: 81 }, (_, i) => normalCdf((i - 40) * 0.1)), old = Array.from(grid, plain.quantile), fresh = Array.from(grid, quantile);
     const olds = Array.from({ length: horizon }, (_, h) => old.map((q) => q[h])), news = Array.from({ length: horizon }, (_, h) => fresh.map((q) => q[h]));
-    const drawn = plain.paths(count, seed);
-    for (let h = 0; h < horizon; h++) { const draws = drawsOf(drawn, h); for (let i = 0; i < count; i++) draws[i] = between(draws[i], olds[h], news[h]); }
-    return drawn;
+    const { values, ...shape } = plain.paths(count, seed);
+    return { ...shape, values: values.map((x, at) => between(x, olds[Math.floor(at / count)], news[Math.floor(at / count)])) };
   };
   return {
     ...plain, quantile, paths, sd: plain.sd.map((s, h) => s * ratio[h]), se: plain.se.map((s, h) => s * ratio[h]), normal: false, covariance: () => null,

@@ -38,14 +38,11 @@ export function differenceOutlook(fit: Fit, horizon: number, later: Future, earl
     for (let at = 0; at < shift.values.length; at++) shift.values[at] += low.values[at];
     return lessen(undoPaths(steps, shift), undoPaths(steps, low));
   };
-  return sampleOutlook(paths(draws, seed), effect.se, paths);
+  return sampleOutlook(paths, draws, seed, effect.se);
 }
 
-/** Draw by draw. The first is used up. */
-export function lessen(later: Paths, earlier: Paths): Paths {
-  for (let at = 0; at < later.values.length; at++) later.values[at] -= earlier.values[at];
-  return later;
-}
+/** Draw by draw. */
+export const lessen = (later: Paths, earlier: Paths): Paths => ({ ...later, values: later.values.map((x, at) => x - earlier.values[at]) });
 
 /** A linear step without what it adds: what it does to a difference. */
 function withoutLevel(step: UndoStep): UndoStep {

@@ -2,8 +2,8 @@
 
 import { normalCdf, normalQuantile } from "../distributions/normal.ts";
 import { lognormalCrps, normalCrps, sampleCrps } from "../evaluation/scores.ts";
-import { drawnPaths, drawsOf, normalPaths, pathCount, undoPaths, type Paths } from "./paths.ts";
-import { diagonalRoots, factorOf, type Predictive } from "./predictive.ts";
+import { alongCount, drawnPaths, drawsOf, normalPaths, pathCount, undoPaths, type Paths } from "./paths.ts";
+import { diagonalRoots, factorAlong, factorOf, type Predictive } from "./predictive.ts";
 import { isLinear, redoValue, undoCovariance, undoMean, undoValue, type UndoStep } from "./undo.ts";
 
 export interface Outlook {
@@ -18,7 +18,9 @@ export interface Outlook {
   readonly quantile: (p: number) => Float64Array;
   /** Probability that the value h periods ahead (0 is the first) lies above a value. */
   readonly above: (h: number, value: number) => number;
-  /** Seeded sample paths in data units. */
+  /** How many paths stand for the distribution where a limit has no closed form. */
+  readonly draws: number;
+  /** Seeded sample paths in data units; they may be shared, and are not to be changed. */
   readonly paths: (count: number, seed: number) => Paths;
   /** Exact covariance matrix in data units, flat by rows; null where it is only known by simulation. */
   readonly covariance: () => Float64Array | null;
@@ -58,10 +60,12 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
     all.mean[h] = mean; all.sd[h] = sd;
     return all;
   }, { mean: new Float64Array(horizon), sd: new Float64Array(horizon) });
-  const factor = once(() => factorOf(predictive.covariance(), horizon));
+  // What a period's value in data units gains with its modelled one: the paths are drawn along the total of all periods.
+  const slopes = (): Float64Array => m.map((v, h) => undoValue(rest, h, v + se[h] / 2) - undoValue(rest, h, v - se[h] / 2)).map((gain, h) => (Number.isFinite(gain) && se[h] > 0 ? gain / se[h] : 0));
+  const factor = once(() => factorAlong(predictive.covariance(), horizon, slopes()));
   const form = formOf(rest);
   return {
-    horizon, mean: moments.mean, median: m.map((v, h) => undoValue(rest, h, v)), sd: moments.sd, se, quantile, normal: form === "normal",
+    horizon, mean: moments.mean, median: m.map((v, h) => undoValue(rest, h, v)), sd: moments.sd, se, quantile, normal: form === "normal", draws: alongCount,
     above: (h, value) => {
       const z = (redoValue(rest, h, value) - m[h]) / se[h];
       return turnsOver ? normalCdf(z) : normalCdf(-z);
@@ -81,13 +85,15 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
 function drawnOutlook(predictive: Predictive, rest: readonly UndoStep[], seed: number, draws: number, own?: Outlook["paths"]): Outlook {
   const factor = once(() => factorOf(predictive.covariance(), predictive.mean.length));
   const paths = own ?? ((count: number, from: number): Paths => undoPaths(rest, normalPaths(predictive.mean, factor(), count, from)));
-  return sampleOutlook(paths(draws, seed), predictive.se, paths, rest.length === 0 ? predictive.mean : undefined);
+  return sampleOutlook(paths, draws, seed, predictive.se, rest.length === 0 ? predictive.mean : undefined);
 }
 
 /** Distribution that is known by sample paths in data units.
- *  @param mean  where it is known better than by the sample's own */
-export function sampleOutlook(sample: Paths, se: Float64Array, paths: Outlook["paths"], mean?: Float64Array): Outlook {
-  const { horizon } = sample, average = new Float64Array(horizon), sd = new Float64Array(horizon);
+ *  @param paths  makes them; `count` of them from `seed` stand for the distribution, and are given again to whoever asks for those
+ *  @param se     on the scale on which errors are normal; left out: that of the paths
+ *  @param mean   where it is known better than by the sample's own */
+export function sampleOutlook(paths: Outlook["paths"], count: number, seed: number, se?: Float64Array, mean?: Float64Array): Outlook {
+  const sample = paths(count, seed), { horizon } = sample, average = new Float64Array(horizon), sd = new Float64Array(horizon);
   const sorted = Array.from({ length: horizon }, (_, h) => {
     const column = drawsOf(sample, h).slice().sort();
     ({ mean: average[h], sd: sd[h] } = momentsOf(column));
@@ -95,7 +101,8 @@ export function sampleOutlook(sample: Paths, se: Float64Array, paths: Outlook["p
   });
   const quantile = (p: number): Float64Array => Float64Array.from(sorted, (column) => quantileOf(column, p));
   return {
-    horizon, mean: mean ?? average, median: quantile(0.5), sd, se, quantile, paths, normal: false, covariance: () => null,
+    horizon, mean: mean ?? average, median: quantile(0.5), sd, se: se ?? sd, quantile, normal: false, draws: count, covariance: () => null,
+    paths: (asked, from) => (asked === count && from === seed ? sample : paths(asked, from)),
     above: (h, value) => 1 - countUpTo(sorted[h], value) / sorted[h].length,
     crps: (h, actual) => sampleCrps(actual, sorted[h]),
   };

@@ -1,7 +1,8 @@
 // Many sample paths at once: drawn, taken back to the units of the data, summed. One array holds them all, since thousands of
 // small ones cost more than what is computed in them.
 
-import { normals, seeded } from "./random.ts";
+import { normalQuantile } from "../distributions/normal.ts";
+import { seeded, stratified } from "./random.ts";
 import { undoAt, type UndoStep } from "./undo.ts";
 
 /** Sample paths, kept by period: all draws of one period stand together. */
@@ -12,8 +13,11 @@ export interface Paths {
   readonly values: Float64Array;
 }
 
-/** Paths behind a limit that has no closed form: enough for a 95% limit to about 2% of its distance from the median. */
+/** Paths behind a limit that has no closed form: enough for a 95% limit to about 1% of its distance from the median. */
 export const pathCount = 4000;
+
+/** Paths that are drawn along the sum of all periods (`factorAlong`) do with fewer: its limits are then sure to 0.5% of its standard error. */
+export const alongCount = 2000;
 
 /** @param fill  writes path i, of length horizon; called in the order of the paths */
 export function pathsOf(count: number, horizon: number, fill: (path: Float64Array, i: number) => void): Paths {
@@ -38,17 +42,16 @@ export function sumsOver(paths: Paths, from: number, end: number): Float64Array 
   return sums;
 }
 
-/** Normal paths in pairs that mirror each other about the mean: means of linear things come out exact. A longer request with
- *  the same seed begins with the same paths.
- *  @param factor  lower triangular, flat by rows: its product with its transpose is the covariance. Cost count * horizon^2 / 4 */
+/** Normal paths in pairs that mirror each other about the mean, so that means of linear things come out exact. Each of their
+ *  numbers is stratified over the pairs.
+ *  @param factor  horizon rows, flat: its product with its transpose is the covariance. Cost count / 2 times its size */
 export function normalPaths(mean: Float64Array, factor: Float64Array, count: number, seed: number): Paths {
-  const horizon = mean.length, pairs = Math.ceil(count / 2), normal = normals(seeded(seed));
-  const e = new Float64Array(horizon * pairs), values = new Float64Array(horizon * count), off = new Float64Array(pairs);
-  for (let i = 0; i < pairs; i++) for (let h = 0; h < horizon; h++) e[h * pairs + i] = normal();
+  const horizon = mean.length, columns = factor.length / horizon, pairs = Math.ceil(count / 2), e = normalRows(columns, pairs, seed);
+  const values = new Float64Array(horizon * count), off = new Float64Array(pairs);
   for (let h = 0; h < horizon; h++) {
     off.fill(0);
-    for (let k = 0; k <= h; k++) {
-      const c = factor[h * horizon + k], from = k * pairs;
+    for (let k = 0; k < columns; k++) {
+      const c = factor[h * columns + k], from = k * pairs;
       if (c !== 0) for (let i = 0; i < pairs; i++) off[i] += c * e[from + i];
     }
     for (let i = 0; i < count; i++) values[h * count + i] = i % 2 === 0 ? mean[h] + off[i >> 1] : mean[h] - off[i >> 1];
@@ -58,11 +61,18 @@ export function normalPaths(mean: Float64Array, factor: Float64Array, count: num
 
 /** Paths of a model that makes them of standard normal numbers, again in mirrored pairs. */
 export function drawnPaths(draw: (normal: Float64Array, path: Float64Array) => void, count: number, horizon: number, seed: number): Paths {
-  const normal = normals(seeded(seed)), e = new Float64Array(horizon);
+  const pairs = Math.ceil(count / 2), rows = normalRows(horizon, pairs, seed), e = new Float64Array(horizon);
   return pathsOf(count, horizon, (path, i) => {
-    for (let h = 0; h < horizon; h++) e[h] = i % 2 === 0 ? normal() : -e[h];
+    for (let h = 0; h < horizon; h++) e[h] = i % 2 === 0 ? rows[h * pairs + (i >> 1)] : -e[h];
     draw(e, path);
   });
+}
+
+/** Stratified standard normal numbers in rows of `count`. */
+function normalRows(rows: number, count: number, seed: number): Float64Array {
+  const numbers = stratified(rows, count, seeded(seed));
+  for (let at = 0; at < numbers.length; at++) numbers[at] = normalQuantile(numbers[at]);
+  return numbers;
 }
 
 /** Undoes steps on all paths: from the modelled scale to the end's units. The paths given are used up. */

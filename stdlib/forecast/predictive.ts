@@ -42,3 +42,17 @@ export function factorOf(c: Float64Array, size: number): Float64Array {
   }
   return l;
 }
+
+/** A factor whose first column carries all of one weighted sum: c = F F', F size x (size + 1), and of weights' F only the first
+ *  entry is not 0. Draws whose first numbers are spread evenly then spread the sum evenly, and its quantiles are sure.
+ *  @param weights  of the sum, one a period
+ *  @returns flat by rows. The remainder after the first column is what is left when the sum is known. */
+export function factorAlong(c: Float64Array, size: number, weights: ArrayLike<number>): Float64Array {
+  const along = new Float64Array(size), columns = size + 1, out = new Float64Array(size * columns);
+  let variance = 0;
+  for (let i = 0; i < size; i++) { for (let j = 0; j < size; j++) along[i] += c[i * size + j] * weights[j]; variance += weights[i] * along[i]; }
+  const by = variance > 0 ? 1 / Math.sqrt(variance) : 0;
+  const rest = factorOf(c.map((v, at) => v - by * along[Math.floor(at / size)] * by * along[at % size]), size);
+  for (let i = 0; i < size; i++) { out[i * columns] = by * along[i]; for (let j = 0; j <= i; j++) out[i * columns + 1 + j] = rest[i * size + j]; }
+  return out;
+}

@@ -7,7 +7,7 @@ import { differenceOutlook, lessen } from "./difference.ts";
 import type { Figures, Forecaster, ForecastOptions, Scenario } from "./model.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import { once, sampleOutlook, type Outlook } from "./outlook.ts";
-import { pathCount, type Paths } from "./paths.ts";
+import { pathCount } from "./paths.ts";
 import { isRule } from "./rules.ts";
 import { totalsOf } from "./totals.ts";
 
@@ -38,14 +38,10 @@ export function scenariosOf(fit: Fit, options: ForecastOptions, futures: readonl
     const known = simulated ? ofPaths(later.banded.outlook, first.banded.outlook, seed) : differenceOutlook(fit, horizon, futures[i].regressors, futures[0].regressors, seed, pathCount);
     const outlook: Outlook = { ...known, mean: later.figures.mean.map((m, h) => m - first.figures.mean[h]) };
     // What was observed is the same in all scenarios: it adds nothing to a difference.
-    const nothing: Series = { ...base, values: new Float64Array(base.n) }, paths = once(() => outlook.paths(pathCount, seed));
+    const nothing: Series = { ...base, values: new Float64Array(base.n) }, paths = once(() => outlook.paths(outlook.draws, seed));
     return { against: labels[0], mean: outlook.mean, median: outlook.median, bands: bandsOf(outlook, levels), totals: totalsOf(options.totals, nothing, outlook, times, levels, paths).totals };
   }
 }
 
 /** Path by path: the same seed gave both the same shocks and sets of parameters. */
-function ofPaths(later: Outlook, earlier: Outlook, seed: number): Outlook {
-  const paths = (count: number, from: number): Paths => lessen(later.paths(count, from), earlier.paths(count, from)), drawn = paths(pathCount, seed);
-  const outlook = sampleOutlook(drawn, new Float64Array(later.horizon), paths);
-  return { ...outlook, se: outlook.sd };
-}
+const ofPaths = (later: Outlook, earlier: Outlook, seed: number): Outlook => sampleOutlook((count, from) => lessen(later.paths(count, from), earlier.paths(count, from)), pathCount, seed);

@@ -3,14 +3,15 @@
 import type { Fit, Note } from "../arma/model.ts";
 import { normalQuantile } from "../distributions/normal.ts";
 import type { Series } from "../series/series.ts";
-import { bootstrapFits, psiOfLevels, shocksOf } from "./bootstrapFits.ts";
+import { bootstrapFits, recursionOfLevels, shocksOf } from "./bootstrapFits.ts";
 import { fitPredictive } from "./fitPredictive.ts";
 import type { Gradual } from "./gradual.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import type { Forecaster, Rule } from "./model.ts";
 import { sampleOutlook, type Outlook } from "./outlook.ts";
+import { lagged } from "./sparse.ts";
 import { pathCount, pathsOf, undoPaths, type Paths } from "./paths.ts";
-import { seeded } from "./random.ts";
+import { seeded, stratified } from "./random.ts";
 import { keptSteps } from "./reach.ts";
 import { rulePredictive } from "./rulePredictive.ts";
 import { isRule, observedPositions } from "./rules.ts";
@@ -37,7 +38,7 @@ type PathSource = (count: number, seed: number) => Paths;
  *  Source: Thombs & Schucany (1990); Pascual, Romo & Ruiz (2004). */
 export function* simulatedOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, plain: ModelOutlook): Gradual<{ readonly outlook: Outlook; readonly assumption: Note }> {
   const { source, assumption } = yield* pathSource(model, horizon, regressors, seed);
-  return { outlook: sampleOutlook(source(pathCount, seed), plain.outlook.se, source), assumption: { code: "bands-simulated", tone: "note", text: assumption } };
+  return { outlook: sampleOutlook(source, pathCount, seed, plain.outlook.se), assumption: { code: "bands-simulated", tone: "note", text: assumption } };
 }
 
 function* pathSource(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): Gradual<{ readonly source: PathSource; readonly assumption: string }> {
@@ -48,14 +49,14 @@ function* pathSource(model: Forecaster, horizon: number, regressors: Readonly<Re
       const each = sources.map((one) => one(count, from).values);
       return { count, horizon, values: each[0].map((_, at) => each.reduce((sum, values) => sum + values[at], 0) / each.length) };
     };
-    return { source, assumption: `Bands: from ${pathCount} simulated paths of the members, averaged path by path with shared random numbers.` };
+    return { source, assumption: `Bands: from ${pathCount} simulated paths of the members, averaged path by path with shared random numbers. They assume of each member what its own simulated bands would: that coming errors are like past ones, and that its form is right.` };
   }
   const { maker, assumption } = isRule(model) ? rulePaths(model, horizon) : yield* fitPaths(model, horizon, regressors, seed);
   const { steps } = undoOf(model.series, keptSteps(model), horizon);
   const source: PathSource = (count, from) => {
-    const random = seeded(from + 7), uniform = new Float64Array(horizon + 1);
+    const rows = stratified(horizon + 1, count, seeded(from + 7)), uniform = new Float64Array(horizon + 1);
     return undoPaths(steps, pathsOf(count, horizon, (path, i) => {
-      for (let h = 0; h <= horizon; h++) uniform[h] = random();
+      for (let h = 0; h <= horizon; h++) uniform[h] = rows[h * count + i];
       maker(path, uniform, i);
     }));
   };
@@ -67,18 +68,18 @@ function* fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string
   const sets = (boots.fits.length > 0 ? boots.fits : [fit]).map((boot) => ({
     // The set's coefficients put to what was really observed.
     mean: fitPredictive({ ...boot, series: fit.series, options: { ...fit.options, series: fit.series, window: undefined } }, horizon, times, regressors).mean,
-    psi: psiOfLevels(boot, horizon),
+    recursion: recursionOfLevels(boot),
   }));
   const shocks = shocksOf(fit), e = new Float64Array(horizon);
   const maker: PathMaker = (path, uniform, i) => {
     // Each set makes as many paths as the next: its choice adds no noise of its own.
-    const { mean, psi } = sets[i % sets.length];
+    const { mean, recursion: { ar, ma } } = sets[i % sets.length];
+    // First what the coming shocks add up to in the levels, then the mean below it.
     for (let h = 0; h < horizon; h++) {
       e[h] = shocks[Math.floor(uniform[h] * shocks.length)];
-      let sum = mean[h];
-      for (let k = 0; k <= h; k++) sum += psi[k] * e[h - k];
-      path[h] = sum;
+      path[h] = e[h] + lagged(ar, path, h) + lagged(ma, e, h);
     }
+    for (let h = 0; h < horizon; h++) path[h] += mean[h];
   };
   const lost = boots.failed > 0 ? ` (${boots.failed} of ${asked} sets could not be estimated and were left out)` : "";
   return { maker, assumption: `Bands: from ${pathCount} simulated paths with ${sets.length} sets of parameters, estimated again on series simulated from the model${lost}, and shocks drawn from its residuals${fit.phi.length + fit.seasonalPhi.length > 0 ? "; autoregressive coefficients are corrected for coming out too small in short samples" : ""}. They take in that the parameters are estimates and that shocks need not be normal; the orders count as known.` };

@@ -1,9 +1,11 @@
 import { describe, expect, it } from "vitest";
+import { normalCdf } from "../../../stdlib/distributions/normal.ts";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import type { FitOptions } from "../../../stdlib/arma/model.ts";
 import { forecast, forecasting } from "../../../stdlib/forecast/forecast.ts";
 import { withPauses } from "../../../stdlib/forecast/gradual.ts";
 import { drawsOf, normalPaths, pathAt, sumsOver, undoPaths } from "../../../stdlib/forecast/paths.ts";
+import { factorAlong } from "../../../stdlib/forecast/predictive.ts";
 import { rule } from "../../../stdlib/forecast/rules.ts";
 import { makeSeries, type Series } from "../../../stdlib/series/series.ts";
 import { applySteps } from "../../../stdlib/series/steps.ts";
@@ -29,8 +31,18 @@ describe("sample paths", () => {
     // The product of 2 e1 and e1 + e2 / 2 has mean 2 and variance 9.
     expect(Math.abs(cross - 2)).toBeLessThan((4 * 3) / Math.sqrt(20_000));
   });
-  it("begin alike however many are asked for", () => {
-    expect(pathAt(normalPaths(mean, factor, 50, 9), 7)).toEqual(pathAt(normalPaths(mean, factor, 1000, 9), 7));
+  it("are stratified: each period has one pair in each of as many equal strata", () => {
+    const paths = normalPaths(Float64Array.of(0), Float64Array.of(1), 200, 9), pairs = Array.from(drawsOf(paths, 0)).filter((_, i) => i % 2 === 0);
+    expect(new Set(pairs.map((z) => Math.floor(normalCdf(z) * 100))).size).toBe(100);
+  });
+  it("of another seed differ, and those of the same do not", () => {
+    expect(normalPaths(mean, factor, 20, 9)).toEqual(normalPaths(mean, factor, 20, 9));
+    expect(normalPaths(mean, factor, 20, 10)).not.toEqual(normalPaths(mean, factor, 20, 9));
+  });
+  it("drawn along a sum have the same covariance, and the sum in their first number alone", () => {
+    const c = Float64Array.of(4, 2, 1, 2, 3, 1, 1, 1, 2), weights = [1, 2, 0.5], f = factorAlong(c, 3, weights);
+    for (let i = 0; i < 3; i++) for (let j = 0; j < 3; j++) expect([0, 1, 2, 3].reduce((sum, k) => sum + f[i * 4 + k] * f[j * 4 + k], 0)).toBeCloseTo(c[i * 3 + j], 12);
+    for (let k = 1; k < 4; k++) expect([0, 1, 2].reduce((sum, i) => sum + weights[i] * f[i * 4 + k], 0)).toBeCloseTo(0, 7);
   });
   it("are undone step by step: a difference adds the value so many periods before", () => {
     const paths = undoPaths([{ undo: "exp" }, { undo: "difference", lag: 1, tail: Float64Array.of(10) }], { count: 1, horizon: 2, values: Float64Array.of(0, Math.log(2)) });
@@ -61,6 +73,16 @@ describe("simulated and calibrated bands", () => {
   it("members of a combination use the same shocks: a rule combined with itself is itself", () => {
     const naive = rule.naive(airline()), options = { horizon: 4, levels: [0.8], bands: "simulated" } as const;
     expect(forecast(rule.combine([naive, naive]), options).bands[0].high).toEqual(forecast(naive, options).bands[0].high);
+  });
+});
+
+describe("limits that come from paths hardly hang on the seed", () => {
+  // By hand from 2,000 independent draws: a 5% limit would have standard error sqrt(0.05 * 0.95 / 2000) / 0.103 = 4.7% of the standard deviation.
+  it("of a year's total under a log: within 1% of its standard error", () => {
+    const lows = Array.from({ length: 12 }, (_, seed) => forecast(model(), { horizon: 12, levels: [0.9], totals: "year", seed }).totals[0]);
+    const mean = lows.reduce((sum, t) => sum + t.bands[0].low, 0) / 12;
+    lows.forEach((total) => expect(Math.abs(total.bands[0].low - mean) / total.se).toBeLessThan(0.02));
+    expect(Math.sqrt(lows.reduce((sum, t) => sum + (t.bands[0].low - mean) ** 2, 0) / 11) / lows[0].se).toBeLessThan(0.01);
   });
 });
 
