@@ -57,6 +57,8 @@ export async function runForecast(options: ForecastCell, context: RunContext): P
   for (const level of levels) {
     if (!(level > 0 && level < 1)) throw new OptionError("levels", `each level is a share between 0 and 1, such as 0.9; found ${String(level)}${level > 1 && level < 100 ? `: for ${level}% write ${level / 100}` : ""}`);
   }
+  const twice = levels.find((level, i) => levels.indexOf(level) < i);
+  if (twice !== undefined) throw new OptionError("levels", `levels has ${twice} twice; give each once`);
   const rest = Object.fromEntries(Object.entries(options).filter(([name, value]) => value !== null && value !== undefined && name !== "model"));
   try {
     return await withPauses(forecasting(model, { ...rest, horizon, levels }), ({ done, total, what }) => {

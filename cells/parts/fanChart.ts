@@ -2,7 +2,7 @@
 
 import { milliseconds, type Forecast } from "../../stdlib/index.ts";
 import type { ChartPart, Columns } from "./part.ts";
-import { percent } from "./words.ts";
+import { listOf, percent } from "./words.ts";
 
 /** A horizontal field of times: UTC where the series is dated, plain numbers where it is only numbered. */
 export function timeField(field: string, dated: boolean): Record<string, unknown> {
@@ -44,7 +44,7 @@ export function fanChart(forecast: Forecast, alt: string, shownPast: number): Ch
   const x = timeField("time", dated);
   const y = { type: "quantitative", title: forecast.unit ? `${forecast.name} (${forecast.unit})` : forecast.name, scale: { zero: false } };
   return {
-    part: "chart", title: `Forecast of ${forecast.name}, with bands at ${levels.map(level => percent(level)).join(" and ")}`, alt, height: 300,
+    part: "chart", title: `Forecast of ${forecast.name}${levels.length > 0 ? `, with bands at ${listOf(levels.map(level => percent(level)))}` : ""}`, alt, height: 300,
     spec: {
       layer: [
         ...levels.map((_, i) => ({

@@ -5,7 +5,7 @@ import type { Part, TablePart, TextPart } from "./part.ts";
 import { fanChart } from "./fanChart.ts";
 import { pattern } from "./format.ts";
 import { scenarioParts } from "./scenarioParts.ts";
-import { figure, percent } from "./words.ts";
+import { chance, figure, percent } from "./words.ts";
 
 /** Rows of the printed table; longer horizons are in the chart's data. */
 const mostRows = 60;
@@ -69,12 +69,6 @@ function passingParts(forecast: Forecast): readonly Part[] {
       rows: Array.from({ length: shown }, (_, i) => [forecast.times[i], ...forecast.passing.map(one => one.above[i])]),
     },
   ];
-}
-
-/** A probability that is nearly certain is not called certain. */
-function chance(p: number): string {
-  if (p > 0.999) return "over 99.9%";
-  return p < 0.001 ? "under 0.1%" : percent(p);
 }
 
 function periodsTable(forecast: Forecast): TablePart {

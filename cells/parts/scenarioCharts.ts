@@ -13,7 +13,7 @@ export function scenarioChart(forecast: Forecast, alt: string, shownPast: number
   const all = milliseconds(history.start, every, history.n + horizon), from = Math.max(0, history.n - shownPast);
   const x = timeField("time", every !== null), y = axis(forecast.unit ? `${forecast.name} (${forecast.unit})` : forecast.name);
   return {
-    part: "chart", title: `${forecast.name} by scenario, with ${bandsText(courses[0])}`, alt, height: 320,
+    part: "chart", title: `${forecast.name} by scenario${bandsText(courses[0])}`, alt, height: 320,
     spec: { layer: [
       ...courseLayers(x, y),
       { data: { name: "history" }, mark: { type: "line", style: "sample" }, encoding: { x, y: { ...y, field: "value" } } },
@@ -33,7 +33,7 @@ export function differenceChart(forecast: Forecast, alt: string): ChartPart {
   const future = milliseconds(forecast.times[0], forecast.every, forecast.horizon);
   const x = timeField("time", forecast.every !== null), y = { ...axis(`less ${first.label}${forecast.unit ? ` (${forecast.unit})` : ""}`), scale: { zero: true } };
   return {
-    part: "chart", title: `Difference from ${first.label}, with ${bandsText(rest[0])}`, alt, height: 200,
+    part: "chart", title: `Difference from ${first.label}${bandsText(rest[0])}`, alt, height: 200,
     spec: { layer: courseLayers(x, y) }, data: columnsOf([first, ...rest], future),
     full: Object.fromEntries(rest.map(({ label, mean, median, bands }) => [label, { time: forecast.times, mean, median, ...limitsOf(bands) }])),
   };
@@ -76,4 +76,4 @@ export function widest<T extends { readonly level: number }>(bands: readonly T[]
   return bands.reduce<T | null>((most, band) => (most === null || band.level > most.level ? band : most), null);
 }
 
-function bandsText({ bands }: Course): string { const band = widest(bands); return band === null ? "no bands" : `bands at ${percent(band.level)}`; }
+function bandsText({ bands }: Course): string { const band = widest(bands); return band === null ? "" : `, with bands at ${percent(band.level)}`; }

@@ -4,7 +4,7 @@ import type { Forecast, Scenario } from "../../stdlib/index.ts";
 import { pattern } from "./format.ts";
 import type { Part, TableColumn, TablePart } from "./part.ts";
 import { differenceChart, scenarioChart, widest } from "./scenarioCharts.ts";
-import { figure, listOf, percent } from "./words.ts";
+import { chance, figure, listOf, percent } from "./words.ts";
 
 /** Rows of the printed tables; longer horizons are in the charts' data. */
 const mostRows = 60;
@@ -15,6 +15,7 @@ export function scenarioParts(forecast: Forecast, shownPast: number): readonly P
     { part: "text", text: `${courseSentence(forecast, scenarios)} ${told}` },
     scenarioChart(forecast, courseSentence(forecast, scenarios), shownPast),
     ...(forecast.totals.length > 0 ? [totalsTable(forecast, scenarios)] : []),
+    ...passingParts(forecast, scenarios),
     periodsTable(forecast, scenarios),
     differenceChart(forecast, told),
     differencesTable(forecast, scenarios),
@@ -64,6 +65,18 @@ function totalsTable({ unit, totals }: Forecast, scenarios: readonly Scenario[])
     const band = widest(one.totals[i].bands);
     return [one.totals[i].median, ...(band === null ? [] : [band.low, band.high])];
   });
+}
+
+/** The chance of passing each threshold, scenario by scenario. */
+function passingParts({ name, unit, times, horizon }: Forecast, scenarios: readonly Scenario[]): readonly Part[] {
+  const units = unit ? ` ${unit}` : "", [{ passing }] = scenarios;
+  if (passing.length === 0) return [];
+  const sentences = passing.map(({ threshold }, k) => `The probability that ${name} passes ${figure(threshold, 4)}${units} in at least one of the ${horizon} periods is ${listOf(scenarios.map((one) => `${chance(one.passing[k].ever)} in scenario ${one.label}`))}.`);
+  const columns = scenarios.flatMap(({ label, passing: own }) => own.map(({ threshold }) => ({ title: `${label}: ${figure(threshold, 4)}${units}`, align: "right" as const, format: ".1%" })));
+  return [
+    { part: "text", text: sentences.join(" ") },
+    { part: "table", title: "Probability of lying above, by scenario", columns: [{ title: "period" }, ...columns], rows: times.slice(0, mostRows).map((time, i) => [time, ...scenarios.flatMap((one) => one.passing.map((each) => each.above[i]))]) },
+  ];
 }
 
 /** Totals first, then periods: what somebody decides on is mostly a total. */

@@ -35,6 +35,12 @@ export function percent(share: number, digits = 1): string {
   return `${text.replace("-", "−")}%`;
 }
 
+/** A probability as a percentage; one that is nearly certain is not called certain. */
+export function chance(p: number): string {
+  if (p > 0.999) return "over 99.9%";
+  return p < 0.001 ? "under 0.1%" : percent(p);
+}
+
 /** "a", "a and b", "a, b and c". */
 export function listOf(items: readonly (string | number)[], word = "and"): string {
   if (items.length < 2) return items.join("");

@@ -18,6 +18,7 @@ export function fitPredictive(fit: Fit, horizon: number, times: readonly string[
 /** The regressors' coming values by column, in levels: `fitPredictive` says from what. */
 export function futureColumns(fit: Fit, times: readonly string[], regressors: Readonly<Record<string, Series>>): Record<string, Float64Array> {
   const asked = fit.options.regressors ?? {}, among = Object.keys(asked), future: Record<string, Float64Array> = {};
+  if (isSeries(regressors)) throw new RangeError(`forecast: regressors is a series by itself; give it under the name that ${fit.label} uses, as in {${among[0] ?? "price"}: ${regressors.name || "ahead"}}`);
   for (const name of Object.keys(regressors)) {
     if (!(name in asked)) throw new RangeError(`forecast: ${name} is no regressor of ${fit.label}${among.length > 0 ? `; it has ${among.join(", ")}` : "; it has none"}`);
     if (!isSeries(asked[name])) throw new RangeError(`forecast: ${name} is an intervention, which extends by itself; leave it out of regressors`);

@@ -7,7 +7,8 @@ import { atOnce, type Gradual } from "./gradual.ts";
 import { growthOf } from "./growth.ts";
 import type { Figures, Forecast, Forecaster, ForecastOptions, Passing } from "./model.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
-import { once, type Outlook } from "./outlook.ts";
+import { once } from "./once.ts";
+import type { Outlook } from "./outlook.ts";
 import { pathAt, type Paths } from "./paths.ts";
 import { baseOf, firstIndex, lastIndex, reachOf } from "./reach.ts";
 import { futuresOf, scenariosOf } from "./scenarios.ts";
@@ -54,11 +55,12 @@ function* oneFuture(model: Forecaster, options: ForecastOptions, label: string |
 }
 
 /** What is published of a distribution. */
-function figuresOf({ outlook, base, times }: ModelOutlook, { levels = [0.5, 0.9], totals: spans, seed = 1, threshold }: ForecastOptions): { readonly figures: Figures; readonly notes: readonly Note[] } {
+function figuresOf({ outlook, base, times, notes: undone }: ModelOutlook, { levels = [0.5, 0.9], totals: spans, seed = 1, threshold }: ForecastOptions): { readonly figures: Figures; readonly notes: readonly Note[] } {
   const paths = once(() => outlook.paths(outlook.draws, seed)), { totals, notes } = totalsOf(spans, base, outlook, times, levels, paths);
   return { notes, figures: {
     mean: outlook.mean, median: outlook.median, se: outlook.se, sd: outlook.sd, bands: bandsOf(outlook, levels), totals,
-    growth: growthOf(base, outlook, times, levels, paths), passing: passingOf(threshold, outlook, paths),
+    // On a scale that is not the data's a ratio says nothing.
+    growth: undone.some((note) => note.code === "not-undone") ? [] : growthOf(base, outlook, times, levels, paths), passing: passingOf(threshold, outlook, paths),
   } };
 }
 

@@ -2,7 +2,8 @@
 
 import type { Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
-import { crpsOfQuantiles, levelOf, outlookOf, type Outlook } from "./outlook.ts";
+import { crpsOfQuantiles, levelOf } from "./byQuantiles.ts";
+import { outlookOf, type Outlook } from "./outlook.ts";
 import { fitPredictive } from "./fitPredictive.ts";
 import type { Forecaster } from "./model.ts";
 import type { Paths } from "./paths.ts";

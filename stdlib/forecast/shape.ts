@@ -8,7 +8,14 @@ import { isRule } from "./rules.ts";
 /** The long-run shape: mean, flat, line, or a season that repeats. */
 export function shapeOf(model: Forecaster): string {
   const onLogs = model.series.steps.some((s) => s.step === "log" || s.step === "boxCox");
-  return isRule(model) ? ruleShape(model, onLogs) : fitShape(model, onLogs);
+  return `${isRule(model) ? ruleShape(model, onLogs) : fitShape(model, onLogs)}${backInData(model)}`;
+}
+
+/** What the way back adds to the shape: a mean of what was left of a trend is a line in the data. */
+function backInData(model: Forecaster): string {
+  const { steps } = model.series, trend = steps.find((s) => s.step === "detrend" && s.degree > 0), season = steps.some((s) => s.step === "seasonallyAdjust");
+  if (trend === undefined && !season) return "";
+  return ` In the units of the data that stands on ${[...(trend ? ["the trend that was taken out, extended"] : []), ...(season ? ["the season that was taken out, repeated"] : [])].join(" and ")}.`;
 }
 
 function fitShape(fit: Fit, onLogs: boolean): string {

@@ -29,10 +29,10 @@ function spansOf(asked: NonNullable<ForecastOptions["totals"]>, base: Series, ti
     if (one === "year") {
       const years = wholeYears(base, times);
       spans.push(...years.spans);
-      if (years.left.length > 0) notes.push({ code: "part-year", tone: "note", text: `No total for ${years.left.join(", ")}: the year is not covered whole by observed values and forecasts. Give a span, as in {from: …, to: …}, to total a part of it.` });
+      if (years.left.length > 0) notes.push({ code: "part-year", tone: "note", text: `No total for ${years.left.join(", nor for ")}. Give a span, as in {from: …, to: …}, to total a part of a year.` });
       continue;
     }
-    const { from, to } = typeof one === "string" ? { from: one, to: one } : one;
+    const { from, to } = endsOf(one);
     const low = periodSpan(from, base.every).from, high = periodSpan(to, base.every).to - 1;
     if (high < low) throw new RangeError(`totals: nothing lies between ${from} and ${to}`);
     spans.push({ from, to, low, high });
@@ -40,14 +40,24 @@ function spansOf(asked: NonNullable<ForecastOptions["totals"]>, base: Series, ti
   return { spans, notes };
 }
 
+function endsOf(span: unknown): { readonly from: string; readonly to: string } {
+  if (typeof span === "string") return { from: span, to: span };
+  if (typeof span === "number") throw new RangeError(`totals: ${span} is a number; quote the year, as in "${span}"`);
+  const { from, to } = (typeof span === "object" && span !== null ? span : {}) as { readonly from?: unknown; readonly to?: unknown };
+  if (typeof from === "string" && typeof to === "string") return { from, to };
+  throw new RangeError("totals: a span is a year in quotes, such as \"2025\", or has both ends in quotes, as in {from: \"2025-01\", to: \"2025-06\"}");
+}
+
 /** Calendar years that the forecasts touch and that observed values and forecasts cover whole; and those they do not. */
 function wholeYears(base: Series, times: readonly string[]): { readonly spans: readonly Span[]; readonly left: readonly string[] } {
   if (base.every === null) throw new RangeError("totals: the series is only numbered, so it has no years; give spans as in {from: \"1\", to: \"12\"}");
-  const end = lastIndex(base) + times.length, spans: Span[] = [], left: string[] = [];
+  const end = lastIndex(base) + times.length, spans: Span[] = [], left: string[] = [], name = base.name || "the series";
   // A week belongs to the year in its own text; any other period to the year that its text begins with.
   for (const year of new Set(times.map((t) => /^[+-]?\d+/.exec(t)?.[0] ?? t))) {
-    const { from, to } = periodSpan(year, base.every);
-    if (to - 1 > end || from < firstIndex(base) || gapIn(base, from) !== null) left.push(year);
+    const { from, to } = periodSpan(year, base.every), gap = gapIn(base, from);
+    if (to - 1 > end) left.push(`${year} (the horizon ends with ${times[times.length - 1]})`);
+    else if (from < firstIndex(base)) left.push(`${year} (${name} begins with ${base.start})`);
+    else if (gap !== null) left.push(`${year} (${name} has no value at ${gap})`);
     else spans.push({ from: year, to: year, low: from, high: to - 1 });
   }
   return { spans, left };
@@ -111,7 +121,7 @@ function sumOf(base: Series, low: number, high: number, label: string): number {
   let sum = 0;
   for (let k = low; k <= high; k++) {
     const t = k - firstIndex(base);
-    if (Number.isNaN(base.values[t])) throw new RangeError(`totals: the total of ${label} needs ${base.name || "the series"} at ${base.times[t]}, which is missing`);
+    if (Number.isNaN(base.values[t])) throw new RangeError(`totals: the total of ${label} needs ${base.name || "the series"} at ${base.times[t]}, which is missing. Fill the gap, or total a span without it`);
     sum += base.values[t];
   }
   return sum;

@@ -57,6 +57,16 @@ describe("forecast shows", () => {
     expect(courses).toContain("strike");
     expect(difference).toContain("less usual (vehicles)");
   });
+  test("the chance of passing a threshold in each scenario", () => {
+    const { mean, median, se, sd, bands } = madeForecast(), of = (ever: number) => [{ threshold: 1500, above: new Float64Array(12).fill(ever / 2), ever }];
+    const usual = { label: "usual", mean, median, se, sd, bands, totals: [], growth: [], passing: of(0.7), difference: null }, less = { against: "usual", mean: se, median: se, bands, totals: [] };
+    const parts = forecast.show(madeForecast({ totals: [], scenarios: { usual, strike: { ...usual, label: "strike", passing: of(0.2), difference: less } } }), show);
+    expect(texts(parts)).toContain("The probability that crossings passes 1,500 vehicles in at least one of the 12 periods is 70% in scenario usual and 20% in scenario strike.");
+    expect(parts.filter((p): p is TablePart => p.part === "table")[0].rows[0]).toEqual(["2024-01", 0.35, 0.1]);
+  });
+  test("without levels there are no bands, in the picture's title either", () => {
+    expect((forecast.show(madeForecast({ bands: [], totals: [] }), show).find(p => p.part === "chart") as ChartPart).title).toBe("Forecast of crossings");
+  });
   test("no two columns of a table have one title, so that its CSV can be read by name", () => {
     for (const table of forecast.show(madeForecast(), show).filter((p): p is TablePart => p.part === "table")) expect(new Set(table.columns.map(c => c.title)).size).toBe(table.columns.length);
   });
@@ -85,6 +95,12 @@ describe("forecast refuses", () => {
 });
 
 const madeModel = () => estimate({ series: stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 1 }, { step: "difference", lag: 12 }]), ma: 1, season: { ma: 1 } });
+
+describe("forecast takes each level once", () => {
+  test("and says which stands twice", async () => {
+    await expect(forecast.run(checkOptions(forecast, { model: madeFit(), horizon: 2, levels: [0.5, 0.9, 0.5] }) as never, madeContext())).rejects.toThrow("levels has 0.5 twice");
+  });
+});
 
 describe("forecast runs", () => {
   test("a fit of a logged and differenced series in the units of the data", async () => {

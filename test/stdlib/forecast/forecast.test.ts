@@ -92,7 +92,14 @@ describe("totals, growth and probabilities", () => {
     expect(() => forecast(model, { horizon: 6, totals: "1961" })).toThrow("needs a horizon of 12 periods; it is 6");
     const found = forecast(model, { horizon: 6, totals: "year" });
     expect(found.totals).toEqual([]);
-    expect(found.notes.some((n) => n.text.includes("No total for 1961"))).toBe(true);
+    expect(found.notes.find((n) => n.code === "part-year")?.text).toBe("No total for 1961 (the horizon ends with 1961-06). Give a span, as in {from: …, to: …}, to total a part of a year.");
+  });
+  it("says of a gap where it is, and of a slip what to write", () => {
+    const s = airlineSeries(), naive = rule.naive(makeSeries({ ...s, values: s.values.map((v, t) => (s.times[t] === "1960-03" ? NaN : v)) }));
+    expect(() => forecast(naive, { horizon: 12, totals: [{ from: "1960-01", to: "1961-12" }] })).toThrow("needs passengers at 1960-03, which is missing. Fill the gap, or total a span without it");
+    expect(forecast(naive, { horizon: 12, totals: [{ from: "1960-04", to: "1961-12" }] }).totals[0].observed).toBe(9);
+    expect(() => forecast(naive, { horizon: 12, totals: 1961 as never })).toThrow('1961 is a number; quote the year, as in "1961"');
+    expect(() => forecast(naive, { horizon: 12, totals: [{ start: "1961-01" }] as never })).toThrow('as in {from: "2025-01", to: "2025-06"}');
   });
   it("growth is on the year before, and a threshold's probability is that of the quantile", () => {
     const found = forecast(airlineFit(), { horizon: 14, levels: [0.8], threshold: [450, 1e9] });
@@ -124,6 +131,17 @@ describe("the way back", () => {
     expect(years.times).toEqual(["2023"]);
     expect(years.notes.some((n) => n.text.includes("forecasts are of the aggregated series"))).toBe(true);
   });
+  it("the shape in the units of the data is told with what was taken out", () => {
+    const line = makeSeries({ name: "x", every: "P3M", start: "2018-Q1", values: Array.from({ length: 24 }, (_, t) => 10 + 2 * t + [1, -2, 3, -2][t % 4] + Math.cos(t * t)) });
+    expect(forecast(rule.average(applySteps(line, [{ step: "detrend", degree: 1 }, { step: "seasonallyAdjust" }])), { horizon: 2 }).shape).toMatch(/stands on the trend that was taken out, extended and the season that was taken out, repeated\.$/);
+  });
+  it("of logs that were averaged before the model no growth is given: a ratio of logs says nothing", () => {
+    const rising = makeSeries({ name: "x", every: "P1M", start: "2018-01", values: Array.from({ length: 48 }, (_, t) => Math.exp(5 + t / 50)) });
+    const found = forecast(rule.drift(applySteps(rising, [{ step: "log" }, { step: "aggregate", to: "P1Y", how: "mean" }])), { horizon: 2 });
+    expect(found.growth).toEqual([]);
+    expect(found.notes.find((n) => n.code === "not-undone")?.tone).toBe("caution");
+    expect(forecast(rule.drift(applySteps(rising, [{ step: "aggregate", to: "P1Y", how: "mean" }, { step: "log" }])), { horizon: 2 }).growth).toHaveLength(2);
+  });
   it("a detrended fit is no better informed than it should be: its mean comes back to the line", () => {
     const { values } = referenceSeries("lakehuron"), series = makeSeries({ name: "level", values });
     const found = forecast(fit({ series: applySteps(series, [{ step: "detrend", degree: 1 }]), ar: 2 }), { horizon: 60 });
@@ -139,6 +157,7 @@ describe("regressors", () => {
     const model = fit({ series: y, ar: 1, regressors: { price: months(40) } });
     expect(() => forecast(model, { horizon: 3 })).toThrow("Regressor price ends 2023-04; the horizon needs 2023-07");
     expect(() => forecast(model, { horizon: 3, regressors: { cost: months(43) } })).toThrow("cost is no regressor");
+    expect(() => forecast(model, { horizon: 3, regressors: months(43) as never })).toThrow("regressors is a series by itself; give it under the name that (1,0,0) uses, as in {price: price}");
     expect(forecast(model, { horizon: 3, regressors: { price: months(43) } }).mean).toEqual(forecast(fit({ series: y, ar: 1, regressors: { price: months(43) } }), { horizon: 3 }).mean);
   });
   it("an intervention extends by itself", () => {

@@ -66,6 +66,13 @@ describe("scenarios", () => {
   });
 });
 
+it("coefficients of regressors alone are as uncertain together as least squares says: sigma2 times the inverse of X'X", () => {
+  const model = fit({ series: sales, regressors: { price, rain } }), centred = [price, rain].map(({ values }) => values.map((v) => v - values.reduce((a, b) => a + b, 0) / values.length));
+  const [a, b, c] = [[0, 0], [0, 1], [1, 1]].map(([i, j]) => centred[i].reduce((sum, v, t) => sum + v * centred[j][t], 0)), determinant = a * c - b * b;
+  [c / determinant, -b / determinant, -b / determinant, a / determinant].forEach((v, at) => expect(regressionCovariance(model, ["price", "rain"])![at] / (model.sigma2 * v)).toBeCloseTo(1, 9));
+  expect([...regressionCovariance(fit({ series: sales, regressors: { price, rain }, hold: { beta: { rain: 1 } } }), ["rain"])!]).toEqual([0]);
+});
+
 describe("scenarios refuse, in words", () => {
   const model = fit({ series: sales, ar: 1, regressors: { price, strike: pulse("2020-03") } }), cheap = { price: ahead("price", 9) };
   it.each([
