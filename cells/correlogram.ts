@@ -1,7 +1,7 @@
 // The kind that shows autocorrelations and partial autocorrelations on one lag axis, and what they suggest.
 
-import { correlogram as compute, extendedAcf, smallestCanonical, theoreticalAcf, theoreticalPacf, type Correlogram, type Fit, type OrderTable, type Series } from "../stdlib/index.ts";
-import { OptionError, type Kind, type OptionTable } from "./kind.ts";
+import { correlogram as compute, extendedAcf, offsetBetween, prewhitenedCcf, smallestCanonical, theoreticalAcf, theoreticalPacf, type Correlogram, type Fit, type OrderTable, type PrewhitenedCcf, type Series } from "../stdlib/index.ts";
+import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { correlogramParts } from "./parts/correlogramParts.ts";
 import { needLevel, needVaryingSeries, plainly } from "./parts/needs.ts";
 import { scaleText } from "./parts/scale.ts";
@@ -15,6 +15,8 @@ export interface CorrelogramCell {
   readonly partial?: "levinson" | "regression" | "burg";
   /** A fit whose own correlations are laid over the sample's. */
   readonly model?: Fit;
+  /** A second series, which may lead the first. */
+  readonly with?: unknown;
 }
 
 /** A correlogram with what it is of, and a model's own correlations from lag 0 where a model was given. */
@@ -22,6 +24,9 @@ export interface ShownCorrelogram extends Correlogram {
   readonly of: string;
   /** Tables that read mixed orders; null where a cut-off already suggests pure ones, or where the data cannot carry them. */
   readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null;
+  /** Cross-correlations after prewhitening, positive lags where the second series leads; null without one. `source` is how the
+   *  second series is written in the notebook. */
+  readonly cross: (PrewhitenedCcf & { readonly of: string; readonly name: string; readonly source: string }) | null;
   readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null;
 }
 
@@ -32,6 +37,7 @@ export const correlogramOptions: OptionTable = {
   band: { type: { oneOf: ["independent", "bartlett"] }, default: "independent", sentence: "The band of the autocorrelations: that of independent observations, or Bartlett's, which supposes a moving average of one order less than the lag." },
   partial: { type: { oneOf: ["levinson", "regression", "burg"] }, default: "levinson", sentence: "How partial autocorrelations are computed: the Levinson recursion, regressions on the lags, or Burg's recursion." },
   model: { type: "fit", sentence: "A fit whose own autocorrelations are laid over the sample's.", example: "airline" },
+  with: { type: "series", sentence: "A second series that may lead the first: their cross-correlations after prewhitening are shown, on lags to both sides. Both should be stationary.", example: "price" },
 };
 
 /** Correlations by lag with bands, portmanteau tests, and orders to begin with. */
@@ -42,18 +48,28 @@ export const correlogram: Kind<CorrelogramCell, ShownCorrelogram> = {
   body: "options",
   callable: true,
   example: "series: steady",
-  run: options => runCorrelogram(options),
+  run: (options, context) => runCorrelogram(options, context),
   show: result => correlogramParts(result),
 };
 
-export function runCorrelogram(options: CorrelogramCell): ShownCorrelogram {
+export function runCorrelogram(options: CorrelogramCell, context: RunContext): ShownCorrelogram {
   const series = needVaryingSeries(options.series, 3, "a correlogram");
   const lags = options.lags ?? undefined;
   if (lags !== undefined && (!Number.isInteger(lags) || lags < 1 || lags >= series.n)) {
     throw new OptionError("lags", `lags is ${lags}; with ${count(series.n, "value")} it can be a whole number from 1 to ${series.n - 1}`);
   }
   const result = plainly(() => compute({ series, lags, level: needLevel(options.level), band: options.band ?? "independent", partial: options.partial ?? "levinson" }));
-  return { ...result, of: scaleText(series), mixed: mixedTables(result, series), theory: options.model ? theoryOf(options.model, result.lags) : null };
+  return { ...result, of: scaleText(series), cross: crossOf(options.with, series, result.lags, result.level, context.source.with), mixed: mixedTables(result, series), theory: options.model ? theoryOf(options.model, result.lags) : null };
+}
+
+/** Lags to each side as many as the series' own, and at most a third of what both series have. */
+function crossOf(other: unknown, series: Series, lags: number, level: number, source: string | undefined): ShownCorrelogram["cross"] {
+  if (other === undefined || other === null) return null;
+  const leader = needVaryingSeries(other, 10, "a cross-correlation", "with");
+  return plainly(() => {
+    const offset = offsetBetween(leader, series), shared = Math.min(leader.n, offset + series.n) - Math.max(0, offset);
+    return { ...prewhitenedCcf(leader, series, Math.max(1, Math.min(lags, Math.floor(shared / 3))), { level }), of: scaleText(leader), name: leader.name || "the second series", source: source ?? leader.name };
+  });
 }
 
 /** Where neither correlations cut off, the rule of thumb has no more to say, and tables made for mixed models begin. */

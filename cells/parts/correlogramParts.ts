@@ -1,17 +1,18 @@
 // What a correlogram shows: what stands out, both correlations on one lag axis, the portmanteau tests, the suggestion.
 
-import type { Correlogram, OrderTable } from "../../stdlib/index.ts";
+import type { Correlogram, OrderTable, PrewhitenedCcf } from "../../stdlib/index.ts";
 import { lagChart, type LagPanel } from "./lagChart.ts";
 import { orderChart } from "./orderChart.ts";
 import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { lagsInWords, percent, pText } from "./words.ts";
 
-type Shown = Correlogram & { readonly of: string; readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null; readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null };
+type Cross = PrewhitenedCcf & { readonly of: string; readonly name: string; readonly source: string };
+type Shown = Correlogram & { readonly of: string; readonly cross: Cross | null; readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null; readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null };
 
 export function correlogramParts(result: Shown): readonly Part[] {
   if (result.status === "unavailable") return [{ part: "text", tone: "caution", text: result.sentence }];
-  return [
+  const own: readonly Part[] = [
     { part: "text", text: result.sentence },
     lagChart({
       title: `Correlations of ${result.of} with its own past`, alt: altOf(result), season: result.seasonLength ?? 0,
@@ -19,8 +20,26 @@ export function correlogramParts(result: Shown): readonly Part[] {
     }),
     startText(result),
     ...(result.theory === null ? [] : [{ part: "text" as const, tone: "note" as const, text: `The line is what ${result.theory.label} would give in a long series.` }]),
-    ...details([...mixedParts(result), portmanteauTable(result)]),
-    ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
+  ];
+  const tables = details([...mixedParts(result), portmanteauTable(result)]), notes = result.notes.map((text): TextPart => ({ part: "text", tone: "note", text }));
+  // Where a second series was given, the question is about both; the first one's own past waits below.
+  return result.cross === null ? [...own, ...tables, ...notes] : [...crossParts(result.cross, result.of), ...details([...own, ...notes]), ...tables];
+}
+
+/** Which leads, by how much, and the regressor to try; lags to both sides of 0. */
+function crossParts(cross: Cross, of: string): readonly Part[] {
+  if (cross.status === "unavailable") return [{ part: "text", tone: "caution", text: cross.sentence }];
+  const reach = (cross.lags.length - 1) / 2, note = (text: string): TextPart => ({ part: "text", tone: "note", text });
+  const lead = cross.strongest === null || cross.strongest.lag < 0 ? null : cross.strongest.lag;
+  return [
+    { part: "text", text: cross.sentence },
+    lagChart({
+      title: `Cross-correlations of ${cross.of} with ${of}, after prewhitening`, alt: cross.sentence, season: 0, guides: [0], lagTitle: `lag (periods); right of 0 ${cross.name} comes first`,
+      panels: [{ title: "cross-correlation", from: -reach, values: cross.ccf, band: Float64Array.from(cross.ccf, () => cross.band) }],
+    }),
+    ...(lead === null ? [] : [note(`A fit could try it as a regressor: regressors: {leader: ${lead === 0 ? cross.source : `lagged(${cross.source}, ${lead})`}}.`)]),
+    note(`An autoregression of order ${cross.order}, estimated from ${cross.of}, was taken out of both, so that memory in each does not pass for a connection; ${cross.n} pairs are left.`),
+    ...cross.notes.map(note),
   ];
 }
 
@@ -51,10 +70,16 @@ function mixedParts(result: Shown): readonly Part[] {
   if (result.mixed === null) return [];
   const { extended, canonical } = result.mixed;
   return [
-    { part: "text", text: `For mixed orders: ${extended.sentence} ${canonical.sentence}` },
+    { part: "text", text: `For mixed orders: ${extended.sentence} ${canonical.sentence} ${together(result.mixed)}` },
     orderChart("Extended autocorrelations by orders (Tsay and Tiao 1984); shaded: within chance", extended.sentence, extended),
     orderChart("Smallest canonical correlations, p-values by orders (Tsay and Tiao 1985); shaded: above 0.05", canonical.sentence, canonical),
   ];
+}
+
+function together({ extended, canonical }: NonNullable<Shown["mixed"]>): string {
+  const [a, b] = [extended.suggests, canonical.suggests];
+  if (a === null || b === null) return "";
+  return a.ar === b.ar && a.ma === b.ma ? "The two tables agree." : "The two tables point to different orders: fit both and compare them.";
 }
 
 function portmanteauTable(result: Shown): TablePart {

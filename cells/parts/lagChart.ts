@@ -18,9 +18,10 @@ const panelHeight = 130;
 /** Room between panels, as a share of a panel's height. */
 const gap = 0.2;
 
-/** @param season  season length in lags, marked by guide lines; 0 for none */
+/** @param season  season length in lags, marked by guide lines; 0 for none
+ *  @param guides  further lags to mark */
 export function lagChart(given: {
-  readonly title: string; readonly alt: string; readonly panels: readonly LagPanel[]; readonly season: number; readonly lagTitle?: string;
+  readonly title: string; readonly alt: string; readonly panels: readonly LagPanel[]; readonly season: number; readonly guides?: readonly number[]; readonly lagTitle?: string;
 }): ChartPart {
   const { panels } = given;
   const data: Record<string, Columns> = {};
@@ -32,7 +33,7 @@ export function lagChart(given: {
     return panelLayers(panel.title, key, i, panels.length, given.lagTitle ?? "lag (periods)");
   });
   const last = Math.max(...panels.map(panel => panel.from + panel.values.length - 1));
-  data.seasons = { lag: seasonLags(given.season, last) };
+  data.seasons = { lag: [...seasonLags(given.season, last), ...(given.guides ?? [])] };
   return {
     part: "chart", title: given.title, alt: given.alt, height: panels.length * panelHeight * (1 + gap) + 40,
     spec: {

@@ -7,6 +7,7 @@ import { symmetricEigen } from "../linear/symmetricEigen.ts";
 import type { Series } from "../series/series.ts";
 import { valuesOf } from "../series/series.ts";
 import { acf } from "./acf.ts";
+import { byChance } from "./suggestOrders.ts";
 
 /** A table over AR orders 0..maxAr (rows) and MA orders 0..maxMa (columns). */
 export interface OrderTable {
@@ -24,7 +25,9 @@ export interface OrderTable {
 
 /** Extended sample autocorrelations: entry (k, j) is the lag j + 1 autocorrelation after an AR(k) part, estimated so that an MA(j)
  *  part does not disturb it, is taken off. For an ARMA(p, q) the zeros fill a triangle with its corner at (p, q).
- *  `beyond`: outside 2 / sqrt(n - k - j). Source: Tsay & Tiao (1984). */
+ *  `beyond`: outside two standard errors by Bartlett (1946), sqrt((1 + 2 sum of r_i^2, i <= j) / (n - k - j)), since a zero there
+ *  supposes an MA(j). The 1 / sqrt(n - k - j) printed in the source marks too many zeros beyond the right order, and then too
+ *  high an MA order is read (simulated, test/bench/identify.ts). Source: Tsay & Tiao (1984). */
 export function extendedAcf(x: Series | ArrayLike<number>, maxAr = 5, maxMa = 8): OrderTable {
   const values = valuesOf(x), n = values.length, why = whyNot(values, maxAr, maxMa);
   if (why !== null) return unavailableTable(maxAr, maxMa, why);
@@ -36,9 +39,9 @@ export function extendedAcf(x: Series | ArrayLike<number>, maxAr = 5, maxMa = 8)
   for (let j = 0; j <= maxMa; j++) {
     phi = iterated(phi);
     for (let k = 0; k <= maxAr; k++) {
-      const r = k === 0 ? plain[j + 1] : acf(filtered(z, phi[k]), j + 1)[j + 1];
+      const own = k === 0 ? plain : acf(filtered(z, phi[k]), j + 1), r = own[j + 1];
       table[k * (maxMa + 1) + j] = r;
-      beyond[k * (maxMa + 1) + j] = Math.abs(r) > 2 / Math.sqrt(n - k - j) ? 1 : 0;
+      beyond[k * (maxMa + 1) + j] = Math.abs(r) > 2 * Math.sqrt(bartlettFactor(own, j) / (n - k - j)) ? 1 : 0;
     }
   }
   if (table.some(Number.isNaN)) return unavailableTable(maxAr, maxMa, exactly);
@@ -56,7 +59,7 @@ export function smallestCanonical(x: Series | ArrayLike<number>, maxAr = 5, maxM
   const table = new Float64Array((maxAr + 1) * (maxMa + 1)), beyond = new Uint8Array(table.length);
   for (let m = 0; m <= maxAr; m++) for (let j = 0; j <= maxMa; j++) {
     const { lambda, combined } = smallestPair(z, m, j);
-    const factor = j === 0 ? 1 : acf(combined, j).slice(1).reduce((sum, r) => sum + 2 * r * r, 1);
+    const factor = bartlettFactor(acf(combined, j), j);
     const statistic = -(n - m - j) * Math.log(Math.max(1e-300, 1 - Math.min(1, lambda / factor)));
     const p = chiSquareUpper(statistic, 1);
     table[m * (maxMa + 1) + j] = p;
@@ -65,6 +68,13 @@ export function smallestCanonical(x: Series | ArrayLike<number>, maxAr = 5, maxM
   if (table.some(Number.isNaN)) return unavailableTable(maxAr, maxMa, exactly);
   const suggests = rectangle(beyond, maxAr, maxMa);
   return { status: "ok", maxAr, maxMa, values: table, beyond, suggests, sentence: sentenceOf("smallest canonical correlations", "rectangle", suggests) };
+}
+
+/** What the variance of the correlation after an MA(j) is multiplied by. */
+function bartlettFactor(r: Float64Array, j: number): number {
+  let sum = 1;
+  for (let i = 1; i <= j; i++) sum += 2 * r[i] * r[i];
+  return sum;
 }
 
 const exactly = "some combination of neighbouring values is exact, which leaves no errors to correlate";
@@ -127,7 +137,8 @@ function smallestPair(z: Float64Array, m: number, j: number): { lambda: number; 
   return { lambda: Math.max(0, values[least]), combined };
 }
 
-/** The corner (p, q) of least p + q from which on the triangle j >= q + k - p is free of marks, but for one in twenty. */
+/** The corner (p, q) of least p + q from which on the triangle j >= q + k - p is free of marks, but for as many as chance
+ *  leaves there more than one time in twenty. */
 function triangle(beyond: Uint8Array, maxAr: number, maxMa: number): { ar: number; ma: number } | null {
   return corner(maxAr, maxMa, (p, q, k, j) => k >= p && j >= q + (k - p), beyond);
 }
@@ -145,7 +156,7 @@ function corner(maxAr: number, maxMa: number, inside: (p: number, q: number, k: 
       let cells = 0, marks = 0;
       for (let k = 0; k <= maxAr; k++) for (let j = 0; j <= maxMa; j++) if (inside(p, q, k, j)) { cells++; marks += beyond[k * (maxMa + 1) + j]; }
       const own = beyond[p * (maxMa + 1) + q];
-      if (own === 0 && marks <= Math.floor(0.05 * cells + 0.5) && marks / cells < fewest) { fewest = marks / cells; best = { ar: p, ma: q }; }
+      if (own === 0 && marks <= byChance(cells, 0.05) && marks / cells < fewest) { fewest = marks / cells; best = { ar: p, ma: q }; }
     }
     if (best !== null) return best;
   }

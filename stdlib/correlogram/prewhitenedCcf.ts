@@ -2,10 +2,11 @@
 
 import { normalQuantile } from "../distributions/normal.ts";
 import type { Series } from "../series/series.ts";
-import { valuesOf } from "../series/series.ts";
+import { isSeries } from "../series/series.ts";
 import { ccf } from "./acf.ts";
 import { autocovariance, centre } from "./autocovariance.ts";
 import { checkLevel } from "./bands.ts";
+import { commonStretch } from "./commonStretch.ts";
 
 export interface PrewhitenedCcf {
   readonly status: "ok" | "unavailable";
@@ -20,19 +21,25 @@ export interface PrewhitenedCcf {
   /** Order of the autoregressive filter. */
   readonly order: number;
   readonly n: number;
+  /** First and last period that both series have; null for bare numbers. */
+  readonly from: string | null; readonly to: string | null;
+  /** The largest cross-correlation outside the limits; null where none is. */
+  readonly strongest: { readonly lag: number; readonly value: number } | null;
+  readonly notes: readonly string[];
   readonly sentence: string;
 }
 
 /** Cross-correlations after prewhitening: an autoregression of x (Yule-Walker, order by AIC up to 10 log10 n) filters both.
  *  Without it, autocorrelation in both series makes chance correlations large. Both should be stationary first.
- *  @throws RangeError where lengths differ or lags is out of range. Source: Box & Jenkins (1976), section 11.2. */
+ *  Two series are aligned by their times, over the periods that both have.
+ *  @throws RangeError where they share no period, or lags is out of range. Source: Box & Jenkins (1976), section 11.2. */
 export function prewhitenedCcf(x: Series | ArrayLike<number>, y: Series | ArrayLike<number>, lags: number, { level = 0.95, order: given }: { readonly level?: number; readonly order?: number | null } = {}): PrewhitenedCcf {
   checkLevel("prewhitenedCcf", level);
-  const a = valuesOf(x), b = valuesOf(y);
-  if (a.length !== b.length) throw new RangeError(`prewhitenedCcf: the first series has ${a.length} values and the second ${b.length}: cut both to the same window`);
+  const { x: a, y: b, from, to, note } = commonStretch("prewhitenedCcf", x, y);
+  const notes = note === null ? [] : [`${note}.`], names = [nameOf(x, "the first"), nameOf(y, "the second")] as const;
   const ca = centre(a), cb = centre(b);
   const why = ca.observed < 10 || cb.observed < 10 ? "fewer than ten values are observed" : !(spread(ca.deviations) > 0) || !(spread(cb.deviations) > 0) ? "one of the series does not vary" : null;
-  if (why !== null) return { status: "unavailable", note: why, lags: new Int32Array(0), ccf: new Float64Array(0), band: NaN, level, outside: [], order: 0, n: ca.observed, sentence: `The data cannot answer: ${why}.` };
+  if (why !== null) return { status: "unavailable", note: why, lags: new Int32Array(0), ccf: new Float64Array(0), band: NaN, level, outside: [], order: 0, n: ca.observed, from, to, strongest: null, notes, sentence: `The data cannot answer: ${why}.` };
   const phi = yuleWalker(a, given ?? null);
   const fa = whitened(a, ca.mean, phi), fb = whitened(b, cb.mean, phi), n = fa.reduce((s, v, t) => s + (Number.isNaN(v) || Number.isNaN(fb[t]) ? 0 : 1), 0);
   if (!Number.isInteger(lags) || lags < 0 || lags >= fa.length) throw new RangeError(`prewhitenedCcf: lags is ${lags}, expected a whole number from 0 to ${fa.length - 1}`);
@@ -40,7 +47,9 @@ export function prewhitenedCcf(x: Series | ArrayLike<number>, y: Series | ArrayL
   const values = Float64Array.from([...Array.from(behind).slice(1).reverse(), ...ahead]);
   const band = normalQuantile(0.5 + level / 2) / Math.sqrt(n), at = Int32Array.from({ length: 2 * lags + 1 }, (_, i) => i - lags);
   const outside = Array.from(at).filter((_, i) => Math.abs(values[i]) > band);
-  return { status: "ok", lags: at, ccf: values, band, level, outside, order: phi.length, n, sentence: sentenceOf(at, values, outside, level) };
+  const top = outside.length === 0 ? null : outside.reduce((best, lag) => (Math.abs(values[lag + lags]) > Math.abs(values[best + lags]) ? lag : best));
+  const strongest = top === null ? null : { lag: top, value: values[top + lags] };
+  return { status: "ok", lags: at, ccf: values, band, level, outside, order: phi.length, n, from, to, strongest, notes, sentence: sentenceOf(at.length, strongest, outside.length, level, names) };
 }
 
 function yuleWalker(x: Float64Array, given: number | null): Float64Array {
@@ -70,11 +79,14 @@ function spread(deviations: Float64Array): number {
   return deviations.reduce((s, v) => s + v * v, 0);
 }
 
-function sentenceOf(at: Int32Array, values: Float64Array, outside: readonly number[], level: number): string {
-  const chance = ((1 - level) * at.length).toFixed(1);
-  if (outside.length === 0) return `After prewhitening no cross-correlation is outside its ${100 * level}% limits: no sign that one series leads the other.`;
-  let top = 0;
-  values.forEach((v, i) => { if (Math.abs(v) > Math.abs(values[top])) top = i; });
-  const lag = at[top], who = lag > 0 ? `the first leads the second by ${lag}` : lag < 0 ? `the second leads the first by ${-lag}` : "the same period";
-  return `After prewhitening ${outside.length} of ${at.length} cross-correlations ${outside.length === 1 ? "is" : "are"} outside ${100 * level}% limits (about ${chance} would be by chance); the largest, ${values[top].toFixed(2)}, is where ${lag === 0 ? "both are of the same period" : who}.`;
+function nameOf(x: Series | ArrayLike<number>, otherwise: string): string {
+  return (isSeries(x) && x.name) || otherwise;
+}
+
+function sentenceOf(tried: number, strongest: PrewhitenedCcf["strongest"], outside: number, level: number, [x, y]: readonly [string, string]): string {
+  const limits = `${Number((100 * level).toPrecision(6))}% limits`;
+  if (strongest === null) return `After prewhitening no cross-correlation of ${x} and ${y} is outside its ${limits}: no sign that one leads the other, or moves with it.`;
+  const { lag, value } = strongest, periods = `${Math.abs(lag)} ${Math.abs(lag) === 1 ? "period" : "periods"}`;
+  const where = lag === 0 ? "within the same period" : lag > 0 ? `where ${x} leads ${y} by ${periods}` : `where ${y} leads ${x} by ${periods}`;
+  return `After prewhitening ${outside} of ${tried} cross-correlations of ${x} and ${y} ${outside === 1 ? "is" : "are"} outside ${limits} (about ${((1 - level) * tried).toFixed(1)} would be by chance); the largest, ${value.toFixed(2).replace("-", "−")}, is ${where}. That a lead is seen does not show a cause.`;
 }

@@ -48,7 +48,7 @@ function cutOff(r: Float64Array, band: Float64Array, near: number, level: number
 }
 
 /** The largest count of `n` lags that chance puts outside with a probability above 0.05, each at `share`. */
-function byChance(n: number, share: number): number {
+export function byChance(n: number, share: number): number {
   let term = (1 - share) ** n, upper = 1, count = 0;
   while (count < n) {
     upper -= term; // P(more than `count`)

@@ -84,6 +84,37 @@ describe("correlogram", () => {
     expect(line[2]).toBeCloseTo(model.phi[0] ** 3, 10);
     expect(texts(parts)).toContain("The line is what memory would give in a long series.");
   });
+  describe("with a second series", () => {
+    /** Box & Jenkins (1976), series M: their transfer function delays the leading indicator by three periods. */
+    const read = (file: string) => readFileSync(new URL(`../reference/series/${file}.csv`, import.meta.url), "utf8").trim().split("\n").slice(1).map(line => Number(line.split(",").at(-1)));
+    const months = (name: string, values: readonly number[], start = "2000-01") => makeSeries({ name, every: "P1M", start, values });
+    const sales = stepped(months("sales", read("bjsales")), [{ step: "difference", lag: 1 }]), lead = stepped(months("lead", read("bjsales_lead")), [{ step: "difference", lag: 1 }]);
+    test("says which leads and by how much, on lags to both sides", async () => {
+      const result = await run({ series: sales, with: lead });
+      expect(result.cross!.strongest!.lag).toBe(3);
+      const parts = correlogram.show(result, show), chart = parts[1] as ChartPart;
+      expect(chart.title).toBe("Cross-correlations of lead, differenced at lag 1 with sales, differenced at lag 1, after prewhitening");
+      expect(chart.alt).toMatch(/the largest, 0\.\d\d, is where lead leads sales by 3 periods\. That a lead is seen does not show a cause\.$/);
+      expect(texts(parts)).toContain("regressors: {leader: lagged(lead, 3)}");
+      const [svg] = await drawnCharts(parts);
+      expect(svg).toContain("right of 0 lead comes first");
+      const lags = chart.full!.correlations.lag as readonly number[];
+      expect([lags[0], lags.at(-1)]).toEqual([-result.lags, result.lags]);
+      // The series' own correlogram waits below.
+      expect(parts.filter(p => p.part === "chart" && p.detail).map(p => (p as ChartPart).title)[0]).toBe("Correlations of sales, differenced at lag 1 with its own past");
+    });
+    test("compares the periods that both have, and says so", async () => {
+      const later = stepped(months("lead", read("bjsales_lead").slice(20, 140), "2001-09"), [{ step: "difference", lag: 1 }]);
+      const result = await run({ series: sales, with: later });
+      expect(result.cross!.strongest!.lag).toBe(3);
+      expect(texts(correlogram.show(result, show))).toContain("are compared over the periods that both have, 2001-10 to 2011-08.");
+    });
+    test("says that nothing leads where nothing does, and refuses what cannot be compared", async () => {
+      const other = months("other", read("sim_white").slice(0, 149), "2000-02");
+      expect(texts(correlogram.show(await run({ series: sales, with: other, level: 0.999 }), show))).toContain("no sign that one leads the other, or moves with it");
+      await expect(run({ series: sales, with: makeSeries({ name: "weekly", every: "P1W", start: "2000-W01", values: read("sim_white").slice(0, 100) }) })).rejects.toThrow("aggregate one of them first");
+    });
+  });
   test("widens Bartlett's band with the lag", async () => {
     const { band } = await run({ series: nile, band: "bartlett", lags: 10 });
     expect(band.acf[10]).toBeGreaterThan(band.acf[1]);

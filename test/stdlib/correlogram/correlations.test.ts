@@ -5,6 +5,7 @@ import { autocovariance, centre, crossCovariance } from "../../../stdlib/correlo
 import { bartlettBand, independentBand } from "../../../stdlib/correlogram/bands.ts";
 import { pacf } from "../../../stdlib/correlogram/pacf.ts";
 import { laggedProducts } from "../../../stdlib/linear/fft.ts";
+import { makeSeries } from "../../../stdlib/series/series.ts";
 import { agrees, casesOf, dataOf, seriesOf, transformed } from "../referenceCases.ts";
 
 const z95 = 1.959963984540054;
@@ -98,11 +99,17 @@ describe("correlations by hand, by law and at the edge", () => {
     expect(p[1] * (1 - p[2])).toBeCloseTo(1.0449, 4);
     expect(p[2]).toBeCloseTo(-0.2456, 4);
   });
+  it("cross-correlations are of the periods that both series have", () => {
+    const months = (start: string, values: number[]) => makeSeries({ name: start, every: "P1M", start, values });
+    const x = months("2020-01", [9, 4, 7, 1, 5, 8]), y = months("2020-03", [2, 6, 3, 1, 7]);
+    expect(Array.from(ccf(x, y, 2))).toEqual(Array.from(ccf([7, 1, 5, 8], [2, 6, 3, 1], 2)));
+    expect(() => ccf(x, months("2021-01", [1, 2, 3]), 1)).toThrow("2020-01 (2020-01 to 2020-06) and 2021-01 (2021-01 to 2021-03) share no period");
+  });
   it("constant values have no correlation, and lags out of range are refused in words", () => {
     expect(acf([3, 3, 3], 1)[1]).toBeNaN();
     expect(() => acf([1, 2, 3], 3)).toThrow("expected a whole number from 0 to 2 for 3 values");
     expect(() => acf([], 0)).toThrow("no values");
-    expect(() => ccf([1, 2], [1, 2, 3], 1)).toThrow("cut both to the same window");
+    expect(() => ccf([1, 2], [1, 2, 3], 1)).toThrow("bare numbers have no dates to align them by");
     expect(() => pacf([1, NaN, 3, 4], 1, "burg")).toThrow("without gaps");
     expect(ljungBox([5, 5, 5, 5], 2)).toMatchObject({ status: "unavailable", p: NaN });
     expect(ljungBox([5, 5, 5, 5], 2).note).toContain("the same");
