@@ -88,7 +88,7 @@ export function conditionalEstimate(numbers: Numbers): ConditionalSolution {
       for (let i = 0; i < size; i++) for (let j = 0; j < size; j++) h[i * size + j] = used * dot(jac[i], jac[j], n) / sum;
     },
   };
-  const guess = hannanRissanen(shape, numbers.bridged);
+  const guess = hannanRissanen(numbers.bridged)(shape);
   const start = new Float64Array(size);
   free.forEach((at, i) => { start[i] = guess[at]; });
   let found = quasiNewton(problem, start, 1e-12);
@@ -104,7 +104,7 @@ export function conditionalEstimate(numbers: Numbers): ConditionalSolution {
   const covariance = size > 0 ? inversePositive(hessian, size) : new Float64Array(0);
   return {
     x: Float64Array.from(x), beta: Float64Array.from(beta), innovations: e.fill(NaN, 0, skip), sigma2: value / used, converged: found.converged || size === 0,
-    information: { covariance, robust: null, size, hessian, gradient: found.gradient },
+    information: { covariance, robust: null, size },
     notes: [{ code: "conditional", tone: "note", text: `Estimated by conditional least squares: the first ${skip} innovation${skip === 1 ? "" : "s"} count as zero. The log-likelihood is the exact one at these estimates.` }],
   };
 }

@@ -16,40 +16,41 @@ import { quasiNewton, type Minimum, type Problem } from "../optimize/quasiNewton
 export function estimate(search: Search): Estimate {
   const { shape, data, held } = search;
   const work = search.work ?? makeWork(shape, data);
-  const free = Int32Array.from([...held.keys()].filter(i => Number.isNaN(held[i])));
+  const free = freeOf(held);
   const evaluate = search.evaluate ?? {
     value: (x: Float64Array) => valueAt(work, data, x),
     gradientInto: (x: Float64Array, g: Float64Array) => gradientInto(work, data, x, g),
   };
-  const problem = makeProblem(search, work, free, evaluate);
+  const problem = makeProblem(search, work, free, evaluate), startOf = hannanRissanen(search.bridged);
   const maximise: Maximise = (small, rounds = 2 * SCOUT) => {
     const own = makeWork(small, data), none = new Float64Array(small.count).fill(NaN);
     const plain: Evaluate = { value: x => valueAt(own, data, x), gradientInto: (x, g) => gradientInto(own, data, x, g) };
     if (small.count === 0) return Number.isFinite(plain.value(none)) ? { x: none, innovations: own.er, value: own.f, sigma2: own.sigma2 } : null;
-    const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, own, Int32Array.from(none.keys()), plain), hannanRissanen(small, search.bridged), 1e-3, rounds);
+    const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, own, Int32Array.from(none.keys()), plain), startOf(small), 1e-3, rounds);
     return Number.isFinite(plain.value(found.x)) ? { x: found.x, innovations: own.er, value: own.f, sigma2: own.sigma2 } : null;
   };
   if (free.length === 0) {
-    const x = Float64Array.from(held);
+    const x = held.slice();
     return { x, value: evaluate.value(x), converged: true, passes: 1, hessian: new Float64Array(0), free };
   }
   let best: Minimum | null = null, passes = 0;
-  const run = (x: Float64Array, tolerance = TOLERANCE, rounds?: number): Minimum => {
-    const found = quasiNewton(problem, pick(movedInside(shape, withHeld(x, held), held), free), tolerance, rounds);
+  const go = (from: Float64Array | Minimum, tolerance: number, rounds?: number): Minimum => {
+    const found = quasiNewton(problem, from, tolerance, rounds);
     passes += found.passes;
     return found;
   };
+  const run = (x: Float64Array, tolerance = TOLERANCE, rounds?: number) => go(pick(movedInside(shape, withHeld(x, held), held), free), tolerance, rounds);
   const keep = (found: Minimum) => { if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found; };
-  keep(run(search.near ?? acrossGaps(search) ?? hannanRissanen(shape, search.bridged)));
+  keep(run(search.near ?? acrossGaps(search) ?? startOf(shape)));
   if (best === null) keep(run(new Float64Array(shape.count)));
   if (!search.near && search.starts !== "one" && best !== null) {
     const at = full(best, free, held);
-    const others = search.evaluate ? [hannanRissanen(shape, search.bridged), new Float64Array(shape.count)] : otherStarts(search, at, (best as Minimum).value, suspicious(shape, at, data.n), maximise);
+    const others = search.evaluate ? [startOf(shape), new Float64Array(shape.count)] : otherStarts(search, at, (best as Minimum).value, suspicious(shape, at, data.n), maximise);
     for (const x of others) {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
       const rival = best as Minimum;
-      if (first.value < rival.value + (search.evaluate ? 20 : 3) && apart(first, rival)) keep(run(full(first, free, held), TOLERANCE, shape.count > 6 ? LATER : undefined));
+      if (first.value < rival.value + (search.evaluate ? 20 : 3) && apart(first, rival)) keep(go(first, TOLERANCE, shape.count > 6 ? LATER : undefined));
     }
   }
   if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
@@ -81,15 +82,29 @@ function apart(a: Minimum, b: Minimum): boolean {
   return !(Math.abs(sum) < 0.01);
 }
 
-function withHeld(x: Float64Array, held: Float64Array): Float64Array {
-  return Float64Array.from(held, (v, i) => Number.isNaN(v) ? x[i] : v);
+/** Positions of the coefficients that are not held. */
+function freeOf(held: Float64Array): Int32Array {
+  const out = new Int32Array(held.length);
+  let count = 0;
+  for (let i = 0; i < held.length; i++) if (Number.isNaN(held[i])) out[count++] = i;
+  return out.subarray(0, count);
 }
 
-function pick(x: Float64Array, free: Int32Array): Float64Array { return Float64Array.from(free, i => x[i]); }
+function withHeld(x: Float64Array, held: Float64Array): Float64Array {
+  const out = held.slice();
+  for (let i = 0; i < out.length; i++) if (Number.isNaN(out[i])) out[i] = x[i];
+  return out;
+}
+
+function pick(x: Float64Array, free: Int32Array): Float64Array {
+  const out = new Float64Array(free.length);
+  for (let i = 0; i < free.length; i++) out[i] = x[free[i]];
+  return out;
+}
 
 function full(found: Minimum, free: Int32Array, held: Float64Array): Float64Array {
-  const x = Float64Array.from(held);
-  free.forEach((at, i) => { x[at] = found.x[i]; });
+  const x = held.slice();
+  for (let i = 0; i < free.length; i++) x[free[i]] = found.x[i];
   return x;
 }
 
@@ -106,7 +121,7 @@ function invertible(shape: Shape, x: Float64Array, held: Float64Array): Float64A
 function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Evaluate): Problem {
   const { shape, held } = search;
   const parts = shape.factors;
-  const x = Float64Array.from(held), gradient = new Float64Array(shape.count);
+  const x = held.slice(), gradient = new Float64Array(shape.count), views = parts.map(f => x.subarray(f.from, f.from + f.lags.length));
   const dense = parts.map(f => f.lags.length > 0 && f.lags[f.lags.length - 1] / f.lags[0] === f.lags.length
     && f.lags.every((_, i) => Number.isNaN(held[f.from + i])));
   // A moving average held outside the region is the author's wish (the likelihood is then the filter's).
@@ -120,7 +135,7 @@ function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Eva
       for (let i = 0; i < free.length; i++) x[free[i]] = z[i];
       let mended = false;
       for (let p = 0; p < parts.length; p++) {
-        const f = parts[p], c = x.subarray(f.from, f.from + f.lags.length);
+        const f = parts[p], c = views[p];
         if (whole[p] || isStable(f.lags, c, f.sign, f.sign < 0, slack[p])) continue;
         // Outside: the likelihood of a moving average is that of its reflection, so go on from there; a process that is not
         // stationary has none, and the step is shortened.
@@ -144,11 +159,11 @@ function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Eva
  *  data hardly tell a pair of factors from none (a chi-square of n d^2 / (1 - b^2), d the inverse roots' distance). */
 function suspicious(shape: Shape, x: Float64Array, n: number): { plain: boolean; seasonal: boolean } {
   const parts = shape.factors;
-  const near = parts.map(f => nearestRoot(f, x));
+  const near = (i: number) => nearestRoot(parts[i], x);
   const mixed = (i: number) => parts[i].lags.length > 0 && parts[i + 2].lags.length > 0;
   return {
-    plain: near[2] < 1.07 || (mixed(0) && (near[0] < 1.01 || pairStatistic(parts[0], parts[2], x, n) < 25)),
-    seasonal: near[3] < 1.03 || (mixed(1) && (near[1] < 1.01 || pairStatistic(parts[1], parts[3], x, n) < 25)),
+    plain: near(2) < 1.07 || (mixed(0) && (near(0) < 1.01 || pairStatistic(parts[0], parts[2], x, n) < 25)),
+    seasonal: near(3) < 1.03 || (mixed(1) && (near(1) < 1.01 || pairStatistic(parts[1], parts[3], x, n) < 25)),
   };
 }
 

@@ -29,6 +29,11 @@ export function gaussNewtonInto(h: Float64Array, work: Work, data: Data, x: Floa
     }
   }
   const scale = (work.n / n) / (data.sigma2 ?? work.sum / work.nEffective);
+  if (shape.ar.seasonal.length + shape.ma.seasonal.length === 0) {
+    // Nothing is multiplied out: the lags are the coefficients.
+    for (let a = 0; a < free.length; a++) for (let c = 0; c < free.length; c++) h[a * free.length + c] = r[free[a] * k + free[c]] * scale;
+    return;
+  }
   const jac = productJacobian(shape, x, free);
   for (let a = 0; a < free.length; a++) {
     for (let b = 0; b < free.length; b++) {

@@ -26,7 +26,8 @@ export function gradientInto(work: Work, data: Data, x: Float64Array, gradient: 
     addLagSums(bBar, shape.ma.lags, lambda, er, work.n, weight);
   }
   addOuter(work, lambda, weight);
-  if (data.gaps > 0) addGaps(work, data);
+  const integrated = data.integrated ?? data.gaps;
+  if (integrated > 0) addIntegrated(work, data, integrated);
   presampleBack(work.pre, omegaBar, shape.ar, work.a, shape.ma, work.b, aBar, bBar);
   contractInto(gradient, shape.ar, x, 0, aBar);
   contractInto(gradient, shape.ma, x, shape.ar.plain.length + shape.ar.seasonal.length, bBar);
@@ -58,14 +59,14 @@ function addOuter(work: Work, lambda: Float64Array, weight: number): void {
   }
 }
 
-/** Half the log determinant of the gaps' information C: tr(C^-1 dC) is a sum of quadratic forms of the columns of X C^(-T/2). */
-function addGaps(work: Work, data: Data): void {
+/** Half the log determinant of the information C about what is integrated out: tr(C^-1 dC) is a sum of quadratic forms of the columns of X C^(-T/2). */
+function addIntegrated(work: Work, data: Data, count: number): void {
   const { n, shape, b, columnE, chol } = work;
   const delta = scratch(work, n);
   const m = data.columns.length;
   const series = new Float64Array(n), innovations = new Float64Array(n);
-  const c = new Float64Array(data.gaps);
-  for (let j = 0; j < data.gaps; j++) {
+  const c = new Float64Array(count);
+  for (let j = 0; j < count; j++) {
     // Column j of Lc^-T: solve Lc' c = unit_j.
     c.fill(0);
     c[j] = 1 / chol[j * m + j];

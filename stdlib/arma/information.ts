@@ -5,17 +5,13 @@ import { inverseBeside, type Edges } from "./edges.ts";
 import { divideInto, dot } from "./kernels.ts";
 import { productJacobian } from "./gaussNewton.ts";
 import type { Evaluate } from "./search.ts";
-import { columnInnovations, residualsOf, type Data, type Work } from "./work.ts";
+import { columnBlockInto, residualsOf, type Data, type Work } from "./work.ts";
 
 export interface Information {
   /** Covariance of (free coefficients, data columns after the gaps), flat; null when the information is singular. */
   readonly covariance: Float64Array | null;
   readonly robust: Float64Array | null;
   readonly size: number;
-  /** Second derivatives of the negative log-likelihood by the free coefficients, beta at its maximiser. */
-  readonly hessian: Float64Array;
-  /** Gradient by the free coefficients at x. */
-  readonly gradient: Float64Array;
 }
 
 /** From this length on one-sided differences are exact enough: the curvature's own change over a thousandth of a standard
@@ -31,7 +27,7 @@ export function informationAt(work: Work, data: Data, x: Float64Array, free: Int
   const hessian = new Float64Array(k * k), slope = new Float64Array(m * k);
   const gradient = new Float64Array(x.length), up = new Float64Array(x.length), down = new Float64Array(x.length);
   const beta = () => work.beta.slice(data.gaps, data.gaps + m);
-  const point = Float64Array.from(x);
+  const point = x.slice();
   const oneSided = work.n >= LONG;
   if (oneSided) { evaluate.value(x); evaluate.gradientInto(x, gradient); }
   const here = oneSided ? beta() : new Float64Array(m);
@@ -58,10 +54,9 @@ export function informationAt(work: Work, data: Data, x: Float64Array, free: Int
   }
   for (let a = 0; a < k; a++) for (let b = 0; b < a; b++) hessian[a * k + b] = hessian[b * k + a] = (hessian[a * k + b] + hessian[b * k + a]) / 2;
   evaluate.value(x);
-  if (!oneSided) evaluate.gradientInto(x, gradient);
   const own = inverseBeside(hessian, k, edges.directions);
   const regression = regressionCovariance(work, data);
-  if (own === null || regression === null) return { covariance: null, robust: null, size, hessian, gradient: pickFree(gradient, free) };
+  if (own === null || regression === null) return { covariance: null, robust: null, size };
   const covariance = new Float64Array(size * size);
   for (let a = 0; a < k; a++) for (let b = 0; b < k; b++) covariance[a * size + b] = own[a * k + b];
   for (let j = 0; j < m; j++) {
@@ -80,10 +75,8 @@ export function informationAt(work: Work, data: Data, x: Float64Array, free: Int
   }
   const robust = sandwich(work, data, x, free, covariance, size);
   for (const i of edges.without) covariance[i * size + i] = robust[i * size + i] = NaN;
-  return { covariance, robust, size, hessian, gradient: pickFree(gradient, free) };
+  return { covariance, robust, size };
 }
-
-function pickFree(gradient: Float64Array, free: Int32Array): Float64Array { return Float64Array.from(free, i => gradient[i]); }
 
 /** sigma2 times the columns' block of the inverse cross products, gaps integrated out. */
 function regressionCovariance(work: Work, data: Data): Float64Array | null {
@@ -104,27 +97,30 @@ function sandwich(work: Work, data: Data, x: Float64Array, free: Int32Array, cov
   const fa = work.a0, fe = work.lambda;
   if (ar.length > 0) { fa.set(residualsOf(work, data)); divideInto(fa, n, ma, b); }
   if (ma.length > 0) { fe.set(er); divideInto(fe, n, ma, b); }
-  const jac = productJacobian(shape, x, free);
-  const meat = new Float64Array(size * size);
-  const columns = Array.from({ length: size - k }, (_, j) => columnInnovations(work, data, data.gaps + j));
-  const scores = Array.from({ length: size }, () => new Float64Array(Math.min(n, BLOCK)));
+  const jac = productJacobian(shape, x, free), rows = Math.min(n, BLOCK);
+  const meat = new Float64Array(size * size), all = new Float64Array(size * rows), scores: Float64Array[] = [];
+  for (let c = 0; c < size; c++) scores.push(all.subarray(c * rows, (c + 1) * rows));
   for (let start = 0; start < n; start += BLOCK) {
     const length = Math.min(BLOCK, n - start);
-    const add = (out: Float64Array, source: Float64Array, lag: number, c: number) => { for (let t = Math.max(0, lag - start); t < length; t++) out[t] += c * source[start + t - lag]; };
     for (let c = 0; c < size; c++) {
       const out = scores[c];
       out.fill(0);
-      if (c >= k) { const e = columns[c - k]; for (let t = 0; t < length; t++) out[t] = e[start + t]; }
+      if (c >= k) columnBlockInto(out, work, data, data.gaps + c - k, start, length);
       else {
-        for (let i = 0; i < ar.length; i++) if (jac[i * k + c] !== 0) add(out, fa, ar[i], jac[i * k + c]);
-        for (let i = 0; i < ma.length; i++) if (jac[(ar.length + i) * k + c] !== 0) add(out, fe, ma[i], jac[(ar.length + i) * k + c]);
+        for (let i = 0; i < ar.length; i++) if (jac[i * k + c] !== 0) addLagged(out, fa, jac[i * k + c], ar[i], start, length);
+        for (let i = 0; i < ma.length; i++) if (jac[(ar.length + i) * k + c] !== 0) addLagged(out, fe, jac[(ar.length + i) * k + c], ma[i], start, length);
       }
-      for (let t = 0; t < length; t++) out[t] *= er[start + t] / sigma2;
+      for (let t = 0; t < length; t++) out[t] *= er[start + t];
     }
     for (let a = 0; a < size; a++) for (let c = 0; c <= a; c++) meat[a * size + c] += dot(scores[a], scores[c], length);
   }
-  for (let a = 0; a < size; a++) for (let c = 0; c < a; c++) meat[c * size + a] = meat[a * size + c];
+  for (let a = 0; a < size; a++) for (let c = 0; c <= a; c++) meat[c * size + a] = meat[a * size + c] /= sigma2 ** 2;
   return threefold(covariance, meat, size);
+}
+
+/** out_t += c source_{start+t-lag}. */
+function addLagged(out: Float64Array, source: Float64Array, c: number, lag: number, start: number, length: number): void {
+  for (let t = Math.max(0, lag - start), from = start - lag; t < length; t++) out[t] += c * source[from + t];
 }
 
 /** Rows of scores held at a time. */

@@ -1,7 +1,7 @@
 // Innovations of one series: the recursion from a past of zeros, then the correction for what the past may have been.
 
 import { posteriorInto } from "./gain.ts";
-import { divideBackInto, divideInto, smallForwardInto, subtractLagsInto, total } from "./kernels.ts";
+import { divideBackInto, divideInto, lagDot, smallForwardInto, subtractLagged, subtractLagsInto, total } from "./kernels.ts";
 import { scratch, type Work } from "./work.ts";
 
 /** a0 = theta(B)^-1 phi(B) x from zero pre-sample values; returns the sum of its values from `from` on. */
@@ -13,12 +13,20 @@ export function recursionInto(a0: Float64Array, x: Float64Array, work: Work, fro
   return total(a0, from, n);
 }
 
+/** Up to this memory, V is applied column by column: its columns are shifts of one response, and no recursion has to wait for itself. */
+const SHORT = 6;
+
 /** e = a0 - V K V'a0 in place; returns the past's own sum of squares. Only the first values change where 1/theta dies out. */
 export function correctInto(e: Float64Array, work: Work): number {
-  const { n, g, u, v, response, shape, b } = work;
+  const { n, g, u, v, response, shape, b } = work, { h, length } = response;
   if (g === 0) return 0;
-  const lags = shape.ma.lags, reach = Math.min(n, g + response.length);
-  const delta = scratch(work, reach);
+  if (g <= SHORT) {
+    for (let i = 0; i < g; i++) v[i] = lagDot(e, h, Math.min(n, length + i), i);
+    const squares = posteriorInto(u, v, work);
+    for (let i = 0; i < g; i++) subtractLagged(e, h, u[i], i, Math.min(n, length + i));
+    return squares;
+  }
+  const lags = shape.ma.lags, reach = Math.min(n, g + length), delta = scratch(work, reach);
   for (let t = 0; t < reach; t++) delta[t] = e[t];
   divideBackInto(delta, reach, lags, b);
   for (let i = 0; i < g; i++) v[i] = delta[i];

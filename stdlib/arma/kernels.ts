@@ -29,47 +29,39 @@ export function subtractLagsInto(out: Float64Array, x: Float64Array, n: number, 
   for (let t = head; t < n; t++) {
     out[t] = (x[t] - c0 * x[t - l0] - c1 * x[t - l1] - c2 * x[t - l2]) - (c3 * x[t - l3] + c4 * x[t - l4] + c5 * x[t - l5]);
   }
-  for (let i = 6; i < count; i++) { const lag = lags[i], ci = c[i]; for (let t = head; t < n; t++) out[t] -= ci * x[t - lag]; }
+  for (let i = 6; i < count; i += 4) {
+    const lag = (j: number) => j < count ? lags[j] : longest, weight = (j: number) => j < count ? c[j] : 0;
+    const k0 = lag(i), k1 = lag(i + 1), k2 = lag(i + 2), k3 = lag(i + 3), w0 = weight(i), w1 = weight(i + 1), w2 = weight(i + 2), w3 = weight(i + 3);
+    for (let t = head; t < n; t++) out[t] -= (w0 * x[t - k0] + w1 * x[t - k1]) + (w2 * x[t - k2] + w3 * x[t - k3]);
+  }
 }
 
-/** Solves x_t + sum c_j x_{t-lag_j} = (x_t as given) forwards, in place: division by 1 + sum c_j B^lag_j. */
-export function divideInto(x: Float64Array, n: number, lags: Lags, c: Float64Array): void {
+/** Solves x_t + sum c_j x_{t-lag_j} = (x_t as given) forwards, in place: division by 1 + sum c_j B^lag_j.
+ *  A lag of 1 is carried in a register: through memory it would cost half as much again a step.
+ *  @param from  what stands before is divided already */
+export function divideInto(x: Float64Array, n: number, lags: Lags, c: Float64Array, from = 0): void {
   const count = lags.length;
   if (count === 0) return;
-  const head = Math.min(n, lags[count - 1]);
-  for (let t = 0; t < head; t++) {
+  const longest = lags[count - 1], head = Math.min(n, Math.max(from, longest));
+  for (let t = from; t < head; t++) {
     let sum = x[t];
     for (let j = 0; j < count && lags[j] <= t; j++) sum -= c[j] * x[t - lags[j]];
     x[t] = sum;
   }
-  const l0 = lags[0], c0 = c[0];
-  if (count === 1) {
-    if (l0 === 1) {
-      let last = head > 0 ? x[head - 1] : 0;
-      for (let t = head; t < n; t++) { last = x[t] - c0 * last; x[t] = last; }
-      return;
-    }
-    for (let t = head; t < n; t++) x[t] -= c0 * x[t - l0];
-    return;
-  }
-  const l1 = lags[1], c1 = c[1];
-  if (count === 2) {
-    if (l0 === 1 && l1 === 2) {
-      let last = head > 0 ? x[head - 1] : 0, older = head > 1 ? x[head - 2] : 0;
-      for (let t = head; t < n; t++) { const now = x[t] - c1 * older - c0 * last; x[t] = now; older = last; last = now; }
-      return;
-    }
-    for (let t = head; t < n; t++) x[t] = x[t] - c1 * x[t - l1] - c0 * x[t - l0];
-    return;
-  }
-  const l2 = lags[2], c2 = c[2];
-  if (count === 3) { for (let t = head; t < n; t++) x[t] = x[t] - c2 * x[t - l2] - c1 * x[t - l1] - c0 * x[t - l0]; return; }
-  const longest = lags[count - 1], l3 = lags[3], c3 = c[3];
-  const l4 = count > 4 ? lags[4] : longest, c4 = count > 4 ? c[4] : 0, l5 = count > 5 ? lags[5] : longest, c5 = count > 5 ? c[5] : 0;
+  const one = lags[0] === 1 ? 1 : 0, c0 = one ? c[0] : 0, others = count - one;
+  if (!one && count === 1) { const lag = lags[0], c1 = c[0]; for (let t = head; t < n; t++) x[t] -= c1 * x[t - lag]; return; }
+  let last = head > 0 ? x[head - 1] : 0;
+  if (others === 0) { for (let t = head; t < n; t++) { last = x[t] - c0 * last; x[t] = last; } return; }
+  const lag = (j: number) => j < others ? lags[one + j] : longest, weight = (j: number) => j < others ? c[one + j] : 0;
+  const l1 = lag(0), c1 = weight(0), l2 = lag(1), c2 = weight(1);
+  if (others === 1) { for (let t = head; t < n; t++) { last = (x[t] - c1 * x[t - l1]) - c0 * last; x[t] = last; } return; }
+  if (others === 2) { for (let t = head; t < n; t++) { last = (x[t] - c2 * x[t - l2] - c1 * x[t - l1]) - c0 * last; x[t] = last; } return; }
+  const l3 = lag(2), c3 = weight(2), l4 = lag(3), c4 = weight(3), l5 = lag(4), c5 = weight(4);
   for (let t = head; t < n; t++) {
     let sum = (x[t] - c5 * x[t - l5] - c4 * x[t - l4]) - (c3 * x[t - l3] + c2 * x[t - l2]);
-    for (let j = 6; j < count; j++) sum -= c[j] * x[t - lags[j]];
-    x[t] = (sum - c1 * x[t - l1]) - c0 * x[t - l0];
+    for (let j = one + 5; j < count; j++) sum -= c[j] * x[t - lags[j]];
+    last = (sum - c1 * x[t - l1]) - c0 * last;
+    x[t] = last;
   }
 }
 
@@ -77,33 +69,26 @@ export function divideInto(x: Float64Array, n: number, lags: Lags, c: Float64Arr
 export function divideBackInto(x: Float64Array, n: number, lags: Lags, c: Float64Array): void {
   const count = lags.length;
   if (count === 0) return;
-  const longest = lags[count - 1];
-  const body = Math.max(0, n - longest);
+  const longest = lags[count - 1], body = Math.max(0, n - longest);
   for (let t = n - 1; t >= body; t--) {
     let sum = x[t];
     for (let j = 0; j < count && t + lags[j] < n; j++) sum -= c[j] * x[t + lags[j]];
     x[t] = sum;
   }
-  const l0 = lags[0], c0 = c[0];
-  if (count === 1) {
-    if (l0 === 1) {
-      let last = body < n ? x[body] : 0;
-      for (let t = body - 1; t >= 0; t--) { last = x[t] - c0 * last; x[t] = last; }
-      return;
-    }
-    for (let t = body - 1; t >= 0; t--) x[t] -= c0 * x[t + l0];
-    return;
-  }
-  const l1 = lags[1], c1 = c[1];
-  if (count === 2) { for (let t = body - 1; t >= 0; t--) x[t] = x[t] - c1 * x[t + l1] - c0 * x[t + l0]; return; }
-  const l2 = lags[2], c2 = c[2];
-  if (count === 3) { for (let t = body - 1; t >= 0; t--) x[t] = x[t] - c2 * x[t + l2] - c1 * x[t + l1] - c0 * x[t + l0]; return; }
-  const l3 = lags[3], c3 = c[3];
-  const l4 = count > 4 ? lags[4] : longest, c4 = count > 4 ? c[4] : 0, l5 = count > 5 ? lags[5] : longest, c5 = count > 5 ? c[5] : 0;
+  const one = lags[0] === 1 ? 1 : 0, c0 = one ? c[0] : 0, others = count - one;
+  if (!one && count === 1) { const lag = lags[0], c1 = c[0]; for (let t = body - 1; t >= 0; t--) x[t] -= c1 * x[t + lag]; return; }
+  let last = body < n ? x[body] : 0;
+  if (others === 0) { for (let t = body - 1; t >= 0; t--) { last = x[t] - c0 * last; x[t] = last; } return; }
+  const lag = (j: number) => j < others ? lags[one + j] : longest, weight = (j: number) => j < others ? c[one + j] : 0;
+  const l1 = lag(0), c1 = weight(0), l2 = lag(1), c2 = weight(1);
+  if (others === 1) { for (let t = body - 1; t >= 0; t--) { last = (x[t] - c1 * x[t + l1]) - c0 * last; x[t] = last; } return; }
+  if (others === 2) { for (let t = body - 1; t >= 0; t--) { last = (x[t] - c2 * x[t + l2] - c1 * x[t + l1]) - c0 * last; x[t] = last; } return; }
+  const l3 = lag(2), c3 = weight(2), l4 = lag(3), c4 = weight(3), l5 = lag(4), c5 = weight(4);
   for (let t = body - 1; t >= 0; t--) {
     let sum = (x[t] - c5 * x[t + l5] - c4 * x[t + l4]) - (c3 * x[t + l3] + c2 * x[t + l2]);
-    for (let j = 6; j < count; j++) sum -= c[j] * x[t + lags[j]];
-    x[t] = (sum - c1 * x[t + l1]) - c0 * x[t + l0];
+    for (let j = one + 5; j < count; j++) sum -= c[j] * x[t + lags[j]];
+    last = (sum - c1 * x[t + l1]) - c0 * last;
+    x[t] = last;
   }
 }
 
@@ -117,9 +102,9 @@ export function dot(a: Float64Array, b: Float64Array, n: number): number {
   return (s0 + s1) + (s2 + s3);
 }
 
-/** sum over t of a_t b_{t-lag}, t in lag..n-1. */
-export function lagDot(a: Float64Array, b: Float64Array, n: number, lag: number): number {
-  let s0 = 0, s1 = 0, s2 = 0, s3 = 0, t = lag;
+/** sum over t of a_t b_{t-lag}, t in from..n-1, from lag on when left out. */
+export function lagDot(a: Float64Array, b: Float64Array, n: number, lag: number, from = lag): number {
+  let s0 = 0, s1 = 0, s2 = 0, s3 = 0, t = from;
   for (; t + 3 < n; t += 4) {
     s0 += a[t] * b[t - lag]; s1 += a[t + 1] * b[t + 1 - lag]; s2 += a[t + 2] * b[t + 2 - lag]; s3 += a[t + 3] * b[t + 3 - lag];
   }
@@ -165,6 +150,11 @@ export function smallBackwardInto(lambda: Float64Array, e: Float64Array, x: Floa
     l2 = l1; l1 = value;
   }
   out[0] = s1; out[1] = s2; out[2] = u1; out[3] = u2;
+}
+
+/** out_t -= c x_{t-lag}, t in lag..n-1. */
+export function subtractLagged(out: Float64Array, x: Float64Array, c: number, lag: number, n: number): void {
+  for (let t = lag; t < n; t++) out[t] -= c * x[t - lag];
 }
 
 /** out = x - c y. */

@@ -6,8 +6,9 @@
 //   determinant     |I + L'G L|, Omega = L L'
 // sigma2 is concentrated out, or held. Regression coefficients enter by generalised least squares inside (regress.ts). A missing
 // value is a column with a pulse whose coefficient is integrated out (flat): exactly the density of what was observed, and with
-// differences exactly that of the later levels given the first ones (diffuse start).
-// Sources: Newbold (1974); Ljung & Box (1979); Harvey & Phillips (1979) for the concentration.
+// differences exactly that of the later levels given the first ones (diffuse start). With the mean's and the regressors' coefficients
+// integrated out as well it is the restricted likelihood.
+// Sources: Newbold (1974); Ljung & Box (1979); Harvey & Phillips (1979) for the concentration; Harville (1974) for the restricted one.
 
 import { gainInto } from "./gain.ts";
 import { presampleInto } from "./presample.ts";
@@ -29,10 +30,10 @@ export function valueAt(work: Work, data: Data, x: Float64Array): number {
   responseInto(work.response, shape.ma.lags, work.b);
   const logDet = gainInto(work);
   if (!Number.isFinite(logDet)) return Infinity;
-  const gapDet = regressInto(work, data);
-  if (!Number.isFinite(gapDet)) return Infinity;
-  work.logDet = logDet + gapDet;
-  const ne = work.nEffective = n - data.gaps, free = data.sigma2 === null;
+  const columnDet = regressInto(work, data);
+  if (!Number.isFinite(columnDet)) return Infinity;
+  work.logDet = logDet + columnDet;
+  const ne = work.nEffective = n - (data.integrated ?? data.gaps), free = data.sigma2 === null;
   work.sigma2 = free ? work.sum / ne : data.sigma2!;
   work.f = 0.5 * (ne * Math.log(2 * Math.PI * work.sigma2) + work.logDet + (free ? ne : work.sum / work.sigma2));
   if (Number.isNaN(work.f)) work.f = Infinity;

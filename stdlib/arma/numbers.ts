@@ -93,7 +93,7 @@ function extent(levels: Series, name: string): { from: number; to: number; obser
 
 /** (x - sum c_j column_j) / unit */
 function reduced(x: Float64Array, columns: readonly Float64Array[], c: Float64Array, unit: number): Float64Array {
-  const out = Float64Array.from(x), by = 1 / unit;
+  const out = x.slice(), by = 1 / unit;
   for (let j = 0; j < columns.length; j++) { const column = columns[j], cj = c[j]; for (let t = 0; t < out.length; t++) out[t] -= cj * column[t]; }
   for (let t = 0; t < out.length; t++) out[t] *= by;
   return out;
@@ -138,7 +138,7 @@ export function integrated(delta: Float64Array, length: number): Float64Array {
 
 /** Straight lines across the gaps. */
 export function bridge(x: Float64Array): Float64Array {
-  const out = Float64Array.from(x);
+  const out = x.slice();
   for (let t = 0; t < out.length; t++) {
     if (!Number.isNaN(out[t])) continue;
     let end = t;
@@ -202,7 +202,7 @@ function orthogonalBasis(columns: readonly Float64Array[], clean: readonly numbe
   const rows = clean !== null && clean.length > m ? clean : columns.length > 0 ? Array.from({ length: columns[0].length }, (_, t) => t) : [];
   const product = (a: Float64Array, b: Float64Array) => { let sum = 0; for (const t of rows) sum += a[t] * b[t]; return sum; };
   for (let j = 0; j < m; j++) {
-    const c = Float64Array.from(columns[j]);
+    const c = columns[j].slice();
     const t = new Float64Array(m);
     t[j] = 1;
     for (let round = 0; round < 2; round++) {

@@ -98,9 +98,7 @@ interface Place { readonly factor: number[]; readonly shift: number[]; readonly 
 function pairs(search: Search, order: 1 | 2, maximise: Maximise, within = Infinity): Float64Array[] {
   const small = maximise(reduced(search.shape, order, order));
   if (small === null) return [];
-  const places: Place[] = [];
-  if (order === 1) for (const a of [-0.97, -0.9, -0.8, -0.65, -0.5, -0.3, -0.1, 0.1, 0.3, 0.5, 0.65, 0.8, 0.9, 0.97]) places.push(place(small.innovations, [-a], [a, 0]));
-  else for (const r of [0.7, 0.92]) for (let k = 1; k < 10; k++) places.push(place(small.innovations, [-2 * r * Math.cos(k * Math.PI / 10), r * r], [r * Math.cos(k * Math.PI / 10), r * Math.sin(k * Math.PI / 10)]));
+  const places = order === 1 ? POINTS.map(a => realPlace(small.innovations, a)) : CIRCLES.map(at => complexPlace(small.innovations, at));
   places.sort((a, b) => b.gain - a.gain);
   // Large models have many ridges and cost more a pass: fewer of them are walked.
   const most = search.shape.count > 6 ? 1 : search.shape.count > 4 ? 2 : search.shape.count > 3 ? 3 : 5;
@@ -118,17 +116,32 @@ function pairs(search: Search, order: 1 | 2, maximise: Maximise, within = Infini
 
 function clamp(v: number, bound: number): number { return Math.max(-bound, Math.min(bound, v)); }
 
-/** How much the sum of squares would fall with a pair of factors at this place: regression of e_t on the lags of factor^-1 e. */
-function place(e: Float64Array, factor: number[], at: readonly [number, number]): Place {
-  const [c1, c2 = 0] = factor;
+/** Inverse roots at which a pair of factors is tried: real ones, and complex ones on two circles. */
+const POINTS = [-0.97, -0.9, -0.8, -0.65, -0.5, -0.3, -0.1, 0.1, 0.3, 0.5, 0.65, 0.8, 0.9, 0.97];
+const CIRCLES = [0.7, 0.92].flatMap(r => Array.from({ length: 9 }, (_, k): [number, number] => [r * Math.cos((k + 1) * Math.PI / 10), r * Math.sin((k + 1) * Math.PI / 10)]));
+
+/** How much the sum of squares would fall with a pair of factors 1 - aB: regression of e_t on a lag of (1 - aB)^-1 e. */
+function realPlace(e: Float64Array, a: number): Place {
+  let z = 0, squares = 0, product = 0;
+  for (let t = 0; t < e.length; t++) {
+    const v = e[t];
+    squares += z * z; product += z * v;
+    z = v + a * z;
+  }
+  return { factor: [-a], shift: [product / squares], gain: product * product / squares, at: [a, 0] };
+}
+
+/** The same for a complex pair, on two lags. */
+function complexPlace(e: Float64Array, at: readonly [number, number]): Place {
+  const c1 = -2 * at[0], c2 = at[0] ** 2 + at[1] ** 2;
   let z1 = 0, z2 = 0, s11 = 0, s12 = 0, s22 = 0, b1 = 0, b2 = 0;
   for (let t = 0; t < e.length; t++) {
-    s11 += z1 * z1; s12 += z1 * z2; s22 += z2 * z2; b1 += z1 * e[t]; b2 += z2 * e[t];
-    const z = e[t] - c1 * z1 - c2 * z2;
+    const v = e[t];
+    s11 += z1 * z1; s12 += z1 * z2; s22 += z2 * z2; b1 += z1 * v; b2 += z2 * v;
+    const z = (v - c2 * z2) - c1 * z1;
     z2 = z1; z1 = z;
   }
-  if (factor.length === 1) return { factor, shift: [b1 / s11], gain: b1 * b1 / s11, at };
   const det = s11 * s22 - s12 * s12;
   const d1 = (b1 * s22 - b2 * s12) / det, d2 = (b2 * s11 - b1 * s12) / det;
-  return { factor, shift: [d1, d2], gain: d1 * b1 + d2 * b2, at };
+  return { factor: [c1, c2], shift: [d1, d2], gain: d1 * b1 + d2 * b2, at };
 }

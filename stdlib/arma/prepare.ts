@@ -46,10 +46,9 @@ export function prepare(options: FitOptions): Prepared {
   const seasonal = seasonalAr.length + seasonalMa.length > 0;
   const seasonLength = seasonal ? readSeasonLength(options.season?.length, series) : 0;
   const hold = options.hold ?? {};
-  const held = Float64Array.from([
-    ...readHeld(hold.phi, ar, "phi"), ...readHeld(hold.seasonalPhi, seasonalAr, "seasonalPhi"),
-    ...readHeld(hold.theta, ma, "theta"), ...readHeld(hold.seasonalTheta, seasonalMa, "seasonalTheta"),
-  ]);
+  const held = new Float64Array(ar.length + seasonalAr.length + ma.length + seasonalMa.length);
+  let at = 0;
+  for (const part of [readHeld(hold.phi, ar, "phi"), readHeld(hold.seasonalPhi, seasonalAr, "seasonalPhi"), readHeld(hold.theta, ma, "theta"), readHeld(hold.seasonalTheta, seasonalMa, "seasonalTheta")]) { held.set(part, at); at += part.length; }
   const heldMean = heldValue(hold.mean, "mean");
   const { names, columns } = readRegressors(options.regressors ?? {}, levels);
   const heldBeta = Float64Array.from(names, name => heldValue(hold.beta?.[name], `beta.${name}`));

@@ -13,6 +13,11 @@ export function isStable(lags: ArrayLike<number>, c: ArrayLike<number>, sign: 1 
   for (let i = 0; i < count; i++) total += Math.abs(c[i]);
   if (total < 1) return true;
   if (count === 1) return Math.abs(c[0]) < 1 || (closed && Math.abs(c[0]) <= 1 + slack);
+  if (count === 2 && lags[0] === 1 && lags[1] === 2) {
+    // The triangle of the second order; on its edges when closed.
+    const r = closed ? (1 - 1e-12) / (1 + slack) : 1, c1 = sign * c[0] * r, c2 = sign * c[1] * r * r;
+    return Math.abs(c2) < 1 && Math.abs(c1) < 1 - c2;
+  }
   // Common step: lags 12 and 24 are a polynomial of degree 2 in B^12.
   let step = 0;
   for (let i = 0; i < count; i++) step = gcd(step, lags[i]);

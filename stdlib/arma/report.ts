@@ -143,7 +143,7 @@ function residualSeries(s: Solution): Fit["residuals"] {
   s.innovations?.forEach((v, t) => { values[from + t] = v * unit; });
   const model = s.stationary && s.residuals !== false && !s.innovations ? levelModel(p.shape, s.x, p.delta) : null;
   const beta = s.beta;
-  const series = Float64Array.from(levels);
+  const series = levels.slice();
   for (let j = 0; j < beta.length; j++) { const c = beta[j], x = levelColumns[j]; for (let t = 0; t < series.length; t++) series[t] -= c * x[t]; }
   if (model !== null) {
     const { v, f } = filterLevels(model, [series]);

@@ -4,13 +4,13 @@
 // G[k][l] = c_{k-l}(n - 1 - k) for k >= l with c_d(m) = sum over s + d <= m + d, s <= m of h_s h_{s+d}: one sum a diagonal.
 // Source: Ljung & Box (1979).
 
-import { divideBackInto, lagDot } from "./kernels.ts";
+import { divideBackInto, divideInto, lagDot } from "./kernels.ts";
 
 export interface Response {
   readonly n: number; readonly g: number;
   /** Grows with the terms that are needed: most responses die out long before n. */
   h: Float64Array;
-  /** Terms of h kept: the rest is below 1e-18 in size, or n. */
+  /** Terms of h kept: the rest is below 1e-16 in size, or n. */
   length: number;
   /** Terms needed for G: below 1e-10 a product adds nothing in double precision. */
   short: number;
@@ -18,10 +18,14 @@ export interface Response {
   hBar: Float64Array;
 }
 
-export function makeResponse(n: number, g: number): Response {
-  const first = Math.min(n, 4096);
-  return { n, g, h: new Float64Array(first), length: 0, short: 0, gram: new Float64Array(g * g), hBar: new Float64Array(first) };
+/** @param take  gives an array of a length, filled with zeros */
+export function makeResponse(n: number, g: number, take: (length: number) => Float64Array): Response {
+  const first = Math.min(n, FIRST);
+  return { n, g, h: take(first), length: 0, short: 0, gram: take(g * g), hBar: take(first) };
 }
+
+/** Arrays that grow start at this length, or at n. */
+export const FIRST = 4096;
 
 /** Fills h and G (full, symmetric). Cost: (terms kept) * g. */
 export function responseInto(r: Response, lags: Int32Array, b: Float64Array): void {
@@ -52,27 +56,28 @@ export function responseInto(r: Response, lags: Int32Array, b: Float64Array): vo
   }
 }
 
+/** Terms that are made before it is looked whether any more are needed. */
+const CHUNK = 64;
+
 function impulseInto(r: Response, lags: Int32Array, b: Float64Array): void {
-  const { n } = r;
-  let h = r.h;
-  const count = lags.length;
-  h[0] = 1;
+  const { n } = r, count = lags.length;
+  r.h[0] = 1;
   if (count === 0) { r.length = r.short = Math.min(1, n); return; }
   const q = lags[count - 1];
-  let big = 0, medium = 0, t = 1;
-  for (; t < n; t++) {
-    if (t === h.length) { const more = new Float64Array(Math.min(n, 4 * t)); more.set(h); r.h = h = more; }
-    let sum = 0;
-    for (let j = 0; j < count && lags[j] <= t; j++) sum -= b[j] * h[t - lags[j]];
-    h[t] = sum;
-    const size = Math.abs(sum);
-    if (size > 1e-10) medium = t;
-    if (size > 1e-18) big = t;
-    else if (t - big >= q) break;
+  let big = 0, end = 1;
+  while (end < n && end - 1 - big < q) {
+    const from = end;
+    end = Math.min(n, from + Math.max(q, CHUNK));
+    if (end > r.h.length) { const more = new Float64Array(Math.min(n, Math.max(end, 4 * from))); more.set(r.h); r.h = more; }
+    const h = r.h;
+    h.fill(0, from, end);
+    divideInto(h, end, lags, b, from);
+    for (let t = end - 1; t >= from; t--) if (!(Math.abs(h[t]) <= 1e-16)) { big = t; break; }
   }
+  let medium = big;
+  while (medium > 0 && Math.abs(r.h[medium]) <= 1e-10) medium--;
   r.length = Math.min(n, big + 1);
   r.short = Math.min(n, medium + 1);
-  for (let s = r.length; s < Math.min(n, t + 1, h.length); s++) h[s] = 0;
 }
 
 /** Reverse mode: from `weights` (g x g symmetric, the derivative by G) adds the derivatives by the coefficients to `bBar`. */

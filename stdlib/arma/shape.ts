@@ -34,6 +34,8 @@ export interface Shape {
   readonly memory: number;
 }
 
+const NONE = new Int32Array(0);
+
 /** @param arLags, maLags  distinct lags >= 1; seasonal ones counted in season lengths */
 export function makeShape(arLags: readonly number[], seasonalArLags: readonly number[], maLags: readonly number[], seasonalMaLags: readonly number[], season: number): Shape {
   const ar = product(arLags, seasonalArLags.map(l => l * season), -1);
@@ -48,6 +50,10 @@ export function makeShape(arLags: readonly number[], seasonalArLags: readonly nu
 }
 
 function product(plain: readonly number[], seasonal: readonly number[], cross: 1 | -1): Product {
+  if (seasonal.length === 0) {
+    const own = Int32Array.of(...plain);
+    return { plain: own, seasonal: NONE, lags: own, cross, degree: plain.length > 0 ? plain[plain.length - 1] : 0, atPlain: Int32Array.of(...plain.keys()), atSeasonal: NONE, atCross: NONE };
+  }
   const all = new Set<number>([...plain, ...seasonal]);
   for (const a of plain) for (const b of seasonal) all.add(a + b);
   const lags = Int32Array.from([...all].sort((a, b) => a - b));

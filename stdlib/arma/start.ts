@@ -1,6 +1,6 @@
 // Starting values by regression: Hannan & Rissanen (1982), with seasonal and cross lags as regressors.
 
-import { lagDot } from "./kernels.ts";
+import { lagDot, subtractLagsInto } from "./kernels.ts";
 import { shrinkInto } from "./region.ts";
 import type { Product, Shape } from "./shape.ts";
 import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
@@ -8,27 +8,31 @@ import { choleskyInto, choleskySolveInto } from "../linear/cholesky.ts";
 /** At most this many of the last observations are used: a start need not be better than the first steps that follow. */
 const STRETCH = 800;
 
-/** Coefficients in the order phi, Phi, theta, Theta, inside the region.
- *  A long autoregression (Levinson) estimates the innovations; the second regression is on lags of both.
+/** Gives starts for models of one series: coefficients in the order phi, Phi, theta, Theta, inside the region.
+ *  A long autoregression (Levinson) estimates the innovations, once for all models that ask for one as long; the second
+ *  regression is on lags of both.
  *  @param y  mean-corrected, without gaps */
-export function hannanRissanen(shape: Shape, y: Float64Array): Float64Array {
-  const x = new Float64Array(shape.count);
-  if (shape.count === 0) return x;
-  const series = y.length > STRETCH ? y.subarray(y.length - STRETCH) : y;
-  const n = series.length;
-  const ar = shape.ar.lags, ma = shape.ma.lags;
-  let innovations: Float64Array | null = null, skip = shape.ar.degree;
-  if (ma.length > 0) {
-    const order = longOrder(shape, n);
-    if (order < 1) return x;
-    innovations = longResiduals(series, order);
-    skip = Math.max(skip, Math.min(order, n >> 2) + shape.ma.degree > n >> 1 ? Math.min(order, shape.ma.degree) : order + shape.ma.degree);
-  }
-  const c = laggedRegression(series, innovations, ar, ma, Math.min(skip, n >> 1));
-  if (c === null) return x;
-  take(x, 0, shape.ar, c, 0);
-  take(x, shape.ar.plain.length + shape.ar.seasonal.length, shape.ma, c, ar.length);
-  return x;
+export function hannanRissanen(y: Float64Array): (shape: Shape) => Float64Array {
+  const series = y.length > STRETCH ? y.subarray(y.length - STRETCH) : y, n = series.length;
+  const known = new Map<number, Float64Array>();
+  return shape => {
+    const x = new Float64Array(shape.count);
+    if (shape.count === 0) return x;
+    const ar = shape.ar.lags, ma = shape.ma.lags;
+    let innovations: Float64Array | null = null, skip = shape.ar.degree;
+    if (ma.length > 0) {
+      const order = longOrder(shape, n);
+      if (order < 1) return x;
+      innovations = known.get(order) ?? longResiduals(series, order);
+      known.set(order, innovations);
+      skip = Math.max(skip, Math.min(order, n >> 2) + shape.ma.degree > n >> 1 ? Math.min(order, shape.ma.degree) : order + shape.ma.degree);
+    }
+    const c = laggedRegression(series, innovations, ar, ma, Math.min(skip, n >> 1));
+    if (c === null) return x;
+    take(x, 0, shape.ar, c, 0);
+    take(x, shape.ar.plain.length + shape.ar.seasonal.length, shape.ma, c, ar.length);
+    return x;
+  };
 }
 
 function take(x: Float64Array, from: number, p: Product, c: Float64Array, base: number): void {
@@ -65,12 +69,9 @@ function longResiduals(y: Float64Array, order: number): Float64Array {
     v *= 1 - k * k;
   }
   const e = new Float64Array(n);
-  for (let t = 0; t < n; t++) {
-    let sum = y[t];
-    const top = Math.min(order, t);
-    for (let i = 0; i < top; i++) sum -= phi[i] * y[t - 1 - i];
-    e[t] = sum;
-  }
+  const lags = new Int32Array(order);
+  for (let i = 0; i < order; i++) lags[i] = i + 1;
+  subtractLagsInto(e, y, n, lags, phi);
   return e;
 }
 
@@ -80,11 +81,9 @@ function laggedRegression(y: Float64Array, e: Float64Array | null, ar: Int32Arra
   if (n - skip < k + 2) return null;
   const a = new Float64Array(k * k), b = new Float64Array(k);
   const column = (i: number): [Float64Array, number] => i < ar.length ? [y, ar[i]] : [e!, ma[i - ar.length]];
-  const product = (u: Float64Array, lu: number, v: Float64Array, lv: number) => {
-    let sum = 0;
-    for (let t = skip; t < n; t++) sum += (t >= lu ? u[t - lu] : 0) * (t >= lv ? v[t - lv] : 0);
-    return sum;
-  };
+  // Sum over t >= skip of u_{t-lu} v_{t-lv}: values before the start are zero.
+  const product = (u: Float64Array, lu: number, v: Float64Array, lv: number) =>
+    lu <= lv ? lagDot(u, v, n - lu, lv - lu, Math.max(skip, lv) - lu) : lagDot(v, u, n - lv, lu - lv, Math.max(skip, lu) - lv);
   for (let i = 0; i < k; i++) {
     const [u, lu] = column(i);
     for (let j = 0; j <= i; j++) { const [v, lv] = column(j); a[i * k + j] = a[j * k + i] = product(u, lu, v, lv); }

@@ -1,7 +1,8 @@
 // What the likelihood is asked of, and the arrays it works in.
 
+import { subtractColumn, subtractNumber } from "./kernels.ts";
 import { makePresample, type Presample } from "./presample.ts";
-import { makeResponse, type Response } from "./response.ts";
+import { FIRST, makeResponse, type Response } from "./response.ts";
 import type { Shape } from "./shape.ts";
 
 /** What is fitted: w - X beta, the first `gaps` columns being pulses of missing values. */
@@ -10,6 +11,9 @@ export interface Data {
   readonly y: Float64Array;
   readonly columns: readonly Float64Array[];
   readonly gaps: number;
+  /** The first columns, as many as this, have coefficients that are integrated out: the gaps (the default), or for the restricted
+   *  likelihood all. */
+  readonly integrated?: number;
   /** Whether the first column is the same number throughout (there are then no gaps): its innovations are constant after a
    *  while, and cost next to nothing. */
   readonly constant?: boolean;
@@ -44,25 +48,22 @@ export interface Work {
   /** Dense lags 1..2 on both sides: the fused kernels serve. */
   readonly small: boolean;
   readonly sums: Float64Array;
-  /** Sum of squares, log determinant (gaps included), effective n, and the negative log-likelihood at the last `valueAt`. */
+  /** Sum of squares, log determinant (what is integrated out included), effective n, and the negative log-likelihood at the last `valueAt`. */
   sum: number; logDet: number; nEffective: number; f: number; sigma2: number;
 }
-
-/** Scratch that grows starts at this length. */
-const FIRST = 4096;
 
 export function makeWork(shape: Shape, data: Data): Work {
   const n = data.n, m = data.columns.length, g = Math.min(shape.memory, n), p = shape.ar.lags.length, q = shape.ma.lags.length;
   // Long arrays are views of one block: a block of memory costs far more to get and to give back than a view.
   const own = data.columns.map((_, j) => j === 0 && data.constant ? Math.min(n, FIRST) : n);
-  const block = new Float64Array((q > 0 ? 3 : 2) * n + 2 * own.reduce((a, b) => a + b, 0) + Math.min(n, FIRST) + 5 * g * g + 2 * g);
+  const block = new Float64Array((q > 0 ? 3 : 2) * n + 2 * own.reduce((a, b) => a + b, 0) + 3 * Math.min(n, FIRST) + 6 * g * g + 2 * g);
   let at = 0;
   const take = (length: number) => { const view = block.subarray(at, at + length); at += length; return view; };
   const er = take(n), dense = (lags: Int32Array) => lags.length <= 2 && lags.every((l, i) => l === i + 1);
   return {
     shape, n, g,
     a: new Float64Array(p), b: new Float64Array(q), aBar: new Float64Array(p), bBar: new Float64Array(q),
-    pre: makePresample(shape.ar.degree, shape.ma.degree), response: makeResponse(n, g),
+    pre: makePresample(shape.ar.degree, shape.ma.degree), response: makeResponse(n, g, take),
     l: take(g * g), d: take(g * g), wk: take(g * g), k: take(g * g), s1: take(g * g), omegaBar: new Float64Array(shape.memory ** 2),
     u: take(g), v: take(g), a0: take(n), er, lambda: q > 0 ? take(n) : er,
     columnA0: own.map(take), columnE: own.map(take), flat: 0, level: 0, r: null, rKnown: false, delta: take(Math.min(n, FIRST)),
@@ -82,17 +83,16 @@ export function scratch(work: Work, length: number): Float64Array {
 export function residualsOf(work: Work, data: Data): Float64Array {
   const r = work.r ??= new Float64Array(work.n);
   if (work.rKnown) return r;
-  r.set(data.y);
-  data.columns.forEach((x, j) => { const c = work.beta[j]; for (let t = 0; t < r.length; t++) r[t] -= c * x[t]; });
+  const { n, beta } = work, { y, columns } = data, constant = data.constant ? 1 : 0;
+  subtractNumber(r, y, constant ? beta[0] * columns[0][0] : 0, 0, n);
+  for (let j = constant; j < columns.length; j++) subtractColumn(r, r, columns[j], beta[j], n);
   work.rKnown = true;
   return r;
 }
 
-/** Innovations of a column over the whole length. */
-export function columnInnovations(work: Work, data: Data, j: number): Float64Array {
-  const e = work.columnE[j];
-  if (j > 0 || !data.constant || work.flat === work.n) return e;
-  const whole = new Float64Array(work.n).fill(work.level);
-  whole.set(e.subarray(0, work.flat));
-  return whole;
+/** Innovations of a column from `start` on. */
+export function columnBlockInto(out: Float64Array, work: Work, data: Data, j: number, start: number, length: number): void {
+  const e = work.columnE[j], end = j === 0 && data.constant ? Math.min(length, work.flat - start) : length;
+  for (let t = 0; t < end; t++) out[t] = e[start + t];
+  for (let t = Math.max(0, end); t < length; t++) out[t] = work.level;
 }

@@ -24,16 +24,19 @@ export interface Minimum {
 
 /** BFGS on the Hessian with Powell's damping, started from a curvature the caller knows (Gauss-Newton, say).
  *  Steps that leave the region or do not lower the value enough are shortened.
+ *  @param start      a point, or where an earlier search of the same problem stopped: it goes on from there with what it has learnt
  *  @param tolerance  stop when the predicted decrease, in units of the value, is below it
  *  Sources: Nocedal & Wright (2006), procedure 18.2 (damping) and algorithm 3.1 (backtracking, with a quadratic through the slope). */
-export function quasiNewton(problem: Problem, start: Float64Array, tolerance = 1e-10, rounds = 150): Minimum {
-  const k = problem.size;
-  let x = Float64Array.from(start);
-  let f = problem.value(x), passes = 1;
-  const g = new Float64Array(k), h = new Float64Array(k * k);
+export function quasiNewton(problem: Problem, start: Float64Array | Minimum, tolerance = 1e-10, rounds = 150): Minimum {
+  const k = problem.size, from = start instanceof Float64Array ? null : start;
+  let x = Float64Array.from(from?.x ?? (start as Float64Array));
+  let f = from ? from.value : problem.value(x), passes = from ? 0 : 1;
+  const g = from ? Float64Array.from(from.gradient) : new Float64Array(k), h = from ? Float64Array.from(from.hessian) : new Float64Array(k * k);
   if (!Number.isFinite(f)) return { x, value: f, gradient: g, hessian: h, passes, converged: false };
-  problem.gradientInto(g);
-  problem.curvatureInto(h);
+  if (!from) {
+    problem.gradientInto(g);
+    problem.curvatureInto(h);
+  }
   const factor = new Float64Array(k * k), d = new Float64Array(k), gNew = new Float64Array(k), s = new Float64Array(k), y = new Float64Array(k), hs = new Float64Array(k);
   let converged = false, stalled = 0;
   for (let round = 0; round < rounds; round++) {
