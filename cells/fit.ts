@@ -27,7 +27,7 @@ export const fitOptions: OptionTable = {
   mean: { type: "boolean", sentence: "Whether the model has a mean; without this option, yes unless the steps include a difference, where a mean is a drift." },
   regressors: { type: "object", sentence: "Regressors by name, in levels: series, or interventions such as pulse(\"2020-03\"); the series' difference steps are applied to them.", example: "{storm: pulse(\"2020-03\")}" },
   hold: { type: "object", sentence: "Coefficients held at values, as {phi, theta, seasonalPhi, seasonalTheta, mean, beta, sigma2}; free leaves one to be estimated.", example: "{phi: [free, 0.2]}" },
-  method: { type: { oneOf: ["exact", "conditional", "yuleWalker", "burg", "leastSquares"] }, default: "exact", sentence: "How it is estimated: exact maximum likelihood, conditional sum of squares, or for a pure autoregression Yule-Walker, Burg or least squares." },
+  method: { type: { oneOf: ["exact", "restricted", "conditional", "yuleWalker", "burg", "leastSquares"] }, default: "exact", sentence: "How it is estimated: exact maximum likelihood, restricted (the better practice for few data with a mean or regressors), conditional sum of squares, or for a pure autoregression Yule-Walker, Burg or least squares." },
   window: { type: "window", sentence: "Cuts the series it is given, both ends included; later data count as held out.", example: "sample" },
   label: { type: "text", sentence: "What the model is called in comparisons; its order unless given.", example: "\"candidate\"" },
 };

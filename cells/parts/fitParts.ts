@@ -44,7 +44,7 @@ export function fitParts(fit: Fit, width: number): readonly Part[] {
 
 function openingSentence(fit: Fit): string {
   const how = {
-    exact: "exact maximum likelihood", conditional: "the conditional sum of squares", yuleWalker: "the Yule-Walker equations",
+    exact: "exact maximum likelihood", restricted: "restricted maximum likelihood", conditional: "the conditional sum of squares", yuleWalker: "the Yule-Walker equations",
     burg: "Burg's recursion", leastSquares: "least squares",
   }[fit.method];
   const loose = coefficientsOf(fit).filter(c => c.group === "lags" && !c.held && Number.isFinite(c.se) && Math.abs(c.value) < normalQuantile(0.975) * c.se);

@@ -85,7 +85,7 @@ export function autoregressionByLeastSquares(y: Float64Array, lags: readonly num
 }
 
 /** @throws RangeError where the request is more than a plain, complete autoregression */
-export function autoregression(numbers: Numbers, method: Exclude<Method, "exact" | "conditional">): ConditionalSolution {
+export function autoregression(numbers: Numbers, method: Exclude<Method, "exact" | "restricted" | "conditional">): ConditionalSolution {
   const { prepared: p, data } = numbers;
   const word = `method: "${method}"`;
   const order = p.shape.ar.degree;

@@ -51,12 +51,15 @@ export function filterEvaluate(numbers: Numbers, work: Work): Evaluate {
       work.er[t - delta.length] = v * by;
       for (let j = 0; j < m; j++) work.columnE[j][t - delta.length] = filtered.v[j + 1][t] * by;
     }
-    const free = data.sigma2 === null;
+    // The gaps need no integrating out here: what was not observed is not in the product.
+    const free = data.sigma2 === null, integrated = (data.integrated ?? data.gaps) - data.gaps, ne = filtered.count - integrated;
+    let columnDet = 0;
+    for (let i = 0; i < integrated; i++) columnDet += 2 * Math.log(work.chol[i * m + i]);
     work.sum = squares;
-    work.nEffective = filtered.count;
-    work.logDet = filtered.logDet;
-    work.sigma2 = free ? squares / filtered.count : data.sigma2!;
-    work.f = 0.5 * (filtered.count * Math.log(2 * Math.PI * work.sigma2) + filtered.logDet + (free ? filtered.count : squares / work.sigma2));
+    work.nEffective = ne;
+    work.logDet = filtered.logDet + columnDet;
+    work.sigma2 = free ? squares / ne : data.sigma2!;
+    work.f = 0.5 * (ne * Math.log(2 * Math.PI * work.sigma2) + work.logDet + (free ? ne : squares / work.sigma2));
     if (Number.isNaN(work.f)) work.f = Infinity;
     return work.f;
   };

@@ -27,7 +27,7 @@ export interface Season {
   readonly ma?: Lags;
 }
 
-export type Method = "exact" | "conditional" | "yuleWalker" | "burg" | "leastSquares";
+export type Method = "exact" | "restricted" | "conditional" | "yuleWalker" | "burg" | "leastSquares";
 
 /** A regressor in levels: a series (aligned by time), or an intervention or calendar effect that extends by itself. */
 export type Regressor = Series | Intervention;

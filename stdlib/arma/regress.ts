@@ -6,7 +6,7 @@ import { dot, subtractColumn, subtractNumber, total } from "./kernels.ts";
 import type { Data, Work } from "./work.ts";
 
 /** Fills beta and the innovations, and `sum` with the sum of squares, the past's included; returns the log determinant of the
- *  gaps' information, NaN when the columns are not independent. */
+ *  information about what is integrated out, NaN when the columns are not independent. */
 export function regressInto(work: Work, data: Data): number {
   const { n, a0, er, q, qy, chol, beta, columnA0, columnE } = work;
   const m = data.columns.length, constant = data.constant ? 1 : 0;
@@ -41,7 +41,7 @@ export function regressInto(work: Work, data: Data): number {
   for (let j = constant; j < m; j++) subtractColumn(er, j === 0 ? a0 : er, columnA0[j], beta[j], n);
   const past = correctInto(er, work);
   work.sum = past + (m === constant ? squares + dot(er, er, flat) : dot(er, er, n));
-  let gapDet = 0;
-  for (let i = 0; i < data.gaps; i++) gapDet += 2 * Math.log(chol[i * m + i]);
-  return gapDet;
+  let determinant = 0;
+  for (let i = 0; i < (data.integrated ?? data.gaps); i++) determinant += 2 * Math.log(chol[i * m + i]);
+  return determinant;
 }
