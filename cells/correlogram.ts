@@ -52,14 +52,15 @@ export const correlogram: Kind<CorrelogramCell, ShownCorrelogram> = {
   show: result => correlogramParts(result),
 };
 
-export function runCorrelogram(options: CorrelogramCell, context: RunContext): ShownCorrelogram {
+export async function runCorrelogram(options: CorrelogramCell, context: RunContext): Promise<ShownCorrelogram> {
   const series = needVaryingSeries(options.series, 3, "a correlogram");
   const lags = options.lags ?? undefined;
   if (lags !== undefined && (!Number.isInteger(lags) || lags < 1 || lags >= series.n)) {
     throw new OptionError("lags", `lags is ${lags}; with ${count(series.n, "value")} it can be a whole number from 1 to ${series.n - 1}`);
   }
   const result = plainly(() => compute({ series, lags, level: needLevel(options.level), band: options.band ?? "independent", partial: options.partial ?? "levinson" }));
-  return { ...result, of: scaleText(series), cross: crossOf(options.with, series, result.lags, result.level, context.source.with), mixed: mixedTables(result, series), theory: options.model ? theoryOf(options.model, result.lags) : null };
+  await context.breathe();
+  return { ...result, of: scaleText(series), cross: crossOf(options.with, series, result.lags, result.level, context.source.with), mixed: await mixedTables(result, series, context), theory: options.model ? theoryOf(options.model, result.lags) : null };
 }
 
 /** Lags to each side as many as the series' own, and at most a third of what both series have. */
@@ -73,9 +74,11 @@ function crossOf(other: unknown, series: Series, lags: number, level: number, so
 }
 
 /** Where neither correlations cut off, the rule of thumb has no more to say, and tables made for mixed models begin. */
-function mixedTables(result: Correlogram, series: Series): ShownCorrelogram["mixed"] {
+async function mixedTables(result: Correlogram, series: Series, context: RunContext): Promise<ShownCorrelogram["mixed"]> {
   if (result.status !== "ok" || result.suggests.ar === 0 || result.suggests.ma === 0) return null;
-  const extended = extendedAcf(series), canonical = smallestCanonical(series);
+  const extended = extendedAcf(series);
+  await context.breathe();
+  const canonical = smallestCanonical(series);
   return extended.status === "ok" && canonical.status === "ok" ? { extended, canonical } : null;
 }
 

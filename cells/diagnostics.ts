@@ -1,9 +1,9 @@
 // The kind that asks what a fitted model has left undone.
 
-import { diagnostics as compute, type Diagnostics, type Fit } from "../stdlib/index.ts";
-import { OptionError, type Kind, type OptionTable } from "./kind.ts";
+import { checking, withPauses, type Diagnostics, type Fit } from "../stdlib/index.ts";
+import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { diagnosticsParts } from "./parts/diagnosticsParts.ts";
-import { needLevel, plainly } from "./parts/needs.ts";
+import { asOptionError, needLevel } from "./parts/needs.ts";
 
 export interface DiagnosticsCell {
   readonly model: unknown;
@@ -25,11 +25,11 @@ export const diagnostics: Kind<DiagnosticsCell, Diagnostics> = {
   body: "options",
   callable: true,
   example: "model: airline",
-  run: options => runDiagnostics(options),
+  run: (options, context) => runDiagnostics(options, context),
   show: (result, context) => diagnosticsParts(result, context.width),
 };
 
-export function runDiagnostics(options: DiagnosticsCell): Diagnostics {
+export async function runDiagnostics(options: DiagnosticsCell, context: RunContext): Promise<Diagnostics> {
   const model = needFit(options.model);
   const level = needLevel(options.level);
   const n = model.residuals.n;
@@ -37,7 +37,10 @@ export function runDiagnostics(options: DiagnosticsCell): Diagnostics {
   if (lags !== undefined && (!Number.isInteger(lags) || lags < 1 || lags >= n)) {
     throw new OptionError("lags", `lags is ${lags}; with ${n} residuals it can be a whole number from 1 to ${n - 1}`);
   }
-  return plainly(() => compute({ model, level, ...(lags === undefined ? {} : { lags }) }));
+  return withPauses(checking({ model, level, ...(lags === undefined ? {} : { lags }) }), ({ done, total, what }) => {
+    context.progress(done, total, what);
+    return context.breathe();
+  }).catch((error: unknown) => { throw asOptionError(error); });
 }
 
 /** A fit, or the fit in a ranked row of a comparison. */

@@ -1,8 +1,8 @@
 // The kind that sets unit-root and stationarity tests side by side.
 
-import { defaultSeasonLength, lambdaProfile, rangeMean, stationarity as compute, type LambdaProfile, type RangeMean, type Series, type Stationarity } from "../stdlib/index.ts";
-import { OptionError, type Kind, type OptionTable } from "./kind.ts";
-import { needLevel, needVaryingSeries, plainly } from "./parts/needs.ts";
+import { defaultSeasonLength, lambdaProfile, rangeMean, testingStationarity, withPauses, type LambdaProfile, type RangeMean, type Series, type Stationarity } from "../stdlib/index.ts";
+import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
+import { asOptionError, needLevel, needVaryingSeries } from "./parts/needs.ts";
 import { axisTitle, scaleText } from "./parts/scale.ts";
 import { stationarityParts } from "./parts/stationarityParts.ts";
 
@@ -40,16 +40,21 @@ export const stationarity: Kind<StationarityCell, ShownStationarity> = {
   body: "options",
   callable: true,
   example: "series: crossings",
-  run: options => runStationarity(options),
+  run: (options, context) => runStationarity(options, context),
   show: (result, context) => stationarityParts(result, context.width),
 };
 
-export function runStationarity(options: StationarityCell): ShownStationarity {
+export async function runStationarity(options: StationarityCell, context: RunContext): Promise<ShownStationarity> {
   const series = needVaryingSeries(options.series, 6, "a unit-root test");
   const level = needLevel(options.level);
   const { trend = "constant", lags, bandwidth } = options;
   if (typeof lags === "number" && lags > series.n / 2) throw new OptionError("lags", `lags is ${lags}: with ${series.n} values the regression would have more lags than data to estimate them; ask for at most ${Math.floor(series.n / 4)}`);
-  const result = plainly(() => compute({ series, trend, level, ...(lags === undefined || lags === null ? {} : { lags }), ...(bandwidth === undefined || bandwidth === null ? {} : { bandwidth }) }));
+  const given = { series, trend, level, ...(lags === undefined || lags === null ? {} : { lags }), ...(bandwidth === undefined || bandwidth === null ? {} : { bandwidth }) };
+  const result = await withPauses(testingStationarity(given), ({ done, total, what }) => {
+    context.progress(done, total, what);
+    return context.breathe();
+  }).catch((error: unknown) => { throw asOptionError(error); });
+  await context.breathe();
   return { ...result, of: scaleText(series), axis: axisTitle(series), series, ...spreadOf(series, trend) };
 }
 

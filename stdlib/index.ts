@@ -31,7 +31,7 @@ export { type LagChoice } from "./unitroot/dickeyFullerRegression.ts";
 export { type Bandwidth } from "./unitroot/longRunVariance.ts";
 export { canovaHansen, type CanovaHansenOptions } from "./unitroot/canovaHansen.ts";
 export { differences, differencesSentence, type DifferenceRow } from "./unitroot/differences.ts";
-export { stationarity, type Stationarity, type StationarityOptions } from "./unitroot/stationarity.ts";
+export { stationarity, testingStationarity, type Stationarity, type StationarityOptions } from "./unitroot/stationarity.ts";
 // arma
 export { fit, type FitHow } from "./arma/fit.ts";
 export { fitAt } from "./arma/fitAt.ts";
@@ -68,7 +68,7 @@ export { cusum, largestBreak, type Cusum, type LargestBreak } from "./diagnostic
 export { outliers, type Outlier, type OutlierOptions, type Outliers } from "./diagnostics/outliers.ts";
 export { type OutlierType } from "./diagnostics/outlierPattern.ts";
 export { quantiles, type Quantiles } from "./diagnostics/qq.ts";
-export { diagnostics, type Diagnostics, type DiagnosticsOptions } from "./diagnostics/diagnostics.ts";
+export { checking, diagnostics, type Diagnostics, type DiagnosticsOptions } from "./diagnostics/diagnostics.ts";
 // evaluation
 export { bias, mae, mape, mase, mpe, naiveScale, rmse, rmsse, smape } from "./evaluation/accuracy.ts";
 export { crps, intervalScore, pinball } from "./evaluation/scores.ts";

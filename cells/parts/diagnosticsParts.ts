@@ -1,6 +1,6 @@
 // What diagnostic checking shows: question by question what the residuals still hold, then the pictures that say where.
 
-import { rejects, timesMs, type Diagnostics, type Test } from "../../stdlib/index.ts";
+import { rejects, timesMs, type Diagnostics, type OutlierType, type Test } from "../../stdlib/index.ts";
 import { timeField } from "./fanChart.ts";
 import { lagChart } from "./lagChart.ts";
 import { details } from "./part.ts";
@@ -129,9 +129,18 @@ function levelPart(result: Diagnostics): readonly ChartPart[] {
   })];
 }
 
+/** What the regressors are called when they are proposed. */
+const names: Readonly<Record<OutlierType, string>> = { additive: "event", levelShift: "level", temporaryChange: "change", innovational: "shock" };
+
 function outlierParts(result: Diagnostics): readonly Part[] {
   const { found } = result.outliers;
   if (found.length === 0) return [{ part: "text", text: result.outliers.sentence }];
+  const counts = new Map<string, number>(), entries = found.flatMap(one => {
+    if (one.regressor === null) return [];
+    const word = names[one.type], nth = (counts.get(word) ?? 0) + 1;
+    counts.set(word, nth);
+    return [`${word}${nth}: ${one.regressor}`];
+  });
   return [
     { part: "text", text: result.outliers.sentence },
     {
@@ -140,5 +149,6 @@ function outlierParts(result: Diagnostics): readonly Part[] {
       rows: found.map(one => [one.time, one.words, one.size, one.t, one.regressor ?? "none"]),
       note: "By the search of Chen and Liu (1993). Add a regressor only where something is known to have happened.",
     },
+    ...(entries.length === 0 ? [] : [{ part: "text" as const, tone: "note" as const, text: `All of them as an option of the fit, for copying: regressors: {${entries.join(", ")}}` }]),
   ];
 }

@@ -4,6 +4,8 @@ import type { Fit } from "../arma/model.ts";
 import { acf } from "../correlogram/acf.ts";
 import { checkLevel, independentBand } from "../correlogram/bands.ts";
 import { partialFrom } from "../correlogram/pacf.ts";
+import type { Gradual } from "../forecast/gradual.ts";
+import { atOnce } from "../forecast/gradual.ts";
 import { defaultSeasonLength } from "../series/every.ts";
 import type { Series } from "../series/series.ts";
 import { withValues } from "../series/series.ts";
@@ -15,7 +17,7 @@ import { cumulativePeriodogram } from "./cumulativePeriodogram.ts";
 import { durbinWatson } from "./durbinWatson.ts";
 import { jarqueBera } from "./jarqueBera.ts";
 import type { Outliers } from "./outliers.ts";
-import { outliers } from "./outliers.ts";
+import { searchingOutliers } from "./outliers.ts";
 import type { PortmanteauRows } from "./portmanteau.ts";
 import { boxPierce, ljungBox, monti, portmanteauRows } from "./portmanteau.ts";
 import type { Quantiles } from "./qq.ts";
@@ -62,7 +64,12 @@ export interface Diagnostics {
 /** Checks a fit's residuals. Residuals are one-step errors over the square root of their relative variance; those used up by
  *  differencing are not among them.
  *  @throws RangeError for lags or level out of range */
-export function diagnostics({ model, lags: asked, level = 0.95 }: DiagnosticsOptions): Diagnostics {
+export function diagnostics(options: DiagnosticsOptions): Diagnostics {
+  return atOnce(checking(options));
+}
+
+/** The same in slices: the tests, then each step of the search for outliers. */
+export function* checking({ model, lags: asked, level = 0.95 }: DiagnosticsOptions): Gradual<Diagnostics> {
   checkLevel("diagnostics", level);
   const residuals = model.residuals, values = residuals.values, n = observedOf(values).length;
   const modelDf = freeArmaCoefficients(model), seasonLength = model.seasonLength > 1 ? model.seasonLength : defaultSeasonLength(residuals.every);
@@ -77,9 +84,11 @@ export function diagnostics({ model, lags: asked, level = 0.95 }: DiagnosticsOpt
   const tested = short
     ? { ljungBox: tooShort(n), boxPierce: tooShort(n), monti: tooShort(n) }
     : { ljungBox: ljungBox(model, lags, undefined, level), boxPierce: boxPierce(model, lags, undefined, level), monti: monti(model, lags, undefined, level) };
+  yield { done: 0, total: 0, what: "portmanteau tests" };
   const tests = { ...tested, jarqueBera: jarqueBera(model, level), archLM: archLM(model, undefined, level), mcleodLi: short ? tooShort(n) : mcleodLi(model, undefined, level),
     cumulativePeriodogram: cumulativePeriodogram(model, 0, level), cusum: cusum(model, level), break: largestBreak(model, 0.15, level) };
-  const found = outliers(model);
+  yield { done: 0, total: 0, what: "tests of the residuals" };
+  const found = yield* searchingOutliers(model);
   const { verdict, sentence } = summary(tests, found, outsideOf(r), lags, 1 - level, band, r);
   return {
     label: model.label, status: verdict === "unavailable" ? "unavailable" : "ok", ...tests, durbinWatson: durbinWatson(model), outliers: found,

@@ -2,6 +2,8 @@
 
 import { fit as estimate } from "../arma/fit.ts";
 import type { Fit } from "../arma/model.ts";
+import type { Gradual } from "../forecast/gradual.ts";
+import { atOnce } from "../forecast/gradual.ts";
 import { normalQuantile } from "../distributions/normal.ts";
 import type { Intervention } from "../forecast/interventions.ts";
 import { leastSquares } from "../linear/leastSquares.ts";
@@ -58,6 +60,11 @@ const words: Readonly<Record<OutlierType, string>> = { additive: "one period off
  *  At the last residual the types look alike and the outlier is called additive.
  *  @throws RangeError for decay outside (0, 1). Cost per find O(n) times the model's lags, and up to three fits. */
 export function outliers(fit: Fit, options: OutlierOptions = {}): Outliers {
+  return atOnce(searchingOutliers(fit, options));
+}
+
+/** The same in slices, one a model estimated or a find. */
+export function* searchingOutliers(fit: Fit, options: OutlierOptions = {}): Gradual<Outliers> {
   const { types = ["additive", "levelShift", "temporaryChange", "innovational"], decay = 0.7 } = options;
   if (!(decay > 0 && decay < 1)) throw new RangeError(`outliers: decay is ${decay}, expected a share between 0 and 1`);
   const seen = observedOf(fit.residuals.values), n = fit.residuals.n;
@@ -67,7 +74,7 @@ export function outliers(fit: Fit, options: OutlierOptions = {}): Outliers {
   }
   const most = options.most ?? Math.max(1, Math.min(12, Math.floor(n / 10)));
   const plan = { types, decay, critical, most };
-  const { kept, sigma } = options.again ?? n <= 2000 ? searchAgain(fit, plan) : searchOnce(fit, plan);
+  const { kept, sigma } = options.again ?? n <= 2000 ? yield* searchAgain(fit, plan) : yield* searchOnce(fit, plan);
   const found = kept.map((c) => describe(c, fit, decay)).sort((a, b) => a.index - b.index);
   return { found, critical, sigma, status: "ok", sentence: sentenceOf(found, critical) };
 }
@@ -76,20 +83,21 @@ interface Plan { readonly types: readonly OutlierType[]; readonly decay: number;
 interface Found { readonly kept: readonly Candidate[]; readonly sigma: number }
 
 /** One model throughout: patterns are taken out of its residuals one by one, then fitted together. */
-function searchOnce(fit: Fit, { types, decay, critical, most }: Plan): Found {
+function* searchOnce(fit: Fit, { types, decay, critical, most }: Plan): Gradual<Found> {
   const e = observedOrZero(fit), patterns = patternsOf(types, fit, decay);
   const picked: Candidate[] = [], clean = Float64Array.from(e);
   while (picked.length < most) {
     const best = strongest(clean, fit, decay, patterns, robustSigma(clean), picked);
     if (best === null || Math.abs(best.t) < critical) break;
     picked.push(best);
+    yield { done: picked.length, total: most, what: "outliers" };
     subtract(clean, patterns.get(best.type) as Float64Array, best);
   }
   return together(e, picked, patterns, critical);
 }
 
 /** The model is estimated again with every find that a regressor can stand for. */
-function searchAgain(fit: Fit, { types, decay, critical, most }: Plan): Found {
+function* searchAgain(fit: Fit, { types, decay, critical, most }: Plan): Gradual<Found> {
   const shocks: Candidate[] = [];
   let current = fit, regressed: Candidate[] = [];
   while (shocks.length + regressed.length < most) {
@@ -106,6 +114,7 @@ function searchAgain(fit: Fit, { types, decay, critical, most }: Plan): Found {
       if (type === "innovational") continue;
       const candidate = { type, index: best.index, size: NaN, t: NaN };
       const tried = withRegressors(fit, [...regressed, candidate], decay);
+      yield { done: shocks.length + regressed.length, total: most, what: "outliers" };
       if (tried === null || tried.logLikelihood - current.logLikelihood <= gain) continue;
       const t = statistic(tried, regressed.length, tried.logLikelihood - current.logLikelihood);
       if (Math.abs(t) < critical) continue;

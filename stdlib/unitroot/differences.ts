@@ -4,6 +4,8 @@ import { acf } from "../correlogram/acf.ts";
 import { observedOf } from "../diagnostics/subject.ts";
 import type { Test } from "../diagnostics/test.ts";
 import { rounded } from "../diagnostics/test.ts";
+import type { Gradual } from "../forecast/gradual.ts";
+import { atOnce } from "../forecast/gradual.ts";
 import type { Series } from "../series/series.ts";
 import { valuesOf } from "../series/series.ts";
 import { adf } from "./adf.ts";
@@ -33,7 +35,15 @@ export interface DifferenceRow {
  *  season) comes near -0.5 or below, the value that differencing leaves behind in white noise.
  *  @param seasonLength  null for no seasonal difference
  *  @param most          most differences at lag 1   @param level  confidence at which each row's tests are read */
-export function differences(x: Series | ArrayLike<number>, seasonLength: number | null, { most = 2, level = 0.95 }: { readonly most?: number; readonly level?: number } = {}): DifferenceRow[] {
+export function differences(x: Series | ArrayLike<number>, seasonLength: number | null, options: DifferencesOptions = {}): DifferenceRow[] {
+  return atOnce(differencing(x, seasonLength, options));
+}
+
+export interface DifferencesOptions { readonly most?: number; readonly level?: number }
+
+/** The same in slices, one a row. */
+export function* differencing(x: Series | ArrayLike<number>, seasonLength: number | null, { most = 2, level = 0.95 }: DifferencesOptions = {}): Gradual<DifferenceRow[]> {
+  const all = (most + 1) * (seasonLength === null ? 1 : 2);
   const values = valuesOf(x), rows: DifferenceRow[] = [];
   for (const seasonal of seasonLength === null ? [0] : [0, 1]) {
     for (let d = 0; d <= most; d++) {
@@ -47,6 +57,7 @@ export function differences(x: Series | ArrayLike<number>, seasonLength: number 
         ...named(d, seasonal === 1 ? seasonLength : null), lags, d, seasonal, n, values: tried, variance, lag1: r[1] ?? NaN,
         adf: adf(tried, { level }), kpss: kpss(tried, { level }), overDifferenced: sign(variance, r, less, seasonLength),
       });
+      yield { done: rows.length, total: all, what: "differences" };
     }
   }
   return rows;

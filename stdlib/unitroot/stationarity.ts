@@ -3,6 +3,8 @@
 import type { Test } from "../diagnostics/test.ts";
 import { levelWords, printedP, rejects } from "../diagnostics/test.ts";
 import { checkLevel } from "../correlogram/bands.ts";
+import type { Gradual } from "../forecast/gradual.ts";
+import { atOnce } from "../forecast/gradual.ts";
 import { defaultSeasonLength } from "../series/every.ts";
 import type { Series } from "../series/series.ts";
 import { isSeries, valuesOf } from "../series/series.ts";
@@ -12,7 +14,7 @@ import { adf } from "./adf.ts";
 import { canovaHansen } from "./canovaHansen.ts";
 import { dfGls } from "./dfGls.ts";
 import type { DifferenceRow } from "./differences.ts";
-import { differences, differencesSentence } from "./differences.ts";
+import { differencesSentence, differencing } from "./differences.ts";
 import type { LagChoice } from "./dickeyFullerRegression.ts";
 import { kpss } from "./kpss.ts";
 import type { Bandwidth } from "./longRunVariance.ts";
@@ -53,6 +55,11 @@ export interface Stationarity {
  *  KPSS and DF-GLS know a constant and a straight trend only: for "none" they use a constant, for "quadratic" a straight trend, and say so.
  *  @throws RangeError for options out of range */
 export function stationarity(options: StationarityOptions): Stationarity {
+  return atOnce(testingStationarity(options));
+}
+
+/** The same in slices, one a test or a way of differencing. */
+export function* testingStationarity(options: StationarityOptions): Gradual<Stationarity> {
   const { series, trend = "constant", lags = null, bandwidth = "short", level = 0.95 } = options;
   checkTrend("stationarity", trend);
   checkLevel("stationarity", level);
@@ -61,12 +68,22 @@ export function stationarity(options: StationarityOptions): Stationarity {
   // A season of which there are not three whole ones cannot be tested.
   const seasonLength = asked !== null && valuesOf(series).length >= 3 * asked + 2 ? asked : null;
   const simple = trend === "linear" || trend === "quadratic" ? "linear" : "constant";
-  const tests = {
-    adf: adf(series, { trend, lags, level }), phillipsPerron: phillipsPerron(series, { trend, bandwidth, level }),
-    kpss: kpss(series, { trend: simple, bandwidth, level }), dfGls: dfGls(series, { trend: simple, lags, level }),
-  };
+  const slices = seasonLength === null ? 7 : 12, step = (done: number, what: string) => ({ done, total: slices, what });
+  const ofAdf = adf(series, { trend, lags, level });
+  yield step(1, "ADF");
+  const ofPhillipsPerron = phillipsPerron(series, { trend, bandwidth, level });
+  yield step(2, "Phillips-Perron");
+  const ofKpss = kpss(series, { trend: simple, bandwidth, level });
+  yield step(3, "KPSS");
+  const tests = { adf: ofAdf, phillipsPerron: ofPhillipsPerron, kpss: ofKpss, dfGls: dfGls(series, { trend: simple, lags, level }) };
+  yield step(4, "DF-GLS");
   const seasonal = seasonLength === null ? null : canovaHansen(series, { length: seasonLength, bandwidth: typeof bandwidth === "number" ? bandwidth : null, level });
-  const rows = differences(series, seasonLength, { level });
+  if (seasonal !== null) yield step(5, "Canova-Hansen");
+  const strength = seasonLength === null ? null : seasonalStrength(series, seasonLength);
+  const before = seasonLength === null ? 4 : 6, trying = differencing(series, seasonLength, { level });
+  let tried = trying.next();
+  for (; !tried.done; tried = trying.next()) yield step(Math.min(slices, before + tried.value.done), tried.value.what);
+  const rows = tried.value;
   const { verdict, together } = whatTheySay(tests, seasonal, trend, 1 - level);
   const notes = [
     ...(trend === "none" || trend === "quadratic" ? [`KPSS and DF-GLS are not made for this trend and were run ${trendWords(simple)}.`] : []),
@@ -74,7 +91,7 @@ export function stationarity(options: StationarityOptions): Stationarity {
     ...(tests.adf.note === undefined || tests.adf.status !== "ok" ? [] : [`${tests.adf.note}.`]),
   ];
   return {
-    ...tests, seasonal, strength: seasonLength === null ? null : seasonalStrength(series, seasonLength), differences: rows, differencesSentence: differencesSentence(rows),
+    ...tests, seasonal, strength, differences: rows, differencesSentence: differencesSentence(rows),
     trend, level, seasonLength, verdict, together, sentence: together, notes,
   };
 }

@@ -68,6 +68,7 @@ describe("diagnostics", () => {
     const found = events.rows.find(row => row[0] === "2023-01")!;
     expect(found[1]).toBe("one period off");
     expect(found[4]).toBe('pulse("2023-01")');
+    expect(texts(parts)).toContain('for copying: regressors: {event1: pulse("2023-01")');
     // A third of the value is log(1/3) = -1.10 on the scale of the model.
     expect(found[2] as number).toBeCloseTo(-1.1, 1);
   });
@@ -76,6 +77,17 @@ describe("diagnostics", () => {
     const parts = diagnostics.show(await run({ model: estimate({ series, ar: 1 }) }), show);
     await expect(drawnCharts(parts)).resolves.toHaveLength(6);
     expect(texts(parts)).not.toMatch(/NaN|undefined/);
+  });
+});
+
+describe("diagnostics of a long fit", () => {
+  test("lets newer work in between its slices, and stops when overtaken", async () => {
+    const model = seasonal(withEvent());
+    let breaths = 0;
+    const context = madeContext({ breathe: async () => { breaths += 1; if (breaths === 4) throw new Error("overtaken"); } });
+    await expect(diagnostics.run(checkOptions(diagnostics, { model }) as never, context)).rejects.toThrow("overtaken");
+    expect(breaths).toBe(4);
+    expect(context.steps.length).toBeGreaterThan(1);
   });
 });
 

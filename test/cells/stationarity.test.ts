@@ -82,6 +82,12 @@ describe("stationarity", () => {
     // The printed table of KPSS ends at 1% and 10%: nothing is read beyond its ends.
     expect((await run({ series: lynx, level: 0.85 })).together).toContain("cannot be read together at the 15% level: the printed table of KPSS ends before it (p > 0.10)");
   });
+  test("lets newer work in between its tests, says how far it is, and stops when overtaken", async () => {
+    let breaths = 0;
+    const context = madeContext({ breathe: async () => { breaths += 1; if (breaths === 5) throw new Error("overtaken"); } });
+    await expect(stationarity.run(checkOptions(stationarity, { series: madeSeries() }) as never, context)).rejects.toThrow("overtaken");
+    expect(context.steps).toEqual([[1, 12], [2, 12], [3, 12], [4, 12], [5, 12]]);
+  });
   test("takes BIC for the lags of DF-GLS unless told otherwise, as its authors do", async () => {
     const { adf, dfGls } = await run({ series: numbered(column("nile")) });
     expect([adf.lagRule, dfGls.lagRule]).toEqual(["by least AIC among 0 to 12", "by least BIC among 0 to 12"]);
