@@ -10,7 +10,6 @@ import { count, figure, listOf, percent, pText } from "./words.ts";
 type Model = Evaluation["models"][number];
 
 const mostPairs = 15;
-const mostPaths = 40;
 
 export function evaluationParts(result: Evaluation, every: string | null): readonly Part[] {
   const losers = result.models.filter(model => model.beatsNaive === "no" && model.label !== result.naive.label && !isNaive(model));
@@ -20,7 +19,8 @@ export function evaluationParts(result: Evaluation, every: string | null): reado
     ...(losers.length > 0 ? [{ part: "text" as const, tone: "caution" as const, text: `${listOf(losers.map(model => model.label))} ${losers.length === 1 ? "does" : "do"} not beat naive.` }] : []),
     standingsTable(result),
     ...(result.horizon > 1 ? [horizonChart(result)] : []),
-    ...details([pathsChart(result, every), coverageTable(result), ...pairParts(result)]),
+    ...pathsChart(result, every),
+    ...details([coverageTable(result), ...pairParts(result)]),
     ...result.notes.filter(text => !endedEarly(text)).map((text): TextPart => ({ part: "text", tone: "note", text })),
     ...failureParts(result),
   ];
@@ -119,25 +119,38 @@ function horizonAlt(result: Evaluation, lines: readonly { readonly label: string
   return `${best} is best at ${leads} of ${steps} horizons; its ${names[result.rankedBy]} goes from ${figure(own[0] ?? NaN)} one period ahead to ${figure(own[own.length - 1] ?? NaN)} at ${steps}.`;
 }
 
-/** The best model's forecasts from each origin; what happened is put together from all of them. */
-function pathsChart(result: Evaluation, every: string | null): Part {
-  const own = result.forecasts.filter(one => one.label === result.best.label);
-  // More paths than these cover each other; all of them are in the data behind the picture.
-  const step = Math.ceil(own.length / mostPaths);
-  const times = new Map<string, number>();
-  for (const one of own) one.times.forEach((time, i) => { times.set(time, one.actual[i]); });
-  const ms = (time: string): number => milliseconds(time, every, 1)[0];
-  const actual = Array.from(times.entries()).map(([time, value]) => ({ at: ms(time), value })).sort((a, b) => a.at - b.at);
-  const errors = own.map(one => ({ origin: one.origin, size: meanMiss(one) })).filter(one => Number.isFinite(one.size)).sort((a, b) => b.size - a.size);
-  const worst = errors.length > 0 ? ` The largest misses were from ${errors[0].origin}, ${figure(errors[0].size)}${result.unit ? ` ${result.unit}` : ""} on average.` : "";
+/** The best model's forecasts from each origin beside what happened, with what came before for one more horizon. */
+function pathsChart(result: Evaluation, every: string | null): readonly Part[] {
+  const { observed, horizon, unit } = result, own = result.forecasts.filter(one => one.label === result.best.label);
+  const all = milliseconds(observed.start, every, observed.n), place = new Map(observed.times.map((time, t) => [time, t])), first = place.get(own[0].origin) ?? 0;
+  const shown = Math.max(0, first - horizon), end = Math.min(observed.n, first + own.length + horizon);
+  const misses = own.map(meanMiss), known = misses.filter(Number.isFinite), worst = known.length > 0 ? misses.indexOf(Math.max(...known)) : -1;
   const chart = originsChart({
     title: `Forecasts of ${result.best.label} from each origin, and what happened`,
-    alt: `${step > 1 ? `One origin in ${step} is drawn. ` : ""}From ${result.origins[0]} to ${result.origins[result.origins.length - 1]}, ${count(own.length, "path")} of forecasts beside the observed values.${worst}`,
-    axis: result.unit ? `${result.name} (${result.unit})` : result.name, dated: every !== null,
-    actual: { time: actual.map(one => one.at), value: actual.map(one => one.value) },
-    paths: own.filter((_, i) => (own.length - 1 - i) % step === 0).map(one => ({ origin: one.origin, time: one.times.map(ms), value: one.median })),
+    alt: `From ${own[0].origin} to ${own[own.length - 1].origin}, ${count(own.length, "path")} of forecasts beside the observed values.${worst < 0 ? "" : ` The largest misses were from ${own[worst].origin}, ${sizeOf(misses[worst], unit)} on average.`}`,
+    axis: unit ? `${result.name} (${unit})` : result.name, dated: every !== null,
+    actual: { time: all.slice(shown, end), value: observed.values.slice(shown, end) },
+    paths: own.map((one, k) => {
+      const at = first + k;
+      return { origin: one.origin, from: { time: all[at], value: observed.values[at] }, time: all.slice(at + 1, at + 1 + horizon), value: one.median, bands: one.bands, words: originWords(result, one, misses, k) };
+    }),
   });
-  return { ...chart, full: { forecasts: allForecasts(result.forecasts) } };
+  return [{ ...chart, full: { forecasts: allForecasts(result.forecasts) } }];
+}
+
+/** What came of the forecasts from one origin. */
+function originWords(result: Evaluation, one: Evaluation["forecasts"][number], misses: readonly number[], k: number): string {
+  const reason = result.failures.find(failure => failure.label === one.label && failure.origin === one.origin)?.reason;
+  if (reason !== undefined) return `From ${one.origin} there is no forecast: ${reason}.`;
+  const seen = one.actual.filter(Number.isFinite).length;
+  if (Number.isNaN(misses[k])) return `From ${one.origin}: nothing was observed over the horizon.`;
+  const smaller = misses.filter((miss, i) => i !== k && miss < misses[k]).length, others = misses.filter((miss, i) => i !== k && Number.isFinite(miss)).length;
+  const held = one.bands.map(band => `${one.actual.reduce((sum, y, h) => sum + (y >= band.low[h] && y <= band.high[h] ? 1 : 0), 0)} lay in the ${percent(band.level)} band`);
+  return `From ${one.origin} the forecasts missed by ${sizeOf(misses[k], result.unit)} on average${others === 0 ? "" : `, more than from ${smaller} of the other ${count(others, "origin")}`}.${held.length === 0 ? "" : ` Of ${count(seen, "value")} that came, ${listOf(held)}.`}`;
+}
+
+function sizeOf(value: number, unit: string): string {
+  return unit ? `${figure(value)} ${unit}` : figure(value);
 }
 
 /** Every forecast of every model beside what happened. */

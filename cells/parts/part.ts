@@ -20,6 +20,23 @@ export interface ChartPart {
   readonly height: number;
   /** Full-precision data behind the picture where `data` was thinned for drawing; what "data" in the menu gives. */
   readonly full?: Readonly<Record<string, Columns>>;
+  /** What the reader may pick to be shown, without anything being computed; `data` holds what is shown at `at`. */
+  readonly pick?: Pick;
+}
+
+/** One of a few views of a chart, in the order of a scale that the reader moves along. */
+export interface Pick {
+  /** What is picked: "Origin". */
+  readonly label: string;
+  /** Where it stands at first. */
+  readonly at: number;
+  readonly among: readonly {
+    readonly label: string;
+    /** What is shown then, in words. */
+    readonly words: string;
+    /** Data sets that take the place of the chart's of the same names. */
+    readonly data: Readonly<Record<string, Columns>>;
+  }[];
 }
 
 export interface TableColumn {

@@ -19,9 +19,13 @@ export interface Actions {
   strip(): void;
   copy(text: string, button: HTMLElement): void;
   stop(cell: string): void;
+  /** A stopped cell is to run again. */
+  goOn(cell: string): void;
   startAgain(): void;
   save(key: string, as: "svg" | "png" | "csv"): void;
   asTable(key: string): void;
+  /** A chart's pick was moved. */
+  pick(key: string, at: number): void;
   fields(cell: string, open: boolean): void;
   /** A link to the outside; true when it was taken care of. */
   link(href: string): boolean;
@@ -68,6 +72,7 @@ function onClick(event: MouseEvent, root: HTMLElement, actions: Actions): void {
     case "strip": actions.strip(); break;
     case "copy": actions.copy(element.dataset.text ?? "", element); break;
     case "stop": actions.stop(element.dataset.cell ?? ""); break;
+    case "go-on": actions.goOn(element.dataset.cell ?? ""); break;
     case "start-again": actions.startAgain(); break;
     case "save-svg": actions.save(key, "svg"); break;
     case "save-png": actions.save(key, "png"); break;
@@ -100,6 +105,7 @@ function onInput(event: Event, actions: Actions): void {
   const field = event.target as HTMLInputElement | HTMLSelectElement;
   const { act, name = "", control } = field.dataset ?? {};
   if (act === "window-from" || act === "window-to") { field.dataset.typing = "yes"; return; }
+  if (act === "pick") actions.pick(field.dataset.key ?? "", Number(field.value));
   if (act !== "set") return;
   actions.input(name, control === "switch" ? (field as HTMLInputElement).checked : Number(field.value));
 }

@@ -2,6 +2,7 @@
 
 import { controlTree } from "./controls.ts";
 import { chartDataTable, chartMenu, tableMenu } from "./menus.ts";
+import { picked, pickTree } from "./pick.ts";
 import { fieldLink } from "./fieldLink.ts";
 import { printValue } from "./format.ts";
 import { claimsTree, equationTree, figuresTree, tableTree, textTree } from "./partTrees.ts";
@@ -23,6 +24,8 @@ export interface CellContext {
   readonly asTable: (key: string) => boolean;
   /** Whether the cell's list of fields is unfolded: folded, it is not drawn at all. */
   readonly fieldsOpen: (id: string) => boolean;
+  /** Where the reader moved a chart's pick; undefined where it stands as the cell has it. */
+  readonly pickedAt: (key: string) => number | undefined;
   /** Whether stopping this cell should be offered. */
   readonly canStop: (id: string) => boolean;
 }
@@ -63,11 +66,12 @@ function detailsTree(parts: readonly (readonly [Part, number])[], tree: (part: P
 
 function faultTree(cell: CellReport, context: CellContext): Given {
   if (!cell.message) return null;
-  if (cell.state !== "failed" && cell.state !== "blocked") return h("p", { class: "cell-remark" }, cell.message);
+  const goOn = cell.stopped && !context.still ? h("button", { type: "button", class: "quiet", "data-act": "go-on", "data-cell": cell.id }, "go on") : null;
+  if (cell.state !== "failed" && cell.state !== "blocked") return h("p", { class: "cell-remark" }, cell.message, goOn);
   const line = cell.at?.line ?? cell.line;
   const place = cell.at ?? cell;
   return h("div", { class: `cell-fault ${cell.state}` },
-    h("p", {}, h("span", { class: "fault-word" }, cell.state === "failed" ? "Failed" : "Blocked"), ` ${cell.message}`),
+    h("p", {}, h("span", { class: "fault-word" }, cell.state === "failed" ? "Failed" : "Blocked"), ` ${cell.message}`, goOn),
     context.canEdit
       ? h("button", { type: "button", class: "quiet", "data-act": "source", "data-from": place.from, "data-to": place.to }, `go to line ${line}`)
       : h("span", { class: "fault-line" }, `line ${line} of the notebook`));
@@ -79,14 +83,25 @@ function progressTree(cell: CellReport, context: CellContext): Given {
   const stop = context.canStop(cell.id) ? h("button", { type: "button", class: "quiet stop", "data-act": "stop", "data-cell": cell.id }, "stop this cell") : null;
   if (!progress) return stop ? h("p", { class: "cell-progress" }, "still at work ", stop) : null;
   const count = progress.total > 0 ? `${printValue(progress.done)} of ${printValue(progress.total)}` : printValue(progress.done);
+  const left = progress.leftMs === null ? "" : `, ${timeLeft(progress.leftMs)}`;
   return h("p", { class: "cell-progress" },
     h("progress", { max: progress.total > 0 ? progress.total : null, value: progress.total > 0 ? progress.done : null, "aria-label": `progress of ${cell.name ?? cell.kind}` }),
-    h("span", { class: "number" }, ` ${count}${progress.what ? ` ${progress.what}` : ""} `), stop);
+    h("span", { class: "number" }, ` ${count}${progress.what ? ` ${progress.what}` : ""}${left} `), stop);
+}
+
+/** Rounded so that it does not flicker: an estimate is no clock. */
+function timeLeft(ms: number): string {
+  const seconds = ms / 1000;
+  if (seconds < 1.5) return "nearly done";
+  if (seconds < 10) return `about ${Math.round(seconds)} s left`;
+  if (seconds < 55) return `about ${5 * Math.round(seconds / 5)} s left`;
+  if (seconds < 5400) return `about ${Math.max(1, Math.round(seconds / 60))} min left`;
+  return `about ${Math.round(seconds / 3600)} h left`;
 }
 
 function keptPart(part: Part, index: number, cell: CellReport, context: CellContext, source: Readonly<Record<string, AttributeValue>>, known: PartTrees): Given {
   const name = cell.name ?? "";
-  const inputs = [index, cell.id, cell.show, cell.from, cell.to, context.canEdit, context.still, context.pending(name), context.fault(name), context.asTable(chartKey(cell.id, index))];
+  const inputs = [index, cell.id, cell.show, cell.from, cell.to, context.canEdit, context.still, context.pending(name), context.fault(name), context.asTable(chartKey(cell.id, index)), context.pickedAt(chartKey(cell.id, index))];
   const old = known.get(part);
   if (old?.inputs.every((input, i) => input === inputs[i])) return old.tree;
   const tree = partTree(part, index, cell, context, source);
@@ -116,8 +131,9 @@ function chartTree(part: ChartPart, key: string, context: CellContext, source: R
   return h("figure", { class: "part part-chart", key: `chart ${key}`, style: context.still ? null : `contain-intrinsic-height:auto ${part.height + 70}px` },
     h("figcaption", {}, h("span", { class: "chart-title" }, part.title), context.still ? null : chartMenu(key, context.asTable(key))),
     h("div", { class: "outlet", ...source }, h("div", box)),
+    part.pick ? context.still ? h("p", { class: "pick-words" }, part.pick.among[part.pick.at].words) : pickTree(part.pick, key, context.pickedAt(key)) : null,
     says ? h("p", { class: "chart-alt", "aria-hidden": "true" }, part.alt) : null,
-    context.asTable(key) ? chartDataTable(part) : null);
+    context.asTable(key) ? chartDataTable(picked(part, context.pickedAt(key))) : null);
 }
 
 function stillControl(part: Extract<Part, { part: "control" }>): Tree {

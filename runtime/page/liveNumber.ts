@@ -10,7 +10,7 @@ export function liveNumber(number: NumberReport, may: { readonly canAccept: bool
   const source = may.canEdit ? { "data-act": "source", "data-from": number.from, "data-to": number.to } : {};
   if (number.state === "agrees") return h("span", { class: "live agrees", title: from, ...source }, number.saved);
   if (number.state === "undecided") {
-    return h("span", { class: "live undecided", title: number.message ?? from, ...source }, number.saved, h("span", { class: "unseen" }, ` (undecided: ${number.message ?? "not computed"})`));
+    return h("span", { class: "live undecided", title: number.message ?? from, ...source }, number.saved, h("span", { class: "unseen" }, ` (undecided: ${(number.message ?? "not computed").replace(/^Undecided: /, "")})`));
   }
   return h("span", { class: "live moved", title: from },
     h("span", { class: "unseen" }, "moved from "), h("del", source, number.saved), h("span", { class: "unseen" }, " to "), h("ins", source, number.now ?? "–"),

@@ -9,6 +9,7 @@ import { focusKeeper } from "./focus.ts";
 import { hear, pageState } from "./pageState.ts";
 import { pageActions } from "./pageActions.ts";
 import type { PageUi } from "./pageActions.ts";
+import { picked } from "./pick.ts";
 import { paces } from "./paces.ts";
 import { pageTrees, summary } from "./pageTrees.ts";
 import { outOfSight } from "./sight.ts";
@@ -50,7 +51,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   voice.setAttribute("aria-live", "polite"); voice.setAttribute("role", "status");
 
   const state = pageState();
-  const ui: PageUi = { canEdit: false, stripOpen: !matchMedia("(max-width: 640px)").matches, tables: new Set(), fields: new Set(), faults: new Map(), broken: null };
+  const ui: PageUi = { canEdit: false, stripOpen: !matchMedia("(max-width: 640px)").matches, tables: new Set(), fields: new Set(), picks: new Map(), faults: new Map(), broken: null };
   const files = new Map<string, Extract<ToEngine, { to: "file" }>>();
   /** Cells that the reader stopped, with their source then: one that was edited since may run again. */
   const held = new Map<string, string>();
@@ -94,11 +95,11 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   function draw(only: "sight" | "all"): void {
     const later = only === "sight" ? waits : () => false;
     keepFocus(() => {
-      drawArticle(trees.blocks(state, { canEdit: ui.canEdit, still: false, pending: settings.pending, fault: (name) => ui.faults.get(name) ?? null, asTable: (key) => ui.tables.has(key), fieldsOpen: (id) => ui.fields.has(id), canStop: (id) => dog.canStop(id) }, later));
+      drawArticle(trees.blocks(state, { canEdit: ui.canEdit, still: false, pending: settings.pending, fault: (name) => ui.faults.get(name) ?? null, asTable: (key) => ui.tables.has(key), fieldsOpen: (id) => ui.fields.has(id), pickedAt: (key) => ui.picks.get(key), canStop: (id) => dog.canStop(id) }, later));
       const controls = [...state.cells.values()].flatMap((cell) => { const part = controlOf(cell); return part && cell.name !== null ? [{ name: cell.name, part, pending: settings.pending(cell.name), fault: ui.faults.get(cell.name) ?? null, from: cell.from }] : []; }).sort((a, b) => a.from - b.from);
       drawRest([noticeTree(dog.notice(), ui.broken), stripTree(controls, ui.stripOpen, Object.keys(state.moved), ui.canEdit)].filter((tree) => tree !== null));
     });
-    for (const cell of state.cells.values()) if (!later(cell)) for (const [index, part] of (cell.show ?? []).entries()) if (part.part === "chart") charts.want(chartKey(cell.id, index), part);
+    for (const cell of state.cells.values()) if (!later(cell)) for (const [index, part] of (cell.show ?? []).entries()) if (part.part === "chart") charts.want(chartKey(cell.id, index), picked(part, ui.picks.get(chartKey(cell.id, index))));
     done = charts.drawn();
     if (only === "all" && state.settled && state.version === (text?.version ?? 0)) void done.then(complete);
   }
@@ -138,7 +139,12 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
 
   const actions = pageActions({
     root, state, ui, settings, charts, post, pace, announce, alone: parent === null,
-    stop(cell) { const { from, to } = state.cells.get(cell) ?? { from: 0, to: 0 }; held.set(cell, text?.text.slice(from, to) ?? ""); engine.restart(); sayAllAgain(); pace.frame(); },
+    stop(cell) {
+      // An engine that answers ends the cell by itself, and keeps what is done; one that does not is started anew without the cell.
+      if (!dog.stuck()) { engine.send({ to: "stop", cell }); announce("The cell is told to stop."); return; }
+      const { from, to } = state.cells.get(cell) ?? { from: 0, to: 0 }; held.set(cell, text?.text.slice(from, to) ?? ""); engine.restart(); sayAllAgain(); pace.frame();
+    },
+    goOn(cell) { engine.send({ to: "goOn", cell }); pace.frame(); },
     startAgain() { engine.restart(); sayAllAgain(); pace.frame(); },
   });
   listen(root, actions);

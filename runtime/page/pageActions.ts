@@ -21,6 +21,8 @@ export interface PageUi {
   readonly tables: Set<string>;
   /** Ids of cells whose fields are unfolded. */
   readonly fields: Set<string>;
+  /** Where the reader moved the picks of charts, by the chart's key. */
+  readonly picks: Map<string, number>;
   /** What is wrong with a typed date, by control. */
   readonly faults: Map<string, string>;
   /** Why the worker stopped; null while it stands. */
@@ -31,7 +33,7 @@ export interface PageHands {
   readonly root: HTMLElement; readonly state: PageState; readonly ui: PageUi; readonly settings: Settings; readonly charts: Charts;
   post(message: FromPage): void; readonly pace: Paces; announce(words: string): void;
   readonly alone: boolean;
-  stop(cell: string): void; startAgain(): void;
+  stop(cell: string): void; goOn(cell: string): void; startAgain(): void;
 }
 
 /** Keys with Ctrl or Command that belong to the window around the page. */
@@ -98,9 +100,10 @@ export function pageActions(hands: PageHands): Actions & { reveal(position: numb
         setTimeout(() => { button.textContent = words; }, 1500);
       });
     },
-    stop: hands.stop, startAgain: hands.startAgain,
+    stop: hands.stop, goOn: hands.goOn, startAgain: hands.startAgain,
     save(key, as) { save(key, as).catch((error: unknown) => announce(`The picture could not be saved: ${error instanceof Error ? error.message : String(error)}`)); },
     asTable(key) { if (!ui.tables.delete(key)) ui.tables.add(key); pace.frame(); },
+    pick(key, at) { ui.picks.set(key, at); pace.frame(); },
     fields(cell, open) { if (open) ui.fields.add(cell); else ui.fields.delete(cell); pace.frame(); },
     link(href) { if (hands.alone) return false; post({ page: "openLink", href }); return true; },
     key(event) {

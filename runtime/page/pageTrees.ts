@@ -49,7 +49,7 @@ export function pageTrees(): PageTrees {
           const key = `cell ${cell.id}`, before = kept.get(key);
           if (before && later(cell)) { next.set(key, before); trees.push(before.tree); continue; }
           const name = cell.name ?? "";
-          const tables = (cell.show ?? []).map((_, i) => context.asTable(`${cell.id}/${i}`)).join();
+          const tables = (cell.show ?? []).map((_, i) => [context.asTable(`${cell.id}/${i}`), context.pickedAt(`${cell.id}/${i}`)].join(" ")).join();
           trees.push(keep(key, [cell, context.canEdit, context.pending(name), context.fault(name), tables, context.fieldsOpen(cell.id), context.canStop(cell.id)], () => cellTree(cell, key, context, parts)));
           continue;
         }

@@ -2,7 +2,7 @@
 
 import { defaultSeasonLength } from "../series/every.ts";
 import { slice } from "../series/cut.ts";
-import { isSeries } from "../series/series.ts";
+import { isSeries, type Series } from "../series/series.ts";
 import { isRule, rule } from "../forecast/rules.ts";
 import type { Fit } from "../arma/model.ts";
 import type { Forecaster } from "../forecast/model.ts";
@@ -68,6 +68,8 @@ export interface Evaluation {
   readonly origins: readonly string[];
   readonly horizon: number;
   readonly unit: string; readonly name: string;
+  /** The data that the models had in common, in the units of the forecasts. */
+  readonly observed: Series;
   readonly forecasts: readonly OriginForecast[];
   readonly failures: readonly { readonly label: string; readonly origin: string; readonly reason: string }[];
   /** False where the work was stopped early: the scores are over the origins that every model had finished. */
@@ -118,7 +120,7 @@ export function summarise(given: readonly Labelled[], rolled: readonly Rolled[],
   const complete = done >= total, verdict = rankSentences(ranked, against, { rank, origins: common, horizon, complete, total: frame.at.length, failures: failures.length });
   return {
     models: ranked, best: ranked[0], rankedBy: rank, scores: asked.flatMap((i) => tables[i]), against, confidenceSet: set,
-    naive: bestNaive >= 0 ? overall[bestNaive] : overall[0], origins: frame.origins.slice(0, common), horizon, unit: frame.base.unit, name: frame.base.name,
+    naive: bestNaive >= 0 ? overall[bestNaive] : overall[0], origins: frame.origins.slice(0, common), horizon, unit: frame.base.unit, name: frame.base.name, observed: frame.base,
     forecasts: asked.flatMap((i) => originForecasts(even[i], frame)), failures, complete, done, total, sentence: verdict.sentence,
     notes: given.some(({ model }) => !isRule(model) && Object.values(model.options.regressors ?? {}).some(isSeries)) ? [...verdict.notes, knownRegressors] : verdict.notes,
   };

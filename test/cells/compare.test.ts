@@ -17,6 +17,23 @@ const run = async (options: Record<string, unknown>, source: Record<string, stri
 const steady = stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 12 }]);
 const numbered = (values: readonly number[]) => makeSeries({ name: "short", values: Float64Array.from(values) });
 
+describe("the picture of forecasts from every origin", () => {
+  test("lets any origin be picked, and says what came of its forecasts", async () => {
+    // A line with one step: naive forecasts from before the step miss by 10 less what the line gains, those after by the line's slope.
+    const values = Float64Array.from({ length: 30 }, (_, t) => t + (t >= 26 ? 10 : 0)), series = makeSeries({ name: "stock", unit: "t", values });
+    const { result } = await run({ models: { naive: rule.naive(series) }, origins: 5, horizon: 1, levels: [0.9] });
+    const chart = compare.show(result, show).find((part): part is ChartPart => part.part === "chart" && part.pick !== undefined)!;
+    const { pick } = chart;
+    expect(pick?.among.map(view => view.label)).toEqual(["25", "26", "27", "28", "29"]);
+    expect(pick).toMatchObject({ label: "Origin", at: 4 });
+    // The 26th value is 25, the 27th 36: the band of a walk with steps of 1 does not reach so far.
+    expect(pick?.among[1].words).toBe("From 26 the forecasts missed by 11.0 t on average, more than from 4 of the other 4 origins. Of 1 value that came, 0 lay in the 90% band.");
+    expect(pick?.among[1].data).toMatchObject({ origin: { time: [26] }, picked: { time: [26, 27], value: [25, 25] } });
+    expect(chart.data).toMatchObject({ picked: { time: [29, 30] } });
+    await expect(drawnCharts([chart, { ...chart, data: { ...chart.data, ...pick!.among[0].data } }])).resolves.toHaveLength(2);
+  });
+});
+
 describe("compare that the reader ends early", () => {
   const stopAfter = (count: number) => { let done = 0; return { progress: () => { done++; }, stopped: () => done >= count }; };
   test("shows the origins that all models finished, and says so before anything else", async () => {

@@ -9,7 +9,7 @@ import { html } from "../../../runtime/page/html.ts";
 
 const table = (title: string): Part => ({ part: "table", title, columns: [{ title: "a" }], rows: [[1]] });
 const cell = (show: readonly Part[]): CellReport => ({ id: "c", name: "c", kind: "fit", line: 1, from: 0, to: 9, state: "current", message: null, at: null, notes: [], show, progress: null, fields: null, runs: 1, stopped: false });
-const drawn = (show: readonly Part[], still = true): string => html(cellTree(cell(show), "c", { canEdit: false, still, pending: () => undefined, fault: () => null, asTable: () => false, fieldsOpen: () => false, canStop: () => false }));
+const drawn = (show: readonly Part[], still = true): string => html(cellTree(cell(show), "c", { canEdit: false, still, pending: () => undefined, fault: () => null, asTable: () => false, fieldsOpen: () => false, pickedAt: () => undefined, canStop: () => false }));
 
 describe("details of a cell", () => {
   it("stand folded below what carries the finding, named by their titles, and are whole in a still page", () => {

@@ -7,7 +7,7 @@ import { stillCharts } from "../../../runtime/page/stillCharts.ts";
 import { fakeNotebook, fakeText } from "./fakeNotebook.ts";
 
 const messages = fakeNotebook().answer({ to: "text", version: 1, text: fakeText });
-const context = { canEdit: true, still: false, pending: () => undefined, fault: () => null, asTable: () => false, fieldsOpen: () => false, canStop: () => false };
+const context = { canEdit: true, still: false, pending: () => undefined, fault: () => null, asTable: () => false, fieldsOpen: () => false, pickedAt: () => undefined, canStop: () => false };
 const cell = (given: Partial<CellReport>): FromEngine => ({ from: "cell", cell: { id: "a", name: "a", kind: "fit", line: 1, from: 0, to: 1, state: "current", message: null, at: null, notes: [], show: [], progress: null, fields: [], runs: 1, stopped: false, ...given } });
 
 describe("hear", () => {

@@ -36,14 +36,21 @@ describe("watchdog", () => {
     dog.silent(2500);
     expect(dog.notice()).toMatchObject({ cell: null });
   });
-  it("lets a cell be stopped that gives no sign for long, though the engine answers", () => {
+  it("lets a cell be stopped that is at work for long, though the engine answers and it tells how far it is", () => {
     const { dog, later } = dogWith(report({ state: "working" }));
     dog.reported(report({ state: "working" }));
     later(cellPatienceMs - 1); expect(dog.canStop("a")).toBe(false);
     dog.reported(report({ state: "working" }));
-    later(cellPatienceMs); expect(dog.canStop("a")).toBe(false);
+    later(1); expect(dog.canStop("a")).toBe(false);
     later(1); expect(dog.canStop("a")).toBe(true);
+    expect(dog.stuck()).toBe(false);
     dog.reported(report({})); expect(dog.canStop("a")).toBe(false);
+    dog.reported(report({ state: "working" })); expect(dog.canStop("a")).toBe(false);
+  });
+  it("knows an engine that answers no more", () => {
+    const { dog } = dogWith();
+    dog.silent(patienceMs + 1); expect(dog.stuck()).toBe(true);
+    dog.answered(null); expect(dog.stuck()).toBe(false);
   });
 });
 
