@@ -4,7 +4,7 @@
 //   the command               ->  lagbook.js, and pieces that it loads when they are needed
 
 import { build } from "esbuild";
-import type { BuildOptions } from "esbuild";
+import type { BuildOptions, Plugin } from "esbuild";
 import { chmod, copyFile, mkdir, readFile, readdir, rm, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import { pathToFileURL } from "node:url";
@@ -61,7 +61,13 @@ async function catalogue(from: (path: string) => string, define: Record<string, 
   await rm(made);
 }
 
-const browser: BuildOptions = { bundle: true, minify: true, format: "iife", platform: "browser", target: "es2022", legalComments: "none", loader: { ".css": "text" }, logLevel: "warning" };
+/** Parts of the chart library that no Vega-Lite view asks for: trees, forces, clouds of words, cross filters, placed labels. */
+const withoutUnasked: Plugin = {
+  name: "without unasked",
+  setup(made) { made.onLoad({ filter: /node_modules\/vega-(?:hierarchy|force|wordcloud|crossfilter|label)\// }, () => ({ contents: "" })); },
+};
+
+const browser: BuildOptions = { plugins: [withoutUnasked], bundle: true, minify: true, format: "iife", platform: "browser", target: "es2022", legalComments: "none", loader: { ".css": "text" }, logLevel: "warning" };
 
 /** The script of one entry, as text. */
 async function text(entry: string, more: BuildOptions): Promise<string> {

@@ -1,15 +1,10 @@
-// One drawn chart: the one door to vega and vega-embed. A view is made once and kept; new data are swapped in.
+// One drawn chart. A view is made once and kept; new data are swapped in.
 
-import embed from "vega-embed";
-import type { EmbedOptions } from "vega-embed";
-import { changeset, Error as onlyErrors, truthy } from "vega";
-import type { Loader } from "vega";
-import { rowsOf } from "./chartData.ts";
+import { chartView, swapData } from "./chartView.ts";
 import { compileChart } from "./chartSpec.ts";
 import type { CompiledChart } from "./chartSpec.ts";
 import { readingsOf } from "./chartReading.ts";
 import type { Drawn, Reading } from "./chartReading.ts";
-import { vegaExpression } from "./vegaExpression.ts";
 import type { ChartPart, Columns } from "../../cells/parts/part.ts";
 
 export interface Chart {
@@ -36,23 +31,15 @@ export function chartCompiler(): (shape: string, part: ChartPart) => CompiledCha
   };
 }
 
-const noLoader: Loader = {
-  load: refuse, sanitize: async (uri) => { if (uri.startsWith("data:image/")) return { href: uri }; return refuse(); }, http: refuse, file: refuse,
-};
-async function refuse(): Promise<never> { throw new Error("A chart loads nothing"); }
-
-/** @param say told the texts to show beside the pointer for marks that bring their own, or null */
-export async function makeChart(element: HTMLElement, compiled: CompiledChart, part: ChartPart, width: number, say: (event: MouseEvent, value: unknown) => void): Promise<Chart> {
+/** @param width in pixels */
+export async function makeChart(element: HTMLElement, compiled: CompiledChart, part: ChartPart, width: number): Promise<Chart> {
   let latest = part;
-  const options: EmbedOptions = {
-    mode: "vega", ast: true, expr: vegaExpression as unknown as NonNullable<EmbedOptions["expr"]>, actions: false, defaultStyle: false, renderer: "svg", hover: false,
-    // An empty data set is no fault worth a warning: a forecast without held-out data has one.
-    logLevel: onlyErrors, loader: noLoader, tooltip: (_handler, event, _item, value) => say(event, value),
-    // Data go in before the first drawing, so that nothing is drawn empty.
-    patch: (spec) => ({ ...spec, data: (spec.data ?? []).map((set) => set.name in part.data ? { ...set, values: rowsOf(part.data[set.name]) } : set), signals: (spec.signals ?? []).map((signal) => part.params && signal.name in part.params ? { ...signal, value: part.params[signal.name] } : signal) }) as typeof spec,
-    ...(compiled.fits ? { width, height: part.height } : {}),
-  };
-  const { view, finalize } = await embed(element, compiled.spec, options);
+  // A place of its own: the box around it has a role and a label that the library would overwrite.
+  const place = document.createElement("div");
+  element.replaceChildren(place);
+  const view = chartView(compiled, part, "svg").initialize(place);
+  if (compiled.fits) view.width(width).height(part.height);
+  await view.runAsync();
   let drawn: Readonly<Record<string, Columns>> = part.data;
   let drawnWidth = compiled.fits ? width : 0;
   await fitPanels();
@@ -74,12 +61,8 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
   return {
     async update(next, nextWidth) {
       latest = next; width = nextWidth;
-      for (const [name, columns] of Object.entries(next.data)) {
-        if (columns === drawn[name] || !compiled.dataNames.has(name)) continue;
-        view.change(name, changeset().remove(truthy).insert(rowsOf(columns)));
-      }
+      swapData(view, compiled, drawn, next);
       drawn = next.data;
-      for (const [name, value] of Object.entries(next.params ?? {})) if (compiled.signalNames.has(name)) view.signal(name, value);
       if (compiled.fits && drawnWidth !== width) { view.width(width); drawnWidth = width; }
       if (compiled.fits && view.height() !== next.height) view.height(next.height);
       await view.runAsync();
@@ -87,6 +70,6 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
     },
     readings: () => readingsOf(view as unknown as Drawn, latest),
     svg: () => view.toSVG(),
-    destroy: finalize,
+    destroy() { view.finalize(); place.remove(); },
   };
 }

@@ -61,7 +61,7 @@ export function charts(announce: (words: string) => void): Charts {
     if (place.chart && place.shape === shape) { await place.chart.update(part, width); return; }
     place.chart?.destroy();
     place.chart = null;
-    place.chart = await makeChart(place.element, compiled(shape, part), part, width, () => undefined);
+    place.chart = await makeChart(place.element, compiled(shape, part), part, width);
     place.shape = shape;
     place.element.querySelector("svg")?.setAttribute("aria-hidden", "true");
   }
