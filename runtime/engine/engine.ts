@@ -418,10 +418,11 @@ class NotebookEngine implements Engine {
     if (number === undefined) throw new Overtaken("no longer in the text");
     entry.runs += 1;
     const outcomes = new Map(entry.inputs.map((id, i) => [id, inputs[i]]));
+    const notes: string[] = [];
     try {
       const context = { ...this.#quietContext(null, {}, undefined, signal), recall: entry.memory.recall };
-      const value = await evaluate(number.text.expression, { language: this.#language, library: this.#library, names: number.names, outcomes, label: (id) => this.#label(id), context, whole: true });
-      return { ok: true, result: value, value, notes: [], claims: null, cutShort: null };
+      const value = await evaluate(number.text.expression, { language: this.#language, library: this.#library, names: number.names, outcomes, label: (id) => this.#label(id), context, whole: true, missing: (why) => { notes.push(why); } });
+      return { ok: true, result: value, value, notes, claims: null, cutShort: null };
     } catch (error) {
       if (error instanceof Overtaken || signal.aborted) throw error;
       const message = error instanceof EvaluationError || !(error instanceof Undecided) ? messageOf(error) : `Undecided: ${error.message}`;
@@ -606,7 +607,7 @@ class NotebookEngine implements Engine {
     if (outcome === null) return { ...base, message: null };
     if (!outcome.ok) return { ...base, message: outcome.message };
     const judged = judge(text, outcome.value);
-    return { ...base, ...judged, message: Number.isNaN(outcome.value) ? `${judged.message ?? ""}${this.#remarksOn(number)}` : judged.message };
+    return { ...base, ...judged, message: Number.isNaN(outcome.value) ? `${[judged.message ?? "", ...outcome.notes.slice(-1)].join(": ")}${this.#remarksOn(number)}` : judged.message };
   }
 
   /** What the values that a number reads say about themselves: why a figure of theirs is missing stands there. */

@@ -12,6 +12,8 @@ export interface Surroundings {
   readonly callables: WeakSet<object>;
   /** A claim is not decided by missing data: comparing NaN is then neither true nor false. */
   readonly claim?: boolean;
+  /** Told the holder of a figure that is missing (NaN): it may say why. */
+  missing?(holder: unknown): void;
 }
 
 export type Compiled = (around: Surroundings) => unknown;
@@ -129,7 +131,9 @@ function memberCode(node: MemberExpression, scope: Scope): Code {
   return (frame) => {
     const holder = object(frame);
     if (holder === NOTHING || (node.optional && (holder === null || holder === undefined))) return NOTHING;
-    return placed(node, () => property(holder, key(frame), node.optional));
+    const value = placed(node, () => property(holder, key(frame), node.optional));
+    if (Number.isNaN(value)) frame.around.missing?.(holder);
+    return value;
   };
 }
 

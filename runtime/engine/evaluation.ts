@@ -24,6 +24,8 @@ export interface EvaluationScope {
   readonly claim?: boolean;
   /** Values of work that was ended early decide nothing: reading one leaves the whole undecided. */
   readonly whole?: boolean;
+  /** Told why a figure that was read is missing, where its holder says so in its `note`. */
+  missing?(why: string): void;
 }
 
 /** An input that failed: a claim or a live number is then undecided. */
@@ -39,6 +41,11 @@ export async function evaluate(source: string, scope: EvaluationScope): Promise<
   const callables = new WeakSet(scope.library.functions);
   // An expression always takes the same way, so the n-th call of a kind is the same call when it is evaluated again.
   const answers: Answer[] = [];
+  let why = "";
+  const missing = (holder: unknown): void => {
+    const note: unknown = typeof holder === "object" && holder !== null && Object.hasOwn(holder, "note") ? Reflect.get(holder, "note") : null;
+    if (typeof note === "string" && note !== "") { why = `: ${note}`; scope.missing?.(note); }
+  };
   for (;;) {
     let calls = 0;
     const callKind = (kind: Language["kinds"][number], given: unknown): unknown => {
@@ -48,9 +55,9 @@ export async function evaluate(source: string, scope: EvaluationScope): Promise<
       return answers[at].take();
     };
     try {
-      return compiled({ callables, claim: scope.claim, lookup: (name) => lookup(name, scope, callables, callKind) });
+      return compiled({ callables, claim: scope.claim, missing, lookup: (name) => lookup(name, scope, callables, callKind) });
     } catch (error) {
-      if (error instanceof Missing) throw new Undecided(`\`${source.slice(error.place.from, error.place.to)}\` is missing (NaN)`);
+      if (error instanceof Missing) throw new Undecided(`\`${source.slice(error.place.from, error.place.to)}\` is missing (NaN)${why}`);
       if (!(error instanceof Pending)) throw error;
       await error.answer;
     }

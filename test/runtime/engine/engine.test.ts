@@ -279,6 +279,12 @@ describe("function forms, claims, live numbers", () => {
     expect(engine.numbers().map((each) => each.message)).toEqual(["Undecided: `v.error` is missing (NaN). `v` notes: A root lies on the unit circle.", "This gives an object: choose one number, text or truth of it"]);
   });
 
+  test("a figure that is missing says why, where its holder has a note of it", async () => {
+    const { engine } = await open(`${cell("values: v", 'test: {p: NaN, note: "no degrees of freedom are left"}', "bare: {p: NaN}")}[1](=v.test.p) [2](=v.bare.p)\n\n${cell("claims:", '"it is": v.test.p < 0.05')}`);
+    expect(engine.numbers().map((each) => each.message)).toEqual(["Undecided: `v.test.p` is missing (NaN): no degrees of freedom are left", "Undecided: `v.bare.p` is missing (NaN)"]);
+    expect(engine.claims()[0].message).toBe("Undecided: `v.test.p` is missing (NaN): no degrees of freedom are left");
+  });
+
   test("the result of verify has the shape of the language", async () => {
     const { engine } = await open(`${chain}[4](=b.twice)\n\n${cell("claims:", '"holds": b.twice === 4')}`);
     expect(resultOf(engine, "n.md")).toEqual({
