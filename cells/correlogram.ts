@@ -3,6 +3,7 @@
 import { correlogram as compute, extendedAcf, offsetBetween, prewhitenedCcf, smallestCanonical, theoreticalAcf, theoreticalPacf, type Correlogram, type Fit, type OrderTable, type PrewhitenedCcf, type Series } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { correlogramParts } from "./parts/correlogramParts.ts";
+import { leaderText } from "./parts/leaderText.ts";
 import { needLevel, needVaryingSeries, plainly } from "./parts/needs.ts";
 import { scaleText } from "./parts/scale.ts";
 import { count } from "./parts/words.ts";
@@ -24,9 +25,9 @@ export interface ShownCorrelogram extends Correlogram {
   readonly of: string;
   /** Tables that read mixed orders; null where a cut-off already suggests pure ones, or where the data cannot carry them. */
   readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null;
-  /** Cross-correlations after prewhitening, positive lags where the second series leads; null without one. `source` is how the
-   *  second series is written in the notebook. */
-  readonly cross: (PrewhitenedCcf & { readonly of: string; readonly name: string; readonly source: string }) | null;
+  /** Cross-correlations after prewhitening, positive lags where the second series leads; null without one. `toTry`: how a fit
+   *  would use it, where it leads. */
+  readonly cross: (PrewhitenedCcf & { readonly of: string; readonly name: string; readonly toTry: string | null }) | null;
   readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null;
 }
 
@@ -69,7 +70,8 @@ function crossOf(other: unknown, series: Series, lags: number, level: number, so
   const leader = needVaryingSeries(other, 10, "a cross-correlation", "with");
   return plainly(() => {
     const offset = offsetBetween(leader, series), shared = Math.min(leader.n, offset + series.n) - Math.max(0, offset);
-    return { ...prewhitenedCcf(leader, series, Math.max(1, Math.min(lags, Math.floor(shared / 3))), { level }), of: scaleText(leader), name: leader.name || "the second series", source: source ?? leader.name };
+    const cross = prewhitenedCcf(leader, series, Math.max(1, Math.min(lags, Math.floor(shared / 3))), { level }), lag = cross.strongest?.lag ?? -1;
+    return { ...cross, of: scaleText(leader), name: leader.name || "the second series", toTry: lag < 0 ? null : leaderText(series, leader, source ?? leader.name, lag) };
   });
 }
 

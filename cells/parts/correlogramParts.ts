@@ -7,7 +7,7 @@ import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { lagsInWords, percent, pText } from "./words.ts";
 
-type Cross = PrewhitenedCcf & { readonly of: string; readonly name: string; readonly source: string };
+type Cross = PrewhitenedCcf & { readonly of: string; readonly name: string; readonly toTry: string | null };
 type Shown = Correlogram & { readonly of: string; readonly cross: Cross | null; readonly mixed: { readonly extended: OrderTable; readonly canonical: OrderTable } | null; readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null };
 
 export function correlogramParts(result: Shown): readonly Part[] {
@@ -30,14 +30,13 @@ export function correlogramParts(result: Shown): readonly Part[] {
 function crossParts(cross: Cross, of: string): readonly Part[] {
   if (cross.status === "unavailable") return [{ part: "text", tone: "caution", text: cross.sentence }];
   const reach = (cross.lags.length - 1) / 2, note = (text: string): TextPart => ({ part: "text", tone: "note", text });
-  const lead = cross.strongest === null || cross.strongest.lag < 0 ? null : cross.strongest.lag;
   return [
     { part: "text", text: cross.sentence },
     lagChart({
       title: `Cross-correlations of ${cross.of} with ${of}, after prewhitening`, alt: cross.sentence, season: 0, guides: [0], lagTitle: `lag (periods); right of 0 ${cross.name} comes first`,
       panels: [{ title: "cross-correlation", from: -reach, values: cross.ccf, band: Float64Array.from(cross.ccf, () => cross.band) }],
     }),
-    ...(lead === null ? [] : [note(`A fit could try it as a regressor: regressors: {leader: ${lead === 0 ? cross.source : `lagged(${cross.source}, ${lead})`}}.`)]),
+    ...(cross.toTry === null ? [] : [note(cross.toTry)]),
     note(`An autoregression of order ${cross.order}, estimated from ${cross.of}, was taken out of both, so that memory in each does not pass for a connection; ${cross.n} pairs are left.`),
     ...cross.notes.map(note),
   ];

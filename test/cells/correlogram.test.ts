@@ -3,7 +3,7 @@ import { describe, expect, test } from "vitest";
 import { checkOptions } from "../../cells/check.ts";
 import { correlogram } from "../../cells/correlogram.ts";
 import type { ChartPart, TablePart, TextPart } from "../../cells/parts/part.ts";
-import { fit as estimate, makeSeries } from "../../stdlib/index.ts";
+import { fit as estimate, lagged, makeSeries } from "../../stdlib/index.ts";
 import { drawnCharts } from "./drawn.ts";
 import { madeContext } from "./madeContext.ts";
 import { madeSeries, stepped } from "./made.ts";
@@ -95,13 +95,21 @@ describe("correlogram", () => {
       const parts = correlogram.show(result, show), chart = parts[1] as ChartPart;
       expect(chart.title).toBe("Cross-correlations of lead, differenced at lag 1 with sales, differenced at lag 1, after prewhitening");
       expect(chart.alt).toMatch(/the largest, 0\.\d\d, is where lead leads sales by 3 periods\. That a lead is seen does not show a cause\.$/);
-      expect(texts(parts)).toContain("regressors: {leader: lagged(lead, 3)}");
+      expect(texts(parts)).toContain("as lagged(…, 3) of the series from before the differences");
       const [svg] = await drawnCharts(parts);
       expect(svg).toContain("right of 0 lead comes first");
       const lags = chart.full!.correlations.lag as readonly number[];
       expect([lags[0], lags.at(-1)]).toEqual([-result.lags, result.lags]);
       // The series' own correlogram waits below.
       expect(parts.filter(p => p.part === "chart" && p.detail).map(p => (p as ChartPart).title)[0]).toBe("Correlations of sales, differenced at lag 1 with its own past");
+    });
+    test("gives the leader as options that a fit can take", async () => {
+      const levels = months("sales", read("bjsales")), leader = months("lead", read("bjsales_lead"));
+      const said = texts(correlogram.show(await run({ series: sales, with: leader }), show));
+      const [, lag, from] = /regressors: \{leader: lagged\(lead, (\d+)\)\}, window: \{from: "(\d{4}-\d\d)"\}/.exec(said)!;
+      const options = { series: stepped(levels, [{ step: "difference", lag: 1 }]), ma: 1, regressors: { leader: lagged(leader, Number(lag)) } };
+      expect(estimate({ ...options, window: { from } }).beta.leader).toBeGreaterThan(0);
+      expect(() => estimate(options)).toThrow("has no value at 2000-01");
     });
     test("compares the periods that both have, and says so", async () => {
       const later = stepped(months("lead", read("bjsales_lead").slice(20, 140), "2001-09"), [{ step: "difference", lag: 1 }]);
