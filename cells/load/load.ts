@@ -9,7 +9,7 @@ import { decode } from "./decode.ts";
 import { gridOf, type Grid } from "./grid.ts";
 import { readTimes } from "./readTimes.ts";
 import { readValues } from "./readValues.ts";
-import { sheetOf, usualMissing, type Sheet } from "./sheet.ts";
+import { cellOf, sheetOf, usualMissing, type Sheet } from "./sheet.ts";
 import type { DayOrder } from "./times.ts";
 import { acrossTheYear } from "./wide.ts";
 
@@ -112,7 +112,7 @@ function startedGrid(sheet: Sheet, start: string, every: string | undefined): Gr
 function wantedColumns(sheet: Sheet, times: readonly number[], { value }: LoadCell, context: RunContext): readonly { readonly name: string; readonly column: number }[] {
   if (value === undefined) {
     const numeric = numericColumns(sheet, times);
-    if (numeric.length === 0) throw new OptionError("value", `${sheet.file} has no column of numbers${times.length > 0 ? ` beside the times in "${listOf(times.map((c) => sheet.columns[c]))}"` : ""}; its columns are ${someOf(sheet.columns.map((c) => `"${c}"`), 12)}`);
+    if (numeric.length === 0) throw new OptionError("value", `${sheet.file} has no column of numbers${times.length > 0 ? ` beside the times in "${listOf(times.map((c) => sheet.columns[c]))}"` : ""}; its columns are ${someOf(sheet.columns.map((c) => `"${c}"`), 12)}${nearlyNumbers(sheet, times)}`);
     if (numeric.length > 1) context.note(`Values are those of column "${sheet.columns[numeric[0]]}"; ${sheet.file} also has ${someOf(numeric.slice(1).map((c) => `"${sheet.columns[c]}"`))}, which \`value\` can name`);
     return [{ name: context.name ?? sheet.columns[numeric[0]], column: numeric[0] }];
   }
@@ -127,6 +127,15 @@ function wantedColumns(sheet: Sheet, times: readonly number[], { value }: LoadCe
     if (typeof header !== "string") throw new OptionError("value", `\`value.${name}\` must be the header of a column, in quotes`);
     return { name, column: columnNamed(sheet, header, "value") };
   });
+}
+
+/** Numbers with a sign of their own, such as a percentage, are texts to who reads them. */
+function nearlyNumbers(sheet: Sheet, times: readonly number[]): string {
+  for (let c = 0; c < sheet.columns.length; c++) {
+    const cell = cellOf(sheet.rows[0], c);
+    if (!times.includes(c) && /^[^\d\s]{0,4}\s?[+-−]?[\d.,'\s]*\d\s?[^\d\s]{0,4}$/u.test(cell)) return `. In "${sheet.columns[c]}", ${JSON.stringify(cell)} is no plain number: leave out what is not a digit, and say \`unit\` instead`;
+  }
+  return "";
 }
 
 function oneSeries(sheet: Sheet, grid: Grid, name: string, column: number, unit: LoadCell["unit"], context: RunContext): Series {

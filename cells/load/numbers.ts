@@ -1,6 +1,7 @@
 // Numbers as people write them in data files: decimal point or comma, grouped thousands.
 
 import type { Separator } from "./csv.ts";
+import { monthPointYear } from "./times.ts";
 
 export type Decimal = "." | ",";
 
@@ -40,6 +41,7 @@ export function decimalOf(cells: Iterable<string>, separator: Separator): { read
   for (const cell of cells) {
     if (!cell.includes(",") && !cell.includes(".")) continue;
     if (!/^[-+−–]?[\d\s\u00a0\u202f'’.,]+$/.test(cell) || !/\d/.test(cell)) continue;
+    if (monthPointYear.test(cell)) continue;
     const commas = cell.split(",").length - 1, points = cell.split(".").length - 1;
     if (commas > 0 && points > 0) { if (cell.lastIndexOf(",") > cell.lastIndexOf(".")) comma++; else point++; continue; }
     if (commas > 1) { point++; continue; } // 1,234,567 is grouped by commas

@@ -4,7 +4,7 @@ import { timeAt } from "../../stdlib/index.ts";
 import { OptionError } from "../kind.ts";
 import type { Grid } from "./grid.ts";
 import { numberOf } from "./numbers.ts";
-import { cellOf, type Sheet } from "./sheet.ts";
+import { cellOf, looksLikeTime, type Sheet } from "./sheet.ts";
 
 export interface ColumnValues {
   readonly values: Float64Array;
@@ -56,5 +56,12 @@ function notANumber(sheet: Sheet, column: number, at: number): OptionError {
 function contradiction(sheet: Sheet, column: number, grid: Grid, a: number, b: number): OptionError {
   const time = timeAt(grid.start, grid.every, grid.positions[a]);
   const show = (i: number): string => cellOf(sheet.rows[i], column) || "nothing";
-  return new OptionError("time", `${sheet.file}: lines ${sheet.rows[a].line} and ${sheet.rows[b].line} both give ${time}, one with ${show(a)} and one with ${show(b)} in column "${sheet.columns[column]}"; keep one row a period`);
+  return new OptionError("time", `${sheet.file}: lines ${sheet.rows[a].line} and ${sheet.rows[b].line} both give ${time}, one with ${show(a)} and one with ${show(b)} in column "${sheet.columns[column]}"; ${apart(sheet, column, a, b) ?? "keep one row a period"}`);
+}
+
+/** Several series below one another: what tells two rows of one period apart. */
+function apart(sheet: Sheet, column: number, a: number, b: number): string | null {
+  const text = (row: number, c: number): string => cellOf(sheet.rows[row], c);
+  const by = sheet.columns.findIndex((_, c) => c !== column && text(a, c) !== text(b, c) && [text(a, c), text(b, c)].every((cell) => cell !== "" && numberOf(cell, sheet.decimal) === null && !looksLikeTime(cell)));
+  return by < 0 ? null : `they differ in column "${sheet.columns[by]}" (${JSON.stringify(text(a, by))}, ${JSON.stringify(text(b, by))}): the file holds several series below one another; give each a column of its own`;
 }

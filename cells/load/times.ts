@@ -7,6 +7,9 @@ export type DayOrder = "day-month" | "month-day";
 const monthNames = ["jan", "feb", "mar", "apr", "may", "jun", "jul", "aug", "sep", "oct", "nov", "dec"];
 const longNames = ["january", "february", "march", "april", "may", "june", "july", "august", "september", "october", "november", "december"];
 
+/** 03.2019, where it cannot well be meant as a number. */
+export const monthPointYear = /^(0?[1-9]|1[0-2])\.((?:1[89]|20|21)\d\d)$/;
+
 /** 1 to 12 of an English month name, short or long; null of anything else. */
 export function monthOfName(text: string): number | null {
   const name = text.toLowerCase().replace(/\.$/, "");
@@ -23,7 +26,7 @@ export function timeOf(cell: string, order: DayOrder | null): Period | null {
   if (iso !== null) return plausible(iso, cell);
   let m: RegExpExecArray | null;
   if ((m = /^(\d{4})[-/](\d{1,2})$/.exec(cell)) || (m = /^(\d{4})[Mm]\s?(\d{1,2})$/.exec(cell)) || (m = /^(\d{4})[:\s]\s?[Mm]?(\d{1,2})$/.exec(cell))) return parsePeriod(`${m[1]}-${m[2].padStart(2, "0")}`);
-  if ((m = /^(\d{1,2})[-/](\d{4})$/.exec(cell))) return parsePeriod(`${m[2]}-${m[1].padStart(2, "0")}`);
+  if ((m = /^(\d{1,2})[-/](\d{4})$/.exec(cell)) || (m = monthPointYear.exec(cell))) return parsePeriod(`${m[2]}-${m[1].padStart(2, "0")}`);
   if ((m = /^(\d{4})[\s:]?-?[Qq]\s?([1-9])$/.exec(cell))) return parsePeriod(`${m[1]}-Q${m[2]}`);
   if ((m = /^[Qq]\s?([1-9])[-\s/]*(\d{4})$/.exec(cell))) return parsePeriod(`${m[2]}-Q${m[1]}`);
   if ((m = /^(\d{4})[\s:]?-?[Ww]\s?(\d{1,2})$/.exec(cell))) return parsePeriod(`${m[1]}-W${m[2].padStart(2, "0")}`);

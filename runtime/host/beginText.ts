@@ -1,16 +1,27 @@
 // The text of a first notebook: an analyst's usual argument about one series, section by section.
 
-export interface Recognised {
+/** What the `load` cell says. */
+export interface LoadText {
   /** Name of the series in the notebook, an identifier. */
   readonly name: string;
   /** The data file, as the notebook names it. */
   readonly file: string;
   /** Column of the values, where the file has several. */
   readonly column: string | null;
+  readonly unit: string | null;
+  /** What comes first in dates, where the file leaves it open. */
+  readonly order: "day-month" | "month-day" | null;
+  /** The rows are numbered, whatever times the file has. */
+  readonly numbered: boolean;
+}
+
+export interface Recognised extends LoadText {
   readonly otherColumns: readonly string[];
   /** Columns of the times. */
   readonly timeColumns: readonly string[];
   readonly every: string | null;
+  /** Days a week with rows, where some never have any; then the rows are numbered. */
+  readonly week: number | null;
   readonly notes: readonly string[];
 }
 
@@ -21,6 +32,8 @@ export interface Plan {
   readonly seasonalDifference: boolean;
   /** Periods a season; 0 where there is none to model. */
   readonly season: number;
+  /** Periods a season for the naive rule: longer ones too. */
+  readonly cycle: number;
   readonly lags: number;
   readonly horizon: number;
   readonly origins: number;
@@ -32,6 +45,7 @@ export interface Section { readonly id: string; readonly text: string; /** Secti
 
 const every: Readonly<Record<string, readonly [one: string, many: string]>> = {
   P1Y: ["year", "years"], P3M: ["quarter", "quarters"], P1M: ["month", "months"], P1W: ["week", "weeks"], P1D: ["day", "days"], PT1H: ["hour", "hours"],
+  PT30M: ["half hour", "half hours"], PT15M: ["quarter of an hour", "quarters of an hour"], PT1M: ["minute", "minutes"],
 };
 
 /** Stands for a number whose digits are chosen when it is known. */
@@ -51,8 +65,17 @@ function cell(head: string, ...options: readonly (string | null)[]): string {
 
 export function periodWords(spacing: string | null): readonly [one: string, many: string] { return every[spacing ?? ""] ?? ["period", "periods"]; }
 
-export function loadCell({ name, file, column }: Pick<Recognised, "name" | "file" | "column">): string {
-  return cell(`load: ${name}`, `file: ${JSON.stringify(file)}`, column === null ? null : `value: ${JSON.stringify(column)}`);
+/** @example spacingWords({ every: "PT1H", ... }) // "one value an hour" */
+export function spacingWords({ every: spacing, week }: Pick<Recognised, "every" | "week">): string {
+  if (week !== null) return `numbered values, ${week} a week`;
+  if (spacing === null) return "numbered values";
+  const [one] = periodWords(spacing);
+  return !(spacing in every) ? `one value every ${spacing}` : `one value ${one.includes(" ") ? "every" : one === "hour" ? "an" : "a"} ${one}`;
+}
+
+export function loadCell({ name, file, column, unit, order, numbered }: LoadText): string {
+  const given = (option: string, text: string | null): string | null => (text === null ? null : `${option}: ${JSON.stringify(text)}`);
+  return cell(`load: ${name}`, given("file", file), given("value", column), given("order", order), given("start", numbered ? "1" : null), given("unit", unit));
 }
 
 export function steadyCell(name: string, plan: Plan, window: string | null): string {
@@ -66,16 +89,16 @@ export function ordersCell(plan: Plan): string {
 
 /** @param title  the notebook's heading */
 export function sections(title: string, data: Recognised, plan: Plan, orders: Orders): readonly Section[] {
-  const { name } = data, [one, many] = periodWords(data.every);
+  const { name } = data, periods = periodWords(data.every), [, many] = periods;
   const season = plan.season > 0 ? `season: {length: ${plan.season}, ar: ${orders.seasonalAr}, ma: ${orders.seasonalMa}}` : null;
-  const rules = [["the value before", `rule.naive(${name})`], ...(plan.season > 0 ? [["one season before", `rule.seasonalNaive(${name}, ${plan.season})`]] : []), ["straight on", `rule.drift(${name})`]];
+  const rules = [["the value before", `rule.naive(${name})`], ...(plan.cycle > 0 ? [["one season before", `rule.seasonalNaive(${name}, ${plan.cycle})`]] : []), ["straight on", `rule.drift(${name})`]];
   return [
     { id: "data", needs: [], text: [
       `# ${title}`, "", `This first notebook was written from \`${data.file}\`. Everything in it can be changed: the text is yours.`, "", "## The data", "",
       loadCell(data), "", `${recognisedWords(data)} The series has [0](=${name}.n) ${many}, from [-](=${name}.start) to [-](<=${name}.times[${name}.n - 1]>).${data.notes.length > 0 ? ` ${data.notes.map(sentence).join(" ")}` : ""}`, "",
       cell("window: sample", `of: ${name}`, `label: "Sample"`), "", "Drag the ends of the window to leave early or late data out; all that follows uses the window.",
     ].join("\n") },
-    { id: "steady", needs: ["data"], text: ["## To stationarity", "", stepsWords(plan, one), "", steadyCell(name, plan, "sample")].join("\n") },
+    { id: "steady", needs: ["data"], text: ["## To stationarity", "", stepsWords(plan, periods), "", steadyCell(name, plan, "sample")].join("\n") },
     { id: "tests", needs: ["steady"], text: [cell("stationarity: tests", "series: steady"), "",
       "The augmented Dickey-Fuller test, whose null hypothesis is a unit root, gives [0.00](=tests.adf.statistic) (p [0.000](=tests.adf.p)); the KPSS test, whose null hypothesis is stationarity, gives [0.00](=tests.kpss.statistic) (p [0.00](=tests.kpss.p))."].join("\n") },
     { id: "shape", needs: ["steady"], text: ["## Autocorrelations", "", cell("correlogram: shape", "series: steady", `lags: ${plan.lags}`), "",
@@ -110,18 +133,31 @@ export function claimsSection(held: readonly { readonly claim: string; readonly 
   return parts.join("\n");
 }
 
-function recognisedWords({ column, otherColumns, timeColumns, every: spacing, file }: Recognised): string {
-  const [one] = periodWords(spacing);
-  const values = column === null ? "the column of values" : `the column \`${column}\``;
-  const times = timeColumns.length === 0 ? "no column of times, so the rows are only numbered" : `times in ${timeColumns.map((name) => `\`${name}\``).join(" and ")}${spacing === null ? "" : `, one value a ${one}${spacing in every ? "" : ` (\`${spacing}\`)`}`}`;
-  const others = otherColumns.length === 0 ? "" : ` It also has ${otherColumns.map((name) => `\`${name}\``).join(", ")}: name one as \`value\` to use it instead.`;
-  return `\`${file}\` has ${times}; ${values} is the series.${others}`;
+const left: Readonly<Record<string, string>> = { steady: "steps", tests: "tests", shape: "autocorrelations", orders: "comparison of orders", fit: "model", diagnostics: "residuals", contest: "comparison with naive rules", forecast: "forecast" };
+
+/** What these data cannot answer, each with the reason. */
+export function leftOutSection(why: ReadonlyMap<string, string>): string {
+  const reasons = [...new Set(why.values())].map((reason) => {
+    const what = [...why].filter(([, each]) => each === reason).map(([id]) => left[id] ?? id);
+    return `- No ${what.length > 1 ? `${what.slice(0, -1).join(", ")} or ${what.at(-1) ?? ""}` : what[0]}: ${sentence(reason)}`;
+  });
+  return ["## Left out", "", "These data do not answer everything that a first notebook asks:", "", ...reasons].join("\n");
 }
 
-function stepsWords({ logs, difference, seasonalDifference, season }: Plan, one: string): string {
+function recognisedWords(data: Recognised): string {
+  const { column, otherColumns, timeColumns, file, week, order } = data, columns = timeColumns.map((name) => `\`${name}\``).join(" and ");
+  const values = column === null ? "the column of values" : `the column \`${column}\``;
+  const times = timeColumns.length === 0 ? "no column of times, so the rows are only numbered" : week === null ? `times in ${columns}, ${spacingWords(data)}`
+    : `dates in ${columns}, and rows for only ${week} days of the week: the rows are numbered, so that a week has ${week} of them and no day without business counts as a gap`;
+  const which = order === null ? "" : ` Its dates may be read with the day or the month first; only with the ${order === "day-month" ? "day" : "month"} first are they evenly spaced, and \`order\` says so.`;
+  const others = otherColumns.length === 0 ? "" : ` It also has ${otherColumns.map((name) => `\`${name}\``).join(", ")}: name one as \`value\` to use it instead.`;
+  return `\`${file}\` has ${times}; ${values} is the series.${which}${others}`;
+}
+
+function stepsWords({ logs, difference, seasonalDifference, season }: Plan, [one, many]: readonly [one: string, many: string]): string {
   const parts: string[] = [];
   if (logs) parts.push("The values swing in proportion to their level, so their logarithms are used.");
-  if (seasonalDifference) parts.push(`The season repeats after ${season} ${one === "period" ? "periods" : `${one}s`}: a difference against the same ${one} one season before takes it out.`);
+  if (seasonalDifference) parts.push(`The season repeats after ${season} ${many}: a difference against the same ${one} one season before takes it out.`);
   if (difference > 0) parts.push(`The level wanders: a difference against the ${one} before takes that out.`);
   if (parts.length === 0) parts.push("The series stands still as it is; no step is needed. Add steps here to try some.");
   parts.push("Forecasts come back through these steps to the units of the data.");

@@ -40,10 +40,15 @@ describe("load reads files as people write them", () => {
     ["semicolons with a decimal point", "m;v\n2019-01;1.25\n2019-02;2.345\n", [1.25, 2.345]],
     ["tabs", "m\tv\n2019-01\t1.5\n2019-02\t-2e3\n", [1.5, -2000]],
     ["bars", "m|v\n2019-01|1\n2019-02|2\n", [1, 2]],
+    ["months with a point between month and year, decimal commas", "m;v\n11.2019;1.230,5\n12.2019;2,25\n", [1230.5, 2.25]],
     ["spaces grouping thousands and a long minus sign", "m;v\n2019-01;1 234,5\n2019-02;−3,5\n", [1234.5, -3.5]],
     ["a quoted decimal comma between commas", "m,v\n2019-01,\"1,5\"\n2019-02,\"2,25\"\n", [1.5, 2.25]],
   ])("%s", async (_, text, values) => {
     expect([...(await one(text)).values]).toEqual(values);
+  });
+  it("a month and its year with a point between them, beside decimal commas", async () => {
+    const s = await one("m;v\n11.2019;1.230,5\n12.2019;2,25\n01.2020;3,5\n");
+    expect([s.every, s.start, ...s.values]).toEqual(["P1M", "2019-11", 1230.5, 2.25, 3.5]);
   });
   it("says how an undecided thousand is read", async () => {
     const s = await one('m,v\n2019-01,"1,234"\n2019-02,"2,345"\n');
@@ -176,6 +181,9 @@ describe("load says in words what is wrong, and where", () => {
     ["a column that is not there", "month,vehicles\n2019-01,1\n", { value: "Vehicles" }, 'has no column "Vehicles": did you mean "vehicles"?'],
     ["another column that is not there", "month,vehicles\n2019-01,1\n", { value: "price" }, 'has no column "price"; its columns are "month", "vehicles"'],
     ["two columns of one name", "month,v,v\n2019-01,1,2\n", { value: "v" }, '2 columns called "v"'],
+    ["a percentage", "month,share\n2019-01,20.3%\n2019-02,21%\n", {}, 'In "share", "20.3%" is no plain number: leave out what is not a digit'],
+    ["sums of money", 'month,fee\n2019-01,"$1,204"\n2019-02,"$1,300"\n', {}, 'In "fee", "$1,204" is no plain number'],
+    ["several series below one another", "month,region,v\n2019-01,north,1\n2019-01,south,2\n2019-02,north,3\n", {}, 'they differ in column "region" ("north", "south"): the file holds several series below one another'],
     ["no numbers", "month,v\n2019-01,a\n2019-02,b\n", {}, "has no column of numbers beside the times"],
     ["more cells than the header", "month,v\n2019-01,1,2\n", {}, "line 2: 3 cells, where the header has 2"],
     ["every without times", "v\n1\n2\n", { every: "month" }, 'start: "2019-01"'],
