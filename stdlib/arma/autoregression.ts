@@ -23,7 +23,7 @@ export function yuleWalker(y: Float64Array, order: number): AutoregressionFit {
   return levinson(order, gamma[0], (phi, m, variance) => {
     let sum = gamma[m];
     for (let i = 1; i < m; i++) sum -= phi[i - 1] * gamma[m - i];
-    return sum / variance;
+    return variance > 0 ? sum / variance : 0;
   });
 }
 
@@ -39,7 +39,7 @@ export function burg(y: Float64Array, order: number): AutoregressionFit & { read
   const fitted = levinson(order, square / n, (_phi, m) => {
     let top = 0, bottom = 0;
     for (let t = m; t < n; t++) { top += forward[t] * backward[t - 1]; bottom += forward[t] ** 2 + backward[t - 1] ** 2; }
-    const k = 2 * top / bottom;
+    const k = bottom > 0 ? 2 * top / bottom : 0;
     let sum = 0;
     for (let t = n - 1; t >= m; t--) {
       const f = forward[t], b = backward[t - 1];
@@ -100,6 +100,7 @@ export function autoregression(numbers: Numbers, method: Exclude<Method, "exact"
   if (method === "leastSquares") {
     const found = autoregressionByLeastSquares(data.y, lags, mean);
     const left = 1 - found.phi.reduce((a, b) => a + b, 0);
+    if (mean && Math.abs(left) < 1e-8) throw new RangeError(`fit: ${word} finds coefficients that add up to 1, so the process has no mean to return to; difference the series, or write mean: false`);
     const size = lags.length + (mean ? 1 : 0);
     const covariance = new Float64Array(size * size);
     found.se.forEach((v, i) => { covariance[i * size + i] = v * v; });
@@ -120,7 +121,7 @@ function solved(phi: Float64Array, sigma2: number, covariance: Float64Array, siz
   return { x: phi, sigma2, converged: true, information: { covariance, robust: null, size, hessian: new Float64Array(0), gradient: new Float64Array(0) } };
 }
 
-function remark(text: string) { return { code: "method", tone: "note" as const, text: `${text} The log-likelihood is the exact one at these estimates.` }; }
+function remark(text: string) { return { code: "method", tone: "note" as const, text }; }
 
 /** sigma2 Gamma^-1 / n with the adjusted variance n / (n - p - 1); columns of the inverse by the recursion's own polynomials
  *  (Gamma^-1 = sum of outer products of the backward predictors, Brockwell & Davis 1991, section 8.2). */

@@ -105,6 +105,6 @@ export function conditionalEstimate(numbers: Numbers): ConditionalSolution {
   return {
     x: Float64Array.from(x), beta: Float64Array.from(beta), innovations: e.fill(NaN, 0, skip), sigma2: value / used, converged: found.converged || size === 0,
     information: { covariance, robust: null, size },
-    notes: [{ code: "conditional", tone: "note", text: `Estimated by conditional least squares: the first ${skip} innovation${skip === 1 ? "" : "s"} count as zero. The log-likelihood is the exact one at these estimates.` }],
+    notes: [{ code: "conditional", tone: "note", text: `Estimated by conditional least squares: innovations before the ${skip > 0 ? `value at place ${skip + 1}` : "sample"} count as zero.` }],
   };
 }

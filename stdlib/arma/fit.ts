@@ -19,6 +19,7 @@ import { numbersOf, parameterCount, type Numbers } from "./numbers.ts";
 import { prepare, type Prepared } from "./prepare.ts";
 import { isStable } from "./region.ts";
 import { assemble, criteria, type Solution } from "./report.ts";
+import { smallerOf } from "./smaller.ts";
 
 export interface FitHow {
   /** False leaves standard errors out (NaN): for grids and rolling refits, where nobody reads them. */
@@ -27,6 +28,8 @@ export interface FitHow {
   readonly residuals?: boolean;
   /** Coefficients phi, Phi, theta, Theta to start from. */
   readonly near?: Float64Array;
+  /** Fits of smaller models to the same series, all else alike: places to start from, in a search through orders. */
+  readonly smaller?: readonly Fit[];
 }
 
 /** Fits phi(B) Phi(B^s) (w - mean) = theta(B) Theta(B^s) e to a series, w its values (after its steps), less the regressors.
@@ -55,7 +58,7 @@ export function fit(options: FitOptions, how: FitHow = {}): Fit {
   };
   const evaluate = evaluator(numbers);
   if (method === "exact" || method === "restricted") {
-    const found = estimate({ shape: prepared.shape, data: numbers.data, held: prepared.held, bridged: numbers.bridged, near: how.near, work, evaluate: filter ? evaluate : undefined });
+    const found = estimate({ shape: prepared.shape, data: numbers.data, held: prepared.held, bridged: numbers.bridged, near: how.near, smaller: method === "exact" && how.smaller && prepared.held.every(Number.isNaN) ? smallerOf(how.smaller) : undefined, work, evaluate: filter ? evaluate : undefined });
     if (!Number.isFinite(found.value)) throw new RangeError(failure(prepared));
     const result = finish(numbers, work, found, evaluate, how);
     if (method === "exact") return result;
@@ -65,7 +68,9 @@ export function fit(options: FitOptions, how: FitHow = {}): Fit {
   const solution = method === "conditional" ? conditionalEstimate(numbers) : autoregression(numbers, method);
   const value = evaluate.value(solution.x);
   const free = Int32Array.from([...prepared.held.keys()].filter(i => Number.isNaN(prepared.held[i])));
-  return assemble({ ...solution, numbers, work, free, stationary: Number.isFinite(value), method, notes: solution.notes });
+  const whole: Solution = { ...solution, numbers, work, free, stationary: Number.isFinite(value), method, notes: [...solution.notes, likelihoodNote(value)] };
+  const result = assemble(whole);
+  return { ...result, notes: [...result.notes, ...flagsOf(result, whole)] };
 }
 
 const RESTRICTED: Note = { code: "restricted", tone: "note", text: "Estimated by restricted maximum likelihood: variance and lag coefficients allow for what the mean and the regressors take from the data. The log-likelihood and the criteria are those of the exact likelihood at these estimates." };
@@ -77,6 +82,12 @@ function restricted(numbers: Numbers): Numbers {
 
 function likelihoodAnd(logLikelihood: number, k: number, n: number): Pick<Fit, "logLikelihood" | "aic" | "aicc" | "bic"> {
   return { logLikelihood, ...criteria(logLikelihood, k, n) };
+}
+
+function likelihoodNote(value: number): Note {
+  return Number.isFinite(value)
+    ? { code: "likelihood", tone: "note", text: "The log-likelihood and the criteria are those of the exact likelihood at these estimates." }
+    : { code: "notStationary", tone: "caution", text: "The estimates lie outside the region of stationarity: there is no exact likelihood and no criterion at them, and nothing can be predicted from them. Difference the series, or use method: \"exact\"." };
 }
 
 function failure(p: Prepared): string {

@@ -60,7 +60,7 @@ type Caution = (code: string, text: string) => void;
 function rootFlags(f: Findings, caution: Caution): void {
   const [ar, sar, ma, sma] = f.prepared.shape.factors.map(part => nearestRoot(part, f.x));
   const season = f.prepared.seasonLength;
-  if (ar < NEAR_UNIT) caution("nearUnitRoot", `An autoregressive root lies at ${digits(ar)}, close to the unit circle: the process hardly returns to a mean. Consider ${f.prepared.lost > 0 ? "another difference" : "differencing"}, and check with the stationarity tests.`);
+  if (ar < NEAR_UNIT) caution("nearUnitRoot", `An autoregressive root lies at ${digits(ar)}, ${ar < 1 ? "inside" : "close to"} the unit circle: the process ${ar < 1 ? "grows without bound" : "hardly returns to a mean"}. Consider ${f.prepared.lost > 0 ? "another difference" : "differencing"}, and check with the stationarity tests.`);
   if (sar < NEAR_UNIT) caution("nearUnitRoot", `A seasonal autoregressive root lies at ${digits(sar)} (in seasons), close to the unit circle: the seasonal pattern is nearly permanent. Consider difference(${season}).`);
   const differenced = f.prepared.lost > 0;
   if (ma < BOUNDARY) caution("overDifferenced", `A moving-average root lies on the unit circle (modulus ${digits(ma)})${differenced ? ": the sign of a difference too many. Fit with one difference fewer, with a mean or a trend instead" : ": the model is not invertible there. The sign of a series that was differenced before it got here, or of a trend or season that should be a regressor"}.`);

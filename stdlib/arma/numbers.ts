@@ -55,14 +55,13 @@ export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   const whole = gaps.length > 0 ? bridge(raw) : raw;
   const w = lost > 0 ? differencedBy(delta, whole) : whole;
   const clean = gaps.length > 0 ? cleanRows(raw, delta) : null;
-  refuseConstant(w, clean, prepared, name, levels.values.subarray(from, to));
+  const size = refuseConstant(w, clean, prepared, name, levels.values.subarray(from, to));
   const free = freeColumns(prepared);
   const differenced = free.map(j => j < 0 ? new Float64Array(w.length).fill(1) : differencedBy(delta, columnsAll[j]));
   const { ols, kept, aliased, rss } = firstRegression(w, differenced, clean, free);
   const rows = Math.max(1, clean === null ? w.length : clean.length);
-  let total = 0;
-  if (kept.length > 0) for (let i = 0; i < rows; i++) { const v = w[clean === null ? i : clean[i]]; total += v * v; }
-  if (kept.length > 0 && rows > kept.length && rss <= 1e-24 * total) throw new RangeError(`fit: ${prepared.names.length > 0 ? "the regressors explain" : "a constant explains"} ${name} exactly${lost > 0 ? " after differencing" : ""}; there is no randomness left to model`);
+  // What rounding leaves of an exact fit: a few units in the last place of the largest value. (A mean alone is refuseConstant's.)
+  if (kept.some(i => free[i] >= 0) && rows > kept.length && rss <= rows * (1e-14 * size) ** 2) throw new RangeError(`fit: the regressors explain ${name} exactly${lost > 0 ? " after differencing" : ""}; there is no randomness left to model`);
   const unit = Math.sqrt(rss / rows) || 1;
   const basis = orthogonalBasis(kept.map(i => differenced[i]), clean);
   const columns = combined(kept.map(i => differenced[i]), basis);
@@ -158,13 +157,18 @@ function cleanRows(raw: Float64Array, delta: Float64Array): number[] {
   return rows;
 }
 
-function refuseConstant(w: Float64Array, clean: readonly number[] | null, p: Prepared, name: string, levels: Float64Array): void {
+/** Beyond this a square, summed over a series, overflows; below its inverse it vanishes. */
+const LARGEST = 1e150;
+
+/** @returns the size of the largest level */
+function refuseConstant(w: Float64Array, clean: readonly number[] | null, p: Prepared, name: string, levels: Float64Array): number {
   const rows = clean === null ? w.length : clean.length;
-  if (rows === 0 || p.held.every(v => !Number.isNaN(v)) && !Number.isNaN(p.heldSigma2)) return;
   let low = Infinity, high = -Infinity, size = 0;
   for (let i = 0; i < rows; i++) { const v = w[clean === null ? i : clean[i]]; if (v < low) low = v; if (v > high) high = v; }
   for (let t = 0; t < levels.length; t++) { const v = Math.abs(levels[t]); if (v > size) size = v; }
-  if (high - low > 4e-15 * size * (1 + p.lost)) return;
+  if (size > LARGEST || (high > low && high - low < 1 / LARGEST)) throw new RangeError(`fit: the values of ${name} are of a size (${short(size > LARGEST ? size : high - low)}) whose squares no number of a computer holds; bring them to another unit first, with a step such as scale(${size > LARGEST ? "1e-200" : "1e200"}, "new unit")`);
+  if (rows === 0 || p.held.every(v => !Number.isNaN(v)) && !Number.isNaN(p.heldSigma2)) return size;
+  if (high - low > 4e-15 * size * (1 + p.lost)) return size;
   throw new RangeError(p.lost > 0
     ? `fit: after differencing, ${name} is ${short((low + high) / 2)} throughout: the levels follow a fixed pattern exactly, and there is no variation left to model`
     : `fit: ${name} is ${short(low)} throughout: a constant series has no variation to model`);

@@ -61,6 +61,39 @@ describe("pathological series give a result or a clear refusal", () => {
     expect(answers({ series: applySteps(series(Float64Array.from({ length: 50 }, (_, t) => 3 + 2 * t)), [{ step: "difference", lag: 1 }]), ar: 1 })).toMatch(/after differencing, flow is 2 throughout/);
   });
 
+  it("fits whole numbers of 1e15 by what varies in them, also beside a trend", () => {
+    const shift = Float64Array.from(noisy, v => Math.round(1000 * v)), high = shift.map(v => 1e15 + v);
+    const t = series(Float64Array.from({ length: 60 }, (_, i) => i));
+    for (const regressors of [{}, { t }] as FitOptions["regressors"][]) {
+      const low = fit({ series: series(shift), ar: 1, regressors }), found = fit({ series: series(high), ar: 1, regressors });
+      // The values are exact; only their mean of 1e15 rounds, to an eighth.
+      expect(Math.abs(found.phi[0] - low.phi[0])).toBeLessThan(1e-3);
+      expect(Math.abs(found.sigma2 / low.sigma2 - 1)).toBeLessThan(1e-3);
+    }
+  });
+
+  it("refuses values whose squares no number holds, and says how to bring them to another unit", () => {
+    expect(answers({ series: series(noisy.map(v => v * 1e300)), ar: 1 })).toMatch(/^fit: the values of flow are of a size .* such as scale\(1e-200/);
+    expect(answers({ series: series(noisy.map(v => v * 1e-200)), ar: 1 })).toMatch(/such as scale\(1e200/);
+  });
+
+  it("says so where another method ends outside the region of stationarity, and gives no likelihood there", () => {
+    const doubling = series(Float64Array.from({ length: 40 }, (_, t) => 2 ** t));
+    for (const method of ["conditional", "leastSquares"] as const) {
+      const found = fit({ series: doubling, ar: 1, method });
+      expect(found.phi[0]).toBeCloseTo(2, 6);
+      expect(found.logLikelihood).toBeNaN();
+      expect(found.notes.find(n => n.code === "notStationary")?.text).toMatch(/no exact likelihood .* Difference the series/);
+    }
+    const signs = series(Float64Array.from({ length: 40 }, (_, t) => t % 2 === 0 ? 1 : -1));
+    for (const method of ["burg", "yuleWalker"] as const) expect(fit({ series: signs, ar: 3, method }).sigma2).toBeGreaterThanOrEqual(0);
+  });
+
+  it("flags what other methods than the exact one find, too", () => {
+    const walk = simulate({ phi: [0.9995] }, 2000, 3);
+    for (const method of ["conditional", "burg", "leastSquares"] as const) expect(fit({ series: walk, ar: 1, method }).notes.map(n => n.code)).toContain("nearUnitRoot");
+  });
+
   it("says how many observations are needed", () => {
     expect(answers({ series: series([1, 3, 2, 5]), ar: 2, ma: 1 })).toMatch(/5 parameters .* 4 observations/);
   });
