@@ -25,7 +25,9 @@ export function estimate(search: Search): Estimate {
   const maximise: Maximise = (small, rounds = 2 * SCOUT) => {
     const own = makeWork(small, data), none = new Float64Array(small.count).fill(NaN);
     const plain: Evaluate = { value: x => valueAt(own, data, x), gradientInto: (x, g) => gradientInto(own, data, x, g) };
-    if (small.count === 0) return Number.isFinite(plain.value(none)) ? { x: none, innovations: own.er, value: own.f, sigma2: own.sigma2 } : null;
+    const known = search.smaller?.of(small);
+    if (known) none.set(known);
+    if (small.count === 0 || known) return Number.isFinite(plain.value(none)) ? { x: none, innovations: own.er, value: own.f, sigma2: own.sigma2 } : null;
     const found = quasiNewton(makeProblem({ ...search, shape: small, held: none }, own, Int32Array.from(none.keys()), plain), startOf(small), 1e-3, rounds);
     return Number.isFinite(plain.value(found.x)) ? { x: found.x, innovations: own.er, value: own.f, sigma2: own.sigma2 } : null;
   };
@@ -40,9 +42,25 @@ export function estimate(search: Search): Estimate {
     return found;
   };
   const run = (x: Float64Array, tolerance = TOLERANCE, rounds?: number) => go(pick(movedInside(shape, withHeld(x, held), held), free), tolerance, rounds);
+  // On a ridge between maxima a search may crawl: it is left when at this pace it would not come as high as the best in four more bursts.
+  const follow = (first: Minimum, rival: number, most: number): Minimum => {
+    let at = first;
+    for (let rounds = 0; rounds < most; rounds += BURST) {
+      const before = at.value;
+      at = go(at, TOLERANCE, BURST);
+      if (at.converged) break;
+      if (at.value > rival && before - at.value < (at.value - rival) / 4) break;
+    }
+    return at;
+  };
   const keep = (found: Minimum) => { if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found; };
   keep(run(search.near ?? acrossGaps(search) ?? startOf(shape)));
   if (best === null) keep(run(new Float64Array(shape.count)));
+  if (search.smaller && best !== null) {
+    // A model is never worse than one that it contains.
+    const x = search.smaller.within(shape), least = (best as Minimum).value;
+    if (x !== null && evaluate.value(x) < least - TOLERANCE) keep(run(x));
+  }
   if (!search.near && search.starts !== "one" && best !== null) {
     const at = full(best, free, held);
     const others = search.evaluate ? [startOf(shape), new Float64Array(shape.count)] : otherStarts(search, at, (best as Minimum).value, suspicious(shape, at, data.n), maximise);
@@ -50,7 +68,7 @@ export function estimate(search: Search): Estimate {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
       const rival = best as Minimum;
-      if (first.value < rival.value + (search.evaluate ? 20 : 3) && apart(first, rival)) keep(go(first, TOLERANCE, shape.count > 6 ? LATER : undefined));
+      if (first.value < rival.value + (search.evaluate ? 20 : 3) && apart(first, rival)) keep(follow(first, rival.value, shape.count > 6 ? LATER : MOST));
     }
   }
   if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
@@ -70,6 +88,9 @@ const TOLERANCE = 1e-9;
 
 /** Most steps for a later start of a large model that looked promising: on a ridge between maxima more would not be noticed. */
 const LATER = 60;
+
+/** Most steps of any other, and steps between two looks at its progress. */
+const MOST = 150, BURST = 10;
 
 /** Steps given to a start before it is compared with the best so far. */
 const SCOUT = 8;

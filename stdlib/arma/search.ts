@@ -2,6 +2,7 @@
 
 import type { Data, Work } from "./work.ts";
 import type { Shape } from "./shape.ts";
+import type { Smaller } from "./smaller.ts";
 
 export interface Estimate {
   /** phi, Phi, theta, Theta. */
@@ -26,6 +27,8 @@ export interface Search {
   readonly bridged: Float64Array;
   /** Coefficients to start from instead of a regression, when they are known to be near. */
   readonly near?: Float64Array;
+  /** Maxima of smaller models that are known already. */
+  readonly smaller?: Smaller;
   readonly work?: Work;
   readonly evaluate?: Evaluate;
   /** "one": the first start only. */

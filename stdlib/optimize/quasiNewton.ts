@@ -61,7 +61,7 @@ export function quasiNewton(problem: Problem, start: Float64Array | Minimum, tol
       const guess = Number.isFinite(fNew) && curve > 0 ? -slope * step * step / curve : 0;
       step = Math.min(0.5 * step, Math.max(0.1 * step, guess));
     }
-    if (!(fNew <= f) || tries === 40) {
+    if (!(fNew < f) || tries === 40) {
       // No descent left along this direction: try once more with fresh curvature, then accept what rounding allows.
       problem.value(Float64Array.from(x));
       passes++;

@@ -38,4 +38,13 @@ describe("quasiNewton", () => {
   it("says that it did not converge where it starts outside", () => {
     expect(quasiNewton(problemOf(1, () => Infinity, () => [0]), Float64Array.of(1))).toMatchObject({ converged: false, passes: 1 });
   });
+
+  it("goes on from where it stopped, with what it has learnt", () => {
+    const { problem, start } = table[1], whole = quasiNewton(problem, Float64Array.from(start), 1e-14);
+    const first = quasiNewton(problem, Float64Array.from(start), 1e-14, 8), rest = quasiNewton(problem, first, 1e-14);
+    expect(first.converged).toBe(false);
+    expect(rest.converged).toBe(true);
+    expect([...rest.x]).toEqual([...whole.x]);
+    expect(first.passes + rest.passes).toBe(whole.passes);
+  });
 });
