@@ -38,7 +38,7 @@ function questions(result: Diagnostics): readonly Question[] {
     { asked: "Can the past still predict them?", tests: [result.ljungBox, result.monti], found: "yes, beyond chance", notFound: "no sign of it", remedy: "add a term at the lags that stand out" },
     { asked: "Does a rhythm remain?", tests: [result.cumulativePeriodogram], found: "yes, at some frequency", notFound: "no sign of it", remedy: "look for a season that the model lacks" },
     { asked: "Does their spread change?", tests: [result.archLM, result.mcleodLi], found: "yes, large ones cluster", notFound: "no sign of it", remedy: "a log or Box-Cox step; the bands are too narrow at times, too wide at others" },
-    { asked: "Does their level move?", tests: [result.cusum, result.break], found: "yes, it shifts", notFound: "no sign of it", remedy: "a levelShift regressor at the date, or a shorter window" },
+    { asked: "Does their level move?", tests: [result.cusum, result.break], found: "yes, it shifts", notFound: "no sign of it", remedy: `${result.break.at === undefined ? "a levelShift regressor at the date" : `levelShift("${result.break.at}") as a regressor`}, or a shorter window` },
     { asked: "Are they shaped like a normal distribution?", tests: [result.jarqueBera], found: "no: skewed or heavy-tailed", notFound: "nothing against it", remedy: "look at the largest ones; bands: \"simulated\" resamples them" },
   ];
 }
@@ -62,7 +62,7 @@ function questionTable(result: Diagnostics): TablePart {
 function evidence(test: Test): string {
   const name = test.name ?? "test";
   if (test.status === "unavailable" || Number.isNaN(test.p)) return `${name}: ${test.note ?? "not available"}`;
-  return `${name} ${figure(test.statistic, 3)}${test.df === undefined || test.df === null ? "" : ` on ${test.df} df`}, ${pText(test.p, test.bound)}`;
+  return `${name} ${figure(test.statistic, 3)}${test.df === undefined || test.df === null ? "" : ` on ${test.df} df`}, ${pText(test.p, test.bound).replace(/ /g, "\u00a0")}`; // kept on one line
 }
 
 function pValuePart(result: Diagnostics): ChartPart {

@@ -32,15 +32,17 @@ export function residualChart(title: string, alt: string, standardised: Series, 
         { data: { name: "limits" }, mark: { type: "rule", style: "limit" }, encoding: { y: { ...y, field: "at" } } },
         { data: { name: "residuals" }, mark: { type: "rule", style: "mark", strokeWidth: 1, size: 1 }, encoding: { x, y: { ...y, field: "zero" }, y2: { field: "value" } } },
         { data: { name: "large" }, mark: { type: "point", style: "outside", shape: "diamond", filled: true, size: 62, opacity: 1 }, encoding: { x, y, tooltip: [{ field: "name", title: "period" }, { field: "value", type: "quantitative", title: "residual", format: ".2f" }] } },
-        { data: { name: "named" }, mark: { type: "text", style: "label", align: "center" }, encoding: { x, y: { ...y, field: "above" }, text: { field: "name", type: "nominal" } } },
+        // Text stands beyond the mark by a distance in pixels, on the side away from zero, whatever the scale.
+        ...[{ up: true, baseline: "bottom", dy: -7 }, { up: false, baseline: "top", dy: 8 }].map(({ up, baseline, dy }) => ({
+          data: { name: "named" }, transform: [{ filter: { field: "up", equal: up } }], mark: { type: "text", style: "label", align: "center", baseline, dy }, encoding: { x, y, text: { field: "name", type: "nominal" } },
+        })),
       ],
     },
     data: {
       limits: { at: [-limit, limit] },
       residuals: { time: pickNumbers(ms, kept), value: pickNumbers(standardised.values, kept), zero: new Float64Array(kept.length) },
       large: { time: large.map(one => ms[one.index]), value: large.map(one => one.value), name: large.map(one => one.time) },
-      // Text stands beyond the mark, on the side away from zero.
-      named: { time: named.map(one => ms[one.index]), above: named.map(one => one.value + Math.sign(one.value) * 0.45), name: named.map(one => one.time) },
+      named: { time: named.map(one => ms[one.index]), value: named.map(one => one.value), up: named.map(one => one.value > 0), name: named.map(one => one.time) },
     },
     full: { residuals: { time: pick(standardised.times, standardised.times.map((_, i) => i)), value: standardised.values } },
   };

@@ -84,11 +84,13 @@ export function* checking({ model, lags: asked, level = 0.95 }: DiagnosticsOptio
   const tested = short
     ? { ljungBox: tooShort(n), boxPierce: tooShort(n), monti: tooShort(n) }
     : { ljungBox: ljungBox(model, lags, undefined, level), boxPierce: boxPierce(model, lags, undefined, level), monti: monti(model, lags, undefined, level) };
-  yield { done: 0, total: 0, what: "portmanteau tests" };
+  yield { done: 1, total: 3, what: "portmanteau tests" };
   const tests = { ...tested, jarqueBera: jarqueBera(model, level), archLM: archLM(model, undefined, level), mcleodLi: short ? tooShort(n) : mcleodLi(model, undefined, level),
     cumulativePeriodogram: cumulativePeriodogram(model, 0, level), cusum: cusum(model, level), break: largestBreak(model, 0.15, level) };
-  yield { done: 0, total: 0, what: "tests of the residuals" };
-  const found = yield* searchingOutliers(model);
+  const searching = searchingOutliers(model);
+  let search = searching.next();
+  for (; !search.done; search = searching.next()) yield { done: 2, total: 3, what: "search for outliers" };
+  const found = search.value;
   const { verdict, sentence } = summary(tests, found, outsideOf(r), lags, 1 - level, band, r);
   return {
     label: model.label, status: verdict === "unavailable" ? "unavailable" : "ok", ...tests, durbinWatson: durbinWatson(model), outliers: found,

@@ -34,7 +34,7 @@ describe("diagnostics", () => {
     expect(parts.slice(0, 2).map(p => p.part)).toEqual(["text", "table"]);
     const table = parts[1] as TablePart;
     expect(table.rows.map(row => row[0])).toEqual(["Can the past still predict them?", "Does a rhythm remain?", "Does their spread change?", "Does their level move?", "Are they shaped like a normal distribution?"]);
-    expect(String(table.rows[0][2])).toMatch(/^Ljung-Box Q [\d.]+ on \d+ df, p [=<] /);
+    expect(String(table.rows[0][2])).toMatch(/^Ljung-Box Q [\d.]+ on \d+ df, p\u00a0[=<]\u00a0/);
   });
   test("draws p-values across lags, residuals in time, correlations, quantiles, rhythm and running sum", async () => {
     const parts = diagnostics.show(await run({ model: seasonal(madeSeries()) }), show);
@@ -64,6 +64,9 @@ describe("diagnostics", () => {
     const inTime = charts(parts)[0];
     expect(inTime.alt).toContain("2023-01");
     expect((await drawnCharts([inTime]))[0]).toContain("2023-01");
+    // Names stand clear of their marks by pixels, whatever the scale: below where the residual is below zero.
+    const names = (inTime.spec.layer as { data: { name: string }; mark: { dy: number }; transform: [{ filter: { equal: boolean } }] }[]).filter(layer => layer.data.name === "named");
+    expect(names.map(layer => [layer.transform[0].filter.equal, Math.sign(layer.mark.dy)])).toEqual([[true, -1], [false, 1]]);
     const events = parts.find((p): p is TablePart => p.part === "table" && p.title === "Single events that stand out")!;
     const found = events.rows.find(row => row[0] === "2023-01")!;
     expect(found[1]).toBe("one period off");
@@ -71,6 +74,12 @@ describe("diagnostics", () => {
     expect(texts(parts)).toContain('for copying: regressors: {event1: pulse("2023-01")');
     // A third of the value is log(1/3) = -1.10 on the scale of the model.
     expect(found[2] as number).toBeCloseTo(-1.1, 1);
+  });
+  test("names the date of a new level among what to try", async () => {
+    const series = madeSeries(96), shifted = makeSeries({ name: series.name, unit: series.unit, every: series.every, start: series.start, values: series.values.map((v, t) => t >= 60 ? v * 1.3 : v) });
+    const result = await run({ model: estimate({ series: stepped(shifted, [{ step: "log" }, { step: "detrend", degree: 1 }]), ar: 1 }) });
+    const table = diagnostics.show({ ...result, cusum: { ...result.cusum, p: 0.001 } }, show)[1] as TablePart;
+    expect(table.rows[3][3]).toBe(`levelShift("${result.break.at}") as a regressor, or a shorter window`);
   });
   test("draws a model of a numbered series without dates", async () => {
     const series = makeSeries({ name: "x", values: madeSeries().values });
