@@ -33,8 +33,8 @@ export interface EstimatesOptions {
 
 /** Every so many periods of the calendar a search starts from nothing (an anchor), and the ones after it start from what it
  *  found. So an estimate hangs on the data up to its origin alone, not on which other origins were asked for, and serves again
- *  when these change. A start from nothing costs one to eight times one from nearby. */
-const anchorEvery = 12;
+ *  when these change. A start from nothing costs up to eight times one from nearby: anchors are few. */
+const anchorEvery = 24;
 /** The share of an origin's data that its anchor must have had to be a start worth taking. */
 const leastShare = 0.75;
 

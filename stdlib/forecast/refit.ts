@@ -13,16 +13,17 @@ import { isRule, ruleFor } from "./rules.ts";
 export type RefitHow = "fresh" | "refit" | "held";
 
 /** The same model for another series.
- *  @param series  on the modelled scale with the model's steps; or in data units, and the steps are applied to it */
-export function refit(model: Forecaster, series: Series, how: RefitHow = "refit"): Forecaster {
+ *  @param series  on the modelled scale with the model's steps; or in data units, and the steps are applied to it
+ *  @param kept    `residuals: false` leaves those of a fit out, where it is estimated anew */
+export function refit(model: Forecaster, series: Series, how: RefitHow = "refit", kept: { readonly residuals?: boolean } = {}): Forecaster {
   const own = model.series.steps;
   const stepped = series.steps.length === 0 && own.length > 0 ? applySteps(series, own.map(stepOf)) : series;
   if (!isRule(model)) {
-    if (how === "fresh") return { ...fit({ ...model.options, series: stepped, window: undefined }, { standardErrors: false }), label: model.label };
-    return how === "held" ? filterWith(model, stepped) : fitAt(model, stepped);
+    if (how === "fresh") return { ...fit({ ...model.options, series: stepped, window: undefined }, { ...kept, standardErrors: false }), label: model.label };
+    return how === "held" ? filterWith(model, stepped) : fitAt(model, stepped, kept);
   }
   if (model.rule !== "combine") return ruleFor(model, stepped, how);
-  const members = (model.members ?? []).map((member) => refit(member, series, how));
+  const members = (model.members ?? []).map((member) => refit(member, series, how, kept));
   return { ...model, series: members[0].series, members };
 }
 
@@ -34,7 +35,7 @@ export interface Stretch {
   readonly data?: Series;
 }
 
-/** A model for a stretch of the data that `source` was made from.
+/** A model for a stretch of the data that `source` was made from; its residuals are left out, since nobody reads those of many origins.
  *  @param parameters  where the search starts ("refit"), or what is kept ("held"): the model itself, or an earlier refit of it */
 export function refitBetween(source: Forecaster, { from, to, how, data }: Stretch, parameters: Forecaster = source): Forecaster {
   if (isRule(source) && source.rule === "combine") {
@@ -42,5 +43,5 @@ export function refitBetween(source: Forecaster, { from, to, how, data }: Stretc
     const members = (source.members ?? []).map((member, i) => refitBetween(member, { from, to, how, data }, given?.[i] ?? member));
     return { ...source, series: members[0].series, members };
   }
-  return refit(parameters, between(reachOf(source, data), from, to), how);
+  return refit(parameters, between(reachOf(source, data), from, to), how, { residuals: false });
 }
