@@ -2,6 +2,8 @@
 
 import { parseArgs } from "node:util";
 import { CannotRun } from "./io.ts";
+import { usualLimits } from "./within.ts";
+import type { Limits } from "./within.ts";
 
 export interface Setting { readonly name: string; readonly value: unknown }
 
@@ -9,15 +11,16 @@ export type Command =
   | { readonly command: "help" } | { readonly command: "version" }
   | { readonly command: "begin"; readonly file: string; readonly out: string | null }
   | { readonly command: "open"; readonly file: string; readonly port: number | null }
-  | { readonly command: "verify"; readonly file: string; readonly json: boolean; readonly accept: boolean; readonly settings: readonly Setting[]; readonly allowCode: boolean }
-  | { readonly command: "page"; readonly file: string; readonly settings: readonly Setting[]; readonly allowCode: boolean; readonly out: string | null };
+  | { readonly command: "verify"; readonly file: string; readonly json: boolean; readonly accept: boolean; readonly settings: readonly Setting[]; readonly allowCode: boolean; readonly limits: Limits }
+  | { readonly command: "page"; readonly file: string; readonly settings: readonly Setting[]; readonly allowCode: boolean; readonly limits: Limits; readonly out: string | null };
 
 const options = {
   help: { type: "boolean", short: "h" }, version: { type: "boolean" }, json: { type: "boolean" }, accept: { type: "boolean" },
   set: { type: "string", multiple: true }, "allow-code": { type: "boolean" }, out: { type: "string" }, port: { type: "string" },
+  seconds: { type: "string" }, megabytes: { type: "string" },
 } as const;
 
-const takes: Readonly<Record<string, readonly string[]>> = { begin: ["out"], open: ["port"], verify: ["json", "accept", "set", "allow-code"], page: ["set", "allow-code", "out"] };
+const takes: Readonly<Record<string, readonly string[]>> = { begin: ["out"], open: ["port"], verify: ["json", "accept", "set", "allow-code", "seconds", "megabytes"], page: ["set", "allow-code", "out", "seconds", "megabytes"] };
 
 /** @throws CannotRun where the line makes no command */
 export function readArguments(argv: readonly string[]): Command {
@@ -35,10 +38,11 @@ export function readArguments(argv: readonly string[]): Command {
   const settings = (values.set ?? []).map(readSetting), allowCode = values["allow-code"] ?? false, out = values.out ?? null;
   if (command === "begin") return { command, file, out };
   if (command === "open") return { command, file, port: values.port === undefined ? null : readPort(values.port) };
-  if (command === "page") return { command, file, settings, allowCode, out };
+  const limits = { seconds: readLimit("seconds", values.seconds, 86_400), megabytes: readLimit("megabytes", values.megabytes, 1_048_576) };
+  if (command === "page") return { command, file, settings, allowCode, limits, out };
   const accept = values.accept ?? false;
   if (accept && settings.length > 0) throw new CannotRun("--accept writes numbers into the text as its own settings give them, so it does not go with --set. Change the control's `at` in the text instead.");
-  return { command: "verify", file, json: values.json ?? false, accept, settings, allowCode };
+  return { command: "verify", file, json: values.json ?? false, accept, settings, allowCode, limits };
 }
 
 function parsed(argv: readonly string[]) {
@@ -63,6 +67,12 @@ export function readSetting(typed: string): Setting {
   } catch {
     return { name, value: text };
   }
+}
+
+function readLimit(name: keyof Limits, typed: string | undefined, most: number): number {
+  const given = typed === undefined ? usualLimits[name] : Number(typed);
+  if (typed !== undefined && (!/^\d+(\.\d+)?$/.test(typed) || given <= 0 || given > most)) throw new CannotRun(`--${name} ${typed}: give a number above 0, up to ${most}.`);
+  return given;
 }
 
 function readPort(typed: string): number {

@@ -1,5 +1,5 @@
 // The one door to the bundler: makes of the source everything that is shipped, in the folder `.build`.
-//   engine, cells and stdlib  ->  a worker's text  ->  inside the page's text  ->  inside the frame's document
+//   engine, cells and stdlib  ->  a worker's text  ->  beside the page's script in the frame's document
 //   the desk                  ->  desk.js, desk.css, desk.html
 //   the command               ->  lagbook.js, and pieces that it loads when they are needed
 
@@ -30,8 +30,8 @@ export async function bundle(top: string): Promise<readonly Built[]> {
 
 async function frame(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
   const engine = await text(from("host/engineWorker.ts"), { define: { ...define, requestAnimationFrame: "lagbookSoon" }, inject: [from("host/soon.ts")], conditions: ["worker"] });
-  const page = await text(from("page/entry.ts"), { define: { ...define, LAGBOOK_ENGINE: JSON.stringify(engine) } });
-  await writeFile(join(out, "frame.html"), frameDocument(page));
+  const page = await text(from("page/entry.ts"), { define });
+  await writeFile(join(out, "frame.html"), frameDocument(page, engine));
 }
 
 async function desk(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
@@ -45,7 +45,7 @@ async function command(from: (path: string) => string, define: Record<string, st
   // Pieces bear a hash of their content: those of an earlier build would stay for ever.
   await rm(join(out, "pieces"), { recursive: true, force: true });
   await build({
-    entryPoints: [from("host/lagbook.ts")], outdir: out, chunkNames: "pieces/[name]-[hash]", bundle: true, splitting: true, format: "esm", platform: "node", target: "node20",
+    entryPoints: [from("host/lagbook.ts"), from("host/computing.ts")], outdir: out, chunkNames: "pieces/[name]-[hash]", bundle: true, splitting: true, format: "esm", platform: "node", target: "node20",
     minify: true, keepNames: false, legalComments: "none", loader: { ".css": "text" }, define: { ...define, LAGBOOK_BUNDLED: "true" }, logLevel: "warning",
     // Packages written for `require` ask for Node's own modules by it, and for the name of their file.
     banner: { js: "#!/usr/bin/env node\nimport { createRequire as lagbookRequire } from \"node:module\"; import { fileURLToPath as lagbookPath } from \"node:url\"; const require = lagbookRequire(import.meta.url), __filename = lagbookPath(import.meta.url);" },

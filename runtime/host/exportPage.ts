@@ -11,25 +11,26 @@ import type { Setting } from "./arguments.ts";
 import { exportDocument, pack } from "./exportDocument.ts";
 import type { Provenance } from "./exportDocument.ts";
 import { hash } from "./hash.ts";
-import { compute } from "./headless.ts";
 import type { Computed } from "./headless.ts";
 import { exit } from "./io.ts";
 import type { Io } from "./io.ts";
 import { readPart } from "./parts.ts";
 import { readNotebook } from "./store.ts";
 import { version } from "./version.ts";
+import { computeWithin } from "./within.ts";
+import type { Limits } from "./within.ts";
 import { writeWhole } from "./write.ts";
 
 /** Pixels that a figure takes across in the still page. */
 const figureWidth = 700;
 
-export interface PageCommand { readonly file: string; readonly settings: readonly Setting[]; readonly allowCode: boolean; readonly out: string | null }
+export interface PageCommand { readonly file: string; readonly settings: readonly Setting[]; readonly allowCode: boolean; readonly limits: Limits; readonly out: string | null }
 
 /** @returns 0; 1 where a cell failed, a claim broke or a number moved: the page is written all the same and shows it */
 export async function exportPage(command: PageCommand, io: Io): Promise<number> {
   const path = resolve(io.cwd, command.file), out = command.out === null ? join(dirname(path), `${basename(path, extname(path))}.html`) : resolve(io.cwd, command.out);
   const stored = await readNotebook(path);
-  const computed = await compute({ text: stored.text, folder: dirname(path), settings: command.settings, allowCode: command.allowCode, width: figureWidth });
+  const computed = await computeWithin({ text: stored.text, notebook: basename(path), folder: dirname(path), settings: command.settings, allowCode: command.allowCode, width: figureWidth }, command.limits);
   const state = stateAfter(computed.messages);
   const still = renderStill(state, await stillCharts(state, figureWidth));
   const [frame, shell, pageCss] = await Promise.all([readPart("frame.html"), readPart("shell.js"), readPart("page.css")]);

@@ -2,7 +2,7 @@
 
 import { language } from "../../cells/index.ts";
 import { createEngine } from "../engine/engine.ts";
-import type { Engine } from "../engine/engine.ts";
+import type { Engine, EngineHost } from "../engine/engine.ts";
 import type { CellReport, FromEngine, NumberReport } from "../engine/messages.ts";
 import { resultOf } from "../engine/result.ts";
 import type { VerifyResult } from "../engine/result.ts";
@@ -33,15 +33,22 @@ export interface Computed {
   readonly files: ReadonlyMap<string, { readonly bytes: Uint8Array } | { readonly reason: string }>;
 }
 
+export interface ComputeOptions {
+  /** Runs the code of a script, where that is allowed. */
+  readonly importCode?: NonNullable<EngineHost["importCode"]>;
+  /** Told what the engine says, as it says it. */
+  readonly heard?: (message: FromEngine) => void;
+}
+
 /** Computes everything and waits until it stands.
  *  @throws CannotRun where a setting names no control, or one that cannot take it */
-export async function compute(task: Task): Promise<Computed> {
+export async function compute(task: Task, { importCode = runScript, heard }: ComputeOptions = {}): Promise<Computed> {
   const files = new Map<string, { readonly bytes: Uint8Array } | { readonly reason: string }>();
   const messages: FromEngine[] = [];
   const engine = createEngine(language, {
     read: (file) => readAndKeep(task.folder, file, files),
-    send: (message) => { messages.push(message); },
-    importCode: runScript,
+    send: (message) => { messages.push(message); heard?.(message); },
+    importCode,
   }, { allowCode: task.allowCode, ...(task.width === undefined ? {} : { width: task.width }) });
   try {
     engine.setText(task.text);
