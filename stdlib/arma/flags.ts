@@ -83,7 +83,7 @@ function cancellation(f: Findings, caution: Caution): void {
         if (gap < least) { least = gap; at = Math.hypot(a.re[s], a.im[s]); }
       }
     }
-    if (least < CANCEL) caution("nearCancelling", `A ${word}autoregressive and a ${word}moving-average factor nearly cancel (inverse roots ${least.toFixed(3)} apart, near ${at.toFixed(2)}): the data cannot tell them from none. Drop one ${word}lag on each side.`);
+    if (least < CANCEL) caution("nearCancelling", `${word ? "A seasonal" : "An"} autoregressive and a ${word}moving-average factor nearly cancel (inverse roots ${least.toFixed(3)} apart, near ${at.toFixed(2)}): the data cannot tell them from none. Drop one ${word}lag on each side.`);
   }
 }
 

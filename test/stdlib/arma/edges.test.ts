@@ -233,6 +233,16 @@ describe("laws of the likelihood", () => {
     expect(Number.isFinite(estimated.se.phi[0])).toBe(true);
   });
 
+  it("gives no robust standard error for a regressor that acts in a few periods: it fits their residuals away", () => {
+    const monthly = series(base.values, "P1M", "2012-01"), at = levelShift("2018-01");
+    const shift = fit({ series: monthly, ar: 1, regressors: { shift: at } });
+    expect(Number.isFinite(shift.seRobust.beta.shift)).toBe(true);
+    // The same shift after a difference is a single pulse.
+    const differenced = fit({ series: applySteps(monthly, [{ step: "difference", lag: 1 }]), ma: 1, regressors: { shift: at } });
+    expect(differenced.seRobust.beta.shift).toBeNaN();
+    expect(Number.isFinite(differenced.se.beta.shift)).toBe(true);
+  });
+
   it("robust and usual standard errors agree for a correct model and many values", () => {
     const many = fit({ series: simulate({ phi: [0.5], theta: [0.3] }, 20_000, 5), ar: 1, ma: 1 });
     expect(Math.abs(many.seRobust.phi[0] / many.se.phi[0] - 1)).toBeLessThan(0.05);
