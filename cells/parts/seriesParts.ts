@@ -20,8 +20,10 @@ export function seriesParts(value: Series | Readonly<Record<string, Series>>, co
 
 /** A series as a line in time. */
 export function seriesChart(series: Series, context: ShowContext): Part {
-  const axis = axisTitle(series);
-  return timePlot({ title: capital(axis), alt: seriesSentence(series), axis, width: context.width, lines: [{ label: series.name, series, style: "sample" }] });
+  const title = axisTitle(series);
+  // A long name beside the axis would take the picture's own height; it stands above the picture anyway.
+  const axis = title.length > 28 ? series.unit : title;
+  return timePlot({ title: capital(title), alt: seriesSentence(series), axis, width: context.width, lines: [{ label: series.name, series, style: "sample" }] });
 }
 
 /** "Crossings, every month from 2010-01 to 2024-12: 180 values between 3,912 and 12,044 vehicles, the first 4,789, the last 9,120; 2 missing." */

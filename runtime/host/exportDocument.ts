@@ -73,6 +73,7 @@ const shellCss = `
 #made thead th { font-size: 12px; }
 #made .hash { font-family: "DejaVu Sans Mono", "Liberation Mono", Menlo, Consolas, monospace; font-size: 11px; overflow-wrap: anywhere; }
 #made p { margin: 2px 0; }
+#made td:not(.hash), #made tbody th { white-space: nowrap; }
 @media screen {
   html.live, html.live body { height: 100%; margin: 0; overflow: hidden; }
   html.live body { display: flex; flex-direction: column; }

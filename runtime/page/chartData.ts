@@ -64,7 +64,7 @@ export function columnsTable(sets: Readonly<Record<string, Columns>>): { readonl
 export function csv(columns: readonly string[], rows: TablePart["rows"]): string {
   const cell = (value: number | string | boolean | null): string => {
     if (value === null || (typeof value === "number" && Number.isNaN(value))) return "";
-    const text = String(value);
+    const text = Object.is(value, -0) ? "-0" : String(value);
     return /[",\r\n]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text;
   };
   return `${[columns, ...rows].map((row) => row.map(cell).join(",")).join("\r\n")}\r\n`;

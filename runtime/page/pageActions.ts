@@ -61,9 +61,10 @@ export function pageActions(hands: PageHands): Actions & { reveal(position: numb
     if (!part || (part.part !== "chart" && part.part !== "table")) return;
     const words = part.title ?? "table";
     if (as === "csv") { saveBytes(fileName(words, "csv"), "text/csv", new TextEncoder().encode(part.part === "chart" ? chartCsv(part) : tableCsv(part))); return; }
+    if (part.part !== "chart") return;
     const drawn = await charts.svg(key);
     if (drawn === null) { announce("The picture is not drawn yet."); return; }
-    const svg = standaloneSvg(drawn, root);
+    const svg = standaloneSvg(drawn, part, root);
     if (as === "svg") saveBytes(fileName(words, "svg"), "image/svg+xml", new TextEncoder().encode(svg));
     else saveBytes(fileName(words, "png"), "image/png", await pngOf(svg, 2));
   }

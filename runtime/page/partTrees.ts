@@ -44,8 +44,11 @@ export function equationTree(part: EquationPart): Tree {
   const math = mathTree(part.tex, true);
   return h("div", { class: "part part-equation" },
     part.title ? h("p", { class: "part-title" }, part.title) : null,
-    h("div", { class: "equation", tabindex: 0, role: "group", "aria-label": part.title ?? "equation" }, math.tag === "math" ? { ...math, attributes: { ...math.attributes, "aria-label": part.text } } : h("code", {}, part.text)));
+    h("div", { class: "equation", style: `--signs:${longestLine(part.tex)}`, tabindex: 0, role: "group", "aria-label": part.title ?? "equation" }, math.tag === "math" ? { ...math, attributes: { ...math.attributes, "aria-label": part.text } } : h("code", {}, part.text)));
 }
+
+/** Signs in the longest line of an equation, commands counting as one: what its width on paper hangs on. */
+const longestLine = (tex: string): number => Math.max(1, ...tex.split("\\\\").map((line) => line.replace(/\\[a-zA-Z]+/g, "x").replace(/[{}_^&\s]/g, "").length));
 
 export function textTree(part: TextPart): Tree {
   const tone = part.tone ?? "plain";

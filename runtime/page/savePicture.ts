@@ -1,12 +1,37 @@
 // A drawn chart as a file of its own: SVG with real colours, or PNG.
 
-/** Puts the page's present colours in place of its variables, on the page's present ground. */
-export function standaloneSvg(svg: string, from: Element): string {
-  const style = getComputedStyle(from);
-  const resolved = svg.replace(/var\((--[\w-]+)\)/g, (_, name: string) => style.getPropertyValue(name).trim() || "currentColor");
-  const ground = style.getPropertyValue("--ground").trim() || "#fff";
-  return resolved.replace(/<svg ([^>]*)>/, (tag) => `${tag}<rect width="100%" height="100%" fill="${ground}"/>`);
+import type { ChartPart } from "../../cells/parts/part.ts";
+
+/** The drawn picture with its title above it, as a file that needs no page: the page's present colours and ground, and the
+ *  sentence that says what it shows for whoever cannot see it. */
+export function standaloneSvg(svg: string, { title, alt }: Pick<ChartPart, "title" | "alt">, from: Element): string {
+  const style = getComputedStyle(from), colour = (name: string, other: string): string => style.getPropertyValue(name).trim() || other;
+  return titledSvg(svg.replace(/var\((--[\w-]+)\)/g, (_, name: string) => colour(name, "currentColor")), { title, alt, ground: colour("--ground", "#fff"), ink: colour("--ink", "#000") });
 }
+
+const lineHeight = 18, signWidth = 7;
+
+/** @param svg  with width and height in pixels */
+export function titledSvg(svg: string, { title, alt, ground, ink }: { readonly title: string; readonly alt: string; readonly ground: string; readonly ink: string }): string {
+  const size = (name: string): number => Number(new RegExp(`^<svg [^>]*\\b${name}="([\\d.]+)`).exec(svg)?.[1]);
+  const width = size("width"), lines = wrapped(title, Math.floor((width - 16) / signWidth)), above = lines.length * lineHeight + 12;
+  const words = lines.map((line, i) => `<text x="8" y="${(i + 1) * lineHeight}" font-family="Source Sans 3, Noto Sans, Segoe UI, Roboto, Helvetica Neue, Arial, sans-serif" font-size="13" font-weight="600" fill="${ink}">${escaped(line)}</text>`);
+  return `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${size("height") + above}" viewBox="0 0 ${width} ${size("height") + above}" role="img"><title>${escaped(title)}</title><desc>${escaped(alt)}</desc>`
+    + `<rect width="100%" height="100%" fill="${ground}"/>${words.join("")}${svg.replace(/^<svg /, `<svg y="${above}" `)}</svg>`;
+}
+
+/** A text in lines of at most so many signs, broken between words. */
+function wrapped(text: string, most: number): readonly string[] {
+  const lines: string[] = [];
+  for (const word of text.split(" ")) {
+    const last = lines.at(-1);
+    if (last !== undefined && last.length + 1 + word.length <= most) lines[lines.length - 1] = `${last} ${word}`;
+    else lines.push(word);
+  }
+  return lines;
+}
+
+const escaped = (text: string): string => text.replace(/[&<>"]/g, (sign) => `&#${sign.charCodeAt(0)};`);
 
 /** @param scale pixels of the picture per CSS pixel */
 export async function pngOf(svg: string, scale: number): Promise<Uint8Array> {
