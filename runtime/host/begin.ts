@@ -98,7 +98,7 @@ function failing(kept: readonly Section[], cells: readonly CellReport[], numbers
   for (const section of kept) {
     const to = from + section.text.length, inside = (each: { readonly from: number }): boolean => each.from >= from && each.from < to;
     const bad = cells.find((cell) => inside(cell) && cell.state === "failed") ?? numbers.find((number) => inside(number) && number.state === "undecided" && !cells.some((cell) => cell.state === "failed"));
-    if (bad !== undefined) found.set(section.id, bad.message ?? "a cell failed");
+    if (bad !== undefined) found.set(section.id, (bad.message ?? "a cell failed").replace(/^Undecided: /, ""));
     from = to + 2;
   }
   return found;

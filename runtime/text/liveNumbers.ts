@@ -34,7 +34,7 @@ export function liveNumbersOf(text: string, block: RootContent): FoundNumbers {
     const at = place.from + match.index;
     if (quiet.some((each) => at >= each.from && at < each.to) || escaped(text, at)) continue;
     const lineEnd = text.slice(at).search(/[\n\r]/);
-    problems.push({ code: "live-number-not-link", message: "This is not read as a link: wrap the expression in `<…>`, as in `[0.31](<=ljungBox(airline, 24).p>)`", from: at, to: lineEnd < 0 ? place.to : Math.min(place.to, at + Math.min(lineEnd, 60)) });
+    problems.push({ code: "live-number-not-link", message: `This is not read as a link: ${match[0].includes("<") ? "inside `<…>`, write `\\<` and `\\>` for the signs" : "wrap the expression in `<…>`"}, as in \`[${match[0].includes("<") ? "yes](<=checks.p \\> 0.05" : "0.31](<=ljungBox(airline, 24).p"}>)\``, from: at, to: lineEnd < 0 ? place.to : Math.min(place.to, at + Math.min(lineEnd, 60)) });
   }
   return { numbers, problems };
 }

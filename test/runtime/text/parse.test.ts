@@ -99,6 +99,7 @@ describe("problems say what was found, where, and what to try", () => {
     ["a script with a syntax fault", cell("script: s", "export const = 1;"), /The script cannot be read/],
     ["a cell in a list", `- item\n\n  ${fence}values: v\n  a: 1\n  ${fence}\n`, /A cell stands at the top level/],
     ["a live number that is no link", "Is [0.31](=ljungBox(x, 24).p)\n", /^1:9 This is not read as a link: wrap the expression in `<…>`/],
+    ["a sign that ends a live number early", "Is [yes](<=mean > 2>)\n", /^1:8 This is not read as a link: inside `<…>`, write `\\<` and `\\>` for the signs, as in `\[yes\]\(<=checks\.p \\> 0\.05>\)`$/],
     ["a live number between two signs of a currency", "From $5 over [7](=mean) to $9.\n", /^1:6 A live number stands between two `\$`, which make mathematics of it: write `\\\$`/],
     ["a live number with emphasis inside", "Is [*0.31*](=mean)\n", /the text of a live number is plain/i],
     ["a live number with a fault", "Is [0.31](<=1 +>)\n", /^1:4 In the live number `1 \+`: The expression stops too early/],
