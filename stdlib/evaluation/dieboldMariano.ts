@@ -38,10 +38,10 @@ export function lossDifferenceTest(difference: ArrayLike<number>, horizon: numbe
   const mean = d.reduce((sum, x) => sum + x, 0) / n;
   const none = (note: string, longRunVariance = NaN): DieboldMariano =>
     ({ ...unavailable(nullHypothesis, n, note), meanDifference: n === 0 ? NaN : mean, longRunVariance, dm: NaN, pNormal: NaN });
-  if (n < 2 || n <= horizon) return none(`${n} origin${n === 1 ? "" : "s"} are too few for a test at horizon ${horizon}`);
+  if (n < 2 || n <= horizon) return none(`${n} origin${n === 1 ? " is" : "s are"} too few for a test at horizon ${horizon}`);
   if (d.every((x) => x === 0)) return none("the two have the same loss at every origin: a tie", 0);
   const longRunVariance = longRun(d, mean, horizon);
-  if (!(longRunVariance > 0)) return none("the estimated long-run variance of the loss difference is not above 0, as happens with few origins and a long horizon", longRunVariance);
+  if (!(longRunVariance > 0)) return none("the estimated long-run variance of the loss difference is not above 0, as happens with few origins and a long horizon, so that there is no p-value; more origins or a shorter horizon may give one", longRunVariance);
   const dm = mean / Math.sqrt(longRunVariance / n);
   const statistic = dm * Math.sqrt((n + 1 - 2 * horizon + (horizon * (horizon - 1)) / n) / n);
   return {

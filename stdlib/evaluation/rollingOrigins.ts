@@ -65,6 +65,8 @@ export interface Evaluation {
   readonly confidenceSet: ConfidenceSet;
   /** The naive rule that the models had to beat, with its scores over all horizons. */
   readonly naive: Score;
+  /** The same at each horizon, "all" last. */
+  readonly naiveScores: readonly Score[];
   readonly origins: readonly string[];
   readonly horizon: number;
   readonly unit: string; readonly name: string;
@@ -120,7 +122,7 @@ export function summarise(given: readonly Labelled[], rolled: readonly Rolled[],
   const complete = done >= total, verdict = rankSentences(ranked, against, { rank, origins: common, horizon, complete, total: frame.at.length, failures: failures.length });
   return {
     models: ranked, best: ranked[0], rankedBy: rank, scores: asked.flatMap((i) => tables[i]), against, confidenceSet: set,
-    naive: bestNaive >= 0 ? overall[bestNaive] : overall[0], origins: frame.origins.slice(0, common), horizon, unit: frame.base.unit, name: frame.base.name, observed: frame.base,
+    naive: overall[Math.max(0, bestNaive)], naiveScores: tables[Math.max(0, bestNaive)], origins: frame.origins.slice(0, common), horizon, unit: frame.base.unit, name: frame.base.name, observed: frame.base,
     forecasts: asked.flatMap((i) => originForecasts(even[i], frame)), failures, complete, done, total, sentence: verdict.sentence,
     notes: given.some(({ model }) => !isRule(model) && Object.values(model.options.regressors ?? {}).some(isSeries)) ? [...verdict.notes, knownRegressors] : verdict.notes,
   };
@@ -198,7 +200,7 @@ function tested(a: string, b: string, horizon: number | "all", difference: Float
   const test = lossDifferenceTest(difference, steps);
   const base = { a, b, horizon, meanDifference: test.meanDifference, n };
   if (test.status === "unavailable" && n >= needed) return { ...base, statistic: NaN, p: NaN, note: test.note };
-  if (n < needed) return { ...base, statistic: NaN, p: NaN, note: `${n} origin${n === 1 ? "" : "s"} are too few for a test ${steps} step${steps === 1 ? "" : "s"} ahead; at least ${needed} are wanted` };
+  if (n < needed) return { ...base, statistic: NaN, p: NaN, note: `${n} origin${n === 1 ? " is" : "s are"} too few for a test ${steps} step${steps === 1 ? "" : "s"} ahead; at least ${needed} are wanted` };
   return { ...base, statistic: test.statistic, p: test.p };
 }
 

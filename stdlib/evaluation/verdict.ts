@@ -13,7 +13,7 @@ export function rankSentences(models: readonly RankedModel[], against: readonly 
   const [best, next] = models, notes: string[] = [];
   const over = `over ${origins} origin${origins === 1 ? "" : "s"} and ${horizon === 1 ? "one step" : `1 to ${horizon} steps`} ahead`;
   const tied = models.filter((m) => m.rank === 1);
-  let sentence = tied.length > 1
+  let sentence = models.length === 1 ? `The ${name} of ${best.label} was ${figure(best[rank])} ${over}.` : tied.length > 1
     ? `${tied.map((m) => m.label).join(" and ")} tie: the same ${name} of ${figure(best[rank])} ${over}.`
     : `${best.label} had the smallest ${name}, ${figure(best[rank])}, ${over}.`;
   if (next && tied.length === 1) sentence += ` ${nextSentence(best, next, rank, against)}`;

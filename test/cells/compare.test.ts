@@ -34,6 +34,35 @@ describe("the picture of forecasts from every origin", () => {
   });
 });
 
+describe("the tables of held-out origins", () => {
+  const find = (parts: readonly Part[], title: string): TablePart => tables(parts).find(table => table.title?.startsWith(title))!;
+  test("hold every score, coverage with its range and the test between models, at each horizon too", async () => {
+    const series = madeSeries(), { result } = await run({ models: { drift: rule.drift(series), average: rule.average(series) }, origins: 12, horizon: 3, levels: [0.8], rank: "smape" });
+    if (result.how !== "origins") throw new Error("no origins");
+    const parts = compare.show(result, show), [best] = result.models, scores = find(parts, "All scores"), at = (table: TablePart, title: string): number => table.columns.findIndex(column => column.title === title);
+    expect(scores.columns.map(column => column.title)).toEqual(["model", "forecasts", "bias", "mean absolute error", "root mean squared error", "MAPE", "sMAPE", "MASE", "RMSSE", "pinball loss", "CRPS", "interval score 80%"]);
+    expect([scores.rows[0][at(scores, "RMSSE")], scores.rows[0][at(scores, "interval score 80%")]]).toEqual([best.rmsse, best.intervalScore[0].score]);
+    // The naive rule that was added stands last: it is what the others have to beat.
+    expect(scores.rows.at(-1)?.[0]).toBe(result.naive.label);
+    const held = find(parts, "How often the bands held, by"), second = result.scores.find(score => score.label === best.label && score.horizon === 2)!;
+    expect(held.columns.slice(2, 5).map(column => column.title)).toEqual(["1", "2", "3"]);
+    expect(held.rows[0].slice(3, 4)).toEqual([second.coverage[0].share]);
+    // Of 12 tries with 0.8 each, 7 to 12 are within the exact binomial range: P(X <= 6) = 0.019, P(X <= 7) = 0.073 (summed by hand from the binomial formula).
+    expect(held.rows[0].slice(5, 7)).toEqual([7 / 12, 1]);
+    const p = find(parts, "p by how many periods ahead"), pair = result.against.find(row => row.horizon === 1 && row.a === "drift" && row.b === "average")!;
+    expect(p.rows.find(row => row[0] === "drift against average")?.[1]).toBe(pair.p < 0.001 ? "< 0.001" : pair.p < 0.1 ? String(Number(pair.p.toPrecision(2))) : pair.p.toFixed(2));
+    const lines = parts.find((part): part is ChartPart => part.part === "chart" && part.title.startsWith("sMAPE"))!;
+    expect(new Set(lines.data.points.label as readonly string[])).toContain(result.naive.label);
+  });
+  test("of one origin claim nothing", async () => {
+    const series = madeSeries(), { result } = await run({ models: { drift: rule.drift(series) }, origins: 1, horizon: 1 }), parts = compare.show(result, show);
+    expect(texts(parts)).toContain("The MASE of drift was");
+    expect(texts(parts)).toContain("1 origin is too few for a test 1 step ahead");
+    expect(find(parts, "Errors over 1 origin, one period ahead").columns.map(column => column.title)).not.toContain("RMSSE");
+    expect(find(parts, "How often the bands held what").rows.map(row => row.at(-1))).toEqual(["too few to tell", "too few to tell"]);
+  });
+});
+
 describe("compare that the reader ends early", () => {
   const stopAfter = (count: number) => { let done = 0; return { progress: () => { done++; }, stopped: () => done >= count }; };
   test("shows the origins that all models finished, and says so before anything else", async () => {
@@ -165,7 +194,10 @@ describe("compare of models", () => {
     // Bit for bit what is in memory: both models, 12 origins, 6 periods each, and the naive rule that was added.
     expect(paths.full?.forecasts.median).toHaveLength((result.how === "origins" ? result.forecasts.length : 0) * 6);
     expect(Array.from(byHorizon.full?.scores.mase as readonly number[])).toEqual(result.scores.map(score => (score as { mase: number }).mase));
-    expect(tables(parts).map(t => t.title)).toEqual(["Errors over 12 origins, 1 to 6 periods ahead", "How often the bands held what happened", "Model against model, over all horizons"]);
+    expect(tables(parts).map(t => t.title)).toEqual([
+      "Errors over 12 origins, 1 to 6 periods ahead", "How often the bands held what happened", "How often the bands held, by how many periods ahead",
+      "Model against model, over all horizons", "p by how many periods ahead", "All scores",
+    ]);
   });
   test("ranks fits by a criterion where asked", async () => {
     const { result } = await run({ models: { one: early, two: estimate({ series: steady, ar: 1 }) }, rank: "aic" });
