@@ -9,7 +9,7 @@ import type { Figures, Forecast, Forecaster, ForecastOptions, Passing } from "./
 import type { ModelOutlook } from "./modelOutlook.ts";
 import { once } from "./once.ts";
 import type { Outlook } from "./outlook.ts";
-import { pathAt, type Paths } from "./paths.ts";
+import { pathAt, pathCount, type Paths } from "./paths.ts";
 import { baseOf, firstIndex, lastIndex, reachOf } from "./reach.ts";
 import { futuresOf, scenariosOf } from "./scenarios.ts";
 import { shapeOf } from "./shape.ts";
@@ -56,7 +56,7 @@ function* oneFuture(model: Forecaster, options: ForecastOptions, label: string |
 
 /** What is published of a distribution. */
 function figuresOf({ outlook, base, times, notes: undone }: ModelOutlook, { levels = [0.5, 0.9], totals: spans, seed = 1, threshold }: ForecastOptions): { readonly figures: Figures; readonly notes: readonly Note[] } {
-  const paths = once(() => outlook.paths(outlook.draws, seed)), { totals, notes } = totalsOf(spans, base, outlook, times, levels, paths);
+  const paths = once(() => outlook.paths(pathCount, seed)), { totals, notes } = totalsOf(spans, base, outlook, times, levels, paths);
   return { notes, figures: {
     mean: outlook.mean, median: outlook.median, se: outlook.se, sd: outlook.sd, bands: bandsOf(outlook, levels), totals,
     // On a scale that is not the data's a ratio says nothing.

@@ -42,7 +42,7 @@ function combinedOutlook(members: readonly Forecaster[], horizon: number, regres
   // One seed for all: the members' shocks are then the same.
   const paths = (count: number, from: number): Paths => ({ count, horizon, values: averaged(outlooks.map((o) => o.paths(count, from).values)) });
   const outlook: Outlook = {
-    horizon, mean: mean((o) => o.mean), median: quantile(0.5), sd: mean((o) => o.sd), se: mean((o) => o.sd), quantile, paths, draws: Math.max(...outlooks.map((o) => o.draws)), normal: false, covariance: () => null,
+    horizon, mean: mean((o) => o.mean), median: quantile(0.5), sd: mean((o) => o.sd), se: mean((o) => o.sd), quantile, paths, normal: false, covariance: () => null,
     above: (h, value) => 1 - levelOf((p) => quantile(p)[h], value),
     crps: crpsOfQuantiles(quantile),
   };

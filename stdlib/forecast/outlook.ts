@@ -4,7 +4,7 @@ import { normalCdf, normalQuantile } from "../distributions/normal.ts";
 import { lognormalCrps, normalCrps, sampleCrps } from "../evaluation/scores.ts";
 import { crpsOfNormals } from "./byQuantiles.ts";
 import { once } from "./once.ts";
-import { alongCount, drawnPaths, drawsOf, normalPaths, pathCount, undoPaths, type Paths } from "./paths.ts";
+import { drawnPaths, drawsOf, normalPaths, pathCount, undoPaths, type Paths } from "./paths.ts";
 import { diagonalRoots, factorAlong, factorOf, type Predictive } from "./predictive.ts";
 import { isLinear, redoValue, undoCovariance, undoMean, undoValue, type UndoStep } from "./undo.ts";
 
@@ -20,8 +20,6 @@ export interface Outlook {
   readonly quantile: (p: number) => Float64Array;
   /** Probability that the value h periods ahead (0 is the first) lies above a value. */
   readonly above: (h: number, value: number) => number;
-  /** How many paths stand for the distribution where a limit has no closed form. */
-  readonly draws: number;
   /** Seeded sample paths in data units; they may be shared, and are not to be changed. */
   readonly paths: (count: number, seed: number) => Paths;
   /** Exact covariance matrix in data units, flat by rows; null where it is only known by simulation. */
@@ -67,7 +65,7 @@ function normalOutlook(predictive: Predictive, rest: readonly UndoStep[]): Outlo
   const factor = once(() => factorAlong(predictive.covariance(), horizon, slopes()));
   const form = formOf(rest);
   return {
-    horizon, mean: moments.mean, median: m.map((v, h) => undoValue(rest, h, v)), sd: moments.sd, se, quantile, normal: form === "normal", draws: alongCount,
+    horizon, mean: moments.mean, median: m.map((v, h) => undoValue(rest, h, v)), sd: moments.sd, se, quantile, normal: form === "normal",
     above: (h, value) => {
       const z = (redoValue(rest, h, value) - m[h]) / se[h];
       return turnsOver ? normalCdf(z) : normalCdf(-z);
@@ -103,7 +101,7 @@ export function sampleOutlook(paths: Outlook["paths"], count: number, seed: numb
   });
   const quantile = (p: number): Float64Array => Float64Array.from(sorted, (column) => quantileOf(column, p));
   return {
-    horizon, mean: mean ?? average, median: quantile(0.5), sd, se: se ?? sd, quantile, normal: false, draws: count, covariance: () => null,
+    horizon, mean: mean ?? average, median: quantile(0.5), sd, se: se ?? sd, quantile, normal: false, covariance: () => null,
     paths: (asked, from) => (asked === count && from === seed ? sample : paths(asked, from)),
     above: (h, value) => 1 - countUpTo(sorted[h], value) / sorted[h].length,
     crps: (h, actual) => sampleCrps(actual, sorted[h]),

@@ -13,11 +13,9 @@ export interface Paths {
   readonly values: Float64Array;
 }
 
-/** Paths behind a limit that has no closed form: enough for a 95% limit to about 1% of its distance from the median. */
+/** Paths behind a limit that has no closed form: enough for a 90% limit to about 2% of its distance from the median, and to 0.3%
+ *  for sums along which the paths are drawn (`factorAlong`). */
 export const pathCount = 4000;
-
-/** Paths that are drawn along the sum of all periods (`factorAlong`) do with fewer: its limits are then sure to 0.5% of its standard error. */
-export const alongCount = 2000;
 
 /** @param fill  writes path i, of length horizon; called in the order of the paths */
 export function pathsOf(count: number, horizon: number, fill: (path: Float64Array, i: number) => void): Paths {

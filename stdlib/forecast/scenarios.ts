@@ -39,7 +39,7 @@ export function scenariosOf(fit: Fit, options: ForecastOptions, futures: readonl
     const known = simulated ? ofPaths(later.banded.outlook, first.banded.outlook, seed) : differenceOutlook(fit, horizon, futures[i].regressors, futures[0].regressors, seed, pathCount);
     const outlook: Outlook = { ...known, mean: later.figures.mean.map((m, h) => m - first.figures.mean[h]) };
     // What was observed is the same in all scenarios: it adds nothing to a difference.
-    const nothing: Series = { ...base, values: new Float64Array(base.n) }, paths = once(() => outlook.paths(outlook.draws, seed));
+    const nothing: Series = { ...base, values: new Float64Array(base.n) }, paths = once(() => outlook.paths(pathCount, seed));
     return { against: labels[0], mean: outlook.mean, median: outlook.median, bands: bandsOf(outlook, levels), totals: totalsOf(options.totals, nothing, outlook, times, levels, paths).totals };
   }
 }
