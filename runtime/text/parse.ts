@@ -153,7 +153,7 @@ function shift(reads: readonly NameRead[], by: number): NameRead[] {
 
 function unterminated(fence: Fence, reading: Reading, cell: number | null): void {
   const { line } = reading.lineAt(fence.from);
-  problem(reading, "unterminated-fence", `The fence opened in line ${line} is never closed, so everything down to the end of the file belongs to it: add a line \`${fence.fence}\` after its body`, fence.from, Math.max(fence.infoTo, fence.from + fence.fence.length), cell);
+  problem(reading, "unterminated-fence", `The fence opened in line ${line} is never closed, so everything down to the end of the file belongs to it: close it with a line of ${fence.fence} after its body`, fence.from, Math.max(fence.infoTo, fence.from + fence.fence.length), cell);
 }
 
 /** A cell inside a list or a quotation is not one: say so. */
