@@ -92,7 +92,9 @@ function startInto(c: ArrayLike<number>, d: number, re: Float64Array, im: Float6
 }
 
 function aberth(c: ArrayLike<number>, d: number, re: Float64Array, im: Float64Array): void {
-  for (let round = 0; round < 200; round++) {
+  // The moves shrink until they are rounding alone, which near a multiple root is far above the last digit: then they wander.
+  let least = Infinity, idle = 0;
+  for (let round = 0; round < 200 && !(idle > 3 && least < 1e-5); round++) {
     let moved = 0;
     for (let i = 0; i < d; i++) {
       const x = re[i], y = im[i];
@@ -119,6 +121,7 @@ function aberth(c: ArrayLike<number>, d: number, re: Float64Array, im: Float64Ar
       moved = Math.max(moved, Math.hypot(stepR, stepI) / (Math.hypot(x, y) || 1));
     }
     if (moved < 2e-16) return;
+    if (moved < least / 2) { least = moved; idle = 0; } else idle++;
   }
 }
 
