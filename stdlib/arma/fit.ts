@@ -19,7 +19,7 @@ import { numbersOf, parameterCount, type Numbers } from "./numbers.ts";
 import { prepare, type Prepared } from "./prepare.ts";
 import { isStable } from "./region.ts";
 import { assemble, criteria, type Solution } from "./report.ts";
-import { smallerOf } from "./smaller.ts";
+import type { Smaller } from "./smaller.ts";
 
 export interface FitHow {
   /** False leaves standard errors out (NaN): for grids and rolling refits, where nobody reads them. */
@@ -29,7 +29,7 @@ export interface FitHow {
   /** Coefficients phi, Phi, theta, Theta to start from. */
   readonly near?: Float64Array;
   /** Fits of smaller models to the same series, all else alike: places to start from, in a search through orders. */
-  readonly smaller?: readonly Fit[];
+  readonly smaller?: Smaller;
 }
 
 /** Fits phi(B) Phi(B^s) (w - mean) = theta(B) Theta(B^s) e to a series, w its values (after its steps), less the regressors.
@@ -58,7 +58,7 @@ export function fit(options: FitOptions, how: FitHow = {}): Fit {
   };
   const evaluate = evaluator(numbers);
   if (method === "exact" || method === "restricted") {
-    const found = estimate({ shape: prepared.shape, data: numbers.data, held: prepared.held, bridged: numbers.bridged, near: how.near, smaller: method === "exact" && how.smaller && prepared.held.every(Number.isNaN) ? smallerOf(how.smaller) : undefined, work, evaluate: filter ? evaluate : undefined });
+    const found = estimate({ shape: prepared.shape, data: numbers.data, held: prepared.held, bridged: numbers.bridged, near: how.near, smaller: method === "exact" && prepared.held.every(Number.isNaN) ? how.smaller : undefined, work, evaluate: filter ? evaluate : undefined });
     if (!Number.isFinite(found.value)) throw new RangeError(failure(prepared));
     const result = finish(numbers, work, found, evaluate, how);
     if (method === "exact") return result;

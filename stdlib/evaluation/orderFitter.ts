@@ -2,6 +2,7 @@
 
 import { fit, type FitHow } from "../arma/fit.ts";
 import type { Fit, FitOptions } from "../arma/model.ts";
+import { smallerFits } from "../arma/smaller.ts";
 import { contentKey, recallNothing, type Recall } from "./contentKey.ts";
 import type { Order } from "./rankedGrid.ts";
 
@@ -12,7 +13,7 @@ export type Attempt = { readonly fit: Fit } | { readonly reason: string };
  *  @param options  what all orders share; the label is each order's own
  *  @param season   left out: the orders have no seasonal part */
 export function orderFitter(options: Omit<FitOptions, "ar" | "ma" | "season">, season: { readonly length?: number } | undefined, how: FitHow = {}, recall: Recall = recallNothing): (order: Order) => Attempt {
-  const { label: _label, ...rest } = options, shared = contentKey([rest, season?.length, how]), smaller: Fit[] = [];
+  const { label: _label, ...rest } = options, shared = contentKey([rest, season?.length, how]), smaller = smallerFits();
   return (order) => {
     const attempt = recall(`fit ${shared} ${contentKey(order)}`, (): Attempt => {
       try {
@@ -24,7 +25,7 @@ export function orderFitter(options: Omit<FitOptions, "ar" | "ma" | "season">, s
         return { reason: error.message };
       }
     });
-    if ("fit" in attempt) smaller.push(attempt.fit);
+    if ("fit" in attempt) smaller.add(attempt.fit);
     return attempt;
   };
 }
