@@ -1,7 +1,8 @@
 // The expression language, interpreted: an ECMAScript tree compiled to closures. Nothing here makes code from text.
 
 import type { AnyNode, ArrowFunctionExpression, Expression, MemberExpression, Pattern } from "../text/acorn.ts";
-import { arithmetic, compare, EvaluationError, isSignal, Missing, property, spreadInto, spreadObject, textOf, whatIs } from "./values.ts";
+import { arithmetic, compare, EvaluationError, isSignal, Missing, property, spreadInto, spreadObject, textLength, textOf, whatIs } from "./values.ts";
+import { Effort } from "./effort.ts";
 import { method } from "./methods.ts";
 
 /** What an evaluation may ask of its surroundings. */
@@ -19,7 +20,7 @@ export interface Surroundings {
 export type Compiled = (around: Surroundings) => unknown;
 
 /** Names bound by arrow functions: one frame a call. */
-interface Frame { readonly around: Surroundings; readonly slots: unknown[]; readonly up: Frame | null; readonly calls: { depth: number } }
+interface Frame { readonly around: Surroundings; readonly slots: unknown[]; readonly up: Frame | null; readonly effort: Effort }
 type Code = (frame: Frame) => unknown;
 /** Names in scope at a place, innermost last: where each stands at run time. */
 type Scope = readonly (readonly string[])[];
@@ -28,11 +29,8 @@ type Scope = readonly (readonly string[])[];
  *  @throws EvaluationError (from the closures) with places in the expression's source */
 export function compile(tree: Expression): Compiled {
   const code = codeOf(tree, []);
-  return (around) => code({ around, slots: [], up: null, calls: { depth: 0 } });
+  return (around) => code({ around, slots: [], up: null, effort: new Effort() });
 }
-
-/** Arrow functions may call one another this deep: well inside the stack, and deeper than any sensible expression. */
-const DEEPEST = 200;
 
 function codeOf(node: AnyNode, scope: Scope): Code {
   switch (node.type) {
@@ -73,7 +71,7 @@ function nameCode(name: string, node: AnyNode, scope: Scope): Code {
 
 function templateCode(texts: readonly string[], nodes: readonly Expression[], scope: Scope): Code {
   const codes = nodes.map((each) => codeOf(each, scope));
-  return (frame) => codes.reduce((text, code, i) => text + placed(nodes[i], () => textOf(code(frame))) + texts[i + 1], texts[0]);
+  return (frame) => codes.reduce((text, code, i) => placed(nodes[i], () => { const next = text + textOf(code(frame)) + texts[i + 1]; textLength(next.length); return next; }), texts[0]);
 }
 
 function listCode(nodes: readonly AnyNode[], scope: Scope): Code {
@@ -81,9 +79,10 @@ function listCode(nodes: readonly AnyNode[], scope: Scope): Code {
   return (frame) => {
     const list: unknown[] = [];
     for (const { node, spread, code } of items) {
-      if (spread) placed(node, () => spreadInto(list, code(frame)));
+      if (spread) placed(node, () => spreadInto(list, frame.effort.list(code(frame))));
       else list.push(code(frame));
     }
+    frame.effort.spend(items.length);
     return list;
   };
 }
@@ -99,7 +98,8 @@ function objectCode(properties: readonly AnyNode[], scope: Scope): Code {
     const made: Record<string, unknown> = {};
     for (const { node, key, value } of parts) {
       placed(node, () => {
-        if (key === null) spreadObject(made, value(frame));
+        frame.effort.spend(1);
+        if (key === null) { const given = value(frame); spreadObject(made, given); frame.effort.spend(Object.keys(Object(given) as object).length); }
         else {
           const name = key(frame);
           if ((typeof name !== "string" && typeof name !== "number") || name === "__proto__") throw new EvaluationError(name === "__proto__" ? "`__proto__` cannot be a key" : "A key is a text or a number");
@@ -153,7 +153,7 @@ function callCode(node: Extract<AnyNode, { type: "CallExpression" }>, scope: Sco
       const holder = object(frame);
       if (holder === NOTHING || (callee.optional && (holder === null || holder === undefined))) return NOTHING;
       const name = key(frame);
-      const listed = placed(callee, () => method(holder, name, frame.around.callables));
+      const listed = placed(callee, () => method(holder, name, frame.around.callables, frame.effort));
       if (listed !== null) { const list = given(frame) as unknown[]; return placed(node, () => listed(list)); }
       const callable = placed(callee, () => property(holder, name, node.optional));
       return node.optional && (callable === null || callable === undefined) ? NOTHING : call(callable, given(frame) as unknown[], node, frame);
@@ -172,7 +172,7 @@ function call(callable: unknown, given: readonly unknown[], node: Extract<AnyNod
     if (typeof callable !== "function" || !frame.around.callables.has(callable)) {
       throw new EvaluationError(typeof callable === "function" ? "This function is not one that an expression may call" : `${calleeName(node)} is not a function, so it cannot be called`);
     }
-    return (callable as (...given: readonly unknown[]) => unknown)(...given);
+    return frame.effort.list((callable as (...given: readonly unknown[]) => unknown)(...frame.effort.arguments(given)));
   });
 }
 
@@ -233,18 +233,17 @@ function truth(value: unknown, node: AnyNode, frame: Frame): boolean {
 function arrowCode(node: ArrowFunctionExpression, scope: Scope): Code {
   const names: string[] = [];
   const binders = node.params.map((each, i) => binder(each, names, scope, each.type === "RestElement" ? (given) => given.slice(i) : (given) => given[i]));
-  const body = codeOf(node.body as AnyNode, [...scope, names]);
+  const body = codeOf(node.body as AnyNode, [...scope, names]), place = { from: node.start, to: node.end };
   return (frame) => {
     const arrow = (...given: readonly unknown[]): unknown => {
-      const { around, calls } = frame;
-      if (calls.depth >= DEEPEST) throw new EvaluationError("This expression calls itself without end", { from: node.start, to: node.end });
-      const inner: Frame = { around, slots: [], up: frame, calls };
-      calls.depth += 1;
+      const { around, effort } = frame;
+      effort.enter(place);
       try {
+        const inner: Frame = { around, slots: [], up: frame, effort };
         for (const bind of binders) bind(inner, given);
         return body(inner);
       } finally {
-        calls.depth -= 1;
+        effort.leave();
       }
     };
     frame.around.callables.add(arrow);
@@ -289,6 +288,7 @@ function placed<T>(node: AnyNode, work: () => T): T {
   } catch (error) {
     if (isSignal(error)) throw error;
     if (error instanceof EvaluationError) throw error.place === null ? new EvaluationError(error.message, { from: node.start, to: node.end }, error.cause) : error;
+    if (error instanceof RangeError && /call stack/i.test(error.message)) throw new EvaluationError("This nests too deeply to be computed", { from: node.start, to: node.end }, error);
     throw new EvaluationError(error instanceof Error ? error.message : String(error), { from: node.start, to: node.end }, error);
   }
 }

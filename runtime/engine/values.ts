@@ -81,6 +81,14 @@ function absent(holder: object, key: string): string {
   return `There is no \`${key}\` here: there ${names.length === 1 ? "is" : "are"} ${names.slice(0, 12).map((name) => `\`${name}\``).join(", ")}${names.length > 12 ? ", …" : ""}`;
 }
 
+/** Texts made by an expression stay below this length. */
+const LONGEST_TEXT = 1_000_000;
+
+/** A text of this length may be made. @throws EvaluationError */
+export function textLength(length: number): void {
+  if (length > LONGEST_TEXT) throw new EvaluationError(`This would make a text of ${length} letters; at most ${LONGEST_TEXT} are made`);
+}
+
 /** Arithmetic on two numbers; `+` joins two texts. @throws EvaluationError */
 export function arithmetic(operator: string, a: unknown, b: unknown): number | string {
   if (typeof a === "number" && typeof b === "number") {
@@ -94,7 +102,7 @@ export function arithmetic(operator: string, a: unknown, b: unknown): number | s
       default: throw new EvaluationError(`\`${operator}\` is not part of the expression language`);
     }
   }
-  if (operator === "+" && typeof a === "string" && typeof b === "string") return a + b;
+  if (operator === "+" && typeof a === "string" && typeof b === "string") { textLength(a.length + b.length); return a + b; }
   throw new EvaluationError(`\`${operator}\` works on two numbers${operator === "+" ? " or two texts" : ""}; here is ${whatIs(typeof a === "number" ? b : a)}${instead(typeof a === "number" ? b : a, operator)}`);
 }
 
