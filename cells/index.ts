@@ -6,6 +6,7 @@ import { choice } from "./choice.ts";
 import { claims } from "./claims.ts";
 import { compare } from "./compare.ts";
 import { correlogram } from "./correlogram.ts";
+import { decomposition } from "./decomposition.ts";
 import { diagnostics } from "./diagnostics.ts";
 import { fit } from "./fit.ts";
 import { forecast } from "./forecast.ts";
@@ -30,6 +31,7 @@ export const kinds: readonly Kind<never, unknown>[] = [
   windowKind,
   values,
   transform,
+  decomposition,
   stationarity,
   correlogram,
   fit,

@@ -27,7 +27,7 @@ export function diagnosticsParts(result: Diagnostics, width: number): readonly P
     timePart(result, width),
     ...outlierParts(result),
     ...details([
-      pValuePart(result), acfPart(result), ...(result.qq.sample.length > 0 ? [quantilePart(result)] : []), ...rhythmPart(result), ...levelPart(result),
+      pValuePart(result), acfPart(result), ...(result.qq.sample.length > 0 ? [quantilePart(result)] : []), ...rhythmPart(result, width), ...levelPart(result, width),
     ]),
     ...result.notes.map((text): TextPart => ({ part: "text", tone: "note", text })),
   ];
@@ -108,22 +108,24 @@ function quantilePart(result: Diagnostics): ChartPart {
   return quantileChart("Residuals against a normal distribution", alt, { theoretical, sample, low, high });
 }
 
-function rhythmPart(result: Diagnostics): readonly ChartPart[] {
+function rhythmPart(result: Diagnostics, width: number): readonly ChartPart[] {
   const { frequency, cumulative, limit, sentence } = result.cumulativePeriodogram;
   if (frequency === undefined || cumulative === undefined || limit === undefined) return [];
   const line = Array.from(frequency, (_, j) => (j + 1) / frequency.length);
   return [pathChart({
+    width,
     title: "Share of the residuals' variation at slower frequencies", alt: sentence ?? "The running share of variation by frequency.", axis: "running share of variation",
     xField: { type: "quantitative", title: "frequency (cycles a period)", scale: { nice: false, zero: true }, axis: { grid: false } },
     path: { x: frequency, value: cumulative, low: line.map(at => Math.max(0, at - limit)), high: line.map(at => Math.min(1, at + limit)) },
   })];
 }
 
-function levelPart(result: Diagnostics): readonly ChartPart[] {
+function levelPart(result: Diagnostics, width: number): readonly ChartPart[] {
   const { path, limit, sentence } = result.cusum;
   const residuals = result.standardised;
   if (path === undefined || limit === undefined || path.length !== residuals.n) return [];
   return [pathChart({
+    width,
     title: "Running sum of the residuals", alt: sentence ?? "The running sum of the residuals with its limits.", axis: "running sum (σ√n)", xField: timeField("x", residuals.every !== null),
     path: { x: timesMs(residuals), value: path, low: Array.from(path, () => -limit), high: Array.from(path, () => limit) },
   })];

@@ -1,6 +1,7 @@
 // A running statistic as a line between the limits that it should keep to.
 
 import type { ChartPart } from "./part.ts";
+import { pickNumbers, thin } from "./thin.ts";
 
 export interface Path {
   readonly x: ArrayLike<number>;
@@ -9,9 +10,11 @@ export interface Path {
   readonly low: ArrayLike<number>; readonly high: ArrayLike<number>;
 }
 
-/** @param xField  the horizontal axis without its field: a time axis of `timeField("x", …)`, or a quantitative one */
-export function pathChart(given: { readonly title: string; readonly alt: string; readonly xField: Readonly<Record<string, unknown>>; readonly axis: string; readonly path: Path }): ChartPart {
-  const { path } = given;
+/** @param width   pixels across, to which a long path is thinned
+ *  @param xField  the horizontal axis without its field: a time axis of `timeField("x", …)`, or a quantitative one */
+export function pathChart(given: { readonly title: string; readonly alt: string; readonly xField: Readonly<Record<string, unknown>>; readonly axis: string; readonly path: Path; readonly width: number }): ChartPart {
+  const { path } = given, kept = thin(path.value, given.width);
+  const columns = { x: pickNumbers(path.x, kept), value: pickNumbers(path.value, kept), low: pickNumbers(path.low, kept), high: pickNumbers(path.high, kept) };
   const x = { ...given.xField, field: "x" };
   const y = (field: string): Record<string, unknown> => ({ field, type: "quantitative", title: given.axis, scale: { zero: false } });
   return {
@@ -26,9 +29,9 @@ export function pathChart(given: { readonly title: string; readonly alt: string;
     },
     data: {
       path: {
-        x: Array.from(path.x), value: Array.from(path.value), low: Array.from(path.low), high: Array.from(path.high),
-        outside: Array.from(path.value, (value, i) => value < path.low[i] || value > path.high[i]),
+        ...columns, outside: Array.from(columns.value, (value, i) => value < columns.low[i] || value > columns.high[i]),
       },
     },
+    full: { path: { x: Float64Array.from(path.x), value: Float64Array.from(path.value), low: Float64Array.from(path.low), high: Float64Array.from(path.high) } },
   };
 }

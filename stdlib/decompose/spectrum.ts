@@ -27,7 +27,7 @@ export interface Spectrum {
   readonly df: number; readonly lowFactor: number; readonly highFactor: number; readonly level: number;
   /** Width of the average, in cycles a period. */
   readonly bandwidth: number;
-  /** Frequency of the largest smoothed ordinate and the periods of its cycle. */
+  /** Frequency of the largest periodogram ordinate under the largest smoothed one, and the periods of its cycle. */
   readonly peak: { readonly frequency: number; readonly period: number } | null;
   readonly sentence: string;
 }
@@ -55,11 +55,13 @@ export function spectrum(x: Series | ArrayLike<number>, options: SpectrumOptions
   const df = 2 / (squares * fourth);
   let top = 0;
   smoothed.forEach((s, j) => { if (s > smoothed[top]) top = j; });
+  // An average is as high all along a line that it holds: the line itself is where the periodogram is highest inside it.
+  for (let j = Math.max(0, top - half), end = Math.min(m - 1, top + half); j <= end; j++) if (raw[j] > raw[top]) top = j;
   const peak = { frequency: frequency[top], period: 1 / frequency[top] };
   return {
     status: "ok", frequency, raw, smoothed, df, lowFactor: df / chiSquareQuantile(0.5 + level / 2, df), highFactor: df / chiSquareQuantile(0.5 - level / 2, df), level,
     bandwidth: Math.sqrt((weights.reduce((s, w, i) => s + w * (i - half) ** 2, 0) + 1 / 12)) / n, peak,
-    sentence: `The ${widths.length === 0 ? "periodogram" : "smoothed spectrum"} is highest at ${Number(peak.frequency.toPrecision(3))} cycles a period, one cycle in ${Number(peak.period.toPrecision(3))} periods; a highest point there always is, and its limits are ${(df / chiSquareQuantile(0.5 + level / 2, df)).toFixed(2)} to ${(df / chiSquareQuantile(0.5 - level / 2, df)).toFixed(1)} times its height.`,
+    sentence: `The ${widths.length === 0 ? "periodogram" : "smoothed spectrum"} is highest ${widths.length === 0 ? "at" : "about"} ${Number(peak.frequency.toPrecision(3))} cycles a period, one cycle in ${Number(peak.period.toPrecision(3))} periods; a highest point there always is, and its limits are ${(df / chiSquareQuantile(0.5 + level / 2, df)).toFixed(2)} to ${(df / chiSquareQuantile(0.5 - level / 2, df)).toFixed(1)} times its height.`,
   };
 }
 
