@@ -18,7 +18,8 @@ export interface Drafts {
 /** @param notebook  the notebook's path
  *  @param tab       this tab's own mark */
 export function drafts(storage: DraftStorage, notebook: string, tab: string): Drafts {
-  const prefix = `lagbook draft ${notebook} `;
+  // Encoded, so that the path ends at the space: another notebook's path may go on from this one's.
+  const prefix = `lagbook draft ${encodeURIComponent(notebook)} `;
   const own = `${prefix}${tab}`;
   const all = (): { key: string; draft: Draft }[] => {
     const keys = Array.from({ length: storage.length }, (_, index) => storage.key(index)).filter((key): key is string => key?.startsWith(prefix) === true);

@@ -24,10 +24,11 @@ export async function open(command: { readonly file: string; readonly port: numb
   const store = new Store(path);
   await store.read();
   const events = new EventStreams(), key = randomBytes(18).toString("base64url");
-  const watcher = follow(store, events);
   const framePolicy = pagePolicy([scriptOf(await readPart("frame.html"))]);
   const server = createServer({ store, key, events, part: readPart, framePolicy, wanted: (file) => { followData(watcher, path, file).catch(() => undefined); } });
   const listening = await start(server, command.port, path);
+  // Not before the port is had: a watcher keeps a command alive that has nothing to serve.
+  const watcher = follow(store, events);
   const beat = setInterval(() => events.beat(), 15000);
   io.out(`${basename(path)} is open at\n\n  http://127.0.0.1:${listening.port}/?key=${key}\n\nOn this machine only. End with Ctrl-C.\n`);
   await stopped(io.stop);

@@ -142,3 +142,14 @@ describe("the keeper of a text", () => {
     expect(world.told.find((it) => it.told === "trouble")).toHaveProperty("message", expect.stringContaining("Save before you leave"));
   });
 });
+
+describe("drafts", () => {
+  it("are one notebook's own, also where another's path goes on from it", () => {
+    const kept = new Map<string, string>();
+    const storage = { getItem: (key: string) => kept.get(key) ?? null, setItem: (key: string, value: string) => { kept.set(key, value); }, removeItem: (key: string) => { kept.delete(key); }, key: (i: number) => [...kept.keys()][i] ?? null, get length() { return kept.size; } };
+    const draft = { text: "private", base: "", baseHash: "", time: 1 };
+    drafts(storage, "/home/n.md and more.md", "tab").keep(draft);
+    expect(drafts(storage, "/home/n.md", "other").find(() => false)).toBeNull();
+    expect(drafts(storage, "/home/n.md and more.md", "other").find(() => false)).toEqual(draft);
+  });
+});

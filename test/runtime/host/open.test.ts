@@ -87,6 +87,17 @@ describe("lagbook open", () => {
     expect(await (await data("d.csv")).text()).toBe("t,v\n2020,1\n");
   });
 
+  it("ends where the port is taken, and leaves nothing running", async () => {
+    const watching = (): number => process.getActiveResourcesInfo().filter((one) => one === "FSEventWrap").length, settled = (): Promise<unknown> => new Promise((resolve) => { setTimeout(resolve, 500); });
+    await settled();
+    const before = watching();
+    expect(before).toBeGreaterThan(0);
+    const io = { out: () => undefined, error: () => undefined, cwd: folder, now: () => new Date(0), stop: stop.signal };
+    await expect(open({ file: "n.md", port: Number(address.port) }, io)).rejects.toThrow(/is in use by another program/);
+    await settled();
+    expect(watching()).toBe(before);
+  });
+
   it("has no door but the loopback interface", async () => {
     const other = await fetch(`http://127.0.0.2:${address.port}/desk.js`).then(() => "answered", () => "closed");
     expect(other).toBe("closed");
