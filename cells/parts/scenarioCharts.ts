@@ -20,7 +20,7 @@ export function scenarioChart(forecast: Forecast, alt: string, shownPast: number
       { data: { name: "heldOut" }, mark: { type: "line", style: "heldOut" }, encoding: { x, y: { ...y, field: "value" } } },
     ] },
     data: {
-      ...columnsOf(courses, all.subarray(history.n)), history: { time: all.slice(from, history.n), value: history.values.slice(from) },
+      ...columnsOf(courses, all.subarray(history.n), { time: all[history.n - 1], value: history.values[history.n - 1] }), history: { time: all.slice(from, history.n), value: history.values.slice(from) },
       heldOut: heldOut === null ? { time: [], value: [] } : { time: milliseconds(heldOut.start, every, Math.min(heldOut.n, horizon)), value: heldOut.values.slice(0, horizon) },
     },
     full: { observed: { time: history.times, value: history.values }, ...Object.fromEntries(courses.map(({ label, mean, median, bands }) => [label, { time: forecast.times, mean, median, ...limitsOf(bands) }])) },
@@ -46,7 +46,7 @@ function courseLayers(x: Record<string, unknown>, y: Record<string, unknown>): r
   const label = { field: "label", type: "nominal", sort: null }, legend = { title: null, orient: "top", labelLimit: 240 };
   return [
     { data: { name: "bands" }, mark: { type: "area", fillOpacity: 0.12 }, encoding: { x, y: { ...y, field: "low" }, y2: { field: "high" }, color: { ...label, legend } } },
-    { data: { name: "middles" }, mark: { type: "line", strokeWidth: 2, size: 2 }, encoding: { x, y: { ...y, field: "median" }, color: { ...label, legend }, strokeDash: { ...label, legend } } },
+    { data: { name: "lines" }, mark: { type: "line", strokeWidth: 2, size: 2 }, encoding: { x, y: { ...y, field: "median" }, color: { ...label, legend }, strokeDash: { ...label, legend } } },
     {
       data: { name: "middles" }, mark: { type: "point", filled: true, size: 30, opacity: 1 },
       encoding: {
@@ -57,13 +57,16 @@ function courseLayers(x: Record<string, unknown>, y: Record<string, unknown>): r
   ];
 }
 
-function columnsOf(courses: readonly Course[], future: Float64Array): Record<string, Columns> {
+/** @param last  the last observation, to which the lines are joined so that the eye is led over the origin */
+function columnsOf(courses: readonly Course[], future: Float64Array, last = { time: NaN, value: NaN }): Record<string, Columns> {
   const rows = courses.flatMap(({ label, median, bands }) => {
     const band = widest(bands);
     return Array.from(median, (value, h) => ({ label, time: future[h], median: value, low: band?.low[h] ?? NaN, high: band?.high[h] ?? NaN }));
   });
   const column = (name: "time" | "median" | "low" | "high"): Float64Array => Float64Array.from(rows, (row) => row[name]), labels = rows.map((row) => row.label);
+  const joined = courses.flatMap(({ label, median }) => [...(Number.isFinite(last.value) ? [{ label, time: last.time, median: last.value }] : []), ...Array.from(median, (value, h) => ({ label, time: future[h], median: value }))]);
   return {
+    lines: { label: joined.map((row) => row.label), time: Float64Array.from(joined, (row) => row.time), median: Float64Array.from(joined, (row) => row.median) },
     bands: { label: labels, time: column("time"), low: column("low"), high: column("high") },
     middles: { label: labels, time: column("time"), median: column("median"), low: column("low"), high: column("high") },
   };

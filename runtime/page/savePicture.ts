@@ -1,5 +1,6 @@
 // A drawn chart as a file of its own: SVG with real colours, or PNG.
 
+import { chartFont } from "./chartTheme.ts";
 import type { ChartPart } from "../../cells/parts/part.ts";
 
 /** The drawn picture with its title above it, as a file that needs no page: the page's present colours and ground, and the
@@ -15,7 +16,7 @@ const lineHeight = 18, signWidth = 7;
 export function titledSvg(svg: string, { title, alt, ground, ink }: { readonly title: string; readonly alt: string; readonly ground: string; readonly ink: string }): string {
   const size = (name: string): number => Number(new RegExp(`^<svg [^>]*\\b${name}="([\\d.]+)`).exec(svg)?.[1]);
   const width = size("width"), lines = wrapped(title, Math.floor((width - 16) / signWidth)), above = lines.length * lineHeight + 12;
-  const words = lines.map((line, i) => `<text x="8" y="${(i + 1) * lineHeight}" font-family="Source Sans 3, Noto Sans, Segoe UI, Roboto, Helvetica Neue, Arial, sans-serif" font-size="13" font-weight="600" fill="${ink}">${escaped(line)}</text>`);
+  const words = lines.map((line, i) => `<text x="8" y="${(i + 1) * lineHeight}" font-family="${escaped(chartFont)}" font-size="13" font-weight="600" fill="${ink}">${escaped(line)}</text>`);
   return `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${size("height") + above}" viewBox="0 0 ${width} ${size("height") + above}" role="img"><title>${escaped(title)}</title><desc>${escaped(alt)}</desc>`
     + `<rect width="100%" height="100%" fill="${ground}"/>${words.join("")}${svg.replace(/^<svg /, `<svg y="${above}" `)}</svg>`;
 }

@@ -9,6 +9,8 @@ describe("a saved picture", () => {
     const svg = titledSvg(drawn, given);
     expect(svg).toMatch(/^<svg [^>]*width="300" height="150" viewBox="0 0 300 150"/);
     expect(svg).toContain("<title>Sales (t) &#38; stocks</title><desc>Sales rose to 3 t.</desc>");
+    // A family whose name holds a digit is only read in quotes.
+    expect(svg).toContain('font-family="&#34;Source Sans 3&#34;, ');
     expect(svg).toMatch(/<text [^>]*>Sales \(t\) &#38; stocks<\/text><svg y="30" xmlns/);
   });
   it("breaks a long title between words, with a line's room for each", () => {
