@@ -21,6 +21,8 @@ import { ownTab, openTabs } from "./tabs.ts";
 
 /** After this pause in typing the page gets the text; and at the latest after `mostMs` of steady typing. */
 const pauseMs = 70, mostMs = 350;
+/** The same for the draft, which the browser writes while the author waits. */
+const draftPauseMs = 200, draftMostMs = 1000;
 
 async function start(): Promise<void> {
   const key = new URL(location.href).searchParams.get("key") ?? "";
@@ -40,7 +42,7 @@ interface DeskOptions {
 async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Promise<void> {
   const problems = new Problems(), frame = element<HTMLIFrameElement>("frame"), said = element("said"), troubles = element("troubles"), dirty = element("dirty");
   const wanted = new Set<string>();
-  let version = 0, postedText: string | null = null, ready = false;
+  let version = 0, postedText: string | null = null, ready = false, underlined = "[]";
 
   const editor = createEditor({
     parent: element("text"), text: opened.text, catalogue, cells: () => problems.named(),
@@ -67,7 +69,8 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
     postedText = text;
     page.post({ to: "text", version: ++version, text });
   };
-  const later = throttled(() => { keeper.changed(); postText(); }, pauseMs, mostMs);
+  const sendLater = throttled(postText, pauseMs, mostMs), keepLater = throttled(() => keeper.changed(), draftPauseMs, draftMostMs);
+  const later = Object.assign(() => { sendLater(); keepLater(); }, { now: () => { keepLater.now(); sendLater.now(); } });
   const save = (): void => { later.now(); void keeper.save().catch(() => undefined); };
 
   function hear(message: FromPage): void {
@@ -104,6 +107,9 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
     // Reports about an older text would be underlined in the wrong places; newer ones are on their way.
     if (problems.version !== version || text !== postedText) return;
     const list = problems.list(text), errors = list.filter((problem) => problem.severity === "error");
+    const now = JSON.stringify(list.length === 0 ? [] : [version, list]);
+    if (now === underlined) return;
+    underlined = now;
     editor.underline(list);
     troubles.hidden = errors.length === 0;
     troubles.textContent = errors.length === 1 ? "1 problem" : `${errors.length} problems`;

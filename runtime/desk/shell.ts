@@ -3,9 +3,10 @@
 
 import type { FromPage, ToPage } from "../page/protocol.ts";
 import { cleanStill } from "./cleanStill.ts";
+import { fromDense } from "./dense.ts";
 import { saveFile } from "./saveFile.ts";
 
-/** What an exported file carries beside its still page. Bytes are base64 of gzip. */
+/** What an exported file carries beside its still page. Bytes are dense text of gzip. */
 export interface Carried {
   readonly text: string;
   readonly settings: readonly { readonly name: string; readonly value: unknown }[];
@@ -33,7 +34,7 @@ async function start(): Promise<void> {
     switch (message.page) {
       case "ready": greet(); return;
       case "needFile": void send(message.file); return;
-      case "settled": show(); return;
+      case "drawn": show(); return;
       case "still": still?.replaceChildren(cleanStill(message.html)); return;
       case "saveFile": saveFile(message); return;
       case "openLink": if (/^(https?|mailto):/i.test(message.href)) window.open(message.href, "_blank", "noopener,noreferrer"); return;
@@ -58,11 +59,8 @@ async function start(): Promise<void> {
     if (shown) return;
     shown = true;
     const block = blockInView();
-    // One more frame lets the live page draw what it has just computed.
-    setTimeout(() => {
-      document.documentElement.classList.add("live");
-      if (block !== null) post({ to: "reveal", position: block });
-    }, 60);
+    document.documentElement.classList.add("live");
+    if (block !== null) post({ to: "reveal", position: block });
   }
 }
 
@@ -77,9 +75,8 @@ function blockInView(): number | null {
 
 function contentOf(id: string): string { return document.getElementById(id)?.textContent ?? ""; }
 
-async function unpacked(base64: string): Promise<Uint8Array> {
-  const packed = Uint8Array.from(atob(base64), (sign) => sign.charCodeAt(0));
-  const stream = new Blob([packed]).stream().pipeThrough(new DecompressionStream("gzip"));
+async function unpacked(text: string): Promise<Uint8Array> {
+  const stream = new Blob([fromDense(text)]).stream().pipeThrough(new DecompressionStream("gzip"));
   return new Uint8Array(await new Response(stream).arrayBuffer());
 }
 

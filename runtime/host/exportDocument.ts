@@ -2,7 +2,8 @@
 
 import { gzipSync } from "node:zlib";
 import type { Carried } from "../desk/shell.ts";
-import { scriptOf } from "./frame.ts";
+import { dense } from "../desk/dense.ts";
+import { scriptsOf } from "./frame.ts";
 import { inlineSafe, pagePolicy } from "./policy.ts";
 
 export interface Provenance {
@@ -29,7 +30,7 @@ export function exportDocument({ title, still, carried, provenance }: Export, { 
 <html lang="en">
 <head>
 <meta charset="utf-8">
-<meta http-equiv="Content-Security-Policy" content="${pagePolicy([script, scriptOf(frame)])}">
+<meta http-equiv="Content-Security-Policy" content="${pagePolicy([script, ...scriptsOf(frame)])}">
 <meta name="viewport" content="width=device-width, initial-scale=1">
 <meta name="generator" content="Lagbook ${escape(provenance.version)}">
 <title>${escape(title)}</title>
@@ -48,9 +49,9 @@ ${shellCss}</style>
 `;
 }
 
-/** Bytes as base64 of gzip: a page of 1.4 MB becomes one of 0.6. */
+/** Bytes as dense text of gzip: a live page of 2 MB becomes one of 0.8. */
 export function pack(content: string | Uint8Array): string {
-  return gzipSync(content, { level: 9 }).toString("base64");
+  return dense(gzipSync(content, { level: 9 }));
 }
 
 function madeOf({ notebook, notebookHash, version, made, data, settings }: Provenance): string {
@@ -62,7 +63,8 @@ function madeOf({ notebook, notebookHash, version, made, data, settings }: Prove
 <p>Settings when made: ${set}.</p></details>`;
 }
 
-/** The live page fills the window above a narrow line that says what it was made of. Print always shows the still page,
+/** The live page fills the window above a narrow line that says what it was made of. Until it has drawn what is in view it lies
+ *  unseen over the still page: a browser draws nothing in a frame that is out of the window. Print always shows the still page,
  *  which is kept in step with the live one. */
 const shellCss = `
 #live-place, #live-place iframe { display: none; }
@@ -71,9 +73,9 @@ const shellCss = `
 #made table { border-collapse: collapse; margin: 8px 0; }
 #made th, #made td { text-align: left; font-weight: normal; padding: 1px 16px 1px 0; vertical-align: top; }
 #made thead th { font-size: 12px; }
+#made td:not(.hash), #made tbody th { white-space: nowrap; }
 #made .hash { font-family: "DejaVu Sans Mono", "Liberation Mono", Menlo, Consolas, monospace; font-size: 11px; overflow-wrap: anywhere; }
 #made p { margin: 2px 0; }
-#made td:not(.hash), #made tbody th { white-space: nowrap; }
 @media screen {
   html.live, html.live body { height: 100%; margin: 0; overflow: hidden; }
   html.live body { display: flex; flex-direction: column; }
@@ -82,7 +84,7 @@ const shellCss = `
   html.live #live-place iframe { display: block; width: 100%; height: 100%; border: 0; }
   html.live #made { margin: 0; padding: 3px 20px; max-height: 45vh; overflow: auto; }
 }
-html:not(.live) #live-place { position: fixed; left: -200vw; top: 0; width: 100vw; height: 100vh; display: block; visibility: hidden; }
+html:not(.live) #live-place { position: fixed; left: 0; top: 0; width: 100vw; height: 100vh; display: block; visibility: hidden; }
 html:not(.live) #live-place iframe { display: block; width: 100%; height: 100%; border: 0; }
 @media print {
   #live-place { display: none !important; }

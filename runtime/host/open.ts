@@ -5,7 +5,7 @@ import { realpath } from "node:fs/promises";
 import { basename, dirname, resolve } from "node:path";
 import { EventStreams } from "./events.ts";
 import { isInside, placeInside } from "./folder.ts";
-import { scriptOf } from "./frame.ts";
+import { scriptsOf } from "./frame.ts";
 import { hash } from "./hash.ts";
 import { CannotRun, exit } from "./io.ts";
 import type { Io } from "./io.ts";
@@ -24,7 +24,7 @@ export async function open(command: { readonly file: string; readonly port: numb
   const store = new Store(path);
   await store.read();
   const events = new EventStreams(), key = randomBytes(18).toString("base64url");
-  const framePolicy = pagePolicy([scriptOf(await readPart("frame.html"))]);
+  const framePolicy = pagePolicy([...scriptsOf(await readPart("frame.html"))]);
   const server = createServer({ store, key, events, part: readPart, framePolicy, wanted: (file) => { followData(watcher, path, file).catch(() => undefined); } });
   const listening = await start(server, command.port, path);
   // Not before the port is had: a watcher keeps a command alive that has nothing to serve.

@@ -91,6 +91,10 @@ export function charts(announce: (words: string) => void): Charts {
     part: (key) => places.get(key)?.part ?? null,
     async svg(key) { const place = places.get(key); if (!place) return null; await place.busy; return place.chart ? place.chart.svg() : null; },
     drawAll() { for (const place of places.values()) { place.near = true; void draw(place); } },
-    async drawn() { await Promise.all([...places.values()].map((place) => place.busy)); },
+    async drawn() {
+      // A new place is measured, and found to be near, with one of the next frames; a page that is hidden has none.
+      if ([...places.values()].some((place) => place.width === 0)) await new Promise((resolve) => { requestAnimationFrame(() => requestAnimationFrame(resolve)); setTimeout(resolve, 100); });
+      await Promise.all([...places.values()].map((place) => place.busy));
+    },
   };
 }

@@ -20,16 +20,16 @@ export interface EngineEars {
 
 export const beatMs = 500;
 
-/** @param source the worker's program: a classic script */
-export function engineLink(source: string, ears: EngineEars): EngineLink {
+/** @param source the worker's program: a classic script
+ *  @param first  a worker that runs it already, and to which nothing has been said */
+export function engineLink(source: string, first: Worker, ears: EngineEars): EngineLink {
   const address = URL.createObjectURL(new Blob([source], { type: "text/javascript" }));
   let worker: Worker;
   let beat = 0;
   /** When the oldest unanswered beat was sent; null when all are answered. */
   let asked: number | null = null;
 
-  const start = (): void => {
-    const mine = new Worker(address);
+  const start = (mine: Worker): void => {
     worker = mine; asked = null;
     mine.addEventListener("message", (event: MessageEvent) => {
       if (mine !== worker) return;
@@ -39,7 +39,7 @@ export function engineLink(source: string, ears: EngineEars): EngineLink {
     });
     mine.addEventListener("error", (event) => { if (mine === worker) { event.preventDefault(); ears.broken(event.message || "The computing part of this page stopped."); } });
   };
-  start();
+  start(first);
   const timer = setInterval(() => {
     const now = performance.now();
     if (asked !== null) { ears.silent(now - asked); return; }
@@ -49,7 +49,7 @@ export function engineLink(source: string, ears: EngineEars): EngineLink {
 
   return {
     send(message) { worker.postMessage(message, []); },
-    restart() { worker.terminate(); start(); },
+    restart() { worker.terminate(); start(new Worker(address)); },
     close() { clearInterval(timer); worker.terminate(); URL.revokeObjectURL(address); },
   };
 }

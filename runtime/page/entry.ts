@@ -1,9 +1,9 @@
-// Where the page's bundle starts. The bundler puts the engine's worker in place of LAGBOOK_ENGINE (a text).
+// Where the page's script starts. The frame's document holds the engine's program and has started it already.
 
 import { startPage } from "./page.ts";
 import { parentWindow } from "./parentWindow.ts";
 
-declare const LAGBOOK_ENGINE: string;
+declare const lagbookEngine: Worker;
 
 const root = document.getElementById("page") ?? document.body.appendChild(Object.assign(document.createElement("main"), { id: "page" }));
-startPage({ root, workerSource: LAGBOOK_ENGINE, parent: parentWindow() });
+startPage({ root, workerSource: document.getElementById("engine")?.textContent ?? "", worker: lagbookEngine, parent: parentWindow() });

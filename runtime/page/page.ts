@@ -25,26 +25,20 @@ import type { CellReport, FromEngine, ToEngine } from "../engine/messages.ts";
 import css from "./page.css";
 
 export interface PageOptions {
-  /** The element that the page fills. What stands in it (the pre-rendered page) stays until the first answer is complete. */
+  /** The element that the page fills. */
   readonly root: HTMLElement;
   /** The engine's worker as text: a classic script. */
   readonly workerSource: string;
+  /** A worker that was started with it. */
+  readonly worker: Worker;
   /** The window around the page; null where the page stands alone. */
   readonly parent: ParentLink | null;
 }
 
-export interface Page {
-  /** A message as from the window around the page. */
-  hear(message: ToPage): void;
-  /** Resolves when nothing waits to be drawn. */
-  drawn(): Promise<void>;
-}
-
-export function startPage({ root, workerSource, parent }: PageOptions): Page {
+export function startPage({ root, workerSource, worker, parent }: PageOptions): void {
   const post = (message: FromPage): void => parent?.post(message);
   addStyle();
-  const still = root.firstElementChild;
-  const live = root.appendChild(Object.assign(document.createElement("div"), { className: still ? "live-page getting-ready" : "live-page" }));
+  const live = root.appendChild(Object.assign(document.createElement("div"), { className: "live-page" }));
   const article = live.appendChild(Object.assign(document.createElement("article"), { className: "page" }));
   const rest = live.appendChild(Object.assign(document.createElement("div"), { className: "rest" }));
   const voice = live.appendChild(Object.assign(document.createElement("div"), { className: "unseen" }));
@@ -68,7 +62,7 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
   const stills = stillPost(state, post);
   const pace = paces(draw), away = outOfSight(article);
   const dog = watchdog(state, pace.frame);
-  const engine = engineLink(workerSource, {
+  const engine = engineLink(workerSource, worker, {
     hear: fromEngine, silent: (ms) => dog.silent(ms), answered: (running) => dog.answered(running),
     broken: (message) => { ui.broken = message; pace.frame(); },
   });
@@ -91,7 +85,6 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
 
   /** Not worth a drawing of its own: out of sight, or at work for what mostly is a few frames. The strip shows controls wherever the reader is. */
   const waits = (cell: CellReport): boolean => cell.state === "working" || cell.state === "waiting" || (away(cell.id) && controlOf(cell) === null);
-  let done: Promise<void> = Promise.resolve();
   function draw(only: "sight" | "all"): void {
     const later = only === "sight" ? waits : () => false;
     keepFocus(() => {
@@ -100,14 +93,13 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
       drawRest([noticeTree(dog.notice(), ui.broken), stripTree(controls, ui.stripOpen, Object.keys(state.moved), ui.canEdit)].filter((tree) => tree !== null));
     });
     for (const cell of state.cells.values()) if (!later(cell)) for (const [index, part] of (cell.show ?? []).entries()) if (part.part === "chart") charts.want(chartKey(cell.id, index), picked(part, ui.picks.get(chartKey(cell.id, index))));
-    done = charts.drawn();
-    if (only === "all" && state.settled && state.version === (text?.version ?? 0)) void done.then(complete);
+    if (only === "all" && state.settled && state.version === (text?.version ?? 0)) void charts.drawn().then(complete);
   }
 
   /** Everything is drawn as the text and the controls say: whoever waits for it may look. */
   function complete(): void {
     root.dataset.drawn = "yes";
-    if (still?.isConnected) { still.remove(); live.classList.remove("getting-ready"); }
+    post({ page: "drawn" });
   }
 
   let saying = 0;
@@ -148,12 +140,11 @@ export function startPage({ root, workerSource, parent }: PageOptions): Page {
     startAgain() { engine.restart(); sayAllAgain(); pace.frame(); },
   });
   listen(root, actions);
-  watchSize(article, (width) => engine.send({ to: "width", width }), live, (height) => post({ page: "height", height }));
+  watchWidth(article, (width) => engine.send({ to: "width", width }));
   printWhole(article, () => { charts.drawAll(); });
   engine.send({ to: "width", width: figureWidth(article) });
   parent?.listen(fromParent);
   post({ page: "ready" });
-  return { hear: fromParent, async drawn() { await new Promise((resolve) => requestAnimationFrame(resolve)); await done; } };
 }
 
 /** Paper cannot be unfolded: details are open while it is printed. */
@@ -184,14 +175,12 @@ function noticeTree(notice: { readonly words: string; readonly cell: string | nu
 /** Pixels that a figure has across. */
 function figureWidth(article: HTMLElement): number { return Math.max(240, Math.min(760, Math.floor(article.clientWidth || 704))); }
 
-function watchSize(article: HTMLElement, width: (px: number) => void, all: HTMLElement, height: (px: number) => void): void {
-  let told = figureWidth(article); let toldHeight = 0; let timer = 0;
+function watchWidth(article: HTMLElement, width: (px: number) => void): void {
+  let told = figureWidth(article); let timer = 0;
   new ResizeObserver(() => {
-    const tall = Math.ceil(all.scrollHeight);
-    if (tall !== toldHeight) { toldHeight = tall; height(tall); }
     const now = figureWidth(article);
     if (Math.abs(now - told) < told / 10) return;
     clearTimeout(timer);
     timer = window.setTimeout(() => { told = now; width(now); }, 250);
-  }).observe(all);
+  }).observe(article);
 }

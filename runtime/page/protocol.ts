@@ -38,8 +38,6 @@ export interface CellNote {
 export type FromPage =
   /** Ready for messages; send the text now. */
   | { readonly page: "ready" }
-  /** Height of the content in CSS pixels. */
-  | { readonly page: "height"; readonly height: number }
   | { readonly page: "needFile"; readonly file: string }
   /** Show this place of the text; `focus`: the reader asked for it, so the editor may take the focus. */
   | { readonly page: "goToSource"; readonly from: number; readonly to: number; readonly focus: boolean }
@@ -49,16 +47,17 @@ export type FromPage =
   | { readonly page: "accept"; readonly version: number; readonly numbers: readonly { readonly index: number; readonly now: string }[] }
   /** The text as understood: for underlining problems. */
   | { readonly page: "outline"; readonly version: number; readonly title: string; readonly problems: readonly ProblemReport[] }
-  /** States, at most once a frame; only those that changed since the last such message, except that `all` starts afresh. */
+  /** States of cells, and of live numbers those that are undecided or no longer are; only what changed since the last such message, except that `all` starts afresh. */
   | { readonly page: "states"; readonly version: number; readonly all: boolean; readonly cells: readonly CellNote[]; readonly numbers: readonly NumberReport[] }
   | { readonly page: "settled"; readonly version: number; readonly moved: Readonly<Record<string, unknown>> }
+  /** All that the text and the controls say has been computed and drawn. */
+  | { readonly page: "drawn" }
   /** Save these bytes as a file (a sandboxed frame cannot). */
   | { readonly page: "saveFile"; readonly name: string; readonly type: string; readonly bytes: Uint8Array }
   /** The reader clicked a link to the outside (http, https or mailto only): open it in a new tab, without opener or referrer. */
   | { readonly page: "openLink"; readonly href: string }
   /** The reader pressed one of the desk's keys (save, undo, …) while the page had the focus. */
   | { readonly page: "key"; readonly key: string; readonly ctrl: boolean; readonly meta: boolean; readonly shift: boolean; readonly alt: boolean }
-  | { readonly page: "scrolled"; readonly position: number }
   /** The page as it stands now, as HTML, for the shell of an exported file to print: sent after it has been asked for (`sendStills`), whenever all has settled and been drawn. */
   | { readonly page: "still"; readonly html: string };
 

@@ -8,15 +8,17 @@ export function statesPost(state: PageState, post: (message: FromPage) => void):
   const cells = new Set<string>(); const numbers = new Set<number>();
   /** What was said last, as text: a cell that ran and stands as it stood is nothing to tell. */
   const said = new Map<string | number, string>();
-  let all = false; let timer = 0;
+  let all = false; let timer: ReturnType<typeof setTimeout> | null = null;
   const news = (note: CellNote | NumberReport): boolean => {
     const key = "id" in note ? note.id : note.index, now = JSON.stringify(note);
     if (said.get(key) === now) return false;
+    // Of numbers only what is wrong is told, and that it no longer is: a long text has thousands, at every key.
+    if (!("id" in note) && note.state !== "undecided") return said.delete(key);
     said.set(key, now);
     return true;
   };
   const send = (): void => {
-    timer = 0;
+    timer = null;
     if (all) said.clear();
     const spoken = (all ? [...state.cells.values()] : [...cells].flatMap((id) => state.cells.get(id) ?? [])).map(noteOf).filter(news);
     const counted = (all ? [...state.numbers.values()] : [...numbers].flatMap((index) => state.numbers.get(index) ?? [])).filter(news);
@@ -30,7 +32,7 @@ export function statesPost(state: PageState, post: (message: FromPage) => void):
       else if (message.from === "number") numbers.add(message.number.index);
       else return;
       // A timer, not an animation frame: those stand still while the desk hides the page.
-      if (timer === 0) timer = window.setTimeout(send, 40);
+      timer ??= setTimeout(send, 40);
     },
   };
 }

@@ -34,7 +34,7 @@ async function open(javaScriptEnabled = true, width = 1280): Promise<Opened> {
 }
 
 const live = async (page: Page) => {
-  await page.waitForSelector("html.live", { timeout: 15000 });
+  await page.waitForSelector("html.live", { timeout: 50_000 });
   return (await (await page.waitForSelector("#live-place iframe")).contentFrame())!;
 };
 

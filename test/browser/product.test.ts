@@ -1,10 +1,11 @@
-import { cpSync, mkdtempSync, readFileSync, rmSync } from "node:fs";
+import { cpSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join, resolve } from "node:path";
 import type { Browser, BrowserContext, Frame, Page } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { launch, openDesk, pageOf, serve } from "./deskOpen.ts";
 import type { Served } from "./deskOpen.ts";
+import { seriousFaults } from "./seriousFaults.ts";
 
 // The main example as its reader meets it: one slider moved, and everything that hangs on it follows.
 
@@ -89,9 +90,42 @@ describe("the main example", () => {
     expect(await said("model")).toContain("There is no `qq`");
     expect(await frame.locator("#cell-leftover").getAttribute("data-state")).toBe("blocked");
     expect(await said("leftover")).toContain("model");
+    await expect.poll(() => page.locator(".cm-lintRange-error").count()).toBe(1);
+    expect(await page.locator(".cm-lintRange-error").innerText()).toBe("qq");
     for (const sound of ["crossings", "steady", "shape", "orders"]) expect(await frame.locator(`#cell-${sound}`).getAttribute("data-state")).toBe("current");
     await page.keyboard.press("Backspace");
     await expect.poll(async () => { await said("model"); return frame.locator("#cell-model").getAttribute("data-state"); }, { timeout: 15_000 }).toBe("current");
+    await expect.poll(() => page.locator(".cm-lintRange-error").count()).toBe(0);
+  });
+
+  it("stops a script that never ends, and leaves the rest alone", async () => {
+    await page.locator(".cm-content").focus();
+    await page.keyboard.press("ControlOrMeta+End");
+    await page.keyboard.insertText("\n\n```script: stuck\nexport const never = (() => { while (true); })();\n```\n");
+    frame = await (await page.waitForSelector("#frame")).contentFrame() as Frame;
+    await frame.locator("#cell-stuck").getByRole("button", { name: "stop this cell" }).click();
+    await expect.poll(() => frame.locator("#cell-stuck").getAttribute("data-state")).toBe("failed");
+    expect(await said("stuck")).toContain("Stopped by hand");
+    expect(await frame.locator("#cell-model").getAttribute("data-state")).toBe("current");
+    await page.locator(".cm-content").focus();
+    await page.keyboard.press("ControlOrMeta+z");
+    await expect.poll(() => frame.locator("#cell-stuck").count()).toBe(0);
+  });
+
+  it("computes again when its data change on disk", async () => {
+    const path = join(served.folder, "data/ferry.csv"), data = readFileSync(path, "utf8"), before = await criterion();
+    writeFileSync(path, data.trimEnd().split("\n").slice(0, -1).join("\n"));
+    await expect.poll(criterion, { timeout: 30_000 }).not.toBe(before);
+    writeFileSync(path, data);
+    await expect.poll(criterion, { timeout: 30_000 }).toBe(before);
+  });
+
+  it("has no serious fault of accessibility, desk and page, light and dark", async () => {
+    for (const colorScheme of ["light", "dark"] as const) {
+      await page.emulateMedia({ colorScheme });
+      expect(await seriousFaults(page)).toEqual([]);
+      expect(await seriousFaults(await pageOf(page))).toEqual([]);
+    }
   });
 
   it("is left as it was on disk until it is saved, and asks nothing of anybody else", async () => {
@@ -99,5 +133,17 @@ describe("the main example", () => {
     const own = new URL(served.url).origin;
     expect(asked.filter((url) => !url.startsWith(own) && !/^(blob|data|about):/.test(url))).toEqual([]);
     expect(faults).toEqual([]);
+  });
+
+  it("saves an edit by keyboard, and nothing but the edit", async () => {
+    const before = readFileSync(served.path, "utf8");
+    await page.locator(".cm-content").focus();
+    await page.keyboard.press("ControlOrMeta+End");
+    await page.keyboard.insertText("One more line.");
+    await page.keyboard.press("ControlOrMeta+s");
+    await expect.poll(() => readFileSync(served.path, "utf8")).toBe(`${before}One more line.`);
+    await page.keyboard.press("ControlOrMeta+z");
+    await page.keyboard.press("ControlOrMeta+s");
+    await expect.poll(() => readFileSync(served.path, "utf8")).toBe(before);
   });
 });

@@ -3,8 +3,8 @@
 import { build } from "esbuild";
 import { chromium } from "playwright-core";
 import type { Browser, Page } from "playwright-core";
-import { createHash } from "node:crypto";
 import { join } from "node:path";
+import { frameDocument } from "../../../runtime/host/frame.ts";
 import { fakeText } from "./fakeNotebook.ts";
 
 const here = import.meta.dirname;
@@ -29,10 +29,7 @@ export interface Served {
 /** The desk's part is played by this outer document: it keeps every message from the page in `heard`. */
 export async function outerDocument({ engine: entry = join(here, "fakeEngine.ts"), inject = [], define = {}, text = fakeText, files = {} }: Served = {}): Promise<string> {
   const engine = await bundle(entry, define, ["worker"], inject);
-  const page = (await bundle(join(top, "runtime/page/entry.ts"), { LAGBOOK_ENGINE: JSON.stringify(engine) })).replaceAll("</script", "<\\/script");
-  const hash = createHash("sha256").update(page).digest("base64");
-  const policy = `default-src 'none'; script-src 'sha256-${hash}' blob:; worker-src blob:; style-src 'unsafe-inline'; img-src data: blob:; font-src data:; connect-src 'none'; form-action 'none'; base-uri 'none'; frame-src 'none'; object-src 'none'`;
-  const inner = `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width"><title>Page</title><meta http-equiv="Content-Security-Policy" content="${policy}"></head><body><main id="page"></main><script>${page}</script></body></html>`;
+  const inner = frameDocument(await bundle(join(top, "runtime/page/entry.ts")), engine);
   const script = `const frame = document.querySelector("iframe"); window.heard = []; const files = ${JSON.stringify(files).replaceAll("</script", "<\\/script")}; const canEdit = !location.hash.includes("read");
     addEventListener("message", (event) => { if (event.source !== frame.contentWindow) return; heard.push(event.data);
       if (event.data.page === "needFile") { const found = files[event.data.file]; say({ to: "file", file: event.data.file, bytes: found === undefined ? null : new TextEncoder().encode(found) }); }
