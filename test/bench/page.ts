@@ -9,6 +9,7 @@ import { performance } from "node:perf_hooks";
 import { pathToFileURL } from "node:url";
 import type { Browser, Frame } from "playwright-core";
 import { command, launch, openDesk, serve } from "../browser/deskOpen.ts";
+import type { Desk } from "../browser/deskOpen.ts";
 
 type Print = (line: string) => void;
 
@@ -69,15 +70,23 @@ async function sliders(browser: Browser, print: Print): Promise<void> {
   for (const { name, text, files, look, budget } of cases) {
     const folder = mkdtempSync(join(tmpdir(), "lagbook-bench-"));
     cpSync(join(examples, "data"), join(folder, "data"), { recursive: true });
-    const served = await serve(text, files, undefined, folder);
+    await withDesk(browser, text, files, folder, async ({ frame }) => {
+      await frame.locator(`#cell-${look}`).scrollIntoViewIfNeeded();
+      await frame.waitForTimeout(800);
+      const times = await moves(frame, look, 50);
+      const memory = await frame.evaluate(() => (performance as unknown as { memory?: { usedJSHeapSize: number } }).memory?.usedJSHeapSize ?? NaN);
+      print(`  ${name}: in view ${middle(times.seen)} and ${worst(times.seen)}; all settled ${middle(times.all)} and ${worst(times.all)} (budget ${budget}); page heap ${(memory / 1e6).toFixed(0)} MB`);
+    });
+  }
+}
+
+/** A desk for the time of a measurement: however that ends, neither the desk nor its server stays. */
+async function withDesk(browser: Browser, text: string, files: Readonly<Record<string, string>>, folder: string, measure: (desk: Desk) => Promise<void>): Promise<void> {
+  const served = await serve(text, files, undefined, folder);
+  try {
     const context = await browser.newContext({ viewport: { width: 1400, height: 900 } });
-    const { frame } = await openDesk(context, served.url);
-    await frame.locator(`#cell-${look}`).scrollIntoViewIfNeeded();
-    await frame.waitForTimeout(800);
-    const times = await moves(frame, look, 50);
-    const memory = await frame.evaluate(() => (performance as unknown as { memory?: { usedJSHeapSize: number } }).memory?.usedJSHeapSize ?? NaN);
-    print(`  ${name}: in view ${middle(times.seen)} and ${worst(times.seen)}; all settled ${middle(times.all)} and ${worst(times.all)} (budget ${budget}); page heap ${(memory / 1e6).toFixed(0)} MB`);
-    await context.close();
+    try { await measure(await openDesk(context, served.url)); } finally { await context.close(); }
+  } finally {
     await served.stop();
   }
 }
@@ -130,17 +139,14 @@ async function exported(browser: Browser, print: Print): Promise<void> {
 
 async function keys(browser: Browser, print: Print): Promise<void> {
   const lines = Array.from({ length: 2500 }, (_, i) => (i % 50 === 0 ? `## Part ${i}\n` : `A line of prose with a [number](<=2 * ${i}>) in it.\n`)).join("\n");
-  const served = await serve(`# Long\n\n\`\`\`slider: q\nfrom: 0\nto: 4\n\`\`\`\n\n${lines}`, {});
-  const context = await browser.newContext({ viewport: { width: 1400, height: 900 } });
-  const { page } = await openDesk(context, served.url);
-  await page.locator(".cm-line").nth(8).click();
-  const times: number[] = [];
-  await page.evaluate(() => { (window as unknown as { keys: number[] }).keys = []; document.addEventListener("keydown", () => { const start = performance.now(); requestAnimationFrame(() => { const port = new MessageChannel(); port.port1.addEventListener("message", () => { (window as unknown as { keys: number[] }).keys.push(performance.now() - start); }); port.port1.start(); port.port2.postMessage(0); }); }, true); });
-  for (let i = 0; i < 60; i++) { await page.keyboard.type("a"); await page.waitForTimeout(30); }
-  times.push(...await page.evaluate(() => (window as unknown as { keys: number[] }).keys));
-  print(`a key in a 5,000-line notebook, to its frame: ${middle(times)} and ${worst(times)} (budget 16, waiting for the display's next frame included)`);
-  await context.close();
-  await served.stop();
+  const text = `# Long\n\n\`\`\`slider: q\nfrom: 0\nto: 4\n\`\`\`\n\n${lines}`;
+  await withDesk(browser, text, {}, mkdtempSync(join(tmpdir(), "lagbook-bench-")), async ({ page }) => {
+    await page.locator(".cm-line").nth(8).click();
+    await page.evaluate(() => { (window as unknown as { keys: number[] }).keys = []; document.addEventListener("keydown", () => { const start = performance.now(); requestAnimationFrame(() => { const port = new MessageChannel(); port.port1.addEventListener("message", () => { (window as unknown as { keys: number[] }).keys.push(performance.now() - start); }); port.port1.start(); port.port2.postMessage(0); }); }, true); });
+    for (let i = 0; i < 60; i++) { await page.keyboard.type("a"); await page.waitForTimeout(30); }
+    const times = await page.evaluate(() => (window as unknown as { keys: number[] }).keys);
+    print(`a key in a 5,000-line notebook, to its frame: ${middle(times)} and ${worst(times)} (budget 16, waiting for the display's next frame included)`);
+  });
 }
 
 function verifying(print: Print): void {
