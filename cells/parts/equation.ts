@@ -7,24 +7,32 @@ import { differenceLags, originalName, scaleText } from "./scale.ts";
 /** A symbol in both forms. */
 interface Both { readonly tex: string; readonly text: string }
 
-/** phi(B) Phi(B^s) (differences of (z - regressors) - mean) = theta(B) Theta(B^s) e, numbers in place of the letters. */
-export function backshiftEquation(fit: Fit): EquationPart {
+/** phi(B) Phi(B^s) (differences of (z - regressors) - mean) = theta(B) Theta(B^s) e, numbers in place of the letters.
+ *  @param width  of the column it is set in, in pixels */
+export function backshiftEquation(fit: Fit, width = 640): EquationPart {
   const factors = [
     polynomial(fit.phi, 1, -1), polynomial(fit.seasonalPhi, fit.seasonLength, -1),
   ].filter(isGiven);
-  const differences = differenceLags(fit.series.steps).map(lag => differenceFactor(lag));
-  const inner = noise(fit, differences);
+  const differences = differenceLags(fit.series.steps).map(lag => differenceFactor(lag)), regression = regressionLine(fit);
+  const inner = product([...differences, regression === null ? at(scaleSymbol(fit).inner, 0) : at(symbol("n", "n"), 0)]);
   const level = fit.mean === 0 ? inner : bracket(join([differences.length === 0 ? unbracketed(inner) : inner, signed(-fit.mean)]));
   const right = [
     polynomial(fit.theta, 1, 1), polynomial(fit.seasonalTheta, fit.seasonLength, 1), symbol("\\varepsilon_t", "e[t]"),
   ].filter(isGiven);
-  const left = [...factors, level];
+  const left = product([...factors, level]), shocks = product(right), variance = number(fit.sigma2);
+  // Sides that are long for their column stand below each other, and the variance below them.
+  const room = width / LETTER, whole = left.text.length + shocks.text.length;
+  const long = whole > room, below = long ? shocks.text.length + 20 > room : whole + 20 > room;
+  const sides = long ? `& ${left.tex} \\\\ & \\quad {} = ${shocks.tex}` : `& ${left.tex} = ${shocks.tex}`;
   return {
     part: "equation", title: "Backshift form",
-    tex: `${product(left).tex} = ${product(right).tex}, \\qquad \\operatorname{var}\\varepsilon_t = ${number(fit.sigma2).tex}`,
-    text: `${product(left).text} = ${product(right).text}, var e = ${number(fit.sigma2).text}; ${legend(fit)}`,
+    tex: `\\begin{aligned} ${regression === null ? "" : `& ${regression.tex.replace("&", "")} \\\\ `}${sides}, ${below ? "\\\\ &" : "\\qquad"} \\operatorname{var}\\varepsilon_t = ${variance.tex} \\end{aligned}`,
+    text: `${regression === null ? "" : `${regression.text}; `}${left.text} = ${shocks.text}, var e = ${variance.text}; ${legend(fit)}`,
   };
 }
+
+/** What a letter of the plain form takes when it is set, on average, in pixels. */
+const LETTER = 7.2;
 
 /** The same with all products carried out: the value of a period from earlier values and shocks. */
 export function writtenOutEquation(fit: Fit): EquationPart {
@@ -33,15 +41,13 @@ export function writtenOutEquation(fit: Fit): EquationPart {
     ...differenceLags(fit.series.steps).map(lag => differencePolynomial(lag)),
   ]);
   const movingAverage = multiplyOut([lagPolynomial(fit.theta, 1, 1), lagPolynomial(fit.seasonalTheta, fit.seasonLength, 1)]);
-  const { inner, name } = scaleSymbol(fit);
-  const regressed = Object.keys(fit.beta).length > 0;
-  const of = (lag: number): Both => regressed ? at("n", "n", lag) : at(inner.tex, inner.text, lag);
+  const { inner, name } = scaleSymbol(fit), regression = regressionLine(fit);
+  const of = (lag: number): Both => at(regression === null ? inner : symbol("n", "n"), lag);
   const terms: Both[] = [];
   if (fit.constant !== 0) terms.push(number(fit.constant));
   autoregressive.forEach((value, lag) => { if (lag > 0 && value !== 0) terms.push(times(-value, of(lag))); });
-  movingAverage.forEach((value, lag) => { if (value !== 0) terms.push(times(value, at("\\varepsilon", "e", lag))); });
+  movingAverage.forEach((value, lag) => { if (value !== 0) terms.push(times(value, at(symbol("\\varepsilon", "e"), lag))); });
   const lines = broken(terms);
-  const regression = regressed ? regressionLine(fit, inner) : null;
   const lead = of(0);
   return {
     part: "equation", title: `Written out: ${name} from earlier values and shocks`,
@@ -55,7 +61,8 @@ export function legend(fit: Fit): string {
   const unit = fit.series.steps[0]?.before.unit || fit.series.unit;
   const letter = scaleSymbol(fit).inner.text === "z" ? `z is ${scaleText({ ...fit.series, steps: fit.series.steps.filter(step => step.step !== "difference") })}` : `y is ${originalName(fit.series)}${unit ? ` (${unit})` : ""}`;
   const regressed = Object.keys(fit.beta).length > 0 ? ", n what the regressors leave" : "";
-  return `${letter}${regressed}, ε (in plain text: e) the shock of the period, B the step back by one period`;
+  const level = fit.mean === 0 ? "" : `, ${number(fit.mean).text} the ${differenceLags(fit.series.steps).length > 0 ? "drift (the mean of the differences)" : "process mean"}, ${number(fit.constant).text} the equation's constant`;
+  return `${letter}${regressed}${level}, ε (in plain text: e) the shock of the period, B the step back by one period`;
 }
 
 const symbol = (tex: string, text: string): Both => ({ tex, text });
@@ -118,18 +125,12 @@ function polynomial(coefficients: Float64Array, length: number, sign: 1 | -1): B
 function backshift(lag: number): Both { return lag === 1 ? symbol("B", "B") : symbol(`B^{${lag}}`, `B^${lag}`); }
 function differenceFactor(lag: number): Both { return symbol(`(1 - ${backshift(lag).tex})`, `(1 - ${backshift(lag).text})`); }
 
-/** The differenced series, less its regression part. */
-function noise(fit: Fit, differences: readonly Both[]): Both {
-  const { inner } = scaleSymbol(fit);
-  const regression = Object.entries(fit.beta).map(([name, value]) => times(-value, regressor(name)));
-  const base = at(inner.tex, inner.text, 0);
-  const level = regression.length === 0 ? base : bracket(join([base, ...regression]));
-  return product([...differences, level]);
-}
-
-function regressionLine(fit: Fit, inner: Both): Both {
-  const sum = join([at(inner.tex, inner.text, 0), ...Object.entries(fit.beta).map(([name, value]) => times(-value, regressor(name)))]);
-  return symbol(`n_t = {} & ${sum.tex}`, `n[t] = ${sum.text}`);
+/** What the regressors leave of the scale before the differences; null without regressors. */
+function regressionLine(fit: Fit): Both | null {
+  const parts = Object.entries(fit.beta).map(([name, value]) => times(-value, regressor(name)));
+  if (parts.length === 0) return null;
+  const lines = broken([at(scaleSymbol(fit).inner, 0), ...parts]);
+  return symbol(`n_t = {} & ${lines.join(" \\\\ & \\quad ")}`, `n[t] = ${join([at(scaleSymbol(fit).inner, 0), ...parts]).text}`);
 }
 
 /** Names of regressors may hold any letters: TeX's special ones are set as themselves. */
@@ -157,7 +158,7 @@ function stepSymbol(inner: Both, step: AppliedStep): Both | null {
   return null;
 }
 
-function at(tex: string, text: string, lag: number): Both {
+function at({ tex, text }: Both, lag: number): Both {
   const index = lag === 0 ? "t" : `t-${lag}`;
   // A power already stands on "y^{(0.3)}": the index goes below the same letter.
   return symbol(`${tex}_{${index}}`, `${text}[${index}]`);
@@ -190,13 +191,12 @@ function multiplyOut(factors: readonly (readonly number[])[]): readonly number[]
   return product.map(value => Math.abs(value) < 1e-14 ? 0 : value);
 }
 
-/** A long sum in lines of five terms, so that it fits a column of text. */
-function broken(terms: readonly Both[]): readonly string[] {
-  const size = 5;
+/** A long sum in lines of a few terms, so that it fits a column of text. */
+function broken(terms: readonly Both[], size = 4): readonly string[] {
   const lines: string[] = [];
   for (let from = 0; from < terms.length; from += size) {
     const line = join(terms.slice(from, from + size)).tex;
-    lines.push(from === 0 || line.startsWith("-") ? line : `{} + ${line}`);
+    lines.push(from === 0 ? line : line.startsWith("-") ? `{} - ${line.slice(1)}` : `{} + ${line}`);
   }
   return lines.length === 0 ? ["0"] : lines;
 }

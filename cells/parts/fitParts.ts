@@ -5,7 +5,7 @@ import { timePlot, type Line } from "./chart.ts";
 import { details } from "./part.ts";
 import type { Part, TablePart, TextPart } from "./part.ts";
 import { backshiftEquation, legend, writtenOutEquation } from "./equation.ts";
-import { intervalChart } from "./intervalChart.ts";
+import { intervalChart, type IntervalRow } from "./intervalChart.ts";
 import { rootsChart } from "./rootsChart.ts";
 import { axisTitle, differenceLags, scaleText } from "./scale.ts";
 import { capital, count, decimals, figure, listOf, percent } from "./words.ts";
@@ -25,12 +25,12 @@ export function fitParts(fit: Fit, width: number): readonly Part[] {
   return [
     { part: "text", text: openingSentence(fit) },
     ...cautions(fit),
-    backshiftEquation(fit),
+    backshiftEquation(fit, width),
     writtenOutEquation(fit),
     { part: "text", tone: "note", text: `Here ${legend(fit)}.` },
     ...intervalCharts(coefficients),
     usedSentence(fit),
-    ...details([...(coefficients.length > 0 ? [coefficientTable(coefficients)] : []), ...rootParts(fit), ...usedChart(fit, width)]),
+    ...details([...(coefficients.length > 0 ? [coefficientTable(coefficients, fit)] : []), ...rootParts(fit, width), ...usedChart(fit, width)]),
     {
       part: "figures", figures: [
         { label: "log-likelihood", value: fit.logLikelihood, format: ",.2f" },
@@ -60,7 +60,8 @@ function relativeError(fit: Fit): string {
 }
 
 function cautions(fit: Fit): readonly TextPart[] {
-  const parts: TextPart[] = fit.notes.map(note => ({ part: "text", tone: note.tone, text: note.text }));
+  // How many values are missing stands in the sentence about the observations.
+  const parts: TextPart[] = fit.notes.filter(note => note.code !== "gaps").map(note => ({ part: "text", tone: note.tone, text: note.text }));
   if (!fit.converged && !fit.notes.some(note => /converg/i.test(note.text))) {
     parts.unshift({ part: "text", tone: "caution", text: "The search for the best coefficients did not settle: take these figures as provisional, and try a smaller model." });
   }
@@ -84,10 +85,9 @@ export function coefficientsOf(fit: Fit): readonly Coefficient[] {
   side(fit.theta, se.theta, seRobust.theta, hold.theta, i => `MA lag ${i + 1}`);
   side(fit.seasonalPhi, se.seasonalPhi, seRobust.seasonalPhi, hold.seasonalPhi, i => `seasonal AR lag ${(i + 1) * s}`);
   side(fit.seasonalTheta, se.seasonalTheta, seRobust.seasonalTheta, hold.seasonalTheta, i => `seasonal MA lag ${(i + 1) * s}`);
-  const differenced = fit.series.steps.some(step => step.step === "difference");
   const meanHeld = typeof hold.mean === "number";
   if (fit.mean !== 0 || Number.isFinite(se.mean) || meanHeld) {
-    list.push({ label: differenced ? "drift a period" : "mean", group: "level", value: fit.mean, se: se.mean, seRobust: seRobust.mean, held: meanHeld });
+    list.push({ label: differenced(fit) ? "drift a period" : "mean", group: "level", value: fit.mean, se: se.mean, seRobust: seRobust.mean, held: meanHeld });
   }
   for (const [name, value] of Object.entries(fit.beta)) {
     list.push({ label: name, group: "regressor", value, se: se.beta[name], seRobust: seRobust.beta[name], held: typeof hold.beta?.[name] === "number" });
@@ -95,13 +95,15 @@ export function coefficientsOf(fit: Fit): readonly Coefficient[] {
   return list;
 }
 
+function differenced(fit: Fit): boolean { return fit.series.steps.some(step => step.step === "difference"); }
+
 function intervalCharts(coefficients: readonly Coefficient[]): readonly Part[] {
   if (coefficients.length === 0) return [{ part: "text", text: "The model has no coefficients besides the variance of its shocks." }];
   const lags = coefficients.filter(c => c.group === "lags");
   const regressors = coefficients.filter(c => c.group === "regressor");
   const charts: Part[] = [];
-  if (lags.length > 0) charts.push(intervalChart("Lag coefficients against zero", altOf(lags), "coefficient, with its 95% interval", lags.map(intervalRow)));
-  if (regressors.length > 1) charts.push(intervalChart("Effects of the regressors", altOf(regressors), "effect on the modelled scale, with its 95% interval", regressors.map(intervalRow)));
+  if (lags.length > 0) charts.push(intervalChart("Lag coefficients against zero", altOf(lags), "coefficient ± standard error, with its 95% interval", lags.map(intervalRow)));
+  if (regressors.length > 1) charts.push(intervalChart("Effects of the regressors", altOf(regressors), "effect on the modelled scale ± standard error, with its 95% interval", regressors.map(intervalRow)));
   return charts;
 }
 
@@ -110,10 +112,10 @@ function limits(c: Coefficient): { low: number; high: number } {
   return { low: c.value - z * c.se, high: c.value + z * c.se };
 }
 
-function intervalRow(c: Coefficient): { label: string; value: number; low: number; high: number; remark?: string } {
+function intervalRow(c: Coefficient): IntervalRow {
   if (c.held) return { label: c.label, value: c.value, low: NaN, high: NaN, remark: "(held)" };
   if (!Number.isFinite(c.se)) return { label: c.label, value: c.value, low: NaN, high: NaN, remark: "(no interval)" };
-  return { label: c.label, value: c.value, ...limits(c) };
+  return { label: c.label, value: c.value, se: c.se, ...limits(c) };
 }
 
 function altOf(coefficients: readonly Coefficient[]): string {
@@ -125,7 +127,7 @@ function altOf(coefficients: readonly Coefficient[]): string {
   }).join("; ") + ".";
 }
 
-function coefficientTable(coefficients: readonly Coefficient[]): TablePart {
+function coefficientTable(coefficients: readonly Coefficient[], fit: Fit): TablePart {
   const robust = coefficients.some(c => Number.isFinite(c.seRobust));
   return {
     part: "table", title: "What was estimated, and how closely",
@@ -139,7 +141,7 @@ function coefficientTable(coefficients: readonly Coefficient[]): TablePart {
     rows: coefficients.map(c => {
       const { low, high } = c.held ? { low: NaN, high: NaN } : limits(c);
       return [c.label, c.value, low, high, c.held ? NaN : c.se, ...(robust ? [c.held ? NaN : c.seRobust] : []), reading(c, low, high)];
-    }),
+    }).concat(fit.mean === 0 ? [] : [["constant of the equation", fit.constant, NaN, NaN, NaN, ...(robust ? [NaN] : []), `the ${differenced(fit) ? "drift" : "mean"} times (1 − Σφ)(1 − ΣΦ)`]]),
     note: `From and to are the ${percent(level)} interval; give or take is one standard error${robust ? ", by the information matrix and by the sandwich form that stands when the shocks are not Gaussian" : ""}.`,
   };
 }
@@ -152,10 +154,13 @@ function reading(c: Coefficient, low: number, high: number): string {
   return "zero is within reach";
 }
 
-function rootParts(fit: Fit): readonly Part[] {
+function rootParts(fit: Fit, width: number): readonly Part[] {
   if (fit.roots.ar.length + fit.roots.ma.length === 0) return [];
   const alt = rootsSentence(fit);
-  return [rootsChart(fit.roots, alt), { part: "text", text: alt }];
+  return [
+    rootsChart(fit.roots, alt, fit.seasonLength, width), { part: "text", text: alt },
+    { part: "text", tone: "note", text: "Of each mirrored pair of roots one is drawn. The nearer the rim, the longer it is remembered; the angle is a cycle, whose length in periods stands around the rim." },
+  ];
 }
 
 function rootsSentence(fit: Fit): string {

@@ -9,6 +9,8 @@ export interface IntervalRow {
   /** NaN where there is no interval (held, or not available). */
   readonly low: number;
   readonly high: number;
+  /** One standard error, where it is to be read too. */
+  readonly se?: number;
   /** Said in place of the interval's limits where there is none ("held"). */
   readonly remark?: string;
 }
@@ -54,5 +56,6 @@ function roomFor(rows: number): number {
 function figuresOf(row: IntervalRow): string {
   if (row.remark !== undefined) return `${figure(row.value)} ${row.remark}`;
   if (!Number.isFinite(row.low)) return figure(row.value);
-  return `${figure(row.value)} (${figure(row.low, 2)} to ${figure(row.high, 2)})`;
+  const within = row.se === undefined ? "" : ` ± ${figure(row.se, 2)}`;
+  return `${figure(row.value)}${within} (${figure(row.low, 2)} to ${figure(row.high, 2)})`;
 }

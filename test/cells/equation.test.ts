@@ -30,6 +30,13 @@ describe("the equation of a fitted model", () => {
     expect(shown.text).toMatch(/^n\[t\] = log y\[t\] \+ 0\.200 fuel_price%\[t\] - 0\.100 storm\[t\]; n\[t\] = n\[t-1\]/);
     expect(shown.tex).toContain("\\text{fuel\\_price\\%}");
   });
+  test("stands below each other where the sides are long, regressors on a line of their own", () => {
+    const fit = madeFit({ beta: { price: -3.4, shift: 6.5, storm: -2.6, fuel: 1.2 }, phi: Float64Array.of(0.5, 0.2) });
+    expect(backshiftEquation(fit).text).toMatch(/^n\[t\] = log y\[t\] \+ 3\.400 price\[t\] .*; \(1 - 0\.500 B - 0\.200 B\^2\) \(1 - B\) \(1 - B\^12\) n\[t\] = /);
+    expect(backshiftEquation(fit).tex.split("\\\\")).toHaveLength(4);
+    expect(backshiftEquation(madeFit()).tex).not.toContain("\\\\");
+    expect(backshiftEquation(madeFit(), 340).tex).toContain("\\\\");
+  });
   test("calls the modelled scale z where the steps have no short symbol", () => {
     const series = stepped(madeSeries(), [{ step: "perDay" }, { step: "log" }]);
     const fit = madeFit({ series, options: { series } });

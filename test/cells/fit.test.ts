@@ -25,7 +25,7 @@ describe("fit shows", () => {
     const parts = fit.show(madeFit(), show);
     const svgs = await drawnCharts(parts);
     expect(svgs).toHaveLength(2);
-    expect(svgs[0]).toContain("−0.402 (−0.58 to −0.23)");
+    expect(svgs[0]).toMatch(/−0\.402 ± 0\.0\d+ \(−0\.58 to −0\.23\)/);
     const table = parts.find((p): p is TablePart => p.part === "table")!;
     expect(table.rows.map(row => [row[0], row.at(-1)])).toEqual([["MA lag 1", "below zero"], ["seasonal MA lag 12", "below zero"]]);
   });
@@ -52,6 +52,20 @@ describe("fit shows", () => {
     const [svg] = await drawnCharts([chart]);
     const height = (label: string): number => Number(new RegExp(`translate\\([^,]*,([-\\d.]+)\\)"[^>]*>${label}`).exec(svg)?.[1]);
     expect(height("MA lag 1: ")).toBeLessThan(height("seasonal MA lag 12: "));
+  });
+  test("both the process mean and the equation's constant, by these names", async () => {
+    const result = await run({ series: madeSeries(), ar: 1 });
+    const parts = fit.show(result, show), table = parts.find((p): p is TablePart => p.part === "table")!;
+    expect(table.rows.map(row => row[0])).toEqual(["AR lag 1", "mean", "constant of the equation"]);
+    expect(table.rows[2][1]).toBeCloseTo(result.mean * (1 - result.phi[0]), 10);
+    expect(texts(parts)).toMatch(/ the process mean, [\d.]+ the equation's constant/);
+  });
+  test("one root of each mirrored pair, by memory and cycle", () => {
+    // (1 - B + 0.5 B^2): inverse roots 0.5 ± 0.5 i, at distance 0.7071, an eighth of a turn: half in 2 periods, a cycle of 8.
+    const parts = fit.show(madeFit({ roots: { ar: [{ re: 1, im: 1, modulus: Math.SQRT2 }, { re: 1, im: -1, modulus: Math.SQRT2 }], ma: [] } }), show);
+    const { roots } = parts.find((p): p is ChartPart => p.part === "chart" && /Inverse roots/.test(p.title))!.data;
+    expect(roots).toMatchObject({ half: ["2.0 periods"], cycle: ["8.0 periods"] });
+    expect(roots.distance[0]).toBeCloseTo(Math.SQRT1_2, 12);
   });
   test("which observations were used, and how many the differences took", () => {
     expect(texts(fit.show(madeFit(), show))).toContain("It rests on 59 observations, 2019-02 to 2023-12; the differences used up the first 13 periods.");
