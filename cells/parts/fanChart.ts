@@ -40,6 +40,7 @@ export function fanChart(forecast: Forecast, alt: string, shownPast: number): Ch
       ...Object.fromEntries(forecast.bands.flatMap(band => [[`low ${percent(band.level)}`, band.low], [`high ${percent(band.level)}`, band.high]])),
     },
     ...(heldOut === null ? {} : { heldOut: { time: heldOut.times, value: heldOut.values } }),
+    ...Object.fromEntries(forecast.paths.map((path, i) => [`path ${i + 1}`, { time: forecast.times, value: path }])),
   };
   const x = timeField("time", dated);
   const y = { type: "quantitative", title: forecast.unit ? `${forecast.name} (${forecast.unit})` : forecast.name, scale: { zero: false } };

@@ -30,11 +30,11 @@ export function timeFields(spec: unknown, found: Set<string> = new Set()): Set<s
   return found;
 }
 
-/** All data sets of a chart, full ones where it has them, with times as ISO 8601 texts. */
-export function mergedColumns(part: ChartPart): Readonly<Record<string, Columns>> {
+/** The data sets behind a chart, with times as ISO 8601 texts: the full ones where it has them, else those that are drawn. */
+export function columnsBehind(part: ChartPart): Readonly<Record<string, Columns>> {
   const times = timeFields(part.spec);
   const sets: Record<string, Columns> = {};
-  for (const [set, columns] of Object.entries({ ...part.data, ...part.full })) {
+  for (const [set, columns] of Object.entries(part.full ?? part.data)) {
     sets[set] = Object.fromEntries(Object.entries(columns).map(([name, column]) => [name, times.has(name) ? timeTexts(column) : column]));
   }
   return sets;
@@ -70,6 +70,6 @@ export function csv(columns: readonly string[], rows: TablePart["rows"]): string
   return `${[columns, ...rows].map((row) => row.map(cell).join(",")).join("\r\n")}\r\n`;
 }
 
-export function chartCsv(part: ChartPart): string { const { columns, rows } = columnsTable(mergedColumns(part)); return csv(columns, rows); }
+export function chartCsv(part: ChartPart): string { const { columns, rows } = columnsTable(columnsBehind(part)); return csv(columns, rows); }
 
 export function tableCsv(part: TablePart): string { return csv(part.columns.map(({ title, unit }) => unit ? `${title} (${unit})` : title), part.rows); }

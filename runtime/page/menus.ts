@@ -1,6 +1,6 @@
 // The small menu of a chart or a table: its picture and its data, and nothing that leads out.
 
-import { columnsTable, mergedColumns } from "./chartData.ts";
+import { columnsTable, columnsBehind } from "./chartData.ts";
 import { tableTree } from "./partTrees.ts";
 import { h } from "./tree.ts";
 import type { Tree } from "./tree.ts";
@@ -21,6 +21,6 @@ export function tableMenu(key: string): Tree {
 
 /** A chart's data as a table, with the times written as dates. */
 export function chartDataTable(part: ChartPart): Tree {
-  const { columns, rows } = columnsTable(mergedColumns(part));
+  const { columns, rows } = columnsTable(columnsBehind(part));
   return h("div", { class: "chart-data" }, tableTree({ part: "table", title: `Data of “${part.title}”`, columns: columns.map((title) => ({ title })), rows }, null));
 }

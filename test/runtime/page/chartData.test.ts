@@ -38,6 +38,9 @@ describe("chartCsv", () => {
   it("gives the full data where the drawn ones were thinned, times as texts", () => {
     expect(chartCsv(part)).toBe("when,v\r\n2019-01,0.3333333333333333\r\n2019-02,\r\n");
   });
+  it("leaves out what is only drawn where the full data are there: nothing stands in the file twice", () => {
+    expect(chartCsv({ ...part, full: { all: { when: ["2019-01", "2019-02"], v: Float64Array.of(1, 2) } } })).toBe("when,v\r\n2019-01,1\r\n2019-02,2\r\n");
+  });
   it("says which data set a row is of when there are several", () => {
     expect(chartCsv({ ...part, full: undefined, data: { a: { when: Float64Array.of(day("2019-03-04")) }, b: { v: [2] } } })).toBe("data,when,v\r\na,2019-03-04,\r\nb,,2\r\n");
   });

@@ -3,7 +3,7 @@ import { csvParseRows } from "d3-dsv";
 import { beforeAll, describe, expect, it } from "vitest";
 import type { ChartPart, Column, Part, TablePart } from "../../../cells/parts/part.ts";
 import { compute } from "../../../runtime/host/headless.ts";
-import { chartCsv, mergedColumns, tableCsv, timeFields } from "../../../runtime/page/chartData.ts";
+import { chartCsv, columnsBehind, tableCsv, timeFields } from "../../../runtime/page/chartData.ts";
 
 // Every table and chart of the main example as CSV, read back and held against what is in memory.
 
@@ -35,7 +35,7 @@ describe("CSV of the main example", () => {
     const charts = parts.filter((part): part is ChartPart => part.part === "chart");
     expect(charts.length).toBeGreaterThan(8);
     for (const chart of charts) {
-      const sets = Object.entries(mergedColumns(chart)), [head, ...rows] = csvParseRows(chartCsv(chart)), times = timeFields(chart.spec);
+      const sets = Object.entries(columnsBehind(chart)), [head, ...rows] = csvParseRows(chartCsv(chart)), times = timeFields(chart.spec);
       let at = 0;
       for (const [set, columns] of sets) {
         const length = Math.max(0, ...Object.values(columns).map((column) => column.length));
