@@ -5,7 +5,7 @@
 export function decode(bytes: Uint8Array, file: string): string {
   if (bytes.length === 0) throw new RangeError(`${file} is empty: it has no rows to read`);
   const binary = binaryKind(bytes);
-  if (binary !== null) throw new RangeError(`${file} is ${binary}, not a text file; save the data as CSV (comma-separated text) and name that file`);
+  if (binary !== null) throw new RangeError(`${file} is ${binary}, not a text file; save the data as CSV (comma-separated text) or .xlsx and name that file`);
   const wide = bytes[0] === 0xff && bytes[1] === 0xfe ? "utf-16le" : bytes[0] === 0xfe && bytes[1] === 0xff ? "utf-16be" : null;
   if (wide !== null) return new TextDecoder(wide).decode(bytes);
   const zero = bytes.indexOf(0);
@@ -21,7 +21,6 @@ export function decode(bytes: Uint8Array, file: string): string {
 /** What a well-known first mark says about a file that is no text. */
 function binaryKind(bytes: Uint8Array): string | null {
   const mark = String.fromCharCode(...bytes.subarray(0, 8));
-  if (mark.startsWith("PK\u0003\u0004")) return "a spreadsheet or an archive";
   if (mark.startsWith("\u00d0\u00cf\u0011\u00e0")) return "an old spreadsheet or office document";
   if (mark.startsWith("PAR1")) return "a Parquet file";
   if (mark.startsWith("%PDF")) return "a PDF document";

@@ -5,11 +5,11 @@ import { OptionError, type Kind, type RunContext } from "../kind.ts";
 import { seriesParts } from "../parts/seriesParts.ts";
 import { count, listOf, someOf } from "../parts/words.ts";
 import { columnNamed, numericColumns, timeColumns } from "./columns.ts";
-import { decode } from "./decode.ts";
 import { gridOf, type Grid } from "./grid.ts";
 import { readTimes } from "./readTimes.ts";
 import { readValues } from "./readValues.ts";
-import { cellOf, sheetOf, usualMissing, type Sheet } from "./sheet.ts";
+import { cellOf, readSheet, usualMissing, type Sheet } from "./sheet.ts";
+import { isArchive } from "./spreadsheet.ts";
 import type { DayOrder } from "./times.ts";
 import { acrossTheYear } from "./wide.ts";
 
@@ -33,7 +33,7 @@ export const load: Kind<LoadCell, Loaded> = {
   name: "load",
   sentence: "Reads a series, or several, from a file inside the notebook's folder.",
   options: {
-    file: { type: "text", required: true, sentence: "Path of a CSV file, from the notebook's folder: a quoted text, or the name of a choice among such texts.", example: "\"data/ferry.csv\"" },
+    file: { type: "text", required: true, sentence: "Path of a CSV file or a spreadsheet (.xlsx), from the notebook's folder: a quoted text, or the name of a choice among such texts.", example: "\"data/ferry.csv\"" },
     time: { type: { anyOf: ["text", { listOf: "text" }] }, sentence: "Header of the column that holds the times, or a list of headers (year, month); the first that holds times unless given." },
     start: { type: "time", sentence: "Time of the first row, for a file without times; \"1\" numbers the rows.", example: "\"2019-01\"" },
     order: { type: { oneOf: ["day-month", "month-day"] }, sentence: "Which comes first in dates such as 05/03/2019." },
@@ -41,7 +41,7 @@ export const load: Kind<LoadCell, Loaded> = {
     every: { type: "text", sentence: "Spacing of the periods: \"month\", \"quarter\", \"week\", \"day\", \"hour\" or an ISO 8601 duration; inferred from the times unless given.", example: "\"month\"" },
     missing: { type: { anyOf: ["text", { listOf: "text" }] }, sentence: `Texts that stand for a missing value, besides an empty cell; ${usualMissing.filter((t) => t !== "").join(", ")} unless given.`, example: "[\"NA\", \"-\"]" },
     unit: { type: { anyOf: ["text", "object"] }, sentence: "Unit of the values as readers should see it; for several series one text, or an object by name.", example: "\"vehicles\"" },
-    sheet: { type: "text", sentence: "Sheet of a spreadsheet; a text file has none." },
+    sheet: { type: "text", sentence: "Sheet of a spreadsheet, the first unless given; a text file has none.", example: "\"Sales\"" },
   },
   body: "options",
   example: "file: \"data/series.csv\"",
@@ -51,10 +51,10 @@ export const load: Kind<LoadCell, Loaded> = {
 
 async function runLoad(options: LoadCell, context: RunContext): Promise<Loaded> {
   const { file } = options;
-  if (options.sheet !== undefined) throw new OptionError("sheet", `${file} is read as text, which has no sheets; leave \`sheet\` out, or save that sheet as CSV and name the new file`);
   const bytes = await fileBytes(file, context);
+  if (options.sheet !== undefined && !isArchive(bytes)) throw new OptionError("sheet", `${file} is read as text, which has no sheets; leave \`sheet\` out`);
   const missing = typeof options.missing === "string" ? [options.missing] : options.missing;
-  const read = inWords("file", () => sheetOf(decode(bytes, file), file, missing));
+  const read = await readSheet(bytes, file, missing, options.sheet).catch((error: unknown) => inWords(options.sheet === undefined ? "file" : "sheet", () => { throw error; }));
   const sheet = options.time === undefined && options.start === undefined && options.value === undefined ? acrossTheYear(read) ?? read : read;
   sheet.notes.forEach((text) => context.note(text));
   const times = options.start === undefined ? timeColumns(sheet, options.time) : [];

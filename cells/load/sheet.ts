@@ -1,7 +1,9 @@
 // A data file as named columns of cells, with what is needed to read numbers out of them.
 
 import { parseRows, separatorOf, type Row } from "./csv.ts";
+import { decode } from "./decode.ts";
 import { decimalOf, numberOf, type Decimal } from "./numbers.ts";
+import { isArchive, spreadsheetRows } from "./spreadsheet.ts";
 import { orderOf, timeOf } from "./times.ts";
 
 /** Columns of a file. `rows` are the data rows, the header left out. */
@@ -19,12 +21,20 @@ export interface Sheet {
 /** Texts that stand for a missing value unless the author says otherwise. */
 export const usualMissing: readonly string[] = ["", "NA", "NaN", "."];
 
-/** Reads separated text.
+/** Reads a data file: a sheet of a spreadsheet, or separated text.
+ *  @param wanted  name of the sheet
  *  @throws RangeError in words that name file and line */
-export function sheetOf(text: string, file: string, missing: readonly string[] | undefined): Sheet {
-  const notes: string[] = [];
-  const separator = separatorOf(text);
-  const all = parseRows(text, separator, file);
+export async function readSheet(bytes: Uint8Array, file: string, missing?: readonly string[], wanted?: string): Promise<Sheet> {
+  if (isArchive(bytes)) {
+    const { rows, notes } = await spreadsheetRows(bytes, file, wanted);
+    return sheetFrom(rows, file, missing, notes, () => ({ decimal: ".", unsure: null }));
+  }
+  const text = decode(bytes, file), separator = separatorOf(text);
+  return sheetFrom(parseRows(text, separator, file), file, missing, [], (cells) => decimalOf(cells, separator));
+}
+
+function sheetFrom(all: readonly Row[], file: string, missing: readonly string[] | undefined, said: readonly string[], decimals: (cells: Iterable<string>) => ReturnType<typeof decimalOf>): Sheet {
+  const notes = [...said];
   const remarks = all.findIndex((row) => !row.cells[0].startsWith("#"));
   const rows = remarks < 0 ? [] : all.slice(remarks);
   if (remarks > 0) notes.push(`${remarks} line${remarks > 1 ? "s" : ""} at the top of ${file} begin${remarks > 1 ? "" : "s"} with # and ${remarks > 1 ? "are" : "is"} left out`);
@@ -38,7 +48,7 @@ export function sheetOf(text: string, file: string, missing: readonly string[] |
   for (const row of body) {
     if (lastFilled(row) > width) throw new RangeError(`${file}, line ${row.line}: ${lastFilled(row)} cells, where ${named ? "the header has" : "the rows before have"} ${width}; look for a stray separator, or put quotes around a text that holds one`);
   }
-  const { decimal, unsure } = decimalOf(cellsOf(body), separator);
+  const { decimal, unsure } = decimals(cellsOf(body));
   if (unsure !== null) notes.push(`${file}: "${unsure}" is read as ${numberOf(unsure, decimal)}, with a ${decimal === "," ? "decimal comma" : "comma that groups thousands"}; nothing in the file says otherwise`);
   if (!named) notes.push(`${file} has no header: its columns are called "column 1", "column 2", …`);
   return { file, columns, rows: body, decimal, missing: tokens, named, notes };

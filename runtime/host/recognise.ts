@@ -3,8 +3,7 @@
 import { basename, extname } from "node:path";
 import { language } from "../../cells/index.ts";
 import { numericColumns, timeColumns } from "../../cells/load/columns.ts";
-import { decode } from "../../cells/load/decode.ts";
-import { sheetOf } from "../../cells/load/sheet.ts";
+import { readSheet } from "../../cells/load/sheet.ts";
 import { acrossTheYear } from "../../cells/load/wide.ts";
 import { ask } from "./ask.ts";
 import { loadCell } from "./beginText.ts";
@@ -18,7 +17,7 @@ import { CannotRun } from "./io.ts";
 export async function recognise(folder: string, file: string): Promise<Recognised> {
   let bytes: Uint8Array;
   try { bytes = await readInside(folder, file); } catch (error) { throw error instanceof NoFile ? new CannotRun(error.message) : error; }
-  const { times, numbers } = columnsOf(bytes, file);
+  const { times, numbers } = await columnsOf(bytes, file);
   const column = numbers.length > 1 ? numbers[0] : null;
   const { words, unit } = headerWords(numbers[0] ?? "");
   const load: LoadText = { name: identifier(words, file), file, column, unit, order: null, numbered: false };
@@ -30,9 +29,9 @@ export async function recognise(folder: string, file: string): Promise<Recognise
 }
 
 /** Columns of times and of numbers, by their headers; those that `load` makes of a file with one row a year. */
-function columnsOf(bytes: Uint8Array, file: string): { readonly times: readonly string[]; readonly numbers: readonly string[] } {
+async function columnsOf(bytes: Uint8Array, file: string): Promise<{ readonly times: readonly string[]; readonly numbers: readonly string[] }> {
   try {
-    const read = sheetOf(decode(bytes, file), file, undefined), sheet = acrossTheYear(read) ?? read;
+    const read = await readSheet(bytes, file), sheet = acrossTheYear(read) ?? read;
     const times = timeColumns(sheet, undefined);
     return { times: times.map((column) => sheet.columns[column]), numbers: numericColumns(sheet, times).map((column) => sheet.columns[column]) };
   } catch (error) {

@@ -163,7 +163,7 @@ describe("load says in words what is wrong, and where", () => {
     ["a header only", "month,v\n", {}, "data.csv has a header and no rows below it"],
     ["a file with zero bytes", new Uint8Array([65, 44, 0, 10]), {}, "not a text file: byte 3 is zero"],
     ["another encoding", new Uint8Array([0x61, 0x2c, 0x62, 10, 0xe4, 0x2c, 0x31, 10]), {}, "not UTF-8 text: line 2"],
-    ["a spreadsheet", new Uint8Array([0x50, 0x4b, 3, 4, 0, 0]), {}, "a spreadsheet or an archive"],
+    ["a damaged spreadsheet", new Uint8Array([0x50, 0x4b, 3, 4, 0, 0]), {}, "a damaged archive"],
     ["a quote never closed", 'month,v\n2019-01,"1\n2019-02,2\n', {}, "line 2: a quote (\") is opened and never closed"],
     ["a text among numbers", "month,vehicles\n2019-01,1\n2019-02,closed\n2019-03,3\n", {}, 'data.csv, line 3, column "vehicles": "closed" is not a number; if it stands for a missing value, say missing: ["closed"]'],
     ["a number with a unit", "month,v\n2019-01,1\n2019-02,5 kg\n2019-03,3\n", {}, '"5 kg" is not a number; write the number plainly'],
