@@ -13,7 +13,7 @@ export function backshiftEquation(fit: Fit, width = 640): EquationPart {
   const factors = [
     polynomial(fit.phi, 1, -1), polynomial(fit.seasonalPhi, fit.seasonLength, -1),
   ].filter(isGiven);
-  const differences = differenceLags(fit.series.steps).map(lag => differenceFactor(lag)), regression = regressionLine(fit);
+  const differences = differenceLags(fit.series.steps).map(lag => differenceFactor(lag)), regression = regressionLine(fit, width);
   const inner = product([...differences, regression === null ? at(scaleSymbol(fit).inner, 0) : at(symbol("n", "n"), 0)]);
   const level = fit.mean === 0 ? inner : bracket(join([differences.length === 0 ? unbracketed(inner) : inner, signed(-fit.mean)]));
   const right = [
@@ -23,7 +23,8 @@ export function backshiftEquation(fit: Fit, width = 640): EquationPart {
   // Sides that are long for their column stand below each other, and the variance below them.
   const room = width / LETTER, whole = left.text.length + shocks.text.length;
   const long = whole > room, below = long ? shocks.text.length + 20 > room : whole + 20 > room;
-  const sides = long ? `& ${left.tex} \\\\ & \\quad {} = ${shocks.tex}` : `& ${left.tex} = ${shocks.tex}`;
+  const leftSide = left.text.length > room && factors.length > 0 ? `${product(factors).tex} \\\\ & \\quad ${level.tex}` : left.tex;
+  const sides = long ? `& ${leftSide} \\\\ & \\quad {} = ${shocks.tex}` : `& ${leftSide} = ${shocks.tex}`;
   return {
     part: "equation", title: "Backshift form",
     tex: `\\begin{aligned} ${regression === null ? "" : `& ${regression.tex.replace("&", "")} \\\\ `}${sides}, ${below ? "\\\\ &" : "\\qquad"} \\operatorname{var}\\varepsilon_t = ${variance.tex} \\end{aligned}`,
@@ -35,19 +36,19 @@ export function backshiftEquation(fit: Fit, width = 640): EquationPart {
 const LETTER = 7.2;
 
 /** The same with all products carried out: the value of a period from earlier values and shocks. */
-export function writtenOutEquation(fit: Fit): EquationPart {
+export function writtenOutEquation(fit: Fit, width = 640): EquationPart {
   const autoregressive = multiplyOut([
     lagPolynomial(fit.phi, 1, -1), lagPolynomial(fit.seasonalPhi, fit.seasonLength, -1),
     ...differenceLags(fit.series.steps).map(lag => differencePolynomial(lag)),
   ]);
   const movingAverage = multiplyOut([lagPolynomial(fit.theta, 1, 1), lagPolynomial(fit.seasonalTheta, fit.seasonLength, 1)]);
-  const { inner, name } = scaleSymbol(fit), regression = regressionLine(fit);
+  const { inner, name } = scaleSymbol(fit), regression = regressionLine(fit, width);
   const of = (lag: number): Both => at(regression === null ? inner : symbol("n", "n"), lag);
   const terms: Both[] = [];
   if (fit.constant !== 0) terms.push(number(fit.constant));
   autoregressive.forEach((value, lag) => { if (lag > 0 && value !== 0) terms.push(times(-value, of(lag))); });
   movingAverage.forEach((value, lag) => { if (value !== 0) terms.push(times(value, at(symbol("\\varepsilon", "e"), lag))); });
-  const lines = broken(terms);
+  const lines = broken(terms, width);
   const lead = of(0);
   return {
     part: "equation", title: `Written out: ${name} from earlier values and shocks`,
@@ -126,10 +127,10 @@ function backshift(lag: number): Both { return lag === 1 ? symbol("B", "B") : sy
 function differenceFactor(lag: number): Both { return symbol(`(1 - ${backshift(lag).tex})`, `(1 - ${backshift(lag).text})`); }
 
 /** What the regressors leave of the scale before the differences; null without regressors. */
-function regressionLine(fit: Fit): Both | null {
+function regressionLine(fit: Fit, width: number): Both | null {
   const parts = Object.entries(fit.beta).map(([name, value]) => times(-value, regressor(name)));
   if (parts.length === 0) return null;
-  const lines = broken([at(scaleSymbol(fit).inner, 0), ...parts]);
+  const lines = broken([at(scaleSymbol(fit).inner, 0), ...parts], width);
   return symbol(`n_t = {} & ${lines.join(" \\\\ & \\quad ")}`, `n[t] = ${join([at(scaleSymbol(fit).inner, 0), ...parts]).text}`);
 }
 
@@ -191,8 +192,10 @@ function multiplyOut(factors: readonly (readonly number[])[]): readonly number[]
   return product.map(value => Math.abs(value) < 1e-14 ? 0 : value);
 }
 
-/** A long sum in lines of a few terms, so that it fits a column of text. */
-function broken(terms: readonly Both[], size = 4): readonly string[] {
+/** A long sum in lines of a few terms, so that it fits its column with the left-hand side. */
+function broken(terms: readonly Both[], width: number): readonly string[] {
+  const letters = terms.reduce((sum, term) => sum + term.text.length + 3, 0) / Math.max(1, terms.length);
+  const size = Math.max(1, Math.min(5, Math.floor((width / LETTER - 12) / letters)));
   const lines: string[] = [];
   for (let from = 0; from < terms.length; from += size) {
     const line = join(terms.slice(from, from + size)).tex;

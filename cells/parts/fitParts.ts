@@ -26,7 +26,7 @@ export function fitParts(fit: Fit, width: number): readonly Part[] {
     { part: "text", text: openingSentence(fit) },
     ...cautions(fit),
     backshiftEquation(fit, width),
-    writtenOutEquation(fit),
+    writtenOutEquation(fit, width),
     { part: "text", tone: "note", text: `Here ${legend(fit)}.` },
     ...intervalCharts(coefficients),
     usedSentence(fit),
