@@ -89,7 +89,7 @@ function inUsualForm(read: readonly Period[], every: string): { readonly periods
 
 function placed(starts: Float64Array, grid: { readonly start: string; readonly every: string }): Int32Array {
   try { return positionsOf(grid, starts); } catch (error) {
-    if (error instanceof RangeError) throw new OptionError("every", `the times start at ${grid.start}, and ${error.message}`);
+    if (error instanceof RangeError) throw new OptionError("every", `every ${everyInWords(grid.every)} does not fit times such as ${grid.start}: ${error.message}`);
     throw error;
   }
 }

@@ -122,7 +122,9 @@ function placeOf(cell: Definition, error: unknown): PlaceInCell | null {
   if (error instanceof Error && error.name === "OptionError" && "option" in error && typeof error.option === "string" && cell.text.options.some((each) => each.name === error.option)) {
     return { option: error.option, from: 0, to: null };
   }
-  return null;
+  // The numbers know no options, but name what they were given: "hold.phi gives 0.2 for lag 1".
+  const [first] = /^\w+/.exec(messageOf(error)) ?? [];
+  return first !== undefined && cell.kind.body === "options" && cell.text.options.some((each) => each.name === first) ? { option: first, from: 0, to: null } : null;
 }
 
 /** A fault of the program, not of the notebook, is said to be one. */

@@ -75,6 +75,7 @@ function itemOf(holder: readonly unknown[] | TypedArray | string, key: string | 
 
 function absent(holder: object, key: string): string {
   const names = Object.keys(holder);
+  if (isSeries(holder) && /^(?:map|filter|some|every|find|slice|reduce|length|at|includes|indexOf)$/.test(key)) return `A series has no \`${key}\`: use that of its values, \`.values.${key}\``;
   const near = nearest(key, names);
   if (near !== null) return `There is no \`${key}\` here: did you mean \`${near}\`?`;
   if (names.length === 0) return `There is no \`${key}\` here: the object is empty`;

@@ -65,7 +65,8 @@ function readOption(at: number, source: string, shape: Shape, name: string, know
   if (shape.options[name]?.taken === "name" && Object.hasOwn(shape.options, name) && tree.type !== "Identifier" && !(tree.type === "Literal" && typeof tree.value === "string")) {
     problems.push({ code: "name-expected", message: `\`${name}\` takes the name of a cell`, from: at, to: at + source.length });
   }
-  const quoted = perhapsText(source, type, tree);
+  const taken = Object.hasOwn(shape.options, name) ? shape.options[name].taken ?? "value" : "value";
+  const quoted = taken === "value" ? perhapsText(source, type, tree) : null;
   return parsed.reads.map((each) => {
     const place = placeOfName(tree, each) ?? { from: 0, to: source.length };
     return { name: each, from: at + place.from, to: at + place.to, ...(quoted === null ? {} : { quoted }) };

@@ -78,6 +78,7 @@ function findUnknown(cells: readonly (CellText & CellReads)[], numbers: readonly
 }
 
 function unknown(name: string, known: ReadonlySet<string>, quoted?: string): string {
+  if (name === "Math") return "There is no `Math`: its functions stand alone here, as in `sqrt(2)`";
   const near = suggestion(name, known);
   return `There is no \`${name}\`${near === "" ? ": no cell and no library function has this name" : near}${quoted === undefined ? "" : `${near === "" ? "." : ""} If a text is meant, put it in quotes: ${quoted}`}`;
 }

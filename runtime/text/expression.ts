@@ -206,7 +206,7 @@ function syntaxWords(message: string, source: string, at: number): string {
   if (/Unterminated comment/.test(message)) return "A comment that opens here is not closed: add `*/`";
   if (/Unexpected token/.test(message)) {
     if (at >= source.trimEnd().length) return "The expression stops too early: something is missing at its end";
-    return `\`${source.slice(at, at + 1)}\` is not expected here`;
+    return `\`${/^[\p{ID_Continue}$]+/u.exec(source.slice(at, at + 40))?.[0] ?? source.slice(at, at + 1)}\` is not expected here`;
   }
   if (/Identifier directly after number/.test(message)) return "A number runs into a name here: put an operator between them, or quotes around a text";
   return `The expression cannot be read: ${message[0].toLowerCase()}${message.slice(1)}`;

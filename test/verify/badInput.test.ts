@@ -65,6 +65,7 @@ describe("bad input", () => {
     { title: "an order of 50", cells: [loaded("good.csv"), cell("fit: m", "series: y", "ar: 50", "ma: 50")], name: "m", says: [/50|observations|orders/] },
     { title: "an unknown option", cells: [loaded("good.csv"), cell("fit: m", "series: y", "arr: 1")], name: "m", says: [/arr/, /`ar`/] },
     { title: "an unknown name", cells: [cell("fit: m", "series: soundd", "ar: 1")], name: "m", says: [/soundd/, /`sound`/] },
+    { title: "a list's method on a series", cells: [cell("values: m", "a: sound.map(x => x + 1)")], name: "m", says: [/A series has no `map`: use that of its values, `\.values\.map`/] },
     { title: "an unquoted date", cells: [cell("window: s", "of: sound", "from: 2021-01")], name: "s", says: [/quote/i] },
     { title: "a circle", cells: [cell("values: a", "x: b.x"), cell("values: b", "x: a.x")], name: "a", says: [/circle|each other|itself/i, /`b`/] },
     { title: "two cells of one name", cells: [cell("slider: twice", "from: 0", "to: 3"), cell("slider: twice", "from: 0", "to: 5")], name: "twice", says: [/twice/, /line/] },

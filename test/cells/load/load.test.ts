@@ -181,6 +181,7 @@ describe("load says in words what is wrong, and where", () => {
     ["a column that is not there", "month,vehicles\n2019-01,1\n", { value: "Vehicles" }, 'has no column "Vehicles": did you mean "vehicles"?'],
     ["another column that is not there", "month,vehicles\n2019-01,1\n", { value: "price" }, 'has no column "price"; its columns are "month", "vehicles"'],
     ["two columns of one name", "month,v,v\n2019-01,1,2\n", { value: "v" }, '2 columns called "v"'],
+    ["a spacing that the times do not have", "month,v\n2019-01,1\n2019-02,2\n", { every: "day" }, "every day does not fit times such as 2019-01: the spacing is not a whole number of months"],
     ["a percentage", "month,share\n2019-01,20.3%\n2019-02,21%\n", {}, 'In "share", "20.3%" is no plain number: leave out what is not a digit'],
     ["sums of money", 'month,fee\n2019-01,"$1,204"\n2019-02,"$1,300"\n', {}, 'In "fee", "$1,204" is no plain number'],
     ["several series below one another", "month,region,v\n2019-01,north,1\n2019-01,south,2\n2019-02,north,3\n", {}, 'they differ in column "region" ("north", "south"): the file holds several series below one another'],

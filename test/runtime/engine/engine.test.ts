@@ -231,6 +231,11 @@ describe("faults", () => {
     expect(at("sound").state).toBe("current");
   });
 
+  test("a fault that begins with an option's name stands at that option", async () => {
+    const { cell: at } = await open(cell("double: x", "of: 14"));
+    expect(at("x")).toMatchObject({ message: "of is 14, and 14 is refused", at: { line: 2, column: 5 } });
+  });
+
   test("a missing file is said, and read again when it appears", async () => {
     const { engine, files, cell: at, asked } = await open(cell("load: data", 'file: "a.csv"'));
     expect(at("data")).toMatchObject({ state: "failed", message: "There is no file a.csv here" });

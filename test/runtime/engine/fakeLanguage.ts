@@ -28,6 +28,7 @@ const double: Kind<{ of: number; slow?: number }, { of: number; twice: number }>
   name: "double", sentence: "Twice a number.", body: "options", callable: true, example: "of: 2",
   options: { of: { type: "number", sentence: "the number", required: true, max: 40 }, slow: { type: "integer", sentence: "slices of work" } },
   run: (options, context) => {
+    if (options.of === 14) throw new RangeError("of is 14, and 14 is refused");
     if (options.of === 13) throw new OptionError("of", "13 cannot be doubled");
     if (options.slow === undefined) return { of: options.of, twice: 2 * options.of };
     return slowly(options.slow, context).then(() => ({ of: options.of, twice: 2 * options.of }));
