@@ -5,7 +5,7 @@ import { join } from "node:path";
 import { pathToFileURL } from "node:url";
 import type { Browser, BrowserContext, Frame, Page } from "playwright-core";
 import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from "vitest";
-import { command, launch, openDesk, pageOf, serve, textOf, typeAfter } from "./deskOpen.ts";
+import { command, launch, openDesk, serve, textOf, typeAfter } from "./deskOpen.ts";
 import type { Served } from "./deskOpen.ts";
 import { canary, hostileFiles, hostileText } from "./hostile.ts";
 
@@ -40,7 +40,7 @@ const planted = (where: Page | Frame): Promise<readonly string[]> => where.evalu
   return ["owned" in window ? "code ran" : "", ...elements.map((each) => each.outerHTML.slice(0, 80)), ...attributes, ...scripts.map(() => "a script")].filter((each) => each !== "");
 });
 
-describe("a stranger's notebook in the desk", () => {
+describe("a stranger's notebook in the desk", { timeout: 120_000 }, () => {
   let served: Served, page: Page, frame: Frame;
   beforeEach(async () => {
     served = await serve(hostileText(away.url), hostileFiles(away.url), 0, folder);
@@ -85,7 +85,7 @@ describe("a stranger's notebook in the desk", () => {
         attempt("module", () => import(/* @vite-ignore */ `${far}/module.js`)), attempt("worker", () => event(new Worker(`${far}/worker.js`), "message")), attempt("code from text", () => { setTimeout("window.evaled = 1"); return new Promise((done, failed) => { setTimeout(() => { if ("evaled" in window) done("ran"); else failed(new Error("refused")); }, 100); }); }),
         attempt("storage", () => localStorage.length), attempt("session", () => sessionStorage.length), attempt("cookie", () => document.cookie), attempt("database", () => new Promise((done, failed) => { const request = indexedDB.open("x"); request.addEventListener("success", () => done("opened")); request.addEventListener("error", failed); })),
         attempt("caches", () => caches.keys()), attempt("service worker", () => navigator.serviceWorker.getRegistrations()),
-        attempt("parent's document", () => parent.document.title), attempt("parent's storage", () => parent.localStorage.length), attempt("parent's address", () => parent.location.href), attempt("top", () => { top!.location.href = `${far}/top`; return "no answer"; }),
+        attempt("parent's document", () => parent.document.title), attempt("parent's storage", () => parent.localStorage.length), attempt("parent's address", () => parent.location.href), attempt("top", () => { window.top!.location.href = `${far}/top`; return "no answer"; }),
         attempt("window", () => window.open(`${far}/open`) ?? Promise.reject(new Error("refused"))),
         attempt("form", () => { const form = Object.assign(document.createElement("form"), { action: `${far}/form`, method: "post" }); document.body.append(form); form.submit(); return "no answer"; }),
         attempt("frame", () => { document.body.append(Object.assign(document.createElement("iframe"), { src: `${far}/frame` })); return "no answer"; }),
@@ -126,7 +126,65 @@ describe("a stranger's notebook in the desk", () => {
   });
 });
 
-describe("a stranger's notebook as an exported page", () => {
+describe("a stranger's script in the desk", { timeout: 120_000 }, () => {
+  const cells = (script: string): string => `# Script\n\n\`\`\`script: s\n${script}\n\`\`\`\n\n\`\`\`values: v\nx: [1, 2].map(x => x + 1)\n\`\`\`\n\nBeside it [2](<=v.x[0]>) stands.\n\nThe last line.\n`;
+  /** Opens the desk without waiting for the script, and counts the longest time between two frames of the desk. */
+  async function open(script: string): Promise<{ readonly page: Page; readonly frame: Frame; readonly served: Served }> {
+    const served = await serve(cells(script), {}, 0), page = await context.newPage();
+    await page.goto(served.url);
+    await page.waitForSelector(".cm-content");
+    const frame = (await (await page.waitForSelector("#frame")).contentFrame())!;
+    await frame.waitForSelector("#cell-v[data-state=current]");
+    return { page, frame, served };
+  }
+  const state = (frame: Frame, cell: string): Promise<string | null> => frame.locator(`#cell-${cell}`).getAttribute("data-state");
+
+  it("finds the language and nothing that leads out; what it breaks is its own", async () => {
+    const { frame, served } = await open(`
+const names = ["fetch", "XMLHttpRequest", "WebSocket", "EventSource", "WebTransport", "importScripts", "Worker", "postMessage", "close", "addEventListener", "onmessage", "self", "location", "navigator", "indexedDB", "caches", "BroadcastChannel", "MessageChannel", "Blob", "URL", "SharedArrayBuffer", "Atomics", "WebAssembly", "crypto", "scheduler", "performance", "reportError"];
+const found = names.filter((name) => { let top = globalThis; while (top !== null) { if (Reflect.get(top, name) !== undefined) return true; top = Object.getPrototypeOf(top); } return false; });
+const made = [function () {}, async () => {}, function* () {}, async function* () {}].filter((each) => { try { return each.constructor("return 1") !== undefined; } catch { return false; } });
+await new Promise((done) => { setTimeout("globalThis.evaled = 1", 0); setTimeout(done, 50); });
+Object.prototype.polluted = 1; Array.prototype.map = null; Promise.prototype.then = null;
+export const result = found.join() + made.length + ("evaled" in globalThis);`);
+    await expect.poll(() => state(frame, "s"), { timeout: 20_000 }).toBe("current");
+    expect(await frame.locator("#cell-s").innerText()).toMatch(/result\s+0false/);
+    expect(await state(frame, "v")).toBe("current");
+    expect(await frame.evaluate(() => "polluted" in Object.prototype)).toBe(false);
+    expect(away.met).toEqual([]);
+    await served.stop();
+  });
+
+  it("is refused every way to import, before it runs", async () => {
+    const lines = [`import x from "${away.url}/m.js";`, `export * from "${away.url}/m.js";`, `const m = await import("${away.url}/m.js"); export const a = 1;`, "export const b = import.meta.url;"];
+    const { frame, served } = await open(lines.join("\n```\n\n```script:\n"));
+    const scripts = frame.locator("[data-kind=script]");
+    await expect.poll(() => scripts.evaluateAll((all) => all.map((each) => (each as HTMLElement).dataset.state))).toEqual(lines.map(() => "failed"));
+    for (const fault of await scripts.locator(".cell-fault").allInnerTexts()) expect(fault).toMatch(/cannot import|not available in a script/);
+    await served.stop();
+    expect(away.met).toEqual([]);
+  });
+
+  it("may loop or storm without end: the desk is written in, the rest of the page lives, and the reader can stop it", async () => {
+    for (const endless of ["while (true) {}", "const go = () => { for (let i = 0; i < 1000; i++) setTimeout(go, 0); }; go(); export const a = await new Promise(() => {});"]) {
+      const { page, frame, served } = await open(endless);
+      await page.evaluate(() => { let last = performance.now(); const one = window as unknown as { longest: number }; one.longest = 0; const beat = (): void => { const now = performance.now(); one.longest = Math.max(one.longest, now - last); last = now; requestAnimationFrame(beat); }; beat(); });
+      await typeAfter(page, "The last line.", " Written meanwhile.");
+      await expect.poll(() => frame.locator("body").innerText()).toContain("Written meanwhile.");
+      await frame.locator("#cell-s [data-act=stop]").click({ timeout: 15_000 });
+      await expect.poll(() => frame.locator("#cell-s .cell-fault").innerText()).toContain("Stopped by hand");
+      await expect.poll(() => state(frame, "v")).toBe("current");
+      // A desk that waited for the script would have stood still until it was stopped; drawing takes its time on a busy machine.
+      expect(await page.evaluate(() => (window as unknown as { longest: number }).longest)).toBeLessThan(2000);
+      await page.keyboard.press("Control+s");
+      await expect.poll(() => page.locator("#said").innerText()).toMatch(/^Saved /);
+      await page.close();
+      await served.stop();
+    }
+  });
+});
+
+describe("a stranger's notebook as an exported page", { timeout: 120_000 }, () => {
   let file = "";
   beforeEach(() => {
     writeFileSync(join(folder, "n.md"), hostileText(away.url));
