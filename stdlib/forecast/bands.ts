@@ -7,21 +7,23 @@ import type { Gradual } from "./gradual.ts";
 import { modelOutlook, type ModelOutlook } from "./modelOutlook.ts";
 import type { Band, BandsHow, Forecaster } from "./model.ts";
 import type { Outlook } from "./outlook.ts";
-import { simulatedOutlook } from "./simulated.ts";
+import { simulatedOutlook, type ParameterSets } from "./simulated.ts";
 
 export interface BandsOptions {
   readonly how: BandsHow;
   readonly regressors: Readonly<Record<string, Series>>;
   readonly seed: number;
   readonly levels: readonly number[];
+  /** For simulated bands of a fit: shared by forecasts of several futures. */
+  readonly sets?: ParameterSets;
 }
 
 /** A forecast distribution with bands of the asked kind, and notes on what they rest on. */
-export function* bandedOutlook(model: Forecaster, horizon: number, { how, regressors, seed, levels }: BandsOptions): Gradual<ModelOutlook> {
+export function* bandedOutlook(model: Forecaster, horizon: number, { how, regressors, seed, levels, sets }: BandsOptions): Gradual<ModelOutlook> {
   if (how !== "plugIn" && how !== "simulated" && how !== "calibrated") throw new RangeError(`forecast: bands is ${JSON.stringify(how)}, expected "plugIn", "simulated" or "calibrated"`);
   const plain = modelOutlook(model, horizon, regressors, seed);
   const { outlook, assumption } = how === "plugIn" ? { outlook: plain.outlook, assumption: plugIn }
-    : how === "simulated" ? yield* simulatedOutlook(model, horizon, regressors, seed, plain) : yield* calibratedOutlook(model, horizon, regressors, seed, levels, plain);
+    : how === "simulated" ? yield* simulatedOutlook(model, horizon, regressors, seed, plain, sets) : yield* calibratedOutlook(model, horizon, regressors, seed, levels, plain);
   return { ...plain, outlook, notes: [...plain.notes, assumption, conditional] };
 }
 

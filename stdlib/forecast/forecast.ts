@@ -11,7 +11,9 @@ import { once } from "./once.ts";
 import type { Outlook } from "./outlook.ts";
 import { pathAt, pathCount, type Paths } from "./paths.ts";
 import { baseOf, firstIndex, lastIndex, reachOf } from "./reach.ts";
+import { isRule } from "./rules.ts";
 import { futuresOf, scenariosOf } from "./scenarios.ts";
+import { parameterSets, type ParameterSets } from "./simulated.ts";
 import { shapeOf } from "./shape.ts";
 import { totalsOf } from "./totals.ts";
 
@@ -27,7 +29,8 @@ export function* forecasting(model: Forecaster, options: ForecastOptions): Gradu
   if (!Number.isInteger(horizon) || horizon < 1) throw new RangeError(`forecast: horizon is ${horizon}, expected a whole number of periods from 1 on`);
   for (const level of levels) if (!(level > 0 && level < 1)) throw new RangeError(`forecast: a level is ${level}, expected between 0 and 1, as in 0.9`);
   const futures = futuresOf(model, options), made: Made[] = [];
-  for (const { label, regressors } of futures) made.push(yield* oneFuture(model, options, label, regressors));
+  const sets = isRule(model) ? undefined : parameterSets(model, seed);
+  for (const { label, regressors } of futures) made.push(yield* oneFuture(model, options, label, regressors, sets));
   const [{ banded, figures, notes }] = made, { outlook, base, times } = banded;
   const shape = shapeOf(model), allNotes: Note[] = [...notes, { code: "shape", tone: "note", text: shape }];
   if (outlook.mean.some((m) => !Number.isFinite(m))) allNotes.push({ code: "no-mean", tone: "caution", text: "The mean in data units is not finite (the transformation has no upper end there): read the median." });
@@ -42,10 +45,10 @@ export function* forecasting(model: Forecaster, options: ForecastOptions): Gradu
 /** One future of the regressors, forecast. */
 export interface Made { readonly banded: ModelOutlook; readonly figures: Figures; readonly notes: readonly Note[] }
 
-function* oneFuture(model: Forecaster, options: ForecastOptions, label: string | null, regressors: NonNullable<ForecastOptions["regressors"]>): Gradual<Made> {
+function* oneFuture(model: Forecaster, options: ForecastOptions, label: string | null, regressors: NonNullable<ForecastOptions["regressors"]>, sets: ParameterSets | undefined): Gradual<Made> {
   const { horizon, levels = [0.5, 0.9], bands: how = "plugIn", seed = 1 } = options;
   try {
-    const banded = yield* bandedOutlook(model, horizon, { how, regressors, seed, levels });
+    const banded = yield* bandedOutlook(model, horizon, { how, regressors, seed, levels, ...(sets ? { sets } : {}) });
     const { figures, notes } = figuresOf(banded, options);
     return { banded, figures, notes: [...banded.notes, ...notes] };
   } catch (error) {

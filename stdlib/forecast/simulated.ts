@@ -36,12 +36,20 @@ type PathSource = (count: number, seed: number) => Paths;
  *  A fit's parameters are estimated again on series simulated from it (a parametric bootstrap), each set forecasts from the
  *  observed data, and shocks are drawn with replacement from the fit's residuals, enlarged for the parameters used up.
  *  Source: Thombs & Schucany (1990); Pascual, Romo & Ruiz (2004). */
-export function* simulatedOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, plain: ModelOutlook): Gradual<{ readonly outlook: Outlook; readonly assumption: Note }> {
-  const { source, assumption } = yield* pathSource(model, horizon, regressors, seed);
+export function* simulatedOutlook(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, plain: ModelOutlook, sets?: ParameterSets): Gradual<{ readonly outlook: Outlook; readonly assumption: Note }> {
+  const { source, assumption } = yield* pathSource(model, horizon, regressors, seed, sets);
   return { outlook: sampleOutlook(source, pathCount, seed, plain.outlook.se), assumption: { code: "bands-simulated", tone: "note", text: assumption } };
 }
 
-function* pathSource(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): Gradual<{ readonly source: PathSource; readonly assumption: string }> {
+/** Sets of parameters for a fit, estimated when first asked for: they do not depend on the regressors' future. */
+export type ParameterSets = () => Gradual<{ readonly fits: readonly Fit[]; readonly failed: number }>;
+
+export function parameterSets(fit: Fit, seed: number): ParameterSets {
+  let known: { readonly fits: readonly Fit[]; readonly failed: number } | null = null;
+  return function* () { return (known ??= yield* bootstrapFits(fit, setsFor(fit.series), seed)); };
+}
+
+function* pathSource(model: Forecaster, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number, given?: ParameterSets): Gradual<{ readonly source: PathSource; readonly assumption: string }> {
   if (isRule(model) && model.rule === "combine") {
     const sources: PathSource[] = [];
     for (const member of model.members ?? []) sources.push((yield* pathSource(member, horizon, regressors, seed)).source);
@@ -51,7 +59,7 @@ function* pathSource(model: Forecaster, horizon: number, regressors: Readonly<Re
     };
     return { source, assumption: `Bands: from ${pathCount} simulated paths of the members, averaged path by path with shared random numbers. They assume of each member what its own simulated bands would: that coming errors are like past ones, and that its form is right.` };
   }
-  const { maker, assumption } = isRule(model) ? rulePaths(model, horizon) : yield* fitPaths(model, horizon, regressors, seed);
+  const { maker, assumption } = isRule(model) ? rulePaths(model, horizon) : yield* fitPaths(model, horizon, regressors, given ?? parameterSets(model, seed));
   const { steps } = undoOf(model.series, keptSteps(model), horizon);
   const source: PathSource = (count, from) => {
     const rows = stratified(horizon + 1, count, seeded(from + 7)), uniform = new Float64Array(horizon + 1);
@@ -63,8 +71,8 @@ function* pathSource(model: Forecaster, horizon: number, regressors: Readonly<Re
   return { source, assumption };
 }
 
-function* fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string, Series>>, seed: number): Gradual<{ readonly maker: PathMaker; readonly assumption: string }> {
-  const { times } = undoOf(fit.series, keptSteps(fit), horizon), asked = setsFor(fit.series), boots = yield* bootstrapFits(fit, asked, seed);
+function* fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string, Series>>, given: ParameterSets): Gradual<{ readonly maker: PathMaker; readonly assumption: string }> {
+  const { times } = undoOf(fit.series, keptSteps(fit), horizon), boots = yield* given();
   const sets = (boots.fits.length > 0 ? boots.fits : [fit]).map((boot) => ({
     // The set's coefficients put to what was really observed.
     mean: fitPredictive({ ...boot, series: fit.series, options: { ...fit.options, series: fit.series, window: undefined } }, horizon, times, regressors).mean,
@@ -81,7 +89,7 @@ function* fitPaths(fit: Fit, horizon: number, regressors: Readonly<Record<string
     }
     for (let h = 0; h < horizon; h++) path[h] += mean[h];
   };
-  const lost = boots.failed > 0 ? ` (${boots.failed} of ${asked} sets could not be estimated and were left out)` : "";
+  const lost = boots.failed > 0 ? ` (${boots.failed} of ${boots.fits.length + boots.failed} sets could not be estimated and were left out)` : "";
   return { maker, assumption: `Bands: from ${pathCount} simulated paths with ${sets.length} sets of parameters, estimated again on series simulated from the model${lost}, and shocks drawn from its residuals${fit.phi.length + fit.seasonalPhi.length > 0 ? "; autoregressive coefficients are corrected for coming out too small in short samples" : ""}. They take in that the parameters are estimates and that shocks need not be normal; the orders count as known.` };
 }
 

@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import { regressionCovariance } from "../../../stdlib/arma/regressionCovariance.ts";
-import { forecast } from "../../../stdlib/forecast/forecast.ts";
+import { forecast, forecasting } from "../../../stdlib/forecast/forecast.ts";
 import { pulse } from "../../../stdlib/forecast/interventions.ts";
 import { normals, seeded } from "../../../stdlib/forecast/random.ts";
 import { rule } from "../../../stdlib/forecast/rules.ts";
@@ -60,6 +60,10 @@ describe("scenarios", () => {
     expect(dear.difference!.median[3]).toBeCloseTo(2 * model.beta.price, 0);
     expect(width(dear.difference!.bands[0])).toBeLessThan(0.7 * Math.hypot(width(cheap.bands[0]), width(dear.bands[0])));
     expect(width(dear.difference!.bands[0]) / (2 * 1.645 * 2 * model.se.beta.price)).toBeGreaterThan(0.7);
+  });
+  it("simulated: the sets of parameters are estimated once for all scenarios", () => {
+    const slices = (scenarios: unknown) => { let n = 0; const work = forecasting(model, { ...options, regressors: { rain: ahead("rain", 0), ...(scenarios ? {} : { price: ahead("price", 9) }) }, bands: "simulated", scenarios: scenarios as never }); while (!work.next().done) n++; return n; };
+    expect(slices(options.scenarios)).toBe(slices(undefined));
   });
   it("the note says from which, and that an association is taken for an effect", () => {
     expect(forecast(model, options).notes.find((n) => n.code === "scenarios")?.text).toMatch(/Differences are from cheap.*is assumed, not shown/);
