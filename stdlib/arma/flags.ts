@@ -43,7 +43,9 @@ export interface Findings {
 export function flags(f: Findings): Note[] {
   const notes: Note[] = [];
   const caution = (code: string, text: string) => { notes.push({ code, tone: "caution", text }); };
-  if (!f.converged) caution("notConverged", "The search for the maximum stopped before it had converged: the estimates may not be the best. Try fewer lags, or look for an outlier or a change of scale in the series.");
+  if (!f.converged) caution("notConverged", towardsThePattern(f)
+    ? "The search did not settle: the likelihood keeps rising, ever more slowly, towards a model whose two sides share a root on the unit circle. That is a fixed pattern (a level, a swing) and no process: take one lag fewer on each side, or put the pattern into regressors."
+    : "The search for the maximum stopped before it had converged: the estimates may not be the best. Try fewer lags, or look for an outlier or a change of scale in the series.");
   rootFlags(f, caution);
   cancellation(f, caution);
   correlated(f, caution);
@@ -53,6 +55,12 @@ export function flags(f: Findings): Note[] {
   if (f.sigma2 < 1e-10 * f.variance && Number.isNaN(f.prepared.heldSigma2)) caution("perfectFit", "The model follows the series almost exactly, so the likelihood has no proper maximum: the series looks deterministic. Look at how it was made before using its standard errors.");
   if (f.gaps > 0) notes.push({ code: "gaps", tone: "note", text: `${f.gaps} missing value${f.gaps === 1 ? "" : "s"} inside the sample: the likelihood is that of what was observed, nothing was filled in.` });
   return notes;
+}
+
+/** Whether an autoregressive and a moving-average root meet on the circle. */
+function towardsThePattern(f: Findings): boolean {
+  const parts = f.prepared.shape.factors;
+  return [0, 1].some(i => nearestRoot(parts[i], f.x) < BOUNDARY && nearestRoot(parts[i + 2], f.x) < 1 + 1e-3);
 }
 
 type Caution = (code: string, text: string) => void;

@@ -135,6 +135,14 @@ describe("pathological series give a result or a clear refusal", () => {
     expect(found.se.phi[0]).toBeNaN();
   });
 
+  it("says where the likelihood rises towards a fixed pattern and has no proper maximum", () => {
+    // White noise about two levels that alternate, in part: both sides end at a common root of -1.
+    const swing = series(simulate({}, 64, 8).values.map((v, t) => v + (t % 2 === 0 ? 0.45 : -0.45)));
+    const found = fit({ series: swing, ar: 1, ma: 1 });
+    expect(found.phi[0]).toBeLessThan(-0.99);
+    expect(found.notes.find(n => n.code === "notConverged")?.text).toMatch(/two sides share a root on the unit circle\. That is a fixed pattern/);
+  });
+
   it("flags factors that nearly cancel", () => {
     const found = fit({ series: simulate({}, 300, 2), ar: 1, ma: 1 });
     expect(found.notes.map(n => n.code)).toContain("nearCancelling");

@@ -5,6 +5,7 @@ import { describe, expect, it } from "vitest";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import type { Fit, Held } from "../../../stdlib/arma/model.ts";
 import { roots } from "../../../stdlib/arma/roots.ts";
+import { simulate } from "../../../stdlib/arma/simulate.ts";
 import { makeSeries } from "../../../stdlib/series/series.ts";
 import { applySteps } from "../../../stdlib/series/steps.ts";
 
@@ -54,4 +55,19 @@ describe("random models reach R's maximum, and agree with it where it is the sam
     });
   });
   it("and that is the same one in most of them", () => { expect(same).toBeGreaterThan(0.8 * cases.length); });
+});
+
+describe("several maxima", () => {
+  // Mixed models whose first start ends on a lower maximum, as R's arima(method = "ML") does: `low` is its log-likelihood, `high`
+  // R's log-likelihood at the estimates reached here (R 4.2.2, all coefficients fixed).
+  it.each([
+    { phi: [0.158, 0.485, -0.131], theta: [0.247], mean: true, seed: 12, n: 143, low: -190.943921656, high: -188.913197064 },
+    { phi: [0.622, 0.412, -0.211], theta: [0.035, -0.568], mean: false, seed: 66, n: 222, low: -311.100509618, high: -308.457054322 },
+    { phi: [-1.247, 0.099, 0.371], theta: [0.447], mean: false, seed: 477, n: 128, low: -204.424668086, high: -175.423183276 },
+    { phi: [-0.379, 0.005, 0.003], theta: [-0.395, -0.281], mean: true, seed: 680, n: 244, low: -350.827899187, high: -348.106478361 },
+  ])("seed $seed: the higher one is found", ({ phi, theta, mean, seed, n, low, high }) => {
+    const found = fit({ series: simulate({ phi, theta }, n, seed), ar: phi.length, ma: theta.length, mean });
+    expect(found.logLikelihood).toBeGreaterThan(low + 1);
+    expect(found.logLikelihood).toBeGreaterThan(high - 1e-6);
+  });
 });
