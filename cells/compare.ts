@@ -189,8 +189,8 @@ async function evaluated(models: readonly { readonly label: string; readonly mod
   return { ...result, how: "origins", every: whole.every };
 }
 
-function hooksOf({ progress, breathe, stopped, recall }: RunContext): Hooks {
-  return { progress, breathe, stopped, recall };
+function hooksOf({ progress, breathe, stopped, recall, ahead }: RunContext): Hooks {
+  return { progress, breathe, stopped, recall, ahead: ({ shared, items }) => { ahead("estimates", shared, items); } };
 }
 
 function asCriterion(grid: Grid): Comparison {

@@ -1,5 +1,6 @@
 // The kinds of cells, one line a kind, in the order in which help lists them; and the language as the engine takes it.
 
+import { estimateAhead } from "../stdlib/index.ts";
 import { checkOptions } from "./check.ts";
 import { chart } from "./chart.ts";
 import { choice } from "./choice.ts";
@@ -45,4 +46,4 @@ export const kinds: readonly Kind<never, unknown>[] = [
   script,
 ];
 
-export const language: Language = { kinds, library, constants, check: checkOptions };
+export const language: Language = { kinds, library, constants, check: checkOptions, ahead: { estimates: estimateAhead } };

@@ -57,6 +57,9 @@ export interface RunContext {
   /** What this cell computed from the same content in one of its last runs, or what `make` gives, which is then kept.
    *  The key must say all that the value hangs on. */
   recall<T>(key: string, make: () => T): T;
+  /** Says what will be recalled, in the order of need, as plain data: other cores may make it before, where there are any and
+   *  the work is long. @param task one of the language's `ahead` tasks */
+  ahead(task: string, shared: unknown, items: readonly { readonly key: string }[]): void;
   /** A remark shown with the cell (rows dropped, gaps found). */
   note(text: string): void;
   /** Runs a `script` cell's source, isolated; gives its exports. Rejects where code is not allowed. */
@@ -121,6 +124,8 @@ export interface Language {
   readonly library: readonly LibraryFunction[];
   /** Names with a fixed value besides `NaN`, `Infinity` and `free` (which is the text "free"). */
   readonly constants: Readonly<Record<string, unknown>>;
+  /** Tasks that may be done on another core: given what the items of one job share, the function that makes one item. */
+  readonly ahead?: Readonly<Record<string, (shared: never) => (item: never) => unknown>>;
   /** `checkOptions` of cells/check.ts. `given` holds what the author wrote, null = not given.
    *  `sources` are the options' expressions, where there are any, for messages that say what to write.
    *  @throws OptionError */

@@ -77,6 +77,7 @@ export { gridOfOrders, rankFits, type GridOptions, type Tried } from "./evaluati
 export { stepwiseOrders, type PathStep, type Stepwise, type StepwiseOptions } from "./evaluation/stepwiseOrders.ts";
 export { type Criterion, type Grid, type GridFailure, type GridRow } from "./evaluation/rankedGrid.ts";
 export { rollingOrigins, summarise, type Against, type CompareOptions, type Evaluation, type OriginForecast, type RankBy, type RankedModel } from "./evaluation/rollingOrigins.ts";
+export { estimateAhead, type Ahead } from "./evaluation/ahead.ts";
 export { rollingFrame, rollModels, type Hooks, type Labelled, type Rolled, type RollingFrame, type RollingOptions } from "./evaluation/rolling.ts";
 export { type Coverage, type Score } from "./evaluation/scoreTable.ts";
 export { binomialRange } from "./evaluation/binomialRange.ts";

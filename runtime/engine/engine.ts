@@ -15,6 +15,8 @@ import { createGraph } from "./graph.ts";
 import type { GraphNode } from "./graph.ts";
 import { libraryScope } from "./library.ts";
 import type { CellReport, CellState, FromEngine, NumberReport } from "./messages.ts";
+import { sendOut, worthMs } from "./helpers.ts";
+import type { Helper, Job } from "./helpers.ts";
 import { createMemory } from "./memory.ts";
 import type { Memory } from "./memory.ts";
 import { createPace, nextTask } from "./nextTask.ts";
@@ -33,6 +35,8 @@ export interface EngineHost {
   read(file: string): Promise<Uint8Array>;
   send(message: FromEngine): void;
   /** Runs a script isolated and gives its exports; left out where scripts cannot run. Aborted with its signal. */
+  /** Another worker of this program, to make ahead what long work needs; left out where there is none. */
+  helpers?(): readonly Helper[];
   importCode?(source: string, inputs: Readonly<Record<string, unknown>>, signal: AbortSignal): Promise<Readonly<Record<string, unknown>>>;
 }
 
@@ -102,6 +106,8 @@ interface Entry {
   /** Whether its present outcome is what a stop left. */
   stopped: boolean;
   readonly memory: Memory;
+  /** Ends the helpers of its present run. */
+  endHelp: (() => void) | null;
   readonly swept: Swept;
   shown: { readonly outcome: Outcome; readonly width: number; readonly parts: readonly Part[] | null; readonly fault: string | null } | null;
 }
@@ -279,7 +285,7 @@ class NotebookEngine implements Engine {
     if (each === undefined) return;
     const known = this.#entries.get(id);
     const entry: Entry = known ?? {
-      id, mark: each.mark, inputs: each.inputs, state: "waiting", outcome: null, ranOn: null, run: {}, runs: 0, lastMs: 0, notes: [], progress: null, files: new Set(), stop: null, stopped: false, memory: createMemory(), swept: new Map(), shown: null,
+      id, mark: each.mark, inputs: each.inputs, state: "waiting", outcome: null, ranOn: null, run: {}, runs: 0, lastMs: 0, notes: [], progress: null, files: new Set(), stop: null, stopped: false, memory: createMemory(), endHelp: null, swept: new Map(), shown: null,
       node: this.#graph.node(id, { stale: () => this.#stale(id), value: (outcome) => this.#arrived(id, outcome) }),
     };
     entry.mark = each.mark;
@@ -400,6 +406,8 @@ class NotebookEngine implements Engine {
       return outcome.ok || context.setting === undefined ? outcome : await this.#withoutSetting(definition, around, outcome);
     } finally {
       entry.lastMs = performance.now() - started;
+      entry.endHelp?.();
+      entry.endHelp = null;
       if (this.#running.get(entry.id) === signal) this.#running.delete(entry.id);
     }
   }
@@ -440,19 +448,29 @@ class NotebookEngine implements Engine {
       setting: (id) => this.#settings.get(id),
       contextFor: (each, setting) => this.#quietContext(each.text.name, sourcesOf(each), setting, signal),
     }, entry.swept);
-    const { stop } = entry;
+    const { stop, memory } = entry;
     const timeLeft = createTimeLeft();
+    let job: Job | null = null;
+    const help = (leftMs: number | null): void => {
+      const { helpers } = this.#host;
+      if (job === null || helpers === undefined || leftMs === null || leftMs < worthMs) return;
+      entry.endHelp = sendOut(job, helpers.call(this.#host), memory.has, memory.put);
+      job = null;
+    };
     return {
       ...this.#quietContext(cell.text.name, sourcesOf(cell), this.#settings.get(cell.id), signal),
       read: (file) => { entry.files.add(file); return this.#host.read(file); },
       progress: (done, total, what = "") => {
         if (signal.aborted) return;
-        entry.progress = { done, total, what, leftMs: timeLeft(done, total) };
+        const leftMs = timeLeft(done, total);
+        help(leftMs);
+        entry.progress = { done, total, what, leftMs };
         this.#dirty.add(entry.id);
         this.#scheduleFlush();
       },
       note: (text) => { if (!entry.notes.includes(text)) entry.notes.push(text); },
-      recall: entry.memory.recall,
+      recall: memory.recall,
+      ahead: (task, shared, items) => { job = { task, shared, items }; },
       stopped: () => {
         if (stop === null) return false;
         stop.heard = true;
@@ -473,6 +491,7 @@ class NotebookEngine implements Engine {
       breathe: () => this.#pace.breathe(signal),
       stopped: () => false,
       recall: (_key, make) => make(),
+      ahead: () => undefined,
       note: () => undefined,
       importCode: (code, inputs) => {
         const { importCode } = this.#host;

@@ -3,6 +3,9 @@
 export interface Memory {
   /** What was computed under this key before, or what `make` gives, which is then kept. A `make` that throws keeps nothing. */
   recall<T>(key: string, make: () => T): T;
+  has(key: string): boolean;
+  /** Keeps what was made elsewhere. */
+  put(key: string, value: unknown): void;
   /** A run has come to its end: what none of the last few used is forgotten. */
   ended(): void;
 }
@@ -21,6 +24,8 @@ export function createMemory(): Memory {
       kept.set(key, { value, usedIn: run });
       return value;
     },
+    has: (key) => kept.has(key),
+    put(key, value) { if (!kept.has(key)) kept.set(key, { value, usedIn: run }); },
     ended() {
       for (const [key, each] of kept) if (each.usedIn <= run - runsKept) kept.delete(key);
       run += 1;

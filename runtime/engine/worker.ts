@@ -5,20 +5,23 @@ import type { Language } from "../../cells/kind.ts";
 import { createEngine } from "./engine.ts";
 import type { Engine } from "./engine.ts";
 import { importIsolated } from "./isolated.ts";
+import { createHelped } from "./helpers.ts";
+import type { FromHelper, Helper, ToHelper } from "./helpers.ts";
 import type { FromEngine, ToEngine } from "./messages.ts";
 
 /** The part of a worker's global scope that this needs; tests give their own. */
 export interface WorkerScope {
-  postMessage(message: FromEngine): void;
-  addEventListener(type: "message", listener: (event: { readonly data: ToEngine }) => void): void;
+  postMessage(message: FromEngine | FromHelper): void;
+  addEventListener(type: "message", listener: (event: { readonly data: ToEngine | ToHelper }) => void): void;
 }
 
 /** Answers messages with an engine for one notebook.
  *  Files are asked for by message and kept, so that a file is sent once and again only when it has changed. */
 export function serveEngine(language: Language, scope: WorkerScope, importCode = importIsolated): Engine {
   const files = createFiles((file) => scope.postMessage({ from: "need", file }));
-  const engine = createEngine(language, { send: (message) => scope.postMessage(message), read: files.read, importCode });
-  scope.addEventListener("message", ({ data }) => receive(data, engine, files, scope));
+  const engine = createEngine(language, { send: (message) => scope.postMessage(message), read: files.read, importCode, helpers: startHelpers });
+  const helped = createHelped(language);
+  scope.addEventListener("message", ({ data }) => { if (data.to === "help") scope.postMessage(helped(data)); else receive(data, engine, files, scope); });
   return engine;
 }
 
@@ -36,6 +39,25 @@ function receive(message: ToEngine, engine: Engine, files: Files, scope: WorkerS
     case "ping": return scope.postMessage({ from: "pong", beat: message.beat, running: engine.running() });
   }
 }
+
+/** As many as there are other cores, within reason. A worker of this worker's own program: the page's policy lets it start blobs. */
+function startHelpers(): readonly Helper[] {
+  const others = Math.min(mostHelpers, Math.max(0, (navigator.hardwareConcurrency || 1) - 1));
+  return Array.from({ length: others }, () => {
+    const worker = new Worker(location.href);
+    return {
+      post: (message) => worker.postMessage(message),
+      listen(hear) {
+        worker.addEventListener("message", ({ data }: MessageEvent<FromHelper | FromEngine>) => { if (data.from === "helped") hear(data); });
+        worker.addEventListener("error", (event) => { event.preventDefault(); hear(null); });
+      },
+      end: () => worker.terminate(),
+    } satisfies Helper;
+  });
+}
+
+/** Each holds a copy of the data and its own compiled program. */
+const mostHelpers = 6;
 
 interface Files {
   read(file: string): Promise<Uint8Array>;

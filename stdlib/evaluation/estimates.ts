@@ -19,6 +19,9 @@ export interface Estimates {
   held(parameters: Seen, seen: Seen): Forecaster;
   /** Stands for all that the estimate of a stretch is made from. */
   key(seen: Seen): string;
+  /** What is recalled of a stretch, under `recalledAs` of it: the estimate without its data. */
+  estimate(seen: Seen): Estimated;
+  recalledAs(seen: Seen): string;
 }
 
 export interface EstimatesOptions {
@@ -39,12 +42,13 @@ const anchorEvery = 24;
 const leastShare = 0.75;
 
 /** What was found, or why nothing was. */
-type Estimated = { readonly model: Forecaster } | { readonly reason: string };
+export type Estimated = { readonly model: Forecaster } | { readonly reason: string };
 
 export function estimatesOf(model: Forecaster, { data, slides, earliest, recall }: EstimatesOptions): Estimates {
   const reach = reachOf(model, data), base = baseOf(reach), first = firstIndex(base), asked = contentKey(specOf(model, data));
   const key = ({ from, to }: Seen): string => `${asked} ${from} ${contentKey(base.values.subarray(Math.max(0, from - first), to + 1 - first))}`;
-  const found = (seen: Seen): Estimated => recall(`estimate ${key(seen)}`, () => {
+  const recalledAs = (seen: Seen): string => `estimate ${key(seen)}`;
+  const found = (seen: Seen): Estimated => recall(recalledAs(seen), () => {
     const near = nearTo(seen);
     return attempt(() => refitBetween(model, { ...seen, how: near === null ? "fresh" : "refit", data }, near ?? model));
   });
@@ -61,7 +65,7 @@ export function estimatesOf(model: Forecaster, { data, slides, earliest, recall 
     return there.model;
   };
   return {
-    key,
+    key, recalledAs, estimate: found,
     at: (seen) => withData(parametersOf(seen), model, seen, data),
     held: (parameters, seen) => refitBetween(model, { ...seen, how: "held", data }, parametersOf(parameters)),
   };

@@ -6,8 +6,10 @@ import { cut } from "../series/cut.ts";
 import { modelOutlook } from "../forecast/modelOutlook.ts";
 import type { Forecaster } from "../forecast/model.ts";
 import { baseOf, firstIndex, lastIndex, reachOf } from "../forecast/reach.ts";
+import { isRule } from "../forecast/rules.ts";
+import type { Ahead } from "./ahead.ts";
 import { contentKey, recallNothing, type Recall } from "./contentKey.ts";
-import { estimatesOf, type Seen } from "./estimates.ts";
+import { estimatesOf, type Estimates, type Seen } from "./estimates.ts";
 
 export interface Labelled { readonly label: string; readonly model: Forecaster }
 
@@ -35,6 +37,8 @@ export interface Hooks {
   readonly breathe?: () => Promise<void>;
   readonly stopped?: () => boolean;
   readonly recall?: Recall;
+  /** Told what will be recalled, in the order of need: another core may make it before. */
+  readonly ahead?: (work: Ahead) => void;
 }
 
 /** What happened at the origins, and the frame that all models share. */
@@ -104,10 +108,11 @@ const sampleStart = ({ model }: Labelled): number => firstIndex(baseOf(model.ser
  *  @param onForecast  called after each forecast with the label of its model */
 export async function rollModels(models: readonly Labelled[], frame: RollingFrame, options: RollingOptions, hooks: Hooks = {}, onForecast: (label: string) => void = () => undefined): Promise<Rolled[]> {
   const rolled = models.map(({ label }) => ({ ...tablesOf(label, frame), done: 0 })), forecasts = models.map((one) => forecastsOf(one, frame, options, hooks.recall ?? recallNothing));
+  hooks.ahead?.(workAhead(models, frame, options, forecasts));
   for (let k = 0; k < frame.at.length; k++) {
     for (let i = 0; i < models.length; i++) {
       if (hooks.stopped?.()) return rolled;
-      writeInto(rolled[i], k, forecasts[i](k), frame);
+      writeInto(rolled[i], k, forecasts[i].row(k), frame);
       rolled[i].done++;
       onForecast(models[i].label);
       if (hooks.breathe) await hooks.breathe();
@@ -119,14 +124,24 @@ export async function rollModels(models: readonly Labelled[], frame: RollingFram
 /** The forecast from one origin, each column of the horizon's length; or why there is none. */
 type OriginRow = { readonly mean: Float64Array; readonly median: Float64Array; readonly sd: Float64Array; readonly crps: Float64Array; readonly low: readonly Float64Array[]; readonly high: readonly Float64Array[] } | { readonly reason: string };
 
-/** One model's forecasts by the number of their origin. */
-function forecastsOf({ label, model }: Labelled, frame: RollingFrame, options: RollingOptions, recall: Recall): (k: number) => OriginRow {
+/** The estimates of all models, origin by origin; those of plain rules cost nothing and are left out. */
+function workAhead(models: readonly Labelled[], frame: RollingFrame, { training, data }: RollingOptions, forecasts: readonly Forecasts[]): Ahead {
+  const dear = models.flatMap(({ model }, i) => (isRule(model) && model.rule !== "smoothing" && model.rule !== "combine" ? [] : [i]));
+  const items = frame.at.flatMap((_, k) => dear.map((i) => ({ key: forecasts[i].estimates.recalledAs(forecasts[i].estimatedAt(k)), model: i, seen: forecasts[i].estimatedAt(k) })));
+  return { shared: { models: models.map(({ model }, i) => ({ model, earliest: forecasts[i].earliest })), ...(data === undefined ? {} : { data }), slides: training === "sliding" }, items: [...new Map(items.map((item) => [item.key, item])).values()] };
+}
+
+/** One model's forecasts by the number of their origin, and what they are made from. */
+interface Forecasts { readonly row: (k: number) => OriginRow; readonly estimatedAt: (k: number) => Seen; readonly estimates: Estimates; readonly earliest: number }
+
+function forecastsOf({ label, model }: Labelled, frame: RollingFrame, options: RollingOptions, recall: Recall): Forecasts {
   const { base, at, horizon, levels } = frame, { training = "expanding", refit = true, data, seed = 1 } = options, slides = training === "sliding";
   const every = refit === true ? 1 : refit === false ? Infinity : Math.max(1, Math.round(refit));
   const first = firstIndex(base), start = Math.max(first, sampleStart({ label, model })), estimates = estimatesOf(model, { data, slides, earliest: start, recall });
   const seenAt = (k: number): Seen => ({ from: slides ? start + k : start, to: first + at[k] });
-  return (k) => {
-    const seen = seenAt(k), estimated = seenAt(every === Infinity ? 0 : k - (k % every)), actual = base.values.subarray(at[k] + 1, at[k] + 1 + horizon);
+  const estimatedAt = (k: number): Seen => seenAt(every === Infinity ? 0 : k - (k % every));
+  const row = (k: number): OriginRow => {
+    const seen = seenAt(k), estimated = estimatedAt(k), actual = base.values.subarray(at[k] + 1, at[k] + 1 + horizon);
     const key = `forecast ${estimates.key(seen)} ${estimated.to === seen.to ? "" : estimates.key(estimated)} ${contentKey([levels, seed, actual])}`;
     return recall(key, () => {
       try {
@@ -138,6 +153,7 @@ function forecastsOf({ label, model }: Labelled, frame: RollingFrame, options: R
       }
     });
   };
+  return { row, estimatedAt, estimates, earliest: start };
 }
 
 function rowOf(model: Forecaster, actual: Float64Array, levels: readonly number[], seed: number): OriginRow {

@@ -12,7 +12,7 @@ export function contextOf(given: Partial<RunContext> & { readonly files?: Readon
       const content = files[file];
       return typeof content === "string" ? new TextEncoder().encode(content) : content;
     },
-    progress: () => undefined, breathe: async () => undefined, stopped: () => false, recall: (_key, make) => make(), note: (text) => { notes.push(text); },
+    progress: () => undefined, breathe: async () => undefined, stopped: () => false, recall: (_key, make) => make(), ahead: () => undefined, note: (text) => { notes.push(text); },
     importCode: async () => ({}), recompute: async () => null,
     control: () => { throw new Error("no control here"); },
     ...rest,

@@ -8,6 +8,6 @@ export function madeContext(changes: Partial<RunContext> = {}): RunContext & { r
   return {
     name: "made", setting: undefined, source: {}, signal: new AbortController().signal, said, steps,
     read: refuse("file"), importCode: refuse("script"), recompute: refuse("recomputation"), control: refuse("control"),
-    progress: (done, total) => { steps.push([done, total]); }, breathe: async () => {}, stopped: () => false, recall: (_key, make) => make(), note: text => { said.push(text); }, ...changes,
+    progress: (done, total) => { steps.push([done, total]); }, breathe: async () => {}, stopped: () => false, recall: (_key, make) => make(), ahead: () => undefined, note: text => { said.push(text); }, ...changes,
   };
 }
