@@ -1,6 +1,6 @@
 // Live numbers: does the saved text still say what the value is, and how would it read now?
 
-import { format as d3Format } from "d3-format";
+import { format as d3Format, formatSpecifier } from "d3-format";
 
 export type LiveValue = number | string | boolean;
 
@@ -54,14 +54,18 @@ export function formatLike(saved: string, pattern: string | null, value: LiveVal
   return form === null ? general(value) : inForm(form, value);
 }
 
-/** null for a pattern that d3-format refuses. */
+/** null for a pattern that d3-format takes; a number padded to thousands of letters is refused as well. */
 export function patternFault(pattern: string): string | null {
   return patterned(pattern, 1) === null ? `\`${pattern}\` is not a number pattern: write one such as \`.2f\`, \`,.0f\` or \`.1%\`` : null;
 }
 
+/** Letters that a number is padded to at most, and decimals that it is printed with: ECMAScript's own limit. */
+const MOST_LETTERS = 100;
+
 function patterned(pattern: string, value: number): string | null {
   try {
-    return d3Format(pattern)(value);
+    const specifier = formatSpecifier(pattern);
+    return (specifier.width ?? 0) > MOST_LETTERS ? null : d3Format(pattern)(value);
   } catch {
     // d3-format throws for a pattern it cannot read: the caller falls back to the text's own form, and `patternFault` tells the author.
     return null;
@@ -75,7 +79,7 @@ function formOf(saved: string): Form | null {
   if (match === null || (match[6] === undefined && match[8] === undefined)) return null;
   const [, before, bound = "", boundGap = "", sign, currency, whole = "0", grouping = "", fraction = "", letter, power, percent = "", after] = match;
   const exponent = letter === undefined ? null : { letter, value: Number(power.replace("\u2212", "-")) };
-  const decimals = Math.max(0, fraction.length - 1);
+  const decimals = Math.min(MOST_LETTERS, Math.max(0, fraction.length - 1));
   // Scaled by text, not by multiplication, so that 12% is 0.12 and not its neighbour.
   const scale = (exponent?.value ?? 0) - (percent === "" ? 0 : 2);
   const digits = `${grouping === "" ? whole : whole.replaceAll(grouping, "")}${fraction}`;

@@ -1,5 +1,5 @@
 import { describe, expect, test } from "vitest";
-import { agrees, formatLike } from "../../../runtime/text/live.ts";
+import { agrees, formatLike, patternFault } from "../../../runtime/text/live.ts";
 
 describe("agrees", () => {
   test.each<[string, string | null, number | string | boolean, boolean | null]>([
@@ -24,5 +24,19 @@ describe("formatLike prints in the saved text's own form", () => {
     for (const saved of ["0.31", "1,204", "12%", "<0.001", "-483.2", "1.2e-5", "+3.0", "$5.00", "0"]) {
       for (const value of [0, 0.0004, 0.31, -0.31, 12.5, 1204, -98765.4321, 1e-7]) expect([saved, value, agrees(formatLike(saved, null, value), null, value)]).toEqual([saved, value, true]);
     }
+  });
+});
+
+describe("a stranger's form or pattern", () => {
+  test("pads no number to a page of zeros, and says so", () => {
+    expect(patternFault("0>100000000d")).toMatch(/is not a number pattern/);
+    expect(formatLike("1", "0>100000000d", 12)).toBe("12");
+    expect(patternFault("8.2f")).toBeNull();
+  });
+  test("with more decimals than a number can be printed with is printed with as many as it can", () => {
+    const saved = `1.${"0".repeat(500)}`;
+    expect(formatLike(saved, null, 2)).toBe(`2.${"0".repeat(100)}`);
+    expect(formatLike(`${saved}e3`, null, 2000).length).toBeLessThan(110);
+    expect(agrees(saved, null, 1)).toBe(true);
   });
 });
