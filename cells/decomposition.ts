@@ -71,13 +71,19 @@ async function runDecomposition(options: DecompositionCell, context: RunContext)
     trend: parts?.trend ?? null, seasonal: parts?.seasonal ?? null, remainder: parts?.remainder ?? null,
     strength: length === null ? null : seasonalStrength(series, length),
     positions: length === null ? [] : subseries(untrended, length), labels: length === null ? [] : seasonLabels(series, length),
-    spectrum: spectrum(straight, { level }), cumulativePeriodogram: cumulativePeriodogram(straight, 0, level),
+    spectrum: spectrum(straight, { level, smooth: twice(series.n) }), cumulativePeriodogram: cumulativePeriodogram(straight, 0, level),
     notes: [
       ...(usual === null ? ["Its spacing names no season, and no length was given: there is a spectrum, and nothing to take apart."] : []),
       ...(usual !== null && length === null ? [`${series.n} values are fewer than two seasons of ${usual} periods: there is nothing to take apart.`] : []),
       ...(why === null ? [] : [`The series could not be taken apart: ${why}.`]),
     ],
   };
+}
+
+/** Two averages one after another: their weights fall off to the sides, so that a cycle shows as a peak and not as a plateau. */
+function twice(n: number): number[] {
+  const half = Math.max(1, Math.round(Math.sqrt(n) / 4));
+  return 4 * half < n ? [half, half] : [half];
 }
 
 interface Pieces { readonly trend: Series; readonly seasonal: Series; readonly remainder: Series }

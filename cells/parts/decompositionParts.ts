@@ -58,7 +58,7 @@ function seasonPart(result: Shown, width: number): readonly ChartPart[] {
   const { positions, labels, trend, method, series } = result;
   if (positions.length === 0) return [];
   const what = trend === null ? result.axis : method === "multiplicative" ? "share of the trend" : `against the trend${series.unit ? ` (${series.unit})` : ""}`;
-  const alt = `${positionsText(result)[0] ?? "No position of the season is observed."} Each line is one position through the years, the rule its mean.`;
+  const alt = `${positionsText(result)[0] ?? "No position of the season is observed."} Each line is one position through time, the rule its mean.`;
   return [subseriesChart("The season, position by position", alt, what, positions, labels, width)];
 }
 

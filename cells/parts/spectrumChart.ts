@@ -9,7 +9,7 @@ const mostGuides = 6;
 /** @param season  season length in periods, whose frequency and multiples are marked; null for none */
 export function spectrumChart(title: string, alt: string, unit: string, spectrum: Spectrum, season: number | null, width: number): ChartPart {
   const x = { field: "frequency", type: "quantitative", title: "frequency (cycles a period)", scale: { nice: false, zero: true }, axis: { grid: false } };
-  const y = (field: string): Record<string, unknown> => ({ field, type: "quantitative", title: unit ? `density (${unit}² × periods)` : "density", scale: { type: "log", nice: false }, axis: { tickCount: 4, format: "~g" } });
+  const y = (field: string): Record<string, unknown> => ({ field, type: "quantitative", title: unit ? `density (${unit}² × periods)` : "density", scale: { type: "log", nice: false }, axis: { tickCount: 4, format: ",~g" } });
   // A logarithm has no place for 0; ordinates far below the rest would only squeeze the others.
   const floor = spectrum.raw.reduce((top, v) => Math.max(top, v), 0) * 1e-7;
   const columns = (values: Float64Array): { frequency: Float64Array; value: Float64Array } => {

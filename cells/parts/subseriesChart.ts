@@ -1,4 +1,4 @@
-// The season position by position: its values through the years, side by side, each about its own mean.
+// The season position by position: its values through time, side by side, each about its own mean.
 
 import type { Subseries } from "../../stdlib/index.ts";
 import type { ChartPart } from "./part.ts";

@@ -19,7 +19,7 @@ const printed = { sizes: [50, 100, 200, Infinity], rows: [[-3.77, -3.46, -3.19, 
 /** DF-GLS test of a unit root; lags by BIC unless given, as in the source: with AIC, which takes more, the test loses its power.
  *  It is more powerful than the Dickey-Fuller test where the first values lie near the trend. Small p: no unit root.
  *  With a constant the statistic has the Dickey-Fuller distribution without deterministic terms, so p is MacKinnon's (1994)
- *  and, like it, of the limit: at n = 100 it rejects 7.5% of random walks at 5% (test/bench/identify.ts);
+ *  and, like it, of the limit: at n = 100 it rejects 7.8% of random walks at 5% (test/bench/identify.txt);
  *  with a trend p is interpolated in the printed table and ends at 0.01 and 0.10.
  *  @throws RangeError for another trend, or lags out of range. Source: Elliott, Rothenberg & Stock (1996). */
 export function dfGls(x: Series | ArrayLike<number>, options: DfGlsOptions = {}): Test {

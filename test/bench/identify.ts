@@ -2,7 +2,10 @@
 // 5,000 replications each: the standard error of a simulated size of 5% is 0.3 points.
 
 import { fit } from "../../stdlib/arma/fit.ts";
+import { ccf } from "../../stdlib/correlogram/acf.ts";
 import { autocovariance } from "../../stdlib/correlogram/autocovariance.ts";
+import { extendedAcf, smallestCanonical, type OrderTable } from "../../stdlib/correlogram/extendedAcf.ts";
+import { prewhitenedCcf } from "../../stdlib/correlogram/prewhitenedCcf.ts";
 import { cusum, largestBreak } from "../../stdlib/diagnostics/breaks.ts";
 import { archLM, mcleodLi } from "../../stdlib/diagnostics/changingVariance.ts";
 import { cumulativePeriodogram } from "../../stdlib/diagnostics/cumulativePeriodogram.ts";
@@ -45,6 +48,17 @@ const changing: Process = (n, draw) => { let e = 0; return Float64Array.from({ l
 const broken = (size: number): Process => (n, draw) => Float64Array.from({ length: n }, (_, t) => draw() + (t >= n / 2 ? size : 0));
 const heavy: Process = (n, draw) => Float64Array.from({ length: n }, () => draw() / Math.sqrt((draw() ** 2 + draw() ** 2 + draw() ** 2 + draw() ** 2 + draw() ** 2) / 5));
 const stableSeason = (length: number): Process => (n, draw) => { const x = noise(n, draw); return x.map((v, t) => v + 2 * Math.cos((2 * Math.PI * t) / length)); };
+/** A random walk of the level with a season that stays: what the seasonal test meets after a first difference. */
+const walkWithSeason = (length: number): Process => (n, draw) => walk(n, draw).map((v, t) => v + 2 * Math.cos((2 * Math.PI * t) / length));
+const mixed = (phi: readonly number[], theta: readonly number[]): Process => (n, draw) => {
+  const from = 100, e = Float64Array.from({ length: n + from }, draw), x = new Float64Array(n + from);
+  for (let t = 0; t < x.length; t++) {
+    x[t] = e[t];
+    phi.forEach((c, i) => { if (t > i) x[t] += c * x[t - 1 - i]; });
+    theta.forEach((c, i) => { if (t > i) x[t] += c * e[t - 1 - i]; });
+  }
+  return x.slice(from);
+};
 const wanderingSeason = (length: number): Process => (n, draw) => { const x = new Float64Array(n + length); for (let t = length; t < x.length; t++) x[t] = x[t - length] + draw(); return x.slice(length); };
 
 const plans: readonly Plan[] = [
@@ -52,13 +66,16 @@ const plans: readonly Plan[] = [
   { name: "ADF, constant, AIC lags", n: 100, test: (x) => adf(x), published: -2.891, source: "MacKinnon 2010", tail: "low", null: walk, alternative: autoregression(0.9), alternativeWords: "AR(1) 0.9" },
   { name: "ADF, trend, 0 lags", n: 100, test: (x) => adf(x, { trend: "linear", lags: 0 }), published: -3.455, source: "MacKinnon 2010", tail: "low", null: walk, alternative: autoregression(0.8, 0.05), alternativeWords: "AR(1) 0.8 on a trend" },
   { name: "Phillips-Perron, constant", n: 100, test: (x) => phillipsPerron(x), published: -2.891, source: "MacKinnon 2010", tail: "low", null: walk, alternative: autoregression(0.9), alternativeWords: "AR(1) 0.9" },
+  { name: "Phillips-Perron, trend", n: 100, test: (x) => phillipsPerron(x, { trend: "linear" }), published: -3.455, source: "MacKinnon 2010", tail: "low", null: walk, alternative: autoregression(0.8, 0.05), alternativeWords: "AR(1) 0.8 on a trend" },
+  { name: "DF-GLS, constant, BIC lags", n: 100, test: (x) => dfGls(x), published: -1.944, source: "MacKinnon 2010, asymptotic law", tail: "low", null: walk, alternative: autoregression(0.9), alternativeWords: "AR(1) 0.9" },
   { name: "DF-GLS, constant, 0 lags", n: 100, test: (x) => dfGls(x, { lags: 0 }), published: -1.944, source: "MacKinnon 2010, asymptotic law", tail: "low", null: walk, alternative: autoregression(0.9), alternativeWords: "AR(1) 0.9" },
   ...[50, 100, 200].map((n): Plan => ({ name: "DF-GLS, trend, 0 lags", n, test: (x) => dfGls(x, { trend: "linear", lags: 0 }), published: { 50: -3.19, 100: -3.03, 200: -2.93 }[n] as number, source: "Elliott et al. 1996, table I", tail: "low", null: walk, alternative: autoregression(0.8, 0.05), alternativeWords: "AR(1) 0.8 on a trend" })),
   { name: "KPSS, constant, 0 lags", n: 100, test: (x) => kpss(x, { bandwidth: 0 }), published: 0.463, source: "Kwiatkowski et al. 1992, table 1", tail: "high", null: noise, alternative: walk, alternativeWords: "random walk" },
   { name: "KPSS, trend, 0 lags", n: 100, test: (x) => kpss(x, { trend: "linear", bandwidth: 0 }), published: 0.146, source: "Kwiatkowski et al. 1992, table 1", tail: "high", null: noise, alternative: walk, alternativeWords: "random walk" },
   { name: "KPSS, constant, short rule", n: 100, test: (x) => kpss(x), published: 0.463, source: "Kwiatkowski et al. 1992, table 1", tail: "high", null: noise, alternative: walk, alternativeWords: "random walk" },
-  { name: "Canova-Hansen, quarters", n: 160, test: (x) => canovaHansen(x, { length: 4, difference: false, bandwidth: 0 }), published: 1.01, source: "Canova & Hansen 1995, table 1", tail: "high", null: stableSeason(4), alternative: wanderingSeason(4), alternativeWords: "seasonal walk" },
-  { name: "Canova-Hansen, months", n: 240, test: (x) => canovaHansen(x, { length: 12, difference: false, bandwidth: 0 }), published: 2.75, source: "Canova & Hansen 1995, table 1", tail: "high", null: stableSeason(12), alternative: wanderingSeason(12), alternativeWords: "seasonal walk" },
+  { name: "Canova-Hansen, quarters", n: 160, test: (x) => canovaHansen(x, { length: 4, difference: false, bandwidth: 0, critical: false }), published: 1.01, source: "Canova & Hansen 1995, table 1", tail: "high", null: stableSeason(4), alternative: wanderingSeason(4), alternativeWords: "seasonal walk" },
+  { name: "Canova-Hansen, months", n: 240, test: (x) => canovaHansen(x, { length: 12, difference: false, bandwidth: 0, critical: false }), published: 2.75, source: "Canova & Hansen 1995, table 1", tail: "high", null: stableSeason(12), alternative: wanderingSeason(12), alternativeWords: "seasonal walk" },
+  { name: "Canova-Hansen, as it is run", n: 160, test: (x) => canovaHansen(x, { length: 4, critical: false }), published: 1.01, source: "Canova & Hansen 1995, table 1", tail: "high", null: walkWithSeason(4), alternative: wanderingSeason(4), alternativeWords: "seasonal walk" },
   { name: "Ljung-Box, lag 10", n: 100, test: (x) => ljungBox(x, 10), published: 18.307, source: "chi-square, 10 df", tail: "high", null: noise, alternative: autoregression(0.3), alternativeWords: "AR(1) 0.3" },
   { name: "Box-Pierce, lag 10", n: 100, test: (x) => boxPierce(x, 10), published: 18.307, source: "chi-square, 10 df", tail: "high", null: noise, alternative: autoregression(0.3), alternativeWords: "AR(1) 0.3" },
   { name: "Monti, lag 10", n: 100, test: (x) => monti(x, 10), published: 18.307, source: "chi-square, 10 df", tail: "high", null: noise, alternative: movingAverage(0.4), alternativeWords: "MA(1) 0.4" },
@@ -77,7 +94,43 @@ export function bench(print: (line: string) => void, replications = 5000): void 
   plans.forEach((plan, i) => print(row(plan, i, replications)));
   afterFit(print, replications);
   falseFinds(print, Math.max(20, Math.round(replications / 10)));
+  orders(print, Math.max(20, Math.round(replications / 5)));
+  crossCorrelations(print, replications);
   speed(print);
+}
+
+/** How often the tables for mixed orders suggest the right orders, and how often higher ones. */
+function orders(print: (line: string) => void, replications: number): void {
+  const processes: readonly (readonly [string, number, number, Process])[] = [
+    ["white noise", 0, 0, noise], ["AR(1) 0.7", 1, 0, autoregression(0.7)], ["AR(2) 1.2, -0.5", 2, 0, mixed([1.2, -0.5], [])],
+    ["MA(1) 0.7", 0, 1, movingAverage(0.7)], ["ARMA(1,1) 0.7, 0.6", 1, 1, mixed([0.7], [0.6])], ["ARMA(2,1) 1.2, -0.45, 0.5", 2, 1, mixed([1.2, -0.45], [0.5])],
+  ];
+  print(`orders suggested by the tables, ${replications} series each: right % / too high %`);
+  for (const n of [100, 200, 500]) for (const [name, p, q, process] of processes) {
+    const draw = normals(seeded(79)), counts = [0, 0, 0, 0];
+    for (let i = 0; i < replications; i++) {
+      const x = process(n, draw);
+      [extendedAcf(x), smallestCanonical(x)].forEach(({ suggests }: OrderTable, k) => {
+        if (suggests?.ar === p && suggests.ma === q) counts[2 * k]++;
+        else if (suggests === null || suggests.ar + suggests.ma > p + q) counts[2 * k + 1]++;
+      });
+    }
+    const [right, high, rightToo, highToo] = counts.map((c) => ((100 * c) / replications).toFixed(0));
+    print(`${name.padEnd(28)}  ${String(n).padStart(4)}  extended autocorrelations ${right.padStart(3)} / ${high.padStart(2)}  smallest canonical correlations ${rightToo.padStart(3)} / ${highToo.padStart(2)}`);
+  }
+}
+
+/** Cross-correlations of unrelated series outside their 95% limits, with and without prewhitening. */
+function crossCorrelations(print: (line: string) => void, replications: number): void {
+  const draw = normals(seeded(80)), n = 200, lags = 10;
+  let white = 0, plain = 0;
+  for (let i = 0; i < replications; i++) {
+    const x = autoregression(0.8)(n, draw), y = autoregression(0.8)(n, draw), limit = 1.959964 / Math.sqrt(n);
+    white += prewhitenedCcf(x, y, lags).outside.length;
+    for (const r of [...ccf(x, y, lags), ...ccf(y, x, lags).slice(1)]) if (Math.abs(r) > limit) plain++;
+  }
+  const share = (count: number): string => ((100 * count) / (replications * (2 * lags + 1))).toFixed(1);
+  print(`cross-correlations of unrelated AR(1) 0.8 series of ${n} outside 95% limits: ${share(white)}% after prewhitening, ${share(plain)}% without.`);
 }
 
 function row(plan: Plan, index: number, replications: number): string {

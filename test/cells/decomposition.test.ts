@@ -42,6 +42,12 @@ describe("decomposition", () => {
     expect(charts(parts)[2].alt).toMatch(/^Strongest in the periodogram: one cycle in 12\.0 periods \(\d\d% of the variation\)/);
     expect((await run({ series: deaths })).spectrum.peak!.period).toBeCloseTo(12, 10);
   });
+  test("smooths such that a cycle is a peak of the line, not a plateau", async () => {
+    const { spectrum } = await run({ series: deaths });
+    const top = spectrum.smoothed.indexOf(Math.max(...spectrum.smoothed));
+    expect(1 / spectrum.frequency[top]).toBeCloseTo(12, 10);
+    expect(spectrum.smoothed[top + 2] / spectrum.smoothed[top]).toBeLessThan(0.8);
+  });
   test("names positions by the calendar, wherever the series starts", async () => {
     const from = (every: string, start: string, n: number) => run({ series: makeSeries({ name: "x", every, start, values: Array.from({ length: n }, (_, t) => Math.sin(t) + t / 50) }) });
     expect((await from("P3M", "2019-Q3", 24)).labels.map(one => one.label)).toEqual(["Q3", "Q4", "Q1", "Q2"]);

@@ -110,6 +110,10 @@ const writers: Readonly<Record<string, (item: Case) => Written>> = {
   jarqueBera: ofResiduals((item, x) => [...checksOf(item, "statistic", () => `jarqueBera(${x}).statistic`), ...checksOf(item, "pValue", () => `jarqueBera(${x}).p`)]),
   durbinWatson: ofResiduals((item, x) => checksOf(item, "statistic", () => `durbinWatson(${x})`)),
   archLM: ofResiduals((item, x) => [...checksOf(item, "lm", () => `archLM(${x}, ${item.inputs.lags as number}).statistic`), ...checksOf(item, "lmPValue", () => `archLM(${x}, ${item.inputs.lags as number}).p`)]),
+  cumPeriodogram: ofResiduals((item, x) => {
+    const test = `cumulativePeriodogram(${x}${item.inputs.taper === undefined ? "" : `, ${item.inputs.taper as number}`})`;
+    return [...checksOf(item, "maxDeviation", () => `${test}.statistic`), ...checksOf(item, "critical95", () => `${test}.critical95`), ...checksOf(item, "cumulative", (i) => `${test}.cumulative[${i}]`)];
+  }),
   mcleodLi: ofResiduals((item, x) => {
     const at = (path: string) => (i: number): string => `mcleodLi(${x}, ${(item.inputs.lags as readonly number[])[i]}).${path}`;
     return [...checksOf(item, "statistic", at("statistic")), ...checksOf(item, "pValue", at("p"))];
