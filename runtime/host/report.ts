@@ -4,7 +4,8 @@ import type { VerifyResult } from "../engine/result.ts";
 
 /** @param accepted  how many numbers were written into the text; null where that was not asked for */
 export function reportText(file: string, result: VerifyResult, accepted: number | null): string {
-  const lines = [...cellLines(result), ...claimLines(result), ...numberLines(result), ...problemLines(result), ...noteLines(result)].sort((a, b) => a.line - b.line || (a.column ?? 0) - (b.column ?? 0));
+  const { waiting, rest } = byCause(result);
+  const lines = [...cellLines(rest, waiting), ...claimLines(rest), ...numberLines(rest), ...problemLines(result), ...noteLines(result)].sort((a, b) => a.line - b.line || (a.column ?? 0) - (b.column ?? 0));
   const places = lines.map(({ line, column }) => `${file}:${line}${column === null ? "" : `:${column}`}`);
   const placeWidth = widest(places), width = widest(lines.map(({ what }) => what));
   const parts = lines.map(({ what, text }, i) => `${places[i].padEnd(placeWidth)}  ${what.padEnd(width)}  ${text}`);
@@ -20,15 +21,41 @@ function widest(texts: readonly string[]): number {
   return texts.reduce((most, text) => Math.max(most, text.length), 0);
 }
 
-function cellLines({ cells }: VerifyResult): Line[] {
-  return cells.filter((cell) => cell.state !== "current").map(({ line, state, kind, name, message, at }) => ({ line: at?.line ?? line, column: at?.column ?? null, what: state, text: `${kind}${name === null ? "" : ` ${name}`}: ${message ?? ""}` }));
+type Told = Pick<VerifyResult, "cells" | "numbers" | "claims">;
+
+/** One failed cell may leave a whole notebook without its values: beyond a few, what waits for it is counted beside it, not listed. */
+function byCause({ cells, numbers, claims }: VerifyResult): { readonly waiting: ReadonlyMap<string, string>; readonly rest: Told } {
+  const cause = (message: string | null): string | null => /^(?:blocked by|Undecided:) (.+?),?(?: which)? failed$/.exec(message ?? "")?.[1] ?? null;
+  const waiting = new Map<string, string>();
+  for (const label of new Set(cells.flatMap((cell) => (cell.state === "failed" ? [labelOf(cell)] : [])))) {
+    const [some, more, most] = [cells, numbers, claims].map((each: readonly { readonly message: string | null }[]) => each.filter(({ message }) => cause(message) === label).length);
+    if (some + more + most <= FEW) continue;
+    const undecided = [count(more, more, "number", "numbers", ""), count(most, most, "claim", "claims", "")].filter((part) => part !== "").map((part) => part.trim()).join(" and ");
+    waiting.set(label, [some === 0 ? "" : `${some} ${some === 1 ? "cell is" : "cells are"} blocked by it`, undecided === "" ? "" : `${undecided} undecided`].filter((part) => part !== "").join(", "));
+  }
+  const alone = ({ message }: { readonly message: string | null }): boolean => !waiting.has(cause(message) ?? "");
+  return { waiting, rest: { cells: cells.filter(alone), numbers: numbers.filter(alone), claims: claims.filter(alone) } };
 }
 
-function claimLines({ claims }: VerifyResult): Line[] {
+const FEW = 6;
+
+/** As the engine's messages name a cell. */
+function labelOf({ kind, name, line }: VerifyResult["cells"][number]): string {
+  return name === null ? `the \`${kind}\` in line ${line}` : `\`${name}\``;
+}
+
+function cellLines({ cells }: Told, waiting: ReadonlyMap<string, string>): Line[] {
+  return cells.filter((cell) => cell.state !== "current").map((cell) => {
+    const { line, state, kind, name, message, at } = cell, more = state === "failed" ? waiting.get(labelOf(cell)) : undefined;
+    return { line: at?.line ?? line, column: at?.column ?? null, what: state, text: `${kind}${name === null ? "" : ` ${name}`}: ${message ?? ""}${more === undefined ? "" : ` (${more})`}` };
+  });
+}
+
+function claimLines({ claims }: Told): Line[] {
   return claims.filter((claim) => claim.holds !== true).map(({ line, claim, holds, message }) => ({ line, column: null, what: holds === false ? "broken" : "undecided", text: `“${claim}”${message === null ? "" : `: ${reason(message)}`}` }));
 }
 
-function numberLines({ numbers }: VerifyResult): Line[] {
+function numberLines({ numbers }: Told): Line[] {
   return numbers.filter((number) => number.agrees !== true).map(({ line, expression, saved, now, agrees, message }) => ({
     line, column: null, what: agrees === false ? "moved" : "undecided", text: `${saved}${agrees === false ? ` is now ${now ?? "?"}` : ""}  (${expression})${message === null ? "" : `: ${reason(message)}`}`,
   }));

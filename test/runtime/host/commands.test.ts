@@ -56,6 +56,12 @@ describe("lagbook verify", () => {
     expect(numbers[1].message).toBe("Undecided: `v.none[0]` is missing (NaN)");
   });
 
+  it("counts what waits for a failed cell beside it, where that is much", async () => {
+    writeFileSync(join(folder, "w.md"), ["```load: sold", 'file: "gone.csv"', "```", "", "```window: w", "of: sold", "```", "", `${"[1](=sold.n) ".repeat(9)}`, "", "```claims:", '"many": sold.n > 3', "```", ""].join("\n"));
+    const { code, out } = await lagbook("verify", "w.md");
+    expect([code, out]).toEqual([1, 'w.md:2:7  failed  load sold: There is no file "gone.csv" in the notebook\'s folder. What is there: "sold.csv". (1 cell is blocked by it, 9 numbers and 1 claim undecided)\nNot all stands: 1 of 3 cells current, 0 of 9 numbers agree, 0 of 1 claim holds.\n']);
+  });
+
   it("a fence that only lacks its colon is prose, with a note that says so, and all may stand", async () => {
     writeFileSync(join(folder, "c.md"), "Words.\n\n```fit m\nseries: sold\n```\n");
     expect(await lagbook("verify", "c.md")).toMatchObject({ code: 0, out: expect.stringMatching(/^c\.md:3:4 {2}note {2}This is read as prose: for a cell, write `fit:` with a colon\n/) });
