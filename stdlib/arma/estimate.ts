@@ -54,7 +54,8 @@ export function estimate(search: Search): Estimate {
     return at;
   };
   const keep = (found: Minimum) => { if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found; };
-  keep(run(search.near ?? acrossGaps(search) ?? startOf(shape)));
+  const stretch = search.near ? null : onStretch(search);
+  keep(run(search.near ?? acrossGaps(search) ?? stretch ?? startOf(shape)));
   if (best === null) keep(run(new Float64Array(shape.count)));
   if (search.smaller && best !== null) {
     // A model is never worse than one that it contains.
@@ -63,7 +64,7 @@ export function estimate(search: Search): Estimate {
   }
   if (!search.near && search.starts !== "one" && best !== null) {
     const at = full(best, free, held);
-    const others = search.evaluate ? [startOf(shape), new Float64Array(shape.count)] : otherStarts(search, at, (best as Minimum).value, suspicious(shape, at, data.n), maximise);
+    const others = search.evaluate ? [startOf(shape), new Float64Array(shape.count)] : otherStarts(search, at, (best as Minimum).value, { ...suspicious(shape, at, data.n), hope: stretch === null }, maximise);
     for (const x of others) {
       // A few steps show whether a start leads anywhere new; only then is it followed to its end.
       const first = run(x, 1e-3, SCOUT);
@@ -82,6 +83,20 @@ function acrossGaps(search: Search): Float64Array | null {
   const { x, value } = estimate({ ...search, evaluate: undefined, work: undefined });
   return Number.isFinite(value) ? x : null;
 }
+
+/** A long series is searched on its last stretch first, from all starts: a pass there costs a fraction of one over the whole,
+ *  which then begins within a few standard errors of its maximum. */
+function onStretch(search: Search): Float64Array | null {
+  const { data, shape, bridged } = search, n = Math.max(STRETCH, data.n >> 4), meanAlone = data.columns.length === (data.constant ? 1 : 0);
+  if (data.n < LONG || search.evaluate || !meanAlone || 50 * shape.memory > n) return null;
+  const last = (x: Float64Array) => x.subarray(x.length - n);
+  const { x, value } = estimate({ ...search, data: { ...data, n, y: last(data.y), columns: data.columns.map(last) }, bridged: last(bridged), work: undefined });
+  return Number.isFinite(value) ? x : null;
+}
+
+/** From this length on a series is long, and this much of it is the least stretch. */
+const LONG = 10_000;
+const STRETCH = 3000;
 
 /** Predicted gain in log-likelihood below which a search stops: far below the 1e-6 that anyone could notice. */
 const TOLERANCE = 1e-9;

@@ -1,7 +1,7 @@
 // The Gauss-Newton information of the coefficients, and how the product's lags move with the factors' coefficients.
 
 import { divideInto, lagDot } from "./kernels.ts";
-import { residualsOf, type Data, type Work } from "./work.ts";
+import { residualsInto, type Data, type Work } from "./work.ts";
 import type { Product, Shape } from "./shape.ts";
 
 /** At most this many of the last observations are used. */
@@ -13,18 +13,15 @@ export function gaussNewtonInto(h: Float64Array, work: Work, data: Data, x: Floa
   const { shape } = work;
   const n = Math.min(work.n, STRETCH), offset = work.n - n;
   const ar = shape.ar.lags, ma = shape.ma.lags, k = ar.length + ma.length;
-  const filtered = (series: Float64Array) => {
-    const f = series.slice(offset);
-    divideInto(f, n, ma, work.b);
-    return f;
-  };
-  const fa = ar.length > 0 ? filtered(residualsOf(work, data)) : null, fe = ma.length > 0 ? filtered(work.er) : null;
+  const fa = new Float64Array(ar.length > 0 ? n : 0), fe = work.er.slice(offset);
+  if (ar.length > 0) { residualsInto(fa, work, data, offset); divideInto(fa, n, ma, work.b); }
+  divideInto(fe, n, ma, work.b);
   const r = new Float64Array(k * k);
   for (let i = 0; i < k; i++) {
     for (let j = 0; j <= i; j++) {
-      const v = sameLag(r, k, ar, ma, i, j) ?? (i < ar.length ? lagDot(fa!, fa!, n, ar[i] - ar[j])
-        : j >= ar.length ? lagDot(fe!, fe!, n, ma[i - ar.length] - ma[j - ar.length])
-        : crossDot(fa!, fe!, n, ma[i - ar.length] - ar[j]));
+      const v = sameLag(r, k, ar, ma, i, j) ?? (i < ar.length ? lagDot(fa, fa, n, ar[i] - ar[j])
+        : j >= ar.length ? lagDot(fe, fe, n, ma[i - ar.length] - ma[j - ar.length])
+        : crossDot(fa, fe, n, ma[i - ar.length] - ar[j]));
       r[i * k + j] = r[j * k + i] = v;
     }
   }

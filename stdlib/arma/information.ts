@@ -5,7 +5,7 @@ import { inverseBeside, type Edges } from "./edges.ts";
 import { divideInto, dot } from "./kernels.ts";
 import { productJacobian } from "./gaussNewton.ts";
 import type { Evaluate } from "./search.ts";
-import { columnBlockInto, residualsOf, type Data, type Work } from "./work.ts";
+import { columnBlockInto, residualsInto, type Data, type Work } from "./work.ts";
 
 export interface Information {
   /** Covariance of (free coefficients, data columns after the gaps), flat; null when the information is singular. */
@@ -95,7 +95,7 @@ function sandwich(work: Work, data: Data, x: Float64Array, free: Int32Array, cov
   const k = free.length, ar = shape.ar.lags, ma = shape.ma.lags;
   // a0 of the series is no longer needed, nor lambda: their places serve for the two filtered series.
   const fa = work.a0, fe = work.lambda;
-  if (ar.length > 0) { fa.set(residualsOf(work, data)); divideInto(fa, n, ma, b); }
+  if (ar.length > 0) { residualsInto(fa, work, data, 0); divideInto(fa, n, ma, b); }
   if (ma.length > 0) { fe.set(er); divideInto(fe, n, ma, b); }
   const jac = productJacobian(shape, x, free), rows = Math.min(n, BLOCK);
   const meat = new Float64Array(size * size), all = new Float64Array(size * rows), scores: Float64Array[] = [];

@@ -63,7 +63,8 @@ export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   // What rounding leaves of an exact fit: a few units in the last place of the largest value. (A mean alone is refuseConstant's.)
   if (kept.some(i => free[i] >= 0) && rows > kept.length && rss <= rows * (1e-14 * size) ** 2) throw new RangeError(`fit: the regressors explain ${name} exactly${lost > 0 ? " after differencing" : ""}; there is no randomness left to model`);
   const unit = Math.sqrt(rss / rows) || 1;
-  const basis = orthogonalBasis(kept.map(i => differenced[i]), clean);
+  const meanAlone = kept.length === 1 && free[kept[0]] < 0;
+  const basis = meanAlone ? Float64Array.of(1) : orthogonalBasis(kept.map(i => differenced[i]), clean);
   const columns = combined(kept.map(i => differenced[i]), basis);
   const y = reduced(w, kept.map(i => differenced[i]), ols, unit);
   const pulses = !filtered && gaps.length <= MANY_GAPS ? gaps.map(t => pulse(t, length, delta)) : [];
@@ -200,7 +201,6 @@ function firstRegression(w: Float64Array, columns: readonly Float64Array[], clea
 /** Gram-Schmidt, twice for digits, over the clean rows: an upper triangular matrix, flat by rows. */
 function orthogonalBasis(columns: readonly Float64Array[], clean: readonly number[] | null): Float64Array {
   const m = columns.length;
-  if (m === 1 && columns[0][0] === 1 && columns[0].every(v => v === 1)) return Float64Array.of(1);
   const basis = new Float64Array(m * m);
   const q: Float64Array[] = [];
   const rows = clean !== null && clean.length > m ? clean : columns.length > 0 ? Array.from({ length: columns[0].length }, (_, t) => t) : [];

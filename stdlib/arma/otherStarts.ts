@@ -13,17 +13,20 @@ interface Smaller { readonly x: Float64Array; readonly innovations: Float64Array
  *  so had 14% of the others. */
 const HOPE = 1.5;
 
+/** Whether the plain and the seasonal factors give grounds for doubt, and whether hope alone is to be followed too. */
+export interface Doubt { readonly plain: boolean; readonly seasonal: boolean; readonly hope: boolean }
+
 /** Starts in the order phi, Phi, theta, Theta.
  *  Further maxima of a mixed model sit where both sides share a nearly common factor, so the smaller model without it is
  *  estimated and the innovations asked where a pair of factors would help most (a score test at each place of a grid). */
-export function otherStarts(search: Search, found: Float64Array, value: number, where: { readonly plain: boolean; readonly seasonal: boolean }, maximise: Maximise): Float64Array[] {
+export function otherStarts(search: Search, found: Float64Array, value: number, where: Doubt, maximise: Maximise): Float64Array[] {
   const { shape, held } = search;
   const out: Float64Array[] = [];
   const [ar, sar, ma, sma] = shape.factors;
   const free = !held.some(v => !Number.isNaN(v)) && !search.evaluate;
   const full = (lags: Int32Array) => lags.every((l, i) => l === i + 1);
   if (!where.plain) {
-    if (!(ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags))) { /* nothing to doubt there */ }
+    if (!(where.hope && ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags))) { /* nothing to doubt there */ }
     else for (const order of ar.lags.length > 1 && ma.lags.length > 1 ? [1, 2] as const : [1] as const) out.push(...pairs(search, order, shape => maximise(shape, 1), value + HOPE));
   } else if (ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags)) {
     out.push(...pairs(search, 1, maximise));

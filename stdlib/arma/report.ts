@@ -8,6 +8,7 @@ import type { Information } from "./information.ts";
 import { levelModel } from "./levelModel.ts";
 import type { Work } from "./work.ts";
 import type { Fit, Method, Note, Root, StandardErrors } from "./model.ts";
+import { subtractColumn } from "./kernels.ts";
 import { modelName } from "./modelName.ts";
 import { parameterCount, type Numbers } from "./numbers.ts";
 import { differencedBy, type Prepared } from "./prepare.ts";
@@ -152,17 +153,21 @@ function sum(values: Float64Array): number { let total = 0; for (const v of valu
 
 /** One-step errors over the root of their relative variance, or the method's own, at the times of the fitted series. */
 function residualSeries(s: Solution): Fit["residuals"] {
-  const { numbers } = s;
-  const { prepared: p, from, levels, levelColumns, unit } = numbers;
-  const values = new Float64Array(p.series.n).fill(NaN);
-  s.innovations?.forEach((v, t) => { values[from + t] = v * unit; });
-  const model = s.stationary && s.residuals !== false && !s.innovations ? levelModel(p.shape, s.x, p.delta) : null;
-  const beta = s.beta;
-  const series = levels.slice();
-  for (let j = 0; j < beta.length; j++) { const c = beta[j], x = levelColumns[j]; for (let t = 0; t < series.length; t++) series[t] -= c * x[t]; }
-  if (model !== null) {
-    const { v, f } = filterLevels(model, [series]);
-    for (let t = p.lost; t < series.length; t++) values[from + t - p.lost] = v[0][t] / Math.sqrt(f[t]) * unit;
-  }
+  const { prepared: p, from } = s.numbers;
+  const own = s.innovations ? s.innovations.map(v => v * s.numbers.unit) : s.stationary && s.residuals !== false ? filteredErrors(s) : new Float64Array(0);
+  let values = own;
+  if (own.length !== p.series.n) { values = new Float64Array(p.series.n).fill(NaN); values.set(own, from); }
   return makeSeries({ name: "residuals", unit: p.series.unit, every: p.series.every, start: p.series.start, times: p.series.times, values });
+}
+
+/** Those of the exact filter, from the first predicted period on. The recursion's place in `work` serves for the series less its regressors. */
+function filteredErrors(s: Solution): Float64Array {
+  const { prepared: p, levels, levelColumns, unit } = s.numbers, model = levelModel(p.shape, s.x, p.delta);
+  if (model === null) return new Float64Array(0);
+  const series = s.work.a0.length === levels.length ? s.work.a0 : new Float64Array(levels.length);
+  series.set(levels);
+  s.beta.forEach((c, j) => subtractColumn(series, series, levelColumns[j], c, series.length));
+  const { v: [errors], f } = filterLevels(model, [series]);
+  for (let t = p.lost; t < errors.length; t++) errors[t] *= unit / Math.sqrt(f[t]);
+  return p.lost > 0 ? errors.subarray(p.lost) : errors;
 }

@@ -82,12 +82,16 @@ export function scratch(work: Work, length: number): Float64Array {
 /** The residual series y - X beta at the last value. */
 export function residualsOf(work: Work, data: Data): Float64Array {
   const r = work.r ??= new Float64Array(work.n);
-  if (work.rKnown) return r;
-  const { n, beta } = work, { y, columns } = data, constant = data.constant ? 1 : 0;
-  subtractNumber(r, y, constant ? beta[0] * columns[0][0] : 0, 0, n);
-  for (let j = constant; j < columns.length; j++) subtractColumn(r, r, columns[j], beta[j], n);
-  work.rKnown = true;
+  if (!work.rKnown) { residualsInto(r, work, data, 0); work.rKnown = true; }
   return r;
+}
+
+/** The same from `from` on, into an array of that length. */
+export function residualsInto(out: Float64Array, work: Work, data: Data, from: number): void {
+  if (work.r !== null && work.rKnown) { out.set(work.r.subarray(from)); return; }
+  const { n, beta } = work, { y, columns } = data, constant = data.constant ? 1 : 0;
+  subtractNumber(out, y.subarray(from), constant ? beta[0] * columns[0][0] : 0, 0, n - from);
+  for (let j = constant; j < columns.length; j++) subtractColumn(out, out, columns[j].subarray(from), beta[j], n - from);
 }
 
 /** Innovations of a column from `start` on. */

@@ -2,6 +2,7 @@ import { describe, expect, it } from "vitest";
 import { estimate } from "../../../stdlib/arma/estimate.ts";
 import type { Data } from "../../../stdlib/arma/work.ts";
 import { makeShape } from "../../../stdlib/arma/shape.ts";
+import { simulate } from "../../../stdlib/arma/simulate.ts";
 import { differenced, readCases, readValues, regressors, transformed } from "./cases.ts";
 
 describe("estimate", () => {
@@ -34,4 +35,21 @@ describe("estimate", () => {
       expect(found.converged).toBe(true);
     });
   }
+});
+
+describe("a long series is searched on its last stretch first", () => {
+  const shape = makeShape([1, 2], [], [1], [], 1), free = new Float64Array(3).fill(NaN);
+  const dataOf = (y: Float64Array): Data => ({ n: y.length, y, columns: [new Float64Array(y.length).fill(1)], gaps: 0, constant: true, sigma2: null });
+  const search = (y: Float64Array, near?: Float64Array) => estimate({ shape, data: dataOf(y), held: free, bridged: y, ...(near ? { near } : {}) });
+
+  it("and then needs a few passes over the whole", () => {
+    const found = search(simulate({ phi: [1.2, -0.45], theta: [0.5] }, 40_000, 2).values);
+    expect(found.converged).toBe(true);
+    expect(found.passes).toBeLessThanOrEqual(5);
+  });
+
+  it("and ends at the maximum of the whole even where the stretch is another process", () => {
+    const y = Float64Array.from([...simulate({ phi: [1.2, -0.45], theta: [0.5] }, 17_000, 2).values, ...simulate({ phi: [-0.4, 0.2], theta: [-0.3] }, 3000, 3).values]);
+    expect(Math.abs(search(y).value - search(y, Float64Array.of(1.1, -0.35, 0.5)).value)).toBeLessThan(1e-6);
+  });
 });
