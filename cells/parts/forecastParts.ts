@@ -58,6 +58,7 @@ function passingParts(forecast: Forecast): readonly Part[] {
   const unit = forecast.unit ? ` ${forecast.unit}` : "";
   const sentences = forecast.passing.map(one => {
     const top = one.above.indexOf(one.above.reduce((most, p) => Math.max(most, p), 0));
+    if (forecast.horizon === 1) return `The probability that ${forecast.name} passes ${figure(one.threshold, 4)}${unit} in ${forecast.times[0]} is ${chance(one.ever)}.`;
     return `The probability that ${forecast.name} passes ${figure(one.threshold, 4)}${unit} in at least one of the ${forecast.horizon} periods is ${chance(one.ever)}; for a single period it is highest in ${forecast.times[Math.max(0, top)]}, ${chance(one.above[Math.max(0, top)])}.`;
   });
   const shown = Math.min(forecast.horizon, mostRows);

@@ -71,7 +71,7 @@ function totalsTable({ unit, totals }: Forecast, scenarios: readonly Scenario[])
 function passingParts({ name, unit, times, horizon }: Forecast, scenarios: readonly Scenario[]): readonly Part[] {
   const units = unit ? ` ${unit}` : "", [{ passing }] = scenarios;
   if (passing.length === 0) return [];
-  const sentences = passing.map(({ threshold }, k) => `The probability that ${name} passes ${figure(threshold, 4)}${units} in at least one of the ${horizon} periods is ${listOf(scenarios.map((one) => `${chance(one.passing[k].ever)} in scenario ${one.label}`))}.`);
+  const sentences = passing.map(({ threshold }, k) => `The probability that ${name} passes ${figure(threshold, 4)}${units} ${horizon === 1 ? `in ${times[0]}` : `in at least one of the ${horizon} periods`} is ${listOf(scenarios.map((one) => `${chance(one.passing[k].ever)} in scenario ${one.label}`))}.`);
   const columns = scenarios.flatMap(({ label, passing: own }) => own.map(({ threshold }) => ({ title: `${label}: ${figure(threshold, 4)}${units}`, align: "right" as const, format: ".1%" })));
   return [
     { part: "text", text: sentences.join(" ") },

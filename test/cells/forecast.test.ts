@@ -70,6 +70,10 @@ describe("forecast shows", () => {
   test("no two columns of a table have one title, so that its CSV can be read by name", () => {
     for (const table of forecast.show(madeForecast(), show).filter((p): p is TablePart => p.part === "table")) expect(new Set(table.columns.map(c => c.title)).size).toBe(table.columns.length);
   });
+  test("of a single period the chance is not told of at least one", () => {
+    const passing = [{ threshold: 1500, above: Float64Array.of(0.7), ever: 0.7 }];
+    expect(texts(forecast.show(madeForecast({ horizon: 1, passing }), show))).toContain("The probability that crossings passes 1,500 vehicles in 2024-01 is 70%.");
+  });
   test("the long-run shape, and that a forecast is no advice", () => {
     expect(texts(forecast.show(madeForecast(), show))).toMatch(/follows a line with the last season on it\..*no advice/);
   });
