@@ -3,11 +3,13 @@
 //   the desk                  ->  desk.js, desk.css, desk.html
 //   the command               ->  lagbook.js, and pieces that it loads when they are needed
 
+import { gzipAsync } from "@gfx/zopfli";
 import { build } from "esbuild";
 import type { BuildOptions, Plugin } from "esbuild";
 import { chmod, copyFile, mkdir, readFile, readdir, rm, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import { pathToFileURL } from "node:url";
+import { dense } from "../desk/dense.ts";
 import { frameDocument } from "./frame.ts";
 
 export interface Built { readonly file: string; readonly bytes: number }
@@ -24,14 +26,17 @@ export async function bundle(top: string): Promise<readonly Built[]> {
     frame(from, define, out), desk(from, define, out), command(from, define, out), catalogue(from, define, out),
     text(from("desk/shell.ts"), { define }).then((script) => writeFile(join(out, "shell.js"), script)),
   ]);
-  const names = (await readdir(out)).filter((name) => /\.(js|html|css|json)$/.test(name)).sort();
+  const names = (await readdir(out)).filter((name) => /\.(js|html|css|json|txt)$/.test(name)).sort();
   return Promise.all(names.map(async (file) => ({ file, bytes: (await readFile(join(out, file))).length })));
 }
 
 async function frame(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
   const engine = await text(from("host/engineWorker.ts"), { define: { ...define, requestAnimationFrame: "lagbookSoon" }, inject: [from("host/soon.ts")], conditions: ["worker"] });
   const page = await text(from("page/entry.ts"), { define });
-  await writeFile(join(out, "frame.html"), frameDocument(page, engine));
+  const document = frameDocument(page, engine);
+  await writeFile(join(out, "frame.html"), document);
+  // As it stands in every exported file; packed here once, there is time for a packer that tries harder.
+  await writeFile(join(out, "live.txt"), dense(await gzipAsync(Buffer.from(document), { numiterations: 1 })));
 }
 
 async function desk(from: (path: string) => string, define: Record<string, string>, out: string): Promise<void> {
@@ -45,7 +50,7 @@ async function command(from: (path: string) => string, define: Record<string, st
   // Pieces bear a hash of their content: those of an earlier build would stay for ever.
   await rm(join(out, "pieces"), { recursive: true, force: true });
   await build({
-    entryPoints: [from("host/lagbook.ts"), from("host/computing.ts")], outdir: out, chunkNames: "pieces/[name]-[hash]", bundle: true, splitting: true, format: "esm", platform: "node", target: "node20",
+    entryPoints: [from("host/lagbook.ts"), from("host/computing.ts"), from("host/helper.ts")], outdir: out, chunkNames: "pieces/[name]-[hash]", bundle: true, splitting: true, format: "esm", platform: "node", target: "node20",
     minify: true, keepNames: false, legalComments: "none", loader: { ".css": "text" }, define: { ...define, LAGBOOK_BUNDLED: "true" }, logLevel: "warning",
     // Packages written for `require` ask for Node's own modules by it, and for the name of their file.
     banner: { js: "#!/usr/bin/env node\nimport { createRequire as lagbookRequire } from \"node:module\"; import { fileURLToPath as lagbookPath } from \"node:url\"; const require = lagbookRequire(import.meta.url), __filename = lagbookPath(import.meta.url);" },

@@ -5,6 +5,7 @@ import { parentPort, workerData } from "node:worker_threads";
 import type { FromEngine } from "../engine/messages.ts";
 import { compute } from "./headless.ts";
 import type { Computed, Task } from "./headless.ts";
+import { helperThreads } from "./helperThreads.ts";
 import { CannotRun } from "./io.ts";
 
 export type FromThread =
@@ -49,7 +50,7 @@ function importCode(source: string, inputs: Readonly<Record<string, unknown>>, s
 }
 
 try {
-  say({ said: "computed", computed: await compute(workerData as Task, { importCode, heard }) });
+  say({ said: "computed", computed: await compute(workerData as Task, { importCode, helpers: helperThreads, heard }) });
 } catch (error) {
   if (!(error instanceof CannotRun)) throw error;
   say({ said: "refused", message: error.message });

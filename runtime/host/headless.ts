@@ -36,19 +36,21 @@ export interface Computed {
 export interface ComputeOptions {
   /** Runs the code of a script, where that is allowed. */
   readonly importCode?: NonNullable<EngineHost["importCode"]>;
+  /** Other threads for long work. */
+  readonly helpers?: NonNullable<EngineHost["helpers"]>;
   /** Told what the engine says, as it says it. */
   readonly heard?: (message: FromEngine) => void;
 }
 
 /** Computes everything and waits until it stands.
  *  @throws CannotRun where a setting names no control, or one that cannot take it */
-export async function compute(task: Task, { importCode = runScript, heard }: ComputeOptions = {}): Promise<Computed> {
+export async function compute(task: Task, { importCode = runScript, helpers, heard }: ComputeOptions = {}): Promise<Computed> {
   const files = new Map<string, { readonly bytes: Uint8Array } | { readonly reason: string }>();
   const messages: FromEngine[] = [];
   const engine = createEngine(language, {
     read: (file) => readAndKeep(task.folder, file, files),
     send: (message) => { messages.push(message); heard?.(message); },
-    importCode,
+    importCode, ...(helpers === undefined ? {} : { helpers }),
   }, { allowCode: task.allowCode, ...(task.width === undefined ? {} : { width: task.width }) });
   try {
     engine.setText(task.text);

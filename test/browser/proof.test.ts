@@ -5,6 +5,9 @@ import { join } from "node:path";
 import { pathToFileURL } from "node:url";
 import type { Browser, Frame } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
+import { helperThreads } from "../../runtime/host/helperThreads.ts";
+import { firstIndex } from "../../stdlib/forecast/reach.ts";
+import { estimateAhead, makeSeries, rule } from "../../stdlib/index.ts";
 import { command, data, launch, openDesk, pageOf, serve } from "./deskOpen.ts";
 
 // A comparison at held-out origins as its reader meets it: on the desk, and in an exported file without a network.
@@ -69,6 +72,15 @@ describe("the origin in the picture of forecasts is the reader's to move", () =>
 });
 
 describe("long work", () => {
+  it("is helped by threads on the command line, which give what would be made where it is needed", async () => {
+    const series = makeSeries({ name: "sold", every: "P1M", start: "2000-01", values: Float64Array.from({ length: 60 }, (_, t) => 100 + t + 9 * Math.sin(t)) });
+    const shared = { models: [{ model: rule.smoothing(series, { trend: "additive" }), earliest: firstIndex(series) }], slides: false }, item = { key: "k", model: 0, seen: { from: firstIndex(series), to: firstIndex(series) + 40 } };
+    const [helper] = helperThreads(1);
+    const answer = await new Promise((resolve) => { helper.listen(resolve); helper.post({ to: "help", task: "estimates", shared, item }); });
+    helper.end();
+    expect(answer).toEqual({ from: "helped", key: "k", made: { value: structuredClone(estimateAhead(shared)(item)) } });
+  });
+
   it("tells how far it is, ends early when told to, decides nothing then, and goes on from where it was", async () => {
     const served = await serve(long, { "sold.csv": years }), context = await browser.newContext({ viewport: { width: 1280, height: 900 } }), page = await context.newPage();
     const faults: string[] = [];
