@@ -9,7 +9,7 @@ const runner = fileURLToPath(new URL("../../.build/bundle.mjs", import.meta.url)
 
 export async function buildAll() {
   const started = performance.now();
-  await build({ entryPoints: [fileURLToPath(new URL("./bundle.ts", import.meta.url))], outfile: runner, bundle: true, platform: "node", format: "esm", target: "node20", external: ["esbuild"], logLevel: "warning" });
+  await build({ entryPoints: [fileURLToPath(new URL("./bundle.ts", import.meta.url))], outfile: runner, bundle: true, platform: "node", format: "esm", target: "node20", external: ["esbuild", "@gfx/zopfli"], logLevel: "warning" });
   const { bundle } = await import(`${pathToFileURL(runner).href}?${Date.now()}`);
   const built = await bundle(top);
   await rm(runner);

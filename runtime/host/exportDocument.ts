@@ -14,7 +14,11 @@ export interface Provenance {
   readonly settings: readonly { readonly name: string; readonly value: unknown }[];
 }
 
-export interface ExportParts { readonly frame: string; readonly shell: string; readonly pageCss: string }
+export interface ExportParts {
+  /** The live page's document, and the same as it is packed. */
+  readonly frame: string; readonly live: string;
+  readonly shell: string; readonly pageCss: string;
+}
 
 export interface Export {
   readonly title: string;
@@ -24,7 +28,7 @@ export interface Export {
   readonly provenance: Provenance;
 }
 
-export function exportDocument({ title, still, carried, provenance }: Export, { frame, shell, pageCss }: ExportParts): string {
+export function exportDocument({ title, still, carried, provenance }: Export, { frame, live, shell, pageCss }: ExportParts): string {
   const script = inlineSafe(shell);
   return `<!doctype html>
 <html lang="en">
@@ -42,14 +46,14 @@ ${shellCss}</style>
 <div id="live-place"></div>
 <footer id="made">${madeOf(provenance)}<p id="still-note"></p></footer>
 <script type="application/json" id="carried">${JSON.stringify(carried).replaceAll("<", "\\u003c")}</script>
-<script type="text/plain" id="live">${pack(frame)}</script>
+<script type="text/plain" id="live">${live}</script>
 <script>${script}</script>
 </body>
 </html>
 `;
 }
 
-/** Bytes as dense text of gzip: a live page of 2 MB becomes one of 0.8. */
+/** Bytes as dense text of gzip. */
 export function pack(content: string | Uint8Array): string {
   return dense(gzipSync(content, { level: 9 }));
 }

@@ -33,9 +33,9 @@ export async function exportPage(command: PageCommand, io: Io): Promise<number> 
   const computed = await computeWithin({ text: stored.text, notebook: basename(path), folder: dirname(path), settings: command.settings, allowCode: command.allowCode, width: figureWidth }, command.limits);
   const state = stateAfter(computed.messages);
   const still = renderStill(state, await stillCharts(state, figureWidth));
-  const [frame, shell, pageCss] = await Promise.all([readPart("frame.html"), readPart("shell.js"), readPart("page.css")]);
+  const [frame, live, shell, pageCss] = await Promise.all([readPart("frame.html"), readPart("live.txt"), readPart("shell.js"), readPart("page.css")]);
   const provenance: Provenance = { notebook: basename(path), notebookHash: stored.hash, version, made: io.now(), data: dataOf(computed, stored.text), settings: command.settings };
-  const text = exportDocument({ title: state.title || basename(path), still, carried: carriedOf(stored.text, computed, command), provenance }, { frame, shell, pageCss });
+  const text = exportDocument({ title: state.title || basename(path), still, carried: carriedOf(stored.text, computed, command), provenance }, { frame, live, shell, pageCss });
   await writeWhole(out, text);
   io.out(`${out} (${Math.round(Buffer.byteLength(text) / 1000)} kB)\n`);
   if (computed.result.ok) return exit.stands;

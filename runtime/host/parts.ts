@@ -6,7 +6,7 @@ import { dirname, join } from "node:path";
 import { fileURLToPath } from "node:url";
 import { CannotRun } from "./io.ts";
 
-export type BrowserPart = "desk.html" | "desk.js" | "desk.css" | "frame.html" | "shell.js" | "page.css" | "catalogue.json";
+export type BrowserPart = "desk.html" | "desk.js" | "desk.css" | "frame.html" | "live.txt" | "shell.js" | "page.css" | "catalogue.json";
 
 /** Folder of the prebuilt parts: that of the bundled command, or `.build` when the source itself runs (in tests). */
 export function partsFolder(here = dirname(fileURLToPath(import.meta.url))): string {

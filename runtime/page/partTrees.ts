@@ -19,7 +19,7 @@ export function tableTree(part: TablePart, menu: Given): Tree {
         part.title ? h("caption", {}, part.title) : null,
         h("thead", {}, h("tr", {}, part.columns.map((column, i) => h("th", { scope: "col", class: right[i] ? "to-right" : null }, column.title, column.unit ? h("span", { class: "unit" }, ` (${column.unit})`) : null)))),
         h("tbody", {}, shown.map((row, r) => h("tr", { class: marked.has(r) ? "marked" : null }, row.map((value, i) =>
-          h("td", { class: right[i] ? "to-right number" : isTime(value) ? "time" : null }, printValue(value, part.columns[i]?.format), i === 0 && marked.has(r) ? h("span", { class: "mark-word" }, marked.get(r)) : null))))))),
+          h("td", { class: right[i] ? "number" : isTime(value) ? "time" : null }, printValue(value, part.columns[i]?.format), i === 0 && marked.has(r) ? h("span", { class: "mark-word" }, marked.get(r)) : null))))))),
     part.rows.length > mostRows ? h("p", { class: "note" }, `${mostRows} of ${printValue(part.rows.length)} rows are shown; the data (CSV) have all.`) : null,
     part.note ? h("p", { class: "note" }, part.note) : null,
     menu);
