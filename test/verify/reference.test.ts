@@ -4,7 +4,7 @@ import { join } from "node:path";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { run } from "../../runtime/host/run.ts";
 import { notebookOf } from "./referenceCases.ts";
-import { readCases, Unsupported } from "./referenceNotebook.ts";
+import { centredTime, readCases, Unsupported } from "./referenceNotebook.ts";
 import type { Case, Check } from "./referenceNotebook.ts";
 
 // Every reference value that the language has a word for, asked for by a live number and answered by `verify --json`:
@@ -14,6 +14,11 @@ let folder = "";
 beforeAll(() => {
   folder = mkdtempSync(join(tmpdir(), "lagbook-reference-"));
   cpSync(join(import.meta.dirname, "../reference/series"), join(folder, "series"), { recursive: true });
+  for (const item of files.flatMap(readCases)) for (const regressor of item.inputs.model?.regressors ?? []) {
+    if (regressor.kind !== "timeCentred") continue;
+    const { file, text } = centredTime(item.series as string, regressor.centre as number);
+    writeFileSync(join(folder, file), text);
+  }
 });
 afterAll(() => { rmSync(folder, { recursive: true, force: true }); });
 

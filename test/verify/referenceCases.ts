@@ -146,7 +146,6 @@ const writers: Readonly<Record<string, (item: Case) => Written>> = {
     ...coefficients(item),
   ]),
   forecast: (item) => {
-    if ((item.inputs.model?.regressors ?? []).length > 0) throw new Unsupported("future regressors by row");
     const params = item.inputs.params ?? (item.expected.paramsUsed as Case["inputs"]["params"]);
     const cells = `${modelCells(item, item.inputs.model, params)}\n\n\`\`\`forecast: f\nmodel: m\nhorizon: ${item.inputs.horizon as number}\nlevels: [0.8, 0.95]\n\`\`\`\n`;
     return write(cells, forecastChecks(item));

@@ -110,6 +110,14 @@ const dense = (lags: readonly number[], values: readonly number[]): string => {
   return `[${out.map(plainNumber).join(", ")}]`;
 };
 
+/** The row number less a centre, as a file of its own beside a yearly series: two dozen years longer, for its forecasts. */
+export function centredTime(series: string, centre: number): { readonly file: string; readonly text: string } {
+  const times = timesOf(series), first = Number(times[0]);
+  if (!Number.isInteger(first)) throw new Unsupported("a centred time regressor beside a series that is not yearly");
+  const rows = Array.from({ length: times.length + 24 }, (_, t) => `${first + t},${t + 1 - centre}`);
+  return { file: `series/${series}_less_${centre}.csv`, text: `time,value\n${rows.join("\n")}\n` };
+}
+
 /** The cells of a model: its series (differenced), its regressors and a fit called `m`, its coefficients held where `params` are given. */
 export function modelCells(item: Case, model: Model = item.inputs.model as Model, params: Params | undefined = item.inputs.params, method?: string): string {
   const season = model.seasonal;
@@ -119,14 +127,12 @@ export function modelCells(item: Case, model: Model = item.inputs.model as Model
     const name = `x${i + 1}`;
     if (regressor.kind === "step") return `${name}: levelShift("${timesOf(item.series as string)[(regressor.row as number) - 1]}")`;
     if (regressor.kind === "timeCentred") {
-      const times = timesOf(item.series as string);
-      parts.push(cell("values", `${name}Made`, { own: `ramp("${times[0]}", "${times.at(-1)}")` }));
-      return null;
+      parts.push(cell("load", name, { file: `"${centredTime(item.series as string, regressor.centre as number).file}"` }));
+      return `${name}: ${name}`;
     }
     parts.push(seriesCells(regressor.series as string, regressor.transform as readonly Transform[], name));
     return `${name}: ${name}`;
   });
-  if (regressors.includes(null)) throw new Unsupported("a centred time regressor is no series or intervention of the language");
   const seasonLags = (lags: readonly number[] | undefined): readonly number[] => (lags ?? []).map((lag) => lag);
   const list = (value: number | readonly number[] | undefined): readonly number[] => (value === undefined ? [] : typeof value === "number" ? [value] : value);
   const hold = params && [
