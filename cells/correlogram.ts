@@ -75,9 +75,10 @@ function crossOf(other: unknown, series: Series, lags: number, level: number, so
   });
 }
 
-/** Where neither correlations cut off, the rule of thumb has no more to say, and tables made for mixed models begin. */
+/** Where neither kind of correlation cuts off the rule of thumb has no more to say, and tables made for mixed models begin;
+ *  not where a difference must come first. */
 async function mixedTables(result: Correlogram, series: Series, context: RunContext): Promise<ShownCorrelogram["mixed"]> {
-  if (result.status !== "ok" || result.suggests.ar === 0 || result.suggests.ma === 0) return null;
+  if (result.status !== "ok" || result.differenceFirst !== null || result.suggests.ar === 0 || result.suggests.ma === 0) return null;
   const extended = extendedAcf(series);
   await context.breathe();
   const canonical = smallestCanonical(series);

@@ -58,7 +58,7 @@ function altOf(result: Shown): string {
 /** The orders as options of a fit, ready to be typed. */
 function startText(result: Shown): TextPart {
   const { ar, ma, season } = result.suggests;
-  if (result.differenceFirst !== null) return { part: "text", tone: "note", text: `No orders are read yet: try the step difference(${result.differenceFirst === "season" ? result.seasonLength : ""}) in a transform, and a correlogram of what it leaves.` };
+  if (result.differenceFirst !== null) return { part: "text", tone: "note", text: `No orders are read yet: try the step difference(${result.differenceFirst === "season" ? result.seasonLength : 1}) in a transform, and a correlogram of what it leaves.` };
   if (ar + ma === 0 && season === null) return { part: "text", tone: "note", text: "Nothing here asks for AR or MA terms." };
   const seasonal = season === null ? "" : `, season: {${[season.ar > 0 ? `ar: ${season.ar}` : "", season.ma > 0 ? `ma: ${season.ma}` : ""].filter(Boolean).join(", ")}}`;
   return { part: "text", tone: "note", text: `A fit could begin with ar: ${ar}, ma: ${ma}${seasonal}. That is a suggestion from a rule of thumb: compare it with its neighbours before relying on it.` };

@@ -24,7 +24,7 @@ export function residualChart(title: string, alt: string, standardised: Series, 
   const large = largeResiduals(standardised);
   const named = large.slice(0, mostNamed);
   const x = timeField("time", standardised.every !== null);
-  const y = { field: "value", type: "quantitative", title: "residual (standard deviations)", scale: { zero: true }, axis: { tickCount: 5 } };
+  const y = { field: "value", type: "quantitative", title: "residual (standard deviations)", scale: { zero: true, padding: 16 }, axis: { tickCount: 5 } };
   return {
     part: "chart", title, alt, height: 220,
     spec: {

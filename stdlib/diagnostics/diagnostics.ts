@@ -126,7 +126,7 @@ function summary(tests: Tests, found: Outliers, outside: readonly number[], lags
   ];
   const also = signs.length === 0 ? "" : ` ${finds(lb) ? "Also, " : "But "}${joined(signs)}.`;
   if (finds(lb)) {
-    const largest = outside.length === 0 ? "" : `; the largest is at lag ${outside.reduce((a, b) => (Math.abs(r[b]) > Math.abs(r[a]) ? b : a))}`;
+    const within = outside.filter((k) => k <= lags), largest = within.length === 0 ? "" : `; the largest is at lag ${within.reduce((a, b) => (Math.abs(r[b]) > Math.abs(r[a]) ? b : a))}`;
     return { verdict: "autocorrelated", sentence: `The residuals are still autocorrelated over ${lags} lags (Ljung-Box ${printedP(lb.p)} on ${lb.df} df${largest}): the model leaves something to predict.${also}` };
   }
   const single = outside.filter((k) => k <= lags), alone = single.length === 0 ? "" : `; ${single.length > 1 ? "by themselves lags" : "by itself lag"} ${joined(single.map(String))} ${single.length > 1 ? "are" : "is"} outside ${band.toFixed(2)}, where about ${(alpha * lags).toFixed(1)} would be by chance`;

@@ -52,8 +52,9 @@ describe("correlogram", () => {
     const result = await run({ series: trend });
     expect(result.differenceFirst).toBe("level");
     const said = texts(correlogram.show(result, show));
-    expect(said).toContain("No orders are read yet: try the step difference() in a transform");
+    expect(said).toContain("No orders are read yet: try the step difference(1) in a transform");
     expect(said).not.toContain("A fit could begin");
+    expect(result.mixed).toBeNull();
   });
   test("names the null hypothesis beside the portmanteau tests", async () => {
     const table = correlogram.show(await run({ series: nile }), show).find((p): p is TablePart => p.part === "table")!;

@@ -54,6 +54,12 @@ describe("diagnostics", () => {
     const doubtful = { ...result, ljungBox: { ...result.ljungBox, p: 0.07 } };
     expect((diagnostics.show(doubtful, show)[1] as TablePart).rows[0][1]).toMatch(/^yes, beyond chance/);
   });
+  test("names the largest correlation among the lags that the test took together", async () => {
+    const result = await run({ model: estimate({ series: stepped(madeSeries(), [{ step: "log" }, { step: "difference", lag: 1 }]), mean: false }), lags: 6 });
+    // The season is left in: lag 12 is the largest of all, and not among the six.
+    expect(result.acf.indexOf(Math.max(...result.acf.slice(1)))).toBe(12);
+    expect(result.sentence).toMatch(/autocorrelated over 6 lags .*the largest is at lag [1-6]\)/);
+  });
   test("says up to which lag no degrees of freedom are left", async () => {
     const parts = diagnostics.show(await run({ model: seasonal(madeSeries()) }), show);
     expect(charts(parts)[1].alt).toContain("Up to lag 2 no degrees of freedom are left.");
