@@ -25,6 +25,7 @@ export const chart: Kind<ChartCell, View> = {
   run: (options) => {
     const given = Object.fromEntries(Object.entries(options).filter(([, value]) => value !== null && value !== undefined));
     const { spec, data } = readView(given);
+    checkSize(spec, data);
     const title = titleOf(given["title"]);
     const { title: _title, description: _description, ...drawn } = spec;
     const alt = typeof given["description"] === "string" ? given["description"] : `${title === "" ? "Chart" : title}: ${drawnSentence(spec, data)}`;
@@ -32,6 +33,19 @@ export const chart: Kind<ChartCell, View> = {
   },
   show: ({ spec, data, title, alt, height }) => [{ part: "chart", title, alt, spec, data, height } satisfies ChartPart],
 };
+
+/** Rows that a chart draws: each point or bar is an element of the page, a line is one altogether. */
+const mostMarks = 20_000, mostInLines = 200_000;
+
+function checkSize(spec: unknown, data: Readonly<Record<string, { readonly n: number }>>): void {
+  const rows = Object.values(data).reduce((sum, one) => sum + one.n, 0), most = marksIn(spec).every((mark) => ["line", "area", "trail"].includes(mark)) ? mostInLines : mostMarks;
+  if (rows > most) throw new OptionError("data", `a chart with these marks draws up to ${most} rows, and here are ${rows}: aggregate them, or draw a part`);
+}
+
+function marksIn(spec: unknown): readonly string[] {
+  if (typeof spec !== "object" || spec === null) return [];
+  return Object.entries(spec).flatMap(([name, inner]) => (name === "mark" ? [String(typeof inner === "object" && inner !== null ? Reflect.get(inner, "type") : inner)] : marksIn(inner)));
+}
 
 function titleOf(title: unknown): string {
   if (title === undefined) return "";

@@ -7,6 +7,9 @@ type Item = string | number | boolean;
 export interface ChoiceCell { readonly among: readonly unknown[]; readonly at?: unknown; readonly label?: string }
 type Choice = Extract<ControlPart, { control: "choice" }>;
 
+/** A list for a reader's eye; far longer ones would also take the page seconds to draw. */
+const mostItems = 1000;
+
 export const choice: Kind<ChoiceCell, Choice> = {
   name: "choice",
   sentence: "One of a list, which the reader can change.",
@@ -20,6 +23,7 @@ export const choice: Kind<ChoiceCell, Choice> = {
   example: "among: [\"aicc\", \"bic\"]",
   run: (options, context) => {
     const { label = context.name ?? "" } = options;
+    if (options.among.length > mostItems) throw new OptionError("among", `\`among\` has ${options.among.length} items; nobody chooses among more than ${mostItems}: give fewer, or use a slider`);
     const among = Array.from(options.among, item);
     if (among.length === 0) throw new OptionError("among", "`among` is an empty list; there is nothing to choose");
     const twice = among.find((each, i) => among.indexOf(each) !== i);

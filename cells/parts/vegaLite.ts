@@ -34,6 +34,10 @@ const refused: Readonly<Record<string, string>> = {
   transformExpr: "compute it in a `values` cell",
 };
 
+/** Numbers that say how much is made, and how much a page draws without standing still. */
+const most: Readonly<Record<string, number>> = { steps: 10_000, maxbins: 1000, tickCount: 1000 };
+const mostListed = 10_000;
+
 /** A view ready to be drawn: the specification without its data, and the data by name.
  *  @throws OptionError naming the top-level option at fault */
 export function readView(options: Spec): { readonly spec: Spec; readonly data: Readonly<Record<string, Rows>> } {
@@ -122,6 +126,7 @@ function millisecondsOf(cell: unknown): number | null {
 function inside(value: unknown, key: string, option: string, data: Record<string, Rows>, path: string): unknown {
   if (typeof value === "function") throw new OptionError(option, `\`${path}\` is a function; a chart is described by plain data`);
   if (isSeries(value)) throw new OptionError(option, `\`${path}\` is a series; series stand in \`data\``);
+  if ((Array.isArray(value) || ArrayBuffer.isView(value)) && (value as ArrayLike<unknown>).length > mostListed) throw new OptionError(option, `\`${path}\` has ${(value as ArrayLike<unknown>).length} items; up to ${mostListed} are taken outside \`data\``);
   if (Array.isArray(value)) return value.map((item, i) => inside(item, key, option, data, `${path}[${i}]`));
   if (ArrayBuffer.isView(value)) return Array.from(value as unknown as ArrayLike<number>);
   if (typeof value === "string") { checkText(value, key, option, path); return value; }
@@ -129,6 +134,8 @@ function inside(value: unknown, key: string, option: string, data: Record<string
   const result: Record<string, unknown> = {};
   for (const [name, inner] of Object.entries(value)) {
     if (Object.hasOwn(refused, name)) throw new OptionError(option, `\`${path}.${name}\` is not taken: ${refused[name]}`);
+    if (typeof inner === "number" && Object.hasOwn(most, name) && !(inner <= most[name])) throw new OptionError(option, `\`${path}.${name}\` is ${inner}; up to ${most[name]} are drawn`);
+    if (name === "keyvals" && !Array.isArray(inner)) throw new OptionError(option, `\`${path}.keyvals\` is taken as a list only; complete the rows in the notebook`);
     if (name === "data") { result[name] = { name: keep(inner, data, option) }; continue; }
     result[name] = inside(inner, listKey(name, key), option, data, `${path}.${name}`);
   }

@@ -6,6 +6,7 @@ import { draw } from "./parts/draw.ts";
 
 const crossings = makeSeries({ name: "crossings", unit: "vehicles", every: "P1M", start: "2015-01", values: Float64Array.from({ length: 24 }, (_, t) => 100 + t) });
 const line = { mark: "line", encoding: { x: { field: "time" }, y: { field: "value" } } };
+const many = Array.from({ length: 20_001 }, (_, a) => ({ a }));
 const part = async (options: Record<string, unknown>) => {
   const [one] = chart.show(await runCell(chart, options), { name: "c", width: 700 });
   if (one.part !== "chart") throw new Error("no chart");
@@ -42,6 +43,10 @@ describe("chart", () => {
     expect(svg.indexOf(">trend<")).toBeLessThan(svg.indexOf(">season<"));
     expect(Object.keys((await part({ layer: [{ data: crossings, ...line }, { data: crossings, ...line }] })).data)).toEqual(["rows"]);
   });
+  it("draws a long series as a line, where it would not draw as many points", async () => {
+    expect((await part({ data: many, mark: "line", encoding: { x: { field: "a" }, y: { field: "a" } } })).data).not.toEqual({});
+  });
+
   it("takes transforms that are described by data", async () => {
     const one = await part({ data: [{ a: 1 }, { a: 5 }], transform: [{ filter: { field: "a", gt: 2 } }, { aggregate: [{ op: "count", as: "n" }] }], mark: "bar", encoding: { y: { field: "n", type: "quantitative" } } });
     expect((await draw(one)).warnings).toEqual([]);
@@ -52,6 +57,12 @@ describe("chart", () => {
     [{ data: crossings, ...line, params: [{ name: "p", bind: { input: "range" } }] }, "`params[0].bind` is not taken"],
     [{ data: crossings, mark: { type: "line", strokeWidth: { expr: "1+1" } }, encoding: {} }, "`mark.strokeWidth.expr` is not taken"],
     [{ data: crossings, ...line, width: { signal: "1" } }, "`width.signal` is not taken"],
+    [{ data: crossings, ...line, transform: [{ density: "value", steps: 1e9 }] }, "`transform[0].steps` is 1000000000; up to 10000 are drawn"],
+    [{ data: crossings, ...line, transform: [{ impute: "value", key: "time", keyvals: { start: 0, stop: 1e9 } }] }, "`transform[0].keyvals` is taken as a list only"],
+    [{ data: crossings, mark: "line", encoding: { x: { field: "time", axis: { tickCount: 1e7 } } } }, "`encoding.x.axis.tickCount` is 10000000"],
+    [{ data: crossings, mark: "line", encoding: { x: { field: "time", axis: { values: Array.from({ length: 20_000 }, (_, i) => i) } } } }, "`encoding.x.axis.values` has 20000 items"],
+    [{ data: many, mark: "point", encoding: { x: { field: "a" } } }, "draws up to 20000 rows, and here are 20001"],
+    [{ data: many, layer: [{ mark: "line" }, { mark: { type: "bar" } }], encoding: { x: { field: "a" } } }, "draws up to 20000 rows"],
     [{ data: crossings, ...line, transform: [{ calculate: "datum.value", as: "v" }] }, "`transform[0].calculate` is not taken"],
     [{ data: crossings, ...line, transform: [{ filter: "datum.value > 1" }] }, "is code in a text"],
     [{ data: crossings, ...line, transform: [{ filter: { and: ["datum.value > 1"] } }] }, "is code in a text"],

@@ -42,6 +42,7 @@ describe("choice", () => {
   });
   it.each<[Record<string, unknown>, unknown, string]>([
     [{ among: [] }, undefined, "empty list"],
+    [{ among: Array.from({ length: 200_000 }, (_, i) => i) }, undefined, "has 200000 items; nobody chooses among more than 1000"],
     [{ among: ["a", "a"] }, undefined, '"a" twice'],
     [{ among: ["a"], at: "b" }, undefined, '`at` is "b", which is not among "a"'],
     [{ among: ["a"] }, "b", 'the setting is "b", which is not among "a"'],
