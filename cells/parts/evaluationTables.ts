@@ -57,7 +57,7 @@ function setSentence(result: Evaluation): string {
 /** Over all horizons, and at each of them where there are several. */
 export function coverageTables(result: Evaluation): readonly TablePart[] {
   const note = "The range is the exact 95% binomial one for independent tries.", band: TablePart["columns"][number] = { title: "band", align: "right", format: ".0%" };
-  const range: TablePart["columns"] = [{ title: "chance allows from", align: "right", format: ".0%" }, { title: "to", align: "right", format: ".0%" }, { title: "reading" }];
+  const range: TablePart["columns"] = [{ title: "chance allows from", align: "right", format: ".1%" }, { title: "to", align: "right", format: ".1%" }, { title: "reading" }];
   const all: TablePart = {
     part: "table", title: "How often the bands held what happened", columns: [{ title: "model" }, band, { title: "held", align: "right", format: ".1%" }, ...range],
     rows: result.models.flatMap(model => model.coverage.map(each => [model.label, each.level, each.share, each.low, each.high, coverageReading(each)])), note,
