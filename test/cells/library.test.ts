@@ -32,7 +32,7 @@ describe("the library", () => {
     }
   });
   it("the kinds that are functions are those of the language", () => {
-    expect(language.kinds.filter((kind) => kind.callable).map((kind) => kind.name)).toEqual(["transform", "stationarity", "correlogram", "fit", "diagnostics", "compare", "forecast"]);
+    expect(language.kinds.filter((kind) => kind.callable).map((kind) => kind.name)).toEqual(["transform", "decomposition", "stationarity", "correlogram", "fit", "diagnostics", "compare", "forecast"]);
   });
   it("every function refuses to be called with nothing, or says what it is", () => {
     for (const one of library) {
