@@ -21,8 +21,8 @@ export function markdownTree(text: string): Root {
   return tree;
 }
 
-/** What looks like a live number: its saved text, its destination (bare, or in `<…>`) and its title. */
-export const LIVE = /\[([^\][\n\r]*)\]\([ \t]*(?:<=[^<>\n\r]*>|=[^\s<>]*)(?:[ \t]+(?:"[^"\n\r]*"|'[^'\n\r]*'))?[ \t]*\)/g;
+/** What looks like a live number: its saved text, its destination (bare, or in `<…>`) and its title. Bounded, so that no text takes time by its square. */
+export const LIVE = /\[([^\][\n\r]{0,200})\]\([ \t]{0,9}(?:<=[^<>\n\r]{0,2000}>|=[^\s<>]{0,2000})(?:[ \t]{1,9}(?:"[^"\n\r]{0,200}"|'[^'\n\r]{0,200}'))?[ \t]{0,9}\)/g;
 
 /** The sign of a currency, in a live number and its pattern, would begin mathematics: `[$1,204](=sum "$,.0f")`. There another sign stands in
  *  for it while the text is read, of the same length, so that every place stays true. null where there is nothing to do. */

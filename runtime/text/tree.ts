@@ -37,8 +37,11 @@ export function segmentedTree(text: string, before: SegmentMemory): SegmentedTre
   };
   const plain = starts.map((start, i) => read(text.slice(start, starts[i + 1] ?? text.length), []));
   const labels = [...new Set(plain.flatMap((each) => each.labels))];
+  const openings = labels.map((label) => `[${folded(label)}`);
   const segments = labels.length === 0 ? plain : plain.map((each) => {
-    const foreign = labels.filter((label) => !each.labels.includes(label) && mentions(each.text, label));
+    if (!each.text.includes("[")) return each;
+    const text = folded(each.text).replaceAll("[ ", "[");
+    const foreign = labels.filter((label, k) => text.includes(openings[k]) && !each.labels.includes(label));
     return foreign.length === 0 ? each : read(each.text, foreign);
   });
   const lineAt = linesOf(text);
@@ -71,10 +74,9 @@ function readSegment(text: string, foreign: readonly string[]): Segment {
   return { text, nodes, numbers: nodes.map((node) => liveNumbersOf(text, node)), labels };
 }
 
-/** Whether a text may refer to a label: letter case and the amount of white space do not count. */
-function mentions(text: string, label: string): boolean {
-  const fold = (each: string): string => each.toLowerCase().toUpperCase().replace(/\s+/g, " ").trim();
-  return text.includes("[") && fold(text).replaceAll("[ ", "[").includes(`[${fold(label)}`);
+/** As labels are compared: letter case and the amount of white space do not count. */
+function folded(text: string): string {
+  return text.toLowerCase().toUpperCase().replace(/\s+/g, " ").trim();
 }
 
 function shifted<N extends Node>(node: N, offset: number, lines: number): N {

@@ -1,10 +1,13 @@
 import * as fc from "fast-check";
-import { describe, expect, test } from "vitest";
+import { describe, expect, test, vi } from "vitest";
 import { applyEdits, acceptNumber, keepSetting } from "../../../runtime/text/edits.ts";
 import { fenceOf } from "../../../runtime/text/fences.ts";
 import { markdownTree } from "../../../runtime/text/markdown.ts";
 import { parse } from "../../../runtime/text/parse.ts";
 import { cell, fence, names, shapes } from "./shapes.ts";
+
+// Thousands of texts: on a busy machine they take a while.
+vi.setConfig({ testTimeout: 180_000 });
 
 const seeded = { seed: 20240611, numRuns: 300 };
 
