@@ -32,7 +32,7 @@ export function shortPath(d: string, by: readonly [number, number] = [0, 0]): st
       if (kind === "m" && i === 0) {
         if (printed === "") put("M", tenths(x), tenths(y)); else put("m", ...step);
         start = [x, y]; penStart = [tenths(x), tenths(y)];
-      } else if (kind === "a") put("a", tenths(given[0]), tenths(given[1]), given[2] * 10, given[3] * 10, given[4] * 10, ...step);
+      } else if (kind === "a") put("a", ...radii(given[0], given[1], step), given[2] * 10, given[3] * 10, given[4] * 10, ...step);
       else if (kind === "c" || kind === "s" || kind === "q") put(kind, ...steps(given));
       else if (kind === "t") put("t", ...step);
       else lineTo(step);
@@ -40,6 +40,12 @@ export function shortPath(d: string, by: readonly [number, number] = [0, 0]): st
     }
   }
   return printed;
+}
+
+/** Radii of an arc, in tenths. Half a circle stays one: a radius longer than half its step would bulge. */
+function radii(rx: number, ry: number, [dx, dy]: readonly number[]): readonly [number, number] {
+  const half = Math.round(Math.hypot(dx, dy) * 5) / 10;
+  return rx === ry && Math.abs(rx * 10 - half) <= 0.8 ? [half, half] : [Math.round(rx * 100) / 10, Math.round(ry * 100) / 10];
 }
 
 /** Whole tenths of a pixel; never the negative zero. */

@@ -30,6 +30,14 @@ describe("shortPath", () => {
     expect(shortPath("M0,0L1,1M0.25,3L1,4")).toBe("M0 0l1 1m-.7 2l.7 1");
   });
 
+  it("keeps half circles half circles, wherever rounding puts their ends", () => {
+    expect(shortPath("M1.73,0A1.73,1.73,0,1,1,-1.73,0A1.73,1.73,0,1,1,1.73,0", [0.02, 0])).toBe("M1.8 0a1.75 1.75 0 1 1-3.5 0 1.75 1.75 0 1 1 3.5 0");
+    for (let i = 0; i < 50; i++) {
+      const [, radius, , step] = /a([\d.]+) ([\d.]+) 0 1 1-([\d.]+) 0/.exec(shortPath("M1.73,0A1.73,1.73,0,1,1,-1.73,0A1.73,1.73,0,1,1,1.73,0", [i / 37, 2])) ?? [];
+      expect(2 * Number(radius)).toBeCloseTo(Number(step), 10);
+    }
+  });
+
   it("ends every line within a twentieth of a pixel of where it ended, however long the path", () => {
     const pixel = fc.double({ min: -900, max: 900, noNaN: true }).map((value) => Math.round(value * 1000) / 1000);
     fc.assert(fc.property(fc.array(fc.tuple(pixel, pixel), { minLength: 2, maxLength: 300 }), fc.tuple(pixel, pixel), (points, by) => {
