@@ -3,7 +3,7 @@
 import type { Note } from "./model.ts";
 import { denseFactor } from "./shape.ts";
 import { correlationAt, inflation } from "./covariance.ts";
-import { differencedBy, type Prepared } from "./prepare.ts";
+import { differencedRegressor, type Prepared } from "./prepare.ts";
 import { nearestRoot } from "./region.ts";
 import { inverseRoots } from "./roots.ts";
 
@@ -50,7 +50,9 @@ export function flags(f: Findings): Note[] {
   cancellation(f, caution);
   correlated(f, caution);
   if (f.k > 0 && f.n < PER_PARAMETER * f.k) caution("fewObservations", `There are ${f.n} observations for ${f.k} parameters, fewer than ${PER_PARAMETER} each: estimates and standard errors are rough, and criteria without the small-sample correction mislead. Take fewer lags, or use aicc.`);
-  for (const name of f.aliased) caution("collinear", aliasText(f, name));
+  const gone = f.aliased.filter(name => name !== MEAN && columnOf(f, name).every(v => v === 0 || Number.isNaN(v)));
+  if (gone.length > 0) caution("collinear", goneText(f, gone));
+  for (const name of f.aliased) if (!gone.includes(name)) caution("collinear", aliasText(f, name));
   inflated(f, caution);
   if (f.sigma2 < 1e-10 * f.variance && Number.isNaN(f.prepared.heldSigma2)) caution("perfectFit", "The model follows the series almost exactly, so the likelihood has no proper maximum: the series looks deterministic. Look at how it was made before using its standard errors.");
   if (f.gaps > 0) notes.push({ code: "gaps", tone: "note", text: `${f.gaps} missing value${f.gaps === 1 ? "" : "s"} inside the sample: the likelihood is that of what was observed, nothing was filled in.` });
@@ -113,12 +115,20 @@ function correlated(f: Findings, caution: Caution): void {
 
 function coefficientOf(column: string): string { return column === MEAN ? MEAN : `the coefficient of ${column}`; }
 
+function columnOf(f: Findings, name: string): Float64Array { return differencedRegressor(f.prepared.delta, f.prepared.columns[f.prepared.names.indexOf(name)]); }
+
+/** Regressors of which nothing is left in the sample. */
+function goneText(f: Findings, names: readonly string[]): string {
+  const one = names.length === 1, shown = one ? names[0] : `${names.slice(0, -1).join(", ")} and ${names[names.length - 1]}`;
+  return `The regressor${one ? "" : "s"} ${shown} ${one ? "is" : "are"} 0 throughout the sample${f.prepared.lost > 0 ? " after differencing" : ""}, so ${one ? "it was" : "they were"} left out (coefficient 0, no standard error). Remove ${one ? "it" : "them"}, or take a sample in which ${one ? "it varies" : "they vary"}.`;
+}
+
 function aliasText(f: Findings, name: string): string {
   const differenced = f.prepared.lost > 0 ? " after differencing" : "";
   const left = "so it was left out (coefficient 0, no standard error).";
   if (name === MEAN) return `The mean${f.prepared.lost > 0 ? " (a drift)" : ""} is a linear combination of the regressors${differenced}, ${left} Write mean: false, or remove one of the regressors.`;
-  const column = differencedBy(f.prepared.delta, f.prepared.columns[f.prepared.names.indexOf(name)]);
-  if (column.every(v => v === column[0] || Number.isNaN(v))) return `The regressor ${name} is ${column[0] === 0 ? "0" : "the same"} throughout the sample${differenced}, ${left} Remove it, or take a sample in which it varies.`;
+  const column = columnOf(f, name), size = Math.abs(column[0]);
+  if (column.every(v => Math.abs(v - column[0]) <= 1e-12 * size || Number.isNaN(v))) return `The regressor ${name} is the same throughout the sample${differenced}, as the mean is, ${left} Remove it, or take a sample in which it varies.`;
   return `The regressor ${name} is a linear combination of the other regressors${f.columns.includes(MEAN) ? " and the mean" : ""}${differenced}: its coefficient cannot be told from theirs, ${left} Remove it, or one of the others.`;
 }
 

@@ -1,7 +1,7 @@
 // The estimation problem of a fit in numbers: scaled, centred, gaps as pulses, regressors as an orthogonal basis.
 
 import { leastSquares } from "../linear/leastSquares.ts";
-import { differencedBy, type Prepared } from "./prepare.ts";
+import { differencedBy, differencedRegressor, type Prepared } from "./prepare.ts";
 import type { Data } from "./work.ts";
 import type { Series } from "../series/series.ts";
 
@@ -57,7 +57,7 @@ export function numbersOf(prepared: Prepared, filtered = false): Numbers {
   const clean = gaps.length > 0 ? cleanRows(raw, delta) : null;
   const size = refuseConstant(w, clean, prepared, name, levels.values.subarray(from, to));
   const free = freeColumns(prepared);
-  const differenced = free.map(j => j < 0 ? new Float64Array(w.length).fill(1) : differencedBy(delta, columnsAll[j]));
+  const differenced = free.map(j => j < 0 ? new Float64Array(w.length).fill(1) : differencedRegressor(delta, columnsAll[j]));
   const { ols, kept, aliased, rss } = firstRegression(w, differenced, clean, free);
   const rows = Math.max(1, clean === null ? w.length : clean.length);
   // What rounding leaves of an exact fit: a few units in the last place of the largest value. (A mean alone is refuseConstant's.)

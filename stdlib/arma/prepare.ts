@@ -127,6 +127,15 @@ function aligned(regressor: Series, levels: Series, name: string): Float64Array 
   });
 }
 
+/** Differences of a regressor; what they take away altogether (a season's harmonics, say) is 0, not the dust of rounding. */
+export function differencedRegressor(delta: Float64Array, x: Float64Array): Float64Array {
+  const out = differencedBy(delta, x);
+  let size = 0, left = 0;
+  for (const v of x) size = Math.max(size, Math.abs(v) || 0);
+  for (const v of out) left = Math.max(left, Math.abs(v) || 0);
+  return left <= 1e-13 * size * (1 + delta.length) ? out.fill(0) : out;
+}
+
 /** Differences of a level array; length n - lost. */
 export function differencedBy(delta: Float64Array, x: Float64Array): Float64Array {
   const lost = delta.length;

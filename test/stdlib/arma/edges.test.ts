@@ -6,7 +6,7 @@ import { modelName } from "../../../stdlib/arma/modelName.ts";
 import type { Fit, FitOptions } from "../../../stdlib/arma/model.ts";
 import { predict } from "../../../stdlib/arma/predict.ts";
 import { simulate } from "../../../stdlib/arma/simulate.ts";
-import { levelShift } from "../../../stdlib/forecast/interventions.ts";
+import { harmonics, levelShift } from "../../../stdlib/forecast/interventions.ts";
 import { slice } from "../../../stdlib/series/cut.ts";
 import { readValues } from "./cases.ts";
 import { makeSeries, type Series } from "../../../stdlib/series/series.ts";
@@ -174,7 +174,15 @@ describe("pathological series give a result or a clear refusal", () => {
     const y = simulate({ phi: [0.5] }, 80, 3);
     const text = (options: Partial<FitOptions>) => fit({ series: series(y.values, "P1M", "2015-01"), ar: 1, ...options }).notes.find(n => n.code === "collinear")?.text;
     expect(text({ regressors: { strike: levelShift("2025-01") } })).toBe("The regressor strike is 0 throughout the sample, so it was left out (coefficient 0, no standard error). Remove it, or take a sample in which it varies.");
-    expect(text({ regressors: { always: levelShift("2010-01") } })).toMatch(/^The regressor always is the same throughout the sample, so/);
+    expect(text({ regressors: { always: levelShift("2010-01") } })).toMatch(/^The regressor always is the same throughout the sample, as the mean is, so/);
+  });
+
+  it("leaves out regressors that the differences take away, not fitting the dust of rounding", () => {
+    const w = applySteps(series(simulate({ phi: [0.5], mean: 100 }, 120, 3).values, "P1M", "2010-01"), [{ step: "difference", lag: 12 }]);
+    const found = fit({ series: w, ma: 1, regressors: { swing: harmonics(12, 3) } });
+    expect(Object.values(found.beta)).toEqual([0, 0, 0, 0, 0, 0]);
+    expect(found.notes.filter(n => n.code === "collinear").map(n => n.text)).toEqual([expect.stringMatching(/^The regressors swing\.\w+, .* and swing\.\w+ are 0 throughout the sample after differencing, so they were left out/)]);
+    expect(found.k).toBe(2);
   });
 
   it("names lag coefficients that move together", () => {
