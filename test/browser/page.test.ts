@@ -115,7 +115,7 @@ describe("the page", () => {
     expect(rows.length).toBe(201);
     const level = (i: number): number => (5200 + 14 * i) * (1 + 0.38 * Math.sin((i - 3) / 12 * 2 * Math.PI) + 0.02 * Math.sin(i * 12.9898) * 3);
     expect(rows[7]).toBe(`2009-07,${level(6)}`);
-    expect(svg.text).toMatch(/^<svg[^>]*><rect[^>]*fill="#fbfaf7"/);
+    expect(svg.text).toMatch(/^<svg[^>]*><title>Vehicle crossings a month<\/title><desc>Crossings rise from[^<]*<\/desc><rect[^>]*fill="#fbfaf7"\/><text[^>]*>Vehicle crossings a month<\/text><svg /);
     expect(svg.text).not.toContain("var(--");
     expect(png.first).toBe(0x89);
     await frame.click("#cell-crossings .menu summary");
