@@ -207,7 +207,7 @@ describe("a stranger's notebook as an exported page", { timeout: 120_000 }, () =
   it("opens from disk, comes alive, and is text there too, in the shell as in the page", async () => {
     const page = await context.newPage();
     await page.goto(file);
-    await page.waitForSelector("html.live", { timeout: 20_000 });
+    await page.waitForSelector("html.live", { timeout: 60_000 });
     const frame = (await (await page.waitForSelector("#live-place iframe")).contentFrame())!;
     // A moved control has the still page replaced by one that came from the frame.
     await frame.locator("#strip-q").focus();
@@ -226,7 +226,7 @@ describe("a stranger's notebook as an exported page", { timeout: 120_000 }, () =
   it("shows nothing harmful of what its frame hands over for printing, whoever wrote it", async () => {
     const page = await context.newPage();
     await page.goto(file);
-    await page.waitForSelector("html.live", { timeout: 20_000 });
+    await page.waitForSelector("html.live", { timeout: 60_000 });
     const frame = (await (await page.waitForSelector("#live-place iframe")).contentFrame())!;
     await frame.evaluate((far) => {
       const html = `<p id="forged">x</p><script>window.owned=1</script><img src="${far}/p.png" onerror="window.owned=1"><img src=x onerror="window.owned=1"><svg onload="window.owned=1"><use href="${far}/u.svg#a"/><image href="${far}/i.png"/><a href="javascript:window.owned=1"><text>t</text></a><foreignObject><iframe src="${far}/f"></iframe></foreignObject></svg><iframe srcdoc="<script>parent.owned=1</script>"></iframe><p style="background:url(${far}/b.png)">s</p><p style="background:\\75rl(${far}/e.png)">e</p><style>@import "${far}/i.css"</style><math><mtext><img src=y onerror="window.owned=1"></mtext></math><a href="javascript:window.owned=1">j</a><base href="${far}/"><meta http-equiv="refresh" content="0;url=${far}/m"><form action="${far}/form"></form>`;
