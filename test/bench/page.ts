@@ -95,7 +95,7 @@ async function withDesk(browser: Browser, text: string, files: Readonly<Record<s
 async function moves(frame: Frame, look: string, count: number): Promise<{ readonly seen: readonly number[]; readonly all: readonly number[] }> {
   return frame.evaluate(async ([cell, times]) => {
     const input = document.querySelector<HTMLInputElement>("#strip-q")!, target = document.querySelector(`#cell-${cell}`)!;
-    const settled = (): boolean => document.querySelector("[data-state=working], [data-state=waiting]") === null;
+    const settled = (): boolean => document.querySelector("#page[data-drawn=yes]") !== null;
     const frameAfter = (): Promise<number> => new Promise((done) => { requestAnimationFrame(() => { const port = new MessageChannel(); port.port1.addEventListener("message", () => done(performance.now())); port.port1.start(); port.port2.postMessage(0); }); });
     const seen: number[] = [], all: number[] = [];
     for (let i = 0; i < times; i++) {
