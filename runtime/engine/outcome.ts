@@ -40,3 +40,10 @@ export function sameData(a: unknown, b: unknown): boolean {
   const keys = Object.keys(a);
   return Array.isArray(a) === Array.isArray(b) && keys.length === Object.keys(b).length && keys.every((key) => Object.hasOwn(b, key) && sameData(Reflect.get(a, key), Reflect.get(b, key)));
 }
+
+/** What rests on work that was cut short is cut short too. */
+export function withCut(outcome: Outcome, own: CutShort | null, inputs: readonly Outcome[]): Outcome {
+  if (!outcome.ok) return outcome;
+  const cutShort = own ?? inputs.reduce<CutShort | null>((found, input) => found ?? (input.ok ? input.cutShort : null), null);
+  return cutShort === null ? outcome : { ...outcome, cutShort };
+}

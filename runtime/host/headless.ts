@@ -2,7 +2,8 @@
 
 import { language } from "../../cells/index.ts";
 import { createEngine } from "../engine/engine.ts";
-import type { Engine, EngineHost } from "../engine/engine.ts";
+import type { Engine } from "../engine/engine.ts";
+import type { EngineHost } from "../engine/host.ts";
 import type { CellReport, FromEngine, NumberReport } from "../engine/messages.ts";
 import { resultOf } from "../engine/result.ts";
 import type { VerifyResult } from "../engine/result.ts";
