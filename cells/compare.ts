@@ -136,11 +136,15 @@ function merged(grids: readonly Grid[], rank: Criterion, askedGrids: number): Gr
   return { ...all, failures, asked, tried, complete, notes: [...early, ...all.notes, ...(failures.length > 0 ? [`${failures.length} of ${tried} orders could not be estimated; the reasons are listed.`] : [])] };
 }
 
+/** More seasonal lags than anybody tries: a larger number was meant as the season's length. */
+const mostSeasonalLags = 3;
+
 /** A number n is a grid of 0 to n seasonal lags of both sorts; anything else stands for the orders that a fit would read in it. */
 function seasonsOf(season: CompareCell["season"]): readonly GridOptions["season"][] {
   if (season === undefined) return [undefined];
   if (typeof season === "number") {
     if (!Number.isInteger(season) || season < 0) throw new OptionError("season", `season is ${season}; a number n tries 0 to n seasonal lags, and an object such as {ma: 1} is one season to try`);
+    if (season > mostSeasonalLags) throw new OptionError("season", `season: ${season} would try up to ${season} seasonal lags; a season of ${season} periods is {length: ${season}, ma: 1}`);
     return [{ ar: season, ma: season }];
   }
   if (!Array.isArray(season)) return [oneSeason(season)];

@@ -49,7 +49,7 @@ function ratioPart(tests: readonly NamedTest[], level: number): Part {
   const alpha = percent(1 - level);
   // The scale is that of the level asked for, where every test prints a critical value there.
   const base = tests.every(({ test }) => test.critical?.[alpha] !== undefined) ? alpha : "5%";
-  const rows: RatioRow[] = tests.flatMap(({ name, test }) => test.critical === undefined ? [] : [{ label: name, statistic: test.statistic, critical: test.critical, rejects: rejects(test, 1 - level) === true }]);
+  const rows: RatioRow[] = tests.flatMap(({ name, test }) => test.critical === null ? [] : [{ label: name, statistic: test.statistic, critical: test.critical, rejects: rejects(test, 1 - level) === true }]);
   const beyond = rows.filter(row => row.rejects).map(row => row.label);
   const found = beyond.length === 0 ? "no test rejects its null hypothesis" : `${listOf(beyond)} ${beyond.length === 1 ? "rejects its null hypothesis" : "reject their null hypotheses"}`;
   return ratioChart("Each statistic against its critical values at 10%, 5% and 1%", `At the ${alpha} level ${found}; right of 1 a statistic is beyond its ${base} critical value.`, rows, base);

@@ -20,7 +20,7 @@ export function decimals(value: number, count: number): string {
 }
 
 /** "p = 0.031", "p < 0.01" where the table ends. */
-export function pText(p: number, bound?: "below" | "above"): string {
+export function pText(p: number, bound: "below" | "above" | null = null): string {
   if (Number.isNaN(p)) return "no p-value";
   if (bound === "below") return `p < ${Number(p.toPrecision(3))}`;
   if (bound === "above") return `p > ${p.toFixed(2)}`;

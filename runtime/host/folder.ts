@@ -73,7 +73,7 @@ async function missing(home: string, file: string): Promise<string> {
 /** Up to six names of a folder that look like data, as a notebook would write them. */
 async function listing(folder: string, prefix: string): Promise<string> {
   const entries = await readdir(folder, { withFileTypes: true });
-  const names = entries.filter((entry) => entry.isFile() && /\.(csv|tsv|txt|json|jsonl|ndjson|xlsx|parquet)$/i.test(entry.name)).map((entry) => entry.name).sort();
+  const names = entries.filter((entry) => entry.isFile() && /\.(csv|tsv|txt|xlsx)$/i.test(entry.name)).map((entry) => entry.name).sort();
   const shown = names.slice(0, 6).map((name) => `"${prefix ? `${prefix}/` : ""}${name}"`).join(", ");
   return names.length > 6 ? `${shown} and ${names.length - 6} more` : shown;
 }

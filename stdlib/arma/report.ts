@@ -136,7 +136,7 @@ function standardErrors(s: Solution, covariance: Float64Array | null, unit: numb
 }
 
 /** The sandwich reads a coefficient's spread from the residuals where its regressor acts. Where those are a handful (a pulse, a
- *  shift that was differenced), the coefficient fits them away: in simulations its figure was 0.42 of the truth, so none is given. */
+ *  shift that was differenced), the coefficient fits them away: in simulations its figure was 0.42 of the usual one, so none is given. */
 function withoutHandfuls(errors: StandardErrors, p: Prepared): StandardErrors {
   const beta: Record<string, number> = { ...errors.beta };
   p.names.forEach((name, j) => {

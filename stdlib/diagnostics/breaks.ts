@@ -36,7 +36,7 @@ export function cusum(x: Subject, level = 0.95): Cusum {
   }
   const p = kolmogorovUpper(statistic), furthest = timeOf(tested, at), limits = `${Number((100 * level).toPrecision(6))}% limits`;
   return {
-    name, statistic, p, n, nullHypothesis: steady, status: "ok", path, limit: level === 0.95 ? 1.358 : kolmogorovQuantile(1 - level), furthest, critical: { "1%": 1.628, "5%": 1.358, "10%": 1.224 },
+    name, statistic, p, bound: null, n, nullHypothesis: steady, status: "ok", path, limit: level === 0.95 ? 1.358 : kolmogorovQuantile(1 - level), furthest, critical: { "1%": 1.628, "5%": 1.358, "10%": 1.224 },
     sentence: p < 1 - level
       ? `The running sum of ${words} leaves its ${limits}, furthest at ${furthest} (${printedP(p)}): the level changed somewhere.`
       : `The running sum of ${words} stays within its ${limits} (${printedP(p)}): no sign of a changed level.`,
@@ -77,12 +77,12 @@ export function largestBreak(x: Subject, trim = 0.15, level = 0.95): LargestBrea
   }
   const mean = (from: number, to: number): number => kept.slice(from, to).reduce((s, t) => s + values[t], 0) / (to - from);
   const exact = supremumP(best, trim), index = kept[at], when = timeOf(tested, index);
-  const { p, bound } = exact > 0.3 ? { p: 0.3, bound: "above" as const } : { p: exact, bound: undefined };
+  const { p, bound } = exact > 0.3 ? { p: 0.3, bound: "above" as const } : { p: exact, bound: null };
   const before = mean(0, at), after = mean(at, n);
   return {
-    name, statistic: best, p, ...(bound === undefined ? {} : { bound }), n, nullHypothesis: steady, status: "ok", at: when, index, before, after, path,
-    ...(trim === 0.15 ? { critical: { "1%": 12.16, "5%": 8.68, "10%": 7.12 } } : {}), // Andrews (2003), corrected table, one parameter
-    sentence: rejects({ p, ...(bound === undefined ? {} : { bound }) }, 1 - level) === true
+    name, statistic: best, p, bound, n, nullHypothesis: steady, status: "ok", at: when, index, before, after, path,
+    critical: trim === 0.15 ? { "1%": 12.16, "5%": 8.68, "10%": 7.12 } : null, // Andrews (2003), corrected table, one parameter
+    sentence: rejects({ p, bound }, 1 - level) === true
       ? `The largest change of level in ${words} is at ${when} (from ${before.toPrecision(3)} to ${after.toPrecision(3)}), more than chance would make it at the ${levelWords(level)} (${printedP(p, bound)}).`
       : `The largest change of level in ${words}, at ${when}, is no larger than chance would make it (${printedP(p, bound)}).`,
   };

@@ -7,7 +7,7 @@ import { leastSquares } from "../linear/leastSquares.ts";
 import type { Subject } from "./subject.ts";
 import { observedOf, testedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { levelWords, printedP, unavailable } from "./test.ts";
+import { chiSquareCritical, levelWords, printedP, unavailable } from "./test.ts";
 
 const steady = "a variance that does not depend on its own past";
 
@@ -36,7 +36,7 @@ export function archLM(x: Subject, lags?: number, level = 0.95): Test & { readon
   const { rss } = leastSquares(X, y, n, q + 1);
   const statistic = n * Math.max(0, 1 - rss / total), p = chiSquareUpper(statistic, q);
   const f = ((total - rss) / q) / (rss / (n - q - 1));
-  return { name, statistic, p, df: q, lags: q, n, nullHypothesis: steady, status: "ok", f, fP: fUpper(f, q, n - q - 1), sentence: sentenceOf("the ARCH LM test", p, q, words, level) };
+  return { name, statistic, p, bound: null, df: q, lags: q, critical: chiSquareCritical(q), n, nullHypothesis: steady, status: "ok", f, fP: fUpper(f, q, n - q - 1), sentence: sentenceOf("the ARCH LM test", p, q, words, level) };
 }
 
 /** McLeod-Li test: Ljung-Box on the squares, chi-square with `lags` degrees of freedom (none taken off for the model).
@@ -48,7 +48,7 @@ export function mcleodLi(x: Subject, lags?: number, level = 0.95): Test {
   if (values.length < 3) return unavailable(steady, n, `${n} values are too few`, { name, lags: q });
   const row = portmanteauRows(squares, [q], 0).ljungBox[0];
   if (!Number.isFinite(row.statistic)) return unavailable(steady, n, whyNot(squares, n).replace("values", "squares"), { name, lags: q });
-  return { name, statistic: row.statistic, p: row.p, df: q, lags: q, n, nullHypothesis: steady, status: "ok", sentence: sentenceOf("the McLeod-Li test", row.p, q, words, level) };
+  return { name, statistic: row.statistic, p: row.p, bound: null, df: q, lags: q, critical: chiSquareCritical(q), n, nullHypothesis: steady, status: "ok", sentence: sentenceOf("the McLeod-Li test", row.p, q, words, level) };
 }
 
 function observed(values: Float64Array, from: number, to: number): boolean {

@@ -43,7 +43,7 @@ export function cumulativePeriodogram(x: Subject, taper = 0, level = 0.95): Cumu
   const p = kolmogorovUpper(statistic * scale), critical95 = 1.358 / scale, limit = level === 0.95 ? critical95 : kolmogorovQuantile(1 - level) / scale, inside = `${Number((100 * level).toPrecision(6))}% limits`;
   const where = `${Number((1 / frequency[at]).toPrecision(3))} periods a cycle`;
   return {
-    name, statistic, p, n, nullHypothesis, status: "ok", frequency, cumulative, critical95, limit, critical: { "5%": critical95 },
+    name, statistic, p, bound: null, n, nullHypothesis, status: "ok", frequency, cumulative, critical95, limit, critical: { "5%": critical95 },
     sentence: p < 1 - level
       ? `The cumulative periodogram of ${words} leaves its ${inside}, furthest near ${where} (${printedP(p)}): some frequencies carry more than white noise would.`
       : `The cumulative periodogram of ${words} stays within its ${inside} (${printedP(p)}): no frequency stands out from white noise.`,

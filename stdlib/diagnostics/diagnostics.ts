@@ -24,7 +24,7 @@ import type { Quantiles } from "./qq.ts";
 import { quantiles } from "./qq.ts";
 import { freeArmaCoefficients, observedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { printedP, rejects } from "./test.ts";
+import { printedP, rejects, unavailable } from "./test.ts";
 
 export interface DiagnosticsOptions {
   readonly model: Fit;
@@ -109,7 +109,7 @@ function defaultLag(n: number, seasonLength: number | null, modelDf: number): nu
 
 function tooShort(n: number): Test {
   const note = `${n} residuals are too few`;
-  return { statistic: NaN, p: NaN, n, nullHypothesis: "no autocorrelation up to this lag", status: "unavailable", note, sentence: `The data cannot answer: ${note}.` };
+  return unavailable("no autocorrelation up to this lag", n, note);
 }
 
 type Tests = Pick<Diagnostics, "ljungBox" | "monti" | "jarqueBera" | "archLM" | "mcleodLi" | "cumulativePeriodogram" | "cusum" | "break">;

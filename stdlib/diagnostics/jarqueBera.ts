@@ -4,7 +4,7 @@ import { chiSquareUpper } from "../distributions/chiSquare.ts";
 import type { Subject } from "./subject.ts";
 import { observedOf, testedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { levelWords, printedP, unavailable } from "./test.ts";
+import { chiSquareCritical, levelWords, printedP, unavailable } from "./test.ts";
 
 /** Jarque-Bera test: n (skewness^2 / 6 + (kurtosis - 3)^2 / 24), chi-square with 2 degrees of freedom, moments with divisor n.
  *  `kurtosis` is not excess: 3 for a normal distribution. Its size is close to nominal only in long series (n > 200, say).
@@ -26,7 +26,7 @@ export function jarqueBera(x: Subject, level = 0.95): Test & { readonly skewness
   const shape = `skewness ${skewness.toFixed(2)}, kurtosis ${kurtosis.toFixed(2)} against 3`;
   const are = words === "the series" ? "is" : "are";
   return {
-    name, statistic, p, df: 2, n, nullHypothesis, status: "ok", skewness, kurtosis,
+    name, statistic, p, bound: null, df: 2, critical: chiSquareCritical(2), n, nullHypothesis, status: "ok", skewness, kurtosis,
     sentence: p < 1 - level
       ? `${words.replace("the", "The")} ${are} not normally distributed by this test at the ${levelWords(level)} (${printedP(p)}; ${shape}): limits from normal quantiles are then only approximate.`
       : `Skewness and kurtosis of ${words} do not contradict a normal distribution (${printedP(p)}; ${shape}); that does not show that it is one.`,

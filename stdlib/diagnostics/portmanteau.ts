@@ -6,7 +6,7 @@ import { chiSquareUpper } from "../distributions/chiSquare.ts";
 import type { Subject } from "./subject.ts";
 import { observedOf, testedOf } from "./subject.ts";
 import type { Test } from "./test.ts";
-import { levelWords, printedP, unavailable } from "./test.ts";
+import { chiSquareCritical, levelWords, printedP, unavailable } from "./test.ts";
 
 /** One lag of a portmanteau test followed across lags. `df` is null and `p` NaN where the model leaves none. */
 export interface PortmanteauRow { readonly lag: number; readonly statistic: number; readonly df: number | null; readonly p: number }
@@ -70,7 +70,7 @@ function portmanteauTest(name: string, x: Subject, lag: number, given: number | 
     const note = `none left: ${lag} ${lag === 1 ? "lag" : "lags"} and ${less} estimated ${less === 1 ? "coefficient" : "coefficients"} leave no degrees of freedom; take a lag above ${less}`;
     return { ...unavailable(nullHypothesis, n, note, { name, lags: lag }), statistic: row.statistic, df: null };
   }
-  return { name, statistic: row.statistic, p: row.p, df: row.df, lags: lag, n, nullHypothesis, status: "ok", sentence: sentence(name, lag, row, words, level) };
+  return { name, statistic: row.statistic, p: row.p, bound: null, df: row.df, lags: lag, critical: chiSquareCritical(row.df), n, nullHypothesis, status: "ok", sentence: sentence(name, lag, row, words, level) };
 }
 
 function sentence(name: string, lag: number, row: PortmanteauRow, words: string, level: number): string {

@@ -1,5 +1,7 @@
 // The result of a hypothesis test: one plain shape for every test here.
 
+import { chiSquareQuantile } from "../distributions/chiSquare.ts";
+
 /** A test's outcome. Where the data cannot answer, `status` is "unavailable", `p` is NaN and `note` says why in words. */
 export interface Test {
   /** The statistic under its published name, as a reader would cite it: "Ljung-Box Q". */
@@ -7,16 +9,16 @@ export interface Test {
   readonly statistic: number;
   /** p-value from the tail named by the alternative; NaN where the data cannot answer. */
   readonly p: number;
-  /** "below": the true p is smaller than `p` (the published table ends there); "above": it is larger. */
-  readonly bound?: "below" | "above";
+  /** "below": the true p is smaller than `p` (the published table ends there); "above": it is larger; null where p is p. */
+  readonly bound: "below" | "above" | null;
   /** Degrees of freedom of a chi-square (or t) statistic; null where none are left. */
   readonly df?: number | null;
   /** Lags of the regression or sum, or the bandwidth of a long-run variance. */
   readonly lags?: number;
   /** How `lags` was chosen, in words. */
   readonly lagRule?: string;
-  /** Critical values by significance level: "1%", "5%", "10%". */
-  readonly critical?: Readonly<Record<string, number>>;
+  /** Critical values by significance level: "1%", "5%", "10%"; null where the data cannot answer or none are printed. */
+  readonly critical: Readonly<Record<string, number>> | null;
   /** Observations used. */
   readonly n: number;
   /** The null hypothesis in words: "a unit root: shocks never die out". */
@@ -29,7 +31,12 @@ export interface Test {
 
 /** A test that the data cannot answer, with the reason in words. */
 export function unavailable(nullHypothesis: string, n: number, note: string, more: Partial<Test> = {}): Test {
-  return { ...more, statistic: NaN, p: NaN, n, nullHypothesis, status: "unavailable", note, sentence: `The data cannot answer: ${note}.` };
+  return { ...more, statistic: NaN, p: NaN, bound: null, critical: null, n, nullHypothesis, status: "unavailable", note, sentence: `The data cannot answer: ${note}.` };
+}
+
+/** Upper critical values of a chi-square variable. @example chiSquareCritical(1)["5%"] // 3.841459 */
+export function chiSquareCritical(df: number): Readonly<Record<string, number>> {
+  return { "10%": chiSquareQuantile(0.9, df), "5%": chiSquareQuantile(0.95, df), "1%": chiSquareQuantile(0.99, df) };
 }
 
 /** Whether a test rejects its null hypothesis at significance `alpha`; null where it cannot be said: the data did not answer,
@@ -53,7 +60,7 @@ export function rounded(value: number, digits = 3): string {
 }
 
 /** A p-value as it stands in a sentence: "p = 0.031", "p < 0.001", "p < 0.01" and "p > 0.10" where a table ends. */
-export function printedP(p: number, bound?: "below" | "above"): string {
+export function printedP(p: number, bound: Test["bound"] = null): string {
   if (Number.isNaN(p)) return "p not available";
   if (bound === "below") return `p < ${p}`;
   if (bound === "above") return `p > ${p.toFixed(2)}`;

@@ -1,7 +1,7 @@
 // Did two forecasters differ in accuracy by more than chance?
 
 import { normalUpper } from "../distributions/normal.ts";
-import { tUpper } from "../distributions/studentT.ts";
+import { tQuantile, tUpper } from "../distributions/studentT.ts";
 import { unavailable, type Test } from "../diagnostics/test.ts";
 import { valuesOf } from "../series/series.ts";
 import type { Numbers } from "./accuracy.ts";
@@ -45,7 +45,8 @@ export function lossDifferenceTest(difference: ArrayLike<number>, horizon: numbe
   const dm = mean / Math.sqrt(longRunVariance / n);
   const statistic = dm * Math.sqrt((n + 1 - 2 * horizon + (horizon * (horizon - 1)) / n) / n);
   return {
-    name: "Diebold-Mariano (Harvey-Leybourne-Newbold)", statistic, p: 2 * tUpper(Math.abs(statistic), n - 1), df: n - 1, lags: horizon - 1, n,
+    name: "Diebold-Mariano (Harvey-Leybourne-Newbold)", statistic, p: 2 * tUpper(Math.abs(statistic), n - 1), bound: null, df: n - 1, lags: horizon - 1, n,
+    critical: { "10%": tQuantile(0.95, n - 1), "5%": tQuantile(0.975, n - 1), "1%": tQuantile(0.995, n - 1) },
     nullHypothesis, status: "ok", meanDifference: mean, longRunVariance, dm, pNormal: 2 * normalUpper(Math.abs(dm)),
   };
 }

@@ -36,8 +36,8 @@ export function adf(x: Series | ArrayLike<number>, options: AdfOptions = {}): Te
   if (Number.isNaN(statistic)) return unavailable(nullHypothesis, n, "the regression fits the data exactly, so there are no errors to measure a unit root against", { name, lags });
   const p = dickeyFullerP(trend, statistic);
   return {
-    name, statistic, p, lags, lagRule: lagRule(asked, maxLags), critical: dickeyFullerCritical(trend, n), n, nullHypothesis, status: "ok",
-    ...(note === null ? {} : { note }), sentence: unitRootSentence("The augmented Dickey-Fuller test", { p }, trend, options.level),
+    name, statistic, p, bound: null, lags, lagRule: lagRule(asked, maxLags), critical: dickeyFullerCritical(trend, n), n, nullHypothesis, status: "ok",
+    ...(note === null ? {} : { note }), sentence: unitRootSentence("The augmented Dickey-Fuller test", { p, bound: null }, trend, options.level),
   };
 }
 

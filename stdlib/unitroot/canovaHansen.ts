@@ -46,8 +46,8 @@ export function canovaHansen(x: Series | ArrayLike<number>, options: CanovaHanse
   if (Number.isNaN(statistic)) return unavailable(nullHypothesis, n, "the seasonal pattern fits the data exactly, so there are no errors to measure it against", { name, df });
   const p = vonMisesUpper(statistic, df);
   return {
-    name, statistic, p, df, lags: bandwidth, lagRule: options.bandwidth === null || options.bandwidth === undefined ? lagRuleOf("short") : "as given", n, nullHypothesis, status: "ok",
-    ...(critical ? { critical: { "10%": vonMisesQuantile(0.1, df), "5%": vonMisesQuantile(0.05, df), "1%": vonMisesQuantile(0.01, df) } } : {}),
+    name, statistic, p, bound: null, df, lags: bandwidth, lagRule: options.bandwidth === null || options.bandwidth === undefined ? lagRuleOf("short") : "as given", n, nullHypothesis, status: "ok",
+    critical: critical ? { "10%": vonMisesQuantile(0.1, df), "5%": vonMisesQuantile(0.05, df), "1%": vonMisesQuantile(0.01, df) } : null,
     note: [difference ? "run on the first difference, so that a unit root of the level does not pass for a wandering season" : "run on the level", ...(note === null ? [] : [note])].join("; "),
     sentence: p < 1 - level
       ? `The Canova-Hansen test rejects a stable seasonal pattern of length ${length} at the ${levelWords(level)} (${printedP(p)}): a seasonal difference is called for.`

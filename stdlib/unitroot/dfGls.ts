@@ -33,11 +33,11 @@ export function dfGls(x: Series | ArrayLike<number>, options: DfGlsOptions = {})
   if (Number.isNaN(statistic)) return unavailable(nullHypothesis, n, "the regression fits the data exactly, so there are no errors to measure a unit root against", { name, lags });
   const critical = trend === "constant" ? dickeyFullerCritical("none", n) : interpolated(n);
   const { p, bound } = trend === "constant"
-    ? { p: dickeyFullerP("none", statistic), bound: undefined }
+    ? { p: dickeyFullerP("none", statistic), bound: null }
     : tableP(-statistic, ["10%", "5%", "2.5%", "1%"].map((level) => -(critical as Record<string, number>)[level]));
   return {
-    name, statistic, p, ...(bound === undefined ? {} : { bound }), lags, lagRule: lagRule(asked, maxLags), critical, n, nullHypothesis, status: "ok",
-    ...(note === null ? {} : { note }), sentence: unitRootSentence("The DF-GLS test", { p, ...(bound === undefined ? {} : { bound }) }, trend, options.level),
+    name, statistic, p, bound, lags, lagRule: lagRule(asked, maxLags), critical, n, nullHypothesis, status: "ok",
+    ...(note === null ? {} : { note }), sentence: unitRootSentence("The DF-GLS test", { p, bound }, trend, options.level),
   };
 }
 

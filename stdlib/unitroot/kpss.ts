@@ -41,10 +41,10 @@ export function kpss(x: Series | ArrayLike<number>, options: KpssOptions = {}): 
   const statistic = squares / (n * n * variance);
   const { p, bound } = tableP(statistic, tables[trend]);
   return {
-    name, statistic, p, ...(bound === undefined ? {} : { bound }), lags, lagRule: rule, n, nullHypothesis, status: "ok", longRunVariance: variance,
+    name, statistic, p, bound, lags, lagRule: rule, n, nullHypothesis, status: "ok", longRunVariance: variance,
     critical: { "10%": tables[trend][0], "5%": tables[trend][1], "2.5%": tables[trend][2], "1%": tables[trend][3] },
     ...(note === null ? {} : { note }),
-    sentence: sentenceOf({ p, ...(bound === undefined ? {} : { bound }) }, around, options.level),
+    sentence: sentenceOf({ p, bound }, around, options.level),
   };
 }
 
@@ -64,10 +64,10 @@ function residuals(values: Float64Array, trend: "constant" | "linear"): Float64A
 }
 
 /** Linear interpolation of p in a table of rising critical values at falling levels; clipped, and said to be. */
-export function tableP(statistic: number, critical: readonly number[], at: readonly number[] = levels): { readonly p: number; readonly bound?: "below" | "above" } {
+export function tableP(statistic: number, critical: readonly number[], at: readonly number[] = levels): { readonly p: number; readonly bound: Test["bound"] } {
   const last = critical.length - 1;
   if (statistic <= critical[0]) return { p: at[0], bound: "above" };
   if (statistic >= critical[last]) return { p: at[last], bound: "below" };
   const i = critical.findIndex((c) => statistic < c);
-  return { p: at[i - 1] + ((at[i] - at[i - 1]) * (statistic - critical[i - 1])) / (critical[i] - critical[i - 1]) };
+  return { p: at[i - 1] + ((at[i] - at[i - 1]) * (statistic - critical[i - 1])) / (critical[i] - critical[i - 1]), bound: null };
 }

@@ -41,7 +41,7 @@ export function phillipsPerron(x: Series | ArrayLike<number>, options: PhillipsP
   const zAlpha = n * fit.beta[0] - (0.5 * n * n * se * se * (lambda2 - gamma0)) / s2;
   const p = dickeyFullerP(trend, statistic);
   return {
-    name, statistic, p, lags, lagRule: rule, critical: dickeyFullerCritical(trend, n), n, nullHypothesis, status: "ok", zAlpha, gamma0, longRunVariance: lambda2,
-    ...(note === null ? {} : { note }), sentence: unitRootSentence("The Phillips-Perron test", { p }, trend, options.level),
+    name, statistic, p, bound: null, lags, lagRule: rule, critical: dickeyFullerCritical(trend, n), n, nullHypothesis, status: "ok", zAlpha, gamma0, longRunVariance: lambda2,
+    ...(note === null ? {} : { note }), sentence: unitRootSentence("The Phillips-Perron test", { p, bound: null }, trend, options.level),
   };
 }

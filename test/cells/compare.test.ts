@@ -137,6 +137,9 @@ describe("compare over a grid of orders", () => {
     if (result.how !== "criterion") throw new Error("expected a grid");
     expect(result.models.map(row => row.fit.options.season)).toEqual([{ length: 12, ar: 0, ma: 1 }, { length: 12, ar: 0, ma: 1 }]);
   });
+  test("takes a season's length for what it is, instead of trying so many seasonal lags", async () => {
+    await expect(run({ series: steady, ma: 1, season: 12 })).rejects.toThrow("season: 12 would try up to 12 seasonal lags; a season of 12 periods is {length: 12, ma: 1}");
+  });
   test("draws a second surface where seasonal orders vary", async () => {
     const { result } = await run({ series: steady, ar: 1, ma: 0, season: 1 });
     const parts = compare.show(result, show);

@@ -56,6 +56,13 @@ describe("residual tests by hand, by law and at the edge", () => {
     expect(kolmogorovUpper(1.6276)).toBeCloseTo(0.01, 4);
     expect(kolmogorovUpper(0.1)).toBe(1);
   });
+  it("says the critical values of the chi-square distribution (R's qchisq) and no bound", () => {
+    const noise = Float64Array.from({ length: 60 }, (_, t) => Math.sin(t * t * 12.9898)), printed = { "10%": 15.9871791721053, "5%": 18.3070380532751, "1%": 23.2092511589544 };
+    for (const test of [monti(noise, 10), archLM(noise, 10), mcleodLi(noise, 10)]) {
+      for (const [level, value] of Object.entries(printed)) expect(test.critical![level]).toBeCloseTo(value, 10);
+      expect(test.bound).toBe(null);
+    }
+  });
   it("Monti's test by hand: n(n + 2) sum of p_k^2 / (n - k)", () => {
     // 1..4: r1 = 0.25, r2 = -0.3; p1 = 0.25, p2 = (r2 - r1^2) / (1 - r1^2) = -0.3625 / 0.9375.
     expect(monti([1, 2, 3, 4], 2).statistic).toBeCloseTo(24 * (0.0625 / 3 + (0.3625 / 0.9375) ** 2 / 2), 12);
