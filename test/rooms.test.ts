@@ -43,6 +43,16 @@ function importsOf(file: string, only: "all" | "values" = "all"): string[] {
   return [...text.matchAll(lines), ...text.matchAll(/\bimport\("([^"]+)"\)/g)].map((match) => match[1]);
 }
 
+/** Whether a package is what a pattern of the table says: a name, a name's own parts, or a beginning ("node:", "@stdlib/*"). */
+function enters(name: string, pattern: string): boolean {
+  return name === pattern || name.startsWith(`${pattern}/`) || (/[*:]$/.test(pattern) && name.startsWith(pattern.replace("*", "")));
+}
+
+/** Whether a file is the door, or stands in the folder that is. */
+function stands(path: string, room: string, door: string): boolean {
+  return door === "anywhere" || path.endsWith(`/${door}`) || path.startsWith(`${room}/${door}`);
+}
+
 const source = ["stdlib", "cells", "runtime"].flatMap((room) => filesIn(join(top, room)));
 const graph = new Map(source.map((file) => [file, importsOf(file)]));
 
@@ -75,12 +85,25 @@ describe("rooms", () => {
     for (const [file, imports] of graph) {
       const row = rowOf(file);
       for (const name of imports.filter((n) => !n.startsWith("."))) {
-        const doors = [...(row?.doors ?? [])].filter(([pattern]) => name === pattern || name.startsWith(`${pattern}/`) || (/[*:]$/.test(pattern) && name.startsWith(pattern.replace("*", ""))));
+        const doors = [...(row?.doors ?? [])].filter(([pattern]) => enters(name, pattern));
         const path = relative(top, file);
-        if (!doors.some(([, files]) => files.some((door) => door === "anywhere" || path.endsWith(`/${door}`) || path.startsWith(`${row?.room}/${door}`)))) wrong.push(`${path} -> ${name}`);
+        if (!doors.some(([, files]) => files.some((door) => stands(path, row?.room ?? "", door)))) wrong.push(`${path} -> ${name}`);
       }
     }
     expect(wrong).toEqual([]);
+  });
+
+  it("the table allows nothing that no file makes use of", () => {
+    const unused: string[] = [];
+    for (const { room, mayImport, doors } of rows) {
+      const files = source.filter((file) => rowOf(file)?.room === room);
+      const targets = files.flatMap((file) => (graph.get(file) ?? []).map((name) => ({ path: relative(top, file), target: name.startsWith(".") ? relative(top, resolve(dirname(file), name)) : name })));
+      for (const allowed of mayImport) if (!targets.some(({ target }) => target === allowed || target.startsWith(`${allowed}/`))) unused.push(`${room}: ${allowed}`);
+      for (const [pattern, doorFiles] of doors) {
+        for (const door of doorFiles) if (!targets.some(({ path, target }) => enters(target, pattern) && stands(path, room, door))) unused.push(`${room}: ${pattern} in ${door}`);
+      }
+    }
+    expect(unused).toEqual([]);
   });
 
   it("imports run in no circle", () => {
