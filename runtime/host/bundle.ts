@@ -67,9 +67,32 @@ async function catalogue(from: (path: string) => string, define: Record<string, 
 }
 
 /** Parts of the chart library that no Vega-Lite view asks for: trees, forces, clouds of words, cross filters, placed labels. */
+const unaskedTransforms = /node_modules\/vega-(?:hierarchy|force|wordcloud|crossfilter|label)\//;
+
+/** Parts of vega-embed that the page's charts never come to, by what they export. Their specifications name no schema (its reader, and
+ *  versions compared) and no theme, are patched by a function (not by a list of changes) and run by our closures; they have a tooltip of
+ *  our own, and neither a menu, which prints the source and posts it to an editor, nor the menu's style. */
+const unaskedOfEmbed: Readonly<Record<string, readonly string[]>> = {
+  "vega-schema-url-parser": ["default"], "semver/functions/satisfies.js": ["default"], "vega-themes": [], "fast-json-patch/index.mjs": ["applyPatch"],
+  "vega-interpreter": ["expressionInterpreter"], "vega-tooltip": ["Handler"], "json-stringify-pretty-compact": ["default"], "./post.js": ["default"], "./style.js": ["default"],
+};
+
+/** Leaves both out. What should be asked for after all says so by its name. */
 const withoutUnasked: Plugin = {
   name: "without unasked",
-  setup(made) { made.onLoad({ filter: /node_modules\/vega-(?:hierarchy|force|wordcloud|crossfilter|label)\// }, () => ({ contents: "" })); },
+  setup(made) {
+    made.onLoad({ filter: unaskedTransforms }, () => ({ contents: "" }));
+    // Its built file has some of the parts inside; in its source they stand apart.
+    made.onResolve({ filter: /^vega-embed$/ }, async ({ kind, resolveDir, pluginData }) => {
+      if (pluginData === "as it is") return null;
+      const { path } = await made.resolve("vega-embed", { kind, resolveDir, pluginData: "as it is" });
+      return { path: path.replace(/build.embed\.js$/, "src/embed.ts") };
+    });
+    made.onResolve({ filter: /./ }, ({ path, importer }) => /vega-embed.src.embed\.ts$/.test(importer) && Object.hasOwn(unaskedOfEmbed, path) ? { path, namespace: "unasked" } : null);
+    made.onLoad({ filter: /./, namespace: "unasked" }, ({ path }) => ({
+      contents: unaskedOfEmbed[path].map((name) => `export ${name === "default" ? "default" : `const ${name} =`} () => { throw new Error(${JSON.stringify(`${path} was left out of the page`)}); };`).join("\n"),
+    }));
+  },
 };
 
 const browser: BuildOptions = { plugins: [withoutUnasked], bundle: true, minify: true, format: "iife", platform: "browser", target: "es2022", legalComments: "none", loader: { ".css": "text" }, logLevel: "warning" };

@@ -1,6 +1,7 @@
-// One drawn chart. A view is made once and kept; new data are swapped in.
+// One drawn chart: the one door to vega-embed. A view is made once and kept; new data are swapped in.
 
-import { chartView, swapData } from "./chartView.ts";
+import embed from "vega-embed";
+import { filled, swapData, viewOptions } from "./chartView.ts";
 import { compileChart } from "./chartSpec.ts";
 import type { CompiledChart } from "./chartSpec.ts";
 import { readingsOf } from "./chartReading.ts";
@@ -37,9 +38,10 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
   // A place of its own: the box around it has a role and a label that the library would overwrite.
   const place = document.createElement("div");
   element.replaceChildren(place);
-  const view = chartView(compiled, part, "svg").initialize(place);
-  if (compiled.fits) view.width(width).height(part.height);
-  await view.runAsync();
+  const { view, finalize } = await embed(place, compiled.spec, {
+    ...viewOptions, mode: "vega", ast: true, renderer: "svg", actions: false, defaultStyle: false,
+    patch: (spec) => filled(spec, part), ...(compiled.fits ? { width, height: part.height } : {}),
+  });
   let drawn: Readonly<Record<string, Columns>> = part.data;
   let drawnWidth = compiled.fits ? width : 0;
   await fitPanels();
@@ -70,6 +72,6 @@ export async function makeChart(element: HTMLElement, compiled: CompiledChart, p
     },
     readings: () => readingsOf(view as unknown as Drawn, latest),
     svg: () => view.toSVG(),
-    destroy() { view.finalize(); place.remove(); },
+    destroy() { finalize(); place.remove(); },
   };
 }

@@ -36,7 +36,8 @@ export function compileChart(part: ChartPart): CompiledChart {
   else fillPanels(spec, part.height);
   const given = (spec.config ?? {}) as Loose;
   spec.config = mergeConfig(chartConfig, given);
-  const compiled = compile(spec as unknown as TopLevelSpec, { logger: silent() }).spec;
+  // What is drawn takes its options from the page alone, where notes for other programs (`usermeta`) could give some.
+  const { $schema: _schema, usermeta: _notes, ...compiled } = compile(spec as unknown as TopLevelSpec, { logger: silent() }).spec;
   const signals = (compiled.signals ?? []) as readonly { name: string; value?: unknown }[];
   return {
     spec: compiled, fits: !several,

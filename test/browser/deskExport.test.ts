@@ -1,7 +1,7 @@
 import { execFileSync } from "node:child_process";
 import { mkdtempSync, readFileSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
-import { join } from "node:path";
+import { dirname, join } from "node:path";
 import { pathToFileURL } from "node:url";
 import axe from "axe-core";
 import type { Browser, Page } from "playwright-core";
@@ -126,8 +126,11 @@ describe("the exported page", () => {
     await context.close();
   });
 
-  it("is under a megabyte plus its data", () => {
+  it("is under a megabyte plus its data, without what its charts never ask for", () => {
     const size = readFileSync(file).length - 2 * data.length;
     expect(size).toBeLessThan(1_000_000);
+    const page = readFileSync(join(dirname(command), "frame.html"), "utf8");
+    expect(page).toContain("vega-embed");
+    for (const unasked of ["fivethirtyeight", "vg-tooltip", ".vega-embed details", "SEQUENCE_NOT_AN_ARRAY"]) expect(page, unasked).not.toContain(unasked);
   });
 });

@@ -37,7 +37,7 @@ describe("the page", () => {
     expect(await frame.locator("#cell-later .cell-state").innerText()).toBe("blocked");
     expect(await frame.locator("b").count()).toBe(0);
     expect(await frame.locator(".notes li").count()).toBe(1);
-    for (const box of await frame.locator(".chart-box").all()) { await box.scrollIntoViewIfNeeded(); await expect.poll(() => box.locator("svg").count()).toBe(1); }
+    for (const box of await frame.locator(".chart-box").all()) { await box.scrollIntoViewIfNeeded(); await expect.poll(() => box.locator(".vega-embed svg").count()).toBe(1); }
     expect(await frame.locator(".chart-fault").count()).toBe(0);
     expect(faults).toEqual([]);
     await page.close();

@@ -25,6 +25,12 @@ describe("compileChart", () => {
     expect(() => compileChart(chart({ data: { url: "https://example.org/x.csv" }, mark: "line", encoding: { x, y } }))).toThrow(/asks for data at https:\/\/example\.org\/x\.csv/);
     expect(() => compileChart(chart({ params: [{ name: "k", value: 1, bind: { input: "range" } }], mark: "line", encoding: { x, y } }))).toThrow(/slider, choice or switch/);
   });
+  it("passes on no notes from which a drawn chart would take options, and no name of a schema", () => {
+    const { spec } = compileChart(chart({ mark: "line", encoding: { x, y }, usermeta: { embedOptions: { actions: true, ast: false } } }));
+    expect(Object.keys(spec)).toContain("marks");
+    expect(Object.keys(spec)).not.toContain("usermeta");
+    expect(Object.keys(spec)).not.toContain("$schema");
+  });
   it("finds the width of every kind of composition", () => {
     const unit = { mark: "line", encoding: { x, y } };
     expect(compileChart(chart(unit)).fits).toBe(true);
@@ -50,7 +56,7 @@ describe("chartStill", () => {
   });
   it("follows the parameters of the description", async () => {
     const spec = { params: [{ name: "cut", value: 0 }], transform: [{ filter: "datum.v > cut" }], mark: "point", encoding: { x, y } };
-    const points = async (cut: number): Promise<number> => (await chartStill(chart(spec, { params: { cut } }), 400)).split("mark-symbol")[1].split("</g>")[0].split("<path").length - 1;
+    const points = async (cut: number): Promise<number> => /<path d="([^"]*)" fill="var\(--sample\)"/.exec(await chartStill(chart(spec, { params: { cut } }), 400))?.[1].split("M").length as number - 1;
     expect(await points(0)).toBe(2);
     expect(await points(1)).toBe(1);
   });
