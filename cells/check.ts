@@ -31,7 +31,7 @@ export function checkOptions(kind: { readonly name: string; readonly body: Kind[
 }
 
 /** One option's value against its type and bounds. @throws OptionError */
-export function checkOption(name: string, option: Option, value: unknown, source?: string): unknown {
+function checkOption(name: string, option: Option, value: unknown, source?: string): unknown {
   if (option.taken === "name" || option.taken === "expression") return value;
   const fault = faultOf(option.type, value);
   if (fault !== null) throw new OptionError(name, refusal(name, option, value, fault, source));

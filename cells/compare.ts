@@ -38,7 +38,7 @@ type ErrorMeasure = (typeof errors)[number];
 const mostFromGrid = 12;
 const mostForecasts = 500_000;
 
-export const compareOptions: OptionTable = {
+const compareOptions: OptionTable = {
   series: { type: "series", sentence: "For a grid of orders: the series that every order is fitted to.", example: "steady" },
   ar: { type: "any", sentence: "For a grid: a number n tries 0 to n autoregressive lags; a list tries each of its items; none unless given. For a stepwise search the largest number of lags (5).", example: "2" },
   ma: { type: "any", sentence: "For a grid: a number n tries 0 to n moving-average lags; a list tries each of its items; none unless given. For a stepwise search the largest number of lags (5).", example: "2" },
@@ -70,7 +70,7 @@ export const compare: Kind<CompareCell, Comparison> = {
   show: result => compareParts(result),
 };
 
-export async function runCompare(options: CompareCell, context: RunContext): Promise<Comparison> {
+async function runCompare(options: CompareCell, context: RunContext): Promise<Comparison> {
   const given = Object.fromEntries(Object.entries(options).filter(([, value]) => value !== null && value !== undefined)) as CompareCell;
   try {
     if (given.models !== undefined) return await compareModels(given, context);

@@ -31,7 +31,7 @@ export interface ShownCorrelogram extends Correlogram {
   readonly theory: { readonly label: string; readonly acf: Float64Array; readonly pacf: Float64Array } | null;
 }
 
-export const correlogramOptions: OptionTable = {
+const correlogramOptions: OptionTable = {
   series: { type: "series", required: true, sentence: "The series whose correlations with its own past are wanted; a fit's residuals are fit.residuals.", example: "steady" },
   lags: { type: "integer", min: 1, sentence: "The largest lag; without this option, up to three seasons where the data allow, else ten times the decimal logarithm of their number." },
   level: { type: "level", default: 0.95, sentence: "Confidence of the bands, a share between 0 and 1." },
@@ -53,7 +53,7 @@ export const correlogram: Kind<CorrelogramCell, ShownCorrelogram> = {
   show: result => correlogramParts(result),
 };
 
-export async function runCorrelogram(options: CorrelogramCell, context: RunContext): Promise<ShownCorrelogram> {
+async function runCorrelogram(options: CorrelogramCell, context: RunContext): Promise<ShownCorrelogram> {
   const series = needVaryingSeries(options.series, 3, "a correlogram");
   const lags = options.lags ?? undefined;
   if (lags !== undefined && (!Number.isInteger(lags) || lags < 1 || lags >= series.n)) {

@@ -37,7 +37,7 @@ export interface Decomposed {
   readonly notes: readonly string[];
 }
 
-export const decompositionOptions: OptionTable = {
+const decompositionOptions: OptionTable = {
   series: { type: "series", required: true, sentence: "The series to take apart, on the scale on which season and trend add up.", example: "log(crossings)" },
   method: { type: { oneOf: ["stl", "additive", "multiplicative"] }, default: "stl", sentence: "By loess (STL), which lets the season drift, or by moving averages with a season that stays, added or multiplied." },
   length: { type: "integer", min: 2, sentence: "Periods a season; without this option, what the spacing suggests." },

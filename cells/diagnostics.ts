@@ -11,7 +11,7 @@ export interface DiagnosticsCell {
   readonly level?: number;
 }
 
-export const diagnosticsOptions: OptionTable = {
+const diagnosticsOptions: OptionTable = {
   model: { type: "fit", required: true, sentence: "The fit whose residuals are examined.", example: "airline" },
   lags: { type: "integer", min: 1, sentence: "The largest lag of the tests across lags; without this option, up to two seasons where the data allow." },
   level: { type: "level", default: 0.95, sentence: "Confidence at which a test is read as finding something." },
@@ -29,7 +29,7 @@ export const diagnostics: Kind<DiagnosticsCell, Diagnostics> = {
   show: (result, context) => diagnosticsParts(result, context.width),
 };
 
-export async function runDiagnostics(options: DiagnosticsCell, context: RunContext): Promise<Diagnostics> {
+async function runDiagnostics(options: DiagnosticsCell, context: RunContext): Promise<Diagnostics> {
   const model = needFit(options.model);
   const level = needLevel(options.level);
   const n = model.residuals.n;
@@ -44,7 +44,7 @@ export async function runDiagnostics(options: DiagnosticsCell, context: RunConte
 }
 
 /** A fit, or the fit in a ranked row of a comparison. */
-export function needFit(value: unknown, option = "model"): Fit {
+function needFit(value: unknown, option = "model"): Fit {
   if (typeof value === "object" && value !== null) {
     if ("sigma2" in value && "residuals" in value) return value as Fit;
     if ("rule" in value) throw new OptionError(option, `${option} is a rule of comparison, which has no fitted residuals to check; give it a fit`);

@@ -19,7 +19,7 @@ export interface FitCell {
   readonly label?: string;
 }
 
-export const fitOptions: OptionTable = {
+const fitOptions: OptionTable = {
   series: { type: "series", required: true, sentence: "The series to model; its transform steps are remembered, so that forecasts come back in the units of the data.", example: "steady" },
   ar: { type: "lags", default: 0, min: 0, sentence: "Autoregressive lags: a number for all lags up to it, or a list for just those lags.", example: "1" },
   ma: { type: "lags", default: 0, min: 0, sentence: "Moving-average lags: a number for all lags up to it, or a list for just those lags.", example: "1" },
@@ -45,13 +45,13 @@ export const fit: Kind<FitCell, Fit> = {
 };
 
 /** Checks what an author may have slipped on, then estimates. */
-export function runFit(options: FitCell): Fit {
+function runFit(options: FitCell): Fit {
   const asked = checkedFitOptions(options);
   return plainly(() => estimate(asked));
 }
 
 /** The options of a fit after the checks that need no estimation. @throws OptionError in words for the author */
-export function checkedFitOptions(options: FitCell): FitOptions {
+function checkedFitOptions(options: FitCell): FitOptions {
   const given = Object.fromEntries(Object.entries(options).filter(([, value]) => value !== null && value !== undefined)) as unknown as FitCell;
   const series = needVaryingSeries(given.series, 3, "estimation");
   const season = given.season ?? {};

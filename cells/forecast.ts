@@ -22,7 +22,7 @@ export interface ForecastCell {
 
 const longestHorizon = 5000;
 
-export const forecastOptions: OptionTable = {
+const forecastOptions: OptionTable = {
   model: { type: "forecaster", required: true, sentence: "What forecasts: a fit, a rule such as rule.naive(crossings), or a ranked row of a comparison such as contest.best.", example: "airline" },
   horizon: { type: "integer", required: true, min: 1, max: longestHorizon, sentence: "How many periods ahead, from the end of the model's window.", example: "12" },
   levels: { type: { listOf: "level" }, default: [0.5, 0.9], sentence: "Confidence of the bands, each a share between 0 and 1.", example: "[0.5, 0.9]" },
@@ -48,7 +48,7 @@ export const forecast: Kind<ForecastCell, Forecast> = {
   show: result => forecastParts(result),
 };
 
-export async function runForecast(options: ForecastCell, context: RunContext): Promise<Forecast> {
+async function runForecast(options: ForecastCell, context: RunContext): Promise<Forecast> {
   const model = needForecaster(options.model);
   const { horizon } = options;
   if (!Number.isInteger(horizon) || horizon < 1) throw new OptionError("horizon", `the horizon is a whole number of periods, 1 or more; found ${String(horizon)}`);

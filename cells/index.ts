@@ -24,7 +24,7 @@ import { transform } from "./transform.ts";
 import { values } from "./values.ts";
 import { windowKind } from "./window.ts";
 
-export const kinds: readonly Kind<never, unknown>[] = [
+const kinds: readonly Kind<never, unknown>[] = [
   load,
   slider,
   choice,

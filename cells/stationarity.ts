@@ -24,7 +24,7 @@ export interface ShownStationarity extends Stationarity {
   readonly rangeMean: RangeMean | null;
 }
 
-export const stationarityOptions: OptionTable = {
+const stationarityOptions: OptionTable = {
   series: { type: "series", required: true, sentence: "The series to test, on the scale that would be modelled.", example: "crossings" },
   trend: { type: { oneOf: ["none", "constant", "linear", "quadratic"] }, default: "constant", sentence: "What the series would be stationary around: nothing, a constant, a line, or a parabola." },
   lags: { type: { anyOf: ["integer", { oneOf: ["aic", "bic", "maic"] }] }, min: 0, sentence: "Lagged differences in the Dickey-Fuller regressions: a number, or the criterion that chooses it; without this option AIC for ADF and, as its authors have it, BIC for DF-GLS." },
@@ -44,7 +44,7 @@ export const stationarity: Kind<StationarityCell, ShownStationarity> = {
   show: (result, context) => stationarityParts(result, context.width),
 };
 
-export async function runStationarity(options: StationarityCell, context: RunContext): Promise<ShownStationarity> {
+async function runStationarity(options: StationarityCell, context: RunContext): Promise<ShownStationarity> {
   const series = needVaryingSeries(options.series, 6, "a unit-root test");
   const level = needLevel(options.level);
   const { trend = "constant", lags, bandwidth } = options;

@@ -32,7 +32,7 @@ export interface Sweep {
 const mostValues = 1000;
 const reserved = new Set(["value", "present", "failed"]);
 
-export const sweepOptions: OptionTable = {
+const sweepOptions: OptionTable = {
   over: { type: "text", required: true, taken: "name", sentence: "The control to move: its name, not its value.", example: "order" },
   values: { type: "list", sentence: "The values to try; without this option, those the control offers.", example: "range(0, 5)" },
   measure: { type: "any", required: true, taken: "expression", sentence: "A number, word or truth that depends on the control, or several as {name: expression}.", example: "{aicc: airline.aicc}" },
@@ -49,7 +49,7 @@ export const sweep: Kind<SweepCell, Sweep> = {
   show: result => sweepParts(result),
 };
 
-export async function runSweep(options: SweepCell, context: RunContext): Promise<Sweep> {
+async function runSweep(options: SweepCell, context: RunContext): Promise<Sweep> {
   const { over } = options;
   const expression = context.source.measure ?? (typeof options.measure === "string" ? options.measure : undefined);
   if (expression === undefined || expression.trim() === "") throw new OptionError("measure", "measure needs an expression to compute for each value, such as airline.aicc");

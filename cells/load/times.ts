@@ -54,7 +54,7 @@ function dateOf(cell: string, order: DayOrder | null): Period | null {
 }
 
 /** The three numbers of a date whose year comes last; null of anything else. Which of the first two is the day, `order` says. */
-export function slashed(cell: string): readonly [string, string, string] | null {
+function slashed(cell: string): readonly [string, string, string] | null {
   const m = /^(\d{1,2})[-/.](\d{1,2})[-/.](\d{4})(?=$|[T\s,])/.exec(cell);
   return m === null ? null : [m[1], m[2], m[3]];
 }

@@ -20,7 +20,7 @@ export function gridParts(grid: Grid | Stepwise): readonly Part[] {
   ];
 }
 
-export function criterionName(rankedBy: Grid["rankedBy"]): string {
+function criterionName(rankedBy: Grid["rankedBy"]): string {
   return { aic: "AIC", aicc: "AICc", bic: "BIC" }[rankedBy];
 }
 

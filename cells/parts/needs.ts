@@ -6,7 +6,7 @@ import { count, figure } from "./words.ts";
 import { originalName } from "./scale.ts";
 
 /** A series, or a refusal that says what was found instead. */
-export function needSeries(value: unknown, option = "series"): Series {
+function needSeries(value: unknown, option = "series"): Series {
   if (isSeriesLike(value)) return value;
   throw new OptionError(option, `${option} needs a series, such as the name of a load or transform cell; this is ${whatIs(value)}`);
 }

@@ -20,7 +20,7 @@ export function rowsOf(value: unknown): Rows {
   throw new RangeError(`expected rows: a list of objects, a series or a forecast; found ${typeof value === "string" ? `the text "${value}"` : String(value)}`);
 }
 
-export function isForecast(value: unknown): value is Forecast {
+function isForecast(value: unknown): value is Forecast {
   return typeof value === "object" && value !== null && "median" in value && "bands" in value && "history" in value && "horizon" in value;
 }
 

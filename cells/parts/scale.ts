@@ -33,11 +33,6 @@ export function originalName(series: Series): string {
   return (series.steps[0]?.before.name ?? series.name) || "the series";
 }
 
-/** The series as it was before the first step: the units of the data. */
-export function inDataUnits(series: Series): Series {
-  return series.steps[0]?.before ?? series;
-}
-
 /** Lags of the difference steps, in their order. */
 export function differenceLags(steps: readonly AppliedStep[]): readonly number[] {
   return steps.flatMap(step => step.step === "difference" ? [step.lag] : []);

@@ -27,7 +27,7 @@ export function seriesChart(series: Series, context: ShowContext): Part {
 }
 
 /** "Crossings, every month from 2010-01 to 2024-12: 180 values between 3,912 and 12,044 vehicles, the first 4,789, the last 9,120; 2 missing." */
-export function seriesSentence(series: Series): string {
+function seriesSentence(series: Series): string {
   const observed = series.values.filter((v) => !Number.isNaN(v));
   const name = capital(series.name || "the series");
   if (observed.length === 0) return `${name}: no value is observed.`;

@@ -8,7 +8,7 @@ import { rowsOf, type Rows } from "./rows.ts";
 type Spec = Readonly<Record<string, unknown>>;
 
 /** Top-level properties that are read. */
-export const topProperties: readonly string[] = [
+const topProperties: readonly string[] = [
   "data", "mark", "encoding", "layer", "transform", "params", "title", "description", "width", "height", "resolve", "projection", "config",
   "hconcat", "vconcat", "concat", "facet", "repeat", "spec", "columns", "spacing", "align", "bounds", "center", "padding", "autosize", "view", "name", "background",
 ];

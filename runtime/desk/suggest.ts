@@ -88,7 +88,7 @@ function inExpression(text: string, position: number, start: number, type: Optio
 }
 
 /** The listed values that an option takes, also inside lists and alternatives. */
-export function choices(type: OptionType): readonly (string | number | boolean)[] {
+function choices(type: OptionType): readonly (string | number | boolean)[] {
   if (type === "boolean") return [true, false];
   if (typeof type === "string") return [];
   if ("oneOf" in type) return type.oneOf;

@@ -29,7 +29,7 @@ export interface EvaluationScope {
 }
 
 /** An input that failed: a claim or a live number is then undecided. */
-export class InputFailed extends Undecided {
+class InputFailed extends Undecided {
   readonly root: string;
   constructor(root: string, message: string) { super(message); this.root = root; }
 }

@@ -24,7 +24,7 @@ export interface VerifyResult {
 interface Spot { readonly line: number; readonly column: number }
 interface Remark extends Spot { readonly code: string; readonly message: string }
 
-export const LANGUAGE_VERSION = "1";
+const LANGUAGE_VERSION = "1";
 
 /** @param notebook the file's name. @param engine settled */
 export function resultOf(engine: Engine, notebook: string): VerifyResult {

@@ -13,7 +13,7 @@ export class EvaluationError extends Error {
 }
 
 /** Not a fault: what goes through an evaluation unchanged. */
-export class Signal extends Error {}
+class Signal extends Error {}
 /** A claim cannot be decided. */
 export class Undecided extends Signal { override readonly name = "Undecided" }
 /** A claim hangs on missing data; `place` is in the expression's source, for whoever knows it to say what is missing. */
@@ -36,7 +36,7 @@ export function isSignal(error: unknown): error is Signal {
 
 type TypedArray = Float64Array | Float32Array | Int32Array | Uint8Array;
 
-export function isTyped(value: unknown): value is TypedArray {
+function isTyped(value: unknown): value is TypedArray {
   return ArrayBuffer.isView(value) && !(value instanceof DataView);
 }
 

@@ -5,7 +5,7 @@ import { open, readdir, realpath, stat } from "node:fs/promises";
 import { basename, dirname, join, sep } from "node:path";
 
 /** Largest file a notebook may read, in bytes: beyond it the page would run out of memory before it said why. */
-export const largestFile = 256 * 1024 * 1024;
+const largestFile = 256 * 1024 * 1024;
 
 /** The file is not to be had; the message is for the notebook's author. */
 export class NoFile extends Error {

@@ -3,7 +3,7 @@
 import { createHash } from "node:crypto";
 
 /** The source expression that allows exactly this inline script. */
-export function scriptHash(script: string): string {
+function scriptHash(script: string): string {
   return `'sha256-${createHash("sha256").update(script).digest("base64")}'`;
 }
 

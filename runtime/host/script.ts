@@ -76,7 +76,7 @@ const permission = process.allowedNodeEnvironmentFlags.has("--permission") ? "--
 
 export interface ScriptLimits { readonly ms: number; readonly megabytes: number }
 /** What a script may take where nothing else is said. */
-export const scriptLimits: ScriptLimits = { ms: 60_000, megabytes: 1024 };
+const scriptLimits: ScriptLimits = { ms: 60_000, megabytes: 1024 };
 
 /** @throws Error with the script's own message, or that of a process that was ended */
 export function runScript(source: string, inputs: Readonly<Record<string, unknown>>, signal: AbortSignal, limits: ScriptLimits = scriptLimits): Promise<Readonly<Record<string, unknown>>> {

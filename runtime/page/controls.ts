@@ -52,7 +52,7 @@ function movedTree(part: ControlPart, context: ControlContext): Given {
 }
 
 /** A setting as a reader reads it. */
-export function settingText(value: ControlPart["kept"], control: ControlPart["control"]): string {
+function settingText(value: ControlPart["kept"], control: ControlPart["control"]): string {
   if (typeof value === "object") return `${value.from} to ${value.to}`;
   return control === "switch" ? (value ? "on" : "off") : printValue(value);
 }

@@ -18,7 +18,7 @@ export interface EngineEars {
   broken(message: string): void;
 }
 
-export const beatMs = 500;
+const beatMs = 500;
 
 /** @param source the worker's program: a classic script
  *  @param first  a worker that runs it already, and to which nothing has been said */

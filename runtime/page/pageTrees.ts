@@ -120,7 +120,7 @@ function contentsTree(anchors: ReadonlyMap<unknown, string>): Tree | null {
 }
 
 /** Every live number that has moved, for "accept all". */
-export function movedNumbers(state: PageState): readonly NumberReport[] {
+function movedNumbers(state: PageState): readonly NumberReport[] {
   return [...state.numbers.values()].filter((number) => number.state === "moved" && number.now !== null);
 }
 

@@ -7,7 +7,7 @@ import { mathTree } from "./math.ts";
 import type { ClaimsPart, EquationPart, FiguresPart, TablePart, TextPart } from "../../cells/parts/part.ts";
 
 /** Rows drawn at most: a longer table is cut, says so, and its CSV has all. */
-export const mostRows = 300;
+const mostRows = 300;
 
 export function tableTree(part: TablePart, menu: Given): Tree {
   const right = part.columns.map((column, i) => (column.align ?? (part.rows.some((row) => typeof row[i] === "number") ? "right" : "left")) === "right");

@@ -31,7 +31,7 @@ export function h(tag: string, attributes: Readonly<Record<string, AttributeValu
 }
 
 /** Flattens, drops what is empty, and joins neighbouring texts, so that each child is one DOM node. */
-export function children(given: readonly Given[]): readonly Child[] {
+function children(given: readonly Given[]): readonly Child[] {
   const list: Child[] = [];
   const add = (item: Given): void => {
     if (item === null || item === undefined || item === false || item === "") return;

@@ -8,7 +8,7 @@ const RESERVED = new Set(("await break case catch class const continue debugger 
 /** Names with a fixed value. */
 export const FIXED: ReadonlySet<string> = new Set(["free", "NaN", "Infinity", "undefined"]);
 
-export function isIdentifier(name: string): boolean {
+function isIdentifier(name: string): boolean {
   return /^[\p{ID_Start}$_][\p{ID_Continue}$\u200c\u200d]*$/u.test(name);
 }
 

@@ -146,7 +146,7 @@ function flagsOf(result: Fit, s: Solution): Note[] {
 }
 
 /** "AR lag 1", "seasonal MA lag 24": as the page names them. */
-export function coefficientName(p: Prepared, at: number): string {
+function coefficientName(p: Prepared, at: number): string {
   const words = ["AR", "seasonal AR", "MA", "seasonal MA"];
   const parts = p.shape.factors;
   const which = parts.findIndex(f => at < f.from + f.lags.length);

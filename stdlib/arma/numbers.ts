@@ -30,7 +30,7 @@ export interface Numbers {
 }
 
 /** Above this many gaps the filter is used: the pulses cost the square of their number. */
-export const MANY_GAPS = 40;
+const MANY_GAPS = 40;
 
 /** @param filtered  the likelihood will be the filter's: no pulses
  *  @throws RangeError where the data cannot answer, saying what is missing */

@@ -146,7 +146,7 @@ function pairUp(re: Float64Array, im: Float64Array): void {
 }
 
 /** Coefficients c_1.. of prod (1 - z_i B) for inverse roots z. */
-export function fromInverseRoots(re: ArrayLike<number>, im: ArrayLike<number>): Float64Array {
+function fromInverseRoots(re: ArrayLike<number>, im: ArrayLike<number>): Float64Array {
   const d = re.length;
   const cr = new Float64Array(d + 1), ci = new Float64Array(d + 1);
   cr[0] = 1;

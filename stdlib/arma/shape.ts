@@ -94,12 +94,6 @@ export function contractInto(gradient: Float64Array, p: Product, x: Float64Array
   }
 }
 
-/** Coefficients at lags 1..degree, zeros between. */
-export function denseInto(out: Float64Array, p: Product, sparse: Float64Array): void {
-  out.fill(0);
-  for (let i = 0; i < p.lags.length; i++) out[p.lags[i] - 1] = sparse[i];
-}
-
 /** Coefficients of a factor in 1 + c_1 B' + ..., B' its own step (a season for seasonal factors of full lag sets). */
 export function denseFactor(f: Factor, x: Float64Array): Float64Array {
   const step = f.lags.length > 0 && f.lags.every(l => l % f.lags[0] === 0) ? f.lags[0] : 1;

@@ -85,7 +85,7 @@ export function correlogram(options: CorrelogramOptions): Correlogram {
 }
 
 /** Three seasons where they fit into a third of the data, two or one where not; without a season 10 log10 n. Always below n. */
-export function defaultLags(n: number, seasonLength: number | null): number {
+function defaultLags(n: number, seasonLength: number | null): number {
   const usual = Math.max(1, Math.floor(10 * Math.log10(Math.max(n, 2))));
   const seasons = seasonLength === null ? 0 : Math.min(3, Math.floor(n / 3 / seasonLength)) * seasonLength;
   return Math.max(1, Math.min(n - 1, Math.max(seasons, Math.min(usual, Math.floor(n / 2)))));

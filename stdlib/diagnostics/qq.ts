@@ -79,7 +79,7 @@ export function betaQuantile(p: number, a: number, b: number): number {
 }
 
 /** The tabled local level, straight in log n and in the normal quantile of the level. */
-export function localLevel(n: number, level: number): number {
+function localLevel(n: number, level: number): number {
   const x = Math.log(Math.min(Math.max(n, sizes[0]), sizes[sizes.length - 1]));
   const i = Math.min(sizes.length - 2, Math.max(0, sizes.findLastIndex((s) => Math.log(s) <= x)));
   const share = (x - Math.log(sizes[i])) / (Math.log(sizes[i + 1]) - Math.log(sizes[i]));

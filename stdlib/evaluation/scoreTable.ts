@@ -36,7 +36,7 @@ export interface Score {
 }
 
 /** In-sample errors of the seasonal naive rule before each origin, which MASE and RMSSE are measured in. */
-export function scalesOf(frame: RollingFrame, length: number): { readonly absolute: Float64Array; readonly rootSquared: Float64Array } {
+function scalesOf(frame: RollingFrame, length: number): { readonly absolute: Float64Array; readonly rootSquared: Float64Array } {
   const each = frame.at.map((t) => naiveScale(frame.base.values.subarray(0, t + 1), length));
   return { absolute: Float64Array.from(each, (s) => s.absolute), rootSquared: Float64Array.from(each, (s) => s.rootSquared) };
 }

@@ -141,7 +141,7 @@ function tailOf(rest: readonly UndoStep[], h: number): { readonly add: number; r
 }
 
 /** Mean and standard deviation in data units of a period that is a function of a normal number. */
-export function momentsAt(rest: readonly UndoStep[], h: number, m: number, se: number): { readonly mean: number; readonly sd: number } {
+function momentsAt(rest: readonly UndoStep[], h: number, m: number, se: number): { readonly mean: number; readonly sd: number } {
   const form = formOf(rest);
   if (form === "normal") return { mean: m, sd: se };
   if (form === "lognormal") {

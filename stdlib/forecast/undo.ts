@@ -96,7 +96,7 @@ function lastOf(before: Series, lag: number): Float64Array {
 export const isLinear = (step: UndoStep): boolean => step.undo === "affine" || step.undo === "difference";
 
 /** Undoes steps on a path (a path of the modelled scale in, one in the end's units out). */
-export function undoPath(steps: readonly UndoStep[], path: Float64Array): Float64Array {
+function undoPath(steps: readonly UndoStep[], path: Float64Array): Float64Array {
   let x = path;
   for (const step of steps) {
     if (step.undo === "difference") x = summed(x, step.lag, step.tail);

@@ -68,10 +68,3 @@ export function inversePositive(a: Float64Array, size: number, tolerance = 1e-13
   }
   return inverse;
 }
-
-/** Twice the sum of the logs of the diagonal: log determinant of L L'. */
-export function choleskyLogDeterminant(l: Float64Array, size: number): number {
-  let sum = 0;
-  for (let i = 0; i < size; i++) sum += Math.log(l[i * size + i]);
-  return 2 * sum;
-}

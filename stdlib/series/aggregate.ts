@@ -22,7 +22,7 @@ export function aggregated(series: Series, to: string, how: AggregateHow): Serie
 }
 
 /** Whole longer periods inside a series: `from`..`end` are its positions, half open. `dropped` periods at the ends are not whole. */
-export function groupsOf(series: Series, every: string): readonly { readonly time: string; readonly from: number; readonly end: number }[] {
+function groupsOf(series: Series, every: string): readonly { readonly time: string; readonly from: number; readonly end: number }[] {
   const own = parseEvery(series.every ?? "P1D");
   const longer = parseEvery(every);
   const first = periodOf(series.start, series.every);

@@ -32,13 +32,8 @@ export function daysInMonth(year: number, month: number): number {
   return month === 12 ? 31 : daysFromCivil(year, month + 1, 1) - daysFromCivil(year, month, 1);
 }
 
-/** ISO weekday of a day number: 1 Monday to 7 Sunday. */
-export function weekday(days: number): number {
-  return ((((days + 3) % 7) + 7) % 7) + 1;
-}
-
 /** Week number of a day: whole weeks since Monday 1970-01-05. */
-export function weekOfDays(days: number): number {
+function weekOfDays(days: number): number {
   return Math.floor((days - 4) / 7);
 }
 

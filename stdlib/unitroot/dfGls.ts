@@ -42,7 +42,7 @@ export function dfGls(x: Series | ArrayLike<number>, options: DfGlsOptions = {})
 }
 
 /** The series less its trend, estimated on quasi-differences with a = 1 - 7/T (constant) or 1 - 13.5/T (trend). */
-export function glsDetrended(y: Float64Array, trend: "constant" | "linear"): Float64Array {
+function glsDetrended(y: Float64Array, trend: "constant" | "linear"): Float64Array {
   const n = y.length, cols = trend === "constant" ? 1 : 2, a = 1 - (trend === "constant" ? 7 : 13.5) / n;
   const X = new Float64Array(n * cols), target = new Float64Array(n);
   for (let t = 0; t < n; t++) {
