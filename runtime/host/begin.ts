@@ -45,7 +45,7 @@ async function makePlan(folder: string, data: Recognised): Promise<Plan> {
   const difference = typeof kpss === "number" && kpss < 0.05 ? 1 : 0;
   const horizon = Math.max(1, Math.min(season > 0 ? season : data.every === "P1Y" ? 5 : 12, Math.floor(count / 6)));
   return {
-    logs, difference, seasonalDifference, season, cycle: length > 1 && count >= 3 * length ? length : 0, horizon, origins: Math.max(2, Math.min(24, Math.floor(count / 6))),
+    logs, difference, seasonalDifference, levelTested: typeof kpss === "number" && !Number.isNaN(kpss), season, cycle: length > 1 && count >= 3 * length ? length : 0, horizon, origins: Math.max(2, Math.min(24, Math.floor(count / 6))),
     lags: Math.max(2, Math.min(season > 0 ? 2 * season : 20, Math.floor(count / 4))),
   };
 }

@@ -30,6 +30,8 @@ export interface Plan {
   /** Order of plain differences, 0 or 1. */
   readonly difference: number;
   readonly seasonalDifference: boolean;
+  /** Whether a test could say that a plain difference is needed, or is not. */
+  readonly levelTested: boolean;
   /** Periods a season; 0 where there is none to model. */
   readonly season: number;
   /** Periods a season for the naive rule: longer ones too. */
@@ -98,9 +100,9 @@ export function sections(title: string, data: Recognised, plan: Plan, orders: Or
       loadCell(data), "", `${recognisedWords(data)} The series has [0](=${name}.n) ${many}, from [-](=${name}.start) to [-](<=${name}.times[${name}.n - 1]>).${data.notes.length > 0 ? ` ${data.notes.map(sentence).join(" ")}` : ""}`, "",
       cell("window: sample", `of: ${name}`, `label: "Sample"`), "", "Drag the ends of the window to leave early or late data out; all that follows uses the window.",
     ].join("\n") },
-    { id: "steady", needs: ["data"], text: ["## To stationarity", "", stepsWords(plan, periods), "", steadyCell(name, plan, "sample")].join("\n") },
+    { id: "steady", needs: ["data"], text: ["## To stationarity", "", stepsWords(name, plan, periods), "", steadyCell(name, plan, "sample")].join("\n") },
     { id: "tests", needs: ["steady"], text: [cell("stationarity: tests", "series: steady"), "",
-      "The augmented Dickey-Fuller test, whose null hypothesis is a unit root, gives [0.00](=tests.adf.statistic) (p [0.000](=tests.adf.p)); the KPSS test, whose null hypothesis is stationarity, gives [0.00](=tests.kpss.statistic) (p [0.00](=tests.kpss.p))."].join("\n") },
+      "The augmented Dickey-Fuller test, whose null hypothesis is a unit root, gives [0.00](=tests.adf.statistic) (p [<0.001](=tests.adf.p)); the KPSS test, whose null hypothesis is stationarity, gives [0.00](=tests.kpss.statistic) (p [0.00](=tests.kpss.p))."].join("\n") },
     { id: "shape", needs: ["steady"], text: ["## Autocorrelations", "", cell("correlogram: shape", "series: steady", `lags: ${plan.lags}`), "",
       "At lag 1 the autocorrelation is [0.00](=shape.acf[1]) and the partial autocorrelation [0.00](=shape.pacf[1]). About one lag in twenty stands outside its band by chance."].join("\n") },
     { id: "orders", needs: ["steady"], text: ["## A model", "", ordersCell(plan), "",
@@ -113,22 +115,23 @@ export function sections(title: string, data: Recognised, plan: Plan, orders: Or
       cell("compare: contest", `models: {"the model": model, ${rules.map(([label, rule]) => `${JSON.stringify(label)}: ${rule}`).join(", ")}}`, `origins: ${plan.origins}`, `horizon: ${plan.horizon}`), "",
       `Each was made to forecast from ${plan.origins} held-out origins, with the data up to there and nothing else. The smallest mean absolute scaled error, [0.00](=contest.best.mase), is that of [-](=contest.best.label).`].join("\n") },
     { id: "forecast", needs: ["fit"], text: ["## The forecast", "", cell("forecast: ahead", "model: model", `horizon: ${plan.horizon}`, "levels: [0.5, 0.9]"), "",
-      `For [-](=ahead.times[0]) the model expects [#](=ahead.mean[0]), and with 90% confidence between [#](=ahead.bands[1].low[0]) and [#](=ahead.bands[1].high[0]). The bands hold if the model does.`].join("\n") },
+      `For [-](=ahead.times[0]) the model puts the median at [#](=ahead.median[0]), and its 90% band runs from [#](=ahead.bands[1].low[0]) to [#](=ahead.bands[1].high[0]). The bands hold if the model does.`].join("\n") },
   ];
 }
 
 /** Conclusions that may be guarded, each with the section that it needs. */
 export const conclusions: readonly { readonly claim: string; readonly condition: string; readonly needs: string }[] = [
-  { claim: "No unit root is left (ADF, 5%)", condition: "tests.adf.p < 0.05", needs: "tests" },
+  { claim: "A unit root is rejected (ADF, 5%)", condition: "tests.adf.p < 0.05", needs: "tests" },
   { claim: "Nothing speaks against stationarity (KPSS, 5%)", condition: "tests.kpss.p >= 0.05", needs: "tests" },
-  { claim: "The residuals are noise (Ljung-Box, 5%)", condition: "leftover.ljungBox.p > 0.05", needs: "diagnostics" },
-  { claim: "The model beats the naive rules", condition: `contest.best.label === "the model"`, needs: "contest" },
+  { claim: "Nothing speaks against noise in the residuals (Ljung-Box, 5%)", condition: "leftover.ljungBox.p > 0.05", needs: "diagnostics" },
+  { claim: "No naive rule has a smaller error at the held-out origins", condition: `contest.best.label === "the model"`, needs: "contest" },
+  { claim: "The model beats the naive rules by more than chance (5%)", condition: `contest.best.label === "the model" && contest.best.beatsNaive === "yes"`, needs: "contest" },
 ];
 
 export function claimsSection(held: readonly { readonly claim: string; readonly condition: string }[], fallen: readonly string[]): string {
   const parts = ["## What must hold", ""];
   if (held.length > 0) parts.push(cell("claims:", ...held.map(({ claim, condition }) => `${JSON.stringify(claim)}: ${condition}`)), "");
-  if (fallen.length > 0) parts.push(`At present this does not hold, and so it is not claimed: ${fallen.map((claim) => lowered(claim)).join("; ")}.`, "");
+  if (fallen.length > 0) parts.push(`What follows is not shown by these data, and so it is not claimed: ${fallen.map((claim) => lowered(claim)).join("; ")}.`, "");
   if (held.length > 0) parts.push("Where one of these breaks when data are added, `lagbook verify` says so and ends with 1.");
   return parts.join("\n");
 }
@@ -150,17 +153,19 @@ function recognisedWords(data: Recognised): string {
   const times = timeColumns.length === 0 ? "no column of times, so the rows are only numbered" : week === null ? `times in ${columns}, ${spacingWords(data)}`
     : `dates in ${columns}, and rows for only ${week} days of the week: the rows are numbered, so that a week has ${week} of them and no day without business counts as a gap`;
   const which = order === null ? "" : ` Its dates may be read with the day or the month first; only with the ${order === "day-month" ? "day" : "month"} first are they evenly spaced, and \`order\` says so.`;
-  const others = otherColumns.length === 0 ? "" : ` It also has ${otherColumns.map((name) => `\`${name}\``).join(", ")}: name one as \`value\` to use it instead.`;
+  const others = otherColumns.length === 0 ? "" : ` It also has ${otherColumns.map((name) => `\`${name}\``).join(", ")}: a \`load\` cell whose \`value\` names ${otherColumns.length === 1 ? "it" : "one of them"} makes a series of it, which \`fit\` can take as a regressor.`;
   return `\`${file}\` has ${times}; ${values} is the series.${which}${others}`;
 }
 
-function stepsWords({ logs, difference, seasonalDifference, season }: Plan, [one, many]: readonly [one: string, many: string]): string {
+function stepsWords(name: string, { logs, difference, seasonalDifference, season, levelTested }: Plan, [one, many]: readonly [one: string, many: string]): string {
   const parts: string[] = [];
-  if (logs) parts.push("The values swing in proportion to their level, so their logarithms are used.");
+  if (logs) parts.push(`Guerrero's measure of how the spread goes with the level, [0.00](<=estimateLambda(${name}, "guerrero")>), is nearer to 0 (logarithms) than to 1 (the values as they are): logarithms are used.`);
   if (seasonalDifference) parts.push(`The season repeats after ${season} ${many}: a difference against the same ${one} one season before takes it out.`);
-  if (difference > 0) parts.push(`The level wanders: a difference against the ${one} before takes that out.`);
-  if (parts.length === 0) parts.push("The series stands still as it is; no step is needed. Add steps here to try some.");
-  parts.push("Forecasts come back through these steps to the units of the data.");
+  if (difference > 0) parts.push(`The KPSS test rejects a steady level (5%): a difference against the ${one} before takes out its wandering.`);
+  const steps = parts.length;
+  if (!levelTested) parts.push("Whether the level wanders was not tested, since the KPSS test gives no answer for these data: look at the plot and the autocorrelations.");
+  else if (steps === 0) parts.push("The KPSS test does not reject a steady level (5%), and no step is taken. Add steps here to try some.");
+  if (steps > 0) parts.push("Forecasts come back through these steps to the units of the data.");
   return parts.join(" ");
 }
 

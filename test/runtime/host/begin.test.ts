@@ -71,6 +71,35 @@ describe("begin recognises", () => {
   }, 60_000);
 });
 
+describe("begin claims no more than was shown", () => {
+  const tickets = [49, 54, 64, 76, 68, 62, 61, 58, 51, 50, 51, 57, 64, 73, 75, 75, 71, 70, 59, 64, 58, 60, 54, 61, 64, 65, 65, 63, 72, 71];
+
+  it("of a model that is ahead at few origins: that it is ahead, not that it beats the rules", async () => {
+    const { text } = await begun("tickets.csv", ["month,tickets", ...tickets.map((x, i) => `${2021 + Math.floor((i + 3) / 12)}-${two(((i + 3) % 12) + 1)},${x}`)]);
+    expect(text).toContain('"No naive rule has a smaller error at the held-out origins": contest.best.label === "the model"\n');
+    expect(text).toContain("What follows is not shown by these data, and so it is not claimed: the model beats the naive rules by more than chance (5%).");
+    expect(text).toContain("The KPSS test does not reject a steady level (5%), and no step is taken.");
+    expect(text).not.toContain("Forecasts come back through these steps");
+    expect(text).toContain("(p [0.015](=tests.adf.p))");
+  }, 60_000);
+
+  it("of a series with gaps: that its level was not tested", async () => {
+    const { text } = await begun("gaps.csv", ["month,tickets", ...lines(60, (i) => `${2016 + Math.floor(i / 12)}-${two((i % 12) + 1)},${i % 23 === 9 ? "" : 500 + ((i * 7919) % 101)}`)]);
+    expect(text).toContain("Whether the level wanders was not tested, since the KPSS test gives no answer for these data");
+    expect(text).not.toContain("does not reject a steady level");
+  }, 60_000);
+
+  it("of a small p-value: its bound", async () => {
+    const { text } = await begun("noise.csv", ["year,v", ...lines(80, (i) => `${1940 + i},${(i * i * i * 7919) % 101}`)]);
+    expect(text).toContain("(p [<0.001](=tests.adf.p))");
+  }, 60_000);
+
+  it("of the logarithms: the measure that led to them", async () => {
+    const { text } = await begun("growth.csv", ["month,v", ...lines(80, (i) => `${2012 + Math.floor(i / 12)}-${two((i % 12) + 1)},${(Math.exp(i / 40) * (100 + ((i * 7919) % 101))).toFixed(1)}`)]);
+    expect(text).toMatch(/goes with the level, \[-?\d\.\d\d\]\(<=estimateLambda\(growth, "guerrero"\)>\), is nearer to 0/);
+  }, 60_000);
+});
+
 describe("begin refuses in words", () => {
   it.each<[string, readonly string[], RegExp]>([
     ["dates that may be read either way", ["date,v", "01/02/2020,1", "01/05/2020,2", "03/06/2020,7"], /may be day first or month first[^]*write the dates as 2019-03-05/],
