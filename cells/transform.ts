@@ -26,7 +26,7 @@ export const transform: Kind<TransformCell, Series> = {
   example: "series: crossings\nsteps: [log, difference(1)]",
   run: (options, context) => runTransform(options, context),
   show: (series, context) => [
-    { part: "text", text: `${capital(series.name || originalName(series))} is ${originalName(series)}${series.steps.length === 0 ? " as it is" : ` after ${listOf(series.steps.map(stepText))}`}.` },
+    { part: "text", text: `${capital(series.name || originalName(series))} ${series.steps.length === 0 ? "takes no step: it is the series as it came" : `is ${originalName(series)} after ${listOf(series.steps.map(stepText))}`}.` },
     seriesChart(series, context),
     ...oneWay(series).map((text) => ({ part: "text" as const, tone: "note" as const, text })),
   ],

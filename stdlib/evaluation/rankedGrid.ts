@@ -79,8 +79,9 @@ function words(models: readonly GridRow[], best: GridRow | null, failures: reado
   if (aside.length > 0) notes.push(`${aside.length === models.length ? "All models have" : `${aside.length} of ${models.length} models ${aside.length === 1 ? "has" : "have"}`} a maximum that the criterion cannot rank, and ${aside.length === 1 ? "is" : "are"} set aside. Of ${aside[0].label}: ${aside[0].setAside}.`);
   const ties = models.filter((m) => m.tied && m !== best), simplest = [best, ...ties].reduce((a, b) => (b.k < a.k ? b : a));
   const also = ties.length === 0 ? "no other comes within 2 of it" : `${ties.slice(0, 4).map((m) => m.label).join(", ")}${ties.length > 4 ? ` and ${ties.length - 4} more` : ""} ${ties.length === 1 ? "is" : "are"} within 2 of it, which is a tie${simplest === best ? "" : `; the simplest of them is ${simplest.label}`}`;
+  const rankable = models.length - aside.length, counted = rankable > 0 && aside.length > 0 ? `${rankable} model${rankable === 1 ? "" : "s"} that can be ranked` : `${models.length} model${models.length === 1 ? "" : "s"}`;
   if (best.cautions.length > 0) notes.push(`The best has a caution: ${best.cautions[0]}`);
-  return { sentence: `Of ${models.length} model${models.length === 1 ? "" : "s"}, ${best.label} has the smallest ${name} (${best.fit[rank as "aic"].toFixed(1)}); ${also}.`, notes };
+  return { sentence: `Of ${counted}, ${best.label} has the smallest ${name} (${best.fit[rank as "aic"].toFixed(1)}); ${also}.`, notes };
 }
 
 /** An order in words: "ar 1, ma 2, season ar 0, ma 1". */

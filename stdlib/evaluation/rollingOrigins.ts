@@ -208,10 +208,10 @@ function naiveVerdict(score: Score, naive: number, overall: readonly Score[], ra
   if (naive < 0 || against === null) return { beatsNaive: "no", sentence: `${score.label} is itself the naive rule that the others have to beat.` };
   const other = overall[naive], name = other.label.replace(" (added)", "");
   const words = `${rank.toUpperCase()} ${+score[rank].toPrecision(3)} against ${+other[rank].toPrecision(3)}`;
-  if (!(score[rank] < other[rank])) return { beatsNaive: "no", sentence: `${score.label} does not beat naive: the ${name} rule forecast as well or better (${words}).` };
-  if (against.p < 0.05 && against.meanDifference < 0) return { beatsNaive: "yes", sentence: `${score.label} beats the ${name} rule (${words}), by more than chance (p = ${against.p < 0.001 ? "less than 0.001" : against.p.toFixed(3)}).` };
+  if (!(score[rank] < other[rank])) return { beatsNaive: "no", sentence: `${score.label} does not beat naive: the naive rule "${name}" forecast as well or better (${words}).` };
+  if (against.p < 0.05 && against.meanDifference < 0) return { beatsNaive: "yes", sentence: `${score.label} beats the naive rule "${name}" (${words}), by more than chance (p ${against.p < 0.001 ? "< 0.001" : `= ${against.p.toFixed(3)}`}).` };
   const reason = Number.isNaN(against.p) ? against.note ?? "no test is available" : `p = ${against.p.toFixed(2)}`;
-  return { beatsNaive: "not shown", sentence: `${score.label} did better than the ${name} rule (${words}), but that it beats naive is not shown: ${reason}.` };
+  return { beatsNaive: "not shown", sentence: `${score.label} did better than the naive rule "${name}" (${words}), but that it beats naive is not shown: ${reason}.` };
 }
 
 function originForecasts(rolled: Rolled, frame: RollingFrame): OriginForecast[] {

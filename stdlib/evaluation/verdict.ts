@@ -30,8 +30,8 @@ function nextSentence(best: RankedModel, next: RankedModel, rank: RankBy, agains
   const second = `next was ${next.label} (${figure(next[rank])})`;
   if (!row) return `The ${second}.`;
   if (Number.isNaN(row.p)) return `The ${second}; no test between them: ${row.note ?? "not available"}.`;
-  return row.p < 0.05 ? `The ${second}, worse by more than chance (p = ${printed(row.p)}).` : `The ${second}; the difference may be chance (p = ${printed(row.p)}).`;
+  return row.p < 0.05 ? `The ${second}, worse by more than chance (p ${printed(row.p)}).` : `The ${second}; the difference may be chance (p ${printed(row.p)}).`;
 }
 
 const figure = (x: number): string => (Number.isNaN(x) ? "not available" : String(+x.toPrecision(3)));
-const printed = (p: number): string => (p < 0.001 ? "less than 0.001" : p.toFixed(p < 0.1 ? 3 : 2));
+const printed = (p: number): string => (p < 0.001 ? "< 0.001" : `= ${p.toFixed(p < 0.1 ? 3 : 2)}`);

@@ -181,6 +181,11 @@ describe("compare of models", () => {
     expect(result.scores[0]).toHaveProperty("mase");
     expect(result.against[0]).toMatchObject({ horizon: expect.anything(), statistic: expect.any(Number), p: expect.any(Number) });
   });
+  test("names the naive rule by its label, whatever words that has, and a small p-value by its bound", async () => {
+    const { result } = await run({ models: { "the model": early, "the value before": rule.naive(crossings) }, origins: 24, horizon: 2 });
+    expect(result.sentence).toMatch(/ the model (beats|did better than) the naive rule "the value before" /);
+    expect(result.sentence).toMatch(/\(p (< 0\.001|= 0\.\d+)\)/);
+  });
   test("says of a rule that is worse than the naive one that it does not beat naive", async () => {
     const { result } = await run({ models: { mean: rule.average(crossings), seasonal: rule.seasonalNaive(crossings, 12) }, origins: 12, horizon: 2 });
     const parts = compare.show(result, show);

@@ -23,6 +23,10 @@ describe("transform", () => {
     expect(text.text).toBe("Steady is crossings after log and difference(1).");
     expect((await draw(chart)).warnings).toEqual([]);
   });
+  it("says of no steps that the series is as it came", async () => {
+    const s = await runCell(transform, { series: crossings, steps: [] }, contextOf({ name: "steady" }));
+    expect(transform.show(s, { name: "steady", width: 700 })[0]).toMatchObject({ text: "Steady takes no step: it is the series as it came." });
+  });
   it("says what aggregating dropped", async () => {
     const context = contextOf({ name: "yearly" });
     const s = await runCell(transform, { series: crossings, steps: [aggregate("year", "sum")] }, context);

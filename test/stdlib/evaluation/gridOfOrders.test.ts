@@ -36,6 +36,8 @@ describe("gridOfOrders", () => {
     expect(grid.models[0]).toBe(edge);
     expect(grid.models.filter((m) => m.setAside === null).reduce((sum, m) => sum + m.weight, 0)).toBeCloseTo(1, 12);
     expect(grid.notes.join(" ")).toContain("cannot rank");
+    // The smallest of all belongs to one set aside: the sentence speaks of the others.
+    expect(grid.sentence).toMatch(new RegExp(`^Of ${grid.models.length - aside.length} models that can be ranked, `));
   });
   it("a list tries just its items, subset lags too", async () => {
     const grid = await gridOfOrders({ series: lake, ar: [1, [1, 3]], ma: [0], rank: "bic" });
