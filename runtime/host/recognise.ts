@@ -5,6 +5,7 @@ import { language } from "../../cells/index.ts";
 import { numericColumns, timeColumns } from "../../cells/load/columns.ts";
 import { readSheet } from "../../cells/load/sheet.ts";
 import { acrossTheYear } from "../../cells/load/wide.ts";
+import { nameFault } from "../text/names.ts";
 import { ask } from "./ask.ts";
 import { loadCell } from "./beginText.ts";
 import type { LoadText, Recognised } from "./beginText.ts";
@@ -74,19 +75,14 @@ async function workingWeek(folder: string, load: LoadText): Promise<number | nul
 
 /** A name for the series: its column's, or the file's where the column says nothing. */
 function identifier(column: string, file: string): string {
-  const taken = new Set([...language.kinds.map((kind) => kind.name), ...language.library.map((entry) => entry.name.split(".")[0]), ...Object.keys(language.constants), "sample", "steady", "tests", "shape", "orders", "p", "q", "model", "leftover", "contest", "ahead"]);
+  const kinds = new Set(language.kinds.map((kind) => kind.name));
+  const taken = new Set([...language.library.map((entry) => entry.name.split(".")[0]), ...Object.keys(language.constants), "sample", "steady", "tests", "shape", "orders", "p", "q", "model", "leftover", "contest", "ahead"]);
   const stem = basename(file, extname(file));
   const general = /^(value|values|y|x|data|v|number|amount|count|column \d+|)$/i.test(column.trim());
   for (const words of general ? [stem, column] : [column, stem]) {
     const [first = "", ...rest] = words.normalize("NFKD").replace(/[\u0300-\u036f]/g, "").split(/[^A-Za-z0-9]+/).filter((part) => part !== "");
     const name = [first.charAt(0).toLowerCase() + first.slice(1), ...rest.map((part) => part.charAt(0).toUpperCase() + part.slice(1))].join("");
-    if (/^[A-Za-z]\w*$/.test(name) && !taken.has(name) && isFree(name)) return name;
+    if (/^[A-Za-z]\w*$/.test(name) && !taken.has(name) && nameFault(name, kinds) === null) return name;
   }
   return "observed";
 }
-
-/** Words that ECMAScript keeps for itself make no names. */
-function isFree(name: string): boolean {
-  return !new Set("break case catch class const continue debugger default delete do else enum export extends false finally for function if import in instanceof new null return super switch this throw true try typeof var void while with let static yield await async of free undefined".split(" ")).has(name);
-}
-
