@@ -4,6 +4,7 @@
 
 import { spawn } from "node:child_process";
 import { SCRIPT_NAMES } from "../engine/isolated.ts";
+import { watchMemory } from "./memoryHeld.ts";
 
 /** Prepares the realm, before the script: takes names away, adds a few helpers. Whatever is made in here belongs to the realm;
  *  of Node's objects only `later` comes in, and no name, no argument and no fault leads to it. */
@@ -78,12 +79,15 @@ export interface ScriptLimits { readonly ms: number; readonly megabytes: number 
 /** What a script may take where nothing else is said. */
 const scriptLimits: ScriptLimits = { ms: 60_000, megabytes: 1024 };
 
+/** What Node itself takes in the script's process, beside the script. */
+const ownMegabytes = 100;
+
 /** @throws Error with the script's own message, or that of a process that was ended */
 export function runScript(source: string, inputs: Readonly<Record<string, unknown>>, signal: AbortSignal, limits: ScriptLimits = scriptLimits): Promise<Readonly<Record<string, unknown>>> {
   const child = spawn(process.execPath, [
     permission, "--disallow-code-generation-from-strings", "--experimental-vm-modules", `--max-old-space-size=${limits.megabytes}`, "--no-warnings", "--input-type=module", "--eval", runner,
   ], { stdio: ["ignore", "ignore", "ignore", "ipc"], serialization: "advanced", env: {} });
-  let timer: NodeJS.Timeout | undefined, overtaken = (): void => undefined;
+  let timer: NodeJS.Timeout | undefined, overtaken = (): void => undefined, unwatch = (): void => undefined;
   const answer = new Promise<Readonly<Record<string, unknown>>>((resolve, reject) => {
     overtaken = () => reject(new Error("the script was ended before it gave an answer"));
     signal.addEventListener("abort", overtaken);
@@ -93,8 +97,10 @@ export function runScript(source: string, inputs: Readonly<Record<string, unknow
       const { exports, message } = said as { exports?: Readonly<Record<string, unknown>>; message?: string };
       if (exports) resolve(exports); else reject(new Error(message ?? "the script gave no answer"));
     });
-    child.once("exit", (_code, by) => reject(new Error(by === "SIGABRT" ? `The script took more than ${limits.megabytes} MB of memory and was ended` : "the script's process ended before it gave an answer")));
+    const tooLarge = `The script took more than ${limits.megabytes} MB of memory and was ended`;
+    if (child.pid !== undefined) unwatch = watchMemory(child.pid, limits.megabytes + ownMegabytes, () => reject(new Error(tooLarge)));
+    child.once("exit", (_code, by) => reject(new Error(by === "SIGABRT" ? tooLarge : "the script's process ended before it gave an answer")));
     child.send({ source, inputs, limitMs: limits.ms }, (error) => { if (error) reject(error); });
   });
-  return answer.finally(() => { clearTimeout(timer); signal.removeEventListener("abort", overtaken); child.kill("SIGKILL"); });
+  return answer.finally(() => { clearTimeout(timer); unwatch(); signal.removeEventListener("abort", overtaken); child.kill("SIGKILL"); });
 }
