@@ -1,5 +1,7 @@
 // A short text that stands for plain data: the same for the same content, wherever it came from.
 
+import { isSeries } from "../series/series.ts";
+
 /** What was computed from the same content before, or what `make` gives, which is then kept. */
 export type Recall = <T>(key: string, make: () => T) => T;
 
@@ -15,14 +17,15 @@ export function contentKey(value: unknown): string {
   if (value instanceof Float64Array) return `#${hashOf(value)}`;
   if (ArrayBuffer.isView(value)) return contentKey(Float64Array.from(value as unknown as ArrayLike<number>));
   if (Array.isArray(value)) return `[${value.map(contentKey).join(",")}]`;
-  // `times` of a series follow from its start, spacing and length.
-  return `{${Object.entries(value).flatMap(([name, inner]) => (name === "times" || inner === undefined ? [] : [`${name}:${contentKey(inner)}`])).join(",")}}`;
+  // The times of a series follow from its start, spacing and length.
+  const implied = isSeries(value) ? "times" : null;
+  return `{${Object.entries(value).flatMap(([name, inner]) => (name === implied || inner === undefined ? [] : [`${/^\w+$/.test(name) ? name : JSON.stringify(name)}:${contentKey(inner)}`])).join(",")}}`;
 }
 
 /** Two hashes of the doubles' bits in one pass, by the multiply-and-xor scheme of Fowler, Noll & Vo with a rotation, so that
  *  high bits reach low ones too. */
 function hashOf(values: Float64Array): string {
-  // A copy where the values do not start at a whole word of their buffer cannot be needed: doubles stand at multiples of 8 bytes.
+  // No copy: doubles stand at multiples of 8 bytes in their buffer, so that words of 4 begin where they do.
   const words = new Uint32Array(values.buffer, values.byteOffset, 2 * values.length);
   let a = 0x811c9dc5, b = 0x9e3779b9;
   for (let i = 0; i < words.length; i++) {

@@ -104,6 +104,14 @@ describe("contentKey", () => {
     expect(contentKey(Float64Array.of(0))).not.toBe(contentKey(Float64Array.of(-0)));
     expect(contentKey("1")).not.toBe(contentKey(1));
   });
+  it("leaves out the times of a series, which its start and spacing give, and nothing else of that name", () => {
+    expect(contentKey(s)).not.toContain(s.times[5]);
+    const other = makeSeries({ ...s, values: s.values.map((value) => value + 1) });
+    expect(contentKey({ regressors: { times: s } })).not.toBe(contentKey({ regressors: { times: other } }));
+  });
+  it("tells names apart that hold the marks between names", () => {
+    expect(contentKey({ "a:1,b": 2 })).not.toBe(contentKey({ a: 1, b: 2 }));
+  });
   it("tells a hundred thousand neighbouring series apart", () => {
     const seen = new Set<string>(), values = new Float64Array(8);
     for (let i = 0; i < 100_000; i++) { values[i % 8] += 1; seen.add(contentKey(values)); }
