@@ -2,15 +2,16 @@
 
 import { gradientInto } from "./gradient.ts";
 import { valueAt } from "./likelihood.ts";
-import { makeWork, type Work } from "./work.ts";
-import { inverseRoots, reflected } from "./roots.ts";
-import { isStable, movedInside, nearestRoot } from "./region.ts";
-import { denseFactor, type Factor, type Shape } from "./shape.ts";
-import { gaussNewtonInto } from "./gaussNewton.ts";
+import { makeWork } from "./work.ts";
+import { reflected } from "./roots.ts";
+import { isStable, movedInside } from "./region.ts";
+import { makeProblem } from "./problem.ts";
+import type { Shape } from "./shape.ts";
+import { suspicious } from "./suspicious.ts";
 import type { Estimate, Evaluate, Search } from "./search.ts";
 import { otherStarts, type Maximise } from "./otherStarts.ts";
 import { hannanRissanen } from "./start.ts";
-import { quasiNewton, type Minimum, type Problem } from "../optimize/quasiNewton.ts";
+import { newtonStep, quasiNewton, type Minimum } from "../optimize/quasiNewton.ts";
 
 /** Maximises the exact likelihood. Cost: a start by regression and usually 4 to 10 passes; more starts where several maxima are likely. */
 export function estimate(search: Search): Estimate {
@@ -35,46 +36,49 @@ export function estimate(search: Search): Estimate {
     const x = held.slice();
     return { x, value: evaluate.value(x), converged: true, passes: 1, hessian: new Float64Array(0), free };
   }
-  let best: Minimum | null = null, passes = 0;
+  let passes = 0;
   const go = (from: Float64Array | Minimum, tolerance: number, rounds?: number): Minimum => {
     const found = quasiNewton(problem, from, tolerance, rounds);
     passes += found.passes;
     return found;
   };
   const run = (x: Float64Array, tolerance = TOLERANCE, rounds?: number) => go(pick(movedInside(shape, withHeld(x, held), held), free), tolerance, rounds);
-  // On a ridge between maxima a search may crawl: it is left when at this pace it would not come as high as the best in four more bursts.
-  const follow = (first: Minimum, rival: number, most: number): Minimum => {
+  // Left when at its pace it would not come as high as the best in four more bursts, or when it is on its way there.
+  const follow = (first: Minimum, rival: Minimum | null, most: number): Minimum => {
     let at = first;
-    for (let rounds = 0; rounds < most; rounds += BURST) {
+    for (let rounds = 0; rounds < most && !(at.converged && at !== first); rounds += BURST) {
+      if (rival !== null && at.value >= rival.value && !promising(at, rival)) break;
       const before = at.value;
       at = go(at, TOLERANCE, BURST);
-      if (at.converged) break;
-      if (at.value > rival && before - at.value < (at.value - rival) / 4) break;
+      if (rival !== null && at.value > rival.value && before - at.value < (at.value - rival.value) / 4) break;
     }
     return at;
   };
-  const keep = (found: Minimum) => { if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found; };
   const stretch = search.near ? null : onStretch(search);
-  keep(run(search.near ?? acrossGaps(search) ?? stretch ?? startOf(shape)));
-  if (best === null) keep(run(new Float64Array(shape.count)));
-  if (search.smaller && best !== null) {
-    // A model is never worse than one that it contains.
-    const x = search.smaller.within(shape), least = (best as Minimum).value;
-    if (x !== null && evaluate.value(x) < least - TOLERANCE) keep(run(x));
+  const alone = search.near !== undefined || search.starts === "one";
+  let first = run(search.near ?? acrossGaps(search) ?? stretch ?? startOf(shape), TOLERANCE, alone ? undefined : PATIENCE);
+  if (!Number.isFinite(first.value)) first = run(new Float64Array(shape.count));
+  // A few steps show whether a start leads anywhere new; only then is it followed to its end, the highest first.
+  const scouts: Minimum[] = [];
+  const scout = (x: Float64Array) => { const found = run(x, 1e-3, SCOUT); if (Number.isFinite(found.value)) scouts.push(found); };
+  if (!Number.isFinite(first.value)) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
+  // A model is never worse than one that it contains.
+  const within = search.smaller?.within(shape) ?? null;
+  if (within !== null && evaluate.value(within) < first.value - TOLERANCE) scout(within);
+  if (!alone) {
+    const at = full(first.x, free, held), doubt = suspicious(shape, at, data.n);
+    const others = search.evaluate ? [startOf(shape), new Float64Array(shape.count)] : otherStarts(search, at, first.value, { ...doubt, plain: doubt.plain || !first.converged, hope: stretch === null }, maximise);
+    for (const x of others) scout(x);
+    if (!first.converged) scouts.push(first);
   }
-  if (!search.near && search.starts !== "one" && best !== null) {
-    const at = full(best, free, held);
-    const others = search.evaluate ? [startOf(shape), new Float64Array(shape.count)] : otherStarts(search, at, (best as Minimum).value, { ...suspicious(shape, at, data.n), hope: stretch === null }, maximise);
-    for (const x of others) {
-      // A few steps show whether a start leads anywhere new; only then is it followed to its end.
-      const first = run(x, 1e-3, SCOUT);
-      const rival = best as Minimum;
-      if (first.value < rival.value + (search.evaluate ? 20 : 3) && apart(first, rival)) keep(follow(first, rival.value, shape.count > 6 ? LATER : MOST));
-    }
+  let best = first.converged || alone ? first : null;
+  for (const s of scouts.sort((a, b) => a.value - b.value)) {
+    if (best !== null && !(s.value < best.value + (search.evaluate ? 20 : 3))) break;
+    const found = follow(s, best, best !== null && shape.count > 6 ? LATER : MOST);
+    if (best === null || found.value < best.value) best = found;
   }
-  if (best === null) return { x: withHeld(new Float64Array(shape.count), held), value: Infinity, converged: false, passes, hessian: new Float64Array(free.length ** 2), free };
-  const found = best as Minimum;
-  return { x: invertible(shape, full(found, free, held), held), value: found.value, converged: found.converged, passes, hessian: found.hessian, free };
+  const { x, value, converged, hessian } = best ?? first;
+  return { x: invertible(shape, full(x, free, held), held), value, converged, passes, hessian, free };
 }
 
 /** With many gaps a pass costs much, so the places are sorted out on the series with its gaps bridged: its best is the start. */
@@ -107,16 +111,25 @@ const LATER = 60;
 /** Most steps of any other, and steps between two looks at its progress. */
 const MOST = 150, BURST = 10;
 
+/** Steps given to the first start before others are looked at. */
+const PATIENCE = 16;
+
 /** Steps given to a start before it is compared with the best so far. */
 const SCOUT = 8;
 
-/** Whether two points are more than a hundredth of a standard error apart, by the search's own curvature. */
-function apart(a: Minimum, b: Minimum): boolean {
-  const k = a.x.length;
-  let sum = 0;
-  for (let i = 0; i < k; i++) for (let j = 0; j < k; j++) sum += (a.x[i] - b.x[i]) * b.hessian[i * k + j] * (a.x[j] - b.x[j]);
-  return !(Math.abs(sum) < 0.01);
+/** Whether a search may yet end higher than another did: not where its curvature promises too little by far, nor where the next
+ *  step leads to where the other ended, by its curvature: closer than would change the log-likelihood by a twentieth. */
+function promising(at: Minimum, rival: Minimum): boolean {
+  const d = newtonStep(at), k = d.length;
+  let decrease = 0, sum = 0;
+  for (let i = 0; i < k; i++) decrease -= d[i] * at.gradient[i] / 2;
+  if (at.value - FAR * decrease > rival.value) return false;
+  for (let i = 0; i < k; i++) for (let j = 0; j < k; j++) sum += (at.x[i] + d[i] - rival.x[i]) * rival.hessian[i * k + j] * (at.x[j] + d[j] - rival.x[j]);
+  return !(Math.abs(sum) < NEAR);
 }
+
+/** A curvature learnt on a ridge may promise several times too little. */
+const FAR = 8, NEAR = 0.1;
 
 /** Positions of the coefficients that are not held. */
 function freeOf(held: Float64Array): Int32Array {
@@ -138,9 +151,9 @@ function pick(x: Float64Array, free: Int32Array): Float64Array {
   return out;
 }
 
-function full(found: Minimum, free: Int32Array, held: Float64Array): Float64Array {
+function full(z: Float64Array, free: Int32Array, held: Float64Array): Float64Array {
   const x = held.slice();
-  for (let i = 0; i < free.length; i++) x[free[i]] = found.x[i];
+  for (let i = 0; i < free.length; i++) x[free[i]] = z[i];
   return x;
 }
 
@@ -152,63 +165,4 @@ function invertible(shape: Shape, x: Float64Array, held: Float64Array): Float64A
     c.set(reflected(c));
   }
   return x;
-}
-
-function makeProblem(search: Search, work: Work, free: Int32Array, evaluate: Evaluate): Problem {
-  const { shape, held } = search;
-  const parts = shape.factors;
-  const x = held.slice(), gradient = new Float64Array(shape.count), views = parts.map(f => x.subarray(f.from, f.from + f.lags.length));
-  const dense = parts.map(f => f.lags.length > 0 && f.lags[f.lags.length - 1] / f.lags[0] === f.lags.length
-    && f.lags.every((_, i) => Number.isNaN(held[f.from + i])));
-  // A moving average held outside the region is the author's wish (the likelihood is then the filter's).
-  const whole = parts.map(f => f.sign < 0 && f.lags.every((_, i) => !Number.isNaN(held[f.from + i])));
-  // Across the circle the likelihood goes on smoothly (it is that of the reflection), and so may the search, a little: as far
-  // as the recursion's growth costs no digits. Turning back at the edge would cost it the curvature it has learnt.
-  const slack = parts.map((f, p) => f.sign < 0 && dense[p] ? Math.min(0.05, 4 * f.lags[0] / search.data.n) : 0);
-  return {
-    size: free.length,
-    value(z) {
-      for (let i = 0; i < free.length; i++) x[free[i]] = z[i];
-      let mended = false;
-      for (let p = 0; p < parts.length; p++) {
-        const f = parts[p], c = views[p];
-        if (whole[p] || isStable(f.lags, c, f.sign, f.sign < 0, slack[p])) continue;
-        // Outside: the likelihood of a moving average is that of its reflection, so go on from there; a process that is not
-        // stationary has none, and the step is shortened.
-        if (f.sign > 0 || !dense[p]) return Infinity;
-        c.set(reflected(c));
-        if (!isStable(f.lags, c, f.sign, true)) return Infinity;
-        mended = true;
-      }
-      if (mended) for (let i = 0; i < free.length; i++) z[i] = x[free[i]];
-      return evaluate.value(x);
-    },
-    gradientInto(g) {
-      evaluate.gradientInto(x, gradient);
-      for (let i = 0; i < free.length; i++) g[i] = gradient[free[i]];
-    },
-    curvatureInto(h) { gaussNewtonInto(h, work, search.data, x, free); },
-  };
-}
-
-/** Several maxima are likely where a factor lies near the edge of the region, or where the two sides nearly cancel: where the
- *  data hardly tell a pair of factors from none (a chi-square of n d^2 / (1 - b^2), d the inverse roots' distance). */
-function suspicious(shape: Shape, x: Float64Array, n: number): { plain: boolean; seasonal: boolean } {
-  const parts = shape.factors;
-  const near = (i: number) => nearestRoot(parts[i], x);
-  const mixed = (i: number) => parts[i].lags.length > 0 && parts[i + 2].lags.length > 0;
-  return {
-    plain: near(2) < 1.07 || (mixed(0) && (near(0) < 1.01 || pairStatistic(parts[0], parts[2], x, n) < 25)),
-    seasonal: near(3) < 1.03 || (mixed(1) && (near(1) < 1.01 || pairStatistic(parts[1], parts[3], x, n) < 25)),
-  };
-}
-
-function pairStatistic(ar: Factor, ma: Factor, x: Float64Array, n: number): number {
-  const a = inverseRoots(denseFactor(ar, x)), b = inverseRoots(denseFactor(ma, x));
-  let least = Infinity;
-  for (let t = 0; t < b.re.length; t++) {
-    const room = Math.max(1e-3, 1 - b.re[t] ** 2 - b.im[t] ** 2);
-    for (let s = 0; s < a.re.length; s++) least = Math.min(least, n * ((a.re[s] - b.re[t]) ** 2 + (a.im[s] - b.im[t]) ** 2) / room);
-  }
-  return least;
 }

@@ -85,6 +85,13 @@ export function quasiNewton(problem: Problem, start: Float64Array | Minimum, tol
 /** Largest change of a variable in one step; the variables here are of the order of one. */
 const LONGEST = 0.5;
 
+/** The step to where the curvature that a search has learnt puts the minimum. */
+export function newtonStep(at: Minimum): Float64Array {
+  const k = at.x.length, d = new Float64Array(k);
+  directionInto(d, Float64Array.from(at.hessian), at.gradient, new Float64Array(k * k), k);
+  return d;
+}
+
 /** d = -h^-1 g, with as little of the identity added to h as makes it positive definite. */
 function directionInto(d: Float64Array, h: Float64Array, g: Float64Array, factor: Float64Array, k: number): void {
   let top = 0;

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { quasiNewton } from "../../../stdlib/optimize/quasiNewton.ts";
+import { newtonStep, quasiNewton } from "../../../stdlib/optimize/quasiNewton.ts";
 import type { Problem } from "../../../stdlib/optimize/quasiNewton.ts";
 
 // One table of problems; each is met whole.
@@ -46,5 +46,15 @@ describe("quasiNewton", () => {
     expect(rest.converged).toBe(true);
     expect([...rest.x]).toEqual([...whole.x]);
     expect(first.passes + rest.passes).toBe(whole.passes);
+  });
+});
+
+describe("newtonStep", () => {
+  it("leads from where a search stopped to the lowest point of a bowl whose curvature it knows", () => {
+    const bowl = problemOf(2, ([a, b]) => (a - 1) ** 2 + (b + 2) ** 2, ([a, b]) => [2 * (a - 1), 2 * (b + 2)], 2);
+    const stopped = quasiNewton(bowl, Float64Array.of(0, 0), 1e-14, 0), step = newtonStep(stopped);
+    expect(stopped.x[0] + step[0]).toBeCloseTo(1, 12);
+    expect(stopped.x[1] + step[1]).toBeCloseTo(-2, 12);
+    expect([...stopped.hessian]).toEqual([2, 0, 0, 2]);
   });
 });
