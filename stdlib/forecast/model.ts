@@ -2,7 +2,8 @@
 
 import type { Fit, Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
-import type { EstimatedSmoothing, SmoothingHold } from "./smoothing/estimateSmoothing.ts";
+import type { EstimatedSmoothing } from "./smoothing/estimateSmoothing.ts";
+import type { SmoothingHold } from "./smoothing/searchSpace.ts";
 
 /** A naive or smoothing rule of comparison, tied to a series, as plain data. Parameters that were estimated stand in `parameters`. */
 export interface Rule {

@@ -3,8 +3,9 @@
 import { valuesOf, type Series } from "../series/series.ts";
 import { defaultSeasonLength } from "../series/every.ts";
 import type { Forecaster, Rule } from "./model.ts";
-import { estimateSmoothing, type EstimatedSmoothing, type SmoothingHold } from "./smoothing/estimateSmoothing.ts";
+import { estimateSmoothing, type EstimatedSmoothing } from "./smoothing/estimateSmoothing.ts";
 import type { SmoothingForm } from "./smoothing/innovations.ts";
+import type { SmoothingHold } from "./smoothing/searchSpace.ts";
 
 export interface SmoothingOptions extends SmoothingHold {
   readonly trend?: "none" | "additive" | "multiplicative";

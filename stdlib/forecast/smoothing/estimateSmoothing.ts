@@ -1,14 +1,12 @@
 // Exponential smoothing with its weights and starting states estimated by maximum likelihood.
 
-import { innovationsFilter, minusTwiceLogLikelihood, type Filtered, type SmoothingForm, type SmoothingState } from "./innovations.ts";
-import { minimise } from "./minimise.ts";
-import { bestStates, openingStates, type States0 } from "./startingStates.ts";
-
-/** Values to hold instead of estimating them; weights of the innovations form. */
-export interface SmoothingHold {
-  readonly alpha?: number; readonly beta?: number; readonly gamma?: number; readonly phi?: number;
-  readonly level0?: number; readonly trend0?: number; readonly seasonal0?: readonly number[];
-}
+import { choleskyInto } from "../../linear/cholesky.ts";
+import { quasiNewton, type Minimum, type Problem } from "../../optimize/quasiNewton.ts";
+import { bestStates } from "./bestStates.ts";
+import { innovationsFilter, type Filtered, type SmoothingForm, type SmoothingState, type States0, type Weights } from "./innovations.ts";
+import { Likelihood } from "./likelihood.ts";
+import { openingStates } from "./openingStates.ts";
+import { SearchSpace, type SmoothingHold } from "./searchSpace.ts";
 
 export interface EstimatedSmoothing {
   readonly form: SmoothingForm;
@@ -23,6 +21,10 @@ export interface EstimatedSmoothing {
 /** Season lengths up to which every starting figure is estimated with the weights; beyond it the season starts from the opening stretch. */
 const longestFreeSeason = 60;
 
+/** The surface often has several maxima, slow and fast ones: a search starts from each of these. */
+const firstWeights: readonly Weights[] = [[0.5, 0.1, 0.1, 0.962], [0.1, 0.2, 0.05, 0.962], [0.5, 0.01, 0.01, 0.975], [0.02, 0.01, 0.01, 0.975], [0.95, 0.01, 0.02, 0.9], [0.2, 0.02, 0.5, 0.85], [0.02, 0.7, 0.01, 0.975], [0.1, 0.003, 0.003, 0.9795], [0.003, 0.1, 0.01, 0.97]]
+  .map(([alpha, ofAlpha, ofRest, phi]) => ({ alpha, beta: ofAlpha * alpha, gamma: ofRest * (1 - alpha), phi }));
+
 /** Maximum likelihood within the usual region: 0 < alpha < 1, 0 < beta < alpha, 0 < gamma < 1 - alpha, 0.8 <= phi <= 0.98.
  *  Starting states of an additive model are concentrated out; those of a multiplicative one are searched with the weights.
  *  @param damped  whether the trend dies away
@@ -36,34 +38,30 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
   // Scale-free, and about 0 where only sums enter: the search sees numbers near 1 whatever the unit and level.
   const total = (f: (v: number) => number): number => y.reduce((sum, v) => sum + (Number.isNaN(v) ? 0 : f(v)), 0);
   const shift = additive && hold.level0 === undefined ? total((v) => v) / observed : 0, unit = total((v) => Math.abs(v - shift)) / observed || 1;
-  const scaled = y.map((v) => (v - shift) / unit), space = new Space(form, m, damped, hold, unit);
-  const opening = near?.level !== undefined && near.seasonal !== undefined ? nearStates(near as States0, form, shift, unit) : openingStates(scaled, form);
+  const scaled = y.map((v) => (v - shift) / unit), space = new SearchSpace(form, damped, hold, unit), likelihood = new Likelihood(scaled, form);
   const concentrated = additive && !space.statesHeld && m <= longestFreeSeason;
-  const statesOf = (weights: Weights, x: Float64Array): States0 => concentrated ? bestStates(scaled, form, weights) : space.states(x, opening);
-  const objective = (x: Float64Array): number => {
-    const weights = space.weights(x), states = statesOf(weights, x);
-    return minusTwiceLogLikelihood(scaled, form, { ...weights, ...states });
+  const opening = near?.level !== undefined && near.seasonal !== undefined ? nearStates(near as States0, form, shift, unit) : openingStates(scaled, form);
+  const stateAt = (x: Float64Array): SmoothingState => {
+    const weights = space.weights(x);
+    return { ...weights, ...(concentrated ? bestStates(likelihood, scaled, form, weights) : space.states(x, opening)) };
   };
-  let best: { at: Float64Array; value: number; converged: boolean } | null = null;
-  for (const first of space.starts(near)) {
-    const start = concentrated ? first : Float64Array.from([...first, ...space.stateStart()]);
-    let found = minimise(objective, start);
-    // Where a weight has run to the end of its range the curvature learnt on the way misleads: forget it and go on.
-    for (let again = 0; again < 3; again++) {
-      const further = minimise(objective, found.at);
-      const gained = found.value - further.value;
-      found = further;
-      if (!(gained > 1e-5)) break;
-    }
+  const size = space.freeWeights + (concentrated ? 0 : space.searchedStates), search = new Search(size, space, likelihood, stateAt);
+  let best: Minimum | null = null;
+  for (const weights of near?.alpha === undefined ? firstWeights : [nearWeights(near)]) {
+    const start = new Float64Array(size);
+    start.set(space.placed(weights));
+    const found = quasiNewton(search, start, 1e-9, 400);
     if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found;
   }
   if (best === null) throw new RangeError("smoothing: no weights were found with which every one-step forecast stays positive; try an additive season, or a log before it");
-  const weights = space.weights(best.at), states = statesOf(weights, best.at);
-  const start: SmoothingState = { ...weights, level: states.level * unit + shift, trend: form.trend === "multiplicative" ? states.trend : states.trend * unit,
-    seasonal: form.season === "multiplicative" ? states.seasonal : states.seasonal.map((s) => s * unit) };
+  const found = stateAt(best.x);
+  const start: SmoothingState = { ...found, level: found.level * unit + shift, trend: form.trend === "multiplicative" ? found.trend : found.trend * unit,
+    seasonal: form.season === "multiplicative" ? found.seasonal : found.seasonal.map((s) => s * unit) };
   const freeStates = space.statesHeld ? 0 : 1 + (form.trend === "none" ? 0 : 1) + Math.max(0, m - 1);
   return { form, start, filtered: innovationsFilter(y, form, start), k: space.freeWeights + freeStates + 1, converged: best.converged };
 }
+
+function nearWeights({ alpha = 0.1, beta = 0.1 * alpha, gamma = 0.1 * (1 - alpha), phi = 0.95 }: SmoothingHold): Weights { return { alpha, beta, gamma, phi }; }
 
 function nearStates({ level, trend, seasonal }: States0, form: SmoothingForm, shift: number, unit: number): States0 {
   return { level: (level - shift) / unit, trend: form.trend === "multiplicative" ? trend : trend / unit, seasonal: form.season === "multiplicative" ? seasonal : seasonal.map((s) => s / unit) };
@@ -78,73 +76,50 @@ function checkData(y: Float64Array, form: SmoothingForm, m: number, observed: nu
   if (bad >= 0) throw new RangeError(`smoothing: value ${bad + 1} is ${y[bad]}; a multiplicative trend, season or error needs positive values. Use the additive form`);
 }
 
-type Weights = Pick<SmoothingState, "alpha" | "beta" | "gamma" | "phi">;
+/** Minus twice the log-likelihood as a function of what is searched. Where starting states follow from the weights as the best ones,
+ *  the value does not change with them to first order: its slope is that by the weights alone. */
+class Search implements Problem {
+  readonly size: number;
+  readonly #space: SearchSpace;
+  readonly #likelihood: Likelihood;
+  readonly #stateAt: (x: Float64Array) => SmoothingState;
+  readonly #x: Float64Array;
+  #state: SmoothingState | null = null;
 
-/** The place of each searched number: free weights on a logistic scale first, then (for multiplicative models) the states. */
-class Space {
-  readonly #form: SmoothingForm;
-  readonly #m: number;
-  readonly #hold: SmoothingHold;
-  readonly #unit: number;
-  readonly #free: ("alpha" | "beta" | "gamma" | "phi")[] = [];
-  readonly #damped: boolean;
-
-  constructor(form: SmoothingForm, m: number, damped: boolean, hold: SmoothingHold, unit: number) {
-    this.#form = form; this.#m = m; this.#hold = hold; this.#unit = unit; this.#damped = damped && form.trend !== "none";
-    if (hold.alpha === undefined) this.#free.push("alpha");
-    if (form.trend !== "none" && hold.beta === undefined) this.#free.push("beta");
-    if (m > 0 && hold.gamma === undefined) this.#free.push("gamma");
-    if (this.#damped && hold.phi === undefined) this.#free.push("phi");
+  constructor(size: number, space: SearchSpace, likelihood: Likelihood, stateAt: (x: Float64Array) => SmoothingState) {
+    this.size = size; this.#space = space; this.#likelihood = likelihood; this.#stateAt = stateAt; this.#x = new Float64Array(size);
   }
 
-  get freeWeights(): number { return this.#free.length; }
-  get statesHeld(): boolean { return this.#hold.level0 !== undefined; }
-
-  weights(x: Float64Array): Weights {
-    const raw = (name: "alpha" | "beta" | "gamma" | "phi"): number => 1 / (1 + Math.exp(-x[this.#free.indexOf(name)]));
-    const has = (name: "alpha" | "beta" | "gamma" | "phi"): boolean => this.#free.includes(name);
-    const alpha = has("alpha") ? 1e-4 + 0.9998 * raw("alpha") : (this.#hold.alpha ?? 0);
-    const beta = has("beta") ? alpha * (1e-4 + 0.9998 * raw("beta")) : this.#form.trend === "none" ? 0 : (this.#hold.beta ?? 0);
-    const gamma = has("gamma") ? (1 - alpha) * (1e-4 + 0.9998 * raw("gamma")) : this.#m === 0 ? 0 : (this.#hold.gamma ?? 0);
-    const phi = has("phi") ? 0.8 + 0.18 * raw("phi") : this.#damped ? (this.#hold.phi ?? 1) : 1;
-    return { alpha, beta, gamma, phi };
+  value(x: Float64Array): number {
+    this.#x.set(x);
+    this.#state = this.#stateAt(x);
+    return this.#likelihood.value(this.#state);
   }
 
-  /** Two starts, since the surface often has a slow and a fast maximum; one where a near one is known. */
-  starts(near?: SmoothingHold): Float64Array[] {
-    const logit = (p: number): number => { const q = Math.min(0.9995, Math.max(0.0005, p)); return Math.log(q / (1 - q)); };
-    if (near?.alpha !== undefined) {
-      const { alpha, beta = 0.1 * alpha, gamma = 0.1 * (1 - alpha), phi = 0.95 } = near;
-      const at = { alpha: logit(alpha), beta: logit(beta / alpha), gamma: logit(gamma / (1 - alpha)), phi: logit((phi - 0.8) / 0.18) };
-      return [Float64Array.from(this.#free, (name) => at[name])];
+  gradientInto(g: Float64Array): void {
+    if (this.#state !== null) this.#space.slopeInto(g, this.#x, this.#state, this.#likelihood.slope());
+  }
+
+  /** Differences of slopes; where they are not positive definite, their diagonal without its signs. */
+  curvatureInto(h: Float64Array): void {
+    const size = this.size, at = Float64Array.from(this.#x), here = new Float64Array(size), there = new Float64Array(size);
+    this.gradientInto(here);
+    for (let i = 0; i < size; i++) {
+      const probe = Float64Array.from(at);
+      let d = 1e-5;
+      for (const side of [d, -d]) {
+        d = side;
+        probe[i] = at[i] + d;
+        if (this.value(probe) < Infinity) break;
+      }
+      this.gradientInto(there);
+      for (let j = 0; j < size; j++) h[i * size + j] = (there[j] - here[j]) / d;
     }
-    return [{ alpha: logit(0.5), beta: logit(0.1), gamma: logit(0.1), phi: logit(0.9) }, { alpha: logit(0.1), beta: logit(0.2), gamma: logit(0.05), phi: logit(0.9) }]
-      .map((at) => Float64Array.from(this.#free, (name) => at[name]));
-  }
-
-  /** Searched states as departures from the opening ones, in shares of a season's or level's size. */
-  stateStart(): Float64Array {
-    if (this.statesHeld) return new Float64Array(0);
-    const seasonal = this.#m > 0 && this.#m <= 24 ? this.#m - 1 : 0;
-    return new Float64Array(1 + (this.#form.trend === "none" ? 0 : 1) + seasonal);
-  }
-
-  states(x: Float64Array, opening: States0): States0 {
-    if (this.statesHeld) return this.#heldStates();
-    const at = this.#free.length, trended = this.#form.trend !== "none", product = this.#form.season === "multiplicative";
-    const level = opening.level * Math.exp(x[at] * 0.1);
-    const trend = !trended ? 0 : this.#form.trend === "multiplicative" ? opening.trend * Math.exp(x[at + 1] * 0.01) : opening.trend + 0.01 * x[at + 1];
-    const seasonal = Float64Array.from(opening.seasonal), first = at + (trended ? 2 : 1);
-    if (x.length > first) {
-      for (let j = 0; j < this.#m - 1; j++) seasonal[j] = product ? seasonal[j] * Math.exp(x[first + j] * 0.1) : seasonal[j] + 0.1 * x[first + j];
-      const sum = seasonal.reduce((a, b) => a + b, 0);
-      for (let j = 0; j < this.#m; j++) seasonal[j] = product ? (seasonal[j] * this.#m) / sum : seasonal[j] - sum / this.#m;
-    }
-    return { level, trend, seasonal };
-  }
-
-  #heldStates(): States0 {
-    const { level0 = 0, trend0, seasonal0 = [] } = this.#hold, { trend, season } = this.#form, unit = this.#unit;
-    return { level: level0 / unit, trend: trend === "multiplicative" ? (trend0 ?? 1) : (trend0 ?? 0) / unit, seasonal: Float64Array.from(seasonal0, (s) => (season === "multiplicative" ? s : s / unit)) };
+    for (let i = 0; i < size; i++) for (let j = 0; j < i; j++) h[i * size + j] = h[j * size + i] = (h[i * size + j] + h[j * size + i]) / 2;
+    const factor = Float64Array.from(h);
+    if (h.every(Number.isFinite) && choleskyInto(factor, size) < 0) return;
+    const diagonal = Float64Array.from({ length: size }, (_, i) => Math.abs(h[i * size + i])), top = Math.max(...diagonal.filter(Number.isFinite), 1e-6);
+    h.fill(0);
+    for (let i = 0; i < size; i++) h[i * size + i] = Number.isFinite(diagonal[i]) ? Math.max(diagonal[i], 1e-6 * top) : top;
   }
 }

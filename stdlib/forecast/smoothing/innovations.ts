@@ -19,6 +19,10 @@ export interface SmoothingState {
   readonly seasonal: Float64Array;
 }
 
+export type Weights = Pick<SmoothingState, "alpha" | "beta" | "gamma" | "phi">;
+/** The states before the first value. */
+export type States0 = Pick<SmoothingState, "level" | "trend" | "seasonal">;
+
 export interface Filtered {
   /** One-step forecasts and errors (relative ones where errors multiply; 0 where the value is missing). */
   readonly fitted: Float64Array; readonly errors: Float64Array;
@@ -51,40 +55,6 @@ export function innovationsFilter(y: ArrayLike<number>, form: SmoothingForm, sta
   const sigma2 = sum / count;
   const logLikelihood = valid && Number.isFinite(sigma2) ? (-count / 2) * (Math.log(2 * Math.PI * sigma2) + 1) - logs : -Infinity;
   return { fitted, errors, count, sigma2, logLikelihood, after: states.now() };
-}
-
-/** Minus twice the log-likelihood that `innovationsFilter` gives, without keeping anything: what a search calls thousands of times.
- *  Infinity where the filter's would be -Infinity. */
-export function minusTwiceLogLikelihood(y: Float64Array, form: SmoothingForm, start: SmoothingState): number {
-  const { alpha, beta, gamma, phi } = start, n = y.length, m = start.seasonal.length;
-  const byError = form.error === "multiplicative", byTrend = form.trend === "multiplicative", bySeason = form.season === "multiplicative", trended = form.trend !== "none";
-  const seasonal = Float64Array.from(start.seasonal);
-  let level = start.level, trend = start.trend, at = 0, sum = 0, logs = 0, product = 1, count = 0;
-  for (let t = 0; t < n; t++) {
-    const damped = !trended ? 0 : byTrend ? (phi === 1 ? trend : trend ** phi) : phi * trend;
-    const q = byTrend ? level * damped : level + damped, s = m > 0 ? seasonal[at] : 0;
-    const f = m === 0 ? q : bySeason ? q * s : q + s;
-    let absolute = 0;
-    if (y[t] === y[t]) { // not missing
-      absolute = y[t] - f;
-      count++;
-      if (byError) {
-        if (!(f > 0)) return Infinity;
-        sum += (absolute / f) ** 2;
-        // Logs of products: one logarithm for many forecasts, before the product leaves the range of doubles.
-        product *= f;
-        if (product > 1e250 || product < 1e-250) { logs += Math.log(product); product = 1; }
-      } else sum += absolute * absolute;
-    }
-    const ofLevel = bySeason ? absolute / s : absolute, before = level;
-    level = q + alpha * ofLevel;
-    if (trended) trend = byTrend ? damped + (beta * ofLevel) / before : damped + beta * ofLevel;
-    if (byTrend && !(trend > 0 && level > 0)) return Infinity;
-    if (m > 0) { seasonal[at] = s + gamma * (bySeason ? absolute / q : absolute); if (++at === m) at = 0; }
-  }
-  // A perfect fit (a constant series) has no largest likelihood: it is taken as one with errors too small to matter.
-  const value = count * (Math.log((2 * Math.PI * Math.max(sum, 1e-280)) / count) + 1) + 2 * (logs + Math.log(product));
-  return Number.isFinite(value) ? value : Infinity;
 }
 
 /** A path of the model from its states on, driven by given errors (0 = the point forecasts of an additive model,
