@@ -51,11 +51,13 @@ export function importIsolated(source: string, inputs: Readonly<Record<string, u
   const worker = new Worker(address);
   const end = (): void => { worker.terminate(); URL.revokeObjectURL(address); };
   return new Promise<Readonly<Record<string, unknown>>>((resolve, reject) => {
-    signal.addEventListener("abort", () => reject(new Overtaken("overtaken by newer work")), { once: true });
+    const overtaken = (): void => reject(new Overtaken("overtaken by newer work"));
+    if (signal.aborted) { overtaken(); return; }
+    signal.addEventListener("abort", overtaken, { once: true });
     worker.addEventListener("error", (event) => { event.preventDefault(); reject(new Error(event.message || "The script could not be started")); });
-    worker.addEventListener("message", (event: MessageEvent<{ readonly exports?: Readonly<Record<string, unknown>>; readonly fault?: string }>) => {
-      if (event.data.exports === undefined) reject(new Error(event.data.fault ?? "The script gave no answer"));
-      else resolve(event.data.exports);
+    worker.addEventListener("message", ({ data }: MessageEvent<{ readonly exports?: Readonly<Record<string, unknown>>; readonly fault?: string } | null | undefined>) => {
+      if (data?.exports === undefined) reject(new Error(data?.fault ?? "The script gave no answer"));
+      else resolve(data.exports);
     });
     try {
       worker.postMessage({ source, inputs });
