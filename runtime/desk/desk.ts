@@ -17,12 +17,17 @@ import { pageEdits } from "./pageEdits.ts";
 import { pageFrame } from "./pageFrame.ts";
 import { Problems } from "./problems.ts";
 import { saveFile } from "./saveFile.ts";
+import { ScriptWatch } from "./scriptWatch.ts";
 import { ownTab, openTabs } from "./tabs.ts";
 
 /** After this pause in typing the page gets the text; and at the latest after `mostMs` of steady typing. */
 const pauseMs = 70, mostMs = 350;
 /** The same for the draft, which the browser writes while the author waits. */
 const draftPauseMs = 200, draftMostMs = 1000;
+/** How often a page whose scripts are at work is asked whether it lives. */
+const beatMs = 1000;
+
+const scriptsWait = "This script waits: the page ended while scripts were at work. The notice above the text runs it; if that was closed, open the notebook again.";
 
 async function start(): Promise<void> {
   const key = new URL(location.href).searchParams.get("key") ?? "";
@@ -61,6 +66,16 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
     element("showPage").setAttribute("aria-pressed", String(shown !== "text"));
   });
   const theme = appearance(element("theme"), localStorage, (chosen) => { if (ready) page.post({ to: "theme", theme: chosen }); });
+  const scripts = new ScriptWatch({
+    storage: localStorage, notebook: opened.path, tab, post: (message) => page.post(message), now: () => performance.now(),
+    silent: (silent) => { if (silent) bar.show("silent", "The page no longer answers while a script is at work; it may have taken all memory. If opening it again does not help, close this tab and open the notebook anew.", [{ label: "Open the page again, scripts waiting", act: () => { scripts.hold(); openPage(); } }]); else bar.hide("silent"); },
+  });
+  const openPage = (): void => {
+    ready = false;
+    if (scripts.held) bar.show("scripts", "The page ended while scripts were at work, so they wait now. Change them first if one takes too much memory.", [{ label: "Run the scripts", act: () => { scripts.run(); allowScripts(); } }]);
+    frame.src = "/frame";
+  };
+  const allowScripts = (): void => page.post({ to: "allowCode", allow: !scripts.held, reason: scriptsWait });
   const edits = pageEdits(catalogue, editor, (text) => { said.textContent = text; });
 
   const postText = (): void => {
@@ -80,7 +95,8 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
       case "goToSource": view.show("text"); editor.goTo(message.from, message.to, message.focus); return;
       case "keep": edits.keep(message.name, message.value); later.now(); return;
       case "accept": if (message.version === version) { later.now(); edits.accept(message.numbers); later.now(); } return;
-      case "outline": case "states": problems.hear(message); underlineLater(); return;
+      case "outline": case "states": problems.hear(message); underlineLater(); scripts.hear(message); return;
+      case "alive": scripts.hear(message); return;
       case "saveFile": saveFile(message); return;
       case "openLink": if (/^(https?|mailto):/i.test(message.href)) window.open(message.href, "_blank", "noopener,noreferrer"); return;
       case "key": keys.press(message); return;
@@ -88,8 +104,9 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
   }
 
   function greet(): void {
-    const first: readonly ToPage[] = [{ to: "theme", theme: theme.theme() }, { to: "canEdit", canEdit: true }, { to: "allowCode", allow: true }];
+    const first: readonly ToPage[] = [{ to: "theme", theme: theme.theme() }, { to: "canEdit", canEdit: true }];
     for (const message of first) page.post(message);
+    allowScripts();
     postText();
   }
 
@@ -142,7 +159,7 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
     const next = list.find((problem) => problem.from > editor.cursor()) ?? list[0];
     if (next) { view.show("text"); editor.goTo(next.from, next.to, true); }
   });
-  window.addEventListener("pagehide", () => keeper.changed());
+  window.addEventListener("pagehide", () => { keeper.changed(); scripts.leave(); });
   window.addEventListener("beforeunload", (event) => { later.now(); if (keeper.dirty) event.preventDefault(); });
 
   files.follow(
@@ -160,7 +177,9 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
   const draft = kept.find((other) => other !== tab && open.has(other));
   if (draft) await keeper.restore(draft);
   later.now();
-  frame.src = "/frame";
+  scripts.start((other) => open.has(other));
+  setInterval(() => scripts.beat(), beatMs);
+  openPage();
 }
 
 /** Says when the server is lost, and catches up with the files when it is back. */

@@ -13,6 +13,8 @@ import { labelOf } from "./state.ts";
 import type { EngineState, Entry } from "./state.ts";
 import { createTimeLeft } from "./timeLeft.ts";
 
+export const codeNeedsLeave = "Code is not allowed to run here: `script` cells need `--allow-code`";
+
 export interface Contexts {
   /** For a cell's own run: what it says of itself is kept in its entry. */
   full(entry: Entry, cell: Definition, outcomes: ReadonlyMap<string, Outcome>, signal: AbortSignal): RunContext;
@@ -33,7 +35,7 @@ export function createContexts(state: EngineState, host: EngineHost, pace: Pace,
     note: () => undefined,
     importCode: (code, inputs) => {
       const { importCode } = host;
-      if (importCode === undefined || !state.allowCode) return Promise.reject(new Error("Code is not allowed to run here: `script` cells need `--allow-code`"));
+      if (importCode === undefined || state.codeRefused !== null) return Promise.reject(new Error(state.codeRefused ?? codeNeedsLeave));
       return importCode.call(host, code, inputs, signal);
     },
     recompute: () => Promise.reject(new Error("A recomputation off to the side cannot start another")),

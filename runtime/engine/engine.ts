@@ -3,7 +3,7 @@
 import type { Language } from "../../cells/kind.ts";
 import type { Notebook } from "../text/notebook.ts";
 import { parse } from "../text/parse.ts";
-import { createContexts } from "./contexts.ts";
+import { codeNeedsLeave, createContexts } from "./contexts.ts";
 import type { Contexts } from "./contexts.ts";
 import { controlReports, movedSettings, refusedSettings } from "./controls.ts";
 import type { ControlReport } from "./controls.ts";
@@ -47,7 +47,8 @@ export interface Engine {
   /** A file has changed: what read it reads it again. */
   fileChanged(file: string): void;
   setWidth(width: number): void;
-  setAllowCode(allow: boolean): void;
+  /** @param reason  what `script` cells say where they may not run */
+  setAllowCode(allow: boolean, reason?: string): void;
   /** Ends a cell's work early. One that keeps what it has done gives that, marked as cut short; one that does not, or that is
    *  told a second time, is broken off and has failed until something that it reads changes. */
   stop(id: string): void;
@@ -102,7 +103,7 @@ class NotebookEngine implements Engine {
   constructor(language: Language, host: EngineHost, options: EngineOptions) {
     this.#host = host;
     this.#state = {
-      language, library: libraryScope(language), draw: options.draw ?? true, width: options.width ?? 720, allowCode: options.allowCode ?? true,
+      language, library: libraryScope(language), draw: options.draw ?? true, width: options.width ?? 720, codeRefused: options.allowCode ?? true ? null : codeNeedsLeave,
       notebook: null, plan: null, cells: new Map(), numbers: new Map(), entries: new Map(), settings: new Map(), dropped: new Map(),
     };
     this.#contexts = createContexts(this.#state, host, this.#pace, (id) => { this.#dirty.add(id); this.#scheduleFlush(); });
@@ -155,9 +156,10 @@ class NotebookEngine implements Engine {
     this.#scheduleFlush();
   }
 
-  setAllowCode(allow: boolean): void {
-    if (allow === this.#state.allowCode) return;
-    this.#state.allowCode = allow;
+  setAllowCode(allow: boolean, reason = codeNeedsLeave): void {
+    const refused = allow ? null : reason;
+    if (refused === this.#state.codeRefused) return;
+    this.#state.codeRefused = refused;
     this.#rerun([...this.#state.cells.values()].filter((cell) => cell.definition?.kind.body === "code").map((cell) => cell.id));
   }
 

@@ -18,7 +18,8 @@ export interface EngineState {
   /** Whether descriptions of what cells show are made. */
   readonly draw: boolean;
   width: number;
-  allowCode: boolean;
+  /** Why code may not run; null where it may. */
+  codeRefused: string | null;
   notebook: ParsedNotebook | null;
   plan: Plan | null;
   cells: ReadonlyMap<string, PlannedCell>;

@@ -32,7 +32,7 @@ function receive(message: ToEngine, engine: Engine, files: Files, scope: WorkerS
     case "unset": return engine.unset(message.name);
     case "file": if (files.arrived(message.file, message.bytes, message.reason)) engine.fileChanged(message.file); return;
     case "width": return engine.setWidth(message.width);
-    case "allowCode": return engine.setAllowCode(message.allow);
+    case "allowCode": return engine.setAllowCode(message.allow, message.reason);
     case "hold": return engine.hold(message.cell);
     case "stop": return engine.stop(message.cell);
     case "goOn": return engine.goOn(message.cell);

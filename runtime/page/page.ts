@@ -50,7 +50,7 @@ export function startPage({ root, workerSource, worker, parent }: PageOptions): 
   /** Cells that the reader stopped, with their source then: one that was edited since may run again. */
   const held = new Map<string, string>();
   let text: Extract<ToPage, { to: "text" }> | null = null;
-  let allow: boolean | null = null;
+  let allow: Extract<ToPage, { to: "allowCode" }> | null = null;
 
   const announce = (words: string): void => { voice.textContent = words; };
   const charts = chartsOf(announce);
@@ -107,7 +107,7 @@ export function startPage({ root, workerSource, worker, parent }: PageOptions): 
 
   function sayAllAgain(): void {
     ui.broken = null; dog.fresh();
-    if (allow !== null) engine.send({ to: "allowCode", allow });
+    if (allow !== null) engine.send(allow);
     engine.send({ to: "width", width: figureWidth(article) });
     for (const [cell, source] of held) if (text?.text.includes(source)) engine.send({ to: "hold", cell }); else held.delete(cell);
     for (const message of settings.again()) engine.send(message);
@@ -118,7 +118,8 @@ export function startPage({ root, workerSource, worker, parent }: PageOptions): 
     switch (message.to) {
       case "text": text = message; root.dataset.drawn = "no"; engine.send({ to: "text", version: message.version, text: message.text }); break;
       case "file": { const file: Extract<ToEngine, { to: "file" }> = { to: "file", file: message.file, bytes: message.bytes, ...(message.reason === undefined ? {} : { reason: message.reason }) }; files.set(message.file, file); engine.send(file); break; }
-      case "allowCode": allow = message.allow; engine.send({ to: "allowCode", allow }); break;
+      case "allowCode": allow = message; engine.send(message); break;
+      case "alive": post({ page: "alive" }); break;
       case "set": settings.set(message.name, message.value); break;
       case "unset": settings.unset(message.name); break;
       case "theme": if (message.theme === "auto") delete document.documentElement.dataset.theme; else document.documentElement.dataset.theme = message.theme; break;

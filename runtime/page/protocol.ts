@@ -12,7 +12,8 @@ export type ToPage =
   | { readonly to: "text"; readonly version: number; readonly text: string }
   /** A file that the page asked for, or a newer one; null: not there, with the reason. */
   | { readonly to: "file"; readonly file: string; readonly bytes: Uint8Array | null; readonly reason?: string }
-  | { readonly to: "allowCode"; readonly allow: boolean }
+  /** Whether `script` cells may run, and what they say where they may not. */
+  | { readonly to: "allowCode"; readonly allow: boolean; readonly reason?: string }
   /** A setting, as if the reader had moved the control. */
   | { readonly to: "set"; readonly name: string; readonly value: unknown }
   | { readonly to: "unset"; readonly name: string }
@@ -23,6 +24,8 @@ export type ToPage =
   | { readonly to: "canEdit"; readonly canEdit: boolean }
   /** Send the drawn page as HTML from now on, after each time that all has settled: an exported file prints it. */
   | { readonly to: "sendStills" }
+  /** Asks for a sign of life. */
+  | { readonly to: "alive" }
   /** Start the engine anew (after `script` cells were allowed, say). */
   | { readonly to: "restart" };
 
@@ -38,6 +41,8 @@ export interface CellNote {
 export type FromPage =
   /** Ready for messages; send the text now. */
   | { readonly page: "ready" }
+  /** The answer to that question. */
+  | { readonly page: "alive" }
   | { readonly page: "needFile"; readonly file: string }
   /** Show this place of the text; `focus`: the reader asked for it, so the editor may take the focus. */
   | { readonly page: "goToSource"; readonly from: number; readonly to: number; readonly focus: boolean }

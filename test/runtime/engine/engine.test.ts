@@ -349,6 +349,16 @@ describe("scripts", () => {
     expect(at("v").state).toBe("blocked");
   });
 
+  test("wait in the words of whoever holds them, and run when they may", async () => {
+    const { engine, cell: at } = await open(cell("script: s", "export const a = 1;") + cell("values: v", "x: a"), { code: true });
+    engine.setAllowCode(false, "This script waits.");
+    await engine.settle();
+    expect(at("s")).toMatchObject({ state: "failed", message: "This script waits." });
+    engine.setAllowCode(true);
+    await engine.settle();
+    expect(at("v")).toMatchObject({ state: "current", fields: [{ expression: "v.x", value: 5 }] });
+  });
+
   test("get the values of the cells they read; their exports are names", async () => {
     const { cell: at } = await open(cell("double: b", "of: 1") + cell("script: s", "const q = b.twice; export const a = q + Math.PI;") + cell("values: v", "x: a + 1", "y: s.a"), { code: true });
     expect(at("v").fields).toEqual([{ expression: "v.x", value: 6 }, { expression: "v.y", value: 5 }]);
