@@ -1,6 +1,5 @@
 // Estimation of an ARMA-type model: what an analyst asks for, and what comes back.
 
-import type { Series } from "../series/series.ts";
 import { conditionalEstimate } from "./conditional.ts";
 import { autoregression } from "./autoregression.ts";
 import { estimate } from "./estimate.ts";
@@ -14,7 +13,6 @@ import { gradientInto } from "./gradient.ts";
 import { valueAt } from "./likelihood.ts";
 import { makeWork, type Work } from "./work.ts";
 import type { Fit, FitOptions, Note } from "./model.ts";
-import { modelName } from "./modelName.ts";
 import { numbersOf, parameterCount, type Numbers } from "./numbers.ts";
 import { prepare, type Prepared } from "./prepare.ts";
 import { isStable } from "./region.ts";
@@ -152,5 +150,3 @@ function coefficientName(p: Prepared, at: number): string {
   const which = parts.findIndex(f => at < f.from + f.lags.length);
   return `${words[which]} lag ${parts[which].lags[at - parts[which].from]}`;
 }
-
-export { modelName, type Series };

@@ -25,12 +25,12 @@ export function otherStarts(search: Search, found: Float64Array, value: number, 
   const [ar, sar, ma, sma] = shape.factors;
   const free = !held.some(v => !Number.isNaN(v)) && !search.evaluate;
   const full = (lags: Int32Array) => lags.every((l, i) => l === i + 1);
+  const mixed = ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags);
+  const orders: readonly (1 | 2)[] = ar.lags.length > 1 && ma.lags.length > 1 ? [1, 2] : [1];
   if (!where.plain) {
-    if (!(where.hope && ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags))) { /* nothing to doubt there */ }
-    else for (const order of ar.lags.length > 1 && ma.lags.length > 1 ? [1, 2] as const : [1] as const) out.push(...pairs(search, order, shape => maximise(shape, 1), value + HOPE));
-  } else if (ar.lags.length > 0 && ma.lags.length > 0 && free && full(ar.lags) && full(ma.lags)) {
-    out.push(...pairs(search, 1, maximise));
-    if (ar.lags.length > 1 && ma.lags.length > 1) out.push(...pairs(search, 2, maximise));
+    if (where.hope && mixed) for (const order of orders) out.push(...pairs(search, order, shape => maximise(shape, 1), value + HOPE));
+  } else if (mixed) {
+    for (const order of orders) out.push(...pairs(search, order, maximise));
     // A small model's smaller one may itself sit on the wrong maximum: two fixed places besides.
     if (shape.count <= 3) for (const c of [0.9, -0.9]) { const x = new Float64Array(shape.count); x[ar.from] = c; x[ma.from] = -0.7 * c; out.push(x); }
   } else if (ma.lags.length > 1 && free && full(ma.lags)) {

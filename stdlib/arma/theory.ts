@@ -1,6 +1,6 @@
 // What a model implies: weights, correlations, spectrum, memory.
 
-import { coefficientsOf, expandedPolynomials, type ArmaModel } from "./coefficients.ts";
+import { expandedPolynomials, type ArmaModel } from "./coefficients.ts";
 import type { Fit } from "./model.ts";
 import { differencePolynomial, undifferenced } from "./prepare.ts";
 import { makePresample, presampleInto } from "./presample.ts";
@@ -137,5 +137,3 @@ export function modelRoots(model: ArmaModel): Fit["roots"] {
   const { phi, theta } = expandedPolynomials(model);
   return { ar: roots(phi.map(v => -v)), ma: roots(theta) };
 }
-
-export { coefficientsOf };
