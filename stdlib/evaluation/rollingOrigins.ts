@@ -95,7 +95,7 @@ export async function rollingOrigins(models: readonly Labelled[] | readonly Fore
 
 /** Ranks, tests and words from the forecasts of each model (made here, or elsewhere in parts).
  *  @param rolled  of the models in order, then of the naive rules that stand beside them */
-export function summarise(given: readonly Labelled[], rolled: readonly Rolled[], frame: RollingFrame, options: CompareOptions & { readonly length: number }, done: number, total: number): Evaluation {
+function summarise(given: readonly Labelled[], rolled: readonly Rolled[], frame: RollingFrame, options: CompareOptions & { readonly length: number }, done: number, total: number): Evaluation {
   const { rank = "mase", loss = "absolute", length } = options, { horizon } = frame;
   // Stopped early, models are compared on the origins that all of them have finished.
   const common = Math.min(...rolled.map((r) => r.done)), even = rolled.map((r) => ({ ...r, done: common }));

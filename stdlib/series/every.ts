@@ -10,7 +10,7 @@ const words: Readonly<Record<string, string>> = {
 };
 
 /** Names that may stand for a spacing. */
-export const everyWords: readonly string[] = Object.keys(words);
+const everyWords: readonly string[] = Object.keys(words);
 
 /** Reads a spacing: a word ("month") or an ISO 8601 duration of one part ("P1M", "P2W", "PT15M").
  *  @throws RangeError in words */
