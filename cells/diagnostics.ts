@@ -1,9 +1,10 @@
 // The kind that asks what a fitted model has left undone.
 
-import { checking, withPauses, type Diagnostics, type Fit } from "../stdlib/index.ts";
+import { checking, type Diagnostics, type Fit } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { diagnosticsParts } from "./parts/diagnosticsParts.ts";
-import { asOptionError, needLevel } from "./parts/needs.ts";
+import { inSlices } from "./parts/inSlices.ts";
+import { needLevel } from "./parts/needs.ts";
 
 export interface DiagnosticsCell {
   readonly model: unknown;
@@ -37,10 +38,7 @@ async function runDiagnostics(options: DiagnosticsCell, context: RunContext): Pr
   if (lags !== undefined && (!Number.isInteger(lags) || lags < 1 || lags >= n)) {
     throw new OptionError("lags", `lags is ${lags}; with ${n} residuals it can be a whole number from 1 to ${n - 1}`);
   }
-  return withPauses(checking({ model, level, ...(lags === undefined ? {} : { lags }) }), ({ done, total, what }) => {
-    context.progress(done, total, what);
-    return context.breathe();
-  }).catch((error: unknown) => { throw asOptionError(error); });
+  return inSlices(checking({ model, level, ...(lags === undefined ? {} : { lags }) }), context);
 }
 
 /** A fit, or the fit in a ranked row of a comparison. */

@@ -1,10 +1,10 @@
 // The kind that forecasts from the end of a model's window.
 
-import { forecasting, withPauses, type Forecast, type ForecastOptions, type Series } from "../stdlib/index.ts";
+import { forecasting, type Forecast, type ForecastOptions, type Series } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
 import { needForecaster } from "./parts/forecaster.ts";
 import { forecastParts } from "./parts/forecastParts.ts";
-import { asOptionError } from "./parts/needs.ts";
+import { inSlices } from "./parts/inSlices.ts";
 
 export interface ForecastCell {
   readonly model: unknown;
@@ -60,12 +60,5 @@ async function runForecast(options: ForecastCell, context: RunContext): Promise<
   const twice = levels.find((level, i) => levels.indexOf(level) < i);
   if (twice !== undefined) throw new OptionError("levels", `levels has ${twice} twice; give each once`);
   const rest = Object.fromEntries(Object.entries(options).filter(([name, value]) => value !== null && value !== undefined && name !== "model"));
-  try {
-    return await withPauses(forecasting(model, { ...rest, horizon, levels }), ({ done, total, what }) => {
-      context.progress(done, total, what);
-      return context.breathe();
-    });
-  } catch (error) {
-    throw asOptionError(error);
-  }
+  return inSlices(forecasting(model, { ...rest, horizon, levels }), context);
 }

@@ -1,8 +1,9 @@
 // The kind that sets unit-root and stationarity tests side by side.
 
-import { defaultSeasonLength, lambdaProfile, rangeMean, testingStationarity, withPauses, type LambdaProfile, type RangeMean, type Series, type Stationarity } from "../stdlib/index.ts";
+import { defaultSeasonLength, lambdaProfile, rangeMean, testingStationarity, type LambdaProfile, type RangeMean, type Series, type Stationarity } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable, type RunContext } from "./kind.ts";
-import { asOptionError, needLevel, needVaryingSeries } from "./parts/needs.ts";
+import { inSlices } from "./parts/inSlices.ts";
+import { needLevel, needVaryingSeries } from "./parts/needs.ts";
 import { axisTitle, scaleText } from "./parts/scale.ts";
 import { stationarityParts } from "./parts/stationarityParts.ts";
 
@@ -50,10 +51,7 @@ async function runStationarity(options: StationarityCell, context: RunContext): 
   const { trend = "constant", lags, bandwidth } = options;
   if (typeof lags === "number" && lags > series.n / 2) throw new OptionError("lags", `lags is ${lags}: with ${series.n} values the regression would have more lags than data to estimate them; ask for at most ${Math.floor(series.n / 4)}`);
   const given = { series, trend, level, ...(lags === undefined || lags === null ? {} : { lags }), ...(bandwidth === undefined || bandwidth === null ? {} : { bandwidth }) };
-  const result = await withPauses(testingStationarity(given), ({ done, total, what }) => {
-    context.progress(done, total, what);
-    return context.breathe();
-  }).catch((error: unknown) => { throw asOptionError(error); });
+  const result = await inSlices(testingStationarity(given), context);
   await context.breathe();
   return { ...result, of: scaleText(series), axis: axisTitle(series), series, ...spreadOf(series, trend) };
 }
