@@ -150,7 +150,9 @@ function listKey(name: string, key: string): string {
 
 function checkText(value: string, key: string, option: string, path: string): void {
   if (key === "filter" || key === "test") throw new OptionError(option, `\`${path}\` is code in a text; write a condition as an object, as in {field: "value", gt: 10}, or filter the rows themselves`);
-  if ((key === "on" || key === "clear" || key === "events") && !/^(click|dblclick|pointerover|pointerout|pointermove|pointerdown|pointerup|mouseover|mouseout|mousemove)$/.test(value)) throw new OptionError(option, `\`${path}\` may name one event, such as "click"`);
+  // A regression's or loess's `on` names a field.
+  const namesField = key === "on" && /(^|\.)transform\[\d+\]\.on$/.test(path);
+  if (!namesField && (key === "on" || key === "clear" || key === "events") && !/^(click|dblclick|pointerover|pointerout|pointermove|pointerdown|pointerup|mouseover|mouseout|mousemove)$/.test(value)) throw new OptionError(option, `\`${path}\` may name one event, such as "click"`);
   if (key === "mark" || path === "mark") checkMark(value, option, path);
   if (key === "type" && value === "image") throw new OptionError(option, `\`${path}\` is "image", which reads pictures from elsewhere; choose another mark`);
 }

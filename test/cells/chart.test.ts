@@ -50,6 +50,8 @@ describe("chart", () => {
   it("takes transforms that are described by data", async () => {
     const one = await part({ data: [{ a: 1 }, { a: 5 }], transform: [{ filter: { field: "a", gt: 2 } }, { aggregate: [{ op: "count", as: "n" }] }], mark: "bar", encoding: { y: { field: "n", type: "quantitative" } } });
     expect((await draw(one)).warnings).toEqual([]);
+    const trend = await part({ data: [{ a: 1, b: 2 }, { a: 2, b: 4 }, { a: 3, b: 7 }], transform: [{ regression: "b", on: "a" }], mark: "line", encoding: { x: { field: "a", type: "quantitative" }, y: { field: "b", type: "quantitative" } } });
+    expect((await draw(trend)).warnings).toEqual([]);
   });
   it.each<[Record<string, unknown>, string]>([
     [{ data: { url: "elsewhere.csv" }, ...line }, "load the file in a `load` cell"],
