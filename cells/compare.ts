@@ -125,7 +125,7 @@ async function gridOf(options: CompareCell, series: Series, rank: Criterion, con
   return seasons.length === 1 ? grids[0] : merged(grids, rank, seasons.length);
 }
 
-/** @param asked  how many grids there were to be: all of one size */
+/** @param askedGrids  how many grids there were to be: all of one size */
 function merged(grids: readonly Grid[], rank: Criterion, askedGrids: number): Grid {
   const failures = grids.flatMap(grid => grid.failures);
   const fits = new Map(grids.flatMap(grid => grid.models).map(row => [row.label, row.fit]));

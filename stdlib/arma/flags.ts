@@ -40,6 +40,7 @@ export interface Findings {
   readonly variance: number;
 }
 
+/** Cautions first, in the order in which an analyst would look at them; then what is only worth knowing. */
 export function flags(f: Findings): Note[] {
   const notes: Note[] = [];
   const caution = (code: string, text: string) => { notes.push({ code, tone: "caution", text }); };

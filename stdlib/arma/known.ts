@@ -35,6 +35,7 @@ export function knownOf(fit: Fit, whole = false): Known {
   return { prepared, model, x, from, rest, part };
 }
 
+/** The states and one-step errors of the series under its known parameters, by the exact filter (filter.ts). */
 export function filtered(known: Known): Filtered {
   return filterLevels(known.model, [known.rest]);
 }

@@ -22,6 +22,7 @@ export interface Presample {
   readonly gammaBar: Float64Array; readonly psiBar: Float64Array; readonly aBar: Float64Array; readonly bBar: Float64Array;
 }
 
+/** @param p  longest autoregressive lag, 0 or more   @param q  longest moving-average lag, 0 or more */
 export function makePresample(p: number, q: number): Presample {
   const g = Math.max(p, q);
   return {

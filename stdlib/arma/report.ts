@@ -37,6 +37,7 @@ export interface Solution {
   readonly innovations?: Float64Array;
 }
 
+/** The estimates in the units of the series, with standard errors, residuals, criteria and roots. */
 export function assemble(s: Solution): Fit {
   const { numbers, work } = s;
   const { prepared, unit, n } = numbers;

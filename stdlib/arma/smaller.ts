@@ -14,6 +14,7 @@ export interface Smaller {
   of(shape: Shape): Float64Array | null;
 }
 
+/** None at first. Cost of a question: one pass over what was added. */
 export function smallerFits(): Smaller {
   const known: { readonly fit: Fit; readonly lags: readonly (readonly number[])[] }[] = [];
   const best = (shape: Shape, suits: (own: readonly number[], wanted: Int32Array, step: number) => boolean): Float64Array | null => {

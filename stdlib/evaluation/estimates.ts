@@ -44,6 +44,7 @@ const leastShare = 0.75;
 /** What was found, or why nothing was. */
 export type Estimated = { readonly model: Forecaster } | { readonly reason: string };
 
+/** @param model  what is estimated again, with its orders, regressors and held coefficients */
 export function estimatesOf(model: Forecaster, { data, slides, earliest, recall }: EstimatesOptions): Estimates {
   const reach = reachOf(model, data), base = baseOf(reach), first = firstIndex(base), asked = contentKey(specOf(model, data));
   const key = ({ from, to }: Seen): string => `${asked} ${from} ${contentKey(base.values.subarray(Math.max(0, from - first), to + 1 - first))}`;

@@ -13,6 +13,7 @@ export function pinball(actual: Numbers | number, quantile: Numbers | number, le
   return meanOver("pinball", [actual, quantile], ([y, q]) => pinballLoss(y, q, level));
 }
 
+/** The pinball loss of one forecast quantile q of probability `level` in (0, 1), unit of the data; NaN in, NaN out. */
 export function pinballLoss(y: number, q: number, level: number): number {
   return y >= q ? level * (y - q) : (1 - level) * (q - y);
 }
@@ -23,6 +24,7 @@ export function crps(actual: Numbers | number, mean: Numbers | number, se: Numbe
   return meanOver("crps", [actual, mean, se], ([y, m, s]) => normalCrps(y, m, s));
 }
 
+/** CRPS of one normal distribution, unit of the data; with sd = 0 the absolute error, with a negative sd NaN. */
 export function normalCrps(y: number, mean: number, sd: number): number {
   if (!(sd > 0)) return sd === 0 ? Math.abs(y - mean) : NaN;
   const z = (y - mean) / sd;
@@ -38,8 +40,9 @@ export function lognormalCrps(y: number, m: number, s: number): number {
   return y * (2 * normalCdf(w) - 1) - 2 * middle * (normalCdf(w - s) + normalCdf(s / Math.SQRT2) - 1);
 }
 
-/** CRPS of a distribution known by equally likely draws, each pair compared. The draws are sorted in place first.
- *  Cost O(n log n). Source: Gneiting & Raftery (2007), equation 21, in its sorted form. */
+/** CRPS of a distribution known by equally likely draws, each pair compared.
+ *  @param sorted  the draws, smallest first
+ *  Cost O(n). Source: Gneiting & Raftery (2007), equation 21, in its sorted form. */
 export function sampleCrps(y: number, sorted: Float64Array): number {
   const n = sorted.length;
   let distance = 0, spread = 0;
@@ -58,6 +61,7 @@ export function intervalScore(actual: Numbers | number, low: Numbers | number, h
   return meanOver("intervalScore", [actual, low, high], ([y, a, b]) => intervalLoss(y, a, b, level));
 }
 
+/** The interval score of one central band of confidence `level` in (0, 1), unit of the data. */
 export function intervalLoss(y: number, low: number, high: number, level: number): number {
   return high - low + (2 / (1 - level)) * (Math.max(0, low - y) + Math.max(0, y - high));
 }

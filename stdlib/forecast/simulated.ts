@@ -44,6 +44,7 @@ export function* simulatedOutlook(model: Forecaster, horizon: number, regressors
 /** Sets of parameters for a fit, estimated when first asked for: they do not depend on the regressors' future. */
 export type ParameterSets = () => Gradual<{ readonly fits: readonly Fit[]; readonly failed: number }>;
 
+/** Nothing is estimated before the first call; later ones give the same sets. */
 export function parameterSets(fit: Fit, seed: number): ParameterSets {
   let known: { readonly fits: readonly Fit[]; readonly failed: number } | null = null;
   return function* () { return (known ??= yield* bootstrapFits(fit, setsFor(fit.series), seed)); };

@@ -33,13 +33,17 @@ export interface DifferenceRow {
 /** Tries no, one and two first differences, without and with one seasonal difference.
  *  The sign of one too many: the variance rises over the row with one less, and the lag-1 autocorrelation (or the one at the
  *  season) comes near -0.5 or below, the value that differencing leaves behind in white noise.
- *  @param seasonLength  null for no seasonal difference
- *  @param most          most differences at lag 1   @param level  confidence at which each row's tests are read */
+ *  @param seasonLength  in periods; null for no seasonal difference */
 export function differences(x: Series | ArrayLike<number>, seasonLength: number | null, options: DifferencesOptions = {}): DifferenceRow[] {
   return atOnce(differencing(x, seasonLength, options));
 }
 
-export interface DifferencesOptions { readonly most?: number; readonly level?: number }
+export interface DifferencesOptions {
+  /** Most differences at lag 1 (default 2). */
+  readonly most?: number;
+  /** Confidence at which each row's tests are read, in (0, 1) (default 0.95). */
+  readonly level?: number;
+}
 
 /** The same in slices, one a row. */
 export function* differencing(x: Series | ArrayLike<number>, seasonLength: number | null, { most = 2, level = 0.95 }: DifferencesOptions = {}): Gradual<DifferenceRow[]> {
