@@ -206,12 +206,12 @@ function tested(a: string, b: string, horizon: number | "all", difference: Float
 
 function naiveVerdict(score: Score, naive: number, overall: readonly Score[], rank: RankBy, against: Against | null): { readonly beatsNaive: RankedModel["beatsNaive"]; readonly sentence: string } {
   if (naive < 0 || against === null) return { beatsNaive: "no", sentence: `${score.label} is itself the naive rule that the others have to beat.` };
-  const other = overall[naive], name = other.label.replace(" (added)", "");
+  const other = overall[naive], name = other.label.replace(" (added)", ""), rule = name === "naive" ? "the naive rule" : `the naive rule "${name}"`;
   const words = `${rank.toUpperCase()} ${+score[rank].toPrecision(3)} against ${+other[rank].toPrecision(3)}`;
-  if (!(score[rank] < other[rank])) return { beatsNaive: "no", sentence: `${score.label} does not beat naive: the naive rule "${name}" forecast as well or better (${words}).` };
-  if (against.p < 0.05 && against.meanDifference < 0) return { beatsNaive: "yes", sentence: `${score.label} beats the naive rule "${name}" (${words}), by more than chance (p ${against.p < 0.001 ? "< 0.001" : `= ${against.p.toFixed(3)}`}).` };
+  if (!(score[rank] < other[rank])) return { beatsNaive: "no", sentence: `${score.label} does not beat naive: ${rule} forecast as well or better (${words}).` };
+  if (against.p < 0.05 && against.meanDifference < 0) return { beatsNaive: "yes", sentence: `${score.label} beats ${rule} (${words}), by more than chance (p ${against.p < 0.001 ? "< 0.001" : `= ${against.p.toFixed(3)}`}).` };
   const reason = Number.isNaN(against.p) ? against.note ?? "no test is available" : `p = ${against.p.toFixed(2)}`;
-  return { beatsNaive: "not shown", sentence: `${score.label} did better than the naive rule "${name}" (${words}), but that it beats naive is not shown: ${reason}.` };
+  return { beatsNaive: "not shown", sentence: `${score.label} did better than ${rule} (${words}), but that it beats naive is not shown: ${reason}.` };
 }
 
 function originForecasts(rolled: Rolled, frame: RollingFrame): OriginForecast[] {
