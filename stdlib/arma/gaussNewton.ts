@@ -8,14 +8,14 @@ import type { Product, Shape } from "./shape.ts";
 const STRETCH = 3000;
 
 /** The information in the innovations' sensitivities de/dc, from lag sums of two filtered series over a capped stretch:
- *  de/da at lag i is that of fa = theta^-1 r, de/db at lag j that of fe = theta^-1 e. */
+ *  de/da at lag i is that of fa = theta^-1 r, de/db at lag j that of fe = theta^-1 e. Uses up a0 and lambda of `work`. */
 export function gaussNewtonInto(h: Float64Array, work: Work, data: Data, x: Float64Array, free: Int32Array): void {
   const { shape } = work;
   const n = Math.min(work.n, STRETCH), offset = work.n - n;
   const ar = shape.ar.lags, ma = shape.ma.lags, k = ar.length + ma.length;
-  const fa = new Float64Array(ar.length > 0 ? n : 0), fe = work.er.slice(offset);
+  const fa = work.a0, fe = ma.length > 0 ? work.lambda : work.er;
   if (ar.length > 0) { residualsInto(fa, work, data, offset); divideInto(fa, n, ma, work.b); }
-  divideInto(fe, n, ma, work.b);
+  if (ma.length > 0) { for (let t = 0; t < n; t++) fe[t] = work.er[offset + t]; divideInto(fe, n, ma, work.b); }
   const r = new Float64Array(k * k);
   for (let i = 0; i < k; i++) {
     for (let j = 0; j <= i; j++) {

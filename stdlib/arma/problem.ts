@@ -1,7 +1,7 @@
 // The search's view of the likelihood: free coefficients alone, kept inside the region.
 
 import { gaussNewtonInto } from "./gaussNewton.ts";
-import { isStable } from "./region.ts";
+import { isStable, stabilityTest } from "./region.ts";
 import { reflected } from "./roots.ts";
 import type { Evaluate, Search } from "./search.ts";
 import type { Work } from "./work.ts";
@@ -19,6 +19,7 @@ export function makeProblem(search: Search, work: Work, free: Int32Array, evalua
   // Across the circle the likelihood goes on smoothly (it is that of the reflection), and so may the search, a little: as far
   // as the recursion's growth costs no digits. Turning back at the edge would cost it the curvature it has learnt.
   const slack = parts.map((f, p) => f.sign < 0 && dense[p] ? Math.min(0.05, 4 * f.lags[0] / search.data.n) : 0);
+  const stable = parts.map((f, p) => stabilityTest(f.lags, f.sign, f.sign < 0, slack[p]));
   return {
     size: free.length,
     value(z) {
@@ -26,7 +27,7 @@ export function makeProblem(search: Search, work: Work, free: Int32Array, evalua
       let mended = false;
       for (let p = 0; p < parts.length; p++) {
         const f = parts[p], c = views[p];
-        if (whole[p] || isStable(f.lags, c, f.sign, f.sign < 0, slack[p])) continue;
+        if (whole[p] || stable[p](c)) continue;
         // Outside: the likelihood of a moving average is that of its reflection, so go on from there; a process that is not
         // stationary has none, and the step is shortened.
         if (f.sign > 0 || !dense[p]) return Infinity;

@@ -7,26 +7,38 @@ import { denseFactor, type Factor, type Shape } from "./shape.ts";
 /** Whether 1 - sum c_i B^lag_i has all roots outside the unit circle (on it too when `closed`). Lags ascending.
  *  @param slack  inverse roots up to 1 + slack (in the lags' common step) pass too */
 export function isStable(lags: ArrayLike<number>, c: ArrayLike<number>, sign: 1 | -1, closed = false, slack = 0): boolean {
+  return stabilityTest(lags, sign, closed, slack)(c);
+}
+
+/** The same question for one set of lags, asked many times: its arrays are made once, when first needed. */
+export function stabilityTest(lags: ArrayLike<number>, sign: 1 | -1, closed: boolean, slack: number): (c: ArrayLike<number>) => boolean {
   const count = lags.length;
-  if (count === 0) return true;
-  let total = 0;
-  for (let i = 0; i < count; i++) total += Math.abs(c[i]);
-  if (total < 1) return true;
-  if (count === 1) return Math.abs(c[0]) < 1 || (closed && Math.abs(c[0]) <= 1 + slack);
-  if (count === 2 && lags[0] === 1 && lags[1] === 2) {
-    // The triangle of the second order; on its edges when closed.
-    const r = closed ? (1 - 1e-12) / (1 + slack) : 1, c1 = sign * c[0] * r, c2 = sign * c[1] * r * r;
-    return Math.abs(c2) < 1 && Math.abs(c1) < 1 - c2;
-  }
-  // Common step: lags 12 and 24 are a polynomial of degree 2 in B^12.
-  let step = 0;
-  for (let i = 0; i < count; i++) step = gcd(step, lags[i]);
-  const p = lags[count - 1] / step;
-  const a = new Float64Array(p + 1);
-  for (let i = 0; i < count; i++) a[lags[i] / step] = sign * c[i];
-  // On the circle the step-down ends in a partial autocorrelation of exactly 1: a hair's shrinking decides "closed".
-  if (closed) { let r = 1; for (let i = 1; i <= p; i++) { r *= (1 - 1e-12) / (1 + slack); a[i] *= r; } }
-  return stepDownInto(new Float64Array(p * (p + 1) / 2), a, p);
+  let a: Float64Array | null = null, orders: Float64Array | null = null, step = 0;
+  return c => {
+    if (count === 0) return true;
+    let total = 0;
+    for (let i = 0; i < count; i++) total += Math.abs(c[i]);
+    if (total < 1) return true;
+    if (count === 1) return Math.abs(c[0]) < 1 || (closed && Math.abs(c[0]) <= 1 + slack);
+    // On the circle the step-down ends in a partial autocorrelation of exactly 1: a hair's shrinking decides "closed".
+    const shrink = closed ? (1 - 1e-12) / (1 + slack) : 1;
+    if (count === 2 && lags[0] === 1 && lags[1] === 2) {
+      // The triangle of the second order; on its edges when closed.
+      const c1 = sign * c[0] * shrink, c2 = sign * c[1] * shrink * shrink;
+      return Math.abs(c2) < 1 && Math.abs(c1) < 1 - c2;
+    }
+    // Common step: lags 12 and 24 are a polynomial of degree 2 in B^12.
+    if (a === null || orders === null) {
+      for (let i = 0; i < count; i++) step = gcd(step, lags[i]);
+      const p = lags[count - 1] / step;
+      a = new Float64Array(p + 1);
+      orders = new Float64Array(p * (p + 1) / 2);
+    }
+    for (let i = 0; i < count; i++) a[lags[i] / step] = sign * c[i];
+    let r = 1;
+    if (closed) for (let i = 1; i < a.length; i++) { r *= shrink; a[i] *= r; }
+    return stepDownInto(orders, a, a.length - 1);
+  };
 }
 
 function gcd(a: number, b: number): number { return b === 0 ? a : gcd(b, a % b); }
@@ -47,6 +59,7 @@ export function shrinkInto(lags: ArrayLike<number>, c: Float64Array, sign: 1 | -
 /** Smallest modulus of a factor's roots, in its own step; Infinity for none. */
 export function nearestRoot(f: Factor, x: Float64Array): number {
   if (f.lags.length === 0) return Infinity;
+  if (f.lags.length === 1) return 1 / Math.abs(x[f.from]);
   const z = inverseRoots(denseFactor(f, x));
   let top = 0;
   for (let i = 0; i < z.re.length; i++) top = Math.max(top, Math.hypot(z.re[i], z.im[i]));

@@ -24,6 +24,8 @@ export interface Data {
 /** Work arrays of one model shape and length; filled by `valueAt`, read by `gradientInto` and by who wants residuals. */
 export interface Work {
   readonly shape: Shape; readonly n: number;
+  /** Where the long arrays stand. */
+  readonly block: Float64Array;
   /** min(memory, n). */
   readonly g: number;
   readonly a: Float64Array; readonly b: Float64Array;
@@ -52,16 +54,18 @@ export interface Work {
   sum: number; logDet: number; nEffective: number; f: number; sigma2: number;
 }
 
-export function makeWork(shape: Shape, data: Data): Work {
+/** @param lender  a work of a larger shape for the same data, whose place serves: its last value is lost */
+export function makeWork(shape: Shape, data: Data, lender?: Work): Work {
   const n = data.n, m = data.columns.length, g = Math.min(shape.memory, n), p = shape.ar.lags.length, q = shape.ma.lags.length;
   // Long arrays are views of one block: a block of memory costs far more to get and to give back than a view.
   const own = data.columns.map((_, j) => j === 0 && data.constant ? Math.min(n, FIRST) : n);
-  const block = new Float64Array((q > 0 ? 3 : 2) * n + 2 * own.reduce((a, b) => a + b, 0) + 3 * Math.min(n, FIRST) + 6 * g * g + 2 * g);
+  const size = (q > 0 ? 3 : 2) * n + 2 * own.reduce((a, b) => a + b, 0) + 3 * Math.min(n, FIRST) + 6 * g * g + 2 * g;
+  const block = lender && lender.block.length >= size ? lender.block.fill(0, 0, size) : new Float64Array(size);
   let at = 0;
   const take = (length: number) => { const view = block.subarray(at, at + length); at += length; return view; };
   const er = take(n), dense = (lags: Int32Array) => lags.length <= 2 && lags.every((l, i) => l === i + 1);
   return {
-    shape, n, g,
+    shape, n, block, g,
     a: new Float64Array(p), b: new Float64Array(q), aBar: new Float64Array(p), bBar: new Float64Array(q),
     pre: makePresample(shape.ar.degree, shape.ma.degree), response: makeResponse(n, g, take),
     l: take(g * g), d: take(g * g), wk: take(g * g), k: take(g * g), s1: take(g * g), omegaBar: new Float64Array(shape.memory ** 2),
@@ -90,7 +94,7 @@ export function residualsOf(work: Work, data: Data): Float64Array {
 export function residualsInto(out: Float64Array, work: Work, data: Data, from: number): void {
   if (work.r !== null && work.rKnown) { out.set(work.r.subarray(from)); return; }
   const { n, beta } = work, { y, columns } = data, constant = data.constant ? 1 : 0;
-  subtractNumber(out, y.subarray(from), constant ? beta[0] * columns[0][0] : 0, 0, n - from);
+  subtractNumber(out, from === 0 ? y : y.subarray(from), constant ? beta[0] * columns[0][0] : 0, 0, n - from);
   for (let j = constant; j < columns.length; j++) subtractColumn(out, out, columns[j].subarray(from), beta[j], n - from);
 }
 

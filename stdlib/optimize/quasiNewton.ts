@@ -37,6 +37,7 @@ export function quasiNewton(problem: Problem, start: Float64Array | Minimum, tol
     problem.gradientInto(g);
     problem.curvatureInto(h);
   }
+  let trial = new Float64Array(k);
   const factor = new Float64Array(k * k), d = new Float64Array(k), gNew = new Float64Array(k), s = new Float64Array(k), y = new Float64Array(k), hs = new Float64Array(k);
   let converged = false, stalled = 0;
   for (let round = 0; round < rounds; round++) {
@@ -44,7 +45,6 @@ export function quasiNewton(problem: Problem, start: Float64Array | Minimum, tol
     let slope = 0;
     for (let i = 0; i < k; i++) slope += d[i] * g[i];
     if (-slope / 2 < tolerance) { converged = true; break; }
-    const trial = new Float64Array(k);
     // Along a ridge the curvature says little, and a full step would leave by far the part that it describes.
     let longest = 0;
     for (let i = 0; i < k; i++) longest = Math.max(longest, Math.abs(d[i]));
@@ -74,7 +74,7 @@ export function quasiNewton(problem: Problem, start: Float64Array | Minimum, tol
     problem.gradientInto(gNew);
     for (let i = 0; i < k; i++) { s[i] = trial[i] - x[i]; y[i] = gNew[i] - g[i]; }
     if (mended) problem.curvatureInto(h); else updateInto(h, s, y, hs, k);
-    x = trial;
+    [x, trial] = [trial, x];
     f = fNew;
     g.set(gNew);
     stalled = 0;
@@ -94,9 +94,10 @@ export function newtonStep(at: Minimum): Float64Array {
 
 /** d = -h^-1 g, with as little of the identity added to h as makes it positive definite. */
 function directionInto(d: Float64Array, h: Float64Array, g: Float64Array, factor: Float64Array, k: number): void {
-  let top = 0;
+  let top = 0, finite = true;
   for (let i = 0; i < k; i++) top = Math.max(top, Math.abs(h[i * k + i]));
-  if (!h.every(Number.isFinite)) {
+  for (let i = 0; i < k * k; i++) if (!Number.isFinite(h[i])) finite = false;
+  if (!finite) {
     // Curvature that overflowed says nothing: go straight down.
     h.fill(0);
     for (let i = 0; i < k; i++) h[i * k + i] = top = 1;
