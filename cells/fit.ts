@@ -1,23 +1,13 @@
 // The kind that estimates an ARMA-type model of a series.
 
-import { fit as estimate, type Fit, type FitOptions, type Hold, type Lags, type Method, type Regressor, type Season } from "../stdlib/index.ts";
+import { fit as estimate, type Fit, type FitOptions } from "../stdlib/index.ts";
 import { OptionError, type Kind, type OptionTable } from "./kind.ts";
 import { fitParts } from "./parts/fitParts.ts";
 import { highestLag, lagCount, nameOf, needVaryingSeries, plainly } from "./parts/needs.ts";
 import { count } from "./parts/words.ts";
 
-export interface FitCell {
-  readonly series: unknown;
-  readonly ar?: Lags;
-  readonly ma?: Lags;
-  readonly season?: Season;
-  readonly mean?: boolean;
-  readonly regressors?: Readonly<Record<string, Regressor>>;
-  readonly hold?: Hold;
-  readonly method?: Method;
-  readonly window?: { readonly from?: string; readonly to?: string };
-  readonly label?: string;
-}
+/** The options of a fit, its series not looked at yet. */
+type FitCell = Omit<FitOptions, "series"> & { readonly series: unknown };
 
 const fitOptions: OptionTable = {
   series: { type: "series", required: true, sentence: "The series to model; its transform steps are remembered, so that forecasts come back in the units of the data.", example: "steady" },
@@ -52,7 +42,7 @@ function runFit(options: FitCell): Fit {
 
 /** The options of a fit after the checks that need no estimation. @throws OptionError in words for the author */
 function checkedFitOptions(options: FitCell): FitOptions {
-  const given = Object.fromEntries(Object.entries(options).filter(([, value]) => value !== null && value !== undefined)) as unknown as FitCell;
+  const given = Object.fromEntries(Object.entries(options).filter(([, value]) => value !== null && value !== undefined)) as FitCell;
   const series = needVaryingSeries(given.series, 3, "estimation");
   const season = given.season ?? {};
   if (typeof season !== "object") throw new OptionError("season", `season takes an object such as {ma: 1} or {length: 12, ar: 1}; found ${String(season)}`);
