@@ -58,7 +58,7 @@ export type ToEngine =
   | { readonly to: "file"; readonly file: string; readonly bytes: Uint8Array | null; readonly reason?: string }
   | { readonly to: "width"; readonly width: number }
   | { readonly to: "allowCode"; readonly allow: boolean; readonly reason?: string }
-  /** Do not run this cell: it fails with "stopped by the reader" until its own text changes. Sent before the text to a fresh worker. */
+  /** Do not run this cell: it was stopped by hand with its worker, and has failed until its own text changes. Sent before the text to a fresh worker. */
   | { readonly to: "hold"; readonly cell: string }
   /** End this cell's work early, keeping what is done where it can. */
   | { readonly to: "stop"; readonly cell: string }
