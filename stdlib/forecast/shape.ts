@@ -1,6 +1,7 @@
 // What a forecast turns into far ahead, in a sentence: a flat line is often thought a fault, and is not one.
 
 import type { Fit } from "../arma/model.ts";
+import { roots } from "../arma/roots.ts";
 import type { Forecaster, Rule } from "./model.ts";
 import { trailingDifferences } from "./reach.ts";
 import { isRule } from "./rules.ts";
@@ -25,6 +26,8 @@ function fitShape(fit: Fit, onLogs: boolean): string {
   const line = onLogs ? "a steady rate of growth (a line in the transformed data)" : "a straight line";
   const order = plain + seasonal.length + (drifts && count > 0 ? 1 : 0);
   if (count === 0) {
+    const slow = slowReturn(fit);
+    if (slow !== null) return `Far ahead the forecast would return to ${drifts ? "the mean of the series" : "zero on the scale of the model"}, but so slowly that it is not seen within as many periods as there are data: till then it ${slow === "season" ? "repeats the last seasons" : "goes on from the last values"}, and the bands keep widening.${regressors}`;
     return drifts
       ? `Far ahead the forecast returns to the mean of the series and stays there, and the bands stop widening: the model has no trend${fit.series.steps.length > 0 ? " on the scale that it works on" : ""}.${regressors}`
       : `Far ahead the forecast returns to zero on the scale of the model, since no mean was asked for.${regressors}`;
@@ -37,6 +40,14 @@ function fitShape(fit: Fit, onLogs: boolean): string {
   if (order === 1) return `Far ahead the forecast is flat, which is no fault: with one difference and no drift the model knows no direction, so its best guess is a level near the last values; ${widening}.${regressors}`;
   if (order === 2) return `Far ahead the forecast is ${line}${drifts ? ", with the drift that was estimated from the whole sample" : ", whose slope follows the last values"}; ${widening}.${regressors}`;
   return `Far ahead the forecast bends away like a polynomial of degree ${order - 1}: with so many differences it should not be trusted beyond a few periods.${regressors}`;
+}
+
+/** Which autoregressive part keeps half of a distance for longer than the series is, if one does: "returns" would then promise too much. */
+function slowReturn(fit: Fit): "season" | "level" | null {
+  const half = (c: ArrayLike<number>, length: number): number => Math.max(0, ...roots(c).map(({ modulus }) => (modulus > 1 ? length * Math.LN2 / Math.log(modulus) : Infinity)));
+  const minus = (c: ArrayLike<number>): number[] => Array.from(c, (x) => -x);
+  if (half(minus(fit.seasonalPhi), fit.seasonLength) > fit.series.n) return "season";
+  return half(minus(fit.phi), 1) > fit.series.n ? "level" : null;
 }
 
 function ruleShape(model: Rule, onLogs: boolean): string {

@@ -196,7 +196,13 @@ describe("the long-run shape", () => {
     [() => fit({ series: applySteps(airlineSeries(), [{ step: "difference", lag: 1 }]), ma: 1 }), /is flat, which is no fault/],
     [() => fit({ series: applySteps(airlineSeries(), [{ step: "difference", lag: 1 }]), ma: 1, mean: true }), /a straight line, with the drift/],
     [() => fit({ series: airlineSeries(), ar: 1 }), /returns to the mean/],
+    [() => fit({ series: airlineSeries(), ar: 1, hold: { phi: [0.999] } }), /would return to the mean of the series, but so slowly .* goes on from the last values/],
+    [() => fit({ series: airlineSeries(), season: { length: 12, ar: 1 }, hold: { seasonalPhi: [0.9999] } }), /but so slowly .* repeats the last seasons/],
   ])("case %#", (make, words) => { expect(forecast((make as () => ReturnType<typeof fit>)(), { horizon: 2 }).shape).toMatch(words); });
+  it("promises no return where half of the way takes longer than the data", () => {
+    const series = airlineSeries(), slow = fit({ series, ar: 1, hold: { phi: [0.999] } }), ahead = forecast(slow, { horizon: series.n }).mean;
+    expect((ahead[series.n - 1] - slow.mean) / (series.values[series.n - 1] - slow.mean)).toBeGreaterThan(0.5);
+  });
   it("is what the forecasts do: flat, line, mean", () => {
     const flat = forecast(fit({ series: applySteps(airlineSeries(), [{ step: "difference", lag: 1 }]), ma: 1 }), { horizon: 30 });
     expect(flat.mean[29]).toBeCloseTo(flat.mean[2], 8);
