@@ -3,7 +3,7 @@
 import type { Fit, Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
 import { bandsOf } from "./bands.ts";
-import { differenceOutlook, lessen } from "./difference.ts";
+import { differenceOutlook, lessen } from "./differenceOutlook.ts";
 import type { Figures, Forecaster, ForecastOptions, Scenario } from "./model.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import { once } from "./once.ts";
