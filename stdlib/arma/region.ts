@@ -59,7 +59,12 @@ export function shrinkInto(lags: ArrayLike<number>, c: Float64Array, sign: 1 | -
 /** Smallest modulus of a factor's roots, in its own step; Infinity for none. */
 export function nearestRoot(f: Factor, x: Float64Array): number {
   if (f.lags.length === 0) return Infinity;
+  // Asked several times a fit: the common small factors in closed form, without arrays.
   if (f.lags.length === 1) return 1 / Math.abs(x[f.from]);
+  if (f.lags.length === 2 && f.lags[1] === 2 * f.lags[0]) {
+    const half = Math.abs(x[f.from]) / 2, disc = half * half + f.sign * x[f.from + 1];
+    return 1 / (disc < 0 ? Math.hypot(half, Math.sqrt(-disc)) : half + Math.sqrt(disc));
+  }
   const z = inverseRoots(denseFactor(f, x));
   let top = 0;
   for (let i = 0; i < z.re.length; i++) top = Math.max(top, Math.hypot(z.re[i], z.im[i]));
