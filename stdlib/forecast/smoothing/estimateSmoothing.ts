@@ -22,8 +22,12 @@ export interface EstimatedSmoothing {
 const longestFreeSeason = 60;
 
 /** The surface often has several maxima, slow and fast ones: a search starts from each of these. */
-const firstWeights: readonly Weights[] = [[0.5, 0.1, 0.1, 0.962], [0.1, 0.2, 0.05, 0.962], [0.5, 0.01, 0.01, 0.975], [0.02, 0.01, 0.01, 0.975], [0.95, 0.01, 0.02, 0.9], [0.2, 0.02, 0.5, 0.85], [0.02, 0.7, 0.01, 0.975], [0.1, 0.003, 0.003, 0.9795], [0.003, 0.1, 0.01, 0.97]]
+const firstWeights: readonly Weights[] = [
+  [0.5, 0.1, 0.1, 0.962], [0.1, 0.2, 0.05, 0.962], [0.5, 0.01, 0.01, 0.975], [0.02, 0.01, 0.01, 0.975], [0.95, 0.01, 0.02, 0.9], [0.2, 0.02, 0.5, 0.85],
+  [0.02, 0.7, 0.01, 0.975], [0.1, 0.003, 0.003, 0.9795], [0.003, 0.1, 0.01, 0.97], [0.003, 0.003, 0.003, 0.85], [0.6, 0.003, 0.4, 0.97], [0.8, 0.0001, 0.0001, 0.97]]
   .map(([alpha, ofAlpha, ofRest, phi]) => ({ alpha, beta: ofAlpha * alpha, gamma: ofRest * (1 - alpha), phi }));
+/** Of minus twice the log-likelihood; and rounds of one search: rugged surfaces (additive errors, a season that multiplies) take over a hundred. */
+const tolerance = 1e-9, rounds = 400;
 
 /** Maximum likelihood within the usual region: 0 < alpha < 1, 0 < beta < alpha, 0 < gamma < 1 - alpha, 0.8 <= phi <= 0.98.
  *  Starting states of an additive model are concentrated out; those of a multiplicative one are searched with the weights.
@@ -46,19 +50,25 @@ export function estimateSmoothing(y: Float64Array, form: SmoothingForm, damped: 
     return { ...weights, ...(concentrated ? bestStates(likelihood, scaled, form, weights) : space.states(x, opening)) };
   };
   const size = space.freeWeights + (concentrated ? 0 : space.searchedStates), search = new Search(size, space, likelihood, stateAt);
-  let best: Minimum | null = null;
-  for (const weights of near?.alpha === undefined ? firstWeights : [nearWeights(near)]) {
-    const start = new Float64Array(size);
-    start.set(space.placed(weights));
-    const found = quasiNewton(search, start, 1e-9, 400);
-    if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found;
-  }
+  const best = lowest(search, space.placed(near?.alpha === undefined ? firstWeights : [nearWeights(near)]));
   if (best === null) throw new RangeError("smoothing: no weights were found with which every one-step forecast stays positive; try an additive season, or a log before it");
   const found = stateAt(best.x);
   const start: SmoothingState = { ...found, level: found.level * unit + shift, trend: form.trend === "multiplicative" ? found.trend : found.trend * unit,
     seasonal: form.season === "multiplicative" ? found.seasonal : found.seasonal.map((s) => s * unit) };
   const freeStates = space.statesHeld ? 0 : 1 + (form.trend === "none" ? 0 : 1) + Math.max(0, m - 1);
   return { form, start, filtered: innovationsFilter(y, form, start), k: space.freeWeights + freeStates + 1, converged: best.converged };
+}
+
+/** The lowest place that the searches find; starts are weights, and states start from the opening ones. */
+function lowest(search: Search, starts: readonly Float64Array[]): Minimum | null {
+  let best: Minimum | null = null;
+  for (const weights of starts) {
+    const start = new Float64Array(search.size);
+    start.set(weights);
+    const found = quasiNewton(search, start, tolerance, rounds);
+    if (Number.isFinite(found.value) && (best === null || found.value < best.value)) best = found;
+  }
+  return best;
 }
 
 function nearWeights({ alpha = 0.1, beta = 0.1 * alpha, gamma = 0.1 * (1 - alpha), phi = 0.95 }: SmoothingHold): Weights { return { alpha, beta, gamma, phi }; }

@@ -45,11 +45,14 @@ export class SearchSpace {
     };
   }
 
-  /** The place of given weights. */
-  placed({ alpha, beta, gamma, phi }: Weights): Float64Array {
-    const at = { alpha, beta: beta / alpha, gamma: gamma / (1 - alpha), phi };
-    // Not at an end of a range: the slope there is 0, whichever way is down.
-    return Float64Array.from(this.#free, (name) => Math.asin(Math.sqrt(Math.min(0.9975, Math.max(0.0025, (at[name] - lowest[name]) / width[name])))));
+  /** Where weights stand, each place once: those that differ only in what is held are one.
+   *  Not at an end of a range: the slope there is 0, whichever way is down. */
+  placed(weights: readonly Weights[]): Float64Array[] {
+    const places = weights.map(({ alpha, beta, gamma, phi }) => {
+      const at = { alpha, beta: beta / alpha, gamma: gamma / (1 - alpha), phi };
+      return Float64Array.from(this.#free, (name) => Math.asin(Math.sqrt(Math.min(0.9975, Math.max(0.0025, (at[name] - lowest[name]) / width[name])))));
+    });
+    return [...new Map(places.map((x) => [x.join(), x])).values()];
   }
 
   /** How many starting states are searched; beyond season 24 its figures stay those of the opening stretch. */

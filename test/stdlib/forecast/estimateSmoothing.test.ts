@@ -76,6 +76,10 @@ describe("an estimate of smoothing", () => {
       }
     }
   });
+  it.each([["nile", "multiplicative", "multiplicative"], ["bjsales", "multiplicative", "additive"], ["lakehuron", "additive", "additive"]] as const)("misses no slow or fast maximum: nothing is won by holding alpha (%s, %s error, %s trend)", (id, error, trend) => {
+    const { values } = referenceSeries(id), form: SmoothingForm = { error, trend, season: "none", length: 1 }, best = estimateSmoothing(values, form, true).filtered.logLikelihood;
+    for (const alpha of [1e-4, 0.01, 0.3, 0.9999]) expect(estimateSmoothing(values, form, true, { alpha }).filtered.logLikelihood).toBeLessThan(best + 1e-5);
+  });
   it.each(kinds)("from an earlier one is what a search from nothing finds, with a season that is %s", (kind) => {
     const form: SmoothingForm = { error: kind, trend: "additive", season: kind, length: 12 };
     const near = estimateSmoothing(airline.slice(0, 132), form, true).start;
