@@ -49,7 +49,7 @@ export { type Fit, type FitOptions, type Held, type Hold, type Lags, type Method
 // forecast
 export { easterEffect, harmonics, interventionColumns, levelShift, pulse, ramp, temporaryChange, tradingDays, type Columns, type Intervention } from "./forecast/interventions.ts";
 export { forecast, forecasting } from "./forecast/forecast.ts";
-export { withPauses, type Gradual, type Progress } from "./forecast/gradual.ts";
+export { withPauses, type Gradual, type Progress } from "./gradual.ts";
 export { refit } from "./forecast/refit.ts";
 export { rule, isRule, type SmoothingOptions } from "./forecast/rules.ts";
 export { exponentialSmoothing, type Smoothed, type SmoothingWeights } from "./forecast/smoothing/exponentialSmoothing.ts";

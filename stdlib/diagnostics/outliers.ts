@@ -2,8 +2,8 @@
 
 import { fit as estimate } from "../arma/fit.ts";
 import type { Fit } from "../arma/model.ts";
-import type { Gradual } from "../forecast/gradual.ts";
-import { atOnce } from "../forecast/gradual.ts";
+import type { Gradual } from "../gradual.ts";
+import { atOnce } from "../gradual.ts";
 import { normalQuantile } from "../distributions/normal.ts";
 import type { Intervention } from "../forecast/interventions.ts";
 import { leastSquares } from "../linear/leastSquares.ts";

@@ -3,7 +3,7 @@
 import type { Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
 import { calibratedOutlook } from "./calibrated.ts";
-import type { Gradual } from "./gradual.ts";
+import type { Gradual } from "../gradual.ts";
 import { modelOutlook, type ModelOutlook } from "./modelOutlook.ts";
 import type { Band, BandsHow, Forecaster } from "./model.ts";
 import type { Outlook } from "./outlook.ts";

@@ -7,7 +7,7 @@ import { isStable } from "../arma/region.ts";
 import { applySteps, stepOf } from "../series/steps.ts";
 import { positionIn } from "../series/calendar.ts";
 import { isSeries, type Series } from "../series/series.ts";
-import type { Gradual } from "./gradual.ts";
+import type { Gradual } from "../gradual.ts";
 import { interventionColumns } from "./interventions.ts";
 import { seeded } from "./random.ts";
 import { trailingDifferences } from "./reach.ts";

@@ -3,7 +3,7 @@
 import { normalCdf, normalQuantile } from "../distributions/normal.ts";
 import type { Note } from "../arma/model.ts";
 import type { Series } from "../series/series.ts";
-import type { Gradual } from "./gradual.ts";
+import type { Gradual } from "../gradual.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import { modelOutlook } from "./modelOutlook.ts";
 import type { Forecaster } from "./model.ts";

@@ -3,7 +3,7 @@
 import { makeSeries, type Series } from "../series/series.ts";
 import type { Fit, Note } from "../arma/model.ts";
 import { bandedOutlook, bandsOf } from "./bands.ts";
-import { atOnce, type Gradual } from "./gradual.ts";
+import { atOnce, type Gradual } from "../gradual.ts";
 import { growthOf } from "./growth.ts";
 import type { Figures, Forecast, Forecaster, ForecastOptions, Passing } from "./model.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";

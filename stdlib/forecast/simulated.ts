@@ -5,7 +5,7 @@ import { normalQuantile } from "../distributions/normal.ts";
 import type { Series } from "../series/series.ts";
 import { bootstrapFits, recursionOfLevels, shocksOf } from "./bootstrapFits.ts";
 import { fitPredictive } from "./fitPredictive.ts";
-import type { Gradual } from "./gradual.ts";
+import type { Gradual } from "../gradual.ts";
 import type { ModelOutlook } from "./modelOutlook.ts";
 import type { Forecaster, Rule } from "./model.ts";
 import { sampleOutlook, type Outlook } from "./outlook.ts";

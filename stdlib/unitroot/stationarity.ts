@@ -3,8 +3,8 @@
 import type { Test } from "../diagnostics/test.ts";
 import { levelWords, printedP, rejects } from "../diagnostics/test.ts";
 import { checkLevel } from "../correlogram/bands.ts";
-import type { Gradual } from "../forecast/gradual.ts";
-import { atOnce } from "../forecast/gradual.ts";
+import type { Gradual } from "../gradual.ts";
+import { atOnce } from "../gradual.ts";
 import { defaultSeasonLength } from "../series/every.ts";
 import type { Series } from "../series/series.ts";
 import { isSeries, valuesOf } from "../series/series.ts";

@@ -10,7 +10,7 @@ import { binomialRange } from "../../stdlib/evaluation/binomialRange.ts";
 import { rollingOrigins } from "../../stdlib/evaluation/rollingOrigins.ts";
 import { bandedOutlook } from "../../stdlib/forecast/bands.ts";
 import { forecast } from "../../stdlib/forecast/forecast.ts";
-import { atOnce } from "../../stdlib/forecast/gradual.ts";
+import { atOnce } from "../../stdlib/gradual.ts";
 import type { BandsHow } from "../../stdlib/forecast/model.ts";
 import { slice } from "../../stdlib/series/cut.ts";
 import { makeSeries, type Series } from "../../stdlib/series/series.ts";

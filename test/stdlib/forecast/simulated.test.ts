@@ -3,7 +3,7 @@ import { normalCdf } from "../../../stdlib/distributions/normal.ts";
 import { fit } from "../../../stdlib/arma/fit.ts";
 import type { FitOptions } from "../../../stdlib/arma/model.ts";
 import { forecast, forecasting } from "../../../stdlib/forecast/forecast.ts";
-import { withPauses } from "../../../stdlib/forecast/gradual.ts";
+import { withPauses } from "../../../stdlib/gradual.ts";
 import { drawsOf, normalPaths, pathAt, sumsOver, undoPaths } from "../../../stdlib/forecast/paths.ts";
 import { factorAlong } from "../../../stdlib/forecast/predictive.ts";
 import { rule } from "../../../stdlib/forecast/rules.ts";
