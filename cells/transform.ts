@@ -32,7 +32,7 @@ export const transform: Kind<TransformCell, Series> = {
   ],
 };
 
-export function runTransform(options: TransformCell, context: Pick<RunContext, "name" | "note">): Series {
+function runTransform(options: TransformCell, context: Pick<RunContext, "name" | "note">): Series {
   const { window } = options;
   let series = options.series;
   try {

@@ -65,7 +65,7 @@ function cell(head: string, ...options: readonly (string | null)[]): string {
   return ["```" + head, ...options.filter((line) => line !== null), "```"].join("\n");
 }
 
-export function periodWords(spacing: string | null): readonly [one: string, many: string] { return every[spacing ?? ""] ?? ["period", "periods"]; }
+function periodWords(spacing: string | null): readonly [one: string, many: string] { return every[spacing ?? ""] ?? ["period", "periods"]; }
 
 /** @example spacingWords({ every: "PT1H", ... }) // "one value an hour" */
 export function spacingWords({ every: spacing, week }: Pick<Recognised, "every" | "week">): string {

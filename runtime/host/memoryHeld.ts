@@ -19,7 +19,7 @@ export function watchMemory(pid: number, most: number, exceeded: () => void): ()
 }
 
 /** Resident megabytes of a process; null where it has ended, or the system does not tell. */
-export async function megabytesHeld(pid: number): Promise<number | null> {
+async function megabytesHeld(pid: number): Promise<number | null> {
   const status = await readFile(`/proc/${pid}/status`, "utf8").catch(() => null);
   const kilobytes = status === null ? null : /^VmRSS:\s*(\d+) kB$/m.exec(status);
   return kilobytes === null ? null : Number(kilobytes[1]) / 1024;
