@@ -25,7 +25,9 @@ export async function open(command: { readonly file: string; readonly port: numb
   await store.read();
   const events = new EventStreams(), key = randomBytes(18).toString("base64url");
   const framePolicy = pagePolicy([...scriptsOf(await readPart("frame.html"))]);
-  const server = createServer({ store, key, events, part: readPart, framePolicy, wanted: (file) => { followData(watcher, path, file).catch(() => undefined); } });
+  const server = createServer({ store, key, events, part: readPart, framePolicy, wanted: (file) => {
+    followData(watcher, path, file).catch((error: unknown) => { io.error(`New data in ${file} will not be noticed: ${error instanceof Error ? error.message : String(error)}\n`); });
+  } });
   const listening = await start(server, command.port, path);
   // Not before the port is had: a watcher keeps a command alive that has nothing to serve.
   const watcher = follow(store, events);
