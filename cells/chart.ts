@@ -1,6 +1,7 @@
 // A Vega-Lite view of a notebook's own rows.
 
 import { OptionError, type Kind } from "./kind.ts";
+import { checkBounds } from "./parts/chartBounds.ts";
 import type { ChartPart, Columns } from "./parts/part.ts";
 import { chartColumns, fieldsDrawn, panelsBelow, readView } from "./parts/vegaLite.ts";
 import { count, listOf } from "./parts/words.ts";
@@ -26,6 +27,7 @@ export const chart: Kind<ChartCell, View> = {
     const given = Object.fromEntries(Object.entries(options).filter(([, value]) => value !== null && value !== undefined));
     const { spec, data } = readView(given);
     checkSize(spec, data);
+    checkBounds(spec, data);
     const title = titleOf(given["title"]);
     const { title: _title, description: _description, ...drawn } = spec;
     const alt = typeof given["description"] === "string" ? given["description"] : `${title === "" ? "Chart" : title}: ${drawnSentence(spec, data)}`;

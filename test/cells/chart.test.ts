@@ -7,6 +7,7 @@ import { draw } from "./parts/draw.ts";
 const crossings = makeSeries({ name: "crossings", unit: "vehicles", every: "P1M", start: "2015-01", values: Float64Array.from({ length: 24 }, (_, t) => 100 + t) });
 const line = { mark: "line", encoding: { x: { field: "time" }, y: { field: "value" } } };
 const many = Array.from({ length: 20_001 }, (_, a) => ({ a }));
+const grid = (n: number) => Array.from({ length: n * n }, (_, i) => ({ a: `a${i % n}`, b: `b${Math.floor(i / n)}` }));
 const part = async (options: Record<string, unknown>) => {
   const [one] = chart.show(await runCell(chart, options), { name: "c", width: 700 });
   if (one.part !== "chart") throw new Error("no chart");
@@ -45,6 +46,12 @@ describe("chart", () => {
   });
   it("draws a long series as a line, where it would not draw as many points", async () => {
     expect((await part({ data: many, mark: "line", encoding: { x: { field: "a" }, y: { field: "a" } } })).data).not.toEqual({});
+  });
+
+  it("draws panels, categories and bins as many as a page has room for", async () => {
+    expect((await part({ data: grid(10), mark: "point", encoding: { row: { field: "a" }, column: { field: "b" } } })).data).not.toEqual({});
+    expect((await part({ data: many.slice(0, 2000), mark: "bar", encoding: { x: { field: "a", type: "ordinal" } } })).data).not.toEqual({});
+    expect((await part({ data: crossings, mark: "bar", encoding: { x: { field: "value", bin: { step: 0.5 } }, y: { aggregate: "count" } } })).data).not.toEqual({});
   });
 
   it("takes transforms that are described by data", async () => {
@@ -86,6 +93,17 @@ describe("chart", () => {
     [{ mark: "line" }, "`chart` needs `data`"],
     [{ layer: [{ mark: "line" }] }, "`chart` needs `data`"],
     [{ data: crossings, mark: "line", encoding: { y: { field: "value", sort: () => 1 } } }, "is a function"],
+    [{ data: many, mark: "line", encoding: { y: { field: "a" }, row: { field: "a", type: "nominal" } } }, "up to 100 panels are drawn, and here are 20001"],
+    [{ data: grid(11), mark: "line", encoding: { y: { field: "a" }, row: { field: "a" }, column: { field: "b" } } }, "up to 100 panels are drawn, and here are 121"],
+    [{ data: grid(101), facet: { field: "a", type: "nominal" }, spec: { mark: "line", encoding: { y: { field: "b" } } } }, "up to 100 panels"],
+    [{ data: crossings, repeat: { row: Array(20).fill("value"), column: Array(20).fill("value") }, spec: { mark: "line" } }, "up to 100 panels are drawn, and here are 400"],
+    [{ data: crossings, vconcat: Array.from({ length: 101 }, () => line) }, "up to 100 panels are drawn, and here are 101"],
+    [{ data: many, mark: "line", encoding: { x: { field: "a", type: "nominal" }, y: { field: "a" } } }, "up to 2000 categories of x are drawn, and here are 20001"],
+    [{ data: crossings, layer: [line, { data: many, mark: "line", encoding: { y: { field: "a", type: "ordinal" } } }] }, "up to 2000 categories of y"],
+    [{ data: many, mark: "line", encoding: { x: { field: "a" }, y: { field: "a" }, detail: { field: "a", type: "nominal" } } }, "up to 2000 lines are drawn, and here are 20001"],
+    [{ data: grid(50), encoding: { color: { field: "a" }, detail: { field: "b" } }, layer: [{ mark: { type: "trail" }, encoding: { x: { field: "a" } } }] }, "up to 2000 lines are drawn, and here are 2500"],
+    [{ data: crossings, mark: "bar", encoding: { x: { field: "value", bin: { step: 1e-6 } }, y: { aggregate: "count" } } }, "up to 1000 bins are drawn, and here are 23000000"],
+    [{ data: crossings, mark: "bar", transform: [{ bin: { step: 0 }, field: "value", as: "b" }], encoding: { x: { field: "b", type: "quantitative" } } }, "more than can be counted"],
   ])("refuses in words, case %#", async (options, message) => {
     await expect(runCell(chart, options)).rejects.toThrow(message);
   });
