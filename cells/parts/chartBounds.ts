@@ -9,6 +9,8 @@ type Data = Readonly<Record<string, Rows>>;
 /** Panels: 100 took 3.6 s on a machine with eight others at work, 400 took 10 s, 2,000 took 32 s. Categories on an axis,
  *  each of which has its label: 2,000 took 1.8 s there, 20,000 took 17 s. Lines of groups: 20,000 took 18 s. */
 const mostPanels = 100, mostCategories = 2000, mostLines = 2000, mostBins = 1000;
+/** A median over all of 20,000 rows at each of them stood still for more than 45 s. */
+const mostLooks = 2_000_000, lookAgain = ["median", "q1", "q3", "ci0", "ci1", "distinct", "values"];
 const axes = ["x", "y", "xOffset", "yOffset"];
 const groups = ["detail", "color", "fill", "stroke", "strokeDash", "strokeWidth", "opacity", "size", "shape"];
 
@@ -30,6 +32,7 @@ function walk(value: unknown, option: string, data: Data, above: string, around:
   const encoded = { ...around, ...specOf(encoding) };
   checkLines(value["mark"], encoded, rows);
   checkBins(value, rows, option);
+  checkWindow(value, rows, option);
   const lists = Array.isArray(repeat) ? [repeat] : isSpec(repeat) ? Object.values(repeat).filter(Array.isArray) : [];
   refuse(lists.reduce((product, list) => product * list.length, 1), mostPanels, option, "panels");
   for (const list of ["hconcat", "vconcat", "concat"]) if (Array.isArray(value[list])) refuse(value[list].length, mostPanels, option, "panels");
@@ -63,6 +66,15 @@ function checkBins(field: Spec, rows: Rows | undefined, option: string): void {
   for (const value of column) { if (value < low) low = value; if (value > high) high = value; }
   const bins = bin["step"] > 0 ? Math.ceil((high - low) / bin["step"]) : Infinity;
   refuse(bins, mostBins, option, "bins");
+}
+
+/** A sum or a mean moves along with its window; these look at each row of it again. */
+function checkWindow(transform: Spec, rows: Rows | undefined, option: string): void {
+  const { window: asked, frame } = transform;
+  if (rows === undefined || !Array.isArray(asked) || !asked.some((each) => isSpec(each) && lookAgain.includes(String(each["op"])))) return;
+  const [back, on] = (Array.isArray(frame) ? frame : [null, 0]).map((reach: unknown) => (typeof reach === "number" ? Math.min(Math.abs(reach), rows.n) : rows.n));
+  const looks = rows.n * Math.min(rows.n, back + on + 1);
+  if (looks > mostLooks) throw new OptionError(option, `a window of up to ${Math.min(rows.n, back + on + 1)} rows at each of ${rows.n} would look at ${looks} rows; up to ${mostLooks} are looked at: take a narrower frame, or compute it in the notebook`);
 }
 
 function distinct(field: unknown, rows: Rows | undefined): number {

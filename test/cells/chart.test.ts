@@ -54,6 +54,11 @@ describe("chart", () => {
     expect((await part({ data: crossings, mark: "bar", encoding: { x: { field: "value", bin: { step: 0.5 } }, y: { aggregate: "count" } } })).data).not.toEqual({});
   });
 
+  it("moves a mean along a long series, whatever its window", async () => {
+    const running = { window: [{ op: "mean", field: "a", as: "m" }], frame: [-5000, 5000] };
+    expect((await part({ data: many.slice(0, 10_000), mark: "line", transform: [running], encoding: { x: { field: "a" }, y: { field: "m", type: "quantitative" } } })).data).not.toEqual({});
+  });
+
   it("takes transforms that are described by data", async () => {
     const one = await part({ data: [{ a: 1 }, { a: 5 }], transform: [{ filter: { field: "a", gt: 2 } }, { aggregate: [{ op: "count", as: "n" }] }], mark: "bar", encoding: { y: { field: "n", type: "quantitative" } } });
     expect((await draw(one)).warnings).toEqual([]);
@@ -102,6 +107,7 @@ describe("chart", () => {
     [{ data: crossings, layer: [line, { data: many, mark: "line", encoding: { y: { field: "a", type: "ordinal" } } }] }, "up to 2000 categories of y"],
     [{ data: many, mark: "line", encoding: { x: { field: "a" }, y: { field: "a" }, detail: { field: "a", type: "nominal" } } }, "up to 2000 lines are drawn, and here are 20001"],
     [{ data: grid(50), encoding: { color: { field: "a" }, detail: { field: "b" } }, layer: [{ mark: { type: "trail" }, encoding: { x: { field: "a" } } }] }, "up to 2000 lines are drawn, and here are 2500"],
+    [{ data: many.slice(0, 10_000), mark: "line", transform: [{ window: [{ op: "median", field: "a", as: "m" }], frame: [-5000, 5000] }], encoding: { x: { field: "a" }, y: { field: "m", type: "quantitative" } } }, "a window of up to 10000 rows at each of 10000"],
     [{ data: crossings, mark: "bar", encoding: { x: { field: "value", bin: { step: 1e-6 } }, y: { aggregate: "count" } } }, "up to 1000 bins are drawn, and here are 23000000"],
     [{ data: crossings, mark: "bar", transform: [{ bin: { step: 0 }, field: "value", as: "b" }], encoding: { x: { field: "b", type: "quantitative" } } }, "more than can be counted"],
   ])("refuses in words, case %#", async (options, message) => {
