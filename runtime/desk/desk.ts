@@ -19,6 +19,7 @@ import { Problems } from "./problems.ts";
 import { saveFile } from "./saveFile.ts";
 import { ScriptWatch } from "./scriptWatch.ts";
 import { ownTab, openTabs } from "./tabs.ts";
+import { openLink } from "./openLink.ts";
 
 /** After this pause in typing the page gets the text; and at the latest after `mostMs` of steady typing. */
 const pauseMs = 70, mostMs = 350;
@@ -98,7 +99,7 @@ async function openDesk({ files, opened, catalogue, tab, bar }: DeskOptions): Pr
       case "outline": case "states": problems.hear(message); underlineLater(); scripts.hear(message); return;
       case "alive": scripts.hear(message); return;
       case "saveFile": saveFile(message); return;
-      case "openLink": if (/^(https?|mailto):/i.test(message.href)) window.open(message.href, "_blank", "noopener,noreferrer"); return;
+      case "openLink": openLink(message.href); return;
       case "key": keys.press(message); return;
     }
   }

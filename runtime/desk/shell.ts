@@ -5,6 +5,7 @@ import type { FromPage, ToPage } from "../page/protocol.ts";
 import { cleanStill } from "./cleanStill.ts";
 import { fromDense } from "./dense.ts";
 import { saveFile } from "./saveFile.ts";
+import { openLink } from "./openLink.ts";
 
 /** What an exported file carries beside its still page. Bytes are dense text of gzip. */
 export interface Carried {
@@ -37,7 +38,7 @@ async function start(): Promise<void> {
       case "drawn": show(); return;
       case "still": still?.replaceChildren(cleanStill(message.html)); return;
       case "saveFile": saveFile(message); return;
-      case "openLink": if (/^(https?|mailto):/i.test(message.href)) window.open(message.href, "_blank", "noopener,noreferrer"); return;
+      case "openLink": openLink(message.href); return;
     }
   }
 

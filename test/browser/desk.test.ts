@@ -30,7 +30,7 @@ describe("the desk", () => {
     const { page, frame } = await openDesk(context, served.url);
     await typeAfter(page, "The last line.", " And one more.");
     await expect.poll(() => frame.locator("body").innerText()).toContain("And one more.");
-    expect(await page.locator("#dirty").isVisible()).toBe(true);
+    await expect.poll(() => page.locator("#dirty").isVisible()).toBe(true);
     expect(onDisk()).toBe(notebook);
     await page.keyboard.press("Control+s");
     await expect.poll(() => page.locator("#said").innerText()).toMatch(/^Saved /);

@@ -15,8 +15,8 @@ import { command, data, launch, openDesk, pageOf, serve } from "./deskOpen.ts";
 const load = "# Proof\n\n```load: sold\nfile: \"sold.csv\"\nunit: \"t\"\n```\n\n";
 const proof = `${load}\`\`\`compare: contest\nmodels: [rule.naive(sold), rule.seasonalNaive(sold)]\norigins: 12\nhorizon: 6\n\`\`\`\n`;
 /** Twenty years, so that the searches are long enough to be met at work on any machine. */
-const years = ["month,sold", ...Array.from({ length: 240 }, (_, i) => `${2000 + Math.floor(i / 12)}-${String((i % 12) + 1).padStart(2, "0")},${(200 + i + 30 * Math.sin((i * Math.PI) / 6) + ((i * 7919) % 17)).toFixed(1)}`)].join("\n");
-const long = `${load}\`\`\`compare: contest\nmodels: {damped: rule.smoothing(sold, {trend: "additive", season: "additive", damped: true}), multiplied: rule.smoothing(sold, {trend: "multiplicative", season: "multiplicative"})}\norigins: 60\nhorizon: 4\n\`\`\`\n
+const years = ["month,sold", ...Array.from({ length: 480 }, (_, i) => `${1980 + Math.floor(i / 12)}-${String((i % 12) + 1).padStart(2, "0")},${(200 + i + 30 * Math.sin((i * Math.PI) / 6) + ((i * 7919) % 17)).toFixed(1)}`)].join("\n");
+const long = `${load}\`\`\`compare: contest\nmodels: {damped: rule.smoothing(sold, {trend: "additive", season: "additive", damped: true}), multiplied: rule.smoothing(sold, {trend: "multiplicative", season: "multiplicative"})}\norigins: 180\nhorizon: 4\n\`\`\`\n
 The best is [neither](=contest.best.label).\n\n\`\`\`claims:\n"one of the two is best": contest.best.label === "damped" || contest.best.label === "multiplied"\n\`\`\`\n`;
 
 let browser: Browser;
@@ -87,14 +87,14 @@ describe("long work", () => {
     page.on("console", (message) => { if (message.type() === "error") faults.push(message.text()); });
     await page.goto(served.url);
     const frame = page.frameLocator("#frame"), cell = frame.locator("#cell-contest");
-    await expect.poll(() => cell.locator(".cell-progress").innerText(), { timeout: 60_000 }).toMatch(/\d+ of 240 \w+, (about \d+ s left|about \d+ min left|nearly done)/);
+    await expect.poll(() => cell.locator(".cell-progress").innerText(), { timeout: 60_000 }).toMatch(/\d+ of 720 \w+, (about \d+ s left|about \d+ min left|nearly done)/);
     // Other cores help with what takes long: the engine's worker has started others of its own program.
     if (availableParallelism() > 1) await expect.poll(() => page.workers().length, { timeout: 60_000 }).toBeGreaterThan(1);
     await cell.locator("button.stop").click();
     await cell.getByRole("button", { name: "go on" }).waitFor();
-    expect(await cell.locator(".cell-remark").innerText()).toMatch(/^Ended early by hand, after \d+ of 240\. Claims and live numbers that read it are undecided\./);
-    expect(await cell.locator(".tone-caution").first().innerText()).toMatch(/Stopped early: scored on the first \d+ of 60 origins/);
-    expect(await frame.locator(".claim").innerText()).toMatch(/undecided[\s\S]*`contest` was ended early, after \d+ of 240/);
+    expect(await cell.locator(".cell-remark").innerText()).toMatch(/^Ended early by hand, after \d+ of 720\. Claims and live numbers that read it are undecided\./);
+    expect(await cell.locator(".tone-caution").first().innerText()).toMatch(/Stopped early: scored on the first \d+ of 180 origins/);
+    expect(await frame.locator(".claim").innerText()).toMatch(/undecided[\s\S]*`contest` was ended early, after \d+ of 720/);
     expect(await frame.locator(".live.undecided").count()).toBe(1);
     await cell.getByRole("button", { name: "go on" }).click();
     await expect.poll(() => frame.locator(".claim").innerText(), { timeout: 120_000 }).toMatch(/^holds/);
