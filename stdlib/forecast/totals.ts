@@ -12,7 +12,7 @@ import { firstIndex, lastIndex } from "./reach.ts";
 interface Span { readonly from: string; readonly to: string; readonly low: number; readonly high: number }
 
 /** Totals in data units. Mean and standard error are exact where the covariance in data units is known (normal errors, logs);
- *  limits are exact where totals are normal, and otherwise from the seeded paths.
+ *  limits are exact where totals are normal, and otherwise from seeded draws.
  *  @param base   the observed series up to the origin
  *  @param paths  sample paths of the forecasts
  *  @throws RangeError where a span needs a longer horizon or a value that is not there */

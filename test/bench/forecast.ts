@@ -49,7 +49,7 @@ async function rollingCost(print: (line: string) => void): Promise<void> {
   }
 }
 
-/** One forecast of a seasonal model of logs, by how its bands are made; and how far a limit from paths hangs on the seed. */
+/** One forecast of a seasonal model of logs, by how its bands are made; and how far a limit from draws differs from seed to seed. */
 function forecastCost(print: (line: string) => void): void {
   const series = applySteps(open("airline", "P1M"), [log, plain, yearly(12)]), model = fit({ series, ma: 1, season: { ma: 1 } }), asked = { horizon: 12, levels: [0.9] };
   const year = Array.from({ length: 40 }, (_, seed) => forecast(model, { ...asked, totals: "year", seed }).totals[0]), middle = year.reduce((sum, one) => sum + one.bands[0].low, 0) / year.length;

@@ -4,9 +4,11 @@ import { tmpdir } from "node:os";
 import { dirname, join } from "node:path";
 import { pathToFileURL } from "node:url";
 import axe from "axe-core";
-import type { Browser, Page } from "playwright-core";
+import type { Browser } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { command, data, launch, notebook } from "./deskOpen.ts";
+import { live, openExported } from "./exported.ts";
+import type { Opened } from "./exported.ts";
 
 // An exported page, opened from disk with the network off.
 
@@ -21,22 +23,7 @@ beforeAll(async () => {
 });
 afterAll(async () => { await browser.close(); rmSync(folder, { recursive: true, force: true }); });
 
-interface Opened { readonly page: Page; readonly asked: string[]; readonly faults: string[] }
-
-async function open(javaScriptEnabled = true, width = 1280): Promise<Opened> {
-  const context = await browser.newContext({ javaScriptEnabled, offline: true, viewport: { width, height: 800 } });
-  const page = await context.newPage(), asked: string[] = [], faults: string[] = [];
-  page.on("request", (request) => { if (!/^(file|blob|data|about):/.test(request.url())) asked.push(request.url()); });
-  page.on("console", (message) => { if (message.type() === "error") faults.push(message.text()); });
-  page.on("pageerror", (error) => faults.push(error.message));
-  await page.goto(pathToFileURL(file).href);
-  return { page, asked, faults };
-}
-
-const live = async (page: Page) => {
-  await page.waitForSelector("html.live", { timeout: 50_000 });
-  return (await (await page.waitForSelector("#live-place iframe")).contentFrame())!;
-};
+const open = (javaScriptEnabled = true, width = 1280): Promise<Opened> => openExported(browser, file, { javaScriptEnabled, viewport: { width, height: 800 } });
 
 describe("the exported page", () => {
   it("reads without JavaScript: prose, numbers, tables and charts", async () => {

@@ -2,10 +2,11 @@ import { execFileSync } from "node:child_process";
 import { cpSync, mkdtempSync, rmSync, statSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join, resolve } from "node:path";
-import { pathToFileURL } from "node:url";
-import type { Browser, BrowserContextOptions, Frame, Page } from "playwright-core";
+import type { Browser, BrowserContextOptions } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { command, launch } from "./deskOpen.ts";
+import { live, openExported } from "./exported.ts";
+import type { Opened } from "./exported.ts";
 import { seriousFaults } from "./seriousFaults.ts";
 
 // The main example as one file, as whoever it was sent to meets it: from disk, without a network, with and without JavaScript.
@@ -22,20 +23,7 @@ beforeAll(async () => {
 }, 90_000);
 afterAll(async () => { await browser.close(); rmSync(folder, { recursive: true, force: true }); });
 
-async function open(options: BrowserContextOptions = {}): Promise<{ readonly page: Page; readonly asked: readonly string[]; readonly faults: readonly string[] }> {
-  const context = await browser.newContext({ offline: true, viewport: { width: 1280, height: 900 }, ...options });
-  const page = await context.newPage(), asked: string[] = [], faults: string[] = [];
-  page.on("request", (request) => { if (!/^(file|blob|data|about):/.test(request.url())) asked.push(request.url()); });
-  page.on("console", (message) => { if (message.type() === "error") faults.push(message.text()); });
-  page.on("pageerror", (error) => faults.push(error.message));
-  await page.goto(pathToFileURL(file).href);
-  return { page, asked, faults };
-}
-
-const live = async (page: Page): Promise<Frame> => {
-  await page.waitForSelector("html.live", { timeout: 50_000 });
-  return (await (await page.waitForSelector("#live-place iframe")).contentFrame())!;
-};
+const open = (options: BrowserContextOptions = {}): Promise<Opened> => openExported(browser, file, options);
 
 describe("the main example as one file", () => {
   it("is under a megabyte plus its data", () => {

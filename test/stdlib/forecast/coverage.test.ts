@@ -31,7 +31,7 @@ describe("bands of known models cover what they say (400 seeded series each)", (
       const { bands } = forecast(fit({ ...ask, series: slice(all, 0, n - lost) }), { horizon: 12, levels });
       horizons.forEach((h, i) => levels.forEach((_, j) => { const y = data[n + h - 1]; if (y >= bands[j].low[h - 1] && y <= bands[j].high[h - 1]) hits[i][j]++; }));
     }
-    // Six ranges a model: each at 99.5%, so that all hold together about 97 times in 100; the seeds are fixed.
+    // Six ranges a model: each at 99.5%, so that all hold together about 97 times in 100; every draw is seeded.
     levels.forEach((level, j) => horizons.forEach((h, i) => {
       const { low, high } = binomialRange(tries, level, 0.995);
       expect(hits[i][j] / tries, `${level} at ${h}`).toBeGreaterThanOrEqual(low);

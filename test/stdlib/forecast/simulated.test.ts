@@ -76,7 +76,7 @@ describe("simulated and calibrated bands", () => {
   });
 });
 
-describe("limits that come from paths hardly hang on the seed", () => {
+describe("limits that come from draws hardly differ from seed to seed", () => {
   // By hand from 4,000 independent draws: a 5% limit would have standard error sqrt(0.05 * 0.95 / 4000) / 0.103 = 3.3% of the standard deviation.
   it("of a year's total under a log: within 1% of its standard error", () => {
     const lows = Array.from({ length: 12 }, (_, seed) => forecast(model(), { horizon: 12, levels: [0.9], totals: "year", seed }).totals[0]);
